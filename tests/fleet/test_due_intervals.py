@@ -96,7 +96,7 @@ class TestToleranceDoesNotAccumulate:
         limits = limits or self.limits
         due = next_due(self.due, [done], limits, threshold=limits, policy=policy)
         assert due is not None
-    assert due.at.minutes is not None
+        assert due.at.minutes is not None
         return due.at.minutes // 60
 
     def test_late_inside_an_approved_tolerance(self):
