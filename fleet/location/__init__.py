@@ -1,0 +1,1 @@
+"""Locations on the structure: geometry, reader, placer and writer (no database)."""

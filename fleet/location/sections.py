@@ -1,0 +1,407 @@
+"""What a section of an aircraft type is made of, in mm on the section's own axes.
+
+Along: `x_mm` is the true distance from the datum on one variant, `map_mm` the same
+point on the axis that holds the plugs of every variant. Across: `s_mm` at the
+section's reference size (radius of a shell, chord of a surface).
+"""
+
+from __future__ import annotations
+
+import math
+from bisect import bisect_right
+from dataclasses import dataclass, field
+
+TINY_MM = 1e-6  # a point nearer to a line than this is on it
+
+
+@dataclass(frozen=True)
+class Variant:
+    """One length of the type, with its design service goal and limit of validity."""
+
+    code: str
+    name: str
+    design_service_goal_fc: int | None
+    limit_of_validity_fc: int | None
+    limit_of_validity_fh: int | None
+    source: str
+
+
+@dataclass(frozen=True)
+class Plug:
+    """A stretch of the map axis that only some variants have."""
+
+    map_mm: float
+    length_mm: float
+    variants: tuple[str, ...]
+
+    @property
+    def end_mm(self) -> float:
+        return self.map_mm + self.length_mm
+
+
+@dataclass(frozen=True)
+class Frame:
+    """A frame or rib: the name painted on it and where it stands on each variant."""
+
+    label: str
+    station_label: str
+    ordinal: int
+    map_mm: float
+    x_by_variant: tuple[tuple[str, float], ...]
+    plug: bool
+
+    def x_mm(self, variant: str) -> float | None:
+        """True distance from the datum; None if the variant has no such frame."""
+        return dict(self.x_by_variant).get(variant)
+
+
+@dataclass(frozen=True)
+class Stringer:
+    """A stringer line; `side` is L, R or '' on the centreline and on open surfaces."""
+
+    label: str
+    number: int
+    side: str
+    s_mm: float
+    ordinal: int
+
+
+@dataclass(frozen=True)
+class Box:
+    """A rectangle of the unrolled section; s2 may pass half the wrap (over the keel)."""
+
+    map1_mm: float
+    map2_mm: float
+    s1_mm: float
+    s2_mm: float
+
+    def holds(
+        self, map_mm: float, s_mm: float, wrap_mm: float | None, grow_mm: float = 0.0
+    ) -> bool:
+        """Whether the point lies inside or on the edge of the box grown all round."""
+        grow_mm += TINY_MM
+        across = s_mm - self.s1_mm + grow_mm
+        if wrap_mm:
+            across %= wrap_mm
+        return (
+            self.map1_mm - grow_mm <= map_mm <= self.map2_mm + grow_mm
+            and 0.0 <= across <= self.s2_mm - self.s1_mm + 2.0 * grow_mm
+        )
+
+
+@dataclass(frozen=True)
+class PanelMaterial:
+    """Material of a panel by the name, temper and form of the materials file."""
+
+    name: str
+    temper: str
+    form: str
+    clad: bool
+    clad_mm_per_side: float | None
+
+
+@dataclass(frozen=True)
+class Panel:
+    """One skin part with material, thickness, stresses and criticality.
+
+    None means not recorded: nothing may be computed from it.
+    """
+
+    label: str
+    surface: str
+    box: Box
+    thickness_mm: float
+    material: PanelMaterial
+    radius_mm: float | None
+    pressurised: bool
+    criticality: str
+    criticality_source: str
+    bending_1g_mpa: float | None
+    bending_limit_mpa: float | None
+    ultimate_running_load_n_per_mm: float | None
+    source: str
+
+
+@dataclass(frozen=True)
+class Cutout:
+    """An opening in the skin: door, window; with the thicker surround about it."""
+
+    label: str
+    kind: str
+    box: Box
+    corner_radius_mm: float
+    surround_thickness_mm: float
+    surround_width_mm: float
+    filled_by: str
+    """Code of the door section in it; '' if nothing of its own structure fills it."""
+
+
+@dataclass(frozen=True)
+class Joint:
+    """A row of fasteners joining two panels: lap (along) or butt (around)."""
+
+    label: str
+    kind: str
+    box: Box
+
+
+@dataclass(frozen=True)
+class Plane:
+    """Internal structure: floor, seat track, keel beam, bulkhead, spar.
+
+    Lengths are None where the plane has no such bound.
+    """
+
+    label: str
+    kind: str
+    map1_mm: float
+    map2_mm: float
+    bl_mm: float | None
+    half_width_mm: float | None
+    wl_mm: float | None
+    s_mm: float | None
+
+
+@dataclass(frozen=True)
+class Section:
+    """One section with its axes, lines, panels, cut-outs, joints and planes."""
+
+    code: str
+    title: str
+    kind: str
+    side: str
+    ata: str
+    station_words: tuple[str, ...]
+    words: tuple[str, ...]
+    frame_prefix: str
+    frame_words: tuple[str, ...]
+    stringer_prefix: str
+    stringer_words: tuple[str, ...]
+    stringer_origin: str
+    negative_stations: bool
+    map1_mm: float
+    map2_mm: float
+    s1_mm: float
+    s2_mm: float
+    skins: tuple[str, ...]
+    datum_text: str
+    reference_mm: float
+    profile: tuple[tuple[float, float], ...]
+    axis_wl_mm: float | None
+    parent: str
+    frame_pitch_mm: float
+    plugs: tuple[Plug, ...] = ()
+    frames: tuple[Frame, ...] = ()
+    stringers: tuple[Stringer, ...] = ()
+    panels: tuple[Panel, ...] = ()
+    cutouts: tuple[Cutout, ...] = ()
+    joints: tuple[Joint, ...] = ()
+    planes: tuple[Plane, ...] = ()
+    frame_area_mm2: float | None = None
+    stringer_area_mm2: float | None = None
+    _frame_maps: tuple[float, ...] = field(init=False, repr=False, compare=False)
+    _stringer_turns: tuple[float, ...] = field(init=False, repr=False, compare=False)
+
+    def __post_init__(self) -> None:
+        maps = tuple(f.map_mm - TINY_MM for f in self.frames)
+        turns = tuple(self._turn(t.s_mm) - TINY_MM for t in self.stringers)
+        object.__setattr__(self, "_frame_maps", maps)
+        object.__setattr__(self, "_stringer_turns", turns)
+
+    # -- axes -----------------------------------------------------------------
+
+    @property
+    def is_shell(self) -> bool:
+        return self.kind == "shell"
+
+    @property
+    def wrap_mm(self) -> float | None:
+        """Once round a shell at the reference radius; None on an open surface."""
+        return 2.0 * math.pi * self.reference_mm if self.is_shell else None
+
+    def map_of(self, x_mm: float, variant: str) -> float:
+        """The map position of a true distance on this variant."""
+        map_mm = x_mm
+        for plug in self.plugs:
+            if variant not in plug.variants and map_mm > plug.map_mm + TINY_MM:
+                map_mm += plug.length_mm
+        return map_mm
+
+    def x_of(self, map_mm: float, variant: str) -> float | None:
+        """The true distance of a map position; None in a plug the variant lacks."""
+        x_mm = map_mm
+        for plug in self.plugs:
+            if variant not in plug.variants and map_mm > plug.map_mm + TINY_MM:
+                if map_mm <= plug.end_mm + TINY_MM:
+                    return None
+                x_mm -= plug.length_mm
+        return x_mm
+
+    def size_at(self, map_mm: float) -> float:
+        """Radius of the shell, or chord of the surface, by the file's straight runs."""
+        before = self.profile[0]
+        for after in self.profile[1:]:
+            if map_mm <= after[0]:
+                share = (map_mm - before[0]) / (after[0] - before[0])
+                return before[1] + max(0.0, share) * (after[1] - before[1])
+            before = after
+        return before[1]
+
+    radius_at = size_at
+
+    def scale_at(self, map_mm: float) -> float:
+        """True length across per mm of s."""
+        return self.size_at(map_mm) / self.reference_mm
+
+    def wrapped(self, s_mm: float) -> float:
+        """s brought into [-wrap/2, wrap/2) on a shell; unchanged on a surface."""
+        wrap = self.wrap_mm
+        if wrap is None or -wrap / 2 <= s_mm < wrap / 2:
+            return s_mm
+        return (s_mm + wrap / 2) % wrap - wrap / 2
+
+    def arc_between(self, s1_mm: float, s2_mm: float, map_mm: float) -> float:
+        """True shorter distance across between two points at one map position."""
+        return abs(self.wrapped(s2_mm - s1_mm)) * self.scale_at(map_mm)
+
+    def _turn(self, s_mm: float) -> float:
+        wrap = self.wrap_mm
+        if wrap is None:
+            return s_mm
+        turn = s_mm % wrap
+        return 0.0 if wrap - turn < TINY_MM else turn
+
+    def bl_of(self, map_mm: float, s_mm: float) -> float:
+        """Butt line of a point on a shell's skin; right positive."""
+        return self.size_at(map_mm) * math.sin(s_mm / self.reference_mm)
+
+    def wl_of(self, map_mm: float, s_mm: float) -> float | None:
+        """Water line of a point on a shell's skin; None if the file gives no axis."""
+        if self.axis_wl_mm is None:
+            return None
+        angle = s_mm / self.reference_mm
+        return self.axis_wl_mm + self.size_at(map_mm) * math.cos(angle)
+
+    # -- bays -----------------------------------------------------------------
+
+    def bay_along(self, map_mm: float) -> int:
+        """Ordinal of the frame ahead of the point; 0 ahead of the first frame."""
+        return bisect_right(self._frame_maps, map_mm)
+
+    def half_along(self, map_mm: float) -> int:
+        """Half-bay number: twice the bay, plus one past its middle."""
+        bay = self.bay_along(map_mm)
+        lines = (self.map1_mm, *(f.map_mm for f in self.frames), self.map2_mm)
+        return 2 * bay + (map_mm >= (lines[bay] + lines[bay + 1]) / 2 - TINY_MM)
+
+    def bay_across(self, s_mm: float) -> int:
+        """Ordinal of the stringer line before the point.
+
+        Shells count clockwise (looking forward) from the crown line, which is 0, once
+        round; surfaces count from 1 at the first line, 0 ahead of it.
+        """
+        bay = bisect_right(self._stringer_turns, self._turn(s_mm))
+        return bay - 1 if self.is_shell else bay
+
+    def half_across(self, s_mm: float) -> int:
+        """Half-bay number across, counted as `bay_across`."""
+        turn, bay = self._turn(s_mm), self.bay_across(s_mm)
+        turns = [self._turn(t.s_mm) for t in self.stringers]
+        if self.wrap_mm is not None:
+            lines = [*turns, self.wrap_mm]
+        else:
+            lines = [self.s1_mm, *turns, self.s2_mm]
+        return 2 * bay + (turn >= (lines[bay] + lines[bay + 1]) / 2 - TINY_MM)
+
+    # -- what is there --------------------------------------------------------
+
+    def frame(self, label: str) -> Frame | None:
+        return next((f for f in self.frames if f.label == label), None)
+
+    def stringer(self, label: str) -> Stringer | None:
+        return next((t for t in self.stringers if t.label == label), None)
+
+    def panel_at(self, map_mm: float, s_mm: float, surface: str = "") -> Panel | None:
+        """The panel under a point; `surface` tells upper from lower on a wing."""
+        for panel in self.panels:
+            if panel.surface in ("outer", surface) and panel.box.holds(
+                map_mm, s_mm, self.wrap_mm
+            ):
+                return panel
+        return None
+
+    def cutout_at(self, map_mm: float, s_mm: float) -> Cutout | None:
+        """The cut-out strictly inside which the point lies; its edge is surround."""
+        for cutout in self.cutouts:
+            if cutout.box.holds(map_mm, s_mm, self.wrap_mm, -2.0 * TINY_MM):
+                return cutout
+        return None
+
+    def surround_at(self, map_mm: float, s_mm: float) -> Cutout | None:
+        """The cut-out in whose thicker surround the point lies."""
+        if self.cutout_at(map_mm, s_mm):
+            return None
+        for cutout in self.cutouts:
+            if cutout.surround_width_mm and cutout.box.holds(
+                map_mm, s_mm, self.wrap_mm, cutout.surround_width_mm
+            ):
+                return cutout
+        return None
+
+    def thickness_at(
+        self, map_mm: float, s_mm: float, surface: str = ""
+    ) -> float | None:
+        """Skin thickness: the surround's where there is one, else the panel's."""
+        if self.cutout_at(map_mm, s_mm):
+            return None
+        surround = self.surround_at(map_mm, s_mm)
+        if surround:
+            return surround.surround_thickness_mm
+        panel = self.panel_at(map_mm, s_mm, surface)
+        return panel.thickness_mm if panel else None
+
+    # -- how far --------------------------------------------------------------
+
+    def distance_to_box(
+        self, box: Box, map_mm: float, s_mm: float, variant: str
+    ) -> float:
+        """True shortest distance on this variant to a box; infinite if it has none."""
+        near_map = min(max(map_mm, box.map1_mm), box.map2_mm)
+        here, there = self.x_of(map_mm, variant), self.x_of(near_map, variant)
+        if here is None or there is None:
+            return math.inf
+        if box.holds(near_map, s_mm, self.wrap_mm):
+            across = 0.0
+        else:
+            across = min(
+                self.arc_between(s_mm, edge, map_mm) for edge in (box.s1_mm, box.s2_mm)
+            )
+        return math.hypot(there - here, across)
+
+    def nearest_cutout(
+        self, map_mm: float, s_mm: float, variant: str
+    ) -> tuple[Cutout, float] | None:
+        """The nearest cut-out and its true distance (0 inside)."""
+        found = [
+            (c, self.distance_to_box(c.box, map_mm, s_mm, variant))
+            for c in self.cutouts
+        ]
+        return min(found, key=lambda pair: pair[1]) if found else None
+
+    def nearest_joint(
+        self, map_mm: float, s_mm: float, variant: str
+    ) -> tuple[Joint, float] | None:
+        """The nearest lap or butt joint and its true distance."""
+        found = [
+            (j, self.distance_to_box(j.box, map_mm, s_mm, variant)) for j in self.joints
+        ]
+        return min(found, key=lambda pair: pair[1]) if found else None
+
+    def nearest_frame(self, x_mm: float, variant: str) -> tuple[Frame, float] | None:
+        """The nearest frame this variant has and the true distance to it."""
+        found = [
+            (f, abs(x - x_mm))
+            for f in self.frames
+            if (x := f.x_mm(variant)) is not None
+        ]
+        return min(found, key=lambda pair: pair[1]) if found else None
