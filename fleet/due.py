@@ -53,10 +53,11 @@ class Base(StrEnum):
     NEW = "new"
     RELEASE = "release"
     EFFECTIVE = "effective"
-    FITTED = "fitted"
+    INSTALLED = "installed"
     OVERHAUL = "overhaul"
     LAST_DONE = "last_done"
     OTHER_TASK = "other_task"
+    DATE = "date"
 
 
 class Combine(StrEnum):
@@ -144,12 +145,15 @@ ZERO = Counters(0, 0, 0, 0)
 
 @dataclass(frozen=True)
 class Limit:
-    """One limit: so much on one counter, from one base."""
+    """One limit: so much on one counter, from one base. `tolerance` is permitted
+    lateness in the limit's own unit; `window` is for AnchorPolicy.WINDOW, in days when
+    the limit is calendar time."""
 
     counter: Counter
     value: int
     base: Base = Base.LAST_DONE
     tolerance: int = 0
+    window: int = 0
 
 
 @dataclass(frozen=True)

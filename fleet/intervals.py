@@ -104,7 +104,7 @@ def restart(
     Late work restarts from the original due, so that tolerance never accumulates
     (14 CFR 91.409(b): the excess counts in the next interval). Only ACTUAL counts
     from the day of late work, and only if that lateness was approved. WINDOW also
-    counts from the original due for work done early by no more than the tolerance.
+    counts from the original due for work done early by no more than the window.
     """
     anchor = Anchor(done.at, done.on)
     if due is None:
@@ -115,7 +115,7 @@ def restart(
             planned = line in over or policy is not AnchorPolicy.ACTUAL
         else:
             early = line.remaining > 0 and policy is AnchorPolicy.WINDOW
-            planned = early and _within_tolerance(line, limits)
+            planned = early and line.remaining <= _window(line, limits)
         if not planned:
             continue
         if isinstance(line.due, date):
@@ -143,14 +143,23 @@ def _late(due: Due, done: Done) -> list[Remaining]:
     return [] if waits else late
 
 
+def _of_line(line: Remaining, limits: Sequence[Limit]) -> list[Limit]:
+    """The limits behind one line of a due item; days and months share the calendar."""
+    if line.counter in COUNTED:
+        return [limit for limit in limits if limit.counter is line.counter]
+    return [limit for limit in limits if limit.counter not in COUNTED]
+
+
+def _window(line: Remaining, limits: Sequence[Limit]) -> int:
+    return min((limit.window for limit in _of_line(line, limits)), default=0)
+
+
 def _within_tolerance(line: Remaining, limits: Sequence[Limit]) -> bool:
+    mine = _of_line(line, limits)
     if isinstance(line.due, date) and isinstance(line.now, date):
-        early, late = sorted((line.due, line.now))
         ends = [
-            limit_date(replace(x, value=x.tolerance), Anchor(on=early))
-            for x in limits
-            if x.counter not in COUNTED
+            limit_date(replace(limit, value=limit.tolerance), Anchor(on=line.due))
+            for limit in mine
         ]
-        return late <= min((end for end in ends if end), default=early)
-    granted = [x.tolerance for x in limits if x.counter is line.counter]
-    return abs(line.remaining) <= min(granted, default=0)
+        return line.now <= min((end for end in ends if end), default=line.due)
+    return -line.remaining <= min((limit.tolerance for limit in mine), default=0)

@@ -127,7 +127,8 @@ class TestToleranceDoesNotAccumulate:
         ("hours", "expected"), [(11_600, 16_000), (11_599, 15_599), (11_700, 16_000)]
     )
     def test_window_counts_from_schedule_inside_it_only(self, hours, expected):
-        assert self.after(flown(hours), AnchorPolicy.WINDOW) == expected
+        limits = (Limit(Counter.MINUTES, 4_000 * 60, window=400 * 60),)
+        assert self.after(flown(hours), AnchorPolicy.WINDOW, limits) == expected
 
 
 def test_a_month_series_anchored_late_keeps_its_first_day_number():
@@ -149,6 +150,19 @@ def test_a_month_series_anchored_late_keeps_its_first_day_number():
         date(2025, 3, 31),
         date(2025, 4, 30),
     ]
+
+
+def test_a_calendar_window_is_in_days():
+    """Due 30 Jun; done 31 May, 30 days early; with 30 days the next is 30 Dec."""
+    due = Due(on=date(2025, 6, 30))
+    for window, expected in ((30, date(2025, 12, 30)), (29, date(2025, 11, 30))):
+        repeat = [Limit(Counter.MONTHS, 6, window=window)]
+        early = [Done(Counters(), date(2025, 5, 31))]
+        found = next_due(
+            due, early, repeat, threshold=repeat, policy=AnchorPolicy.WINDOW
+        )
+        assert found is not None
+        assert found.on == expected
 
 
 def test_days_count_the_day_of_the_event_as_zero():
@@ -230,7 +244,7 @@ def test_tolerance_used_every_time_never_moves_the_series(interval, lateness):
 def test_the_next_due_is_never_later_than_work_or_window_allow(
     due_at, done_at, interval, tolerance, approved, policy
 ):
-    limits = [Limit(Counter.CYCLES, interval, tolerance=tolerance)]
+    limits = [Limit(Counter.CYCLES, interval, window=tolerance)]
     first, done = Due(Counters(cycles=due_at)), [cycles(done_at, approved=approved)]
     due = next_due(first, done, limits, threshold=limits, policy=policy)
     assert due is not None
