@@ -258,10 +258,10 @@ def _labels(chart: Chart) -> Iterator[str]:
     if chart.point:
         x, y = chart.at(chart.point.x, chart.point.y)
         taken.append(Box(x - 5, y - 5, x + 5, y + 5))
-        yield _placed(chart, _beside(chart.point.label, x, y), taken, "note b")
+        yield _placed(chart, _beside(chart.point.label, x, y), taken, "label b")
     for level in chart.levels:
         _, y = chart.at(chart.x_axis.low, level.value)
-        yield _placed(chart, _along(level.label, chart.plot, y), taken, "note")
+        yield _placed(chart, _along(level.label, chart.plot, y), taken, "label")
     if len(chart.series) > 1:
         for series, curve in zip(chart.series, chart.curves, strict=True):
             places = [
@@ -269,7 +269,7 @@ def _labels(chart: Chart) -> Iterator[str]:
                 for index in (-1, len(curve) // 2, len(curve) // 4, 0)
                 for label in _beside(series.name, *curve[index])
             ]
-            yield _placed(chart, places, taken, "note")
+            yield _placed(chart, places, taken, "label")
 
 
 def _placed(chart: Chart, places: list[Label], taken: list[Box], class_: str) -> str:

@@ -25,7 +25,7 @@ def number(value: float) -> str:
 
 
 def tag(name: str, *children: str, **attributes: str | float | None) -> str:
-    """One element; ``class_`` is class, ``text_anchor`` is text-anchor, None is left out.
+    """One element: ``class_`` is class, ``text_anchor`` text-anchor, None is left out.
 
     Children are markup already; put ``text()`` around words.
     """

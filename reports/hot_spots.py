@@ -1,0 +1,267 @@
+"""Hot spots by the spatial scan statistic, tested by throwing events at random.
+
+A hot spot is the window of cells whose count most exceeds what its share of the
+exposure leads one to expect. Its p-value compares it with the best window of random
+maps, so looking at many windows is already paid for.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import TypeVar
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy.special import xlogy
+
+from reports.density import Density, Tally
+from reports.lattice import Counts, Flags, Floats
+
+LARGEST = 8
+"""Longest side of a window, in cells."""
+
+REPLICAS = 999
+SIGNIFICANT = 0.05
+MOST_SHOWN = 6
+_CHUNK = 32
+"""Random maps scanned at a time: as many as stay in the processor's cache."""
+
+Cell = TypeVar("Cell", np.int32, np.int64, np.float64)
+
+
+@dataclass(frozen=True)
+class Window:
+    """A rectangle of cells; around a shell it may pass the cut of the drawing."""
+
+    along: int
+    around: int
+    frames: int
+    stringers: int
+
+    def cells(self, shape: tuple[int, int]) -> Flags:
+        """The window's cells as a mask."""
+        mask = np.zeros(shape, dtype=bool)
+        around = np.arange(self.around, self.around + self.stringers) % shape[1]
+        mask[self.along : self.along + self.frames, around] = True
+        return mask
+
+
+@dataclass(frozen=True)
+class HotSpot:
+    """A window with its count, its expectation and how rarely chance does as well."""
+
+    window: Window
+    count: int
+    expected: float
+    llr: float
+    p: float
+
+    @property
+    def ratio(self) -> float:
+        """Observed over expected."""
+        return self.count / self.expected
+
+    @property
+    def stands_out(self) -> bool:
+        """Whether chance explains it badly enough to be called a hot spot."""
+        return self.p <= SIGNIFICANT
+
+
+def scan_ratio(count: Floats, expected: Floats, total: float) -> Floats:
+    r"""Log likelihood ratio of the Poisson scan statistic for high counts.
+
+    .. math::
+        c\ln\frac cE + (C-c)\ln\frac{C-c}{C-E}\quad\text{if } c > E,\text{ else } 0
+
+    Parameters
+    ----------
+    count : ndarray (n,)
+        Count c inside each window [-].
+    expected : ndarray (n,)
+        Expected count E inside each window, 0 < E < C [-].
+    total : float
+        Count C of the whole map [-].
+
+    Returns
+    -------
+    ndarray (n,)
+        Log likelihood ratio [-].
+
+    References
+    ----------
+    Kulldorff, M. (1997). A spatial scan statistic. Communications in Statistics:
+    Theory and Methods 26, 1481-1496.
+    """
+    c, e = np.broadcast_arrays(
+        np.asarray(count, dtype=np.float64), np.asarray(expected, dtype=np.float64)
+    )
+    ratio = np.zeros(c.shape)
+    high = c > e
+    inside, outside = c[high], total - c[high]
+    ratio[high] = inside * np.log(inside / e[high])
+    rest = outside > 0
+    part = np.zeros(outside.shape)
+    part[rest] = outside[rest] * np.log(outside[rest] / (total - e[high][rest]))
+    ratio[high] += part
+    return ratio
+
+
+def hot_spots(
+    density: Density, seen: Tally, *, seed: int, replicas: int = REPLICAS
+) -> list[HotSpot]:
+    """Windows that hold more than their share, the strongest first, none overlapping.
+
+    The list ends with the first window that does not stand out, so that a reader sees
+    where the line was drawn; it is empty when nothing was counted.
+
+    Under the null hypothesis each event falls on a cell by its share of the exposure.
+    An event that touched several cells (hail) is thrown as one piece, so that one bad
+    day is not mistaken for a place.
+    """
+    counts = np.where(density.exposed, density.counts, 0)
+    total = int(counts.sum())
+    if total == 0:
+        return []
+    share = density.exposure / density.exposure.sum()
+    throws = random_maps(density, seen, seed=seed, replicas=replicas)
+    wraps = density.lattice.wraps
+    best = np.concatenate(
+        [best_ratios(chunk, share, wraps=wraps) for chunk in _chunks(throws)]
+    )
+    found: list[HotSpot] = []
+    taken = np.zeros(share.shape, dtype=bool)
+    for window, llr in _ranked(counts, share, wraps=wraps):
+        cells = window.cells(share.shape)
+        if (taken & cells).any():
+            continue
+        taken |= cells
+        p = (1 + int((best >= llr - 1e-9).sum())) / (replicas + 1)
+        expected = float(share[cells].sum()) * total
+        found.append(HotSpot(window, int(counts[cells].sum()), expected, llr, p))
+        if not found[-1].stands_out or len(found) == MOST_SHOWN:
+            break
+    return found
+
+
+def _chunks(maps: Counts) -> Iterator[Counts]:
+    for start in range(0, len(maps), _CHUNK):
+        yield maps[start : start + _CHUNK]
+
+
+def random_maps(density: Density, seen: Tally, *, seed: int, replicas: int) -> Counts:
+    """Maps under the null hypothesis, shape (replicas, frames, stringers)."""
+    generator = np.random.default_rng(seed)
+    shape = density.lattice.shape
+    exposed = density.exposed.ravel()
+    share = (density.exposure / density.exposure.sum()).ravel()
+    pieces = [cells[exposed[cells]] for cells in seen.events]
+    single = sum(len(cells) == 1 for cells in pieces)
+    maps = generator.multinomial(single, share, size=replicas).reshape(replicas, *shape)
+    for cells in pieces:
+        if len(cells) > 1:
+            _throw(maps, cells, density, share, generator)
+    return maps
+
+
+def _throw(
+    maps: Counts,
+    cells: NDArray[np.int64],
+    density: Density,
+    share: Floats,
+    generator: np.random.Generator,
+) -> None:
+    """Add one event's pattern to every map, moved to a cell drawn by exposure.
+
+    It keeps its shape: shifted back at the ends of the section, carried round a shell.
+    What falls on a cell without exposure is not seen there.
+    """
+    frames, stringers = density.lattice.shape
+    along, around = np.divmod(cells, stringers)
+    drawn = generator.choice(len(share), size=len(maps), p=share)
+    to_along, to_around = np.divmod(drawn, stringers)
+    step = np.clip(to_along - along[0], -along.min(), frames - 1 - along.max())
+    turn = to_around - around[0]
+    if not density.lattice.wraps:
+        turn = np.clip(turn, -around.min(), stringers - 1 - around.max())
+    new_along = along + step[:, None]
+    new_around = (around + turn[:, None]) % stringers
+    seen = density.exposed[new_along, new_around].astype(np.int64)
+    np.add.at(maps, (np.arange(len(maps))[:, None], new_along, new_around), seen)
+
+
+def _window_sums(
+    values: NDArray[Cell], *, wraps: bool
+) -> Iterator[tuple[int, int, NDArray[Cell]]]:
+    """Sums of ``values`` (..., frames, stringers) over every window, by window size.
+
+    Yields frames, stringers and the sums by first cell; all from one cumulative sum.
+    """
+    frames, stringers = values.shape[-2:]
+    if wraps:
+        values = np.concatenate([values, values[..., : LARGEST - 1]], axis=-1)
+    edges = [(0, 0)] * (values.ndim - 2) + [(1, 0), (1, 0)]
+    summed = np.pad(values.cumsum(axis=-2).cumsum(axis=-1), edges)
+    for high in range(1, min(LARGEST, frames) + 1):
+        band = summed[..., high:, :] - summed[..., :-high, :]
+        for wide in range(1, min(LARGEST, stringers) + 1):
+            starts = stringers if wraps else stringers - wide + 1
+            yield high, wide, band[..., wide : wide + starts] - band[..., :starts]
+
+
+def best_ratios(maps: Counts, share: Floats, *, wraps: bool) -> Floats:
+    """The highest scan ratio of each map (replicas, frames, stringers).
+
+    The ratio is rewritten as F(c) - c ln(s / (1 - s)) - C ln(1 - s) with s the window's
+    share and F(c) = c ln c + (C - c) ln(C - c) - C ln C from a table, so that no
+    logarithm is taken per map. A window with no share or the whole of it gives zero.
+    """
+    totals = maps.sum(axis=(1, 2))
+    starts, table = _ratio_table(totals)
+    best = np.zeros(len(maps))
+    all_counts = _window_sums(maps.astype(np.int32), wraps=wraps)
+    all_shares = _window_sums(share, wraps=wraps)
+    for (_, _, c), (_, _, s) in zip(all_counts, all_shares, strict=True):
+        some = np.where((s > 1e-12) & (s < 1 - 1e-12), s, 0.5)
+        odds = np.where(some == s, np.log(some / (1 - some)), 0.0)
+        rest = np.where(some == s, np.log1p(-some), 0.0)
+        ratio = np.take(table, c + starts)
+        ratio -= c * odds
+        ratio -= totals[:, None, None] * rest
+        ratio *= c > totals[:, None, None] * s
+        np.maximum(best, ratio.max(axis=(1, 2)), out=best)
+    return best
+
+
+def _ratio_table(totals: Counts) -> tuple[NDArray[np.int32], Floats]:
+    """F(c) for every total among the maps, and where each map's part begins."""
+    different, which = np.unique(totals, return_inverse=True)
+    parts = []
+    for total in different.tolist():
+        c = np.arange(total + 1)
+        parts.append(xlogy(c, c) + xlogy(total - c, total - c) - xlogy(total, total))
+    starts = np.concatenate([[0], np.cumsum([len(part) for part in parts])[:-1]])
+    return starts[which].astype(np.int32)[:, None, None], np.concatenate(parts)
+
+
+def _ranked(
+    counts: Counts, share: Floats, *, wraps: bool
+) -> Iterator[tuple[Window, float]]:
+    """Windows of the observed map that exceed their share, the strongest first."""
+    total = int(counts.sum())
+    windows: list[Window] = []
+    ratios: list[float] = []
+    all_counts = _window_sums(counts, wraps=wraps)
+    all_shares = _window_sums(share, wraps=wraps)
+    for (high, wide, c), (_, _, s) in zip(all_counts, all_shares, strict=True):
+        usable = (s > 1e-12) & (s < 1 - 1e-12)
+        ratio = np.zeros(c.shape)
+        ratio[usable] = scan_ratio(
+            c[usable].astype(np.float64), total * s[usable], total
+        )
+        for along, around in np.argwhere(ratio > 0).tolist():
+            windows.append(Window(along, around, high, wide))
+            ratios.append(float(ratio[along, around]))
+    order = np.argsort(-np.array(ratios), kind="stable")
+    for index in order.tolist():
+        yield windows[index], ratios[index]
