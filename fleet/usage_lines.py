@@ -55,7 +55,7 @@ class UsageLine:
     flight: int = 0
     landings: int | None = None
     pressurisations: int | None = None
-    without_minutes: int = 0
+    cycles_without_minutes: int = 0
     total_minutes: int | None = None
     total_cycles: int | None = None
     where: str = ""
@@ -93,7 +93,7 @@ def _day_line(day: date, legs: list[Leg]) -> UsageLine:
     timed = [minutes for minutes in flown if minutes is not None]
     missing = len(flown) - len(timed)
     minutes = sum(timed) if timed or not flown else None
-    return UsageLine(day, len(flown), minutes, without_minutes=missing)
+    return UsageLine(day, len(flown), minutes, cycles_without_minutes=missing)
 
 
 def lines_read(text: str) -> list[UsageLine]:
@@ -179,7 +179,7 @@ def _line(raw: dict[str, str], number: int, problems: list[str]) -> UsageLine:
         flight=cells.count("flight") or 0,
         landings=cells.count("landings"),
         pressurisations=cells.count("pressurisations"),
-        without_minutes=without,
+        cycles_without_minutes=without,
         total_minutes=cells.hours("total_hours"),
         total_cycles=cells.count("total_cycles"),
         where=f"Line {number}: ",

@@ -25,7 +25,7 @@ def test_a_table_with_hours_known_unknown_and_no_flight():
     )
     assert lines == [
         UsageLine(DAY, 5, 271, where="Line 2: "),
-        UsageLine(NEXT, 2, None, landings=3, without_minutes=2, where="Line 3: "),
+        UsageLine(NEXT, 2, None, landings=3, cycles_without_minutes=2, where="Line 3: "),
         UsageLine(date(2025, 1, 1), 0, 0, landings=0, where="Line 4: "),
     ]
 
@@ -66,12 +66,12 @@ def test_a_table_without_its_columns_is_refused(text, says):
 
 def test_a_departed_leg_counts_also_when_its_hours_are_unknown():
     legs = [Leg(DAY, True, 61), Leg(DAY, True, None), Leg(DAY, False, None)]
-    assert lines_from_legs(legs) == [UsageLine(DAY, 2, 61, without_minutes=1)]
+    assert lines_from_legs(legs) == [UsageLine(DAY, 2, 61, cycles_without_minutes=1)]
 
 
 def test_a_day_of_only_untimed_legs_has_unknown_hours():
     assert lines_from_legs([Leg(DAY, True, None)]) == [
-        UsageLine(DAY, 1, None, without_minutes=1)
+        UsageLine(DAY, 1, None, cycles_without_minutes=1)
     ]
 
 
