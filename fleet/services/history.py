@@ -1,0 +1,214 @@
+"""Every write goes through `Writing`: the rows, and the entry that tells of them.
+
+    with Writing(actor=user, action="finding_record", at=now, stream=...) as w:
+        w.create(row)
+        w.change(other, state="closed")
+
+Leaving the block locks the end of the chain, appends one entry with its items and
+commits all of it together, or nothing.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Sequence
+from contextvars import ContextVar
+from types import TracebackType
+from typing import Any, Self, TypeVar
+
+from django.db import IntegrityError, models, transaction
+
+from fleet.canonical import canonical, plain
+from fleet.cleaning import clean_row, refusal
+from fleet.digests import (
+    append_only,
+    entry_digest,
+    items_digest,
+    row_digest,
+    run_digest,
+)
+from fleet.models import HistoryEntry, HistoryHead, HistoryItem, Operator, User
+
+Row = TypeVar("Row", bound=models.Model)
+
+PROGRAM = "Framebay"
+NESTED = "A service called another inside its own writing; pass the writing on instead."
+NOT_MANY = "Rows of {table} may change later, so they are written one by one."
+NOT_CHANGED = "Rows of {table} are never changed; write a new one that replaces it."
+SECRET = frozenset({"password"})
+
+_open: ContextVar[bool] = ContextVar("writing_open", default=False)
+
+
+class Writing:
+    """One service call: one transaction, one history entry.
+
+    `stream` names whose history it is: "aircraft:17", or "fleet" for what belongs to
+    no aircraft. Raises ValidationError when a constraint refuses a row.
+    """
+
+    def __init__(
+        self,
+        *,
+        actor: User | None,
+        action: str,
+        at: dt.datetime,
+        stream: str = "fleet",
+        operator: Operator | None = None,
+        reason: str = "",
+        origin: str = "",
+    ) -> None:
+        self.actor, self.action, self.at = actor, action, at
+        self.stream, self.operator = stream, operator
+        self.reason, self.origin = reason, origin
+        self.items: list[HistoryItem] = []
+
+    def __enter__(self) -> Self:
+        if _open.get():
+            raise RuntimeError(NESTED)
+        self._token = _open.set(True)
+        self._atomic = transaction.atomic()
+        self._atomic.__enter__()
+        return self
+
+    def __exit__(
+        self,
+        kind: type[BaseException] | None,
+        error: BaseException | None,
+        trace: TracebackType | None,
+    ) -> None:
+        _open.reset(self._token)
+        try:
+            if error is None and self.items:
+                self._append()
+        except BaseException as late:
+            self._atomic.__exit__(type(late), late, late.__traceback__)
+            raise
+        self._atomic.__exit__(kind, error, trace)
+        if isinstance(error, IntegrityError):
+            raise refusal(error) from error
+
+    def create(self, row: Row) -> Row:
+        """Check and insert one row."""
+        self._stamp(row)
+        clean_row(row)
+        row.save(force_insert=True)
+        self._note("created", row, {})
+        return row
+
+    def create_many(self, rows: Sequence[Row]) -> list[Row]:
+        """Insert many rows of a table whose rows never change; one item a run of keys."""
+        if not rows:
+            return []
+        table = rows[0]._meta.db_table
+        if not append_only(type(rows[0])):
+            raise RuntimeError(NOT_MANY.format(table=table))
+        for row in rows:
+            self._stamp(row)
+            clean_row(row)
+        written = type(rows[0])._default_manager.bulk_create(rows, batch_size=2_000)
+        for run in _runs(written):
+            self._add(
+                "created_range", table, run[0].pk, run[-1].pk, run_digest(run), {}
+            )
+        return written
+
+    def change(self, row: models.Model, **columns: Any) -> None:
+        """Set columns (by column name: `closed_by_id`) and record from and to."""
+        table = row._meta.db_table
+        if append_only(type(row)):
+            raise RuntimeError(NOT_CHANGED.format(table=table))
+        changes = {}
+        for name, value in columns.items():
+            before = getattr(row, name)
+            if before != value:
+                setattr(row, name, value)
+                changes[name] = [before, value]
+        if not changes:
+            return
+        clean_row(row)
+        row.save(update_fields=[_field_name(row, name) for name in changes])
+        self._note(
+            "changed",
+            row,
+            {
+                name: ["secret", "secret"] if name in SECRET else [plain(a), plain(b)]
+                for name, (a, b) in changes.items()
+            },
+        )
+
+    def locked(self, rows: models.QuerySet[Row], **key: Any) -> Row:
+        """The row, fresh and held until the end of the writing."""
+        return rows.select_for_update().get(**key)
+
+    def _stamp(self, row: models.Model) -> None:
+        """Rows that say who entered them, and when, say what the entry says."""
+        if hasattr(row, "entered_at") and row.entered_at is None:
+            row.entered_at = self.at
+            row.entered_by = self.actor  # type: ignore[attr-defined]
+
+    def _note(self, kind: str, row: models.Model, changes: dict[str, Any]) -> None:
+        self._add(kind, row._meta.db_table, row.pk, row.pk, row_digest(row), changes)
+
+    def _add(
+        self, kind: str, table: str, first: int, last: int, of_row: str, changes: Any
+    ) -> None:
+        self.items.append(
+            HistoryItem(
+                number=len(self.items) + 1,
+                kind=kind,
+                table=table,
+                first_pk=first,
+                last_pk=last,
+                row_digest=of_row,
+                changes=canonical(changes),
+            )
+        )
+
+    def _append(self) -> None:
+        head = HistoryHead.objects.select_for_update().get(pk=1)
+        before = (
+            HistoryEntry.objects.filter(stream=self.stream)
+            .order_by("-stream_sequence")
+            .first()
+        )
+        entry = HistoryEntry(
+            sequence=head.sequence + 1,
+            previous_digest=head.digest,
+            stream=self.stream,
+            stream_sequence=before.stream_sequence + 1 if before else 1,
+            stream_previous_digest=before.digest if before else "",
+            operator=self.operator,
+            actor=self.actor,
+            actor_name=str(self.actor) if self.actor else PROGRAM,
+            at=self.at,
+            action=self.action,
+            reason=self.reason,
+            origin=self.origin,
+            items_digest=items_digest(self.items),
+        )
+        entry.digest = entry_digest(entry)
+        entry.save(force_insert=True)
+        for item in self.items:
+            item.entry = entry
+        HistoryItem.objects.bulk_create(self.items, batch_size=2_000)
+        head.sequence, head.digest = entry.sequence, entry.digest
+        head.save(update_fields=["sequence", "digest"])
+
+
+def _runs(rows: list[Row]) -> list[list[Row]]:
+    """Rows grouped into unbroken runs of keys, so a range names no row of another."""
+    runs: list[list[Row]] = []
+    for row in rows:
+        if runs and row.pk == runs[-1][-1].pk + 1:
+            runs[-1].append(row)
+        else:
+            runs.append([row])
+    return runs
+
+
+def _field_name(row: models.Model, column: str) -> str:
+    for field in row._meta.concrete_fields:
+        if column in (field.name, field.attname):
+            return field.name
+    raise AttributeError(f"{row._meta.label} has no column {column}.")
