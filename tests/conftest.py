@@ -1,5 +1,21 @@
-"""Fixtures that every test may ask for."""
+"""Shared fixtures: nothing here reads the clock or the network."""
 
-from tests.open_data import open_data_wheel
+from __future__ import annotations
 
-__all__ = ["open_data_wheel"]
+import datetime as dt
+
+import pytest
+
+NOW = dt.datetime(2025, 1, 1, 9, 0, tzinfo=dt.UTC)
+
+
+@pytest.fixture(autouse=True)
+def _quick_and_contained(tmp_path, settings):
+    """Passwords hash fast, attachments stay in the test's own folder."""
+    settings.PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
+    settings.ATTACHMENTS = tmp_path / "attachments"
+
+
+@pytest.fixture
+def now() -> dt.datetime:
+    return NOW

@@ -1,0 +1,102 @@
+"""Digests that bind a row, an entry and its items to what they say."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+from django.apps import apps
+from django.conf import settings
+from django.db import models
+
+from fleet.canonical import canonical, digest, plain
+from fleet.models import HistoryEntry, HistoryItem
+
+# The history cannot record itself; a record number is checked by its uniqueness.
+NOT_RECORDED = frozenset(
+    {
+        "fleet_historyhead",
+        "fleet_historyentry",
+        "fleet_historyitem",
+        "fleet_historyseal",
+        "fleet_recordnumber",
+    }
+)
+# The framework writes it at sign-in, outside any service.
+NOT_DIGESTED = frozenset({"last_login"})
+
+
+def append_only(model: type[models.Model]) -> bool:
+    """Whether the database refuses to change rows of this table."""
+    return getattr(model, "append_only", False)
+
+
+def recorded_models() -> list[type[models.Model]]:
+    """Every table whose rows the history must explain."""
+    return [
+        model
+        for app in settings.RECORDED_APPS
+        for model in apps.get_app_config(app).get_models()
+        if model._meta.db_table not in NOT_RECORDED
+    ]
+
+
+def row_digest(row: models.Model) -> str:
+    """SHA-256 over all columns in name order, as the database gives them back."""
+    columns = sorted(row._meta.concrete_fields, key=lambda field: field.attname)
+    return digest(
+        canonical(
+            [
+                [field.attname, plain(field.to_python(getattr(row, field.attname)))]
+                for field in columns
+                if field.attname not in NOT_DIGESTED
+            ]
+        )
+    )
+
+
+def run_digest(rows: Iterable[models.Model]) -> str:
+    """One digest over a run of rows."""
+    return digest("".join(row_digest(row) for row in rows))
+
+
+def items_digest(items: Iterable[HistoryItem]) -> str:
+    """Over everything the items say, in their order."""
+    return digest(
+        canonical(
+            [
+                [
+                    i.number,
+                    i.kind,
+                    i.table,
+                    i.first_pk,
+                    i.last_pk,
+                    i.row_digest,
+                    i.changes,
+                ]
+                for i in items
+            ]
+        )
+    )
+
+
+def entry_digest(entry: HistoryEntry) -> str:
+    """Over every column of the entry but the digest itself."""
+    return digest(
+        canonical(
+            [
+                entry.sequence,
+                entry.previous_digest,
+                entry.stream,
+                entry.stream_sequence,
+                entry.stream_previous_digest,
+                entry.operator_id,
+                entry.actor_id,
+                entry.actor_name,
+                plain(entry.at),
+                entry.action,
+                entry.reason,
+                entry.origin,
+                entry.items_digest,
+            ]
+        )
+    )

@@ -1,0 +1,175 @@
+"""All settings, for every way of running; what differs comes from the environment.
+
+| variable | meaning | when absent |
+|---|---|---|
+| FRAMEBAY_DATA | folder of the SQLite file, attachments and the secret key | `data/` |
+| DATABASE_URL | the database, as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
+| FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
+| FRAMEBAY_HOSTS | host names served, comma between | this machine only |
+| FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
+| FRAMEBAY_DEBUG | 1 shows tracebacks in the browser | 0 |
+| FRAMEBAY_TODAY | the date taken as today, for demonstrations | the clock |
+"""
+
+from __future__ import annotations
+
+import os
+import secrets
+from pathlib import Path
+
+import dj_database_url
+from csp.constants import NONE, SELF
+from django.core.exceptions import ImproperlyConfigured
+
+BASE_DIR = Path(__file__).resolve().parents[2]
+FIXTURES = BASE_DIR / "fixtures"
+
+
+def env_flag(name: str) -> bool:
+    value = os.environ.get(name, "0")
+    if value not in {"0", "1"}:
+        raise ImproperlyConfigured(f"{name} is {value!r}; write 1 for yes or 0 for no.")
+    return value == "1"
+
+
+DATA_DIR = Path(os.environ.get("FRAMEBAY_DATA", BASE_DIR / "data")).resolve()
+DATA_DIR.mkdir(parents=True, exist_ok=True)
+ATTACHMENTS = DATA_DIR / "attachments"
+
+
+def secret_key() -> str:
+    """The key from the environment, or one made at first use and kept private."""
+    if key := os.environ.get("FRAMEBAY_SECRET_KEY"):
+        return key
+    kept = DATA_DIR / "secret_key"
+    try:
+        handle = os.open(kept, os.O_WRONLY | os.O_CREAT | os.O_EXCL, 0o600)
+    except FileExistsError:
+        return kept.read_text()
+    with os.fdopen(handle, "w") as file:
+        file.write(secrets.token_urlsafe(50))
+    return kept.read_text()
+
+
+SECRET_KEY = secret_key()
+DEBUG = env_flag("FRAMEBAY_DEBUG")
+HTTPS = env_flag("FRAMEBAY_HTTPS")
+ALLOWED_HOSTS = os.environ.get("FRAMEBAY_HOSTS", "127.0.0.1,localhost,[::1]").split(",")
+FRAMEBAY_TODAY = os.environ.get("FRAMEBAY_TODAY", "")
+
+INSTALLED_APPS = [
+    "django.contrib.auth",
+    "django.contrib.contenttypes",
+    "django.contrib.sessions",
+    "django.contrib.messages",
+    "django.contrib.staticfiles",
+    "csp",
+    "django_filters",
+    "fleet",
+    "repairs",
+    "reports",
+]
+RECORDED_APPS = ["fleet", "repairs"]  # whose rows the history must explain
+MIDDLEWARE = [
+    "django.middleware.security.SecurityMiddleware",
+    "whitenoise.middleware.WhiteNoiseMiddleware",
+    "csp.middleware.CSPMiddleware",
+    "django.contrib.sessions.middleware.SessionMiddleware",
+    "django.middleware.common.CommonMiddleware",
+    "django.middleware.csrf.CsrfViewMiddleware",
+    "django.contrib.auth.middleware.AuthenticationMiddleware",
+    "django.contrib.auth.middleware.LoginRequiredMiddleware",
+    "django.contrib.messages.middleware.MessageMiddleware",
+    "django.middleware.clickjacking.XFrameOptionsMiddleware",
+]
+ROOT_URLCONF = "fleet.site.urls"
+WSGI_APPLICATION = "fleet.site.wsgi.application"
+TEMPLATES = [
+    {
+        "BACKEND": "django.template.backends.django.DjangoTemplates",
+        "APP_DIRS": True,
+        "OPTIONS": {
+            "context_processors": [
+                "django.template.context_processors.request",
+                "django.contrib.auth.context_processors.auth",
+                "django.contrib.messages.context_processors.messages",
+                "fleet.views.context.page",
+            ],
+            "builtins": ["fleet.templatetags.quantities"],
+        },
+    }
+]
+
+# SQLite takes its write lock when a transaction begins, so that two writers queue
+# and neither sees "database is locked" half-way.
+SQLITE_OPTIONS = {
+    "transaction_mode": "IMMEDIATE",
+    "timeout": 20,
+    "init_command": (
+        "PRAGMA journal_mode=WAL; PRAGMA synchronous=NORMAL; PRAGMA foreign_keys=ON; "
+        "PRAGMA cache_size=-64000; PRAGMA temp_store=MEMORY;"
+    ),
+}
+DATABASES = {
+    "default": dj_database_url.config(
+        default=f"sqlite:///{DATA_DIR / 'framebay.sqlite3'}", conn_max_age=60
+    )
+}
+if DATABASES["default"]["ENGINE"].endswith("sqlite3"):
+    DATABASES["default"]["OPTIONS"] = SQLITE_OPTIONS  # type: ignore[typeddict-unknown-key]
+DEFAULT_AUTO_FIELD = "django.db.models.BigAutoField"
+
+AUTH_USER_MODEL = "fleet.User"
+PASSWORD_HASHERS = ["django.contrib.auth.hashers.Argon2PasswordHasher"]
+AUTH_PASSWORD_VALIDATORS = [
+    {"NAME": f"django.contrib.auth.password_validation.{name}"}
+    for name in (
+        "UserAttributeSimilarityValidator",
+        "MinimumLengthValidator",
+        "CommonPasswordValidator",
+        "NumericPasswordValidator",
+    )
+]
+LOGIN_URL = "sign_in"
+LOGIN_REDIRECT_URL = "overview"
+LOGOUT_REDIRECT_URL = "sign_in"
+
+LANGUAGE_CODE = "en-gb"
+TIME_ZONE = "UTC"
+USE_TZ = True
+USE_I18N = True
+
+STATIC_URL = "/static/"
+WHITENOISE_USE_FINDERS = True  # static files need no collecting step
+DATA_UPLOAD_MAX_MEMORY_SIZE = 25 * 1024 * 1024
+FILE_UPLOAD_MAX_MEMORY_SIZE = 5 * 1024 * 1024
+
+CONTENT_SECURITY_POLICY = {
+    "DIRECTIVES": {
+        "default-src": [NONE],
+        "script-src": [SELF],
+        "style-src": [SELF],
+        "img-src": [SELF],
+        "font-src": [SELF],
+        "connect-src": [SELF],
+        "form-action": [SELF],
+        "base-uri": [NONE],
+        "frame-ancestors": [NONE],
+    }
+}
+X_FRAME_OPTIONS = "DENY"
+SECURE_REFERRER_POLICY = "same-origin"
+SESSION_COOKIE_HTTPONLY = True
+SESSION_COOKIE_AGE = 12 * 60 * 60
+SESSION_COOKIE_SECURE = CSRF_COOKIE_SECURE = HTTPS
+SECURE_SSL_REDIRECT = HTTPS
+SECURE_HSTS_SECONDS = 31_536_000 if HTTPS else 0
+SECURE_HSTS_INCLUDE_SUBDOMAINS = SECURE_HSTS_PRELOAD = HTTPS
+
+LOGGING = {
+    "version": 1,
+    "disable_existing_loggers": False,
+    "formatters": {"line": {"format": "{asctime} {levelname} {name} {message}", "style": "{"}},
+    "handlers": {"console": {"class": "logging.StreamHandler", "formatter": "line"}},
+    "root": {"handlers": ["console"], "level": "WARNING"},
+}

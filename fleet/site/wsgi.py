@@ -1,0 +1,10 @@
+"""Entry point for a production web server."""
+
+from __future__ import annotations
+
+import os
+
+from django.core.wsgi import get_wsgi_application
+
+os.environ.setdefault("DJANGO_SETTINGS_MODULE", "fleet.site.settings")
+application = get_wsgi_application()
