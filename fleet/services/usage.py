@@ -16,8 +16,8 @@ FUTURE = (
     "{where}{day} lies after today, {today}; usage is recorded when it has been flown."
 )
 BEFORE = (
-    "{where}{day} lies before {first}, the first day recorded here for {mark}; what was "
-    "flown earlier is in its opening counters."
+    "{where}{day} lies before {first}, the first day recorded here for {mark}; what "
+    "was flown earlier is in its opening counters."
 )
 AFTER = "{where}{day} lies after {last}, the day {mark} left."
 NEGATIVE = "{where}{column} {value} on {day} is negative; write a number from 0."
@@ -31,8 +31,8 @@ TOO_MANY_UNTIMED = (
     "correct one of the two."
 )
 HOURS_NOT_GIVEN = (
-    "{where}the hours of {day} are not given, so all {cycles} flights are without hours, "
-    "not {untimed}."
+    "{where}the hours of {day} are not given, so all {cycles} flights are without "
+    "hours, not {untimed}."
 )
 FEWER_LANDINGS = (
     "{where}{landings} landings for {cycles} flights on {day}; every flight has one, "
@@ -43,14 +43,17 @@ RECORDED = (
     "{where}{what} is already recorded with {cycles} FC and {hours} FH; to change it, "
     "correct that row."
 )
-GRAINS = "{where}{day} already has {has}; a day is recorded as a whole or by flights, not both."
+GRAINS = (
+    "{where}{day} already has {has}; a day is recorded as a whole or by flights, "
+    "not both."
+)
 BACKWARDS = (
-    "{where}the log's total of {read} after {day} is below {before}, the total before it: "
-    "the counter would run backwards. Check the total and the lines before it."
+    "{where}the log's total of {read} after {day} is below {before}, the total before "
+    "it: the counter would run backwards. Check the total and the lines before it."
 )
 DISAGREES = (
-    "{where}the log's total of {read} after {day} does not agree with {derived}, the sum "
-    "of the records. Find the missing or doubled flight, or leave the total out."
+    "{where}the log's total of {read} after {day} does not agree with {derived}, the "
+    "sum of the records. Find the missing or doubled flight, or leave the total out."
 )
 NOT_CURRENT = "This row was corrected before; correct the row that replaced it."
 NO_SOURCE = "Name the source of the usage, such as the technical log and its pages."
@@ -67,7 +70,7 @@ HIGHEST = {
 
 
 class UsageRefused(ValueError):
-    """Lines that do not fit the aircraft's records; `problems` has one sentence each."""
+    """Lines that do not fit the records; `problems` has one sentence each."""
 
     def __init__(self, problems: Sequence[str]) -> None:
         super().__init__("\n".join(problems))
@@ -316,7 +319,8 @@ def _compared(
     problems = []
     for item in flown:
         amount = getattr(item, column)
-        if total is None or amount is None:
+        untimed = column == "minutes" and item.cycles_without_minutes
+        if total is None or amount is None or untimed:
             return problems
         before, total = total, total + amount
         stated = getattr(item, f"total_{column}", None)

@@ -1,0 +1,186 @@
+"""Open and close due points: every "not later than" of an aircraft or a serial.
+
+A due point is inserted, closed once and never moved. Services that make a deferral, a
+repair or a requirement call these helpers inside their own history entry.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from datetime import date
+from typing import Any
+
+from fleet.due import Anchor, Base, Combine, Counter, Counters, Due, Limit
+from fleet.intervals import due_from
+from fleet.services.history import Writing
+from repairs.models import (
+    Accomplishment,
+    Disposition,
+    DueKind,
+    DuePoint,
+    Event,
+    Repair,
+    RequirementSubject,
+)
+
+Origin = RequirementSubject | Disposition | Repair | Event
+
+ORIGIN_COLUMN: Mapping[type[Any], str] = {
+    RequirementSubject: "subject",
+    Disposition: "disposition",
+    Repair: "repair",
+    Event: "event",
+}
+NO_LIMIT = "no {what} is recorded for {number}"
+
+
+def due_point_open(
+    w: Writing,
+    *,
+    origin: Origin,
+    kind: DueKind,
+    due: Due,
+    opened_on: date,
+    basis: str,
+    group: int = 1,
+    after: Accomplishment | None = None,
+    replaces: DuePoint | None = None,
+) -> DuePoint:
+    """Insert one due point. It is on the aircraft of its origin, or on the serial when
+    a requirement travels with that serial."""
+    point = DuePoint(
+        aircraft=origin.aircraft,
+        part=getattr(origin, "part", None),
+        kind=kind,
+        group=group,
+        combine=due.combine.value,
+        due_minutes=due.at.minutes,
+        due_cycles=due.at.cycles,
+        due_landings=due.at.landings,
+        due_pressurisations=due.at.pressurisations,
+        due_on=due.on,
+        cannot_compute=due.cannot_compute,
+        after=after,
+        replaces=replaces,
+        basis=basis,
+        opened_on=opened_on,
+    )
+    setattr(point, ORIGIN_COLUMN[type(origin)], origin)
+    w.create(point)
+    return point
+
+
+def due_point_close(
+    w: Writing,
+    point: DuePoint,
+    *,
+    on: date,
+    reason: str,
+    by: Accomplishment | None = None,
+) -> None:
+    w.change(
+        point,
+        closed_on=on,
+        closed_reason=reason,
+        closed_by_id=by.pk if by else None,
+    )
+
+
+def due_points_close(
+    w: Writing,
+    *,
+    origin: Origin,
+    on: date,
+    reason: str,
+    by: Accomplishment | None = None,
+    kinds: tuple[DueKind, ...] = (),
+) -> list[DuePoint]:
+    """Close what is open of one origin (of some kinds only, if any are named)."""
+    column = ORIGIN_COLUMN[type(origin)]
+    points = DuePoint.objects.filter(**{column: origin}, closed_on__isnull=True)
+    if kinds:
+        points = points.filter(kind__in=kinds)
+    closed = list(points)
+    for point in closed:
+        due_point_close(w, point, on=on, reason=reason, by=by)
+    return closed
+
+
+def deferral_due_open(
+    w: Writing, *, disposition: Disposition, extends: DuePoint | None = None
+) -> DuePoint:
+    """The limit of a deferral, with its original date in words."""
+    due = Due(
+        Counters(
+            disposition.limit_minutes,
+            disposition.limit_cycles,
+            disposition.limit_landings,
+        ),
+        disposition.limit_on,
+    )
+    return due_point_open(
+        w,
+        origin=disposition,
+        kind=DueKind.DEFERRAL,
+        due=due,
+        opened_on=disposition.decided_on,
+        basis=f"deferred by {disposition.number}; found {disposition.found_on}",
+        replaces=extends,
+    )
+
+
+def replacement_due_open(w: Writing, *, repair: Repair, opened_on: date) -> DuePoint:
+    """The replacement limit of a category C repair; without one it counts as due."""
+    due = Due(
+        Counters(repair.replacement_limit_minutes, repair.replacement_limit_cycles),
+        repair.replacement_limit_on,
+    )
+    if due == Due():
+        missing = NO_LIMIT.format(what="replacement limit", number=repair.number)
+        due = Due(cannot_compute=missing)
+    return due_point_open(
+        w,
+        origin=repair,
+        kind=DueKind.REPLACE,
+        due=due,
+        opened_on=opened_on,
+        basis="category C, time-limited: replace by this limit",
+    )
+
+
+def stage_clock_open(
+    w: Writing, *, repair: Repair, stage: int, months: int, source: str
+) -> DuePoint:
+    """The clock of the next approval stage: the policy's months from release, or before
+    the temporary limit that stage 1 approved, counted in the aircraft's cycles."""
+    temporary = repair.temporary_limit_cycles
+    if temporary is not None:
+        due = Due(Counters(cycles=temporary))
+        basis = f"stage {stage} before the approved temporary limit of {temporary:,} FC"
+    else:
+        release = {Base.RELEASE: Anchor(on=repair.released_on)}
+        due = due_from([Limit(Counter.MONTHS, months, Base.RELEASE)], release)
+        basis = f"stage {stage} within {months} months of release ({source})"
+    return due_point_open(
+        w,
+        origin=repair,
+        kind=DueKind.STAGE_CLOCK,
+        due=due,
+        opened_on=repair.released_on or repair.entered_at.date(),
+        basis=basis,
+    )
+
+
+def due_of(point: DuePoint) -> Due:
+    """A stored due point as the value that `fleet.due` compares."""
+    return Due(
+        Counters(
+            point.due_minutes,
+            point.due_cycles,
+            point.due_landings,
+            point.due_pressurisations,
+        ),
+        point.due_on,
+        Combine(point.combine),
+        point.cannot_compute,
+    )
