@@ -44,7 +44,7 @@ class AmountError(ValueError):
 
 
 def amount_read(text: str) -> tuple[Counter, int]:
-    """The counter and the whole number of "250 FC"; hours become minutes, years months."""
+    """The counter and the number of "250 FC"; hours become minutes, years months."""
     found = re.fullmatch(r"([\d.,:]+)\s*([a-z ]+?)\.?", text.strip().lower())
     unit = found and _UNITS.get(found[2].strip())
     if not found or not unit:
@@ -62,7 +62,7 @@ def amount_read(text: str) -> tuple[Counter, int]:
 
 
 def _thousands(number: str) -> str:
-    """Commas between groups of three are taken out; elsewhere they stay and are refused."""
+    """Commas between groups of three go; elsewhere they stay and are refused."""
     whole, colon, minutes = number.partition(":")
     if re.fullmatch(r"\d{1,3}(,\d{3})+", whole):
         whole = whole.replace(",", "")

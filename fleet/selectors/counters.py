@@ -131,7 +131,7 @@ def _totals(usage: QuerySet[UsageRecord]) -> dict[int, dict[str, Any]]:
             days=Count("day", distinct=True),
         )
     )
-    return {row["aircraft_id"]: row for row in rows}
+    return {row["aircraft_id"]: dict(row) for row in rows}
 
 
 def _current_to(
@@ -206,7 +206,7 @@ def _window_sums(
         .values("aircraft_id")
         .annotate(**columns)
     )
-    return {row["aircraft_id"]: row for row in rows}
+    return {row["aircraft_id"]: dict(row) for row in rows}
 
 
 def _standing(
@@ -252,9 +252,10 @@ def _counters(
     def flown(counter: Counter) -> int:
         return int(total.get(f"sum_{counter.value}", 0))
 
-    minutes: int | None = aircraft.opening_minutes + flown(Counter.MINUTES)
+    known: int = aircraft.opening_minutes + flown(Counter.MINUTES)
+    minutes: int | None = known
     if without:
-        minutes = None if longest is None else minutes + without * longest
+        minutes = None if longest is None else known + without * longest
     pressurisations = None
     if aircraft.opening_pressurisations is not None and not total.get("untracked"):
         pressurisations = aircraft.opening_pressurisations + flown(
@@ -271,7 +272,7 @@ def _counters(
 def _state_on(spans: list[AircraftSpan], day: date) -> str:
     for span in spans:
         if span.from_on <= day and (span.to_on is None or day <= span.to_on):
-            return span.state
+            return str(span.state)
     return AircraftState.IN_SERVICE.value
 
 

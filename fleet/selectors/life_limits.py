@@ -102,6 +102,7 @@ def life_lines(facts: PartFacts) -> tuple[tuple[LimitLine, ...], Due]:
         elif line.ends_at is not None:
             end, name = max(line.ends_at, 0), line.counter.value
             ends[name] = min(ends.get(name, end), end)
+    at, on = Counters(**ends), min(days, default=None)
     return tuple(lines), Due(at, on, cannot_compute="; ".join(problems))
 
 

@@ -316,7 +316,7 @@ def _compared(
     total: int | None,
     write: Callable[[int], str],
 ) -> list[str]:
-    problems = []
+    problems: list[str] = []
     for item in flown:
         amount = getattr(item, column)
         untimed = column == "minutes" and item.cycles_without_minutes
