@@ -154,7 +154,7 @@ def length_read(text: str, *, unit: str | None = None) -> float:
     return measure_read(text, "length", unit=unit)
 
 
-def canonical(value: float | int | str, unit: str) -> float:
+def canonical(value: float | str, unit: str) -> float:
     """A number in `unit` as canonical units, by the exact factor."""
     for factors in FACTORS.values():
         if unit in factors:

@@ -57,6 +57,7 @@ def _type(top: Table) -> TypeGeometry:
     head = top.table("type") or Table({}, "type", [])
     code, name = head.text("code"), head.text("name")
     unit = head.choice("unit", ("in", "mm"))
+    ceiling = head.whole("ceiling_ft", optional=True, least=1)
     source = head.text("source")
     head.done()
     variants = _variants(top)
@@ -74,6 +75,7 @@ def _type(top: Table) -> TypeGeometry:
         code=code,
         name=name,
         unit=unit,
+        ceiling_ft=ceiling,
         source=source,
         variants=variants,
         sections=tuple(sections),
@@ -121,6 +123,7 @@ def _materials(top: Table) -> dict[str, PanelMaterial]:
             temper=t.text("temper", optional=True),
             form=t.text("form"),
             clad=t.flag("clad"),
+            in_materials=t.flag("in_materials", default=True),
             clad_mm_per_side=t.measure_or_none("clad_per_side", least=0.0),
         )
         if t.done():
@@ -259,13 +262,14 @@ def _detectable(top: Table) -> tuple[DetectableSize, ...]:
     for t in top.tables("detectable_sizes", "method"):
         size = DetectableSize(
             method=t.text("method"),
-            title=t.text("title"),
+            detail=t.text("detail"),
             size_mm=t.measure("size", above=0.0),
+            hidden_mm=t.measure("hidden", least=0.0),
             source=t.text("source"),
         )
         if t.done():
             found.append(size)
-    _unique(top, "detectable size", [d.method for d in found])
+    _unique(top, "detectable size", [f"{d.method}, {d.detail}" for d in found])
     return tuple(found)
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import math
 import re
 from collections.abc import Iterable
@@ -27,7 +28,7 @@ from fleet.units import FACTORS, canonical, number_write
 CRITICALITIES = ("principal", "fatigue_critical", "secondary", "unknown")
 SKINS = ("outer", "upper lower", "left right")
 PLANE_KINDS = ("floor", "seat_track", "keel_beam", "bulkhead", "spar")
-CUTOUT_KINDS = ("door", "cargo_door", "window", "hatch", "access_panel")
+CUTOUT_KINDS = ("door", "cargo_door", "window", "hatch", "access")
 
 
 class SectionFile:
@@ -97,7 +98,7 @@ class SectionFile:
             return ((start, reference), (end, reference))
         unit = key.removeprefix("profile_")
         points = [(canonical(a, unit), canonical(b, unit)) for a, b in rows]
-        if any(b[0] <= a[0] for a, b in zip(points, points[1:], strict=False)):
+        if any(b[0] <= a[0] for a, b in itertools.pairwise(points)):
             t.wrong(f"“{key}”: the stations must rise from pair to pair.")
         if any(size <= 0.0 for _, size in points):
             t.wrong(f"“{key}”: each radius or chord must be more than 0.")
@@ -351,7 +352,7 @@ class SectionFile:
             grid.wrong("“stations” must list two edges or more.")
             return found
         for row in grid.tables("rows"):
-            for number, (a, b) in enumerate(zip(edges, edges[1:], strict=False)):
+            for number, (a, b) in enumerate(itertools.pairwise(edges)):
                 data = {
                     key: value[number]
                     if key.startswith(("bending_", "thickness_", "clad_mm"))
@@ -417,7 +418,7 @@ class SectionFile:
             return []
         row = self.section.frames[ends[0].ordinal - 1 : ends[1].ordinal]
         found = []
-        for ahead, behind in zip(row, row[1:], strict=False):
+        for ahead, behind in itertools.pairwise(row):
             middle = (ahead.map_mm + behind.map_mm) / 2.0
             box = Box(middle - width / 2.0, middle + width / 2.0, s1, s2)
             name = f"{label} {ahead.label}-{behind.label}"
@@ -469,7 +470,7 @@ def panel_from(t: Table, file: SectionFile, box: Box) -> Panel:
         surface=t.choice("surface", ("outer", "upper", "lower"), default="outer"),
         box=box,
         thickness_mm=t.measure("thickness", above=0.0),
-        material=material or PanelMaterial(name, "", "", False, None),
+        material=material or PanelMaterial(name, "", "", False, False, None),
         radius_mm=t.measure_or_none("radius", above=0.0)
         or (_largest_radius(file.section, box) if shell else None),
         pressurised=t.flag("pressurised", default=False),

@@ -91,12 +91,16 @@ class Box:
 
 @dataclass(frozen=True)
 class PanelMaterial:
-    """Material of a panel by the name, temper and form of the materials file."""
+    """Material of a panel by the name, temper and form of the materials file.
+
+    `in_materials` is false for one of which that file holds no properties.
+    """
 
     name: str
     temper: str
     form: str
     clad: bool
+    in_materials: bool
     clad_mm_per_side: float | None
 
 

@@ -48,11 +48,12 @@ class FatiguePolicy:
 
 @dataclass(frozen=True)
 class DetectableSize:
-    """The crack length an inspection method finds, uncovered."""
+    """The crack length an inspection method finds, and the part that is hidden."""
 
     method: str
-    title: str
+    detail: str
     size_mm: float
+    hidden_mm: float
     source: str
 
 
@@ -73,6 +74,7 @@ class TypeGeometry:
     code: str
     name: str
     unit: str
+    ceiling_ft: int | None
     source: str
     variants: tuple[Variant, ...]
     sections: tuple[Section, ...]
@@ -107,9 +109,11 @@ class TypeGeometry:
         """The policy recorded for a use; None if there is none."""
         return next((p for p in self.fatigue_policies if p.use == use), None)
 
-    def detectable_size(self, method: str) -> DetectableSize | None:
-        """The detectable size of a method; None if there is none."""
-        return next((d for d in self.detectable_sizes if d.method == method), None)
+    def detectable_size(self, method: str, detail: str) -> DetectableSize | None:
+        """The detectable size of a method at a kind of place; None if there is none."""
+        wanted = (method, detail)
+        rows = (d for d in self.detectable_sizes if (d.method, d.detail) == wanted)
+        return next(rows, None)
 
     def rogue_flaw(self, where: str) -> RogueFlaw | None:
         """The rogue flaw of a kind of location; None if there is none."""

@@ -1,0 +1,398 @@
+"""Loading and publishing a type's geometry from its file."""
+
+from __future__ import annotations
+
+import datetime as dt
+from typing import TypeVar
+
+from django.core.exceptions import ValidationError
+from django.db import models
+
+from fleet.canonical import canonical, digest, plain
+from fleet.location.geometry import (
+    GeometryFileError,
+    TypeGeometry,
+    geometry_from_toml,
+)
+from fleet.location.geometry import Panel as FilePanel
+from fleet.location.geometry import Section as FileSection
+from fleet.models import (
+    AircraftType,
+    Cutout,
+    DetectableSize,
+    FatiguePolicy,
+    Frame,
+    FrameStation,
+    GeometryRevision,
+    Joint,
+    Material,
+    Panel,
+    Section,
+    Stringer,
+    User,
+    Variant,
+    Zone,
+)
+from fleet.selectors.structure import geometry_in_force
+from fleet.services.history import Writing
+
+Row = TypeVar("Row", bound=models.Model)
+
+MATERIAL_MISSING = (
+    "Panel material “{name}” of the geometry file is not recorded; load the materials "
+    "first, or correct its name, temper or form in the file."
+)
+SHAPE_CHANGED = (
+    "Section {code} has reference size {new:.3f} mm in the file and {old:.3f} mm in "
+    "the record; places would move. Give the changed section a code of its own."
+)
+NOT_DRAFT = "Only a draft is published; revision {number} is {state}."
+_PANEL_COLUMNS = (
+    "thickness_mm", "clad_mm", "radius_mm", "limit_stress_mpa", "mean_stress_mpa",
+    "ultimate_load_n_per_mm", "material_id", "criticality", "pressurised",
+)  # fmt: skip
+
+
+def geometry_load(
+    *, content: str, actor: User | None, at: dt.datetime
+) -> GeometryRevision:
+    """A draft revision from the text of a geometry file.
+
+    The type, its variants, sections and zones are made or brought up to date. The text
+    of the newest revision loads to that revision again. ValidationError lists every
+    problem of the file.
+    """
+    try:
+        geometry = geometry_from_toml(content)
+    except GeometryFileError as error:
+        raise ValidationError(error.problems) from error
+    newest = GeometryRevision.objects.filter(aircraft_type__code=geometry.code).last()
+    if newest is not None and newest.content == content:
+        return newest
+    materials = _materials(geometry)
+    with Writing(actor=actor, action="geometry_load", at=at) as w:
+        aircraft_type = _type(w, geometry)
+        revision = w.create(
+            GeometryRevision(
+                aircraft_type=aircraft_type,
+                number=newest.number + 1 if newest else 1,
+                state=GeometryRevision.State.DRAFT,
+                source=geometry.source,
+                content=content,
+                file_digest=digest(content),
+            )
+        )
+        variants = _variants(w, aircraft_type, geometry)
+        sections = _sections(w, aircraft_type, geometry)
+        zones = _zones(w, aircraft_type, geometry)
+        _policies(w, aircraft_type, geometry)
+        for section in geometry.sections:
+            row = sections[section.code]
+            if not section.parent:
+                _lines(w, revision, row, section, variants)
+            _openings(w, revision, row, section, sections)
+            w.create_many(
+                [
+                    _panel(revision, row, geometry, section, panel, materials, zones)
+                    for panel in section.panels
+                ]
+            )
+    return revision
+
+
+def geometry_publish(
+    *, revision: GeometryRevision, actor: User | None, at: dt.datetime, on: dt.date
+) -> GeometryRevision:
+    """Put a draft in force; the revision before it is superseded.
+
+    Places keep the revision they were read with.
+    """
+    if revision.state != GeometryRevision.State.DRAFT:
+        raise ValidationError(
+            NOT_DRAFT.format(number=revision.number, state=revision.state)
+        )
+    with Writing(actor=actor, action="geometry_publish", at=at) as w:
+        before = geometry_in_force(revision.aircraft_type)
+        if before is not None:
+            w.change(before, state=GeometryRevision.State.SUPERSEDED)
+        w.change(revision, state=GeometryRevision.State.PUBLISHED, published_on=on)
+    return revision
+
+
+def _put(w: Writing, row: Row, found: Row | None, *columns: str) -> Row:
+    """Create the row, or give the found one the row's columns."""
+    if found is None:
+        return w.create(row)
+    w.change(found, **{name: getattr(row, name) for name in columns})
+    return found
+
+
+def _type(w: Writing, geometry: TypeGeometry) -> AircraftType:
+    pressures = geometry.pressures
+    row = AircraftType(
+        code=geometry.code,
+        name=geometry.name,
+        entry_unit=geometry.unit,
+        normal_differential_mpa=pressures.normal_mpa if pressures else None,
+        relief_differential_mpa=pressures.relief_mpa if pressures else None,
+        external_suction_mpa=pressures.suction_mpa if pressures else None,
+        ceiling_ft=geometry.ceiling_ft,
+        pressures_source=pressures.source if pressures else "",
+    )
+    return _put(
+        w, row, AircraftType.objects.filter(code=geometry.code).first(),
+        "name", "entry_unit", "normal_differential_mpa", "relief_differential_mpa",
+        "external_suction_mpa", "ceiling_ft", "pressures_source",
+    )  # fmt: skip
+
+
+def _variants(
+    w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry
+) -> dict[str, Variant]:
+    found = {v.code: v for v in aircraft_type.variants.all()}
+    for variant in geometry.variants:
+        hours = variant.limit_of_validity_fh
+        row = Variant(
+            aircraft_type=aircraft_type,
+            code=variant.code,
+            name=variant.name,
+            design_goal_cycles=variant.design_service_goal_fc,
+            validity_cycles=variant.limit_of_validity_fc,
+            validity_minutes=None if hours is None else hours * 60,
+            source=variant.source,
+        )
+        found[variant.code] = _put(
+            w, row, found.get(variant.code),
+            "name", "design_goal_cycles", "validity_cycles", "validity_minutes",
+            "source",
+        )  # fmt: skip
+    return found
+
+
+def _sections(
+    w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry
+) -> dict[str, Section]:
+    found = {s.code: s for s in aircraft_type.sections.all()}
+    for section in geometry.sections:
+        before = found.get(section.code)
+        old = before.reference_radius_mm if before else None
+        if old is not None and abs(old - section.reference_mm) > 1e-6:
+            raise ValidationError(
+                SHAPE_CHANGED.format(
+                    code=section.code, new=section.reference_mm, old=old
+                )
+            )
+        row = Section(
+            aircraft_type=aircraft_type,
+            code=section.code,
+            name=section.title,
+            kind=section.kind,
+            side=section.side,
+            datum_text=section.datum_text,
+            reference_radius_mm=section.reference_mm,
+            wrap_mm=section.wrap_mm,
+        )
+        found[section.code] = _put(w, row, before, "name", "side", "datum_text")
+    return found
+
+
+def _zones(
+    w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry
+) -> dict[str, Zone]:
+    found = {z.code: z for z in aircraft_type.zones.all()}
+    for zone in geometry.zones:
+        row = Zone(aircraft_type=aircraft_type, code=zone.code, title=zone.title)
+        found[zone.code] = _put(w, row, found.get(zone.code), "title")
+    return found
+
+
+def _policies(
+    w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry
+) -> None:
+    """Fatigue policies and detectable sizes the record does not yet hold."""
+    for policy in geometry.fatigue_policies:
+        row = FatiguePolicy(
+            aircraft_type=aircraft_type,
+            name=policy.use,
+            factor=policy.factor,
+            multiplies=policy.multiplies,
+            log_life_deviation=policy.log_life_s,
+            specimens=policy.specimens,
+            reliability=policy.survival,
+            confidence=policy.confidence,
+            spectrum_severity_inside=policy.spectrum_severity_inside,
+            source=policy.source,
+            grade="adopted",
+        )
+        _revise(
+            w, row, aircraft_type.fatigue_policies.filter(name=policy.use).last(),
+            "factor", "multiplies", "log_life_deviation", "specimens", "reliability",
+            "confidence", "spectrum_severity_inside", "source",
+        )  # fmt: skip
+    for size in geometry.detectable_sizes:
+        rows = aircraft_type.detectable_sizes.filter(
+            method=size.method, detail=size.detail
+        )
+        new = DetectableSize(
+            aircraft_type=aircraft_type,
+            method=size.method,
+            detail=size.detail,
+            length_mm=size.size_mm,
+            hidden_mm=size.hidden_mm,
+            source=size.source,
+            grade="adopted",
+        )
+        _revise(w, new, rows.last(), "length_mm", "hidden_mm", "source")
+
+
+def _revise(
+    w: Writing,
+    row: FatiguePolicy | DetectableSize,
+    before: FatiguePolicy | DetectableSize | None,
+    *columns: str,
+) -> None:
+    """A first row, or a new revision if the file says something else than the last."""
+    if before is None:
+        w.create(row)
+    elif any(getattr(row, name) != getattr(before, name) for name in columns):
+        row.revision = before.revision + 1
+        row.replaces_id = before.pk
+        w.create(row)
+
+
+def _lines(
+    w: Writing,
+    revision: GeometryRevision,
+    row: Section,
+    section: FileSection,
+    variants: dict[str, Variant],
+) -> None:
+    frames = w.create_many(
+        [
+            Frame(
+                geometry=revision,
+                section=row,
+                label=frame.label,
+                station_label=frame.station_label,
+                map_mm=frame.map_mm,
+                ordinal=frame.ordinal,
+                plug=frame.plug,
+                area_mm2=section.frame_area_mm2,
+            )
+            for frame in section.frames
+        ]
+    )
+    w.create_many(
+        [
+            FrameStation(frame=made, variant=variants[code], x_mm=x_mm)
+            for made, frame in zip(frames, section.frames, strict=True)
+            for code, x_mm in frame.x_by_variant
+        ]
+    )
+    w.create_many(
+        [
+            Stringer(
+                geometry=revision,
+                section=row,
+                label=stringer.label,
+                s_mm=stringer.s_mm,
+                ordinal=stringer.ordinal,
+                area_mm2=section.stringer_area_mm2,
+            )
+            for stringer in section.stringers
+        ]
+    )
+
+
+def _openings(
+    w: Writing,
+    revision: GeometryRevision,
+    row: Section,
+    section: FileSection,
+    sections: dict[str, Section],
+) -> None:
+    w.create_many(
+        [
+            Cutout(
+                geometry=revision,
+                section=row,
+                label=cutout.label,
+                kind=cutout.kind,
+                surround_thickness_mm=cutout.surround_thickness_mm,
+                surround_width_mm=cutout.surround_width_mm,
+                door_section=sections.get(cutout.filled_by),
+                **vars(cutout.box),
+            )
+            for cutout in section.cutouts
+        ]
+    )
+    w.create_many(
+        [
+            Joint(
+                geometry=revision,
+                section=row,
+                label=joint.label,
+                kind=joint.kind,
+                **vars(joint.box),
+            )
+            for joint in section.joints
+        ]
+    )
+
+
+def _materials(geometry: TypeGeometry) -> dict[tuple[str, str, str], Material]:
+    """The current revision of each material the panels name."""
+    found = {
+        (m.name, m.temper, m.form): m
+        for m in Material.objects.filter(replaced_by__isnull=True)
+    }
+    wanted = {
+        (panel.material.name, panel.material.temper, panel.material.form)
+        for section in geometry.sections
+        for panel in section.panels
+        if panel.material.in_materials
+    }
+    missing = sorted(wanted - found.keys())
+    if missing:
+        raise ValidationError(
+            [MATERIAL_MISSING.format(name=" ".join(key).strip()) for key in missing]
+        )
+    return found
+
+
+def _panel(
+    revision: GeometryRevision,
+    row: Section,
+    geometry: TypeGeometry,
+    section: FileSection,
+    panel: FilePanel,
+    materials: dict[tuple[str, str, str], Material],
+    zones: dict[str, Zone],
+) -> Panel:
+    box, material = panel.box, panel.material
+    zone = geometry.zone_of_skin(
+        section, (box.map1_mm + box.map2_mm) / 2.0, (box.s1_mm + box.s2_mm) / 2.0
+    )
+    made = Panel(
+        geometry=revision,
+        section=row,
+        label=panel.label,
+        material=materials.get((material.name, material.temper, material.form)),
+        thickness_mm=panel.thickness_mm,
+        clad_mm=material.clad_mm_per_side if material.clad else 0.0,
+        radius_mm=panel.radius_mm,
+        limit_stress_mpa=panel.bending_limit_mpa,
+        mean_stress_mpa=panel.bending_1g_mpa,
+        ultimate_load_n_per_mm=panel.ultimate_running_load_n_per_mm,
+        load_source=panel.source,
+        criticality=panel.criticality,
+        criticality_source=panel.criticality_source,
+        zone=zones[zone.code] if zone else None,
+        pressurised=panel.pressurised,
+        source=panel.source,
+        **vars(box),
+    )
+    made.content_digest = digest(
+        canonical({name: plain(getattr(made, name)) for name in _PANEL_COLUMNS})
+    )
+    return made
