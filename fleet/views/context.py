@@ -1,11 +1,54 @@
-"""What every page knows."""
+"""What every page knows: the way around, who is signed in, whether it is a demo."""
 
 from __future__ import annotations
 
 from typing import Any
 
+from django.conf import settings
 from django.http import HttpRequest
+from django.urls import NoReverseMatch, reverse
+
+from fleet.clock import today
+
+# Page name, its word, and the beginning of the addresses that belong to it.
+NAVIGATION = (
+    ("overview", "Overview", ""),
+    ("aircraft_list", "Aircraft", "/aircraft/"),
+    ("finding_list", "Findings", "/findings/"),
+    ("repair_list", "Repairs", "/repairs/"),
+    ("requirement_list", "Inspections", "/requirements/"),
+    ("due_list", "Due", "/due/"),
+    ("part_list", "Safe-life", "/safe-life/"),
+    ("density", "Density", "/density/"),
+)
 
 
 def page(request: HttpRequest) -> dict[str, Any]:
-    return {}
+    """Navigation with the current page marked; no query beyond the user's own."""
+    known = {"demonstration": bool(settings.FRAMEBAY_TODAY), "today": today()}
+    user = getattr(request, "user", None)
+    if user is None or not user.is_authenticated:
+        return known
+    memberships = user.open_memberships
+    roles = ", ".join(sorted({row.get_role_display() for row in memberships}))
+    names = ", ".join(sorted({row.operator.name for row in memberships}))
+    return known | {
+        "standing": " · ".join(part for part in (roles, names) if part) or str(user),
+        "navigation": [
+            (reverse(name), word, _is_here(request.path, start))
+            for name, word, start in NAVIGATION
+            if _exists(name)
+        ],
+    }
+
+
+def _is_here(path: str, start: str) -> bool:
+    return path.startswith(start) if start else path == "/"
+
+
+def _exists(name: str) -> bool:
+    try:
+        reverse(name)
+    except NoReverseMatch:
+        return False
+    return True
