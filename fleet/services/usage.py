@@ -8,6 +8,7 @@ from datetime import date, datetime, timedelta
 
 from fleet.models import Aircraft, UsageRecord, User
 from fleet.selectors.counters import aircraft_standing, usage_current
+from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.units import hours_write
 from fleet.usage_lines import UsageLine
@@ -115,7 +116,7 @@ def usage_import(
         actor=actor,
         action=action,
         at=at,
-        stream=f"aircraft:{aircraft.pk}",
+        stream=stream_of(aircraft),
         operator=aircraft.operator,
     ) as w:
         _locked(aircraft)
@@ -150,7 +151,7 @@ def usage_correct(
         action="usage_correct",
         at=at,
         reason=reason,
-        stream=f"aircraft:{aircraft.pk}",
+        stream=stream_of(aircraft),
         operator=aircraft.operator,
     ) as w:
         _locked(aircraft)

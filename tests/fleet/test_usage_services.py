@@ -8,8 +8,9 @@ from dataclasses import replace
 import pytest
 
 from fleet.due import Counter
-from fleet.models import AircraftSpan, HistoryEntry, UsageRecord
+from fleet.models import HistoryEntry, UsageRecord
 from fleet.selectors.counters import aircraft_standing, aircraft_standings
+from fleet.services.aircraft import aircraft_set_state
 from fleet.services.usage import (
     UsageRefused,
     usage_correct,
@@ -17,33 +18,10 @@ from fleet.services.usage import (
     usage_record,
 )
 from fleet.usage_lines import UsageLine
-from tests import factories as make
+from tests import due_rows as make
+from tests.due_rows import FIRST, SOURCE, day, fly
 
 pytestmark = pytest.mark.django_db
-
-FIRST = dt.date(2024, 10, 1)
-SOURCE = "technical log 12"
-
-
-def day(n: int) -> dt.date:
-    return FIRST + dt.timedelta(days=n)
-
-
-def fly(aircraft, days: int, *, cycles: int = 4, minutes: int | None = 200, start=0):
-    lines = [
-        UsageLine(
-            day(n), cycles, minutes, cycles_without_minutes=0 if minutes else cycles
-        )
-        for n in range(start, start + days)
-    ]
-    return usage_import(
-        actor=None,
-        at=make.AT,
-        today=make.TODAY,
-        aircraft=aircraft,
-        lines=lines,
-        source=SOURCE,
-    )
 
 
 def refused(aircraft, *lines: UsageLine, source: str = SOURCE) -> list[str]:
@@ -217,6 +195,10 @@ def correct(row, line, *, at=make.AT, reason="log page misread") -> UsageRecord:
     )
 
 
+def state(aircraft, word: str, from_on: dt.date) -> None:
+    aircraft_set_state(aircraft=aircraft, state=word, from_on=from_on, at=make.AT)
+
+
 class TestStanding:
     def test_data_are_current_to_the_last_day_before_the_first_gap(self):
         aircraft = make.aircraft()
@@ -234,13 +216,8 @@ class TestStanding:
         fly(aircraft, 30)
         fly(aircraft, 30, cycles=0, minutes=0, start=30)
         fly(aircraft, 20, start=60)
-        AircraftSpan.objects.create(
-            aircraft=aircraft,
-            state="parked",
-            from_on=day(30),
-            to_on=day(59),
-            entered_at=make.AT,
-        )
+        state(aircraft, "parked", day(30))
+        state(aircraft, "in_service", day(60))
         standing = aircraft_standing(aircraft, as_of=day(79))
         assert standing.rates_by_window[90][Counter.CYCLES] == 4
         assert standing.rates_by_window[30][Counter.CYCLES] == 4
@@ -250,9 +227,7 @@ class TestStanding:
         aircraft = make.aircraft()
         assert not aircraft_standing(aircraft, as_of=day(1)).standing.rates
         fly(aircraft, 30)
-        AircraftSpan.objects.create(
-            aircraft=aircraft, state="stored", from_on=day(30), entered_at=make.AT
-        )
+        state(aircraft, "stored", day(30))
         stored = aircraft_standing(aircraft, as_of=day(31))
         assert stored.state == "stored"
         assert not stored.standing.rates
