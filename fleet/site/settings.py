@@ -8,7 +8,7 @@
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
 | FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
 | FRAMEBAY_DEBUG | 1 shows tracebacks in the browser | 0 |
-| FRAMEBAY_TODAY | the date taken as today, for demonstrations | the clock |
+| FRAMEBAY_TODAY | the date taken as today | the demo's, if it is here; else the clock |
 """
 
 from __future__ import annotations
@@ -55,7 +55,16 @@ SECRET_KEY = secret_key()
 DEBUG = env_flag("FRAMEBAY_DEBUG")
 HTTPS = env_flag("FRAMEBAY_HTTPS")
 ALLOWED_HOSTS = os.environ.get("FRAMEBAY_HOSTS", "127.0.0.1,localhost,[::1]").split(",")
-FRAMEBAY_TODAY = os.environ.get("FRAMEBAY_TODAY", "")
+TODAY_FILE = "today"
+
+
+def kept_today() -> str:
+    """The date that `manage.py demo` left in FRAMEBAY_DATA, or ''."""
+    kept = DATA_DIR / TODAY_FILE
+    return kept.read_text().strip() if kept.exists() else ""
+
+
+FRAMEBAY_TODAY = os.environ.get("FRAMEBAY_TODAY") or kept_today()
 
 INSTALLED_APPS = [
     "django.contrib.auth",

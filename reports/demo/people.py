@@ -82,3 +82,5 @@ AUTHORISATIONS = (
     DemoAuthorisation("inspector", "HA-I-118", "inspect", dt.date(2005, 1, 1)),
     DemoAuthorisation("lapsed", "HA-C-191", "certify", dt.date(2017, 7, 1), LAPSED_ON),
 )
+
+PASSWORD = "cleat-rivet-gusset-52"
