@@ -8,7 +8,7 @@ their own at their size. Decide in the data objects, then draw; no queries here.
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import TypeVar
 
@@ -164,18 +164,16 @@ def _items(map_: StructureMap, names: Sequence[Label]) -> Iterator[str]:
     for _, box in map_.drawn_repairs:
         taken += _sides(_least(box))
     page = Box(2, 2, map_.sheet.width - 2, map_.sheet.plot.bottom + 2)
-    findings = [
-        (mark, _mark(mark, box), _around_mark(mark.label, _marked(mark, box)))
-        for mark, box in map_.drawn_marks
-    ]
-    repairs = [
+    entries: list[tuple[MapMark | MapRepair, str, list[Label]]] = [
         (repair, _repair(box), _around_repair(repair.label, _least(box)))
         for repair, box in map_.drawn_repairs
     ]
+    entries += [
+        (mark, _mark(mark, box), _around_mark(mark.label, _marked(mark, box)))
+        for mark, box in map_.drawn_marks
+    ]
     links: list[tuple[bool, str]] = []
-    for item, drawing, places in sorted(
-        [*repairs, *findings], key=lambda entry: not entry[0].focus
-    ):
+    for item, drawing, places in sorted(entries, key=lambda one: not one[0].focus):
         label = _name(places, page, taken, focus=item.focus)
         links.append((item.focus, _link(item, drawing, label)))
     yield from (link for focus, link in links if not focus)
@@ -185,10 +183,16 @@ def _items(map_: StructureMap, names: Sequence[Label]) -> Iterator[str]:
 def _name(
     places: list[Label], page: Box, taken: list[Box], *, focus: bool
 ) -> Label | None:
-    """The first free place; none if there is none, for names over names help nobody."""
+    """The first free place; none if there is none, for names over names help nobody.
+
+    What the page is about may be named farther off, and is named in any case.
+    """
+    if focus:
+        moved = (-14.0, 14.0, -28.0, 28.0, -42.0, 42.0)
+        places = places + [replace(one, y=one.y + d) for d in moved for one in places]
     label = svg.first_free(places, within=page, taken=taken)
     if label is None and focus:
-        label = svg.first_free(places, within=page, taken=()) or places[0]
+        label = places[0]
     if label is not None:
         taken.append(label.box)
     return label
