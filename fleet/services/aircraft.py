@@ -8,6 +8,7 @@ from fleet.models import (
     Aircraft,
     AircraftPeriod,
     AircraftSpan,
+    AircraftType,
     Configuration,
     Document,
     Material,
@@ -19,6 +20,21 @@ from fleet.models import (
     Variant,
 )
 from fleet.services.history import Writing
+
+
+def configuration_add(
+    *,
+    aircraft_type: AircraftType,
+    code: str,
+    name: str,
+    at: dt.datetime,
+    actor: User | None = None,
+) -> Configuration:
+    """A model, weight variant or role that life limits may depend on."""
+    with Writing(actor=actor, action="configuration_add", at=at) as w:
+        return w.create(
+            Configuration(aircraft_type=aircraft_type, code=code, name=name)
+        )
 
 
 def aircraft_add(

@@ -3,8 +3,13 @@
 from __future__ import annotations
 
 import datetime as dt
+from collections.abc import Iterator
 from dataclasses import dataclass, field
+from functools import partial
+from itertools import groupby
 from typing import Any
+
+from django.conf import settings
 
 from fleet.models import (
     Aircraft,
@@ -18,21 +23,26 @@ from fleet.models import (
 )
 from fleet.services import aircraft as fleet_aircraft
 from fleet.services import people as fleet_people
+from fleet.services.materials import materials_load
+from fleet.services.structure import geometry_load, geometry_publish
 from fleet.services.usage import usage_import
 from fleet.usage_lines import UsageLine
-from reports.demo.fleet import DATA_BEGIN, DEMO_TODAY, FLEET, DemoAircraft
+from reports.demo.fleet import DATA_BEGIN, FLEET, DemoAircraft, StateSpan
 from reports.demo.people import (
     AUTHORISATIONS,
+    LESSOR,
     OPERATOR,
     ORGANISATIONS,
     PEOPLE,
     SECOND_OPERATOR,
 )
+from reports.demo.timeline import Rank, Step
 from reports.demo.usage import Logbook, UsageDay
 
-BEGAN = dt.datetime(2019, 1, 1, 6, 0, tzinfo=dt.UTC)
+BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
 REGIME = "EASA"
 OPERATOR_CODES = {OPERATOR: "BRF", SECOND_OPERATOR: "OAL"}
+GEOMETRY_FILE = "ard52.toml"
 AUTHORISED_BY = "company authorisation register"
 
 
@@ -48,14 +58,6 @@ class Loaded:
     aircraft: dict[int, Aircraft] = field(default_factory=dict)
     configurations: dict[str, Configuration] = field(default_factory=dict)
     rows: dict[str, Any] = field(default_factory=dict)
-
-
-def entry_time(day: dt.date, joined_on: dt.date = DATA_BEGIN) -> dt.datetime:
-    """When a record of that day was entered: with the month's papers, on the first of
-    the next month; what is older than the aircraft's data, when it joined."""
-    day = max(day, joined_on)
-    first = (day.replace(day=1) + dt.timedelta(days=32)).replace(day=1)
-    return dt.datetime.combine(min(first, DEMO_TODAY), dt.time(6), dt.UTC)
 
 
 def people_load(password: str) -> Loaded:
@@ -115,9 +117,53 @@ def _login(
     return user
 
 
-def aircraft_load(loaded: Loaded, plan: DemoAircraft, variant: Variant) -> None:
-    """One aircraft as it joins, with counters keyed by two people."""
-    first = plan.state_spans()[0]
+def type_load(loaded: Loaded) -> dict[str, Variant]:
+    """The materials, the type's geometry in force, and a configuration a variant."""
+    administrator = loaded.users["administrator"]
+    materials_load(actor=administrator, at=BEGAN)
+    revision = geometry_load(
+        content=(settings.FIXTURES / GEOMETRY_FILE).read_text(),
+        actor=administrator,
+        at=BEGAN,
+    )
+    geometry_publish(revision=revision, actor=administrator, at=BEGAN, on=DATA_BEGIN)
+    variants = {row.code: row for row in revision.aircraft_type.variants.all()}
+    for variant in variants.values():
+        loaded.configurations[variant.code] = fleet_aircraft.configuration_add(
+            aircraft_type=revision.aircraft_type,
+            code=variant.code,
+            name=variant.name,
+            at=BEGAN,
+        )
+    return variants
+
+
+def fleet_steps(
+    loaded: Loaded, variants: dict[str, Variant], books: dict[int, Logbook]
+) -> Iterator[Step]:
+    """Aircraft joining, their states and leaving, and the log month by month."""
+    for plan in FLEET:
+        mark, joined = plan.registration, plan.joined_on
+        add = partial(_aircraft_add, loaded, plan, variants[plan.variant])
+        before = joined - dt.timedelta(days=1)
+        yield Step(before, Rank.AIRCRAFT, mark, add, joined)
+        for span in plan.state_spans()[1:]:
+            change = partial(_state_set, loaded, plan, span)
+            yield Step(span.begin, Rank.STATE, mark, change)
+        days = books[plan.msn].days
+        for _, month in groupby(days, key=lambda day: (day.day.year, day.day.month)):
+            lines = list(month)
+            log = partial(_usage_import, loaded, plan, lines)
+            yield Step(lines[-1].day, Rank.USAGE, mark, log)
+        if plan.left_on is not None:
+            leave = partial(_aircraft_leave, loaded, plan, plan.left_on)
+            yield Step(plan.left_on, Rank.CLOSING, mark, leave)
+
+
+def _aircraft_add(
+    loaded: Loaded, plan: DemoAircraft, variant: Variant, at: dt.datetime
+) -> None:
+    """Counters are keyed by two people."""
     loaded.aircraft[plan.msn] = fleet_aircraft.aircraft_add(
         operator=loaded.operator,
         variant=variant,
@@ -130,45 +176,47 @@ def aircraft_load(loaded: Loaded, plan: DemoAircraft, variant: Variant) -> None:
         opening_landings=plan.opening_cycles,
         opening_source="counters of the joining record, signed by both parties",
         configuration=loaded.configurations[plan.variant],
-        state=first.state,
+        state=plan.state_spans()[0].state,
         camo=loaded.operator.organisation,
-        owner=loaded.organisations["Wexcombe Leasing"],
+        owner=loaded.organisations[LESSOR],
         actor=loaded.users["administrator"],
         rekeyed_by=loaded.users["planner"],
-        at=dt.datetime.combine(plan.joined_on, dt.time(5), dt.UTC),
+        at=at,
     )
 
 
-def states_load(loaded: Loaded, plan: DemoAircraft) -> None:
-    """Checks, storage and leaving, one after the other."""
-    aircraft = loaded.aircraft[plan.msn]
-    for span in plan.state_spans()[1:]:
-        fleet_aircraft.aircraft_set_state(
-            aircraft=aircraft,
-            state=span.state,
-            from_on=span.begin,
-            at=entry_time(span.begin),
-            actor=loaded.users["planner"],
-        )
-    if plan.left_on is not None:
-        fleet_aircraft.aircraft_leave(
-            aircraft=aircraft,
-            left_on=plan.left_on - dt.timedelta(days=1),
-            reason="handed back to its owner at the end of the lease",
-            at=entry_time(plan.left_on),
-            actor=loaded.users["administrator"],
-        )
-
-
-def usage_load(
-    loaded: Loaded, book: Logbook, days: list[UsageDay], at: dt.datetime
+def _state_set(
+    loaded: Loaded, plan: DemoAircraft, span: StateSpan, at: dt.datetime
 ) -> None:
-    """One month of the technical log."""
+    fleet_aircraft.aircraft_set_state(
+        aircraft=loaded.aircraft[plan.msn],
+        state=span.state,
+        from_on=span.begin,
+        at=at,
+        actor=loaded.users["planner"],
+    )
+
+
+def _aircraft_leave(
+    loaded: Loaded, plan: DemoAircraft, left_on: dt.date, at: dt.datetime
+) -> None:
+    fleet_aircraft.aircraft_leave(
+        aircraft=loaded.aircraft[plan.msn],
+        left_on=left_on - dt.timedelta(days=1),
+        reason="handed back to its owner at the end of the lease",
+        at=at,
+        actor=loaded.users["administrator"],
+    )
+
+
+def _usage_import(
+    loaded: Loaded, plan: DemoAircraft, days: list[UsageDay], at: dt.datetime
+) -> None:
     usage_import(
         actor=loaded.users["planner"],
         at=at,
         today=at.date(),
-        aircraft=loaded.aircraft[book.aircraft.msn],
+        aircraft=loaded.aircraft[plan.msn],
         lines=[
             UsageLine(
                 day.day,
@@ -180,7 +228,3 @@ def usage_load(
         ],
         source="technical log",
     )
-
-
-def plans_by_joining() -> list[DemoAircraft]:
-    return sorted(FLEET, key=lambda plan: (plan.from_day, plan.msn))
