@@ -47,7 +47,7 @@ def may(user: User, action: str, operator_id: int) -> bool:
 
 
 def may_somewhere(user: User, action: str) -> bool:
-    """Whether the action is allowed at any operator of the user: for menus and forms."""
+    """Whether any operator of the user allows the action: for menus and forms."""
     return any(may(user, action, row.operator_id) for row in user.open_memberships)
 
 
@@ -65,7 +65,7 @@ def visible_or_404(rows: QuerySet[Row], user: User, **key: Any) -> Row:
     row = rows.visible_to(user).filter(**key).distinct().first()  # type: ignore[attr-defined]
     if row is None:
         raise Http404("No such record, or it belongs to another operator.")
-    return row  # type: ignore[no-any-return]
+    return row
 
 
 def operators_for(user: User, action: str) -> list[Operator]:

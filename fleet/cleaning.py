@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from typing import Any
 
 from django.apps import apps
@@ -10,6 +11,11 @@ from django.db import IntegrityError, models
 
 TAKEN = "There is one already, or someone else has just recorded it: {columns}."
 REFUSED = "The record was refused by the rule {rule}."
+CHECK_FAILED = "CHECK constraint failed: "
+TAKEN_COLUMNS = re.compile(
+    r"Key \((?P<named>[^)]*)\)=.* already exists"
+    r"|UNIQUE constraint failed: (?P<listed>.*)"
+)
 
 
 def clean_row(row: models.Model) -> None:
@@ -18,15 +24,17 @@ def clean_row(row: models.Model) -> None:
     Foreign keys, uniqueness and rules across columns are left to the constraints;
     `refusal` turns their answer into words. (`full_clean` sends a query for each.)
     """
-    relations = [field.name for field in row._meta.concrete_fields if field.is_relation]
-    errors: dict[str, list[Any]] = {}
-    for name in relations:
-        field = row._meta.get_field(name)
-        value = getattr(row, field.attname)  # type: ignore[union-attr]
-        if value is None and not field.null:  # type: ignore[union-attr]
-            errors[name] = ["This is needed."]
+    relations = [field for field in row._meta.concrete_fields if field.is_relation]
+    errors: dict[str, list[Any]] = {
+        field.name: ["This is needed."]
+        for field in relations
+        if not field.null and getattr(row, field.attname) is None
+    }
+    checked_elsewhere = {field.name for field in relations}
+    if row.pk is None:
+        checked_elsewhere.add(row._meta.pk.name)
     try:
-        row.clean_fields(exclude={*relations, *_automatic(row)})
+        row.clean_fields(exclude=checked_elsewhere)
         row.clean()
     except ValidationError as error:
         errors |= error.update_error_dict({})
@@ -34,29 +42,23 @@ def clean_row(row: models.Model) -> None:
         raise ValidationError(errors)
 
 
-def _automatic(row: models.Model) -> list[str]:
-    key = row._meta.pk
-    return [key.name] if key is not None and row.pk is None else []
-
-
 def refusal(error: IntegrityError) -> ValidationError:
-    """The database's refusal in the words of the constraint that refused."""
-    name = getattr(getattr(error.__cause__, "diag", None), "constraint_name", None)
-    message = str(error)
-    if not name and message.startswith("CHECK constraint failed: "):
-        name = message.removeprefix("CHECK constraint failed: ")
-    if not name and message.startswith("UNIQUE constraint failed: "):
-        columns = message.removeprefix("UNIQUE constraint failed: ")
+    """The database's refusal in the words of the constraint that refused.
+
+    PostgreSQL names the constraint, or the key that is taken; SQLite names a check, and
+    for uniqueness only the columns.
+    """
+    told = getattr(error.__cause__, "diag", None)
+    text = str(error).splitlines()[0]
+    taken = TAKEN_COLUMNS.search(str(error))
+    if taken:
+        columns = taken["named"] or taken["listed"]
         return ValidationError(TAKEN.format(columns=_words(columns)), code="taken")
+    rule = getattr(told, "constraint_name", None) or text.removeprefix(CHECK_FAILED)
     for constraint in _constraints():
-        if constraint.name == name:
-            if isinstance(constraint, models.UniqueConstraint):
-                listed = ", ".join(constraint.fields)
-                return ValidationError(
-                    TAKEN.format(columns=_words(listed)), code="taken"
-                )
-            return ValidationError(str(constraint.violation_error_message), code=name)
-    return ValidationError(REFUSED.format(rule=name or message), code="refused")
+        if constraint.name == rule:
+            return ValidationError(str(constraint.violation_error_message), code=rule)
+    return ValidationError(REFUSED.format(rule=rule), code="refused")
 
 
 def _constraints() -> list[models.BaseConstraint]:

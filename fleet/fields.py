@@ -23,7 +23,7 @@ def finite(value: float) -> None:
         )
 
 
-class _Bounded(models.Field):  # type: ignore[type-arg]
+class _Bounded(models.Field):
     """A number with bounds, checked by Django and by the database."""
 
     def __init__(self, *args: Any, low: float, high: float, **kwargs: Any) -> None:
@@ -47,22 +47,22 @@ class _Bounded(models.Field):  # type: ignore[type-arg]
         return f"{column} >= {self.low!r} AND {column} <= {self.high!r}"
 
 
-class Measure(_Bounded, models.FloatField):  # type: ignore[type-arg, misc]
+class Measure(_Bounded, models.FloatField):
     """A measured or calculated number; the unit is the end of the column's name."""
 
 
-class Count(_Bounded, models.BigIntegerField):  # type: ignore[type-arg, misc]
+class Count(_Bounded, models.BigIntegerField):
     """A counted number: cycles, minutes, days, an ordinal."""
 
 
-class Word(models.TextField):  # type: ignore[type-arg]
+class Word(models.TextField):
     """One word of a closed list; the database knows the list too."""
 
     def __init__(
-        self, *args: Any, choices: Any = None, words: Sequence[str] = (), **kwargs: Any
+        self, *, choices: Any = None, words: Sequence[str] = (), **kwargs: Any
     ) -> None:
         self.words = tuple(words) or tuple(value for value, _ in _pairs(choices))
-        super().__init__(*args, choices=choices, **kwargs)
+        super().__init__(choices=choices, **kwargs)
 
     def deconstruct(self) -> Any:
         name, path, args, kwargs = super().deconstruct()
@@ -99,6 +99,6 @@ def optional_measure(low: float, high: float, **kwargs: Any) -> Measure:
     return Measure(low=low, high=high, null=True, blank=True, **kwargs)
 
 
-def text(**kwargs: Any) -> models.TextField:  # type: ignore[type-arg]
+def text(**kwargs: Any) -> models.TextField:
     """Free text that may be empty."""
     return models.TextField(blank=True, default="", **kwargs)

@@ -20,11 +20,11 @@ class ScopedQuerySet(QuerySet[Any]):
         if user.sees_all_operators:
             return self
         operators = user.operator_ids()
-        paths = self.model.operator_paths  # type: ignore[attr-defined]
+        paths = self.model.operator_paths
         return self.filter(
             reduce(or_, (Q(**{f"{path}__in": operators}) for path in paths))
         )
 
     def of_operator(self, operator_id: int) -> Self:
-        paths = self.model.operator_paths  # type: ignore[attr-defined]
+        paths = self.model.operator_paths
         return self.filter(reduce(or_, (Q(**{path: operator_id}) for path in paths)))

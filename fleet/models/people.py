@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import datetime as dt
+
 from django.contrib.auth.models import AbstractUser
 from django.db import models
 from django.db.models import Q
@@ -192,7 +194,7 @@ class Authorisation(Entered):
     def __str__(self) -> str:
         return f"{self.number} ({self.scope})"
 
-    def holds_on(self, day: object) -> bool:
+    def holds_on(self, day: dt.date) -> bool:
         return self.valid_from <= day and (
             self.valid_to is None or day <= self.valid_to
         )

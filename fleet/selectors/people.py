@@ -10,7 +10,7 @@ from fleet.models import Authorisation, Operator, Person, Policy
 
 
 def policy(operator: Operator, key: str, as_of: dt.date) -> Policy | None:
-    """The policy row in force: the operator's own before the one offered to its regime."""
+    """The policy row in force: the operator's own before the one for its regime."""
     rows = Policy.objects.filter(
         Q(operator=operator)
         | Q(operator__isnull=True, regime__in=("", operator.regime)),
@@ -20,7 +20,8 @@ def policy(operator: Operator, key: str, as_of: dt.date) -> Policy | None:
     ).order_by("effective_from")
     found = list(rows)
     own = [row for row in found if row.operator_id is not None]
-    return (own or found or [None])[-1]
+    candidates = own or found
+    return candidates[-1] if candidates else None
 
 
 def authorisation_on(

@@ -133,9 +133,10 @@ def _run(
 
 def _triggers() -> Iterator[str]:
     """Triggers that should refuse changes and are missing or switched off."""
+    every: list[type[models.Model]] = [HistoryEntry, HistoryItem, HistorySeal]
     tables = [
         model._meta.db_table
-        for model in (*recorded_models(), HistoryEntry, HistoryItem, HistorySeal)
+        for model in every + recorded_models()
         if append_only(model)
     ]
     with connection.cursor() as cursor:

@@ -119,13 +119,12 @@ SQLITE_OPTIONS = {
         "PRAGMA cache_size=-64000; PRAGMA temp_store=MEMORY;"
     ),
 }
-DATABASES = {
-    "default": dj_database_url.config(
-        default=f"sqlite:///{DATA_DIR / 'framebay.sqlite3'}", conn_max_age=60
-    )
-}
+DATABASE_URL = os.environ.get("DATABASE_URL") or (
+    f"sqlite:///{DATA_DIR / 'framebay.sqlite3'}"
+)
+DATABASES = {"default": dj_database_url.parse(DATABASE_URL, conn_max_age=60)}
 if DATABASES["default"]["ENGINE"].endswith("sqlite3"):
-    DATABASES["default"]["OPTIONS"] = SQLITE_OPTIONS  # type: ignore[typeddict-unknown-key]
+    DATABASES["default"]["OPTIONS"] = SQLITE_OPTIONS
 DEFAULT_AUTO_FIELD = "django.db.models.BigAutoField"
 
 AUTH_USER_MODEL = "fleet.User"
