@@ -56,12 +56,13 @@ class PartFacts:
     stints: Sequence[Stint]
     overhauls: Sequence[PartEvent]
     total: Counters
+    target: int | None = None
 
     @property
     def configuration(self) -> int | None:
-        """The configuration it is in, or was in last when it is not installed."""
-        if not self.stints:
-            return None
+        """The configuration asked for, else the one it is in or was in last."""
+        if self.target is not None or not self.stints:
+            return self.target
         current: int = self.stints[-1].installation.configuration_id
         return current
 

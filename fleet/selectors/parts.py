@@ -25,6 +25,7 @@ from fleet.due import (
     due_status,
 )
 from fleet.models import (
+    Configuration,
     KeyedState,
     LifeLimit,
     PartEarlierLife,
@@ -89,8 +90,11 @@ class PartLife:
         return here + end - now
 
 
-def part_life(part: SafeLifePart, *, as_of: date) -> PartLife:
-    return part_lives([part], as_of=as_of)[0]
+def part_life(
+    part: SafeLifePart, *, as_of: date, target: Configuration | None = None
+) -> PartLife:
+    """Life of one serial; `target` is the configuration it is to be installed in."""
+    return part_lives([part], as_of=as_of, target=target)[0]
 
 
 def part_lives(
@@ -100,6 +104,7 @@ def part_lives(
     known_at: datetime | None = None,
     standings: Mapping[int, AircraftStanding] | None = None,
     removed_later: frozenset[int] = frozenset(),
+    target: Configuration | None = None,
 ) -> list[PartLife]:
     """Life status of the parts, in a constant number of queries.
 
@@ -113,7 +118,8 @@ def part_lives(
     unknown = [item for pk, item in carriers.items() if pk not in known]
     if unknown:
         known |= aircraft_standings(unknown, as_of=as_of, known_at=known_at)
-    return [_life(part, rows, known) for part in parts]
+    aim = target.pk if target else None
+    return [_life(part, rows, known, aim) for part in parts]
 
 
 class _Rows:
@@ -193,7 +199,10 @@ def _limits_in_force(known: Q, numbers: set[int], as_of: date) -> Iterable[LifeL
 
 
 def _life(
-    part: SafeLifePart, rows: _Rows, standings: Mapping[int, AircraftStanding]
+    part: SafeLifePart,
+    rows: _Rows,
+    standings: Mapping[int, AircraftStanding],
+    target: int | None,
 ) -> PartLife:
     stints = tuple(
         _stint(row, rows.removed_on(row), standings)
@@ -207,6 +216,7 @@ def _life(
         stints,
         rows.overhauls.get(part.pk, []),
         _total(earlier, stints),
+        target,
     )
     lines, due = life_lines(facts)
     current = next((x for x in stints if x.removed_on is None), None)
