@@ -15,7 +15,7 @@ from reports.demo.airframe import (
     skin_thickness_mm,
     stringer_name,
 )
-from reports.demo.findings import Spotted, length_text
+from reports.demo.findings import Spotted, blend_dimensions, length_text
 from reports.demo.fleet import FLEET, DemoAircraft, day_date
 from reports.demo.places import (
     FUSELAGE,
@@ -104,9 +104,17 @@ def crack_finding(
     holes: int = 0,
 ) -> DemoFinding:
     """A crack with what the applicability tests ask about it."""
-    dimensions = [Dimension("length_mm", length_text(length_in, False, 2))]
+    dimensions = [
+        Dimension("length_mm", f"{length_in:.2f} ± 0.02 in"),
+        Dimension("direction", direction),
+        Dimension("origin", origin),
+    ]
     if holes:
-        dimensions.append(Dimension("hole_diameter_mm", "4.8 mm"))
+        dimensions += [
+            Dimension("crack_count", str(holes)),
+            Dimension("hole_diameter_mm", "4.8 mm"),
+            Dimension("hole_load", "loaded"),
+        ]
     row = f" at {holes} holes of one row" if holes > 1 else ""
     return DemoFinding(
         key=key,
@@ -126,7 +134,6 @@ def crack_finding(
         state="reported",
         description=f"{direction.capitalize()} crack{row}, origin {origin}.",
         dimensions=tuple(dimensions),
-        traits=(("direction", direction), ("origin", origin), ("holes", str(holes))),
         cluster_count=max(1, holes),
     )
 
@@ -143,14 +150,9 @@ def corrosion_dimensions(
         Dimension("length_mm", length_text(length, False)),
         Dimension("width_mm", length_text(width, False)),
         Dimension("depth_mm", f"{depth_mm:.2f} mm"),
+        Dimension("corrosion_type", stream.pick(("pitting", "surface", "exfoliation"))),
     )
-    reworked = (
-        Dimension("length_mm", length_text(length * 1.5, False)),
-        Dimension("width_mm", length_text(width * 1.5, False)),
-        Dimension("depth_mm", f"{removed_mm:.2f} mm"),
-        Dimension("remaining_thickness_mm", f"{thickness_mm - removed_mm:.2f} mm"),
-    )
-    return found, reworked
+    return found, blend_dimensions(length, width, thickness_mm, removed_mm)
 
 
 def _corrosion(
@@ -181,9 +183,6 @@ def _corrosion(
         description="Corrosion found when the area was opened at the check.",
         dimensions=found,
         reworked=reworked,
-        traits=(
-            ("corrosion_type", stream.pick(("pitting", "surface", "exfoliation"))),
-        ),
     )
 
 
@@ -288,7 +287,7 @@ def _skin_crack(
         written,
         length_in=length,
         direction="circumferential" if across else "longitudinal",
-        origin="scratch in the skin" if stream.chance(0.4) else "skin surface",
+        origin="scratch" if stream.chance(0.4) else "skin",
     )
 
 
@@ -311,7 +310,7 @@ def _frame_crack(
         Written(text, truth),
         length_in=length,
         direction="radial",
-        origin="edge of a stringer cut-out",
+        origin="cut-out corner",
         element=f"frame_{part.lower()}",
         element_label=f"FR {frame}",
     )
@@ -340,5 +339,5 @@ def _corner_crack(
         written,
         length_in=length,
         direction="diagonal",
-        origin=f"corner of door {door.name}",
+        origin="cut-out corner",
     )

@@ -6,7 +6,7 @@ import datetime as dt
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
-from reports.demo.airframe import in_opening
+from reports.demo.airframe import degrees_of, in_opening, skin_thickness_mm
 from reports.demo.extremities import off_fuselage_place
 from reports.demo.fleet import FLEET, DemoAircraft
 from reports.demo.places import (
@@ -130,6 +130,34 @@ def dent_dimensions(
     )
 
 
+def blend_dimensions(
+    length_in: float, width_in: float, thickness_mm: float, removed_mm: float
+) -> tuple[Dimension, ...]:
+    """What is measured after a blend-out, with the gauge's uncertainty."""
+    left = thickness_mm - removed_mm
+    return (
+        Dimension("remaining_thickness_mm", f"{left:.2f} ± 0.05 mm"),
+        Dimension("original_thickness_mm", f"{thickness_mm:.2f} mm"),
+        Dimension("blend_length_mm", length_text(length_in * 1.5, False)),
+        Dimension("blend_width_mm", length_text(width_in * 1.5, False)),
+        Dimension("damage_removed", "yes"),
+    )
+
+
+def trimmed_dimensions(
+    stream: Stream, found: tuple[Dimension, ...]
+) -> tuple[Dimension, ...]:
+    """A puncture trimmed to a round hole, before it is closed."""
+    longest_mm = _mm(found[0].entered)
+    return (
+        Dimension("hole_diameter_mm", f"{longest_mm + 4:.1f} mm"),
+        Dimension("edge_distance_mm", f"{stream.whole(70, 200)} mm"),
+        Dimension("strip_width_mm", f"{stream.whole(190, 223)} mm"),
+        Dimension("hole_load", "open"),
+        Dimension("damage_removed", "yes"),
+    )
+
+
 def ramp_dimensions(stream: Stream, kind: str, metric: bool) -> tuple[Dimension, ...]:
     """The measured set of one everyday damage type."""
     if kind in ("dent", "bird_strike"):
@@ -187,6 +215,15 @@ def _finding_draw(
     kind = _kind_draw(stream, spotted.on.month)
     metric = stream.chance(0.2)
     written, element, surface = _place_draw(stream, kind, aircraft.variant)
+    dimensions = ramp_dimensions(stream, kind, metric)
+    reworked: tuple[Dimension, ...] = ()
+    if kind == "hole":
+        reworked = trimmed_dimensions(stream, dimensions)
+    elif kind == "scratch" and stream.chance(0.4) and surface == "outer":
+        removed_mm = _mm(dimensions[1].entered) + 0.03
+        thickness_mm = skin_thickness_mm(degrees_of(written.truth.across_in or 0.0))
+        length_in = _mm(dimensions[0].entered) / 25.4
+        reworked = blend_dimensions(length_in, 0.5, thickness_mm, removed_mm)
     cause = CAUSES[kind]
     if kind == "scratch" and stream.chance(0.35):
         cause = "maintenance"
@@ -207,8 +244,14 @@ def _finding_draw(
         reporter=spotted.reporter,
         state="reported",
         description=_description(kind, written),
-        dimensions=ramp_dimensions(stream, kind, metric),
+        dimensions=dimensions,
+        reworked=reworked,
     )
+
+
+def _mm(entered: str) -> float:
+    number, unit = entered.split()
+    return float(number) * (25.4 if unit == "in" else 1.0)
 
 
 def _place_draw(stream: Stream, kind: str, variant: str) -> tuple[Written, str, str]:

@@ -136,8 +136,8 @@ def _plug_truth(aft: float, deg: float) -> Truth:
 def _cracks(planting: Planting) -> None:
     """Three recent cracks: one the shell method covers, two that it must refuse."""
     cases = (
-        ("crack_computed", 1001, (2024, 12, 17), 0.9, "skin surface", 0),
-        ("crack_near_cutout", 1002, (2024, 11, 20), 0.7, "skin surface", 0),
+        ("crack_computed", 1001, (2024, 12, 17), 0.9, "skin", 0),
+        ("crack_near_cutout", 1002, (2024, 11, 20), 0.7, "skin", 0),
         ("crack_at_lap_hole", 1005, (2024, 9, 18), 0.35, "fastener hole", 4),
     )
     stream = Stream(planting.seed, "planted-cracks")

@@ -65,13 +65,13 @@ class DemoFinding:
     description: str
     dimensions: tuple[Dimension, ...]
     reworked: tuple[Dimension, ...] = ()
-    traits: tuple[tuple[str, str], ...] = ()
     cluster_count: int = 1
     event: str = ""
     true_dimensions: tuple[Dimension, ...] = ()
 
-    def trait(self, name: str) -> str:
-        return dict(self.traits).get(name, "")
+    def entered(self, quantity: str) -> str:
+        """The dimension as written; '' if it was not measured."""
+        return next((d.entered for d in self.dimensions if d.quantity == quantity), "")
 
 
 @dataclass(frozen=True, slots=True)

@@ -24,12 +24,12 @@ from reports.demo.stream import Stream
 from reports.demo.usage import Counters, Logbook
 
 REPAIRED_SHARE = {
-    "crack": 0.80,
+    "crack": 0.70,
     "disbond": 0.25,
     "bird_strike": 0.20,
-    "corrosion": 0.16,
+    "corrosion": 0.13,
     "lightning": 0.14,
-    "hole": 1.0,
+    "hole": 0.9,
     "dent": 0.05,
     "fastener": 0.06,
     "scratch": 0.04,
