@@ -22,6 +22,10 @@ Planted = dict[str, list[str]]
 OPEN_QUESTIONS = ("mm_for_inch", "decimal_slip", "to_be_placed")
 RECENT_CRACKS = ("crack_computed", "crack_near_cutout", "crack_at_lap_hole")
 REPORTED_DAYS, ASSESSED_DAYS, DEFERRED_DAYS, CLOSED_DAYS = 25, 60, 150, 90
+SIGNED_AGAIN = (
+    "Within the limits of the manual. Signed on {day} by Gareth Ullswater, whose "
+    "authorisation HA-C-191 had ended on {last}; decided again by the undersigned."
+)
 MANUAL = "ARD-52 SRM 53-10-01"
 
 
@@ -172,6 +176,8 @@ def _plant(
         and decisions[i].msn != 1006
     )
     decisions[index] = replace(
-        decisions[index], decided_by="lapsed", decided_on=day_after
+        decisions[index],
+        decided_on=day_after + dt.timedelta(days=2),
+        statement=SIGNED_AGAIN.format(day=day_after, last=LAPSED_ON),
     )
     planted["authorisation_expired"] = [decisions[index].key]

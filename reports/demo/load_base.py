@@ -23,7 +23,7 @@ from fleet.models import (
 )
 from fleet.services import aircraft as fleet_aircraft
 from fleet.services import people as fleet_people
-from fleet.services.materials import materials_load
+from fleet.services.materials import demo_values_load, materials_load
 from fleet.services.structure import geometry_load, geometry_publish
 from fleet.services.usage import usage_import
 from fleet.usage_lines import UsageLine
@@ -42,7 +42,7 @@ from reports.demo.usage import Logbook, UsageDay
 BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
 REGIME = "EASA"
 OPERATOR_CODES = {OPERATOR: "BRF", SECOND_OPERATOR: "OAL"}
-GEOMETRY_FILE = "ard52.toml"
+GEOMETRY_FILE, MATERIALS_FILE = "ard52.toml", "materials.toml"
 AUTHORISED_BY = "company authorisation register"
 
 
@@ -120,7 +120,17 @@ def _login(
 def type_load(loaded: Loaded) -> dict[str, Variant]:
     """The materials, the type's geometry in force, and a configuration a variant."""
     administrator = loaded.users["administrator"]
-    materials_load(actor=administrator, at=BEGAN)
+    materials = settings.FIXTURES / MATERIALS_FILE
+    materials_load(path=materials, actor=administrator, at=BEGAN)
+    demo_values_load(
+        path=materials,
+        operator=loaded.operator,
+        person=loaded.people["engineer"],
+        second_person=loaded.people["signatory"],
+        on=DATA_BEGIN,
+        actor=loaded.users["engineer"],
+        at=BEGAN,
+    )
     revision = geometry_load(
         content=(settings.FIXTURES / GEOMETRY_FILE).read_text(),
         actor=administrator,

@@ -8,6 +8,7 @@ from functools import partial
 
 from fleet.due import Counters as Amounts
 from fleet.models import PartNumber
+from fleet.services import part_records
 from fleet.services import parts as fleet_parts
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
@@ -39,7 +40,7 @@ def part_numbers_load(loaded: Loaded, scenario: Scenario) -> None:
     planner = loaded.users["planner"]
     numbers: dict[str, PartNumber] = {}
     for plan in scenario.part_numbers:
-        numbers[plan.number] = fleet_parts.part_number_record(
+        numbers[plan.number] = part_records.part_number_record(
             actor=planner,
             at=BEGAN,
             operator=loaded.operator,
@@ -59,7 +60,7 @@ def part_numbers_load(loaded: Loaded, scenario: Scenario) -> None:
             title="Airworthiness limitations, safe-life parts",
         )
     for limit in scenario.life_limits:
-        fleet_parts.life_limit_key(
+        part_records.life_limit_key(
             actor=planner,
             at=BEGAN,
             part_number=numbers[limit.part_number],
@@ -101,7 +102,7 @@ def part_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
 
 
 def _record(loaded: Loaded, part: DemoPart, at: dt.datetime) -> None:
-    loaded.rows[part.key] = fleet_parts.part_record(
+    loaded.rows[part.key] = part_records.part_record(
         actor=loaded.users["planner"],
         at=at,
         part_number=loaded.rows[part.part_number],
@@ -117,7 +118,7 @@ def _record(loaded: Loaded, part: DemoPart, at: dt.datetime) -> None:
 def _earlier_life(
     loaded: Loaded, part: DemoPart, life: DemoEarlierLife, at: dt.datetime
 ) -> None:
-    fleet_parts.part_earlier_life(
+    part_records.part_earlier_life(
         actor=loaded.users["planner"],
         at=at,
         part=loaded.rows[part.key],

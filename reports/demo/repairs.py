@@ -8,7 +8,6 @@ from dataclasses import replace
 from reports.demo.airframe import in_opening
 from reports.demo.fleet import BY_MSN, DEMO_TODAY, FLEET
 from reports.demo.places import (
-    FUSELAGE,
     clear_of_plug,
     fuselage_text,
 )
@@ -250,7 +249,7 @@ def _category_draw(
 ) -> tuple[str, str]:
     old = (DEMO_TODAY - released_on).days > TIME_LIMITED_DAYS
     category = stream.weighted(CATEGORY_WEIGHTS if old else RECENT_CATEGORY_WEIGHTS)
-    if finding.truth.section != FUSELAGE:
+    if finding.truth.section.startswith("NAC") or finding.damage_type == "disbond":
         return "not_applicable", "secondary structure by the type's list"
     if category == "c" and (old or finding.msn == 1006):
         return "a", ""

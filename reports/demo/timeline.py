@@ -25,11 +25,12 @@ class Rank(IntEnum):
     GAP = 6
     EVENT = 7
     FINDING = 8
-    DISPOSITION = 9
-    REPAIR = 10
-    REQUIREMENT = 11
-    ACCOMPLISHMENT = 12
-    CLOSING = 13
+    MEASUREMENT = 9
+    DISPOSITION = 10
+    REPAIR = 11
+    REQUIREMENT = 12
+    ACCOMPLISHMENT = 13
+    CLOSING = 14
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,0 +1,112 @@
+"""Events and findings of the demo, entered as people wrote them."""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Iterator, Sequence
+from functools import partial
+
+from repairs.measured import Typed
+from repairs.services.findings import FindingEntry, finding_record
+from repairs.services.measuring import Measuring, measurement_record
+from reports.demo.fleet import BY_MSN, day_date, day_number
+from reports.demo.load_base import Loaded
+from reports.demo.load_parts import amounts
+from reports.demo.records import DemoFinding, Dimension, Scenario
+from reports.demo.timeline import Rank, Step
+from reports.demo.usage import Logbook
+
+COUNTERS_SOURCE = "technical log page of the day"
+INSPECTED = ("check", "task")
+PRINCIPAL_SOURCE = "type's list of principal structural elements, page 2"
+ATA = {"FUS": "53", "WING-L": "57", "WING-R": "57", "FIN": "55", "DOOR": "52"}
+
+
+def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
+    """Every finding as reported, and again as measured after rework."""
+    answered = {key: r.released_on for r in scenario.repairs for key in r.findings}
+    for finding in scenario.findings:
+        book = scenario.logbooks[finding.msn]
+        record = partial(_record, loaded, finding, book)
+        yield Step(finding.found_on, Rank.FINDING, finding.key, record)
+        if finding.reworked:
+            on = answered.get(finding.key, finding.found_on)
+            measure = partial(_measure, loaded, finding, on, book)
+            yield Step(on, Rank.MEASUREMENT, finding.key, measure)
+
+
+def typed(dimensions: Sequence[Dimension]) -> list[Typed]:
+    return [Typed(d.quantity, d.entered, d.worked_out) for d in dimensions]
+
+
+def last_clean(finding: DemoFinding, book: Logbook) -> dt.date | None:
+    """The last check that opened the area and found nothing there."""
+    if finding.occasion not in INSPECTED:
+        return None
+    found = day_number(finding.found_on)
+    earlier = [day for day in book.aircraft.check_days() if day < found - 30]
+    return day_date(earlier[-1]) if earlier else None
+
+
+def _record(
+    loaded: Loaded, finding: DemoFinding, book: Logbook, at: dt.datetime
+) -> None:
+    clean_on = last_clean(finding, book)
+    event = loaded.rows[finding.event] if finding.event else None
+    loaded.rows[finding.key] = finding_record(
+        entry=FindingEntry(
+            aircraft=loaded.aircraft[finding.msn],
+            place_entered=finding.location,
+            damage_type=finding.damage_type,
+            found_on=finding.found_on,
+            typed=typed(finding.dimensions),
+            at=amounts(finding.at),
+            counters_source=COUNTERS_SOURCE,
+            element=finding.element,
+            element_label=finding.element_label,
+            surface=finding.surface,
+            criticality="" if finding.element == "skin" else "principal",
+            criticality_source="" if finding.element == "skin" else PRINCIPAL_SOURCE,
+            ata=ATA.get(finding.truth.section, "54"),
+            cause=finding.cause,
+            cluster_count=finding.cluster_count,
+            occasion=finding.occasion,
+            task_reference=_task(finding),
+            detection_method=finding.method,
+            last_clean_on=clean_on,
+            last_clean_cycles=book.at(clean_on).cycles if clean_on else None,
+            last_clean_method="detailed visual" if clean_on else "",
+            found_by=loaded.people[finding.reporter],
+            event=event,
+            description=finding.description,
+        ),
+        actor=loaded.users["recorder"],
+        at=at,
+    )
+
+
+def _measure(
+    loaded: Loaded, finding: DemoFinding, on: dt.date, book: Logbook, at: dt.datetime
+) -> None:
+    measurement_record(
+        finding=loaded.rows[finding.key],
+        measuring=Measuring(
+            typed=typed(finding.reworked),
+            measured_on=on,
+            stage="after_rework",
+            measured_by=loaded.people["inspector"],
+            at=amounts(book.at(on)),
+            method="ultrasonic thickness gauge",
+            instrument="UT gauge 7, calibrated yearly",
+        ),
+        actor=loaded.users["recorder"],
+        at=at,
+    )
+
+
+def _task(finding: DemoFinding) -> str:
+    """The card of the inspection that found it."""
+    if finding.occasion not in INSPECTED:
+        return ""
+    mark = BY_MSN[finding.msn].registration[-3:]
+    return f"{mark} {finding.found_on:%y}-{sum(map(ord, finding.key)) % 900 + 100}"
