@@ -1,1 +1,25 @@
-"""Locations on the structure: geometry, reader, placer and writer (no database)."""
+"""Locations on the structure: geometry, reader, placer and writer (no database).
+
+    reading = read("STA 512+6 S-14L")
+    found = place(reading, geometry, "base")
+
+`read` asks no geometry and never raises; `place` raises LocationRefused.
+"""
+
+from __future__ import annotations
+
+from fleet.location.place import LocationRefused, Place
+from fleet.location.placing import place
+from fleet.location.reader import read
+from fleet.location.reading import READER_VERSION, Offer, Problem, Reading
+
+__all__ = [
+    "READER_VERSION",
+    "LocationRefused",
+    "Offer",
+    "Place",
+    "Problem",
+    "Reading",
+    "place",
+    "read",
+]

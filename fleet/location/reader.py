@@ -461,7 +461,6 @@ class _Reader:
 
     def _station(self, word: str) -> None:
         key = STATION_WORDS.get(word, "fin")
-        self.section_key = key
         if word == "fin":
             self.at += not self._kind("num", 1)
         before = len(self.problems)
@@ -477,10 +476,13 @@ class _Reader:
         token = self._peek()
         minus = False
         if token is not None and token.kind == "word":
-            key = STATION_WORDS.get(token.text, key)
+            if key != "fin":
+                key = STATION_WORDS.get(token.text, key)
             self.at += 1
             self._skip(".", ":", "#", "@", "no")
-            if self._is("s", "y", "x") and self._kind("num", 1 + self._is("=", ahead=1)):
+            if self._is("s", "y", "x") and self._kind(
+                "num", 1 + self._is("=", ahead=1)
+            ):
                 self.at += 1
                 self._skip("=")
             if self._is("-") and self._kind("num", 1):
@@ -602,7 +604,10 @@ class _Reader:
         if not aft and not self._is("looking"):
             self.codes.append("W_VIEW_ASSUMED")
         known = self.found.get("clock_degrees", ())
-        self.found["clock_degrees"] = (*known, (360.0 - degrees) % 360.0 if aft else degrees)
+        self.found["clock_degrees"] = (
+            *known,
+            (360.0 - degrees) % 360.0 if aft else degrees,
+        )
         return True
 
     def _looking_aft(self) -> bool:
@@ -613,7 +618,9 @@ class _Reader:
 
     def _peek_door_name(self) -> bool:
         token = self.tokens[self.at]
-        return token.text.isdigit() and len(token.text) == 1 and token.tail in ("l", "r")
+        return (
+            token.text.isdigit() and len(token.text) == 1 and token.tail in ("l", "r")
+        )
 
     def _cargo_door(self) -> bool:
         return self._is("cargo", ahead=1) and self._is("door", ahead=2)

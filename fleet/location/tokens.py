@@ -50,9 +50,7 @@ def tokens_of(text: str) -> list[Token]:
     for match in _TOKEN.finditer(text):
         kind = match.lastgroup or "sym"
         if match["num"] is not None:
-            found.append(
-                Token("num", match["num"], match["tail"] or "", *match.span())
-            )
+            found.append(Token("num", match["num"], match["tail"] or "", *match.span()))
         elif match["word"] is not None:
             found.append(Token("word", match["word"], "", *match.span()))
         else:

@@ -93,7 +93,7 @@ ELEMENT_PHRASES = {
 
 INTERNAL = {
     "floor_beam", "seat_track", "bulkhead", "shear_clip", "frame_web", "frame_cap",
-    "spar_cap", "spar_web", "rib", "stringer",
+    "spar_cap", "spar_web", "rib", "stringer", "keel_beam",
 }  # fmt: skip
 """Elements that do not lie on the outer surface."""
 KEEL_BEAM = "KEEL BEAM"
@@ -112,7 +112,7 @@ def element_of(text: str) -> tuple[str, str]:
             skin = ("skin", "")
             continue
         if groups["keel_beam"]:
-            return "other", KEEL_BEAM
+            return "keel_beam", KEEL_BEAM
         if groups["frame"]:
             return f"frame_{groups['part']}", ""
         if groups["bulkhead"]:

@@ -1,0 +1,375 @@
+"""Second stage, across: stringers, butt and water lines, clock and spars to s."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from fleet.location.along import Work, did_you_mean, door_cutout
+from fleet.location.place import LocationRefused
+from fleet.location.reading import Across, Offer
+from fleet.location.sections import TINY_MM, Plane, Stringer
+
+SIDE_MISSING = "{what} has no side. Did you mean {offers}?"
+SIDE_CONFLICT = "“{what}” names a line on the {on}, but also says {said}; keep one."
+STR_RANGE = "{what} is not on this {section} ({low} to {high}).{offers}"
+BL_RANGE = "BL {read} is outside this {section} here (0 to {high})."
+WL_RANGE = "WL {read} is outside this {section} here ({low} to {high})."
+NO_LINES = "{what} is not a notation of this {section}; use {words}."
+HALF_ROUND = "{what} is as far over the crown as over the keel; name a line between."
+DISAGREE = "{one} and {other} are {apart} apart; correct one."
+OUTSIDE = "BL {bl} and WL {wl} meet {apart} outside the skin; correct one."
+SPAR_UNKNOWN = "This {section} has no {name} spar; it has {offers}."
+
+OFF_SKIN_IN = 2.0
+CLOCK_AGREES_DEG = 15.0
+_SIDES = {"L": "left", "R": "right"}
+
+
+@dataclass(frozen=True)
+class Reach:
+    """Across: s1..s2 (None: not said), side, and lines as read."""
+
+    s1_mm: float | None = None
+    s2_mm: float | None = None
+    side: str = ""
+    bl_mm: float | None = None
+    wl_mm: float | None = None
+    off_skin: bool = False
+
+
+def reach_of(work: Work, map_mm: float) -> Reach:
+    """What the text says across, at this map position."""
+    reading = work.reading
+    cutout = door_cutout(work)
+    if reading.stringers:
+        reach = _stringers(work, map_mm)
+        _clock_agrees(work, reach)
+    elif reading.clock_degrees:
+        reach = _clock(work)
+    elif reading.butt_lines or reading.water_lines:
+        reach = _lines(work, map_mm)
+    elif reading.spar is not None:
+        reach = _spar(work, map_mm)
+    elif cutout is not None:
+        side = "L" if cutout.box.s2_mm <= 0.0 else "R"
+        reach = Reach(cutout.box.s1_mm, cutout.box.s2_mm, side)
+    elif work.section.skins == ("left", "right") and reading.side:
+        section = work.section
+        ends = (section.s1_mm, 0.0) if reading.side == "L" else (0.0, section.s2_mm)
+        reach = Reach(*ends, reading.side)
+    else:
+        reach = Reach(side=reading.side)
+    return _with_side(work, reach)
+
+
+def _with_side(work: Work, reach: Reach) -> Reach:
+    """The side that the text names must be the side of the lines it names."""
+    section, said = work.section, work.reading.side
+    if section.side:
+        return Reach(
+            reach.s1_mm, reach.s2_mm, section.side, reach.bl_mm, reach.wl_mm,
+            reach.off_skin,
+        )  # fmt: skip
+    if said and reach.side and said != reach.side:
+        message = SIDE_CONFLICT.format(
+            what=work.reading.text.strip(),
+            on=_SIDES.get(reach.side, "left and right"),
+            said=_SIDES[said],
+        )
+        raise LocationRefused("E_SIDE_CONFLICT", message)
+    return reach
+
+
+# -- stringers ----------------------------------------------------------------
+
+
+def _stringers(work: Work, map_mm: float) -> Reach:
+    points = _sided(work.reading.stringers)
+    values = [_stringer_s(work, point, map_mm) for point in points]
+    if len(values) == 1:
+        return _reach(work, values[0], values[0])
+    return _between(work, values[0], values[1])
+
+
+def _sided(points: tuple[Across, ...]) -> list[Across]:
+    """A side written at one end of a range holds for both."""
+    sides = {p.side for p in points if p.side}
+    if len(sides) != 1:
+        return list(points)
+    side = sides.pop()
+    return [Across(p.kind, p.number, p.side or side, p.offset, p.name) for p in points]
+
+
+def _stringer_s(work: Work, point: Across, map_mm: float) -> float:
+    section = work.section
+    line = _line(work, point)
+    if point.offset is None:
+        return line.s_mm
+    direction = point.offset.direction
+    length = point.offset.length.mm(work.unit) / section.scale_at(map_mm)
+    if not section.is_shell or direction not in ("above", "below"):
+        what = f"“{direction} of {line.label}”"
+        words = "above or below" if section.is_shell else "aft or fwd of a spar"
+        message = NO_LINES.format(what=what, section=work.name, words=words)
+        raise LocationRefused("E_SECTION_MISMATCH", message)
+    side = line.side or point.side or work.reading.side
+    if not side:
+        name = f"{direction} {line.label}"
+        raise _side_missing(f"“{name}”", f"{name} LH", f"{name} RH")
+    down = 1.0 if side == "R" else -1.0
+    turn = line.s_mm if line.side or line.s_mm == 0.0 else -down * line.s_mm
+    return turn + (down if direction == "below" else -down) * length
+
+
+def _line(work: Work, point: Across) -> Stringer:
+    """The stringer a reading names, with the side the text gives elsewhere."""
+    section = work.section
+    side = point.side or work.reading.side or section.side * (not section.is_shell)
+    numbered = [t for t in section.stringers if t.number == point.number]
+    name = f"{section.stringer_prefix}{point.number:f}"
+    if not numbered:
+        numbers = [t.number for t in section.stringers] or [0]
+        nearest = min(numbers, key=lambda n: abs(n - point.number))
+        offers = (Offer("nearest", f"{section.stringer_prefix}{nearest}{point.side}"),)
+        message = STR_RANGE.format(
+            what=name + point.side,
+            section=work.name,
+            low=f"{section.stringer_prefix}{min(numbers)}",
+            high=f"{section.stringer_prefix}{max(numbers)}",
+            offers=did_you_mean(offers),
+        )
+        raise LocationRefused("E_STR_RANGE", message, offers)
+    if len(numbered) == 1:
+        return numbered[0]
+    for line in numbered:
+        if line.side == side:
+            return line
+    raise _side_missing(name, f"{name}L", f"{name}R")
+
+
+def _side_missing(what: str, *texts: str) -> LocationRefused:
+    offers = tuple(Offer("side", text) for text in texts)
+    message = SIDE_MISSING.format(what=what, offers=" or ".join(texts))
+    return LocationRefused("E_SIDE_MISSING", message, offers)
+
+
+def _between(work: Work, one: float, other: float) -> Reach:
+    """The shorter way round between two lines; which way is seen from the result."""
+    section = work.section
+    if section.wrap_mm is None:
+        return _reach(work, min(one, other), max(one, other))
+    way = section.wrapped(other - one)
+    if abs(abs(way) - section.wrap_mm / 2.0) < TINY_MM:
+        what = f"“{work.reading.text.strip()}”"
+        raise LocationRefused("E_TWO_POINTS", HALF_ROUND.format(what=what))
+    start = section.wrapped(one if way >= 0.0 else other)
+    return _reach(work, start, start + abs(way))
+
+
+def _reach(work: Work, s1_mm: float, s2_mm: float) -> Reach:
+    """Reach of an arc, with its side: L, R, LR over the centreline, '' on it."""
+    section = work.section
+    if section.wrap_mm is None:
+        side = "" if section.skins != ("left", "right") else "L" if s1_mm < 0 else "R"
+        return Reach(s1_mm, s2_mm, side)
+    start = section.wrapped(s1_mm)
+    end = start + (s2_mm - s1_mm)
+    half = section.wrap_mm / 2.0
+    if start < -TINY_MM and end > TINY_MM or end > half + TINY_MM:
+        work.codes.append("W_CROSSES_CENTRELINE")
+        return Reach(start, end, "LR")
+    middle = (start + end) / 2.0
+    if abs(middle) < TINY_MM or abs(middle + half) < TINY_MM:
+        return Reach(start, end, "")
+    return Reach(start, end, "L" if middle < 0.0 else "R")
+
+
+# -- clock --------------------------------------------------------------------
+
+
+def _clock(work: Work) -> Reach:
+    section = work.section
+    _shell_only(work, "o'clock")
+    values = [
+        section.wrapped(math.radians(d) * section.reference_mm)
+        for d in work.reading.clock_degrees[:2]
+    ]
+    if len(values) == 1:
+        return _reach(work, values[0], values[0])
+    return _between(work, values[0], values[1])
+
+
+def _clock_agrees(work: Work, reach: Reach) -> None:
+    """Clock and stringer of one text must name one place."""
+    section = work.section
+    if not work.reading.clock_degrees or reach.s1_mm is None or reach.s2_mm is None:
+        return
+    clock = math.radians(work.reading.clock_degrees[0]) * section.reference_mm
+    middle = (reach.s1_mm + reach.s2_mm) / 2.0
+    apart = math.degrees(abs(section.wrapped(clock - middle)) / section.reference_mm)
+    if apart > CLOCK_AGREES_DEG + 1e-9:
+        message = DISAGREE.format(
+            one="the clock", other="the stringer", apart=f"{apart:.0f}°"
+        )
+        raise LocationRefused("E_MISMATCH", message)
+
+
+def _shell_only(work: Work, what: str) -> None:
+    if not work.section.is_shell:
+        words = "a stringer or a spar"
+        message = NO_LINES.format(what=f"“{what}”", section=work.name, words=words)
+        raise LocationRefused("E_SECTION_MISMATCH", message)
+
+
+# -- butt and water lines -----------------------------------------------------
+
+
+def _lines(work: Work, map_mm: float) -> Reach:
+    """Butt and water lines: a point of the skin, or of internal structure."""
+    _shell_only(work, "BL, WL")
+    if work.section.axis_wl_mm is None:
+        words = "a stringer or the clock"
+        message = NO_LINES.format(what="“BL, WL”", section=work.name, words=words)
+        raise LocationRefused("E_SECTION_MISMATCH", message)
+    bls = [_butt_line(work, p, map_mm) for p in work.reading.butt_lines]
+    wls = [_water_line(work, p, map_mm) for p in work.reading.water_lines]
+    side = _line_side(work, bls)
+    bl = sum(bls) / len(bls) if bls else None
+    wl = sum(wls) / len(wls) if wls else None
+    if wl is None:
+        return Reach(side=side, bl_mm=bl)
+    if bl is None:
+        return _from_water_line(work, wls, map_mm, side)
+    return _on_skin(work, bl, wl, map_mm, side)
+
+
+def _butt_line(work: Work, point: Across, map_mm: float) -> float:
+    """Butt line in mm, right positive."""
+    side = point.side or work.reading.side
+    value = work.mm(point.number)
+    if value and not side:
+        name = f"BL {point.number:f}"
+        raise _side_missing(name, f"L{name}", f"R{name}")
+    if point.offset is not None:
+        outward = {"outbd": 1.0, "inbd": -1.0}.get(point.offset.direction)
+        if outward is None:
+            what = f"“{point.offset.direction} of BL”"
+            words = "inbd or outbd"
+            message = NO_LINES.format(what=what, section=work.name, words=words)
+            raise LocationRefused("E_SECTION_MISMATCH", message)
+        value += outward * point.offset.length.mm(work.unit)
+    radius = work.section.size_at(map_mm)
+    if abs(value) > radius + work.mm_in(OFF_SKIN_IN):
+        message = BL_RANGE.format(
+            read=work.show(value), section=work.name, high=work.show(radius)
+        )
+        raise LocationRefused("E_BL_RANGE", message)
+    return -value if side == "L" else value
+
+
+def _water_line(work: Work, point: Across, map_mm: float) -> float:
+    section = work.section
+    assert section.axis_wl_mm is not None
+    value = work.mm(point.number)
+    if point.offset is not None:
+        up = {"above": 1.0, "below": -1.0}.get(point.offset.direction, 0.0)
+        value += up * point.offset.length.mm(work.unit)
+    radius = section.size_at(map_mm)
+    if abs(value - section.axis_wl_mm) > radius + work.mm_in(OFF_SKIN_IN):
+        message = WL_RANGE.format(
+            read=work.show(value),
+            section=work.name,
+            low=work.show(section.axis_wl_mm - radius),
+            high=work.show(section.axis_wl_mm + radius),
+        )
+        raise LocationRefused("E_WL_RANGE", message)
+    return value
+
+
+def _line_side(work: Work, bls: list[float]) -> str:
+    sides = {"L" if bl < 0.0 else "R" for bl in bls if bl}
+    if len(sides) == 2:
+        return "LR"
+    return sides.pop() if sides else work.reading.side
+
+
+def _from_water_line(work: Work, wls: list[float], map_mm: float, side: str) -> Reach:
+    """The skin at a water line, on the side that must be known."""
+    section = work.section
+    assert section.axis_wl_mm is not None
+    if not side:
+        name = f"WL {work.show(wls[0])}"
+        raise _side_missing(name, f"{name} LH", f"{name} RH")
+    radius, sign = section.size_at(map_mm), 1.0 if side == "R" else -1.0
+    angles = [
+        math.acos(max(-1.0, min(1.0, (wl - section.axis_wl_mm) / radius))) for wl in wls
+    ]
+    values = sorted(sign * angle * section.reference_mm for angle in angles)
+    return Reach(values[0], values[-1], side, None, sum(wls) / len(wls))
+
+
+def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reach:
+    section = work.section
+    assert section.axis_wl_mm is not None
+    up = wl - section.axis_wl_mm
+    off = math.hypot(bl, up) - section.size_at(map_mm)
+    if off > work.mm_in(OFF_SKIN_IN):
+        message = OUTSIDE.format(
+            bl=work.show(abs(bl)),
+            wl=work.show(wl),
+            apart=f"{work.show(off)} {work.unit}",
+        )
+        raise LocationRefused("E_MISMATCH", message)
+    if off < -work.mm_in(OFF_SKIN_IN):
+        return Reach(None, None, side, bl, wl, off_skin=True)
+    s_mm = section.wrapped(math.atan2(bl, up) * section.reference_mm)
+    return Reach(s_mm, s_mm, side, bl, wl)
+
+
+# -- spars --------------------------------------------------------------------
+
+
+def _spar(work: Work, map_mm: float) -> Reach:
+    """A place told from a spar: on it, a length from it, or the box beside it."""
+    point, section = work.reading.spar, work.section
+    assert point is not None
+    spars = [p for p in section.planes if p.kind == "spar" and p.s_mm is not None]
+    plane = next((p for p in spars if p.label == f"{point.name.upper()} SPAR"), None)
+    if plane is None or plane.s_mm is None:
+        listed = " and ".join(p.label.lower() for p in spars) or "none"
+        message = SPAR_UNKNOWN.format(section=work.name, name=point.name, offers=listed)
+        raise LocationRefused("E_SECTION_MISMATCH", message)
+    low, high = _spar_reach(work, point, plane, spars, map_mm)
+    if section.skins == ("left", "right"):
+        if not work.reading.side:
+            raise _side_missing(plane.label.lower(), "LH", "RH")
+        if work.reading.side == "L":
+            low, high = -high, -low
+    return _reach(work, low, high)
+
+
+def _spar_reach(
+    work: Work, point: Across, plane: Plane, spars: list[Plane], map_mm: float
+) -> tuple[float, float]:
+    section, at = work.section, plane.s_mm or 0.0
+    if point.offset is None:
+        return at, at
+    if point.offset.direction not in ("fwd", "aft"):
+        what = f"“{point.offset.direction} of {plane.label.lower()}”"
+        message = NO_LINES.format(what=what, section=work.name, words="fwd or aft")
+        raise LocationRefused("E_SECTION_MISMATCH", message)
+    aft = point.offset.direction == "aft"
+    if point.number < 0:  # no length: all the skin on that side, to the next spar
+        lines = sorted([0.0, *(p.s_mm or 0.0 for p in spars), section.s2_mm])
+        index = lines.index(at)
+        return (at, lines[index + 1]) if aft else (lines[index - 1], at)
+    length = point.offset.length.mm(work.unit) / section.scale_at(map_mm)
+    s_mm = at + length if aft else at - length
+    if not 0.0 <= s_mm <= section.s2_mm + TINY_MM:
+        raise LocationRefused(
+            "E_STR_RANGE",
+            f"{point.offset.length.number:f} {point.offset.direction} of the "
+            f"{plane.label.lower()} is beyond the chord of this {work.name} here.",
+        )
+    return s_mm, s_mm
