@@ -6,7 +6,6 @@ at a time; a part without life left, or without a complete history, is not insta
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from datetime import date, datetime
 from typing import Any
 
@@ -23,6 +22,7 @@ from fleet.models import (
     SafeLifePart,
     User,
 )
+from fleet.refusals import Refused
 from fleet.selectors.parts import PartLife, part_life
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
@@ -47,12 +47,8 @@ NO_REASON = "Say why the part was removed."
 NEEDED = (COUNTED[0], COUNTED[1], COUNTED[2])
 
 
-class PartRefused(ValueError):
-    """What stands against it, one sentence each in `problems`."""
-
-    def __init__(self, problems: Sequence[str]) -> None:
-        super().__init__("\n".join(problems))
-        self.problems = list(problems)
+class PartRefused(Refused):
+    """A part that cannot go where it is asked to go."""
 
 
 def part_install(

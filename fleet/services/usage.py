@@ -7,6 +7,7 @@ from dataclasses import replace
 from datetime import date, datetime, timedelta
 
 from fleet.models import Aircraft, UsageRecord, User
+from fleet.refusals import Refused
 from fleet.selectors.counters import aircraft_standing, usage_current
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
@@ -70,12 +71,8 @@ HIGHEST = {
 }
 
 
-class UsageRefused(ValueError):
-    """Lines that do not fit the records; `problems` has one sentence each."""
-
-    def __init__(self, problems: Sequence[str]) -> None:
-        super().__init__("\n".join(problems))
-        self.problems = list(problems)
+class UsageRefused(Refused):
+    """Lines that do not fit the aircraft's records."""
 
 
 def usage_record(

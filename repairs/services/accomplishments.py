@@ -1,0 +1,243 @@
+"""Inspections done, answered and terminated; each opens the next due point."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from datetime import date, datetime
+
+from fleet.due import COUNTER_WORDS, Counters, Due, Remaining
+from fleet.models import Document, Person, User
+from fleet.services.aircraft import stream_of
+from fleet.services.history import Writing
+from fleet.services.parts import counter_columns
+from repairs.models import (
+    Accomplishment,
+    DueKind,
+    Finding,
+    InspectionRequirement,
+    RequirementState,
+    RequirementSubject,
+    ZoneInspected,
+)
+from repairs.selectors.requirement_due import (
+    accomplishments_of,
+    needed_counters,
+    subject_overrun,
+)
+from repairs.services.due_points import due_point_open, due_points_close
+from repairs.services.inspections import (
+    RequirementRefused,
+    dues_open,
+    requirement_writing,
+)
+
+INSPECTION = (DueKind.THRESHOLD, DueKind.REPEAT)
+IN_FORCE = (RequirementState.EFFECTIVE, RequirementState.TERMINATION_UNVERIFIED)
+LEVELS = {"general_visual": "general_visual", "detailed_visual": "detailed"}
+
+NOT_IN_FORCE = "{number} is {state} for this subject; nothing is to be done."
+IN_FUTURE = "{day} lies after today, {today}; record the inspection when it is done."
+OUT_OF_ORDER = (
+    "{day} lies before {last}, when it was last done; correct that one first."
+)
+COUNTER_MISSING = (
+    "Give the {counter} at the inspection; the next one is counted from it."
+)
+FINDING_MISSING = "Name the finding; a result with a finding has its own record."
+NO_EVIDENCE = "Say what shows that the terminating action is in place, and who saw it."
+UNVERIFIED = "the terminating action is not verified yet"
+NO_REASON = "Say why it does not apply."
+ALREADY_DONE = "It has been done here, so it applied; terminate it with evidence."
+SAME_PERSON = "The evidence is verified by someone other than who recorded it."
+NO_CLAIM = "No terminating action waits for verification here."
+
+
+@dataclass(frozen=True)
+class Accomplished:
+    """A recorded accomplishment, and on which counters it came too late."""
+
+    row: Accomplishment
+    overrun: tuple[Remaining, ...]
+
+
+def accomplishment_record(
+    *,
+    actor: User | None,
+    at: datetime,
+    today: date,
+    subject: RequirementSubject,
+    done_on: date,
+    counters: Counters,
+    result: str,
+    done_by: Person | None = None,
+    finding: Finding | None = None,
+    release_document: Document | None = None,
+    evidence: str = "",
+    late_approval: str = "",
+) -> Accomplished:
+    """Record one doing on one subject and open the next due point.
+
+    `counters` are the subject's own at release. `late_approval` names the approval of
+    lateness, if there was one. A terminating action keeps the item on the list until
+    another person has verified its evidence.
+    """
+    requirement = subject.requirement
+    stream = stream_of(subject.aircraft) if subject.aircraft else "fleet"
+    with requirement_writing(
+        actor, "accomplishment_record", at, requirement.operator, stream=stream
+    ) as w:
+        w.locked(RequirementSubject.objects.all(), pk=subject.pk)
+        subject.refresh_from_db(fields=["state", "applies"])
+        problems = _done_problems(subject, done_on, counters, today)
+        if result == "finding" and finding is None:
+            problems.append(FINDING_MISSING)
+        if result == "terminated" and not evidence.strip():
+            problems.append(NO_EVIDENCE)
+        if problems:
+            raise RequirementRefused(problems)
+        row = w.create(
+            Accomplishment(
+                subject=subject,
+                number=subject.accomplishments.count() + 1,
+                done_on=done_on,
+                done_by=done_by,
+                result=result,
+                finding=finding,
+                release_document=release_document,
+                evidence=evidence,
+                late_approved=bool(late_approval.strip()),
+                late_approval=late_approval.strip(),
+                **counter_columns("at", counters),
+            )
+        )
+        late = subject_overrun(subject, row)
+        _next_due(w, subject, row)
+        _looked(w, requirement, row)
+    return Accomplished(row, tuple(late))
+
+
+def _done_problems(
+    subject: RequirementSubject, done_on: date, counters: Counters, today: date
+) -> list[str]:
+    requirement = subject.requirement
+    problems = []
+    if subject.state not in IN_FORCE:
+        state = subject.get_state_display()
+        problems.append(NOT_IN_FORCE.format(number=requirement.number, state=state))
+    if done_on > today:
+        problems.append(IN_FUTURE.format(day=done_on, today=today))
+    done = accomplishments_of(subject)
+    if done and done_on < done[-1].done_on:
+        problems.append(OUT_OF_ORDER.format(day=done_on, last=done[-1].done_on))
+    problems += [
+        COUNTER_MISSING.format(counter=COUNTER_WORDS[counter][0])
+        for counter in needed_counters(requirement)
+        if counters[counter] is None
+    ]
+    return problems
+
+
+def _next_due(w: Writing, subject: RequirementSubject, row: Accomplishment) -> None:
+    if subject.applies == "unanswered":
+        w.change(subject, applies="yes")
+    if row.result == "terminated":
+        w.change(
+            subject,
+            state=RequirementState.TERMINATION_UNVERIFIED.value,
+            terminated_on=row.done_on,
+            termination_evidence=row.evidence,
+        )
+    due_points_close(
+        w, origin=subject, on=row.done_on, reason="done", by=row, kinds=INSPECTION
+    )
+    opened = dues_open(w, subject, row.done_on, replacement=False)
+    if row.result == "terminated" and not opened:
+        due_point_open(
+            w,
+            origin=subject,
+            kind=DueKind.REPEAT,
+            due=Due(cannot_compute=UNVERIFIED),
+            opened_on=row.done_on,
+            basis=UNVERIFIED,
+            after=row,
+        )
+
+
+def _looked(
+    w: Writing, requirement: InspectionRequirement, row: Accomplishment
+) -> None:
+    """Every inspection of an aircraft is a look that rates per inspection count."""
+    subject = row.subject
+    if subject.aircraft is None:
+        return
+    w.create(
+        ZoneInspected(
+            aircraft=subject.aircraft,
+            area=requirement.area,
+            inspected_on=row.done_on,
+            level=LEVELS.get(requirement.method, "special"),
+            method=requirement.method,
+            inspected_by=row.done_by,
+            found=row.result == "finding",
+            at_minutes=row.at_minutes,
+            at_cycles=row.at_cycles,
+            at_landings=row.at_landings,
+            at_pressurisations=row.at_pressurisations,
+        )
+    )
+
+
+def subject_not_applicable(
+    *,
+    actor: User | None,
+    at: datetime,
+    subject: RequirementSubject,
+    on: date,
+    reason: str,
+) -> None:
+    """Answer that the requirement does not apply here, with the reason."""
+    requirement = subject.requirement
+    with requirement_writing(
+        actor, "subject_not_applicable", at, requirement.operator, reason=reason
+    ) as w:
+        problems = [] if reason.strip() else [NO_REASON]
+        if accomplishments_of(subject):
+            problems.append(ALREADY_DONE)
+        if problems:
+            raise RequirementRefused(problems)
+        w.change(subject, applies="no", reason=reason.strip())
+        due_points_close(w, origin=subject, on=on, reason=f"does not apply: {reason}")
+
+
+def termination_verify(
+    *,
+    actor: User | None,
+    at: datetime,
+    subject: RequirementSubject,
+    on: date,
+    evidence: str,
+) -> None:
+    """A second person confirms the terminating action; only then it leaves the list."""
+    requirement = subject.requirement
+    with requirement_writing(
+        actor, "termination_verify", at, requirement.operator
+    ) as w:
+        claim = subject.accomplishments.filter(result="terminated").last()
+        problems = [] if evidence.strip() else [NO_EVIDENCE]
+        if subject.state != RequirementState.TERMINATION_UNVERIFIED or claim is None:
+            problems.append(NO_CLAIM)
+        elif actor is not None and claim.entered_by_id == actor.pk:
+            problems.append(SAME_PERSON)
+        if problems:
+            raise RequirementRefused(problems)
+        w.change(
+            subject,
+            state=RequirementState.TERMINATED.value,
+            termination_evidence=f"{subject.termination_evidence}; {evidence.strip()}",
+        )
+        due_points_close(w, origin=subject, on=on, reason="terminating action verified")
+        open_subjects = requirement.subjects.exclude(
+            state=RequirementState.TERMINATED
+        ).exclude(applies="no")
+        if not open_subjects.exists():
+            w.change(requirement, state=RequirementState.TERMINATED.value)
