@@ -176,7 +176,7 @@ def _reach(work: Work, s1_mm: float, s2_mm: float) -> Reach:
     start = section.wrapped(s1_mm)
     end = start + (s2_mm - s1_mm)
     half = section.wrap_mm / 2.0
-    if start < -TINY_MM and end > TINY_MM or end > half + TINY_MM:
+    if (start < -TINY_MM < TINY_MM < end) or end > half + TINY_MM:
         work.codes.append("W_CROSSES_CENTRELINE")
         return Reach(start, end, "LR")
     middle = (start + end) / 2.0

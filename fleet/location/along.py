@@ -228,9 +228,8 @@ def _inside(work: Work, x_mm: float, point: Along) -> float:
     section = work.section
     low = section.x_of(section.map1_mm, work.variant)
     high = section.x_of(section.map2_mm, work.variant)
-    assert low is not None and high is not None, (
-        "a section begins and ends outside plugs"
-    )
+    assert low is not None
+    assert high is not None
     if low - TINY_MM <= x_mm <= high + TINY_MM:
         return x_mm
     word = station_word(section) if point.kind == "station" else section.frame_prefix
@@ -300,7 +299,9 @@ def door_x(work: Work, cutout: Cutout) -> tuple[float, float]:
     door = work.reading.door
     fore = work.section.x_of(cutout.box.map1_mm, work.variant)
     rear = work.section.x_of(cutout.box.map2_mm, work.variant)
-    assert door is not None and fore is not None and rear is not None
+    assert door is not None
+    assert fore is not None
+    assert rear is not None
     if door.offset is None:
         at = {"fwd": (fore, fore), "aft": (rear, rear)}
         return at.get(door.edge, (fore, rear))

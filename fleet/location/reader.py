@@ -113,7 +113,7 @@ class _Reader:
             element=element,
             element_label=label,
             codes=tuple(dict.fromkeys(self.codes)),
-            **{name: points for name, points in self.found.items()},
+            **self.found,
         )
         self._along_missing(reading)
         return replace(reading, problems=tuple(self.problems))
@@ -468,9 +468,9 @@ class _Reader:
         self._points(
             "stations", "station", lambda: self._station_point(key), set(STATION_WORDS)
         )
-        if len(self.problems) == before and known == self.found and not self.pending:
-            if "stations" not in self.found:
-                self.valueless = self.valueless or word
+        nothing = len(self.problems) == before and known == self.found
+        if nothing and not self.pending and "stations" not in self.found:
+            self.valueless = self.valueless or word
 
     def _station_point(self, key: str) -> Along | None:
         token = self._peek()

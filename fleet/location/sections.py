@@ -68,7 +68,7 @@ class Stringer:
 
 @dataclass(frozen=True)
 class Box:
-    """A rectangle of the unrolled section; s2 may pass half the wrap (over the keel)."""
+    """A rectangle of the unrolled section; s2 may pass the keel, half the wrap."""
 
     map1_mm: float
     map2_mm: float

@@ -112,7 +112,8 @@ def _lines(work: Work, position: Position) -> str:
 
 def _stringers(work: Work, position: Position) -> str:
     section = work.section
-    assert position.s1_mm is not None and position.s2_mm is not None
+    assert position.s1_mm is not None
+    assert position.s2_mm is not None
     map_mm = section.map_of((position.x1_mm + position.x2_mm) / 2.0, work.variant)
     first = _one_stringer(work, position.s1_mm, map_mm)
     last = _one_stringer(work, position.s2_mm, map_mm)
@@ -152,7 +153,8 @@ def _off(work: Work, turn: float, line: Stringer, direction: str, scale: float) 
 
 def _chord(work: Work, position: Position) -> str:
     section = work.section
-    assert position.s1_mm is not None and position.s2_mm is not None
+    assert position.s1_mm is not None
+    assert position.s2_mm is not None
     side = ""
     low, high = sorted((abs(position.s1_mm), abs(position.s2_mm)))
     if section.skins == ("left", "right"):

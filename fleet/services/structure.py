@@ -1,14 +1,15 @@
-"""Loading and publishing a type's geometry from its file."""
+"""A type's geometry from its file, and the place columns read against it."""
 
 from __future__ import annotations
 
 import datetime as dt
-from typing import TypeVar
+from typing import Any, TypeVar
 
 from django.core.exceptions import ValidationError
 from django.db import models
 
 from fleet.canonical import canonical, digest, plain
+from fleet.location import READER_VERSION, LocationRefused, Place
 from fleet.location.geometry import (
     GeometryFileError,
     TypeGeometry,
@@ -17,6 +18,7 @@ from fleet.location.geometry import (
 from fleet.location.geometry import Panel as FilePanel
 from fleet.location.geometry import Section as FileSection
 from fleet.models import (
+    Aircraft,
     AircraftType,
     Cutout,
     DetectableSize,
@@ -33,7 +35,7 @@ from fleet.models import (
     Variant,
     Zone,
 )
-from fleet.selectors.structure import geometry_in_force
+from fleet.selectors.structure import NO_GEOMETRY, geometry_in_force
 from fleet.services.history import Writing
 
 Row = TypeVar("Row", bound=models.Model)
@@ -117,6 +119,44 @@ def geometry_publish(
             w.change(before, state=GeometryRevision.State.SUPERSEDED)
         w.change(revision, state=GeometryRevision.State.PUBLISHED, published_on=on)
     return revision
+
+
+def place_columns(aircraft: Aircraft, found: Place) -> dict[str, Any]:
+    """The place columns of a record on this aircraft: the only writer of them.
+
+    Rows are those of the geometry in force; four queries.
+    """
+    aircraft_type = aircraft.variant.aircraft_type
+    revision = geometry_in_force(aircraft_type)
+    if revision is None:
+        raise LocationRefused(
+            "E_NO_GEOMETRY", NO_GEOMETRY.format(code=aircraft_type.code)
+        )
+    section = aircraft_type.sections.get(code=found.section)
+    panel = (
+        revision.panels.get(section=section, label=found.panel) if found.panel else None
+    )
+    zone = aircraft_type.zones.get(code=found.zone) if found.zone else None
+    return {
+        "section": section,
+        "geometry": revision,
+        "place_entered": found.entered,
+        "place_text": found.canonical,
+        "place_codes": " ".join(found.codes),
+        "reader_version": READER_VERSION,
+        "x1_mm": found.x1_mm,
+        "x2_mm": found.x2_mm,
+        "map_mm": found.map_mm,
+        "s1_mm": found.s1_mm,
+        "s2_mm": found.s2_mm,
+        "bl_mm": found.bl_mm,
+        "wl_mm": found.wl_mm,
+        "along_half": found.along_half,
+        "around_half": found.around_half,
+        "surface": found.surface,
+        "panel": panel,
+        "zone": zone,
+    }
 
 
 def _put(w: Writing, row: Row, found: Row | None, *columns: str) -> Row:
@@ -206,9 +246,7 @@ def _zones(
     return found
 
 
-def _policies(
-    w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry
-) -> None:
+def _policies(w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry) -> None:
     """Fatigue policies and detectable sizes the record does not yet hold."""
     for policy in geometry.fatigue_policies:
         row = FatiguePolicy(
