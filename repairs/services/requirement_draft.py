@@ -107,10 +107,8 @@ class RequirementDraft:
 
 
 def evaluation_approved(evaluation: Evaluation) -> bool:
-    """Whether an approval stands under the calculation's digest; a query."""
-    return evaluation.approvals.filter(
-        meaning__in=APPROVED, content_digest=evaluation.content_digest
-    ).exists()
+    """Whether it is approved for its intervals (stage 1 is strength only); a query."""
+    return evaluation.approvals.filter(meaning__in=APPROVED).exists()
 
 
 def draft_problems(draft: RequirementDraft) -> list[str]:

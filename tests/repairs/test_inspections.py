@@ -6,9 +6,9 @@ import datetime as dt
 
 import pytest
 
+from fleet.canonical import digest
 from fleet.due import Counter, Counters
 from repairs.models import (
-    Approval,
     BlindReentry,
     DuePoint,
     Evaluation,
@@ -21,6 +21,7 @@ from repairs.services.accomplishments import (
     subject_not_applicable,
     termination_verify,
 )
+from repairs.services.approvals import approval_sign, content_of
 from repairs.services.inspections import RequirementRefused, requirement_raise
 from repairs.services.reentry import ReentryRefused, requirement_rekey
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
@@ -223,29 +224,27 @@ class TestRaise:
         ]
 
 
+def signed(calculated: Evaluation, meaning: str) -> None:
+    signer = make.person()
+    make.factories.authorise(signer, calculated.operator, "approve")
+    approval_sign(
+        subject=calculated,
+        meaning=meaning,
+        person=signer,
+        shown_digest=digest(content_of(calculated)),
+        on=TODAY,
+        actor=signer.user,
+        at=AT,
+    )
+
+
 class TestFromACalculation:
     def test_it_is_interim_until_the_calculation_is_approved(self):
         fixed = repair(make.aircraft())
         calculated = evaluation(fixed)
         assert raised(fixed, THRESHOLD, REPEAT, evaluation=calculated).interim
-        signer = make.user("signatory")
-        authorisation = make.factories.authorise(
-            signer.person, fixed.operator, "approve"
-        )
-        Approval.objects.create(
-            operator=fixed.operator,
-            evaluation=calculated,
-            meaning="approved",
-            statement="approved",
-            content="{}",
-            content_digest="d1",
-            signer=signer,
-            signer_name=str(signer),
-            authorisation=authorisation,
-            authorisation_number=authorisation.number,
-            signed_at=AT,
-            entered_at=AT,
-        )
+        for meaning in ("checked", "approved"):
+            signed(calculated, meaning)
         assert not raised(fixed, THRESHOLD, REPEAT, evaluation=calculated).interim
 
     def test_it_is_never_longer_than_calculated(self):
