@@ -1,0 +1,230 @@
+"""The decision on findings: by an authorised person, on cited data, never altered."""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Sequence
+from dataclasses import replace
+
+from django.core.exceptions import ValidationError
+
+from fleet.models import User
+from fleet.services.aircraft import stream_of
+from fleet.services.documents import document_get_or_create
+from fleet.services.history import Writing
+from fleet.services.numbers import number_next
+from repairs.models import (
+    Disposition,
+    DispositionBasis,
+    DispositionFinding,
+    DueKind,
+    Finding,
+    FindingState,
+    NeighbourReview,
+    Repair,
+)
+from repairs.services.authority import authorised
+from repairs.services.disposition_entry import (
+    KEEPS_DAMAGE,
+    DispositionEntry,
+    K,
+    decision_problems,
+    scopes_for,
+)
+from repairs.services.due_points import deferral_due_open, due_points_close
+from repairs.services.findings import operator_on
+from repairs.services.inspections import requirement_raise_within
+
+STATE_AFTER: dict[str, FindingState] = {
+    K.ACCEPT: FindingState.ACCEPTED,
+    K.ACCEPT_WITH_INSPECTION: FindingState.ACCEPTED,
+    K.DEFER: FindingState.DEFERRED,
+    K.RECTIFY: FindingState.TO_RECTIFY,
+    K.REPLACE: FindingState.TO_RECTIFY,
+    K.NOT_DAMAGE: FindingState.CLOSED,
+}
+INSPECTED_BY = "{reason} Inspection: {requirement}."
+CLOSED_BY = "answered anew by {number}"
+
+
+def disposition_decide(
+    *, entry: DispositionEntry, actor: User | None, at: dt.datetime
+) -> Disposition:
+    """Record a decision and put its findings where it says.
+
+    ValidationError says everything that stands against it: no valid authorisation that
+    day, no basis, a crack in PSE or FCS without a design approval holder's approval,
+    an inspection or a limit that is missing.
+    """
+    with Writing(
+        actor=actor,
+        action="disposition_decide",
+        at=at,
+        operator=entry.aircraft.operator,
+        stream=stream_of(entry.aircraft),
+        reason=entry.reason,
+    ) as w:
+        return disposition_write(w, entry)
+
+
+def disposition_write(w: Writing, entry: DispositionEntry) -> Disposition:
+    """Inside a writing: the disposition, its rows, and what follows from it."""
+    keys = [finding.pk for finding in entry.findings]
+    findings = list(
+        Finding.objects.select_for_update(of=("self",))
+        .filter(pk__in=keys)
+        .select_related("aircraft")
+        .order_by("pk")
+    )
+    if problems := decision_problems(entry, findings):
+        raise ValidationError(problems)
+    operator = operator_on(entry.aircraft, entry.decided_on)
+    authorisation = authorised(
+        person=entry.decided_by,
+        operator=operator,
+        scopes=scopes_for(entry.kind),
+        on=entry.decided_on,
+    )
+    replaces = entry.replaces
+    disposition = w.create(
+        Disposition(
+            operator=replaces.operator if replaces else operator,
+            aircraft=entry.aircraft,
+            number=(
+                replaces.number
+                if replaces
+                else number_next(w, operator=operator, kind="S")
+            ),
+            revision=replaces.revision + 1 if replaces else 0,
+            replaces=replaces,
+            kind=entry.kind,
+            scale=entry.scale,
+            scale_reason=entry.scale_reason,
+            category=entry.category,
+            found_on=_first_found(entry, findings),
+            basis_document=document_get_or_create(
+                w,
+                operator=operator,
+                kind=entry.basis.kind,
+                reference=entry.basis.reference,
+                revision=entry.basis.revision,
+                title=entry.basis.title,
+                issued_on=entry.basis.issued_on,
+            ),
+            basis_page=entry.basis.page.strip(),
+            reason=_reason(entry),
+            decided_by=entry.decided_by,
+            authorisation=authorisation,
+            decided_on=entry.decided_on,
+            at_minutes=entry.at.minutes,
+            at_cycles=entry.at.cycles,
+            at_landings=entry.at.landings,
+            at_pressurisations=entry.at.pressurisations,
+            limit_minutes=entry.limit.minutes,
+            limit_cycles=entry.limit.cycles,
+            limit_landings=entry.limit.landings,
+            limit_on=entry.limit_on,
+        )
+    )
+    _rows_write(w, disposition, entry, findings)
+    _follow(w, disposition, entry, findings)
+    return disposition
+
+
+def _reason(entry: DispositionEntry) -> str:
+    """The reason, with the requirement that was there already named in it."""
+    reason = entry.reason.strip()
+    if entry.requirement is None or not reason:
+        return reason
+    return INSPECTED_BY.format(reason=reason, requirement=entry.requirement)
+
+
+def _first_found(entry: DispositionEntry, findings: Sequence[Finding]) -> dt.date:
+    """The original date: it never moves, whatever is decided later."""
+    days = [finding.found_on for finding in findings]
+    return min([*days, entry.replaces.found_on] if entry.replaces else days)
+
+
+def _rows_write(
+    w: Writing,
+    disposition: Disposition,
+    entry: DispositionEntry,
+    findings: Sequence[Finding],
+) -> None:
+    w.create_many(
+        [DispositionFinding(disposition=disposition, finding=f) for f in findings]
+    )
+    w.create_many(
+        [
+            *(
+                DispositionBasis(disposition=disposition, evaluation=row)
+                for row in entry.evaluations
+            ),
+            *(
+                DispositionBasis(disposition=disposition, limit_check=row)
+                for row in entry.limit_checks
+            ),
+        ]
+    )
+    w.create_many(
+        [
+            NeighbourReview(
+                disposition=disposition,
+                finding=one.item if isinstance(one.item, Finding) else None,
+                repair=one.item if isinstance(one.item, Repair) else None,
+                gap_mm=one.gap_mm,
+                interacts=one.interacts,
+                reason=one.reason,
+            )
+            for one in entry.neighbours
+        ]
+    )
+
+
+def _follow(
+    w: Writing,
+    disposition: Disposition,
+    entry: DispositionEntry,
+    findings: Sequence[Finding],
+) -> None:
+    """States, the inspection raised with it, and the limit on the due list."""
+    for finding in findings:
+        w.change(finding, state=STATE_AFTER[disposition.kind])
+    if entry.new_requirement is not None:
+        requirement_raise_within(
+            w, replace(entry.new_requirement, disposition=disposition)
+        )
+    extended = None
+    for earlier in _answered_before(disposition, findings):
+        closed = due_points_close(
+            w,
+            origin=earlier,
+            on=disposition.decided_on,
+            reason=CLOSED_BY.format(number=disposition),
+            kinds=(DueKind.DEFERRAL,),
+        )
+        extended = closed[0] if closed else extended
+    if entry.has_limit and disposition.kind in KEEPS_DAMAGE:
+        deferral_due_open(w, disposition=disposition, extends=extended)
+
+
+def _answered_before(
+    disposition: Disposition, findings: Sequence[Finding]
+) -> list[Disposition]:
+    """Earlier decisions on these findings that hold for no other finding any more."""
+    keys = {finding.pk for finding in findings}
+    earlier = (
+        Disposition.objects.filter(finding_rows__finding__in=keys)
+        .exclude(pk=disposition.pk)
+        .select_related("aircraft")
+        .prefetch_related("finding_rows__finding")
+        .distinct()
+    )
+    return [
+        row
+        for row in earlier
+        if all(
+            other.finding_id in keys or other.finding.state != FindingState.DEFERRED
+            for other in row.finding_rows.all()
+        )
+    ]

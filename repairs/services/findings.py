@@ -1,0 +1,326 @@
+"""Recording damage: never refused for a doubtful location, size or counter.
+
+A location that cannot be read is saved *to be placed*, as written. Doubts become
+questions, kept with their answers; they block assessment, never the record.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+import uuid
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass
+
+from django.core.exceptions import ValidationError
+
+from fleet.due import Counters, Standing
+from fleet.models import (
+    Aircraft,
+    AircraftPeriod,
+    Criticality,
+    Operator,
+    Person,
+    SafeLifePart,
+    User,
+)
+from fleet.selectors.counters import aircraft_standing
+from fleet.services.aircraft import stream_of
+from fleet.services.history import Writing
+from fleet.services.numbers import number_next
+from repairs.measured import Typed
+from repairs.models import Element, Event, Finding, FindingQuestion, FindingState
+from repairs.plausibility import (
+    ASKED,
+    BEFORE_MANUFACTURE,
+    PLACE_WARNING,
+    Question,
+    ahead_of_usage,
+    counter_questions,
+)
+from repairs.services.measuring import (
+    Hole,
+    Measuring,
+    measurement_write,
+    questions_ask,
+)
+from repairs.services.places import (
+    Placed,
+    item_columns,
+    keyed,
+    place_columns_of,
+    place_try,
+)
+
+FROM_USAGE = "usage, as of {day}"
+AS_STATED = "as stated on entry"
+PLACED_ALREADY = (
+    "{number} is {state}; its location is fixed. Record a new finding that replaces it."
+)
+ALREADY_ANSWERED = "This question was answered before: {answer}"
+ANSWER_NEEDED = "Answer in words; the answer is kept with the question."
+StandingOf = Callable[[Aircraft, dt.date], Standing]
+
+
+@dataclass(frozen=True, slots=True)
+class FindingEntry:
+    """A finding as written down; whatever is left out is unknown, not nought.
+
+    `at` is left out when the counters are to be taken from usage.
+    """
+
+    aircraft: Aircraft
+    place_entered: str
+    damage_type: str
+    found_on: dt.date
+    typed: Sequence[Typed] = ()
+    holes: Sequence[Hole] = ()
+    at: Counters | None = None
+    counters_source: str = ""
+    element: str = ""
+    element_label: str = ""
+    surface: str = ""
+    criticality: str = ""
+    criticality_source: str = ""
+    ata: str = ""
+    cause: str = "unknown"
+    cluster_count: int = 1
+    occasion: str = "other"
+    task_reference: str = ""
+    detection_method: str = "unknown"
+    detection_procedure: str = ""
+    last_clean_on: dt.date | None = None
+    last_clean_cycles: int | None = None
+    last_clean_method: str = ""
+    found_by: Person | None = None
+    event: Event | None = None
+    safe_life_part: SafeLifePart | None = None
+    description: str = ""
+    instrument: str = ""
+    light: str = ""
+    client_key: uuid.UUID | None = None
+
+
+def finding_record(
+    *, entry: FindingEntry, actor: User | None, at: dt.datetime
+) -> Finding:
+    """A new finding, reported. The same form sent twice is one finding."""
+    if (before := _sent_before(entry)) is not None:
+        return before
+    try:
+        with Writing(
+            actor=actor,
+            action="finding_record",
+            at=at,
+            operator=entry.aircraft.operator,
+            stream=stream_of(entry.aircraft),
+        ) as w:
+            return finding_write(w, entry)
+    except ValidationError:
+        if (before := _sent_before(entry)) is not None:
+            return before
+        raise
+
+
+def findings_record_many(
+    w: Writing,
+    entries: Iterable[FindingEntry],
+    *,
+    standing_of: StandingOf | None = None,
+) -> list[Finding]:
+    """Many findings inside one writing, as from a loader or an import.
+
+    `standing_of` gives counters from totals the caller already has; without it each
+    entry asks the usage itself.
+    """
+    return [finding_write(w, entry, standing_of=standing_of) for entry in entries]
+
+
+def finding_write(
+    w: Writing, entry: FindingEntry, *, standing_of: StandingOf | None = None
+) -> Finding:
+    """Inside a writing: the finding with its first measurement and its questions."""
+    standing = (standing_of or standing_on)(entry.aircraft, entry.found_on)
+    placed = place_try(entry.aircraft, entry.place_entered)
+    at = standing.at if entry.at is None else entry.at
+    operator = operator_on(entry.aircraft, entry.found_on)
+    finding = Finding(
+        operator=operator,
+        aircraft=entry.aircraft,
+        safe_life_part=entry.safe_life_part,
+        number=number_next(w, operator=operator, kind="F"),
+        damage_type=entry.damage_type,
+        cluster_count=entry.cluster_count,
+        state=FindingState.REPORTED,
+        cause=entry.cause,
+        found_on=entry.found_on,
+        found_by=entry.found_by,
+        at_minutes=at.minutes,
+        at_cycles=at.cycles,
+        at_landings=at.landings,
+        at_pressurisations=at.pressurisations,
+        counters_source=_source(entry),
+        counters_ahead=ahead_of_usage(at, standing.at),
+        occasion=entry.occasion,
+        task_reference=entry.task_reference,
+        detection_method=entry.detection_method,
+        detection_procedure=entry.detection_procedure,
+        last_clean_on=entry.last_clean_on,
+        last_clean_cycles=entry.last_clean_cycles,
+        last_clean_method=entry.last_clean_method,
+        event=entry.event,
+        ata=entry.ata,
+        description=entry.description,
+        client_key=entry.client_key,
+        **place_columns_of(placed) | _item_columns(entry, placed),
+    )
+    w.create(finding)
+    asked = [
+        *counter_questions(at, standing, found_on=entry.found_on),
+        *_date_questions(entry),
+        *_place_questions(placed),
+    ]
+    questions_ask(w, finding, asked)
+    measuring = Measuring(
+        typed=entry.typed,
+        measured_on=entry.found_on,
+        measured_by=entry.found_by,
+        at=at,
+        method=entry.detection_method,
+        instrument=entry.instrument,
+        light=entry.light,
+        holes=entry.holes,
+    )
+    measurement_write(w, finding=finding, measuring=measuring)
+    return finding
+
+
+def finding_relocate(
+    *,
+    finding: Finding,
+    place_entered: str,
+    actor: User | None,
+    at: dt.datetime,
+    reason: str = "",
+) -> Finding:
+    """Read a finding's location anew, while it is reported.
+
+    LocationRefused when the text gives no place: nothing is changed then.
+    """
+    placed = place_try(finding.aircraft, place_entered)
+    if placed.refused is not None:
+        raise placed.refused
+    with Writing(
+        actor=actor,
+        action="finding_relocate",
+        at=at,
+        operator=finding.operator,
+        stream=stream_of(finding.aircraft),
+        reason=reason,
+    ) as w:
+        row = w.locked(Finding.objects.select_related("aircraft"), pk=finding.pk)
+        if row.state != FindingState.REPORTED:
+            raise ValidationError(
+                PLACED_ALREADY.format(number=row, state=row.get_state_display())
+            )
+        columns = place_columns_of(placed) | _item_now(row, placed)
+        w.change(row, **keyed(row, columns))
+        open_codes = set(row.questions.values_list("code", flat=True))
+        asked = [q for q in _place_questions(placed) if q.code not in open_codes]
+        questions_ask(w, row, asked)
+    return row
+
+
+def finding_question_answer(
+    *, question: FindingQuestion, answer: str, actor: User, at: dt.datetime
+) -> FindingQuestion:
+    """The answer to a doubt, given once and kept."""
+    if not answer.strip():
+        raise ValidationError({"answer": ANSWER_NEEDED})
+    finding = question.finding
+    with Writing(
+        actor=actor,
+        action="finding_question_answer",
+        at=at,
+        operator=finding.operator,
+        stream=stream_of(finding.aircraft),
+    ) as w:
+        row = w.locked(FindingQuestion.objects.all(), pk=question.pk)
+        if row.answered_at is not None:
+            raise ValidationError(ALREADY_ANSWERED.format(answer=row.answer))
+        w.change(row, answer=answer.strip(), answered_by_id=actor.pk, answered_at=at)
+    return row
+
+
+def standing_on(aircraft: Aircraft, day: dt.date) -> Standing:
+    """What the aircraft had flown by that day."""
+    return aircraft_standing(aircraft, as_of=day).standing
+
+
+def operator_on(aircraft: Aircraft, day: dt.date) -> Operator:
+    """Who operated the aircraft that day; before its first period, who does now."""
+    period = (
+        AircraftPeriod.objects.filter(aircraft=aircraft, from_on__lte=day)
+        .select_related("operator")
+        .order_by("-from_on")
+        .first()
+    )
+    return period.operator if period else aircraft.operator
+
+
+def _sent_before(entry: FindingEntry) -> Finding | None:
+    if entry.client_key is None:
+        return None
+    return Finding.objects.filter(client_key=entry.client_key).first()
+
+
+def _source(entry: FindingEntry) -> str:
+    if entry.at is None:
+        return FROM_USAGE.format(day=entry.found_on)
+    return entry.counters_source or AS_STATED
+
+
+def _item_columns(entry: FindingEntry, placed: Placed) -> dict[str, object]:
+    """What was said of the structural item, else what the location says of it."""
+    return item_columns(
+        placed,
+        element=entry.element,
+        element_label=entry.element_label,
+        surface=entry.surface,
+        criticality=entry.criticality,
+        criticality_source=entry.criticality_source,
+    )
+
+
+def _item_now(row: Finding, placed: Placed) -> dict[str, object]:
+    """Of a finding placed later: what is still unknown of its structural item."""
+    entry = FindingEntry(
+        aircraft=row.aircraft,
+        place_entered=row.place_entered,
+        damage_type=row.damage_type,
+        found_on=row.found_on,
+        surface=row.surface,
+        element="" if row.element == Element.UNKNOWN else row.element,
+        element_label=row.element_label,
+        criticality="" if row.criticality == Criticality.UNKNOWN else row.criticality,
+        criticality_source=row.criticality_source,
+    )
+    return _item_columns(entry, placed)
+
+
+def _date_questions(entry: FindingEntry) -> list[Question]:
+    made = entry.aircraft.manufactured_on
+    if made is None or entry.found_on >= made:
+        return []
+    text = ASKED[BEFORE_MANUFACTURE].format(
+        found_on=entry.found_on, manufactured_on=made
+    )
+    return [Question(BEFORE_MANUFACTURE, text)]
+
+
+def _place_questions(placed: Placed) -> list[Question]:
+    if placed.place is None or not placed.place.needs_yes:
+        return []
+    text = ASKED[PLACE_WARNING].format(
+        code=", ".join(placed.place.codes), canonical=placed.place.canonical
+    )
+    return [Question(PLACE_WARNING, text)]

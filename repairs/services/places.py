@@ -1,0 +1,85 @@
+"""A location text as columns of a record; what cannot be read stays as written."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import Any
+
+from django.db import models
+
+from fleet.location.place import LocationRefused, Place
+from fleet.location.placing import place
+from fleet.location.reader import read
+from fleet.models import Aircraft, Criticality
+from fleet.selectors.structure import geometry_of
+from fleet.services.structure import place_columns
+from repairs.models import Element
+
+NO_GEOMETRY = (
+    "The type {type} has no published geometry, so nothing can be placed on it yet; "
+    "the location is kept as written."
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Placed:
+    """What became of a location text: columns to store, or why there are none."""
+
+    text: str
+    place: Place | None = None
+    columns: dict[str, Any] = field(default_factory=dict)
+    refused: LocationRefused | None = None
+
+
+def place_try(aircraft: Aircraft, text: str) -> Placed:
+    """Read and place a text on the aircraft's variant; a refusal is a result."""
+    geometry = geometry_of(aircraft.variant.aircraft_type)
+    if geometry is None:
+        message = NO_GEOMETRY.format(type=aircraft.variant.aircraft_type.code)
+        return Placed(text, refused=LocationRefused("E_NO_GEOMETRY", message))
+    try:
+        found = place(read(text), geometry, aircraft.variant.code)
+    except LocationRefused as refused:
+        return Placed(text, refused=refused)
+    return Placed(text, found, place_columns(aircraft, found))
+
+
+def place_columns_of(placed: Placed) -> dict[str, Any]:
+    """The place columns; of a text that gave no place, the text alone."""
+    return {**placed.columns, "place_entered": placed.text.strip()}
+
+
+def item_columns(
+    placed: Placed,
+    *,
+    element: str,
+    element_label: str,
+    surface: str,
+    criticality: str,
+    criticality_source: str,
+) -> dict[str, object]:
+    """The structural item: as stated, else as the location names it.
+
+    Of skin whose criticality is not stated, the panel says it.
+    """
+    place, panel = placed.place, placed.columns.get("panel")
+    item = element or (place.element if place else "") or Element.UNKNOWN
+    if not criticality and item == Element.SKIN and panel is not None:
+        criticality = panel.criticality
+        criticality_source = panel.criticality_source
+    return {
+        "element": item,
+        "element_label": element_label or (place.element_label if place else ""),
+        "surface": surface or placed.columns.get("surface", ""),
+        "criticality": criticality or Criticality.UNKNOWN,
+        "criticality_source": criticality_source,
+    }
+
+
+def keyed(row: models.Model, columns: dict[str, Any]) -> dict[str, Any]:
+    """Fields of the row as columns: a related record becomes its key."""
+    found: dict[str, Any] = {}
+    for name, value in columns.items():
+        field_ = row._meta.get_field(name)
+        found[field_.attname] = value.pk if isinstance(value, models.Model) else value  # type: ignore[union-attr]
+    return found
