@@ -8,6 +8,8 @@ from __future__ import annotations
 
 from datetime import date, datetime
 
+from django.core.exceptions import ValidationError
+
 from fleet.amounts import amount_read
 from fleet.models import Operator, User
 from fleet.refusals import Refused
@@ -49,6 +51,19 @@ def requirement_raise(
         requirement = requirement_write(w, draft)
         if requirement.state == RequirementState.DRAFT:
             requirement_put_in_force(w, requirement)
+    return requirement
+
+
+def requirement_raise_within(
+    w: Writing, draft: RequirementDraft
+) -> InspectionRequirement:
+    """The same inside another service's history entry: its own record is the origin."""
+    problems = draft_problems(draft)
+    if problems:
+        raise ValidationError(problems)
+    requirement = requirement_write(w, draft)
+    if requirement.state == RequirementState.DRAFT:
+        requirement_put_in_force(w, requirement)
     return requirement
 
 
