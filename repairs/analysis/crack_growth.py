@@ -16,6 +16,7 @@ References
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Callable
 from dataclasses import dataclass
@@ -227,7 +228,7 @@ def growth_history(
     lengths = [float(a) for a in np.geomspace(start, end, CURVE_POINTS)]
     lengths[0], lengths[-1] = start, end  # geomspace rounds its ends
     total, points = 0.0, [(0.0, start)]
-    for before, after in zip(lengths, lengths[1:], strict=False):
+    for before, after in itertools.pairwise(lengths):
         total += growth_cycles(law, factor, cycle, before, after)
         points.append((total, after))
     return tuple(points)

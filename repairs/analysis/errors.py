@@ -4,7 +4,9 @@ from __future__ import annotations
 
 OUT_OF_RANGE = "{what} is {value:.4g}, outside {low:.4g} to {high:.4g} ({why}). {mend}"
 NOT_FINITE = "{what} reads {value!r}; a finite number is expected. Enter it again."
-WITHOUT_SOURCE = "{what} has no source. Name the document, drawing or record it is from."
+WITHOUT_SOURCE = (
+    "{what} has no source. Name the document, drawing or record it is from."
+)
 UNKNOWN_INPUT = "No method knows an input called {name!r}. Use one of: {known}."
 UNKNOWN_METHOD = "No method is called {name!r}. Use one of: {known}."
 WRONG_KIND = "Input {name} reads {read!r}; {expected} is expected."

@@ -83,9 +83,7 @@ def rogue_flaw(location: FlawLocation, thickness: float) -> AssumedFlaw:
     within("Thickness, mm", thickness, 1e-6, 1e3, "a thickness")
     if location is FlawLocation.HOLE:
         if thickness <= 0.050 * INCH:
-            return AssumedFlaw(
-                FlawKind.THROUGH, 0.05 * INCH, thickness, ROGUE_FLAW
-            )
+            return AssumedFlaw(FlawKind.THROUGH, 0.05 * INCH, thickness, ROGUE_FLAW)
         return AssumedFlaw(FlawKind.CORNER, 0.05 * INCH, 0.05 * INCH, ROGUE_FLAW)
     if thickness <= 0.125 * INCH:
         return AssumedFlaw(FlawKind.THROUGH, 0.25 * INCH, thickness, ROGUE_FLAW)

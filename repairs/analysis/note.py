@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from repairs.analysis.types import Grade, NoteLine, Reference, Sourced
+from repairs.analysis.types import ROOT_1000, Grade, NoteLine, Reference, Sourced
 
 
 class Note:
@@ -20,6 +20,18 @@ class Note:
     def given(self, symbol: str, title: str, value: Sourced) -> float:
         """Write down an input and return its number."""
         self._append(symbol, title, "", value.value, value.unit, value)
+        return value.value
+
+    def toughness(self, value: Sourced) -> float:
+        """Write a fracture toughness down in MPa√m; return it in MPa*sqrt(mm)."""
+        self._append(
+            "K_c",
+            "fracture toughness of this sheet",
+            "",
+            value.value / ROOT_1000,
+            "MPa√m",
+            value,
+        )
         return value.value
 
     def step(

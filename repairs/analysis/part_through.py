@@ -16,7 +16,7 @@ import math
 from dataclasses import dataclass
 
 from repairs.analysis.errors import within
-from repairs.analysis.stress_intensity import newman_g2
+from repairs.analysis.hole_intensity import newman_g2
 from repairs.analysis.types import Grade, Reference
 
 CORNER_AT_HOLE = Reference(
@@ -160,8 +160,13 @@ def corner_crack_at_hole(
     _part_range(crack)
     within("Hole radius over thickness", radius / crack.thickness, 0.5, 3, "N-R")
     a, c, t = crack.depth, crack.length, crack.thickness
-    within("Hole radius plus crack over half-width", (radius + c) / half_width, 0, 0.5,
-           "N-R")  # fmt: skip
+    within(
+        "Hole radius plus crack over half-width",
+        (radius + c) / half_width,
+        0,
+        0.5,
+        "N-R",
+    )
     phi = math.radians(angle)
     q, series, aspect = _terms(crack)
     g1, fphi = _front(crack, aspect, phi)
@@ -182,6 +187,6 @@ def corner_crack_at_hole(
     )
     symmetric = series * g1 * g2 * g3 * g4 * fphi * fw / math.sqrt(q)
     if cracks == 2:
-        return symmetric
+        return float(symmetric)
     area = a * c / (t * radius)
-    return symmetric * math.sqrt((4 / math.pi + area / 2) / (4 / math.pi + area))
+    return float(symmetric * math.sqrt((4 / math.pi + area / 2) / (4 / math.pi + area)))

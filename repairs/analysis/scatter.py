@@ -94,8 +94,7 @@ def factor_confidence(
     within("Standard deviation of log life", log_deviation, 1e-6, 2, "log10 cycles")
     within("Number of tests", tests, 1, 1e6, "a count")
     return float(
-        10
-        ** (log_deviation * (z_survival + quantile(confidence) / math.sqrt(tests)))
+        10 ** (log_deviation * (z_survival + quantile(confidence) / math.sqrt(tests)))
     )
 
 
@@ -147,7 +146,7 @@ def first_of_fleet(survival: float, locations: int) -> float:
 
     Notes
     -----
-    Independent locations.
+    Range 0 < p < 1, m >= 1. Independent locations.
 
     References
     ----------

@@ -12,8 +12,7 @@ References
 ----------
 .. [1] USAF Damage Tolerant Design Handbook, section 11.3, Tables 11.3.10 to 11.3.13.
 .. [2] Tada, Paris and Irwin, The Stress Analysis of Cracks Handbook.
-.. [3] Newman, J. C., 1976, cracks at a circular hole (the g2 polynomial).
-.. [4] Public university notes on fracture mechanics of aircraft structure.
+.. [3] Public university notes on fracture mechanics of aircraft structure.
 """
 
 from __future__ import annotations
@@ -38,21 +37,6 @@ TADA_CENTRE = Reference(
 EDGE_TADA = Reference(
     "Tada, Paris and Irwin, edge crack in tension, in public university notes",
     Grade.QUOTED,
-)
-HOLE_SINGLE = Reference(
-    "USAF Damage Tolerant Design Handbook, Table 11.3.12 (f0); "
-    "width terms from public university notes",
-    Grade.PRINT,
-)
-HOLE_DOUBLE = Reference(
-    "Newman 1976, g2 polynomial; width terms from public university notes",
-    Grade.QUOTED,
-)
-HOLE_DOUBLE_RATIONAL = Reference(
-    "Rational fit to two cracks at a hole, in public university notes", Grade.QUOTED
-)
-HOLE_BEARING = Reference(
-    "USAF Damage Tolerant Design Handbook, Tables 11.3.10 to 11.3.12", Grade.PRINT
 )
 BULGING_HANDBOOK = Reference(
     "USAF Damage Tolerant Design Handbook, Table 11.3.13 (Newman 1976)", Grade.PRINT
@@ -79,11 +63,20 @@ def intensity(factor: float, stress: GrossStress, length: float) -> float:
     -------
     float
         Stress-intensity factor [MPa*sqrt(mm)].
+
+    Notes
+    -----
+    Range of the factor.
+
+    References
+    ----------
+    .. [1] Definition of F.
     """
     return factor * stress * math.sqrt(math.pi * length)
 
 
-def _secant(angle: float) -> float:
+def secant(angle: float) -> float:
+    """Return 1/cos of an angle [rad]."""
     return 1.0 / math.cos(angle)
 
 
@@ -111,7 +104,7 @@ def centre_crack_secant(half_length: HalfLength, width: float) -> float:
     .. [1] Feddersen, in public university notes; see `SECANT`.
     """
     ratio = within("Crack length over width", 2 * half_length / width, 0, 0.7, "secant")
-    return math.sqrt(_secant(math.pi * ratio / 2))
+    return math.sqrt(secant(math.pi * ratio / 2))
 
 
 def centre_crack_tada(half_length: HalfLength, width: float) -> float:
@@ -140,7 +133,7 @@ def centre_crack_tada(half_length: HalfLength, width: float) -> float:
     .. [1] Tada, Paris and Irwin; see `TADA_CENTRE`.
     """
     x = within("Crack length over width", 2 * half_length / width, 0, 0.99, "Tada")
-    return (1 - 0.025 * x**2 + 0.06 * x**4) * math.sqrt(_secant(math.pi * x / 2))
+    return (1 - 0.025 * x**2 + 0.06 * x**4) * math.sqrt(secant(math.pi * x / 2))
 
 
 def edge_crack_polynomial(length: EdgeLength, width: float) -> float:
@@ -203,235 +196,6 @@ def edge_crack_tada(length: EdgeLength, width: float) -> float:
     angle = math.pi * x / 2
     shape = 0.752 + 2.02 * x + 0.37 * (1 - math.sin(angle)) ** 3
     return math.sqrt(math.tan(angle) / angle) * shape / math.cos(angle)
-
-
-def hole_single(c_edge: EdgeLength, diameter: float, width: float) -> float:
-    r"""Return F of one through crack from a hole in a sheet under tension [1]_.
-
-    .. math::
-        f_0(z) = 0.7071 + 0.7548z + 0.3415z^2 + 0.642z^3 + 0.9196z^4,
-        \quad z = 1/(1 + c/r)
-
-    times the width terms for one crack,
-    :math:`F_w = \sqrt{\sec(\pi r/W)\sec(\pi(r + c/2)/(W - c))}` and
-    :math:`F_{ww} = 1 - N^{-W/D}(2c/(W-D))^{W/D + 0.5}`,
-    :math:`N = \max(2.275,\; 2.65 - 0.24(2.75 - W/D)^2)`.
-
-    Parameters
-    ----------
-    c_edge
-        Crack length from the hole edge [mm].
-    diameter
-        Hole diameter D [mm].
-    width
-        Full width W, hole on the centre line [mm].
-
-    Returns
-    -------
-    float
-        Factor F on :math:`\sqrt{\pi c}` [-].
-
-    Notes
-    -----
-    Range D/W <= 0.5 and D/2 + c <= 0.45 W. Within 5 % of Bowie's values (7 % where
-    they were only quoted). Unloaded hole: no bearing.
-
-    References
-    ----------
-    .. [1] See `HOLE_SINGLE`.
-    """
-    _hole_range(c_edge, diameter, width)
-    r, c = diameter / 2, c_edge
-    slender = width / diameter
-    fw = math.sqrt(
-        _secant(math.pi * r / width) * _secant(math.pi * (r + c / 2) / (width - c))
-    )
-    base = max(2.275, 2.65 - 0.24 * (2.75 - slender) ** 2)
-    fww = 1 - base**-slender * (2 * c / (width - diameter)) ** (slender + 0.5)
-    return handbook_f0(c / r) * fw * fww
-
-
-def handbook_f0(ratio: float) -> float:
-    """Return f0 of one crack at a hole, wide sheet, `ratio` = c/r [-].
-
-    Parameters
-    ----------
-    ratio
-        Crack length from the edge over hole radius, c/r [-].
-
-    Returns
-    -------
-    float
-        Factor on sqrt(pi c) [-]; 3.365 at c/r = 0, 0.7071 for a long crack.
-
-    Notes
-    -----
-    Range c/r >= 0.
-
-    References
-    ----------
-    .. [1] USAF Damage Tolerant Design Handbook, Table 11.3.12.
-    """
-    z = 1 / (1 + within("Crack length over hole radius", ratio, 0, 1e6, "f0"))
-    return 0.7071 + 0.7548 * z + 0.3415 * z**2 + 0.642 * z**3 + 0.9196 * z**4
-
-
-def hole_double(c_edge: EdgeLength, diameter: float, width: float) -> float:
-    r"""Return F of two equal through cracks from a hole, Newman's polynomial [1]_.
-
-    .. math:: g_2 = 1 + 0.358l + 1.425l^2 - 1.578l^3 + 2.156l^4,\quad l = r/(r + c)
-
-    times the width terms for two cracks (see `hole_double_rational`).
-
-    Parameters
-    ----------
-    c_edge
-        Crack length from the hole edge, each side [mm].
-    diameter
-        Hole diameter D [mm].
-    width
-        Full width W, hole on the centre line [mm].
-
-    Returns
-    -------
-    float
-        Factor F on :math:`\sqrt{\pi c}` [-].
-
-    Notes
-    -----
-    Range D/W <= 0.5 and D/2 + c <= 0.45 W.
-
-    References
-    ----------
-    .. [1] See `HOLE_DOUBLE`.
-    """
-    r = diameter / 2
-    return newman_g2(r / (r + c_edge)) * _double_width(c_edge, diameter, width)
-
-
-def newman_g2(ligament: float) -> float:
-    """Return Newman's g2 polynomial of l = r/(r + c) [-]."""
-    x = ligament
-    return 1 + 0.358 * x + 1.425 * x**2 - 1.578 * x**3 + 2.156 * x**4
-
-
-def hole_double_rational(c_edge: EdgeLength, diameter: float, width: float) -> float:
-    r"""Return F of two equal cracks from a hole, rational fit (cross-check) [1]_.
-
-    .. math:: F_2 = \frac{3.404 + 3.8172y}{1 + 3.9273y - 0.00695y^2},\quad y = c/r
-
-    with :math:`F_w = \sqrt{\sec(\pi r/W)\sec(\pi(r+c)/W)}` and
-    :math:`F_{ww} = 1 - [(1.32W/D - 0.14)^{-(0.98 + (0.1W/D)^{0.1})} - 0.02]
-    (2c/(W-D))^N`, N = 4.5 (W/D >= 2) else W/D + 2.5.
-
-    Parameters
-    ----------
-    c_edge
-        Crack length from the hole edge, each side [mm].
-    diameter
-        Hole diameter D [mm].
-    width
-        Full width W, hole on the centre line [mm].
-
-    Returns
-    -------
-    float
-        Factor F on :math:`\sqrt{\pi c}` [-].
-
-    Notes
-    -----
-    Range c/r <= 10: beyond it the quadratic term makes the fit drift.
-
-    References
-    ----------
-    .. [1] See `HOLE_DOUBLE_RATIONAL`.
-    """
-    y = within("Crack length over hole radius", 2 * c_edge / diameter, 0, 10, "F2 fit")
-    factor = (3.404 + 3.8172 * y) / (1 + 3.9273 * y - 0.00695 * y**2)
-    return factor * _double_width(c_edge, diameter, width)
-
-
-def _double_width(c_edge: EdgeLength, diameter: float, width: float) -> float:
-    _hole_range(c_edge, diameter, width)
-    r, slender = diameter / 2, width / diameter
-    fw = math.sqrt(
-        _secant(math.pi * r / width) * _secant(math.pi * (r + c_edge) / width)
-    )
-    power = 4.5 if slender >= 2 else slender + 2.5
-    depth = (1.32 * slender - 0.14) ** -(0.98 + (0.1 * slender) ** 0.1) - 0.02
-    return fw * (1 - depth * (2 * c_edge / (width - diameter)) ** power)
-
-
-def _hole_range(c_edge: EdgeLength, diameter: float, width: float) -> None:
-    within("Hole diameter over width", diameter / width, 1e-9, 0.5, "width terms")
-    reach = (diameter / 2 + c_edge) / width
-    within("Hole radius plus crack over width", reach, 0, 0.45, "width terms")
-    within("Crack length from the hole edge, mm", c_edge, 0, width, "a length")
-
-
-def hole_single_bearing(c_edge: EdgeLength, diameter: float, width: float) -> float:
-    r"""Return F of one crack at a hole loaded by a pin, on the bearing stress [1]_.
-
-    .. math::
-        K = s_{br}\sqrt{\pi c}\,\bigl(f_0\tfrac{D}{2W} + f_1\bigr) G_w,\quad
-        f_1 = 0.078z + 0.7588z^2 - 0.4293z^3 + 0.0644z^4 + 0.651z^5,
-
-    :math:`G_w = \sqrt{\sec[(\pi/2)(D + c)/(W - c)]}`, :math:`s_{br} = P/(Dt)`.
-
-    Parameters
-    ----------
-    c_edge
-        Crack length from the hole edge [mm].
-    diameter
-        Hole diameter D [mm].
-    width
-        Full width W [mm].
-
-    Returns
-    -------
-    float
-        Factor F on :math:`s_{br}\sqrt{\pi c}` [-].
-
-    Notes
-    -----
-    Range as `hole_single`. The bypass part is `hole_single` on the bypass stress; the
-    two add.
-
-    References
-    ----------
-    .. [1] See `HOLE_BEARING`.
-    """
-    _hole_range(c_edge, diameter, width)
-    gw = math.sqrt(_secant(math.pi / 2 * (diameter + c_edge) / (width - c_edge)))
-    return bearing_factor(2 * c_edge / diameter, diameter / width) * gw
-
-
-def bearing_factor(ratio: float, slender: float) -> float:
-    """Return f0 D/(2W) + f1 of one crack at a pin-loaded hole, before width [-].
-
-    Parameters
-    ----------
-    ratio
-        Crack length from the edge over hole radius, c/r [-].
-    slender
-        Hole diameter over width, D/W [-].
-
-    Returns
-    -------
-    float
-        Factor on the bearing stress [-].
-
-    Notes
-    -----
-    Range c/r >= 0 and D/W <= 0.5.
-
-    References
-    ----------
-    .. [1] See `HOLE_BEARING`.
-    """
-    z = 1 / (1 + ratio)
-    f1 = 0.078 * z + 0.7588 * z**2 - 0.4293 * z**3 + 0.0644 * z**4 + 0.651 * z**5
-    return handbook_f0(ratio) * slender / 2 + f1
 
 
 def shell_parameter(half_length: HalfLength, radius: float, thickness: float) -> float:

@@ -59,7 +59,7 @@ class StressLifeCurve:
     def equivalent(self, max_stress: NetStress, ratio: float) -> float:
         """Return Seq in the printed stress unit."""
         _stress_ratio(ratio)
-        return max_stress / self.stress_unit_mpa * (1 - ratio) ** self.a3
+        return float(max_stress / self.stress_unit_mpa * (1 - ratio) ** self.a3)
 
     def cycles(self, max_stress: NetStress, ratio: float) -> float | None:
         """Return cycles to failure, None at or below the last term."""

@@ -1,4 +1,4 @@
-"""The materials file: conversion by exact factors, and what it says when it is wrong."""
+"""The materials file: conversion by exact factors, and its refusals."""
 
 from __future__ import annotations
 

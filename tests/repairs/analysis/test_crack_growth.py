@@ -104,9 +104,7 @@ def test_centre_crack_in_a_200_mm_sheet(start, life):
 
 
 @settings(max_examples=15, deadline=None)
-@given(
-    st.floats(2, 10), st.floats(1.5, 6), st.floats(40, 120), st.floats(-0.5, 0.6)
-)
+@given(st.floats(2, 10), st.floats(1.5, 6), st.floats(40, 120), st.floats(-0.5, 0.6))
 def test_quadrature_agrees_with_a_step_integrator(start, growth, stress, ratio):
     end = min(start * growth, 60.0)
     shape = lambda a: centre_crack_secant(HalfLength(a), 200.0)  # noqa: E731

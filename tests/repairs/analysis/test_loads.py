@@ -50,9 +50,7 @@ def test_smeared_frames_against_a_linear_solver():
 
 
 def test_pressure_only_lists_the_cases_it_did_not_check():
-    residual, ultimate = loads.shell_requirements(
-        PRESSURES, 1422.4, 1.4, FACTORS, None
-    )
+    residual, ultimate = loads.shell_requirements(PRESSURES, 1422.4, 1.4, FACTORS, None)
     stress, case = residual.governing
     assert stress == pytest.approx(1.15 * 8.5 * PSI * 1422.4 / 1.4)
     assert "1.15" in case

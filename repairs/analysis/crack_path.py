@@ -1,0 +1,259 @@
+"""One growing through crack: its strength, its life, its threshold, its curves.
+
+A method builds the path of its geometry (factor, strength, how far it is valid); what
+follows from a path is the same for every geometry and stands here once.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from repairs.analysis import intervals
+from repairs.analysis.crack_growth import (
+    SEPARABLE,
+    WalkerLaw,
+    critical_length,
+    growth_cycles,
+    growth_history,
+)
+from repairs.analysis.inputs import Inputs
+from repairs.analysis.loads import Requirement
+from repairs.analysis.note import Note
+from repairs.analysis.panel_loads import PanelLoads
+from repairs.analysis.residual_strength import Strength
+from repairs.analysis.types import (
+    ROOT_1000,
+    Curve,
+    Interval,
+    Life,
+    Mark,
+    Result,
+    UltimateKept,
+)
+
+CURVE_POINTS = 60
+BEYOND = "not lost where the method ends, at {what} ({length:.1f} mm)"
+LOST_ALREADY = "lost already at the size evaluated"
+OTHER_LAW = "the other recorded growth law, for comparison"
+RESIDUAL, ULTIMATE = "residual", "static ultimate"
+
+
+@dataclass(frozen=True)
+class CrackPath:
+    """A through crack that grows: lengths are those the factor is defined on [mm].
+
+    `scale` turns such a length into the one people measure: 2 for a half-length.
+    """
+
+    symbol: str
+    scale: float
+    factor: Callable[[float], float]
+    strength: Callable[[float], Strength]
+    loads: PanelLoads
+    law: WalkerLaw
+    largest: float
+    end_of_method: str
+
+    def lost_at(self, requirement: Requirement, start: float) -> float | None:
+        """Return the length where a requirement is lost, None if not in range."""
+        return critical_length(
+            lambda length: self.strength(length).stress,
+            requirement.governing[0],
+            start,
+            max(start, self.largest),
+        )
+
+    def cycles(self, start: float, end: float, law: WalkerLaw | None = None) -> float:
+        """Return cycles of growth from one length to another."""
+        return growth_cycles(law or self.law, self.factor, self.loads.cycle, start, end)
+
+
+@dataclass(frozen=True, slots=True)
+class Start:
+    """Where a path begins: its length, and cycles before it is a through crack."""
+
+    length: float
+    cycles_before: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
+class Grown:
+    """Growth to the loss of a requirement, or to where the method ends."""
+
+    end: float
+    cycles: float
+    remark: str
+
+
+def write_law(note: Note, law: WalkerLaw) -> None:
+    """Write a growth law's constants down in the unit they are usually read in."""
+    note.step(
+        "C",
+        "da/dN = C [ΔK / (1 − R)^(1 − γ)]^m, ΔK in MPa√m",
+        f"m = {law.exponent:g}, γ = {law.gamma:g}"
+        + (f"; {law.remark}" if law.remark else ""),
+        law.coefficient * ROOT_1000**law.exponent,
+        "mm/cycle",
+        law.reference,
+    )
+
+
+def grow(
+    inputs: Inputs,
+    note: Note,
+    path: CrackPath,
+    start: Start,
+    requirement: Requirement,
+) -> Grown:
+    """Follow the crack to where a requirement is lost, and write it down."""
+    lost = path.lost_at(requirement, start.length)
+    end = max(start.length, path.largest) if lost is None else lost
+    remark = ""
+    if lost is None:
+        remark = BEYOND.format(what=path.end_of_method, length=path.scale * end)
+        note.warn(f"{requirement.name.capitalize()} strength {remark}.")
+    elif lost == start.length:
+        remark = LOST_ALREADY
+    cycles = path.cycles(start.length, end) + start.cycles_before
+    shown = f"{path.scale * start.length:.2f} to {path.scale * end:.2f} mm"
+    note.step(
+        path.symbol,
+        f"S = required stress, {requirement.name}",
+        remark,
+        path.scale * end,
+        "mm",
+    )
+    note.step("N", SEPARABLE, shown, cycles, "cycles")
+    second = inputs.law("second_growth_law")
+    if second is not None:
+        other = path.cycles(start.length, end, second)
+        note.step(
+            "N′",
+            OTHER_LAW,
+            f"{shown}; through crack only",
+            other,
+            "cycles",
+            second.reference,
+        )
+    return Grown(end, cycles, remark)
+
+
+def with_margins(
+    found: PanelLoads, note: Note, strength: Strength, draft: Result
+) -> Result:
+    """Fill strength, both requirements and margins, and whether ultimate is kept."""
+    residual, residual_case = found.residual.governing
+    ultimate, ultimate_case = found.ultimate.governing
+    stress = strength.stress
+    margins = (stress / residual - 1, stress / ultimate - 1)
+    for symbol, name, margin, required in (
+        ("M_res", RESIDUAL, margins[0], residual),
+        ("M_ult", ULTIMATE, margins[1], ultimate),
+    ):
+        note.step(
+            symbol, f"margin, {name}", f"{stress:.1f} / {required:.1f} − 1", margin, "-"
+        )
+    return replace(
+        draft,
+        governing=strength.governing,
+        residual_strength_mpa=stress,
+        required_residual_mpa=residual,
+        residual_case=residual_case,
+        margin_residual=margins[0],
+        ultimate_mpa=ultimate,
+        ultimate_case=ultimate_case,
+        margin_ultimate=margins[1],
+        ultimate_kept=ultimate_kept(margins[1], found.ultimate.not_checked),
+        cases_not_checked=found.not_checked,
+    )
+
+
+def ultimate_kept(margin: float, not_checked: tuple[str, ...]) -> UltimateKept:
+    """Answer no from any case; yes only where every case was checked."""
+    if margin < 0:
+        return UltimateKept.NO
+    return UltimateKept.NOT_SHOWN if not_checked else UltimateKept.YES
+
+
+def with_found_lives(
+    inputs: Inputs, note: Note, path: CrackPath, length: float, draft: Result
+) -> Result:
+    """Fill lives to where ultimate and residual are lost; never an interval."""
+    note.warn(intervals.FOUND_DAMAGE_LIFE)
+    start = Start(length)
+    lives: list[Life] = []
+    for requirement in (path.loads.ultimate, path.loads.residual):
+        grown = grow(inputs, note, path, start, requirement)
+        title = f"until {requirement.name} strength is lost"
+        lives.append(
+            intervals.life(title, grown.cycles, intervals.FROM_FINDING, grown.remark)
+        )
+    shortest = min(lives, key=lambda item: item.cycles or 0)
+    factored = intervals.over_factor(
+        inputs, note, shortest.cycles, "growth_policy", "life after factor"
+    )
+    return replace(
+        draft,
+        lives=tuple(lives),
+        life_cycles=shortest.cycles,
+        life_base=shortest.base,
+        life_after_factor_cycles=factored.whole,
+        scatter_factor=factored.factor,
+        curves=curves(path, length, intervals.FROM_FINDING),
+    )
+
+
+def repeat_after(
+    inputs: Inputs, note: Note, path: CrackPath, critical: float
+) -> Interval | None:
+    """Return the repeat interval: detectable to critical size over its factor."""
+    return intervals.repeat_interval(
+        inputs,
+        note,
+        critical,
+        lambda measured: measured / path.scale,
+        lambda begin: path.cycles(begin, critical),
+    )
+
+
+def curves(path: CrackPath, start: float, base: str) -> tuple[Curve, ...]:
+    """Return residual strength on crack length, and crack length on cycles."""
+    stop = max(path.largest, start * 1.0001)
+    lengths = [float(a) for a in np.linspace(start / 2, stop, CURVE_POINTS)]
+    both = (path.loads.ultimate, path.loads.residual)
+    lost = [(r.name, path.lost_at(r, start)) for r in both]
+    end = max(start * 1.0001, lost[-1][1] or stop)
+    history = growth_history(path.law, path.factor, path.loads.cycle, start, end)
+    now = path.strength(start).stress
+    return (
+        Curve(
+            "residual_strength",
+            "Residual strength",
+            f"crack length {path.symbol}",
+            "mm",
+            "strength, gross",
+            "MPa",
+            tuple((path.scale * a, float(path.strength(a).stress)) for a in lengths),
+            (
+                *(Mark(r.name, r.governing[0]) for r in both),
+                Mark(f"{path.scale * start:.1f} mm", now, path.scale * start),
+            ),
+        ),
+        Curve(
+            "growth",
+            "Growth",
+            f"flight cycles {base}",
+            "cycles",
+            f"crack length {path.symbol}",
+            "mm",
+            tuple((cycles, path.scale * a) for cycles, a in history),
+            tuple(
+                Mark(f"{name} lost", path.scale * a)
+                for name, a in lost
+                if a is not None
+            ),
+        ),
+    )

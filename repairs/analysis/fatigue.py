@@ -1,0 +1,210 @@
+"""What blended and drilled skin share: stress-life left, and which life governs."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from repairs.analysis import intervals
+from repairs.analysis.crack_growth import StressCycle
+from repairs.analysis.errors import within
+from repairs.analysis.inputs import Inputs
+from repairs.analysis.note import Note
+from repairs.analysis.stress_life import NO_FINITE_LIFE, StressLifeCurve
+from repairs.analysis.types import (
+    Grade,
+    Interval,
+    Life,
+    NetStress,
+    Reference,
+)
+
+CLAD_ON_BARE = (
+    "Clad panel on a bare stress-life curve and no factor for cladding with a source: "
+    "barred from approval until a clad curve or such a factor is recorded."
+)
+RANGE_NOT_RECORDED = (
+    "The tested range of stress ratio and life is not recorded with the stress-life "
+    "curves."
+)
+NOT_UNLIMITED = "Stress-life: {words}."
+LIFE_USED_UP = "The life before the damage was already used up on this curve."
+NOT_COUNTED = "Life already used is not counted, by the engineer's recorded reason: {}."
+BOTH_NEEDED = (
+    "The threshold is the smaller of stress-life and growth, and one of them has no "
+    "scatter factor: no threshold; needs an engineer."
+)
+LIFE_BAND = 3.0
+BAND = Reference(
+    "leave-one-out test of ln S on ln Kt on the 2024-T3 curves: life within a factor 3",
+    Grade.RECORDED,
+)
+
+INPUTS = ("stress_life", "skin_cycles", "clad", "tension_strength", "yield_strength")
+
+
+@dataclass(frozen=True, slots=True)
+class StressLife:
+    """Mean stress-life left, None where the curve gives no finite life."""
+
+    remaining: float | None
+    remark: str
+
+
+def stress_life_left(
+    inputs: Inputs, note: Note, kt: float, after: StressCycle, before: StressCycle
+) -> StressLife:
+    """Return the life left at the new stress and Kt, less the share already used.
+
+    Parameters
+    ----------
+    inputs, note
+        Of the evaluation.
+    kt
+        Stress-concentration factor on net stress now [-]; 1 before.
+    after, before
+        Cycle on the net section now, and on the undamaged section [MPa].
+    """
+    family = inputs.family()
+    assert family is not None, "evaluate() has checked that stress_life is there"
+    limit = inputs.number("yield_strength").value
+    within(
+        "Largest stress on the net section, MPa",
+        after.maximum,
+        0,
+        limit,
+        "stress-life curves end at yield",
+        "Another method is needed.",
+    )
+    note.warn(RANGE_NOT_RECORDED)
+    for curve in dict.fromkeys((*family.bracket(kt), *family.bracket(1.0))):
+        _write_curve(note, curve)
+    new = family.cycles(kt, NetStress(after.maximum), after.ratio)
+    old = family.cycles(1.0, NetStress(before.maximum), before.ratio)
+    _write_life(note, "N_after", f"Kt {kt:.3f}, ln S on ln Kt", after, new)
+    _write_life(note, "N_before", "Kt 1, undamaged section", before, old)
+    if new is None:
+        note.warn(NOT_UNLIMITED.format(words=NO_FINITE_LIFE))
+        return StressLife(None, NO_FINITE_LIFE)
+    new = _clad(inputs, note, new)
+    share = _used(inputs, note, old)
+    if share >= 1:
+        note.warn(LIFE_USED_UP)
+    left = max(0.0, 1 - share) * new
+    note.step(
+        "N_left",
+        "(1 − n / N_before) N_after",
+        f"(1 − {share:.4f}) {new:,.0f}",
+        left,
+        "cycles",
+    )
+    note.step(
+        "",
+        "band of the interpolated life",
+        f"{left / LIFE_BAND:,.0f} to {left * LIFE_BAND:,.0f} cycles",
+        None,
+        "",
+        BAND,
+    )
+    return StressLife(left, "")
+
+
+def _write_curve(note: Note, curve: StressLifeCurve) -> None:
+    note.step(
+        f"curve, Kt {curve.kt:g}",
+        "log N = A₁ − A₂ log(S_eq − A₄), S_eq = S_max (1 − R)^A₃",
+        f"A₁ {curve.a1:g}, A₂ {curve.a2:g}, A₃ {curve.a3:g}, A₄ {curve.a4:g}; stress "
+        f"in units of {curve.stress_unit_mpa:.6g} MPa",
+        None,
+        "",
+        Reference(curve.source, curve.grade),
+    )
+
+
+def _write_life(
+    note: Note, symbol: str, what: str, cycle: StressCycle, cycles: float | None
+) -> None:
+    words = "" if cycles is not None else f"; {NO_FINITE_LIFE}"
+    note.step(
+        symbol,
+        f"mean stress-life, {what}",
+        f"S_max {cycle.maximum:.1f} MPa net, R {cycle.ratio:g}{words}",
+        cycles,
+        "cycles",
+    )
+
+
+def _clad(inputs: Inputs, note: Note, cycles: float) -> float:
+    """Apply a sourced factor for cladding, or bar the result from approval."""
+    family = inputs.family()
+    if inputs.word("clad") != "yes" or (family is not None and family.clad):
+        return cycles
+    factor = inputs.maybe("clad_life_factor")
+    if factor is None:
+        note.warn(CLAD_ON_BARE, bars=True)
+        return cycles
+    divisor = note.given("k_clad", "life of bare over life of clad", factor)
+    return cycles / divisor
+
+
+def _used(inputs: Inputs, note: Note, before: float | None) -> float:
+    """Return the share of life used, n / N_before; none where N is not finite."""
+    reason = inputs.word("life_used_reason")
+    if reason:
+        note.warn(NOT_COUNTED.format(reason))
+        return 0.0
+    flown = note.given(
+        "n", "flight cycles this skin has flown", inputs.number("skin_cycles")
+    )
+    return 0.0 if before is None else flown / before
+
+
+@dataclass(frozen=True, slots=True)
+class Governing:
+    """The smaller of stress-life and growth life, with its factor and threshold."""
+
+    life: Life
+    after_factor: int | None
+    factor: float | None
+    threshold: Interval | None
+
+
+def governing_life(
+    inputs: Inputs,
+    note: Note,
+    left: StressLife,
+    growth: Life,
+    base: str,
+    *,
+    propose: bool,
+) -> Governing:
+    """Choose the smaller of both lives over their factors; both must have one.
+
+    Known damage gets no threshold: `propose` is False and none is written down.
+    """
+
+    def threshold(cycles: float | None) -> Interval | None:
+        if not propose:
+            return None
+        return intervals.interval(inputs, note, cycles, base, "N_thr")
+
+    grown = intervals.over_factor(
+        inputs, note, growth.cycles, "growth_policy", "threshold"
+    )
+    if left.remaining is None:
+        return Governing(growth, grown.whole, grown.factor, threshold(grown.cycles))
+    life = intervals.life("mean stress-life left", left.remaining, base, left.remark)
+    lived = intervals.over_factor(
+        inputs, note, left.remaining, "stress_life_policy", "threshold"
+    )
+    if grown.cycles is None or lived.cycles is None:
+        note.warn(BOTH_NEEDED)
+        shorter, factored = min(
+            ((growth, grown), (life, lived)), key=lambda pair: pair[0].cycles or 0
+        )
+        return Governing(shorter, factored.whole, factored.factor, None)
+    shorter, factored = (
+        (life, lived) if lived.cycles <= grown.cycles else (growth, grown)
+    )
+    return Governing(
+        shorter, factored.whole, factored.factor, threshold(factored.cycles)
+    )

@@ -1,0 +1,154 @@
+"""From a growth life to lives, threshold and repeat, with factors, caps and words."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from repairs.analysis.inputs import SPECS, Inputs
+from repairs.analysis.inspection_interval import Cap, capped, whole_cycles
+from repairs.analysis.note import Note
+from repairs.analysis.types import Interval, Life, MissingInput
+
+SINCE_NEW = "since new"
+FROM_FINDING = "from finding"
+LAST_DONE = "last accomplishment"
+NO_FACTOR = "No scatter factor recorded for {what}: no {result}; needs an engineer."
+NO_DETECTABLE = (
+    "No detectable size recorded for the inspection method: no repeat interval."
+)
+TOO_LATE = (
+    "The detectable size ({size:.1f} mm) is not below the critical size "
+    "({critical:.1f} mm): no repeat interval; needs an engineer."
+)
+NO_VALIDITY = "No limit of validity recorded: the interval is not cut down to it."
+NOTHING_LEFT = "{cap} leaves no cycles: no interval; needs an engineer."
+SEVERITY_OUTSIDE = (
+    "The factor for {what} does not contain the severity of the spectrum: average "
+    "usage is assumed."
+)
+FOUND_DAMAGE_LIFE = (
+    "Life of known damage: not an inspection interval and no leave to fly with it."
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Factored:
+    """A life over its factor; None where the policy is missing."""
+
+    factor: float | None
+    cycles: float | None
+
+    @property
+    def whole(self) -> int | None:
+        """Cycles rounded down."""
+        return None if self.cycles is None else whole_cycles(self.cycles)
+
+
+def over_factor(
+    inputs: Inputs, note: Note, cycles: float | None, policy_name: str, result: str
+) -> Factored:
+    """Divide a life by the policy's factor; without one say so and give nothing."""
+    policy = inputs.policy(policy_name)
+    what = SPECS[policy_name].title
+    if policy is None:
+        note.warn(NO_FACTOR.format(what=what, result=result))
+        return Factored(None, None)
+    factor = note.given("f", f"{what}, multiplies {policy.multiplies}", policy.factor)
+    if policy.severity_inside is False:
+        note.warn(SEVERITY_OUTSIDE.format(what=what))
+    if cycles is None:
+        return Factored(factor, None)
+    value = note.step(
+        "N/f",
+        "life over factor",
+        f"{cycles:,.0f} / {factor:g}",
+        cycles / factor,
+        "cycles",
+    )
+    return Factored(factor, value)
+
+
+def life(title: str, cycles: float | None, base: str, remark: str = "") -> Life:
+    """Make a life, rounded down."""
+    return Life(title, None if cycles is None else whole_cycles(cycles), base, remark)
+
+
+def caps(inputs: Inputs, note: Note, base: str) -> tuple[Cap, ...]:
+    """Return the ceilings on an interval that counts from `base`.
+
+    The limit of validity is a total since new; counted from anywhere else, what is
+    left of it holds.
+    """
+    found: list[Cap] = []
+    maximum = inputs.maybe("class_maximum")
+    if maximum:
+        found.append(Cap(whole_cycles(maximum.value), maximum.source))
+    validity = inputs.maybe("validity_cycles")
+    if validity is None:
+        note.warn(NO_VALIDITY)
+        return tuple(found)
+    total = whole_cycles(validity.value)
+    if base == SINCE_NEW:
+        found.append(Cap(total, "limit of validity"))
+        return tuple(found)
+    flown = inputs.number("accumulated_cycles").value
+    found.append(Cap(total - whole_cycles(flown), "what is left to limit of validity"))
+    return tuple(found)
+
+
+def interval(
+    inputs: Inputs, note: Note, cycles: float | None, base: str, symbol: str
+) -> Interval | None:
+    """Cut an interval down to its caps, and write both numbers down."""
+    if cycles is None:
+        return None
+    found = capped(cycles, base, caps(inputs, note, base))
+    note.step(
+        symbol,
+        f"rounded down, {base}" + (f", cut down to {found.cap}" if found.cap else ""),
+        f"calculated {found.uncapped:,}" if found.uncapped is not None else "",
+        found.cycles,
+        "cycles",
+    )
+    if found.cycles is None:
+        note.warn(NOTHING_LEFT.format(cap=found.cap.capitalize()))
+    return found
+
+
+def repeat_interval(
+    inputs: Inputs,
+    note: Note,
+    critical: float,
+    start: Callable[[float], float],
+    cycles_to_critical: Callable[[float], float],
+) -> Interval | None:
+    """Return (detectable size to critical size) over the policy's factor, capped.
+
+    `start` turns the detectable length into the length the growth counts in.
+    """
+    size = inputs.maybe("detectable_length")
+    if size is None:
+        note.warn(NO_DETECTABLE)
+        return None
+    detectable = note.given("2a_det", "detectable size with hidden part", size)
+    begin = start(detectable)
+    if begin >= critical:
+        note.warn(
+            TOO_LATE.format(size=detectable, critical=detectable * critical / begin)
+        )
+        return None
+    cycles = note.step(
+        "N_det",
+        "detectable to critical size, ∫ da / (da/dN)",
+        f"{begin:.2f} to {critical:.2f} mm",
+        cycles_to_critical(begin),
+        "cycles",
+    )
+    factored = over_factor(inputs, note, cycles, "repeat_policy", "repeat interval")
+    return interval(inputs, note, factored.cycles, LAST_DONE, "N_rep")
+
+
+def still_missing(inputs: Inputs) -> tuple[MissingInput, ...]:
+    """Return what threshold and repeat need and the record lacks."""
+    return inputs.missing(("growth_policy", "repeat_policy", "detectable_length"))

@@ -1,0 +1,186 @@
+"""From the record's loads to a panel's requirements and its cycle, with note lines."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from repairs.analysis import loads
+from repairs.analysis.crack_growth import StressCycle
+from repairs.analysis.inputs import Inputs
+from repairs.analysis.loads import LoadCase, Requirement
+from repairs.analysis.note import Note
+from repairs.analysis.types import GrossStress, Sourced
+
+FEET_45000 = 45_000.0
+RUNNING_LOAD_CASE = "recorded ultimate running load of the panel"
+ONE_DIRECTION = (
+    "Hoop direction only: stresses along the section are not part of this method."
+)
+
+PRESSURE_INPUTS = (
+    "normal_pressure",
+    "external_pressure",
+    "relief_pressure",
+    "ceiling",
+    "radius",
+)
+CYCLE_INPUTS = ("limit_flight_stress", "cycle_max_stress", "cycle_ratio")
+
+
+@dataclass(frozen=True, slots=True)
+class PanelLoads:
+    """Both requirements and the cycle of one flight, on gross stress [MPa]."""
+
+    residual: Requirement
+    ultimate: Requirement
+    cycle: StressCycle
+
+    @property
+    def not_checked(self) -> tuple[str, ...]:
+        """Cases whose loads are not recorded."""
+        return self.residual.not_checked + self.ultimate.not_checked
+
+    def on_section(self, share: float) -> PanelLoads:
+        """Return the same loads as stress on a section of `share` of the whole."""
+        cycle = StressCycle(GrossStress(self.cycle.maximum / share), self.cycle.ratio)
+        return PanelLoads(
+            _scaled(self.residual, share), _scaled(self.ultimate, share), cycle
+        )
+
+
+def _scaled(requirement: Requirement, share: float) -> Requirement:
+    return Requirement(
+        requirement.name,
+        tuple(
+            LoadCase(
+                case.title,
+                None if case.stress is None else GrossStress(case.stress / share),
+            )
+            for case in requirement.cases
+        ),
+    )
+
+
+def needed(inputs: Inputs) -> tuple[str, ...]:
+    """Return the names of the load inputs this panel needs."""
+    return PRESSURE_INPUTS if inputs.word("pressurised") == "yes" else CYCLE_INPUTS
+
+
+def panel_loads(inputs: Inputs, note: Note) -> PanelLoads:
+    """Write down and return the loads of a panel on its undamaged thickness.
+
+    A pressurised panel: one pressure cycle a flight from zero to normal operating
+    differential plus external aerodynamic pressure. Any other: the recorded cycle.
+    """
+    if inputs.word("pressurised") == "yes":
+        found = _shell(inputs, note)
+    else:
+        found = _recorded(inputs, note)
+    _write(found, note)
+    return found
+
+
+def _shell(inputs: Inputs, note: Note) -> PanelLoads:
+    normal = note.given(
+        "Δp", "normal operating differential", inputs.number("normal_pressure")
+    )
+    external = note.given(
+        "p_ext", "external aerodynamic pressure", inputs.number("external_pressure")
+    )
+    relief = note.given(
+        "p_rel", "relief-valve differential", inputs.number("relief_pressure")
+    )
+    radius = note.given("R", "shell radius", inputs.number("radius"))
+    thickness = note.given("t", "skin thickness", inputs.number("thickness"))
+    factors = loads.LoadFactors(
+        note.given(
+            "k_res",
+            "factor of residual, pressure alone",
+            inputs.number("residual_pressure_factor"),
+        ),
+        note.given(
+            "k_ult", "factor of static ultimate", inputs.number("ultimate_factor")
+        ),
+        note.given("k_proof", "factor of relief valve alone", _proof(inputs)),
+    )
+    given = inputs.maybe("limit_flight_stress")
+    flight = (
+        GrossStress(note.given("σ_fl", "hoop stress from limit flight loads", given))
+        if given
+        else None
+    )
+    pressures = loads.CabinPressures(normal, external, relief)
+    residual, ultimate = loads.shell_requirements(
+        pressures, radius, thickness, factors, flight
+    )
+    top = loads.hoop_stress(normal + external, radius, thickness)
+    note.step(
+        "σ",
+        "(Δp + p_ext) R / t, whole at mid-bay, no relief by frames",
+        f"({normal:.5f} + {external:.5f}) · {radius:.1f} / {thickness:.3f}",
+        top,
+        "MPa",
+        loads.SHELL,
+    )
+    note.warn(ONE_DIRECTION)
+    return PanelLoads(
+        residual,
+        _with_running_load(inputs, note, ultimate, thickness),
+        StressCycle(top, 0.0),
+    )
+
+
+def _proof(inputs: Inputs) -> Sourced:
+    adopted = inputs.maybe("proof_factor")
+    if adopted:
+        return adopted
+    high = inputs.number("ceiling").value > FEET_45000
+    return loads.PROOF_FACTOR_ABOVE_45000_FT if high else loads.PROOF_FACTOR_TO_45000_FT
+
+
+def _recorded(inputs: Inputs, note: Note) -> PanelLoads:
+    flight = GrossStress(
+        note.given(
+            "σ_lim",
+            "stress from limit flight loads",
+            inputs.number("limit_flight_stress"),
+        )
+    )
+    factor = note.given(
+        "k_ult", "factor of static ultimate", inputs.number("ultimate_factor")
+    )
+    top = note.given(
+        "σ_max", "largest stress of a flight", inputs.number("cycle_max_stress")
+    )
+    ratio = note.given("R_σ", "stress ratio of a flight", inputs.number("cycle_ratio"))
+    thickness = note.given("t", "skin thickness", inputs.number("thickness"))
+    residual, ultimate = loads.unpressurised_requirements(flight, factor)
+    return PanelLoads(
+        residual,
+        _with_running_load(inputs, note, ultimate, thickness),
+        StressCycle(GrossStress(top), ratio),
+    )
+
+
+def _with_running_load(
+    inputs: Inputs, note: Note, ultimate: Requirement, thickness: float
+) -> Requirement:
+    """Add the panel's recorded ultimate running load as a case of its own."""
+    given = inputs.maybe("ultimate_running_load")
+    if given is None:
+        return ultimate
+    running = note.given("N_ult", RUNNING_LOAD_CASE, given)
+    case = LoadCase(RUNNING_LOAD_CASE, GrossStress(running / thickness))
+    return Requirement(ultimate.name, (*ultimate.cases, case))
+
+
+def _write(found: PanelLoads, note: Note) -> None:
+    """Write the governing stresses down and say what was not checked."""
+    for symbol, requirement in (("σ_res", found.residual), ("σ_ult", found.ultimate)):
+        stress, case = requirement.governing
+        note.step(
+            symbol, f"required, gross, {requirement.name}: {case}", "", stress, "MPa"
+        )
+    if found.not_checked:
+        cases = "; ".join(found.not_checked)
+        note.warn(loads.PRESSURE_ONLY.format(cases=cases))
