@@ -64,7 +64,8 @@ AS_THROUGH = (
     "The corner flaw is grown as a through crack: hole radius over thickness or width "
     "is outside the corner solution. Shortens the life."
 )
-LARGEST_REACH = 0.45
+LARGEST_REACH = 0.45 * (1 - 1e-9)
+"""End of the width terms' range, just inside."""
 REQUIRED: tuple[str, ...] = (
     "element",
     "pressurised",
@@ -197,7 +198,9 @@ class Hole:
             )
         ]
         if self.radius is not None:
-            reach = 10 * (self.radius * self.thickness) ** 0.5 - self.diameter
+            reach = (
+                10 * (1 - 1e-9) * (self.radius * self.thickness) ** 0.5 - self.diameter
+            )
             ends.append((reach, "the range of the bulging factor"))
         around = inputs.surroundings()
         if around is not None:

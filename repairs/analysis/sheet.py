@@ -21,8 +21,9 @@ from repairs.analysis.part_through import (
 )
 from repairs.analysis.types import ROOT_1000, GrossStress, HalfLength
 
-LONGEST_SHELL_PARAMETER = 5.0
-WIDEST_SECANT = 0.35
+LONGEST_SHELL_PARAMETER = 5.0 * (1 - 1e-9)
+WIDEST_SECANT = 0.35 * (1 - 1e-9)
+"""Ends of both ranges, just inside: rounding must not step over them."""
 NO_RELIEF = "Plain sheet: no relief by frames, tear straps or stringers."
 
 
