@@ -18,6 +18,7 @@ Row = TypeVar("Row", bound=Model)
 
 RECORDER, ENGINEER, CERTIFIER = Role.RECORDER, Role.ENGINEER, Role.CERTIFIER
 SIGNATORY, PLANNER, ADMIN = Role.SIGNATORY, Role.PLANNER, Role.ADMINISTRATOR
+MANAGER, AUDITOR = Role.MANAGER, Role.AUDITOR
 
 ROLES_FOR: dict[str, frozenset[str]] = {
     action: frozenset(roles)
@@ -36,7 +37,10 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "part_change": (PLANNER, CERTIFIER),
         "event_record": (RECORDER, ENGINEER, CERTIFIER, PLANNER),
         "fleet_change": (ADMIN,),
+        "opening_rekey": (ADMIN, PLANNER, ENGINEER, CERTIFIER),
         "people_change": (ADMIN,),
+        "policy_set": (ADMIN,),
+        "history_read": (AUDITOR, MANAGER, ADMIN),
     }.items()
 }
 
@@ -54,10 +58,20 @@ def may_somewhere(user: User, action: str) -> bool:
 def require(user: User, action: str, operator_id: int) -> None:
     """Raise PermissionDenied (403) unless the user's roles allow the action there."""
     if not may(user, action, operator_id):
-        raise PermissionDenied(
-            f"Your role does not allow this ({action.replace('_', ' ')}). "
-            f"It is open to: {', '.join(sorted(ROLES_FOR[action]))}."
-        )
+        raise refused(action)
+
+
+def require_somewhere(user: User, action: str) -> None:
+    """Raise PermissionDenied (403) unless it is allowed at one of the operators."""
+    if not may_somewhere(user, action):
+        raise refused(action)
+
+
+def refused(action: str) -> PermissionDenied:
+    return PermissionDenied(
+        f"Your role does not allow this ({action.replace('_', ' ')}). "
+        f"It is open to: {', '.join(sorted(ROLES_FOR[action]))}."
+    )
 
 
 def visible_or_404(rows: QuerySet[Row], user: User, **key: Any) -> Row:

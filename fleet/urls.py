@@ -5,9 +5,26 @@ from __future__ import annotations
 from django.contrib.auth.decorators import login_not_required
 from django.urls import path
 
-from fleet.views import sessions
+from fleet.views import aircraft, history, people, policies, sessions, types
 
 urlpatterns = [
     path("sign-in/", login_not_required(sessions.sign_in), name="sign_in"),
     path("sign-out/", sessions.sign_out, name="sign_out"),
+    path("aircraft/new/", aircraft.aircraft_new, name="aircraft_new"),
+    path("aircraft/<int:pk>/state/", aircraft.aircraft_state, name="aircraft_state"),
+    path(
+        "aircraft/<int:pk>/opening/", aircraft.aircraft_opening, name="aircraft_opening"
+    ),
+    path("types/<str:code>/", types.aircraft_type, name="type"),
+    path("people/", people.people, name="people"),
+    path("people/new/", people.person_new, name="person_new"),
+    path("people/organisations/new/", people.organisation_new, name="organisation_new"),
+    path("people/roles/new/", people.membership_new, name="membership_new"),
+    path("people/roles/<int:pk>/end/", people.role_end, name="membership_end"),
+    path(
+        "people/authorisations/new/", people.authorisation_new, name="authorisation_new"
+    ),
+    path("policies/", policies.policies, name="policies"),
+    path("policies/new/", policies.policy_new, name="policy_new"),
+    path("history/", history.history, name="history"),
 ]

@@ -1,5 +1,13 @@
+"""Addresses of the pages that gather from every app."""
+
 from __future__ import annotations
 
-from django.urls import URLPattern
+from django.urls import path
 
-urlpatterns: list[URLPattern] = []
+from reports.views import aircraft, overview
+
+urlpatterns = [
+    path("", overview.overview, name="overview"),
+    path("aircraft/", aircraft.aircraft_list, name="aircraft_list"),
+    path("aircraft/<int:pk>/", aircraft.aircraft, name="aircraft"),
+]

@@ -71,13 +71,8 @@ def user_create(
     actor: User | None = None,
 ) -> User:
     """A login; what it may do comes from `membership_grant`."""
-    user = User(username=username, person=person, date_joined=at)
-    if person is not None:
-        first, _, last = person.name.rpartition(" ")
-        user.first_name, user.last_name = first, last
-    user.set_password(password)
     with Writing(actor=actor, action="user_create", at=at) as w:
-        return w.create(user)
+        return w.create(_login(username, password, person, at))
 
 
 def membership_grant(
@@ -163,3 +158,45 @@ def policy_set(
                 replaces=replaces,
             )
         )
+
+
+def person_add(
+    *,
+    operator: Operator,
+    organisation: Organisation,
+    name: str,
+    at: dt.datetime,
+    staff_number: str = "",
+    username: str = "",
+    password: str = "",
+    role: str = "",
+    began_on: dt.date | None = None,
+    actor: User | None = None,
+) -> Person:
+    """A new person; with a user name also the login and its first role, all or none."""
+    with Writing(actor=actor, action="person_add", at=at, operator=operator) as w:
+        person = w.create(
+            Person(organisation=organisation, name=name, staff_number=staff_number)
+        )
+        if username:
+            user = w.create(_login(username, password, person, at))
+            w.create(
+                Membership(
+                    user=user,
+                    operator=operator,
+                    role=role,
+                    began_on=began_on or at.date(),
+                )
+            )
+    return person
+
+
+def _login(
+    username: str, password: str, person: Person | None, at: dt.datetime
+) -> User:
+    user = User(username=username, person=person, date_joined=at)
+    if person is not None:
+        first, _, last = person.name.rpartition(" ")
+        user.first_name, user.last_name = first, last
+    user.set_password(password)
+    return user

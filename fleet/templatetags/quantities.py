@@ -4,6 +4,9 @@ from __future__ import annotations
 
 from django import template
 
+from fleet.models import Criticality
+from fleet.units import measure_write
+
 register = template.Library()
 
 
@@ -29,3 +32,21 @@ def decimals(value: float | None, places: int = 1) -> str:
     if value is None:
         return "—"
     return f"{value:,.{places}f}".replace("-", "−")
+
+
+@register.filter
+def measure(value: float | None, unit: str) -> str:
+    """A canonical value in a reader's unit, with that unit; unknown -> an em dash."""
+    return "—" if value is None else measure_write(value, unit)
+
+
+@register.filter
+def words(value: str) -> str:
+    """A stored word as it is said: detailed_visual -> detailed visual."""
+    return value.replace("_", " ")
+
+
+@register.filter
+def criticality(value: str) -> str:
+    """A stored criticality as its mark: principal -> PSE."""
+    return str(Criticality(value).label)

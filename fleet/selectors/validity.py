@@ -1,0 +1,49 @@
+"""What is left to an aircraft's limit of validity."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from fleet.selectors.counters import AircraftStanding
+
+
+@dataclass(frozen=True)
+class Validity:
+    """The limit of validity and what is left to it; None is not recorded."""
+
+    cycles: int | None
+    minutes: int | None
+    cycles_left: int | None
+    minutes_left: int | None
+    source: str
+
+    @property
+    def recorded(self) -> bool:
+        return self.cycles is not None or self.minutes is not None
+
+    @property
+    def passed(self) -> bool:
+        """Nothing is left on one counter; a counter that is unknown is not passed."""
+        return any(
+            left is not None and left <= 0
+            for left in (self.cycles_left, self.minutes_left)
+        )
+
+
+def validity_of(standing: AircraftStanding) -> Validity:
+    """The aircraft's own limit where it has one, else its variant's; no query."""
+    aircraft, variant = standing.aircraft, standing.aircraft.variant
+    own = aircraft.validity_cycles is not None or aircraft.validity_minutes is not None
+    holder = aircraft if own else variant
+    cycles, minutes = holder.validity_cycles, holder.validity_minutes
+    return Validity(
+        cycles=cycles,
+        minutes=minutes,
+        cycles_left=_left(cycles, standing.counters.cycles),
+        minutes_left=_left(minutes, standing.counters.minutes),
+        source=aircraft.validity_source if own else variant.source,
+    )
+
+
+def _left(limit: int | None, now: int | None) -> int | None:
+    return None if limit is None or now is None else limit - now
