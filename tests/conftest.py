@@ -6,6 +6,10 @@ import datetime as dt
 
 import pytest
 
+from tests.open_data import open_data_wheel
+
+__all__ = ["open_data_wheel"]
+
 NOW = dt.datetime(2025, 1, 1, 9, 0, tzinfo=dt.UTC)
 
 

@@ -64,6 +64,7 @@ _COUNTED = {
 }  # fmt: skip
 LETTERS = frozenset("abcdefghijklmnpqrstuvwxyz")
 """What may hang on a station or frame label; O is a nought."""
+BUTT_PHRASE = frozenset({"left", "right", "butt"})
 SIDE_LETTERS = frozenset({"l", "r", "lh", "rh", "lt", "rt"})
 Point = Along | Across
 
@@ -190,8 +191,9 @@ class _Reader:
             self._points("frames", "frame", self._frame, FRAME_WORDS)
         elif word in RIB_WORDS:
             self._points("ribs", "rib", self._rib, RIB_WORDS)
-        elif word in BUTT_WORDS or (word in ("left", "right") and self._butt_words()):
-            self._points("butt_lines", "bl", self._butt, set(BUTT_WORDS))
+        elif word in BUTT_WORDS or (word in BUTT_PHRASE and self._butt_words()):
+            keys = BUTT_WORDS.keys() | BUTT_PHRASE
+            self._points("butt_lines", "bl", self._butt, keys)
         elif word in WATER_WORDS or (word == "water" and self._is("line", ahead=1)):
             self._points("water_lines", "wl", self._water, WATER_WORDS)
         elif word in STRINGER_WORDS and self._stringer_follows():
