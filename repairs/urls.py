@@ -1,5 +1,15 @@
+"""Addresses of findings, repairs, evaluations, inspections and structure maps."""
+
 from __future__ import annotations
 
-from django.urls import URLPattern
+from django.urls import path
 
-urlpatterns: list[URLPattern] = []
+from repairs.views import maps
+
+urlpatterns = [
+    path(
+        "types/<str:code>/<str:section>/map/",
+        maps.structure_map,
+        name="structure_map",
+    ),
+]

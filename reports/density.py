@@ -17,6 +17,8 @@ from scipy import stats
 
 from reports.lattice import Counts, Flags, Floats, Lattice
 
+_Flat = tuple[Counts, Flags]
+
 FEW = 5
 """Below this count a cell's rate says little; such cells are marked on the map."""
 
@@ -43,49 +45,62 @@ DENOMINATORS = {each.key: each for each in (CYCLES, HOURS, YEARS)}
 
 
 @dataclass(frozen=True)
-class Sighting:
-    """One event in one half-bay; findings of one event share its key."""
-
-    event: str
-    along_half: int
-    around_half: int
-
-
-@dataclass(frozen=True)
 class Tally:
-    """Which cells each event touched, each cell once per event.
+    """Which cells were touched: by single findings, and by events of several.
 
-    ``outside`` counts sightings whose half-bay the section does not have.
+    ``singles`` counts findings that touch one cell and share no event. ``events`` has
+    for each other event its flat cell numbers, sorted, each cell once. ``outside`` is
+    how many half-bays named a cell that the section does not have.
     """
 
     lattice: Lattice
+    singles: Counts
     events: Sequence[NDArray[np.int64]]
-    """Per event its flat cell numbers, sorted, without repeats."""
     outside: int = 0
 
     @cached_property
     def counts(self) -> Counts:
         """Distinct (event, cell) per cell."""
-        size = math.prod(self.lattice.shape)
         flat = np.concatenate([*self.events, np.empty(0, dtype=np.int64)])
-        return np.bincount(flat, minlength=size).reshape(self.lattice.shape)
+        shared = np.bincount(flat, minlength=self.singles.size)
+        return self.singles + shared.reshape(self.lattice.shape)
 
 
-def tally(lattice: Lattice, sightings: Iterable[Sighting]) -> Tally:
-    """Fold sightings into cells, counting each event once per cell."""
-    rows = list(sightings)
-    along, around = lattice.cells(
-        np.array([row.along_half for row in rows], dtype=np.int64),
-        np.array([row.around_half for row in rows], dtype=np.int64),
-    )
-    known = (along < lattice.shape[0]) & (around < lattice.shape[1])
-    flat = np.where(known, along * lattice.shape[1] + around, -1)
+def tally(
+    lattice: Lattice,
+    singles: Iterable[tuple[int, int, int]],
+    shared: Iterable[tuple[str, int, int]] = (),
+) -> Tally:
+    """Fold half-bays into cells, counting each event once per cell.
+
+    ``singles`` are rows (along half, around half, findings); ``shared`` rows (event,
+    along half, around half), as many as the event has findings or touches half-bays.
+    """
+    rows = np.array(list(singles), dtype=np.int64).reshape(-1, 3)
+    flat, known = _flat(lattice, rows[:, 0], rows[:, 1])
+    size = math.prod(lattice.shape)
+    counts = np.bincount(flat[known], weights=rows[known, 2], minlength=size)
+    names = list(shared)
+    halves = np.array([row[1:] for row in names], dtype=np.int64).reshape(-1, 2)
+    touched, there = _flat(lattice, halves[:, 0], halves[:, 1])
     by_event: dict[str, set[int]] = {}
-    for row, cell in zip(rows, flat.tolist(), strict=True):
+    for row, cell in zip(names, touched.tolist(), strict=True):
         if cell >= 0:
-            by_event.setdefault(row.event, set()).add(cell)
-    events = [np.array(sorted(cells)) for cells in by_event.values()]
-    return Tally(lattice, events, outside=int((~known).sum()))
+            by_event.setdefault(row[0], set()).add(cell)
+    return Tally(
+        lattice,
+        counts.astype(np.int64).reshape(lattice.shape),
+        [np.array(sorted(cells)) for cells in by_event.values()],
+        outside=int(rows[~known, 2].sum() + (~there).sum()),
+    )
+
+
+def _flat(lattice: Lattice, along_half: Counts, around_half: Counts) -> _Flat:
+    """Flat cell numbers, -1 where the section has no such cell, and which are known."""
+    along, around = lattice.cells(along_half, around_half)
+    frames, stringers = lattice.shape
+    known = (along >= 0) & (along < frames) & (around >= 0) & (around < stringers)
+    return np.where(known, along * stringers + around, -1), known
 
 
 def garwood_interval(
@@ -237,32 +252,37 @@ class Density:
 
 
 CLASSES = 5
+LEAST_RATIO = 1.2
 NONE_FOUND, NO_EXPOSURE = 0, -1
 
 
-def class_step(shown: Floats) -> float:
-    """Width of a colour class: the classes follow the data.
+def class_edges(shown: Floats) -> tuple[float, ...]:
+    """Lower edges of the colour classes: they follow the drawn cells.
 
-    The upper class begins at four steps, near the 95th percentile of the cells that
-    hold a finding, so that one cell with little exposure does not flatten the rest.
-    Rounded to two figures. Pass the same step to two maps that are to be compared.
+    Equal ratios from the least rate to the 99th percentile, so that one cell with
+    little exposure does not flatten the rest; two figures. Pass the edges of one map
+    to another that is to be compared with it.
     """
     found = shown[np.isfinite(shown) & (shown > 0)]
     if not found.size:
-        return 1.0
-    rough = float(np.percentile(found, 95)) / (CLASSES - 1)
-    places = 1 - math.floor(math.log10(rough))
-    return round(rough, places)
+        return tuple(float(number) for number in range(1, CLASSES + 1))
+    low, high = float(found.min()), float(np.percentile(found, 99))
+    ratio = max((high / low) ** (1 / CLASSES), LEAST_RATIO)
+    return tuple(_two_figures(low * ratio**number) for number in range(CLASSES))
 
 
-def class_numbers(density: Density, shown: Floats, step: float) -> Counts:
+def _two_figures(value: float) -> float:
+    return round(value, 1 - math.floor(math.log10(value)))
+
+
+def class_numbers(density: Density, shown: Floats, edges: Sequence[float]) -> Counts:
     """Class 1 to 5 of each cell, ``NONE_FOUND`` or ``NO_EXPOSURE``.
 
-    Classes are half-open, lower end included: class n is [(n-1) step, n step).
+    Class n is [edge n, edge n + 1); the first takes all below it, the last all above.
     """
     filled = np.where(np.isfinite(shown), shown, 0.0)
-    steps = np.floor(filled / step * (1 + 1e-12))
-    number = np.clip(steps.astype(np.int64) + 1, 1, CLASSES)
+    number = np.searchsorted(np.array(edges), filled, side="right").astype(np.int64)
+    number = np.clip(number, 1, CLASSES)
     number[density.counts == 0] = NONE_FOUND
     number[~density.exposed] = NO_EXPOSURE
     return number

@@ -16,7 +16,7 @@ from numpy.typing import NDArray
 from scipy.special import xlogy
 
 from reports.density import Density, Tally
-from reports.lattice import Counts, Flags, Floats
+from reports.lattice import Counts, Flags, Floats, Lattice
 
 LARGEST = 8
 """Longest side of a window, in cells."""
@@ -45,6 +45,21 @@ class Window:
         around = np.arange(self.around, self.around + self.stringers) % shape[1]
         mask[self.along : self.along + self.frames, around] = True
         return mask
+
+
+def window_mm(window: Window, lattice: Lattice) -> tuple[float, float, float, float]:
+    """Edges of a window: along from and to, across from and to, past the cut if so."""
+    turns, rest = divmod(window.around + window.stringers, lattice.shape[1])
+    last = window.around + window.stringers
+    right = float(lattice.across_mm[rest if lattice.wraps else last])
+    if lattice.wraps:
+        right += turns * float(lattice.across_mm[-1] - lattice.across_mm[0])
+    return (
+        float(lattice.along_mm[window.along]),
+        float(lattice.along_mm[window.along + window.frames]),
+        float(lattice.across_mm[window.around]),
+        right,
+    )
 
 
 @dataclass(frozen=True)
@@ -156,7 +171,8 @@ def random_maps(density: Density, seen: Tally, *, seed: int, replicas: int) -> C
     exposed = density.exposed.ravel()
     share = (density.exposure / density.exposure.sum()).ravel()
     pieces = [cells[exposed[cells]] for cells in seen.events]
-    single = sum(len(cells) == 1 for cells in pieces)
+    single = int(seen.singles.ravel()[exposed].sum())
+    single += sum(len(cells) == 1 for cells in pieces)
     maps = generator.multinomial(single, share, size=replicas).reshape(replicas, *shape)
     for cells in pieces:
         if len(cells) > 1:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
 
 from django.urls import reverse
 
@@ -17,6 +18,8 @@ from fleet.drawing.structure_map import (
 from fleet.location.geometry import Section as SectionGeometry
 from fleet.location.geometry import TypeGeometry, geometry_from_toml
 from fleet.models import Aircraft, Section, User
+from fleet.selectors.aircraft import aircraft_visible
+from fleet.selectors.structure import geometry_of
 from repairs.models import Finding, Repair
 from repairs.selectors.neighbours import (
     Item,
@@ -185,3 +188,56 @@ def _grown(span: Span, size_mm: float | None) -> Span:
         return span
     middle = (span[0] + span[1]) / 2
     return middle - size_mm / 2, middle + size_mm / 2
+
+
+@dataclass(frozen=True)
+class MapPage:
+    """The page of one section: of a type, or of one of its aircraft."""
+
+    section: Section
+    sections: Sequence[Section]
+    aircraft: Aircraft | None
+    choices: Sequence[Aircraft]
+    skins: Sequence[str]
+    skin: str
+    map: StructureMap | None
+
+    @property
+    def svg(self) -> str:
+        """The drawing; empty without a geometry in force."""
+        return structure_map_svg(self.map) if self.map else ""
+
+    @property
+    def items(self) -> list[MapMark | MapRepair]:
+        """All that the map names, whether there was room to draw it or not."""
+        return [*self.map.marks, *self.map.repairs] if self.map else []
+
+
+def map_page(
+    section: Section, *, user: User, aircraft: Aircraft | None, skin: str
+) -> MapPage:
+    """The structure map of a section; five queries, whatever is on it.
+
+    A surface with two skins shows one of them, the upper one first.
+    """
+    geometry = geometry_of(section.aircraft_type)
+    shape = geometry.section(section.code) if geometry else None
+    skins = shape.skins if shape and shape.skins == ("upper", "lower") else ()
+    skin = skin if skin in skins else "".join(skins[:1])
+    drawn = None
+    if geometry and aircraft:
+        drawn = aircraft_map(aircraft, section, geometry, user=user, skin=skin)
+    elif geometry:
+        drawn = type_map(section, geometry, skin=skin)
+    choices = aircraft_visible(user).filter(
+        variant__aircraft_type=section.aircraft_type
+    )
+    return MapPage(
+        section=section,
+        sections=list(section.aircraft_type.sections.all()),
+        aircraft=aircraft,
+        choices=list(choices),
+        skins=skins,
+        skin=skin,
+        map=drawn,
+    )

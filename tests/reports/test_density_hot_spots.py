@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.stats import kstest, poisson
 
-from reports.density import CYCLES, Density, Sighting, tally
+from reports.density import CYCLES, Density, tally
 from reports.hot_spots import (
     LARGEST,
     Window,
@@ -34,7 +34,9 @@ def lattice(frames: int, stringers: int, *, wraps: bool = True) -> Lattice:
 
 def seen_at(cells: Lattice, places, exposure=None):
     """A density and its tally from (event, frame, stringer)."""
-    seen = tally(cells, [Sighting(str(e), 2 * f, 2 * s) for e, f, s in places])
+    alone = [(2 * f, 2 * s, 1) for e, f, s in places if e != "storm"]
+    storm = [("storm", 2 * f, 2 * s) for e, f, s in places if e == "storm"]
+    seen = tally(cells, alone, storm)
     if exposure is None:
         exposure = np.full(cells.shape, 100.0)
     return Density(cells, seen.counts, exposure, CYCLES), seen
