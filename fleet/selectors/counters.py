@@ -70,6 +70,11 @@ class AircraftStanding:
         return self.standing.at
 
     @property
+    def idle(self) -> bool:
+        """Parked, stored or withdrawn: nothing is counted, the calendar runs on."""
+        return self.state not in FLYING
+
+    @property
     def hours_note(self) -> str:
         """Empty when the hours of every flight are known."""
         count = self.flights_without_hours

@@ -10,7 +10,7 @@ from collections.abc import Mapping
 from datetime import date
 from typing import Any
 
-from fleet.due import Anchor, Base, Combine, Counter, Counters, Due, Limit
+from fleet.due import Anchor, Base, Counter, Counters, Due, Limit
 from fleet.intervals import due_from
 from fleet.services.history import Writing
 from repairs.models import (
@@ -168,19 +168,4 @@ def stage_clock_open(
         due=due,
         opened_on=repair.released_on or repair.entered_at.date(),
         basis=basis,
-    )
-
-
-def due_of(point: DuePoint) -> Due:
-    """A stored due point as the value that `fleet.due` compares."""
-    return Due(
-        Counters(
-            point.due_minutes,
-            point.due_cycles,
-            point.due_landings,
-            point.due_pressurisations,
-        ),
-        point.due_on,
-        Combine(point.combine),
-        point.cannot_compute,
     )
