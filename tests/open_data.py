@@ -68,9 +68,9 @@ def open_data_wheel(pytestconfig: pytest.Config) -> Callable[[str], Archive]:
 
 def _kept(directory: Path, digest: str) -> Path | None:
     for path in sorted(directory.iterdir()):
-        if path.suffix in (".whl", ".gz"):
-            if hashlib.sha256(path.read_bytes()).hexdigest() == digest:
-                return path
+        package = path.suffix in (".whl", ".gz")
+        if package and hashlib.sha256(path.read_bytes()).hexdigest() == digest:
+            return path
     return None
 
 

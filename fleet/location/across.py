@@ -23,6 +23,8 @@ SPAR_UNKNOWN = "This {section} has no {name} spar; it has {offers}."
 
 OFF_SKIN_IN = 2.0
 CLOCK_AGREES_DEG = 15.0
+CENTRELINE_MM = 0.04
+"""Nearer to the crown or keel than can be written, a point is on it."""
 _SIDES = {"L": "left", "R": "right"}
 
 
@@ -129,9 +131,16 @@ def _line(work: Work, point: Across) -> Stringer:
     numbered = [t for t in section.stringers if t.number == point.number]
     name = f"{section.stringer_prefix}{point.number:f}"
     if not numbered:
-        numbers = [t.number for t in section.stringers] or [0]
-        nearest = min(numbers, key=lambda n: abs(n - point.number))
-        offers = (Offer("nearest", f"{section.stringer_prefix}{nearest}{point.side}"),)
+        if not section.stringers:
+            words = "butt and water lines, the clock or a spar"
+            message = NO_LINES.format(what=name, section=work.name, words=words)
+            raise LocationRefused("E_SECTION_MISMATCH", message)
+        numbers = [t.number for t in section.stringers]
+        nearest = min(
+            section.stringers,
+            key=lambda t: (abs(t.number - point.number), t.side != side),
+        )
+        offers = (Offer("nearest", nearest.label),)
         message = STR_RANGE.format(
             what=name + point.side,
             section=work.name,
@@ -173,16 +182,16 @@ def _reach(work: Work, s1_mm: float, s2_mm: float) -> Reach:
     if section.wrap_mm is None:
         side = "" if section.skins != ("left", "right") else "L" if s1_mm < 0 else "R"
         return Reach(s1_mm, s2_mm, side)
-    start = section.wrapped(s1_mm)
-    end = start + (s2_mm - s1_mm)
     half = section.wrap_mm / 2.0
+    start = section.wrapped(s1_mm)
+    if s1_mm == s2_mm and min(abs(start), half - abs(start)) < CENTRELINE_MM:
+        start = 0.0 if abs(start) < CENTRELINE_MM else -half
+        return Reach(start, start, "")
+    end = start + (s2_mm - s1_mm)
     if (start < -TINY_MM < TINY_MM < end) or end > half + TINY_MM:
         work.codes.append("W_CROSSES_CENTRELINE")
         return Reach(start, end, "LR")
-    middle = (start + end) / 2.0
-    if abs(middle) < TINY_MM or abs(middle + half) < TINY_MM:
-        return Reach(start, end, "")
-    return Reach(start, end, "L" if middle < 0.0 else "R")
+    return Reach(start, end, "L" if start + end < 0.0 else "R")
 
 
 # -- clock --------------------------------------------------------------------
@@ -306,7 +315,7 @@ def _from_water_line(work: Work, wls: list[float], map_mm: float, side: str) -> 
         math.acos(max(-1.0, min(1.0, (wl - section.axis_wl_mm) / radius))) for wl in wls
     ]
     values = sorted(sign * angle * section.reference_mm for angle in angles)
-    return Reach(values[0], values[-1], side, None, sum(wls) / len(wls))
+    return _reach(work, values[0], values[-1])
 
 
 def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reach:
@@ -323,8 +332,8 @@ def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reac
         raise LocationRefused("E_MISMATCH", message)
     if off < -work.mm_in(OFF_SKIN_IN):
         return Reach(None, None, side, bl, wl, off_skin=True)
-    s_mm = section.wrapped(math.atan2(bl, up) * section.reference_mm)
-    return Reach(s_mm, s_mm, side, bl, wl)
+    s_mm = math.atan2(bl, up) * section.reference_mm
+    return _reach(work, s_mm, s_mm)
 
 
 # -- spars --------------------------------------------------------------------

@@ -23,7 +23,7 @@ from fleet.location.writing import write
 SECTION_UNKNOWN = "This type has no section “{name}”. It has {offers}."
 SECTION_SIDE = "“{text}” does not say which side. Did you mean {offers}?"
 NOT_HERE = "{what} is not a notation of the {section}; use {words}."
-OFF_PLANE = "No {what} runs at {at} on this {section}; {offers}."
+OFF_PLANE = "No {what} runs at {at} on this {section}.{offers}"
 NO_BULKHEAD = "This {section} has no such bulkhead; it has {offers}."
 
 TRACK_IN = 1.0
@@ -203,7 +203,7 @@ def _plane_agrees(work: Work, reach: Reach) -> None:
         what="seat track",
         at=f"BL {work.show(abs(reach.bl_mm))}",
         section=work.name,
-        offers=did_you_mean(offers).strip(),
+        offers=did_you_mean(offers),
     )
     raise LocationRefused("E_BL_RANGE", message, offers)
 

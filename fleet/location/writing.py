@@ -119,8 +119,7 @@ def _stringers(work: Work, position: Position) -> str:
     last = _one_stringer(work, position.s2_mm, map_mm)
     if first == last:
         return first
-    middle = section.wrapped((position.s1_mm + position.s2_mm) / 2.0)
-    if position.side == "L" or (position.side != "R" and middle < 0.0):
+    if position.side == "L":
         first, last = last, first
     return f"{first} to {last.removeprefix(', ')}"
 

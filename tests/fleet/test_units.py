@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from decimal import Decimal
 
 import pytest
@@ -68,9 +69,8 @@ def test_a_bare_length_is_refused_unless_the_caller_names_the_unit() -> None:
     ],
 )
 def test_what_cannot_be_read_is_refused_in_words(text: str, part: str) -> None:
-    with pytest.raises(UnitError, match="(?s).+") as caught:
+    with pytest.raises(UnitError, match=re.escape(part)):
         length_read(text)
-    assert part in str(caught.value)
 
 
 def test_stress_factors_follow_from_the_pound_and_the_inch() -> None:
