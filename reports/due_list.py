@@ -101,11 +101,7 @@ def due_list(query: DueQuery, *, user: User | None = None) -> DueList:
     rows = [
         *_point_rows(query, standings, lives),
         *(_life_row(life, query) for life in lives.values()),
-        *(
-            _validity_row(x, query)
-            for x in standings.values()
-            if validity_of(x).recorded
-        ),
+        *_validity_rows(query, standings),
         *_phase_rows(query, standings),
     ]
     shown = [row for row in rows if _wanted(row, query)]
