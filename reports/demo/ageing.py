@@ -210,8 +210,9 @@ def _corrosion_place(stream: Stream, variant: str) -> tuple[Written, str]:
     if kind == "floor":
         text = f"FLOOR BEAM STA {label} {'R' if side > 0 else 'L'}BL 20"
         return Written(text, _internal(label, variant)), "floor_beam"
-    text = f"KEEL BEAM STA {label} {'RH' if side > 0 else 'LH'}"
-    return Written(text, _internal(label, variant)), "keel_beam"
+    keel = frame_station(21 + frame_before(sta) % 10)
+    text = f"KEEL BEAM STA {keel} {'RH' if side > 0 else 'LH'}"
+    return Written(text, _internal(keel, variant)), "keel_beam"
 
 
 def _internal(sta: float, variant: str) -> Truth:

@@ -19,9 +19,10 @@ from reports.demo.usage import Logbook
 
 Planted = dict[str, list[str]]
 
-OPEN_QUESTIONS = ("mm_for_inch", "decimal_slip", "to_be_placed")
+OPEN_QUESTIONS = ("mm_for_inch", "decimal_slip", "to_be_placed", "transpositions")
 RECENT_CRACKS = ("crack_computed", "crack_near_cutout", "crack_at_lap_hole")
-REPORTED_DAYS, ASSESSED_DAYS, DEFERRED_DAYS, CLOSED_DAYS = 25, 60, 150, 90
+WATCHED_DAYS = 420
+REPORTED_DAYS, ASSESSED_DAYS, DEFERRED_DAYS, CLOSED_DAYS = 25, 60, 150, 21
 SIGNED_AGAIN = (
     "Within the limits of the manual. Signed on {day} by Gareth Ullswater, whose "
     "authorisation HA-C-191 had ended on {last}; decided again by the undersigned."
@@ -50,7 +51,7 @@ def findings_settle(
             continue
         if repair is not None:
             decision: DemoDisposition | None = _rectified(finding, repair)
-            state = "closed"
+            state = _after_repair(repair)
         elif finding.key in cracks or finding.damage_type in ("crack", "hole"):
             decision, state = _crack_decision(finding, logbook)
         else:
@@ -104,11 +105,16 @@ def _rectified(finding: DemoFinding, repair: DemoRepair) -> DemoDisposition:
 def _crack_decision(
     finding: DemoFinding, logbook: Logbook
 ) -> tuple[DemoDisposition | None, str]:
-    """A crack is rectified before further flight; recent ones wait for the repair."""
-    kind = "rectify" if (DEMO_TODAY - finding.found_on).days < 120 else "replace"
-    state = "to_rectify" if kind == "rectify" else "closed"
-    words = "Rectify before further flight." if kind == "rectify" else "Part replaced."
-    return _decision(finding, kind, logbook, words, after_days=0), state
+    """A crack is rectified before further flight; the repair is still to come."""
+    words = "Rectify before further flight."
+    return _decision(finding, "rectify", logbook, words, after_days=0), "to_rectify"
+
+
+def _after_repair(repair: DemoRepair) -> str:
+    """Closed, unless the repair is young or hides damage that is not shown removed."""
+    hidden = repair.covers and repair.damage_removed != "yes"
+    young = (DEMO_TODAY - repair.released_on).days < CLOSED_DAYS
+    return "rectified" if hidden or young else "closed"
 
 
 def _remaining(
@@ -124,15 +130,18 @@ def _remaining(
         return None, "assessed"
     if age < DEFERRED_DAYS and fate < 0.75:
         return _deferral(stream, finding, logbook), "deferred"
-    if finding.damage_type in ("fastener", "disbond") or (
-        finding.damage_type == "corrosion" and fate < 0.6
-    ):
-        statement = "Rectified by the task card; no repair outside the manual."
-        state = "rectified" if age < CLOSED_DAYS else "closed"
-        return _decision(finding, "rectify", logbook, statement), state
     if fate < 0.03:
         statement = "Mark in the paint only; no damage to the metal."
         return _decision(finding, "not_damage", logbook, statement), "closed"
+    if age < WATCHED_DAYS and fate > 0.9 and finding.damage_type == "dent":
+        decision = _decision(
+            finding, "accept_with_inspection", logbook, "Within the interim limits."
+        )
+        watch = (
+            DemoLimit("cycles", 2_500, "2,500 FC", "effective"),
+            DemoLimit("cycles", 2_500, "2,500 FC", "last_done"),
+        )
+        return replace(decision, inspections=watch), "accepted"
     statement = "Within the limits of the manual; damage remains as it is."
     return _decision(finding, "accept", logbook, statement), "accepted"
 

@@ -32,6 +32,8 @@ LEAST_LEFT_FC = 900
 PROGRAMME = DemoDocument(
     "programme", "BR-AMP-52", "22", "53-00", "Brackenfold Regional"
 )
+FLEET_RULES_FROM = dt.date(2021, 4, 1)
+"""When the whole present fleet had joined."""
 LETTER = DemoDocument("letter", "ARD-SL-53-014", "B", "p. 3", "Ardlune Aircraft")
 
 
@@ -124,7 +126,9 @@ def _done(
         cycles.append(due - stream.whole(40, 600))
         due = cycles[-1] + repeat
     if left is not None:
-        cycles = [c for c in cycles if c < last - 400] + [last]
+        if cycles and last - cycles[-1] < 400:
+            cycles[-1] -= 400
+        cycles.append(last)
     elif cycles and due - now < LEAST_LEFT_FC:
         cycles.append(now - stream.whole(60, 400))
     return tuple(_accomplished(logbook, count) for count in cycles if count <= now)
@@ -149,11 +153,10 @@ def _fleet_requirements(logbooks: dict[int, Logbook]) -> list[DemoRequirement]:
             continue
         logbook = logbooks[aircraft.msn]
         lap_subjects.append(_lap_subject(logbook))
-        checks = [day_date(day) for day in aircraft.check_days()]
         done = tuple(
             DemoAccomplishment(date, logbook.at(date), "no_finding", "hangar_1")
-            for date in checks
-            if date < DEMO_TODAY - dt.timedelta(days=18)
+            for date in (day_date(day) for day in aircraft.check_days())
+            if FLEET_RULES_FROM <= date < DEMO_TODAY - dt.timedelta(days=18)
         )
         belly_subjects.append(DemoSubject(aircraft.msn, accomplishments=done))
     lap = DemoRequirement(
@@ -164,7 +167,7 @@ def _fleet_requirements(logbooks: dict[int, Logbook]) -> list[DemoRequirement]:
         method="eddy_current_high",
         area="Lap joints S-12L and S-12R, STA 500 to STA 900",
         criteria="No indication above the reference notch.",
-        effective_on=dt.date(2018, 6, 1),
+        effective_on=FLEET_RULES_FROM,
         thresholds=(DemoLimit("cycles", 20_000, "20,000 FC", "new"),),
         repeats=(DemoLimit("cycles", 4_500, "4,500 FC", "last_done"),),
         subjects=tuple(lap_subjects),
@@ -177,8 +180,8 @@ def _fleet_requirements(logbooks: dict[int, Logbook]) -> list[DemoRequirement]:
         method="detailed_visual",
         area="Belly S-18L to S-18R, STA 240 to STA 900, and all door sills",
         criteria="Corrosion beyond light: record a finding.",
-        effective_on=dt.date(2018, 1, 1),
-        thresholds=(DemoLimit("months", 48, "48 months", "new"),),
+        effective_on=FLEET_RULES_FROM,
+        thresholds=(DemoLimit("months", 25, "25 months", "effective"),),
         repeats=(DemoLimit("months", 25, "25 months", "last_done"),),
         subjects=tuple(belly_subjects),
     )
@@ -208,7 +211,6 @@ def requirements_plant(
     planted: Planted,
 ) -> None:
     """Calendar items, a wrong unit, an unproved termination, a look on the sisters."""
-    today = DEMO_TODAY
     made = (
         ("due_today", 1010, dt.date(2023, 1, 1), "FR 28 main frame, lower half"),
         ("overdue_days", 1014, dt.date(2022, 12, 12), "Fin attachment fittings"),
@@ -219,9 +221,16 @@ def requirements_plant(
         planted[case] = [key]
     _unit_error(logbooks, requirements, planted)
     unverified = _calendar_item(
-        logbooks[1003], "I-1003-termination", today.replace(year=2023), "Seat track 12"
+        logbooks[1003], "I-1003-termination", dt.date(2023, 6, 1), "Frame 31 fittings"
     )
-    requirements.append(replace(unverified, state="termination_unverified"))
+    subject = unverified.subjects[0]
+    claimed = replace(
+        subject.accomplishments[0],
+        result="terminated",
+        note="entry of the former operator: improved fitting installed; not seen",
+    )
+    subject = replace(subject, accomplishments=(claimed,))
+    requirements.append(replace(unverified, subjects=(subject,)))
     planted["unverified_termination"] = ["I-1003-termination"]
     requirements.append(_sisters(logbooks, planted["crack_near_cutout"][0]))
     planted["look_on_the_sisters"] = ["I-SISTERS"]
@@ -239,7 +248,7 @@ def _calendar_item(
         method="detailed_visual",
         area=area,
         criteria="No damage.",
-        effective_on=dt.date(2019, 1, 1),
+        effective_on=done_on.replace(year=done_on.year - 2),
         thresholds=(DemoLimit("months", 24, "24 months", "effective"),),
         repeats=(DemoLimit("months", 24, "24 months", "last_done"),),
         subjects=(DemoSubject(logbook.aircraft.msn, accomplishments=(done,)),),

@@ -14,6 +14,7 @@ from reports.demo.airframe import (
     FRAME_PITCH_IN,
     FRAMES,
     PLUG_STA,
+    RADIUS_IN,
     STRINGER_STEP_DEG,
     STRINGERS,
     across_in,
@@ -203,11 +204,13 @@ def _below_stringer(s: Stream, sta: float, deg: float, variant: str) -> Written:
     label, tolerance = rounded(s, sta)
     upper = int(abs(deg) // STRINGER_STEP_DEG) + 1
     below_deg = abs(deg) - (upper - 1) * STRINGER_STEP_DEG
-    below = round(2 * below_deg / STRINGER_STEP_DEG * BAY_IN) / 2
+    radius = radius_at(sta)  # a tape on the skin measures at the local radius
+    below = round(2 * math.radians(below_deg) * radius) / 2
     if not below:
         return _station_stringer(s, sta, deg, variant)
     text = f"STA {plain(label)}, {plain(below)} in below {stringer_name(upper, deg)}"
-    return Written(text, fuselage_truth(sta, deg, variant, tolerance, 0.3))
+    at_reference = 0.3 * RADIUS_IN / radius
+    return Written(text, fuselage_truth(sta, deg, variant, tolerance, at_reference))
 
 
 def _stations_range(s: Stream, sta: float, deg: float, variant: str) -> Written:

@@ -98,6 +98,7 @@ class DemoDisposition:
     at: Counters
     statement: str
     limits: tuple[DemoLimit, ...] = ()
+    inspections: tuple[DemoLimit, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -138,6 +139,11 @@ class DemoRepair:
     replace_by: tuple[DemoLimit, ...] = ()
     stage_due_on: dt.date | None = None
     legacy: bool = False
+
+    @property
+    def covers(self) -> bool:
+        """Whether it hides what lies under it."""
+        return self.kind in ("external_doubler", "flush", "splice", "bonded")
 
 
 @dataclass(frozen=True, slots=True)
@@ -186,7 +192,6 @@ class DemoRequirement:
     subjects: tuple[DemoSubject, ...]
     repair: str = ""
     finding: str = ""
-    state: str = "effective"
 
 
 @dataclass(frozen=True, slots=True)

@@ -23,16 +23,17 @@ from reports.demo.stream import Stream
 from reports.demo.usage import Counters, Logbook
 
 REPAIRED_SHARE = {
-    "crack": 0.70,
-    "disbond": 0.25,
-    "bird_strike": 0.20,
-    "corrosion": 0.13,
-    "lightning": 0.14,
-    "hole": 0.9,
-    "dent": 0.05,
-    "fastener": 0.06,
-    "scratch": 0.04,
+    "crack": 1.0,
+    "hole": 1.0,
+    "fastener": 1.0,
+    "disbond": 0.10,
+    "bird_strike": 0.10,
+    "corrosion": 0.06,
+    "lightning": 0.05,
+    "dent": 0.03,
+    "scratch": 0.03,
 }
+"""Cracks, holes and loose fasteners do not stay; most other damage is accepted."""
 LEGACY_COUNTS = {
     1001: 11,
     1002: 11,
@@ -48,15 +49,15 @@ LEGACY_COUNTS = {
 PAST_THRESHOLD_PER_AIRCRAFT = 5
 PAST_THRESHOLD_MSNS = (1001, 1002, 1003, 1005)
 CATEGORY_WEIGHTS = (("a", 52.0), ("b", 31.0), ("c", 17.0))
-RECENT_CATEGORY_WEIGHTS = (("a", 30.0), ("b", 20.0), ("c", 50.0))
+RECENT_CATEGORY_WEIGHTS = (("a", 30.0), ("b", 20.0), ("c", 80.0))
 TIME_LIMITED_DAYS = 330
 KINDS = {
-    "dent": (("external_doubler", 5), ("flush", 3), ("blend", 2)),
+    "dent": (("external_doubler", 5), ("flush", 3)),
     "scratch": (("blend", 8), ("external_doubler", 2)),
     "corrosion": (("blend", 6), ("external_doubler", 3), ("replacement", 1)),
     "crack": (("external_doubler", 7), ("internal_doubler", 2), ("replacement", 1)),
     "hole": (("flush", 1), ("external_doubler", 1)),
-    "lightning": (("blend", 5), ("oversize_fastener", 2)),
+    "lightning": (("flush", 3), ("oversize_fastener", 2)),
     "fastener": (("oversize_fastener", 1),),
     "bird_strike": (("flush", 1), ("external_doubler", 2)),
     "disbond": (("bonded", 1),),
@@ -73,7 +74,15 @@ UNANSWERED = (
     "crack_computed",
     "crack_near_cutout",
     "crack_at_lap_hole",
+    "duplicates",
+    "mm_for_inch",
+    "decimal_slip",
+    "hail",
+    "side_flips",
+    "transpositions",
 )
+"""Planted findings that no repair may answer."""
+DOUBLERS = ("external_doubler", "internal_doubler", "flush", "splice")
 WORDS = {
     "blend": "Blend-out, shot peened and protected",
     "external_doubler": "External doubler",
@@ -167,7 +176,9 @@ def _legacy_draw(seed: int, msn: int, logbook: Logbook) -> list[DemoRepair]:
         kind = "external_doubler" if forced else stream.weighted(LEGACY_KINDS)
         written = _legacy_place(stream, aircraft.variant)
         length = stream.between(6, 22)
-        category = "b" if forced else stream.weighted((("a", 60), ("b", 40)))
+        category = stream.weighted((("a", 60), ("b", 40)))
+        if forced or kind == "blend":
+            category = "b" if forced else "a"
         layers, fasteners = structure_of(stream, kind, length)
         drawn.append(
             DemoRepair(
@@ -209,9 +220,11 @@ def _answer_draw(
     """The repair that answers a finding; None while it is still being planned."""
     released_on = finding.found_on + dt.timedelta(days=stream.whole(1, 5))
     kind = stream.weighted(KINDS[finding.damage_type])
+    if kind == "blend" and not finding.reworked:
+        kind = "external_doubler"
     length = stream.between(5, 16)
     document = approval_draw(stream, finding.msn, 500 + len(finding.key))
-    category, reason = _category_draw(stream, finding, released_on)
+    category, reason = _category_draw(stream, finding, kind, released_on)
     layers, fasteners = structure_of(stream, kind, length)
     if released_on > logbook.days[-1].day - dt.timedelta(days=10):
         return None
@@ -245,13 +258,13 @@ def _answer_draw(
 
 
 def _category_draw(
-    stream: Stream, finding: DemoFinding, released_on: dt.date
+    stream: Stream, finding: DemoFinding, kind: str, released_on: dt.date
 ) -> tuple[str, str]:
     old = (DEMO_TODAY - released_on).days > TIME_LIMITED_DAYS
     category = stream.weighted(CATEGORY_WEIGHTS if old else RECENT_CATEGORY_WEIGHTS)
     if finding.truth.section.startswith("NAC") or finding.damage_type == "disbond":
         return "not_applicable", "secondary structure by the type's list"
-    if category == "c" and (old or finding.msn == 1006):
+    if kind not in DOUBLERS or (category == "c" and (old or finding.msn == 1006)):
         return "a", ""
     return category, ""
 
