@@ -7,7 +7,7 @@ from io import StringIO
 
 import pytest
 
-from reports.exports.csv import csv_response, rows_to_csv
+from fleet.tables import csv_response, rows_to_csv
 
 
 @pytest.mark.parametrize("text", ["=1+1", "+1", "-1", "@SUM(A1)", "\t=1", "\r=1"])
