@@ -13,7 +13,6 @@ from dataclasses import dataclass
 from datetime import date, timedelta
 from io import StringIO
 
-from fleet.refusals import Refused
 from fleet.units import UnitError, hours_read
 
 COLUMNS = {
@@ -38,8 +37,12 @@ NO_LINES = "No line of usage was read below the names of the columns."
 BAD_CELL = "Line {line}: {column} “{read}” cannot be read; write {how}."
 
 
-class UsageFileError(Refused):
-    """A table of usage that cannot be read."""
+class UsageFileError(ValueError):
+    """A table of usage that cannot be read; `problems` has one sentence each."""
+
+    def __init__(self, problems: list[str]) -> None:
+        super().__init__("\n".join(problems))
+        self.problems = problems
 
 
 @dataclass(frozen=True)

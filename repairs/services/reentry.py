@@ -14,6 +14,7 @@ from typing import Any
 from fleet.amounts import amount_read
 from fleet.canonical import canonical, digest
 from fleet.models import LifeLimit, Operator, User
+from fleet.refusals import Refused
 from fleet.services.history import Writing
 from fleet.services.part_records import life_limit_put_in_force
 from repairs.models import BlindReentry, InspectionRequirement, RequirementLimit
@@ -24,7 +25,7 @@ SAME_PERSON = (
 )
 
 
-class ReentryRefused(ValueError):
+class ReentryRefused(Refused):
     """The second keying is by the first person, or by nobody."""
 
 
@@ -77,7 +78,7 @@ def _reentry(
     subject: InspectionRequirement | LifeLimit,
 ) -> BlindReentry:
     if first is not None and w.actor == first:
-        raise ReentryRefused(SAME_PERSON.format(name=first))
+        raise ReentryRefused([SAME_PERSON.format(name=first)])
     column = "life_limit" if isinstance(subject, LifeLimit) else "requirement"
     row: BlindReentry = w.create(
         BlindReentry(
