@@ -61,7 +61,9 @@ class Word(models.TextField):
     def __init__(
         self, *, choices: Any = None, words: Sequence[str] = (), **kwargs: Any
     ) -> None:
-        self.words = tuple(words) or tuple(value for value, _ in _pairs(choices))
+        if choices is None:
+            choices = [(word, word.replace("_", " ")) for word in words]
+        self.words = tuple(value for value, _ in getattr(choices, "choices", choices))
         super().__init__(choices=choices, **kwargs)
 
     def deconstruct(self) -> Any:
@@ -74,10 +76,6 @@ class Word(models.TextField):
         allowed = (*self.words, "") if self.blank else self.words
         listed = ", ".join(f"'{word}'" for word in allowed)
         return f"{connection.ops.quote_name(self.column)} IN ({listed})"
-
-
-def _pairs(choices: Any) -> Any:
-    return getattr(choices, "choices", choices) or ()
 
 
 COUNTER_HIGH = 2_000_000_000
