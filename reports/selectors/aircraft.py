@@ -30,6 +30,8 @@ from fleet.selectors.aircraft import (
 from fleet.selectors.history import Told, history_of
 from fleet.selectors.parts import part_lives
 from repairs.models import OPEN_STATES, Finding, Repair
+from reports.due_list import DueQuery, due_list
+from reports.selectors.due_shown import DueShown
 from reports.selectors.part_lines import PartLine, nearest_first
 
 SHOWN = 25
@@ -71,6 +73,7 @@ class AircraftPage:
     periods: list[AircraftPeriod]
     spans: list[AircraftSpan]
     sections: list[Section]
+    due: DueShown | None
     open_findings: Shown
     accepted: Shown
     repairs: Shown
@@ -163,6 +166,7 @@ def aircraft_page(user: User, aircraft: Aircraft, *, as_of: dt.date) -> Aircraft
         if own
         else [],
         sections=list(aircraft.variant.aircraft_type.sections.all()),
+        due=_due(user, aircraft, as_of) if own and aircraft.data_to is None else None,
         open_findings=_shown(findings.filter(state__in=OPEN_STATES)),
         accepted=_shown(findings.filter(state="accepted")),
         repairs=_shown(repairs.distinct()),
@@ -174,6 +178,11 @@ def aircraft_page(user: User, aircraft: Aircraft, *, as_of: dt.date) -> Aircraft
         parts=_installed(user, aircraft, until) if own else [],
         history=history_of(aircraft) if own else [],
     )
+
+
+def _due(user: User, aircraft: Aircraft, as_of: dt.date) -> DueShown:
+    query = DueQuery(as_of, registration=aircraft.registration)
+    return DueShown.of(due_list(query, user=user), SHOWN)
 
 
 def _shown(rows: object) -> Shown:

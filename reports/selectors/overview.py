@@ -19,6 +19,8 @@ from repairs.models import (
     Meaning,
     Outcome,
 )
+from reports.due_list import DueQuery, due_list
+from reports.selectors.due_shown import DueShown
 from reports.selectors.part_lines import PartLine, nearest_first
 
 SHOWN = 8
@@ -34,16 +36,16 @@ NO_LONGER = (FindingState.CLOSED, FindingState.DUPLICATE, FindingState.VOIDED)
 
 # Panels in the order in which each role looks at them.
 ORDER: dict[str, tuple[str, ...]] = {
-    Role.RECORDER: ("findings", "aircraft"),
-    Role.ENGINEER: ("findings", "evaluations"),
-    Role.CERTIFIER: ("findings", "aircraft"),
-    Role.SIGNATORY: ("evaluations", "findings"),
-    Role.PLANNER: ("aircraft", "parts"),
-    Role.MANAGER: ("findings", "parts"),
-    Role.AUDITOR: ("entries", "parts"),
-    Role.ADMINISTRATOR: ("aircraft", "entries"),
+    Role.RECORDER: ("findings", "aircraft", "due"),
+    Role.ENGINEER: ("findings", "evaluations", "due"),
+    Role.CERTIFIER: ("findings", "due", "aircraft"),
+    Role.SIGNATORY: ("evaluations", "findings", "due"),
+    Role.PLANNER: ("due", "aircraft", "parts"),
+    Role.MANAGER: ("due", "findings", "parts"),
+    Role.AUDITOR: ("entries", "due", "parts"),
+    Role.ADMINISTRATOR: ("aircraft", "entries", "due"),
 }
-PANELS = ("findings", "evaluations", "parts", "aircraft", "entries")
+PANELS = ("due", "findings", "evaluations", "parts", "aircraft", "entries")
 
 
 @dataclass(frozen=True)
@@ -132,6 +134,10 @@ def _evaluations(user: User) -> QuerySet[Evaluation]:
         .annotate(checked=signed(Meaning.CHECKED), approved=signed(Meaning.APPROVED))
         .filter(approved=False)
     )
+
+
+def due_today(user: User, *, as_of: dt.date) -> DueShown:
+    return DueShown.of(due_list(DueQuery(as_of), user=user), SHOWN)
 
 
 def parts_nearest(user: User, *, as_of: dt.date) -> list[PartLine]:

@@ -22,6 +22,7 @@ def overview(request: Request) -> HttpResponse:
         "panels": [f"reports/overview/_{name}.html" for name in names],
         "may_report": may_somewhere(user, "finding_record"),
         "may_audit": may_somewhere(user, "history_read"),
+        "due": selected.due_today(user, as_of=day),
         "findings": selected.finding_tally(user),
         "evaluations": selected.evaluation_tally(user),
         "parts": selected.parts_nearest(user, as_of=day),
