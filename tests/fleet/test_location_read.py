@@ -319,44 +319,10 @@ def test_no_text_whatever_raises(text: str) -> None:
 
 
 _PIECES = st.sampled_from(
-    [
-        "STA",
-        "FR",
-        "S-",
-        "17L",
-        "640",
-        "+",
-        "-",
-        "/",
-        "to",
-        "and",
-        "12",
-        "in",
-        "aft",
-        "of",
-        "door",
-        "2L",
-        "RBL",
-        "WL",
-        "4",
-        "o'clock",
-        "'",
-        '"',
-        ",",
-        ";",
-        "RIB",
-        "spar",
-        "upper",
-        "skin",
-        "LH",
-        "R",
-        "&",
-        "560B",
-        "1/2",
-        "mm",
-        "below",
-    ]
-)
+    ["STA", "FR", "S-", "17L", "640", "+", "-", "/", "to", "and", "12", "in", "aft",
+     "of", "door", "2L", "RBL", "WL", "4", "o'clock", "'", '"', ",", ";", "RIB", "spar",
+     "upper", "skin", "LH", "R", "&", "560B", "1/2", "mm", "below"]
+)  # fmt: skip
 
 
 @given(st.lists(_PIECES, max_size=14).map(" ".join))
