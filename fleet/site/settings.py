@@ -67,6 +67,7 @@ def kept_today() -> str:
 FRAMEBAY_TODAY = os.environ.get("FRAMEBAY_TODAY") or kept_today()
 
 INSTALLED_APPS = [
+    "fleet",  # first: its createsuperuser takes the place of Django's
     "django.contrib.auth",
     "django.contrib.contenttypes",
     "django.contrib.sessions",
@@ -74,7 +75,6 @@ INSTALLED_APPS = [
     "django.contrib.staticfiles",
     "csp",
     "django_filters",
-    "fleet",
     "repairs",
     "reports",
 ]
