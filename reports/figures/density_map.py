@@ -138,6 +138,23 @@ def rate_words(rate: float) -> str:
     return f"{rate:,.{min(places, 6)}f}"
 
 
+def swatch(name: str) -> str:
+    """A legend's little picture, for use beside its words."""
+    ground = svg.tag(
+        "rect", class_=name if name[0] == "d" else "d2", width=22, height=14
+    )
+    over = ""
+    if name == "few":
+        over = svg.tag("path", class_="few", d="M1 13L21 1")
+    elif name == "dx":
+        over = svg.tag("path", class_="cross", d="M1 1L21 13M1 13L21 1")
+    elif name == "outside":
+        ground = svg.tag("circle", class_="outside", cx=11, cy=7, r=3)
+    return svg.tag(
+        "svg", ground, over, class_="swatch", viewBox="0 0 22 14", aria_hidden="true"
+    )
+
+
 def density_svg(figure: DensityFigure) -> str:
     """The map for the page: one tab stop, words on each cell that holds a finding."""
     sheet = figure.sheet

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import datetime as dt
 from collections.abc import Iterable, Iterator, Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import reduce
 from operator import or_
 from typing import Any
@@ -19,9 +19,10 @@ from django.db.models import Count, F, Q, QuerySet, Sum
 from fleet.location.geometry import Section as SectionGeometry
 from fleet.location.geometry import TypeGeometry
 from fleet.models import Aircraft, AircraftType, Section, User
+from fleet.selectors.aircraft import aircraft_visible
 from fleet.selectors.counters import aircraft_standings, usage_current
 from repairs.models import Finding
-from repairs.models.columns import Element
+from repairs.models.columns import Element, Surface
 from repairs.selectors.neighbours import findings_shown
 from reports.density import CYCLES, HOURS, YEARS, Denominator, Density, Tally, tally
 from reports.lattice import Lattice, lattice_of
@@ -109,16 +110,17 @@ def density_data(
 ) -> DensityData:
     """The density map's numbers; about ten queries, whatever the number of rows."""
     section = geometry.section(asked.section.code)
+    asked = replace(asked, skin=_one_skin(asked.skin, section))
     lattice = lattice_of(section, [variant.code for variant in geometry.variants])
     windows = list(_windows(asked, user, as_of))
     rows = _asked_for(asked, user, windows, as_of)
-    counted = _counted(rows, asked, section, windows)
+    counted = _counted(rows, asked, windows)
     seen = _tally(lattice, section, counted)
     density = Density(
         lattice, seen.counts, lattice.exposure(_amounts(windows)), asked.denominator
     )
     totals = _totals(counted)
-    earlier = rows.exclude(_in_windows(windows)).filter(_skin(asked, section))
+    earlier = rows.exclude(_in_windows(windows)).filter(_skin(asked))
     return DensityData(
         asked=asked,
         geometry=geometry,
@@ -126,7 +128,7 @@ def density_data(
         density=density,
         seen=seen,
         windows=windows,
-        beside=_beside(asked, section, rows, windows, density, seen),
+        beside=_beside(asked, rows, windows, density, seen),
         events=totals["alone"] + totals["events"],
         damages=totals["damages"],
         outside=_outside(lattice, earlier),
@@ -144,16 +146,14 @@ def _windows(
     Only aircraft of the user's own operators of today: a former operator sees neither
     all findings nor all usage of an aircraft, and a rate of half a story is false.
     """
-    rows = Aircraft.objects.visible_to(user).filter(
-        variant__aircraft_type=asked.aircraft_type
-    )
+    rows = aircraft_visible(user).filter(variant__aircraft_type=asked.aircraft_type)
     if not user.sees_all_operators:
         rows = rows.filter(operator__in=user.operator_ids())
     if asked.variant:
         rows = rows.filter(variant__code=asked.variant)
     if asked.aircraft:
         rows = rows.filter(pk__in=[one.pk for one in asked.aircraft])
-    fleet = list(rows.select_related("variant").distinct())
+    fleet = list(rows)
     standings = aircraft_standings(fleet, as_of=as_of)
     days = {}
     for one in fleet:
@@ -253,18 +253,13 @@ def findings_in_rates(
 ) -> QuerySet[Finding]:
     """The findings that the map counts."""
     rows = _asked_for(data.asked, user, data.windows, as_of)
-    return _counted(rows, data.asked, data.section, data.windows)
+    return _counted(rows, data.asked, data.windows)
 
 
 def _counted(
-    rows: QuerySet[Finding],
-    asked: DensityFilter,
-    section: SectionGeometry,
-    windows: Sequence[AircraftWindow],
+    rows: QuerySet[Finding], asked: DensityFilter, windows: Sequence[AircraftWindow]
 ) -> QuerySet[Finding]:
-    return rows.filter(
-        _in_windows(windows), _skin(asked, section), around_half__isnull=False
-    )
+    return rows.filter(_in_windows(windows), _skin(asked), around_half__isnull=False)
 
 
 def _in_windows(windows: Sequence[AircraftWindow]) -> Q:
@@ -280,12 +275,16 @@ def _in_windows(windows: Sequence[AircraftWindow]) -> Q:
     return reduce(or_, parts, Q(pk__in=[]))
 
 
-def _skin(asked: DensityFilter, section: SectionGeometry) -> Q:
-    """Damage of the skin that the map shows: outside, or the skin asked for."""
-    surfaces = [asked.skin] if asked.skin else list(section.skins)
-    if not {"upper", "lower"} & set(section.skins):
-        surfaces = ["outer"]
-    return Q(element=Element.SKIN, surface__in=surfaces)
+def _one_skin(asked: str, section: SectionGeometry) -> str:
+    """The skin mapped of two that lie over each other; empty where there is one."""
+    if section.skins != ("upper", "lower"):
+        return ""
+    return asked if asked in section.skins else section.skins[0]
+
+
+def _skin(asked: DensityFilter) -> Q:
+    """Damage of the skin that the map shows, from outside."""
+    return Q(element=Element.SKIN, surface=asked.skin or Surface.OUTER)
 
 
 def _tally(
@@ -358,7 +357,6 @@ def _totals(rows: QuerySet[Finding]) -> dict[str, int]:
 
 def _beside(
     asked: DensityFilter,
-    section: SectionGeometry,
     rows: QuerySet[Finding],
     windows: Sequence[AircraftWindow],
     density: Density,
@@ -366,7 +364,7 @@ def _beside(
 ) -> Beside:
     """What is in the record and in no rate; each finding under its first reason."""
     placed, inside = Q(section__isnull=False), _in_windows(windows)
-    skin, surface = Q(element=Element.SKIN), _skin(asked, section)
+    skin, surface = Q(element=Element.SKIN), _skin(asked)
     sums = rows.aggregate(
         to_be_placed=Count("pk", filter=~placed),
         outside_data=Count("pk", filter=placed & ~inside & surface),
