@@ -10,7 +10,7 @@ from __future__ import annotations
 from collections import Counter as Tally
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
-from datetime import date, datetime
+from datetime import date, datetime, timedelta
 
 from django.db.models import Q
 
@@ -41,6 +41,7 @@ from repairs.selectors.due_items import (
 from reports.due_rows import DueRow, export_row, sort_key
 
 BUCKETS = (Bucket.OVERDUE, Bucket.TO_30, Bucket.TO_60, Bucket.TO_90, Bucket.LATER)
+FIXED = BUCKETS[:4]
 RETURN_TO_SERVICE = "{state}: due before return to service"
 FORECAST = (
     "forecast from the last 90 days' usage without parked days; the second date uses "
@@ -86,6 +87,17 @@ class DueList:
     def tally(self) -> dict[Bucket, int]:
         counts = Tally(row.bucket for row in self.rows)
         return {bucket: counts[bucket] for bucket in BUCKETS}
+
+    @property
+    def counts(self) -> list[tuple[str, int]]:
+        """The tally in the words of the page, without a bucket beyond the horizon."""
+        return [(name.value, n) for name, n in self.tally.items() if n or name in FIXED]
+
+    @property
+    def behind(self) -> list[AircraftStanding]:
+        """Aircraft whose data end before the day that precedes the list's date."""
+        eve = self.query.as_of - timedelta(days=1)
+        return [x for x in self.fleet if x.current_to is None or x.current_to < eve]
 
     @property
     def digest(self) -> str:

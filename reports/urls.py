@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from django.urls import path
 
-from reports.views import aircraft, overview
+from reports.views import aircraft, density, due, overview
 
 urlpatterns = [
     path("", overview.overview, name="overview"),
     path("aircraft/", aircraft.aircraft_list, name="aircraft_list"),
     path("aircraft/<int:pk>/", aircraft.aircraft, name="aircraft"),
+    path("due/", due.due_list_page, name="due_list"),
+    path("density/", density.density, name="density"),
 ]
