@@ -130,7 +130,7 @@ def grow(
     second = inputs.law("second_growth_law")
     if second is not None:
         other = path.cycles(start.length, end, second)
-        note.step(
+        note.beside(
             "N′",
             OTHER_LAW,
             f"{shown}; through crack only",

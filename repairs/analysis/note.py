@@ -16,6 +16,7 @@ class Note:
         self._lines: list[NoteLine] = []
         self._barred: list[str] = []
         self._warnings: list[str] = []
+        self._beside: set[int] = set()
 
     def given(self, symbol: str, title: str, value: Sourced) -> float:
         """Write down an input and return its number."""
@@ -46,6 +47,19 @@ class Note:
         """Write down a calculated value and return it."""
         self._append(symbol, formula, substitution, value, unit, reference)
         return value
+
+    def beside(
+        self,
+        symbol: str,
+        formula: str,
+        substitution: str,
+        value: float,
+        unit: str,
+        reference: Reference,
+    ) -> None:
+        """Write down a value for comparison, on which the result does not rest."""
+        self._append(symbol, formula, substitution, value, unit, reference)
+        self._beside.add(len(self._lines))
 
     def text(self, statement: str) -> None:
         """Write down an assumption or a finding that has no number."""
@@ -78,10 +92,14 @@ class Note:
     @property
     def source_from_memory(self) -> bool:
         """Whether a line rests on a value nobody has seen in print."""
-        return any(line.grade is Grade.MEMORY for line in self._lines)
+        return bool(self._from_memory())
 
     def _from_memory(self) -> str:
-        lines = [str(li.number) for li in self._lines if li.grade is Grade.MEMORY]
+        lines = [
+            str(line.number)
+            for line in self._lines
+            if line.grade is Grade.MEMORY and line.number not in self._beside
+        ]
         if not lines:
             return ""
         word = "line" if len(lines) == 1 else "lines"

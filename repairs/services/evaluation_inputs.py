@@ -1,0 +1,359 @@
+"""From the record to the inputs of a calculation, and the rows they were read from.
+
+What the record does not say is left out: the method names it as missing. The panel on
+this aircraft goes before the type's panel, an adopted value before a recorded one.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+import json
+from collections.abc import Iterator
+from dataclasses import dataclass, field
+
+from django.db import models
+
+from fleet.models import (
+    AdoptedValue,
+    DetectableSize,
+    FatiguePolicy,
+    Material,
+    Operator,
+    Panel,
+    PanelOnAircraft,
+    Policy,
+    Spectrum,
+)
+from fleet.selectors.counters import aircraft_standing
+from fleet.selectors.people import policy
+from fleet.selectors.validity import validity_of
+from repairs.analysis import scatter
+from repairs.analysis.inputs import SPECS, Value
+from repairs.analysis.intervals import SINCE_NEW
+from repairs.analysis.types import Grade, Sourced, Stated, Use
+from repairs.models import Finding, MeasuredValue, Measurement, Repair
+from repairs.selectors.edges import earlier_depth_mm
+from repairs.services.evaluation_materials import (
+    adopted_number,
+    adopted_values,
+    grade_of,
+    material_inputs,
+)
+from repairs.services.evaluation_place import (
+    Skin,
+    Subject,
+    skin_under,
+    surroundings_of,
+)
+
+ADOPTABLE = (
+    "clearance_multiple",
+    "residual_pressure_factor",
+    "ultimate_factor",
+    "proof_factor",
+    "clad_life_factor",
+    "assumed_flaw",
+)
+POLICIES = {
+    "stress_life_policy": "stress_life",
+    "growth_policy": "growth_threshold",
+    "repeat_policy": "growth_repeat",
+}
+LARGEST_INTERVAL = "largest_interval_{criticality}"
+"""Policy key of the operator's largest interval of a class, in flight cycles."""
+
+LENGTHS = {
+    "crack_length": "length_mm",
+    "edge_crack_length": "edge_crack_length_mm",
+    "hole_diameter": "hole_diameter_mm",
+    "edge_distance": "edge_distance_mm",
+    "strip_width": "strip_width_mm",
+    "remaining_thickness": "remaining_thickness_mm",
+    "blend_length": "blend_length_mm",
+}
+UNCERTAINTIES = {
+    "crack_length_uncertainty": "length_mm",
+    "edge_crack_uncertainty": "edge_crack_length_mm",
+    "gauge_uncertainty": "remaining_thickness_mm",
+}
+WORDS = {
+    "crack_direction": "direction",
+    "crack_origin": "origin",
+    "damage_removed": "damage_removed",
+    "hole_load": "hole_load",
+    "both_sides": "both_sides",
+}
+CYCLE_KEYS = ("cycle_max_mpa", "cycle_ratio")
+"""What a panel's spectrum says of one flight."""
+
+UsedRow = (
+    Panel
+    | PanelOnAircraft
+    | Material
+    | Spectrum
+    | Measurement
+    | FatiguePolicy
+    | DetectableSize
+    | AdoptedValue
+    | Policy
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Choice:
+    """What the engineer chooses when asking for an evaluation."""
+
+    use: Use
+    detectable: DetectableSize | None = None
+    life_used_reason: str = ""
+
+
+@dataclass(slots=True)
+class Gathered:
+    """Inputs found in the record, and every row that was read for them."""
+
+    values: dict[str, Value] = field(default_factory=dict)
+    rows: dict[tuple[type[models.Model], int], UsedRow] = field(default_factory=dict)
+
+    def put(self, name: str, value: Value, *rows: UsedRow) -> None:
+        """Keep an input and the rows behind it."""
+        self.values[name] = value
+        for row in rows:
+            self.rows[type(row), row.pk] = row
+
+    def number(
+        self,
+        name: str,
+        value: float | None,
+        source: str,
+        *rows: UsedRow,
+        grade: Grade = Grade.RECORDED,
+    ) -> None:
+        """Keep a number, unless the record does not have it."""
+        if value is not None:
+            where = source or "recorded without a source"
+            self.put(name, Sourced(value, SPECS[name].unit, where, grade), *rows)
+
+    def word(self, name: str, value: str, source: str, *rows: UsedRow) -> None:
+        """Keep a stated word, unless it is blank."""
+        if value:
+            self.put(name, Stated(value, source), *rows)
+
+
+def measured_finding(subject: Subject) -> Finding | None:
+    """The finding whose measurements speak for a subject."""
+    if isinstance(subject, Finding):
+        return subject
+    row = subject.finding_rows.select_related("finding").order_by("pk").first()
+    return row.finding if row else None
+
+
+def gather(
+    subject: Subject, choice: Choice, *, as_of: dt.date, cracked_hole: bool
+) -> Gathered:
+    """Everything the record says that any method may ask for."""
+    found = Gathered()
+    operator = subject.operator
+    _measurements(found, subject)
+    found.word("hole_cracked", "yes" if cracked_hole else "no", str(subject))
+    found.word("element", subject.element, str(subject))
+    skin = skin_under(subject)
+    if skin is not None:
+        _skin(found, subject, skin, operator)
+    _pressures(found, subject)
+    for name, row in adopted_values(operator, None).items():
+        if name in ADOPTABLE:
+            found.put(name, adopted_number(row, SPECS[name].unit), row)
+    _policies(found, subject, operator, as_of)
+    _counters(found, subject, skin, choice, as_of)
+    if choice.detectable is not None:
+        size = choice.detectable
+        length = size.length_mm + size.hidden_mm
+        source = f"{size.method.replace('_', ' ')}, {size.detail}: {size.source}"
+        found.number("detectable_length", length, source, size,
+                     grade=grade_of(size.grade))  # fmt: skip
+    around = surroundings_of(subject, _half_along(found))
+    if around is not None:
+        found.put("surroundings", around)
+    return found
+
+
+def latest_values(finding: Finding) -> dict[str, MeasuredValue]:
+    """What was last measured of each dimension; one query."""
+    rows = MeasuredValue.objects.filter(
+        measurement__finding=finding,
+        measurement__replaced_by__isnull=True,
+        status="known",
+    ).select_related("measurement")
+    ordered = sorted(rows, key=lambda row: (row.measurement.number, row.pk))
+    return {row.quantity: row for row in ordered}
+
+
+def _measurements(found: Gathered, subject: Subject) -> None:
+    finding = measured_finding(subject)
+    values = latest_values(finding) if finding else {}
+    for name, quantity in LENGTHS.items():
+        if row := values.get(quantity):
+            found.number(name, row.value, _where(row), row.measurement)
+    for name, quantity in UNCERTAINTIES.items():
+        if row := values.get(quantity):
+            found.number(name, row.uncertainty, _where(row), row.measurement)
+    for name, quantity in WORDS.items():
+        if row := values.get(quantity):
+            found.word(name, row.word, _where(row), row.measurement)
+    if isinstance(subject, Repair):
+        source = f"{subject}, as embodied"
+        found.number("remaining_thickness", subject.remaining_thickness_mm, source)
+        found.number("blend_depth", subject.blend_depth_mm, source)
+    if finding is not None:
+        depth = earlier_depth_mm(finding)
+        found.number("earlier_depth", depth, "blend-outs recorded at this location")
+
+
+def _where(row: MeasuredValue) -> str:
+    measured = row.measurement
+    stage = measured.stage.replace("_", " ")
+    return (
+        f"measurement {measured.number}, {stage}, {measured.measured_on}: {row.entered}"
+    )
+
+
+def _half_along(found: Gathered) -> float:
+    """Half of what the damage measures along the section, uncertainty included."""
+    sizes = [
+        value.value
+        for name in ("crack_length", "blend_length", "hole_diameter")
+        if isinstance(value := found.values.get(name), Sourced)
+    ]
+    more = found.values.get("crack_length_uncertainty")
+    extra = more.value if isinstance(more, Sourced) else 0.0
+    return (max(sizes, default=0.0) + extra) / 2
+
+
+def _skin(found: Gathered, subject: Subject, skin: Skin, operator: Operator) -> None:
+    panel, fitted = skin.panel, skin.fitted
+    rows: tuple[UsedRow, ...] = (panel, *((fitted,) if fitted else ()))
+    source = f"panel {panel.label}: {panel.source}"
+    found.word("pressurised", "yes" if panel.pressurised else "no", source, panel)
+    found.number("thickness", skin.thickness_mm, skin.thickness_source, *rows)
+    found.number("radius", panel.radius_mm, source, panel)
+    found.number("panel_length", skin.length_across_crack_mm, source, panel)
+    loads = panel.load_source or source
+    found.number("ultimate_running_load", panel.ultimate_load_n_per_mm, loads, panel)
+    if not panel.pressurised and panel.section.wrap_mm is None:
+        found.number("limit_flight_stress", panel.limit_stress_mpa, loads, panel)
+    _cycle(found, panel)
+    material = fitted.material if fitted and fitted.material else panel.material
+    _clad(found, panel, fitted, material)
+    if material is not None and skin.thickness_mm is not None:
+        for name, value, used in material_inputs(material, operator, skin.thickness_mm):
+            found.put(name, value, material, used)
+
+
+def _cycle(found: Gathered, panel: Panel) -> None:
+    """The cycle of a flight from the panel's spectrum, where it states one."""
+    if panel.spectrum is None:
+        return
+    content = json.loads(panel.spectrum.content)
+    top, ratio = (content.get(key) for key in CYCLE_KEYS)
+    source = f"{panel.spectrum}: {panel.spectrum.source}"
+    found.number("cycle_max_stress", top, source, panel.spectrum)
+    found.number("cycle_ratio", ratio, source, panel.spectrum)
+
+
+def _clad(
+    found: Gathered,
+    panel: Panel,
+    fitted: PanelOnAircraft | None,
+    material: Material | None,
+) -> None:
+    """Whether the skin is clad; a fitted panel's own cladding is not on the type's."""
+    source = f"panel {panel.label}: {panel.source}"
+    if fitted is not None and fitted.material is not None:
+        clad = "yes" if "clad" in fitted.material.form else "no"
+        found.word("clad", clad, fitted.source, fitted)
+    elif panel.clad_mm is not None:
+        found.word("clad", "yes" if panel.clad_mm > 0 else "no", source, panel)
+        found.number("clad_thickness", panel.clad_mm, source, panel)
+    elif material is not None:
+        found.word("clad", "yes" if "clad" in material.form else "no", source, panel)
+
+
+def _pressures(found: Gathered, subject: Subject) -> None:
+    made = subject.aircraft.variant.aircraft_type
+    source = f"type {made.code}: {made.pressures_source}"
+    found.number("normal_pressure", made.normal_differential_mpa, source)
+    found.number("external_pressure", made.external_suction_mpa, source)
+    found.number("relief_pressure", made.relief_differential_mpa, source)
+    found.number("ceiling", made.ceiling_ft, source)
+
+
+def _policies(
+    found: Gathered, subject: Subject, operator: Operator, as_of: dt.date
+) -> None:
+    made = subject.aircraft.variant.aircraft_type
+    rows = {
+        row.name: row for row in made.fatigue_policies.filter(replaced_by__isnull=True)
+    }
+    for name, key in POLICIES.items():
+        if row := rows.get(key):
+            found.put(name, _policy(row), row)
+    largest = policy(
+        operator, LARGEST_INTERVAL.format(criticality=subject.criticality), as_of
+    )
+    if largest is not None:
+        source = f"operator's largest interval of the class ({largest.source})"
+        found.number("class_maximum", float(largest.value), source, largest)
+
+
+def _policy(row: FatiguePolicy) -> scatter.FatiguePolicy:
+    return scatter.FatiguePolicy(
+        Sourced(row.factor, "-", row.source, grade_of(row.grade)),
+        row.multiplies,
+        row.log_life_deviation,
+        row.specimens,
+        row.reliability,
+        row.confidence,
+        row.spectrum_severity_inside,
+    )
+
+
+def _counters(
+    found: Gathered,
+    subject: Subject,
+    skin: Skin | None,
+    choice: Choice,
+    as_of: dt.date,
+) -> None:
+    standing = aircraft_standing(subject.aircraft, as_of=as_of)
+    cycles, source = subject.at_cycles, f"counters of {subject}"
+    if cycles is None:
+        cycles, source = standing.counters.cycles, f"usage to {standing.current_to}"
+    base = f"since release of {subject}" if isinstance(subject, Repair) else SINCE_NEW
+    fitted = skin.fitted if skin else None
+    flown = cycles
+    if fitted is not None and fitted.reason == "replaced":
+        base = f"since the panel was fitted on {fitted.from_on}"
+        known = cycles is not None and fitted.at_cycles is not None
+        flown = (cycles or 0) - (fitted.at_cycles or 0) if known else None
+    finding = measured_finding(subject)
+    if finding is not None and finding.damage_type != "crack" and base == SINCE_NEW:
+        base = f"since rework of {finding}"
+    found.number("accumulated_cycles", _float(cycles), source)
+    found.number("skin_cycles", _float(flown), source)
+    found.word("life_base", base, "by the evaluation")
+    found.word("life_used_reason", choice.life_used_reason, "the engineer's reason")
+    validity = validity_of(standing)
+    found.number("validity_cycles", _float(validity.cycles), validity.source)
+
+
+def _float(count: int | None) -> float | None:
+    return None if count is None else float(count)
+
+
+def used_rows(found: Gathered) -> Iterator[UsedRow]:
+    """The rows read, in a stable order."""
+    for _, row in sorted(
+        found.rows.items(), key=lambda item: (item[0][0].__name__, item[0][1])
+    ):
+        yield row

@@ -1,0 +1,171 @@
+"""A material's recorded numbers as inputs: strength, toughness, curves, growth laws."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterable, Iterator
+
+from fleet.models import AdoptedValue, Material, MaterialProperty, Operator
+from fleet.models.materials import Grade as RecordedGrade
+from repairs.analysis.crack_growth import WalkerLaw
+from repairs.analysis.inputs import TOUGHNESS_UNIT, Value
+from repairs.analysis.stress_life import StressLifeCurve, StressLifeFamily
+from repairs.analysis.types import KSI, Grade, Reference, Sourced
+
+TOUGHNESS = "fracture_toughness_mpa_root_mm"
+STRENGTHS = {
+    "yield_strength": ("tension_yield_mpa", "MPa"),
+    "tension_strength": ("tension_ultimate_mpa", "MPa"),
+    "toughness": (TOUGHNESS, TOUGHNESS_UNIT),
+}
+BASES = ("a", "s", "b")
+"""A-basis before B-basis: a single load path is assumed until someone shows else."""
+
+_CURVE = re.compile(r"stress_life_kt([\d.]+)_(a1|a2|a3|a4_ksi|a4_mpa)")
+_LAW = re.compile(r"walker_([a-z0-9]+)_(c_mm_mpa_root_mm|m|gamma|rank)")
+
+Used = Material | AdoptedValue
+Given = tuple[str, Value, Used]
+
+
+def grade_of(stored: str) -> Grade:
+    """The grade of a stored row."""
+    return Grade(RecordedGrade(stored).value)
+
+
+def material_inputs(
+    material: Material, operator: Operator, thickness_mm: float
+) -> Iterator[Given]:
+    """Inputs of a material at a thickness, each with the row it was read from.
+
+    An adopted value goes before the recorded one.
+    """
+    rows = list(material.properties.all())
+    adopted = adopted_values(operator, material)
+    for name, (quantity, unit) in STRENGTHS.items():
+        if quantity in adopted:
+            yield name, adopted_number(adopted[quantity], unit), adopted[quantity]
+        elif row := _strength(rows, quantity, thickness_mm):
+            yield name, _number(row, unit), material
+    for name, law in zip(
+        ("growth_law", "second_growth_law"), _laws(rows), strict=False
+    ):
+        yield name, law, material
+    holder, curves = _curves_of(material, rows)
+    if curves:
+        family = StressLifeFamily(
+            str(holder), holder.form, "clad" in holder.form, tuple(curves)
+        )
+        yield "stress_life", family, holder
+
+
+def adopted_values(
+    operator: Operator, material: Material | None
+) -> dict[str, AdoptedValue]:
+    """Values the operator adopted, by quantity; the newest of each that stands."""
+    rows = operator.adopted_values.filter(replaced_by__isnull=True)
+    if material is None:
+        rows = rows.filter(material__isnull=True)
+    else:
+        rows = rows.filter(
+            material__name=material.name,
+            material__temper=material.temper,
+            material__form=material.form,
+        )
+    return {row.quantity: row for row in rows}
+
+
+def adopted_number(row: AdoptedValue, unit: str) -> Sourced:
+    """An adopted value as a sourced number, in the unit it was adopted in."""
+    where = ", ".join(
+        part
+        for part in (
+            row.document,
+            f"rev {row.revision}" if row.revision else "",
+            f"page {row.page}" if row.page else "",
+        )
+        if part
+    )
+    source = f"adopted from {where} on {row.adopted_on} by {row.person}"
+    return Sourced(row.value, row.unit or unit, source, Grade.ADOPTED)
+
+
+def _strength(
+    rows: Iterable[MaterialProperty], quantity: str, thickness_mm: float
+) -> MaterialProperty | None:
+    """The row of the best basis whose thickness range holds the thickness."""
+    fitting = [
+        row
+        for row in rows
+        if row.quantity == quantity
+        and row.basis in BASES
+        and row.thickness_min_mm <= thickness_mm
+        and (row.thickness_max_mm is None or thickness_mm <= row.thickness_max_mm)
+    ]
+    return min(fitting, key=lambda row: BASES.index(row.basis), default=None)
+
+
+def _number(row: MaterialProperty, unit: str) -> Sourced:
+    words = [row.source, row.get_basis_display()]
+    if row.direction:
+        words.append(row.direction)
+    return Sourced(row.value, unit, ", ".join(words), grade_of(row.seen))
+
+
+def _laws(rows: Iterable[MaterialProperty]) -> list[WalkerLaw]:
+    """Growth laws in order of their rank."""
+    found: dict[str, dict[str, MaterialProperty]] = {}
+    for row in rows:
+        if match := _LAW.fullmatch(row.quantity):
+            found.setdefault(match[1], {})[match[2]] = row
+    whole = [law for law in found.values() if len(law) == 4]
+    return [
+        WalkerLaw(
+            law["c_mm_mpa_root_mm"].value,
+            law["m"].value,
+            law["gamma"].value,
+            Reference(law["m"].source, grade_of(law["m"].seen)),
+            law["m"].direction,
+        )
+        for law in sorted(whole, key=lambda law: law["rank"].value)
+    ]
+
+
+def _curves_of(
+    material: Material, rows: Iterable[MaterialProperty]
+) -> tuple[Material, list[StressLifeCurve]]:
+    """The material's own curves, else those of the bare form of the same alloy."""
+    own = _curves(rows)
+    if own:
+        return material, own
+    bare = Material.objects.filter(
+        name=material.name,
+        temper=material.temper,
+        form=material.form.replace("clad", "bare"),
+    ).last()
+    if bare is None or bare.pk == material.pk:
+        return material, []
+    return bare, _curves(bare.properties.all())
+
+
+def _curves(rows: Iterable[MaterialProperty]) -> list[StressLifeCurve]:
+    found: dict[float, dict[str, MaterialProperty]] = {}
+    for row in rows:
+        if match := _CURVE.fullmatch(row.quantity):
+            found.setdefault(float(match[1]), {})[match[2]] = row
+    return [_curve(kt, row) for kt, row in sorted(found.items()) if len(row) == 4]
+
+
+def _curve(kt: float, row: dict[str, MaterialProperty]) -> StressLifeCurve:
+    in_ksi = "a4_ksi" in row
+    last = row["a4_ksi" if in_ksi else "a4_mpa"]
+    return StressLifeCurve(
+        kt,
+        row["a1"].value,
+        row["a2"].value,
+        row["a3"].value,
+        last.value,
+        KSI if in_ksi else 1.0,
+        last.source,
+        grade_of(last.seen),
+    )
