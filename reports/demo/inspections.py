@@ -100,6 +100,7 @@ def _repair_requirement(
     done = _done(stream, logbook, repair.at.cycles + threshold, repeat, left)
     return DemoRequirement(
         key=f"I-{repair.key[2:]}",
+        kind="repair",
         title=f"Supplemental inspection of the repair at {repair.location}",
         document=repair.document,
         task="Inspect the doubler edge rows and the skin beside them.",
@@ -161,6 +162,7 @@ def _fleet_requirements(logbooks: dict[int, Logbook]) -> list[DemoRequirement]:
         belly_subjects.append(DemoSubject(aircraft.msn, accomplishments=done))
     lap = DemoRequirement(
         key="I-LAP-S12",
+        kind="limitation",
         title="Lap joint S-12 left and right, upper fastener row",
         document=LETTER,
         task="Inspect the upper row for cracks under the fastener heads.",
@@ -174,6 +176,7 @@ def _fleet_requirements(logbooks: dict[int, Logbook]) -> list[DemoRequirement]:
     )
     belly = DemoRequirement(
         key="I-BELLY",
+        kind="corrosion",
         title="Corrosion inspection of the belly and the door sills",
         document=PROGRAMME,
         task="Open the belly panels, clean, inspect, renew the protection.",
@@ -242,6 +245,7 @@ def _calendar_item(
     done = DemoAccomplishment(done_on, logbook.at(done_on), "no_finding", "hangar_2")
     return DemoRequirement(
         key=key,
+        kind="programme",
         title=f"Two-yearly inspection: {area}",
         document=PROGRAMME,
         task="Inspect for corrosion, cracks and loose fasteners.",
@@ -302,6 +306,7 @@ def _sisters(logbooks: dict[int, Logbook], finding: str) -> DemoRequirement:
         subjects.append(DemoSubject(aircraft.msn, accomplishments=done))
     return DemoRequirement(
         key="I-SISTERS",
+        kind="operator",
         title="Look on the sisters: skin below the aft cargo door",
         document=replace(PROGRAMME, page="53-00, engineering order 24-118"),
         task="Look for cracks in the skin within 10 in of the cut-out.",

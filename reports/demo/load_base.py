@@ -41,6 +41,11 @@ from reports.demo.usage import Logbook, UsageDay
 
 BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
 REGIME = "EASA"
+POLICIES_SINCE = dt.date(2000, 1, 1)
+POLICIES = (
+    ("stage_2_months", 12, "months", "AMC 20-20A appendix 3 annex 1"),
+    ("report_hours", 72, "hours", "Regulation (EU) No 376/2014, article 4"),
+)
 OPERATOR_CODES = {OPERATOR: "BRF", SECOND_OPERATOR: "OAL"}
 GEOMETRY_FILE, MATERIALS_FILE = "ard52.toml", "materials.toml"
 AUTHORISED_BY = "company authorisation register"
@@ -103,6 +108,22 @@ def people_load(password: str) -> Loaded:
             at=BEGAN,
         )
     return loaded
+
+
+def policies_load(loaded: Loaded) -> None:
+    """Clocks of the demo operator's regime, each with its source."""
+    for key, value, unit, source in POLICIES:
+        fleet_people.policy_set(
+            key=key,
+            value=value,
+            unit=unit,
+            source=source,
+            grade="quoted",
+            regime=REGIME,
+            effective_from=POLICIES_SINCE,
+            actor=loaded.users["administrator"],
+            at=BEGAN,
+        )
 
 
 def _login(

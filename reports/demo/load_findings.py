@@ -6,13 +6,18 @@ import datetime as dt
 from collections.abc import Iterator, Sequence
 from functools import partial
 
+from fleet.due import Standing
+from fleet.models import Aircraft
+from fleet.services.aircraft import stream_of
+from fleet.services.history import Writing
 from repairs.measured import Typed
-from repairs.services.findings import FindingEntry, finding_record
+from repairs.services.events import event_close, event_record
+from repairs.services.findings import FindingEntry, findings_record_many
 from repairs.services.measuring import Measuring, measurement_record
 from reports.demo.fleet import BY_MSN, day_date, day_number
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
-from reports.demo.records import DemoFinding, Dimension, Scenario
+from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario
 from reports.demo.timeline import Rank, Step
 from reports.demo.usage import Logbook
 
@@ -24,6 +29,10 @@ ATA = {"FUS": "53", "WING-L": "57", "WING-R": "57", "FIN": "55", "DOOR": "52"}
 
 def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
     """Every finding as reported, and again as measured after rework."""
+    for event in scenario.events:
+        yield Step(
+            event.happened_on, Rank.EVENT, event.key, partial(_event, loaded, event)
+        )
     answered = {key: r.released_on for r in scenario.repairs for key in r.findings}
     for finding in scenario.findings:
         book = scenario.logbooks[finding.msn]
@@ -48,41 +57,70 @@ def last_clean(finding: DemoFinding, book: Logbook) -> dt.date | None:
     return day_date(earlier[-1]) if earlier else None
 
 
+def _event(loaded: Loaded, event: DemoEvent, at: dt.datetime) -> None:
+    recorder = loaded.users["recorder"]
+    row = event_record(
+        aircraft=loaded.aircraft[event.msn],
+        kind=event.kind,
+        happened_on=event.happened_on,
+        counters=amounts(event.at),
+        description=event.description,
+        actor=recorder,
+        at=at,
+    )
+    loaded.rows[event.key] = event_close(
+        event=row,
+        reason="inspected as the manual asks; damage recorded as findings",
+        actor=recorder,
+        at=at,
+    )
+
+
 def _record(
     loaded: Loaded, finding: DemoFinding, book: Logbook, at: dt.datetime
 ) -> None:
     clean_on = last_clean(finding, book)
     event = loaded.rows[finding.event] if finding.event else None
-    loaded.rows[finding.key] = finding_record(
-        entry=FindingEntry(
-            aircraft=loaded.aircraft[finding.msn],
-            place_entered=finding.location,
-            damage_type=finding.damage_type,
-            found_on=finding.found_on,
-            typed=typed(finding.dimensions),
-            at=amounts(finding.at),
-            counters_source=COUNTERS_SOURCE,
-            element=finding.element,
-            element_label=finding.element_label,
-            surface=finding.surface,
-            criticality="" if finding.element == "skin" else "principal",
-            criticality_source="" if finding.element == "skin" else PRINCIPAL_SOURCE,
-            ata=ATA.get(finding.truth.section, "54"),
-            cause=finding.cause,
-            cluster_count=finding.cluster_count,
-            occasion=finding.occasion,
-            task_reference=_task(finding),
-            detection_method=finding.method,
-            last_clean_on=clean_on,
-            last_clean_cycles=book.at(clean_on).cycles if clean_on else None,
-            last_clean_method="detailed visual" if clean_on else "",
-            found_by=loaded.people[finding.reporter],
-            event=event,
-            description=finding.description,
-        ),
-        actor=loaded.users["recorder"],
-        at=at,
+    entry = FindingEntry(
+        aircraft=loaded.aircraft[finding.msn],
+        place_entered=finding.location,
+        damage_type=finding.damage_type,
+        found_on=finding.found_on,
+        typed=typed(finding.dimensions),
+        at=amounts(finding.at),
+        counters_source=COUNTERS_SOURCE,
+        element=finding.element,
+        element_label=finding.element_label,
+        surface=finding.surface,
+        criticality="" if finding.element == "skin" else "principal",
+        criticality_source="" if finding.element == "skin" else PRINCIPAL_SOURCE,
+        ata=ATA.get(finding.truth.section, "54"),
+        cause=finding.cause,
+        cluster_count=finding.cluster_count,
+        occasion=finding.occasion,
+        task_reference=_task(finding),
+        detection_method=finding.method,
+        last_clean_on=clean_on,
+        last_clean_cycles=book.at(clean_on).cycles if clean_on else None,
+        last_clean_method="detailed visual" if clean_on else "",
+        found_by=loaded.people[finding.reporter],
+        event=event,
+        description=finding.description,
     )
+    with Writing(
+        actor=loaded.users["recorder"],
+        action="finding_record",
+        at=at,
+        operator=loaded.operator,
+        stream=stream_of(entry.aircraft),
+    ) as w:
+        (row,) = findings_record_many(w, [entry], standing_of=partial(_standing, book))
+    loaded.rows[finding.key] = row
+
+
+def _standing(book: Logbook, aircraft: Aircraft, day: dt.date) -> Standing:
+    """Counters of the day by the log, so that no sum is asked of the database."""
+    return Standing(amounts(book.at(day)), day)
 
 
 def _measure(

@@ -180,6 +180,7 @@ class DemoRequirement:
     """An inspection requirement; its origin is a repair, a finding or a document."""
 
     key: str
+    kind: str
     title: str
     document: DemoDocument
     task: str

@@ -26,11 +26,13 @@ class Rank(IntEnum):
     EVENT = 7
     FINDING = 8
     MEASUREMENT = 9
-    DISPOSITION = 10
-    REPAIR = 11
-    REQUIREMENT = 12
-    ACCOMPLISHMENT = 13
-    CLOSING = 14
+    ASSESSMENT = 10
+    DISPOSITION = 11
+    REPAIR = 12
+    REQUIREMENT = 13
+    REKEYING = 14
+    ACCOMPLISHMENT = 15
+    CLOSING = 16
 
 
 @dataclass(frozen=True, slots=True)

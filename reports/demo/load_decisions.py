@@ -1,0 +1,151 @@
+"""Findings assessed, decided on and closed, each by an authorised person."""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Iterator
+from functools import partial
+
+from fleet.due import Counters as Amounts
+from repairs.services.assessing import (
+    DataCited,
+    Reportability,
+    finding_assess,
+    finding_close,
+)
+from repairs.services.disposition_entry import Basis, DispositionEntry
+from repairs.services.dispositions import disposition_decide
+from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from reports.demo.load_base import Loaded
+from reports.demo.load_parts import amounts
+from reports.demo.records import (
+    DemoDisposition,
+    DemoFinding,
+    DemoLimit,
+    DemoRepair,
+    Scenario,
+)
+from reports.demo.timeline import Rank, Step
+
+REPORTABLE_HOLES = 4
+REPORT = Reportability(True, "several cracked holes in one row of a joint")
+NO_REPORT = Reportability(False, "one crack, found by its planned inspection")
+
+
+def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
+    """Assessment and decision in one sitting, closing after the repair."""
+    findings = {finding.key: finding for finding in scenario.findings}
+    for decision in scenario.dispositions:
+        finding = findings[decision.findings[0]]
+        assess = partial(_assess, loaded, decision)
+        yield Step(decision.decided_on, Rank.ASSESSMENT, decision.key, assess)
+        decide = partial(_decide, loaded, decision)
+        yield Step(decision.decided_on, Rank.DISPOSITION, decision.key, decide)
+    decided = {key for d in scenario.dispositions for key in d.findings}
+    for finding in scenario.findings:
+        if finding.state == "assessed" and finding.key not in decided:
+            assess = partial(_assess_alone, loaded, finding)
+            yield Step(finding.found_on, Rank.ASSESSMENT, finding.key, assess)
+    for repair in scenario.repairs:
+        for key in repair.findings:
+            if findings[key].state == "closed":
+                close = partial(_close, loaded, findings[key], repair)
+                yield Step(repair.released_on, Rank.CLOSING, key, close)
+
+
+def limit_entries(phase: str, limits: tuple[DemoLimit, ...]) -> list[LimitEntry]:
+    return [LimitEntry(phase, limit.entered, limit.base) for limit in limits]
+
+
+def _assess(loaded: Loaded, decision: DemoDisposition, at: dt.datetime) -> None:
+    document = decision.document
+    finding_assess(
+        finding=loaded.rows[decision.findings[0]],
+        person=loaded.people["engineer"],
+        on=decision.decided_on,
+        data=DataCited(
+            document.kind, document.reference, document.revision, document.page
+        ),
+        actor=loaded.users["engineer"],
+        at=at,
+    )
+
+
+def _assess_alone(loaded: Loaded, finding: DemoFinding, at: dt.datetime) -> None:
+    finding_assess(
+        finding=loaded.rows[finding.key],
+        person=loaded.people["engineer"],
+        on=finding.found_on,
+        data=DataCited("repair_manual", "ARD-52 SRM 53-10-01", "14", "p. 201"),
+        actor=loaded.users["engineer"],
+        at=at,
+    )
+
+
+def _decide(loaded: Loaded, decision: DemoDisposition, at: dt.datetime) -> None:
+    document = decision.document
+    limits = {limit.counter: limit.value for limit in decision.limits}
+    days = limits.get("days")
+    limit_on = decision.decided_on + dt.timedelta(days=days) if days else None
+    loaded.rows[decision.key] = disposition_decide(
+        entry=DispositionEntry(
+            aircraft=loaded.aircraft[decision.msn],
+            findings=[loaded.rows[key] for key in decision.findings],
+            kind=decision.kind,
+            basis=Basis(
+                document.kind, document.reference, document.page, document.revision
+            ),
+            reason=decision.statement,
+            decided_by=loaded.people[decision.decided_by],
+            decided_on=decision.decided_on,
+            at=amounts(decision.at),
+            limit=Amounts(cycles=limits.get("cycles")),
+            limit_on=limit_on,
+            scale="minor",
+            scale_reason="within the published manual",
+            new_requirement=_inspection(loaded, decision),
+        ),
+        actor=loaded.users["certifier"],
+        at=at,
+    )
+
+
+def _inspection(loaded: Loaded, decision: DemoDisposition) -> RequirementDraft | None:
+    """The inspection that an acceptance is bound to."""
+    if not decision.inspections:
+        return None
+    finding = loaded.rows[decision.findings[0]]
+    return RequirementDraft(
+        operator=loaded.operator,
+        title=f"Inspect the accepted damage {finding}",
+        requirement_class="operator",
+        area=finding.place_text or finding.place_entered,
+        criteria="No growth beyond the recorded dimensions, no crack.",
+        method="detailed_visual",
+        task="Measure again and compare with the baseline.",
+        effective_on=decision.decided_on,
+        limits=[
+            *limit_entries("threshold", decision.inspections[:1]),
+            *limit_entries("repeat", decision.inspections[1:]),
+        ],
+        aircraft=[loaded.aircraft[decision.msn]],
+    )
+
+
+def _close(
+    loaded: Loaded, finding: DemoFinding, repair: DemoRepair, at: dt.datetime
+) -> None:
+    row = loaded.rows[finding.key]
+    report = None
+    if finding.damage_type == "crack":
+        report = REPORT if finding.cluster_count >= REPORTABLE_HOLES else NO_REPORT
+    finding_close(
+        finding=row,
+        person=loaded.people["certifier"],
+        on=repair.released_on,
+        cause=finding.cause,
+        actor=loaded.users["certifier"],
+        at=at,
+        report=report,
+        reason=f"repaired: {loaded.rows[repair.key]}",
+    )
