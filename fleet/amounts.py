@@ -12,24 +12,16 @@ from fleet.due import COUNTED, COUNTER_WORDS, Counter, Counters
 from fleet.units import UnitError, hours_read, hours_write
 
 _UNITS = {
-    "fh": Counter.MINUTES,
-    "h": Counter.MINUTES,
-    "hours": Counter.MINUTES,
-    "flight hours": Counter.MINUTES,
-    "fc": Counter.CYCLES,
-    "cycles": Counter.CYCLES,
-    "flight cycles": Counter.CYCLES,
-    "flights": Counter.CYCLES,
-    "landings": Counter.LANDINGS,
-    "pc": Counter.PRESSURISATIONS,
-    "pressurisation cycles": Counter.PRESSURISATIONS,
-    "d": Counter.DAYS,
-    "day": Counter.DAYS,
-    "days": Counter.DAYS,
-    "month": Counter.MONTHS,
-    "months": Counter.MONTHS,
-    "year": Counter.MONTHS,
-    "years": Counter.MONTHS,
+    word: counter
+    for counter, words in {
+        Counter.MINUTES: "fh|h|hour|hours|flight hour|flight hours",
+        Counter.CYCLES: "fc|cycle|cycles|flight cycle|flight cycles|flight|flights",
+        Counter.LANDINGS: "landing|landings",
+        Counter.PRESSURISATIONS: "pc|pressurisation cycle|pressurisation cycles",
+        Counter.DAYS: "d|day|days",
+        Counter.MONTHS: "month|months|year|years",
+    }.items()
+    for word in words.split("|")
 }
 
 NO_UNIT = (
