@@ -21,6 +21,11 @@ _CANONICAL_UNIT = {Kind.LENGTH: "mm", Kind.AREA: "mm2", Kind.ANGLE: "°"}
 NOT_A_COUNT = "“{text}” is not a whole number; write it as 1, 2, 12."
 NOT_A_WORD = "“{text}” is not one of: {words}."
 NEGATIVE = "“{text}” is below zero; a size is not."
+HOLE_LINE = (
+    "“{line}” is not a hole; write its number and, between semicolons, the crack "
+    "forward, the crack aft, the diameter and the pitch to the next, as: "
+    "12; 1.2 mm; -; 4.8 mm; 20 mm."
+)
 NO_DIMENSION = "{damage_type} has no dimension “{quantity}”; it has: {known}."
 
 
@@ -83,6 +88,35 @@ def measured_read(
     if problems:
         raise MeasuredError(problems)
     return found
+
+
+@dataclass(frozen=True, slots=True)
+class Hole:
+    """One hole of a row, as measured; None means no crack or not measured."""
+
+    number: int
+    fore_length_mm: float | None = None
+    aft_length_mm: float | None = None
+    diameter_mm: float | None = None
+    pitch_to_next_mm: float | None = None
+
+
+def holes_read(text: str, *, entry_unit: str) -> list[Hole]:
+    """One hole a line: number; crack forward; crack aft; diameter; pitch to next."""
+    return [
+        _hole(line.strip(), entry_unit) for line in text.splitlines() if line.strip()
+    ]
+
+
+def _hole(line: str, entry_unit: str) -> Hole:
+    number, *sizes = (part.strip() for part in line.split(";"))
+    if not number.isdecimal() or len(sizes) > 4:
+        raise ValueError(HOLE_LINE.format(line=line))
+    read = [
+        None if size in ("", "-") else measure_read(size, unit=entry_unit)
+        for size in sizes
+    ]
+    return Hole(int(number), *read)
 
 
 def sizes_of(measured: Iterable[Measured]) -> dict[str, float]:

@@ -4,9 +4,68 @@ from __future__ import annotations
 
 from django.urls import path
 
-from repairs.views import maps
+from repairs.views import (
+    attachments,
+    evaluations,
+    finding_entry,
+    finding_steps,
+    findings,
+    maps,
+)
 
 urlpatterns = [
+    path("findings/", findings.finding_list, name="finding_list"),
+    path("findings/new/", finding_entry.finding_new, name="finding_new"),
+    path("findings/<int:pk>/", findings.finding, name="finding"),
+    path("findings/<int:pk>/place/", finding_steps.finding_place, name="finding_place"),
+    path(
+        "findings/<int:pk>/measure/",
+        finding_steps.finding_measure,
+        name="finding_measure",
+    ),
+    path(
+        "findings/<int:pk>/assess/",
+        finding_steps.finding_assess_page,
+        name="finding_assess",
+    ),
+    path(
+        "findings/<int:pk>/close/",
+        finding_steps.finding_close_page,
+        name="finding_close",
+    ),
+    path(
+        "findings/<int:pk>/link/",
+        finding_steps.finding_link_page,
+        name="finding_link",
+    ),
+    path(
+        "findings/<int:pk>/void/",
+        finding_steps.finding_void_page,
+        name="finding_void",
+    ),
+    path(
+        "findings/<int:pk>/photographs/",
+        finding_steps.finding_photographs,
+        name="finding_photographs",
+    ),
+    path("questions/<int:pk>/", finding_steps.finding_answer, name="finding_answer"),
+    path("attachments/<int:pk>/", attachments.attachment, name="attachment"),
+    path(
+        "findings/<int:pk>/evaluate/",
+        evaluations.evaluation_new,
+        name="evaluation_new",
+    ),
+    path(
+        "repairs/<int:pk>/evaluate/",
+        evaluations.evaluation_new_repair,
+        name="evaluation_new_repair",
+    ),
+    path("evaluations/<int:pk>/", evaluations.evaluation, name="evaluation"),
+    path(
+        "evaluations/<int:pk>/again/",
+        evaluations.evaluation_again,
+        name="evaluation_again",
+    ),
     path(
         "types/<str:code>/<str:section>/map/",
         maps.structure_map,

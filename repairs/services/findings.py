@@ -27,7 +27,7 @@ from fleet.selectors.counters import aircraft_standing
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
-from repairs.measured import Typed
+from repairs.measured import Hole, Typed
 from repairs.models import Element, Event, Finding, FindingQuestion, FindingState
 from repairs.plausibility import (
     ASKED,
@@ -37,12 +37,9 @@ from repairs.plausibility import (
     ahead_of_usage,
     counter_questions,
 )
-from repairs.services.measuring import (
-    Hole,
-    Measuring,
-    measurement_write,
-    questions_ask,
-)
+from repairs.services.assessing import finding_link_write
+from repairs.services.measuring import Measuring, measurement_write, questions_ask
+from repairs.services.photographs import Photo, photographs_write
 from repairs.services.places import (
     Placed,
     item_columns,
@@ -59,6 +56,14 @@ PLACED_ALREADY = (
 ALREADY_ANSWERED = "This question was answered before: {answer}"
 ANSWER_NEEDED = "Answer in words; the answer is kept with the question."
 StandingOf = Callable[[Aircraft, dt.date], Standing]
+
+
+@dataclass(frozen=True, slots=True)
+class Link:
+    """The answer to "is it this earlier one?", given before the finding is saved."""
+
+    earlier: Finding
+    kind: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -98,6 +103,8 @@ class FindingEntry:
     instrument: str = ""
     light: str = ""
     client_key: uuid.UUID | None = None
+    photographs: Sequence[Photo] = ()
+    links: Sequence[Link] = ()
 
 
 def finding_record(
@@ -191,6 +198,16 @@ def finding_write(
         holes=entry.holes,
     )
     measurement_write(w, finding=finding, measuring=measuring)
+    photographs_write(w, shown=finding, photos=entry.photographs)
+    for link in entry.links:
+        finding_link_write(
+            w,
+            finding=finding,
+            earlier=link.earlier,
+            kind=link.kind,
+            decided_by=entry.found_by,
+            on=w.at.date(),
+        )
     return finding
 
 

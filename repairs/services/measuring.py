@@ -12,7 +12,7 @@ from fleet.due import Counters
 from fleet.models import Person, User
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
-from repairs.measured import Measured, MeasuredError, Typed, measured_read
+from repairs.measured import Hole, Measured, MeasuredError, Typed, measured_read
 from repairs.models import (
     Accomplishment,
     Finding,
@@ -24,17 +24,6 @@ from repairs.models import (
 from repairs.plausibility import Question, size_questions
 
 NOTHING_MEASURED = "Give at least one dimension, or say that it is unknown."
-
-
-@dataclass(frozen=True, slots=True)
-class Hole:
-    """One hole of a row, as measured; None means no crack or not measured."""
-
-    number: int
-    fore_length_mm: float | None = None
-    aft_length_mm: float | None = None
-    diameter_mm: float | None = None
-    pitch_to_next_mm: float | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,0 +1,78 @@
+"""What comes next for a finding, and whether the reader may do it."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from django.urls import reverse
+
+from fleet.access import may
+from fleet.models import User
+from repairs.models import Finding, FindingState
+
+S = FindingState
+
+
+@dataclass(frozen=True, slots=True)
+class Step:
+    """A page to go to, its word, and its key."""
+
+    address: str
+    words: str
+    key: str = ""
+
+
+def next_step(finding: Finding, problems: list[str], user: User) -> Step | None:
+    """The one step that comes next; None when it is not the reader's to take."""
+    name, words, action, key = _next(finding, problems)
+    if not name or not may(user, action, finding.operator_id):
+        return None
+    address = reverse(name, args=[] if name == "repair_new" else [finding.pk])
+    if name == "repair_new":
+        address += f"?aircraft={finding.aircraft_id}&finding={finding.pk}"
+    return Step(address, words, key)
+
+
+def further_steps(finding: Finding, user: User) -> list[Step]:
+    """Other pages of the finding that the reader may use."""
+    open_to_change = finding.state not in (S.DUPLICATE, S.VOIDED)
+    offered = [
+        ("finding_measure", "Measure", "finding_measure", open_to_change),
+        (
+            "finding_place",
+            "Place",
+            "finding_record",
+            finding.state == S.REPORTED,
+        ),
+        ("evaluation_new", "Evaluate", "evaluation_make", open_to_change),
+        ("sisters_new", "Look on the sisters", "requirement_raise", open_to_change),
+        ("finding_photographs", "Add photographs", "finding_measure", True),
+        ("finding_link", "Link", "finding_assess", open_to_change),
+        (
+            "finding_void",
+            "Void",
+            "finding_assess",
+            finding.state in (S.REPORTED, S.ASSESSED),
+        ),
+    ]
+    return [
+        Step(reverse(name, args=[finding.pk]), words)
+        for name, words, action, possible in offered
+        if possible and may(user, action, finding.operator_id)
+    ]
+
+
+def _next(finding: Finding, problems: list[str]) -> tuple[str, str, str, str]:
+    if finding.state == S.REPORTED:
+        if finding.section_id is None:
+            return "finding_place", "Place it", "finding_record", "p"
+        if any(text.startswith("Measure") for text in problems):
+            return "finding_measure", "Measure", "finding_measure", "m"
+        return "finding_assess", "Assess", "finding_assess", "a"
+    if finding.state in (S.ASSESSED, S.ACCEPTED, S.DEFERRED):
+        return "disposition_new", "Disposition", "disposition_decide", "d"
+    if finding.state == S.TO_RECTIFY:
+        return "repair_new", "Record the repair", "repair_record", "r"
+    if finding.state == S.RECTIFIED:
+        return "finding_close", "Close", "finding_assess", "c"
+    return "", "", "", ""
