@@ -27,6 +27,8 @@ MAX_BYTES = 20 * 1024 * 1024
 MAX_PIXELS = 60_000_000
 IMAGES = {"JPEG": "JPEG", "MPO": "JPEG", "PNG": "PNG", "WEBP": "JPEG", "TIFF": "JPEG"}
 """Formats read, and the format of the copy that is shown."""
+READERS = [name for name in IMAGES if name != "MPO"]
+"""An MPO is a JPEG with further pictures behind it, and is read as one."""
 MEDIA_TYPES = {"JPEG": "image/jpeg", "PNG": "image/png"}
 PDF = "application/pdf"
 
@@ -127,7 +129,7 @@ def cleaned_copy(content: bytes, name: str) -> Cleaned:
     if content.startswith(b"%PDF-"):
         return Cleaned(content, PDF)
     try:
-        with Image.open(io.BytesIO(content), formats=list(IMAGES)) as image:
+        with Image.open(io.BytesIO(content), formats=READERS) as image:
             width, height = image.size
             if width * height > MAX_PIXELS:
                 raise ValidationError(
