@@ -362,6 +362,11 @@ def _spar_reach(
     work: Work, point: Across, plane: Plane, spars: list[Plane], map_mm: float
 ) -> tuple[float, float]:
     section, at = work.section, plane.s_mm or 0.0
+    if work.reading.spar_side:  # all the skin on that side, to the next spar
+        lines = sorted([0.0, *(p.s_mm or 0.0 for p in spars), section.s2_mm])
+        index = lines.index(at)
+        aft = work.reading.spar_side == "aft"
+        return (at, lines[index + 1]) if aft else (lines[index - 1], at)
     if point.offset is None:
         return at, at
     if point.offset.direction not in ("fwd", "aft"):
@@ -369,10 +374,6 @@ def _spar_reach(
         message = NO_LINES.format(what=what, section=work.name, words="fwd or aft")
         raise LocationRefused("E_SECTION_MISMATCH", message)
     aft = point.offset.direction == "aft"
-    if point.number < 0:  # no length: all the skin on that side, to the next spar
-        lines = sorted([0.0, *(p.s_mm or 0.0 for p in spars), section.s2_mm])
-        index = lines.index(at)
-        return (at, lines[index + 1]) if aft else (lines[index - 1], at)
     length = point.offset.length.mm(work.unit) / section.scale_at(map_mm)
     s_mm = at + length if aft else at - length
     if not 0.0 <= s_mm <= section.s2_mm + TINY_MM:

@@ -104,6 +104,8 @@ class Reading:
     water_lines: tuple[Across, ...] = ()
     clock_degrees: tuple[float, ...] = ()
     spar: Across | None = None
+    spar_side: str = ""
+    """fwd or aft, where no length from the spar is given."""
     surface: str = ""
     door: Door | None = None
     element: str = ""
