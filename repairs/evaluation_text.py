@@ -72,7 +72,8 @@ def _results(shown: Mapping[str, Any]) -> Iterable[str]:
     )
     for title, value, unit in rows:
         yield f"  {title:<26}{number_text(value):>12}  {unit}".rstrip()
-    yield f"  {'ultimate strength kept':<26}{shown['ultimate_kept'].replace('_', ' '):>12}"
+    kept = shown["ultimate_kept"].replace("_", " ")
+    yield f"  {'ultimate strength kept':<26}{kept:>12}"
 
 
 def _test(test: Mapping[str, Any]) -> str:

@@ -5,12 +5,14 @@ from __future__ import annotations
 from django.urls import path
 
 from repairs.views import (
+    accomplishments,
     attachments,
     evaluations,
     finding_entry,
     finding_steps,
     findings,
     maps,
+    requirements,
 )
 
 urlpatterns = [
@@ -49,6 +51,25 @@ urlpatterns = [
         name="finding_photographs",
     ),
     path("questions/<int:pk>/", finding_steps.finding_answer, name="finding_answer"),
+    path("findings/<int:pk>/sisters/", accomplishments.sisters_new, name="sisters_new"),
+    path("requirements/", requirements.requirement_list, name="requirement_list"),
+    path("requirements/new/", requirements.requirement_new, name="requirement_new"),
+    path("requirements/<int:pk>/", requirements.requirement, name="requirement"),
+    path(
+        "requirements/<int:pk>/again/",
+        requirements.requirement_again,
+        name="requirement_again",
+    ),
+    path(
+        "requirements/<int:pk>/done/<int:subject_pk>/",
+        accomplishments.accomplishment_new,
+        name="accomplishment_new",
+    ),
+    path(
+        "requirements/<int:pk>/verify/<int:subject_pk>/",
+        accomplishments.termination_check,
+        name="requirement_verify",
+    ),
     path("attachments/<int:pk>/", attachments.attachment, name="attachment"),
     path(
         "findings/<int:pk>/evaluate/",

@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TypeVar
 
 from django.db.models import Exists, OuterRef, Q, QuerySet
 
 from fleet.digests import row_digest
+from fleet.models import AircraftType, DetectableSize
 from fleet.models.structure import Panel
 from repairs.models import (
     Approval,
@@ -18,6 +20,8 @@ from repairs.models import (
     Measurement,
     Repair,
 )
+
+Row = TypeVar("Row", Finding, Repair)
 
 APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 UNCHECKED, CHECKED, APPROVED, SUPERSEDED = (
@@ -41,6 +45,44 @@ METHOD_CHANGED = "the method is now version {now}, this was version {then}"
 PANEL_CHANGED = "panel {panel} is not the same in the geometry in force"
 ROW_REPLACED = "{what} has been replaced by a later one"
 MEASURED_SINCE = "the finding was measured again"
+
+
+def evaluation_rows() -> QuerySet[Evaluation]:
+    """Evaluations with what their page names."""
+    return Evaluation.objects.select_related(
+        "operator",
+        "entered_by",
+        "replaces",
+        "finding__aircraft__variant__aircraft_type",
+        "finding__panel__material",
+        "repair__aircraft__variant__aircraft_type",
+        "repair__panel__material",
+    )
+
+
+def subject_rows(model: type[Row]) -> QuerySet[Row]:
+    """Findings or repairs with what a calculation reads of them."""
+    return model._default_manager.select_related(
+        "operator",
+        "aircraft__operator",
+        "aircraft__variant__aircraft_type",
+        "section",
+        "geometry",
+        "panel__section",
+        "panel__material",
+    )
+
+
+def subjects_numbered(number: str, operator: str = "") -> list[Finding | Repair]:
+    """Findings or repairs of a number, of one operator or of all; two queries."""
+    mine = Q(number=number) & (Q(operator__code=operator) if operator else Q())
+    return [*subject_rows(Finding).filter(mine), *subject_rows(Repair).filter(mine)]
+
+
+def detectable_sizes(made: AircraftType) -> QuerySet[DetectableSize]:
+    """Detectable sizes of a type that hold, by method and place."""
+    rows = made.detectable_sizes.filter(replaced_by__isnull=True)
+    return rows.order_by("method", "detail")
 
 
 def evaluations_of(subject: Finding | Repair) -> QuerySet[Evaluation]:

@@ -22,7 +22,6 @@ from fleet.digests import row_digest
 from fleet.models import (
     AdoptedValue,
     DetectableSize,
-    FatiguePolicy,
     Material,
     Panel,
     PanelOnAircraft,
@@ -30,12 +29,17 @@ from fleet.models import (
     Spectrum,
     User,
 )
+from fleet.models import FatiguePolicy as PolicyRow
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
-from repairs.analysis.inputs import Inputs
+from repairs.analysis.crack_growth import WalkerLaw
+from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.registry import METHODS, NO_METHOD, Method, evaluate, methods_for
-from repairs.analysis.types import Outcome, Result, Use
+from repairs.analysis.scatter import FatiguePolicy
+from repairs.analysis.stress_life import StressLifeFamily
+from repairs.analysis.types import Outcome, Result, Sourced, Stated, Use
+from repairs.evaluation_text import number_text
 from repairs.models import Evaluation, EvaluationInput, Finding, Measurement
 from repairs.selectors.evaluations import evaluation_current
 from repairs.services.evaluation_inputs import (
@@ -64,7 +68,7 @@ _INPUT_COLUMN: dict[type[models.Model], str] = {
     Material: "material",
     Spectrum: "spectrum",
     Measurement: "measurement",
-    FatiguePolicy: "fatigue_policy",
+    PolicyRow: "fatigue_policy",
     DetectableSize: "detectable_size",
     AdoptedValue: "adopted_value",
     Policy: "policy",
@@ -99,6 +103,18 @@ def default_use(subject: Subject) -> Use:
     return Use.NO_KNOWN_CRACK if gone else Use.FOUND_DAMAGE
 
 
+def choice_from(
+    subject: Subject,
+    *,
+    use: str | None = None,
+    detectable: DetectableSize | None = None,
+    life_used_reason: str = "",
+) -> Choice:
+    """A choice as a form or a command gives it; the use follows from the subject."""
+    wanted = Use(use) if use else default_use(subject)
+    return Choice(wanted, detectable, life_used_reason)
+
+
 def evaluation_prepare(*, subject: Subject, choice: Choice, as_of: dt.date) -> Prepared:
     """Calculate from the record as it stands, and keep nothing."""
     size = choice.detectable
@@ -115,6 +131,49 @@ def evaluation_prepare(*, subject: Subject, choice: Choice, as_of: dt.date) -> P
     else:
         result = evaluate(method.id, choice.use, inputs)
     return Prepared(method, result, inputs.as_data(), found)
+
+
+@dataclass(frozen=True, slots=True)
+class InputLine:
+    """One input that a calculation would use, or would need and does not find."""
+
+    title: str
+    value: str
+    source: str
+    grade: str
+
+
+def input_lines(prepared: Prepared) -> list[InputLine]:
+    """The inputs the method would use, in the order of its needs."""
+    method = prepared.method
+    if method is None:
+        return []
+    inputs = Inputs(prepared.gathered.values)
+    needed = method.required(inputs, prepared.result.use)
+    optional = [name for name in prepared.gathered.values if name not in needed]
+    return [_input_line(name, prepared.gathered) for name in (*needed, *optional)]
+
+
+def _input_line(name: str, found: Gathered) -> InputLine:
+    spec, value = SPECS[name], found.values.get(name, SPECS[name].default)
+    if value is None:
+        return InputLine(spec.title, "missing", f"enter it {spec.where}", "")
+    if isinstance(value, Sourced):
+        number = f"{number_text(value.value)} {value.unit}".strip(" -")
+        return InputLine(spec.title, number, value.source, value.grade.value)
+    if isinstance(value, Stated):
+        return InputLine(spec.title, value.value.replace("_", " "), value.source, "")
+    if isinstance(value, WalkerLaw):
+        made = value.reference
+        return InputLine(spec.title, "Walker", made.source, made.grade.value)
+    if isinstance(value, FatiguePolicy):
+        made = value.factor
+        return InputLine(spec.title, f"{made.value:g}", made.source, made.grade.value)
+    if isinstance(value, StressLifeFamily):
+        factors = ", ".join(f"{curve.kt:g}" for curve in value.curves)
+        first = value.curves[0]
+        return InputLine(spec.title, f"Kt {factors}", first.source, first.grade.value)
+    return InputLine(spec.title, value.bay_label, value.source, "")
 
 
 def evaluation_make(

@@ -1,0 +1,107 @@
+"""Asking for an evaluation, and its page."""
+
+from __future__ import annotations
+
+from django.contrib import messages
+from django.core.exceptions import ValidationError
+from django.http import HttpResponse
+from django.shortcuts import redirect, render
+from django.views.decorators.http import (
+    require_http_methods,
+    require_POST,
+    require_safe,
+)
+
+from fleet.access import may, require, visible_or_404
+from fleet.clock import now, today
+from fleet.views.aircraft import FORM_METHODS
+from fleet.views.requests import Request
+from fleet.views.sending import sent
+from repairs.forms.evaluations import EvaluationForm
+from repairs.models import Evaluation, Finding, Repair
+from repairs.selectors.evaluation_shown import evaluation_shown
+from repairs.selectors.evaluations import (
+    detectable_sizes,
+    evaluation_rows,
+    evaluations_current,
+    subject_rows,
+)
+from repairs.services.evaluation_place import Subject
+from repairs.services.evaluations import (
+    choice_from,
+    default_use,
+    evaluation_make,
+    evaluation_prepare,
+    evaluation_remake,
+    input_lines,
+    method_versions,
+)
+
+ACTION = "evaluation_make"
+
+
+@require_http_methods(FORM_METHODS)
+def evaluation_new(request: Request, pk: int) -> HttpResponse:
+    """Evaluate a finding: what will be used is shown before it is made."""
+    finding = visible_or_404(subject_rows(Finding), request.user, pk=pk)
+    return _new(request, finding)
+
+
+@require_http_methods(FORM_METHODS)
+def evaluation_new_repair(request: Request, pk: int) -> HttpResponse:
+    """Evaluate the structure under a repair."""
+    repair = visible_or_404(subject_rows(Repair), request.user, pk=pk)
+    return _new(request, repair)
+
+
+def _new(request: Request, subject: Subject) -> HttpResponse:
+    require(request.user, ACTION, subject.operator_id)
+    sizes = detectable_sizes(subject.aircraft.variant.aircraft_type)
+    first = {"use": default_use(subject).value}
+    form = EvaluationForm(request.POST or None, sizes=sizes, initial=first)
+
+    def make() -> Evaluation:
+        choice = choice_from(subject, **form.cleaned_data)
+        return evaluation_make(
+            subject=subject, choice=choice, as_of=today(), actor=request.user, at=now()
+        )
+
+    if made := sent(form, make):
+        return redirect("evaluation", pk=made.pk)
+    prepared = evaluation_prepare(
+        subject=subject, choice=choice_from(subject), as_of=today()
+    )
+    context = {
+        "subject": subject,
+        "form": form,
+        "prepared": prepared,
+        "inputs": input_lines(prepared),
+        "current": evaluations_current(subject),
+    }
+    return render(request, "repairs/evaluation_new.html", context)
+
+
+@require_safe
+def evaluation(request: Request, pk: int) -> HttpResponse:
+    """Results, tests, curves and the calculation note of one evaluation."""
+    row = visible_or_404(evaluation_rows(), request.user, pk=pk)
+    context = {
+        "shown": evaluation_shown(row, method_versions()),
+        "may_make": may(request.user, ACTION, row.operator_id),
+    }
+    return render(request, "repairs/evaluation.html", context)
+
+
+@require_POST
+def evaluation_again(request: Request, pk: int) -> HttpResponse:
+    """The same question to the record as it stands now."""
+    row = visible_or_404(evaluation_rows(), request.user, pk=pk)
+    require(request.user, ACTION, row.operator_id)
+    try:
+        made = evaluation_remake(
+            evaluation=row, as_of=today(), actor=request.user, at=now()
+        )
+    except ValidationError as error:
+        messages.error(request, " ".join(error.messages))
+        return redirect("evaluation", pk=row.pk)
+    return redirect("evaluation", pk=made.pk)
