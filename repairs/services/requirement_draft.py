@@ -10,6 +10,7 @@ from fleet.amounts import AmountError, amount_read, amount_write
 from fleet.due import Counter
 from fleet.models import Aircraft, Document, Operator, SafeLifePart
 from repairs.models import (
+    DamageType,
     Disposition,
     Evaluation,
     Event,
@@ -55,6 +56,11 @@ NOT_COMPUTED = "{number} has no result, so no interval can come from it."
 NOT_GIVEN = "{number} gives no {phase}, so {limit} cannot come from it."
 LONGER = "The {phase} {limit} is longer than {number} calculated, {calculated}."
 CYCLES_NEEDED = "{number} calculated in flight cycles: give the {phase} in FC too."
+KNOWN_CRACK = (
+    "{number} is a known crack, which gets no inspection interval of its own. Record "
+    "the disposition that cites the approval with its limit and inspections, and raise "
+    "the requirement from there; or name the approval as source document."
+)
 FIRST_ONLY = "Limits from a calculation combine to the first, never to the last."
 
 
@@ -123,6 +129,9 @@ def draft_problems(draft: RequirementDraft) -> list[str]:
         problems.append(NO_LIMIT)
     for entry in draft.limits:
         problems += _entry_problems(entry, draft)
+    known = draft.finding is not None and draft.finding.damage_type == DamageType.CRACK
+    if known and not draft.sisters and not draft.source_document:
+        problems.append(KNOWN_CRACK.format(number=draft.finding))
     ways = {(x.phase, x.group): x.combine for x in draft.limits}
     problems += [
         GROUPS_MIXED.format(limit=x.entered)
