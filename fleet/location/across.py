@@ -6,9 +6,9 @@ import math
 from dataclasses import dataclass
 
 from fleet.location.along import Work, did_you_mean, door_cutout
+from fleet.location.parts import TINY_MM, Plane, Stringer
 from fleet.location.place import LocationRefused
 from fleet.location.reading import Across, Offer
-from fleet.location.sections import TINY_MM, Plane, Stringer
 
 SIDE_MISSING = "{what} has no side. Did you mean {offers}?"
 SIDE_CONFLICT = "“{what}” names a line on the {on}, but also says {said}; keep one."

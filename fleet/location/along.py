@@ -5,9 +5,10 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from decimal import Decimal
 
+from fleet.location.parts import TINY_MM, Cutout, Frame
 from fleet.location.place import LocationRefused
 from fleet.location.reading import Along, Offer, Reading
-from fleet.location.sections import TINY_MM, Cutout, Frame, Section
+from fleet.location.sections import Section
 from fleet.units import canonical, in_unit, number_write
 
 STA_RANGE = "{word} {label} is outside this {section} ({low}–{high}).{offers}"

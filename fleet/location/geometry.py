@@ -10,7 +10,7 @@ from fleet.location.geometry_file import (
     GeometryFileError,
     geometry_from_toml,
 )
-from fleet.location.sections import (
+from fleet.location.parts import (
     Box,
     Cutout,
     Frame,
@@ -19,10 +19,10 @@ from fleet.location.sections import (
     PanelMaterial,
     Plane,
     Plug,
-    Section,
     Stringer,
     Variant,
 )
+from fleet.location.sections import Section
 from fleet.location.typegeometry import (
     DetectableSize,
     FatiguePolicy,

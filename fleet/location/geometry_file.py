@@ -10,8 +10,11 @@ from dataclasses import replace
 from functools import lru_cache
 from typing import Any
 
-from fleet.location.section_file import SectionFile, panel_from, stations_of
-from fleet.location.sections import PanelMaterial, Section, Variant
+from fleet.location.parts import PanelMaterial, Variant
+from fleet.location.parts_file import panel_from
+from fleet.location.position_file import stations_of
+from fleet.location.section_file import SectionFile
+from fleet.location.sections import Section
 from fleet.location.table import Table
 from fleet.location.typegeometry import (
     DetectableSize,
@@ -162,7 +165,7 @@ def _sections(
         ata = door.text("ata_chapter", optional=True)
         skin = door.table("skin") or Table({}, door.where, [])
         skin.data.setdefault("label", f"{code} SKIN")
-        panel = panel_from(skin, file, box)
+        panel = panel_from(skin, file.lines, box)
         if skin.done() and door.done():
             found.append(
                 replace(

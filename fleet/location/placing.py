@@ -13,9 +13,10 @@ from fleet.location.along import (
     station_word,
     x_range,
 )
+from fleet.location.parts import TINY_MM, Panel, Plane
 from fleet.location.place import LocationRefused, Place, Position
 from fleet.location.reading import Offer, Problem, Reading
-from fleet.location.sections import TINY_MM, Panel, Plane, Section
+from fleet.location.sections import Section
 from fleet.location.typegeometry import TypeGeometry, Zone
 from fleet.location.words import INTERNAL
 from fleet.location.writing import write

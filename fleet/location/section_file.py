@@ -4,31 +4,23 @@ from __future__ import annotations
 
 import itertools
 import math
-import re
 from collections.abc import Iterable
 from dataclasses import replace
 from typing import Any
 
-from fleet.location.sections import (
-    TINY_MM,
-    Box,
-    Cutout,
-    Frame,
-    Joint,
-    Panel,
-    PanelMaterial,
-    Plane,
-    Plug,
-    Section,
-    Stringer,
+from fleet.location.parts import Frame, PanelMaterial, Plug, Stringer
+from fleet.location.parts_file import (
+    Lines,
+    cutouts_of,
+    joints_of,
+    panels_of,
+    planes_of,
 )
+from fleet.location.sections import Section
 from fleet.location.table import Table, is_number
 from fleet.units import FACTORS, canonical, number_write
 
-CRITICALITIES = ("principal", "fatigue_critical", "secondary", "unknown")
 SKINS = ("outer", "upper lower", "left right")
-PLANE_KINDS = ("floor", "seat_track", "keel_beam", "bulkhead", "spar")
-CUTOUT_KINDS = ("door", "cargo_door", "window", "hatch", "access")
 
 
 class SectionFile:
@@ -111,12 +103,20 @@ class SectionFile:
         self._frames()
         self._stringers()
         self._lengthen()
-        self._planes()
-        self._panels()
-        self._joints()
-        self._cutouts()
+        lines = self.lines
+        self._set(
+            planes=planes_of(lines),
+            panels=panels_of(lines),
+            joints=joints_of(lines),
+            cutouts=cutouts_of(lines),
+        )
         self.table.raw("copies", "a list of tables", optional=True)
         return self.section
+
+    @property
+    def lines(self) -> Lines:
+        """The section as far as it was read, to place other items by."""
+        return Lines(self.table, self.section, self.unit, self.materials)
 
     def _set(self, **parts: Any) -> None:
         self.section = replace(self.section, **parts)
@@ -284,242 +284,6 @@ class SectionFile:
             Stringer(f"{prefix}{n}{side}", n, side, s, ordinal)
             for ordinal, (n, side, s) in enumerate(rows, 1)
         )
-
-    # -- positions ------------------------------------------------------------
-
-    def _across(self, t: Table) -> tuple[float, float]:
-        """s range by stringer lines, degrees from the crown or per cent of chord."""
-        section = self.section
-        keys = [
-            k for k in ("stringers", "degrees", "chord_percent", "all") if k in t.data
-        ]
-        if len(keys) != 1:
-            t.wrong(
-                "give its reach across by just one of stringers = [from, to], "
-                "degrees = [from, to], chord_percent = [from, to], all = true."
-            )
-        key = keys[0] if keys else "all"
-        value = t.raw(key, "two values [from, to]", optional=True)
-        if key == "all":
-            return section.s1_mm, section.s2_mm
-        if not isinstance(value, list) or len(value) != 2:
-            t.wrong(f"“{key}” is {value!r}; give two values, [from, to].")
-            return section.s1_mm, section.s2_mm
-        first, last = (self._one_across(t, key, v) for v in value)
-        if last < first and section.wrap_mm:
-            last += section.wrap_mm
-        if last < first:
-            t.wrong(f"“{key}”: the second lies before the first; exchange them.")
-        return first, last
-
-    def _one_across(self, t: Table, key: str, value: Any) -> float:
-        if key == "stringers":
-            line = self.section.stringer(str(value))
-            if line is None:
-                names = ", ".join(x.label for x in self.section.stringers[:3])
-                t.wrong(f"no stringer is called {value!r}; they are {names}, ...")
-            return line.s_mm if line else 0.0
-        if not is_number(value):
-            t.wrong(f"“{key}” holds {value!r}, which is not a number.")
-            return 0.0
-        reference = self.section.reference_mm
-        if key == "degrees":
-            return float(math.radians(value) * reference)
-        return float(value) / 100.0 * reference
-
-    def _box(self, t: Table) -> Box:
-        return Box(*stations_of(self.section, self.unit, t), *self._across(t))
-
-    # -- panels, joints, cut-outs, planes -------------------------------------
-
-    def _panels(self) -> None:
-        found: list[Panel] = []
-        for t in self.table.tables("panels"):
-            panel = panel_from(t, self, self._box(t))
-            if t.done():
-                found.append(panel)
-        for grid in self.table.tables("panel_grids"):
-            found.extend(self._grid(grid))
-        self._unique("panel", [p.label for p in found])
-        self._set(panels=tuple(found))
-
-    def _grid(self, grid: Table) -> list[Panel]:
-        """Panels of rows between every two stations of the grid."""
-        found: list[Panel] = []
-        grid.text("label")
-        edges = grid.raw("stations", "a list of stations")
-        if not isinstance(edges, list) or len(edges) < 2:
-            grid.wrong("“stations” must list two edges or more.")
-            return found
-        for row in grid.tables("rows"):
-            for number, (a, b) in enumerate(itertools.pairwise(edges)):
-                data = {
-                    key: value[number]
-                    if key.startswith(("bending_", "thickness_", "clad_mm"))
-                    and isinstance(value, list)
-                    and len(value) == len(edges) - 1
-                    else value
-                    for key, value in row.data.items()
-                }
-                data["stations"] = [a, b]
-                data["label"] = f"{row.data.get('label', '')} {a}-{b}".strip()
-                one = Table(data, f"{row.where} {a}-{b}", row.problems)
-                panel = panel_from(one, self, self._box(one))
-                if one.done():
-                    found.append(panel)
-        grid.done()
-        return found
-
-    def _joints(self) -> None:
-        found = []
-        for t in self.table.tables("joints"):
-            joint = Joint(
-                t.text("label"), t.choice("kind", ("lap", "butt")), self._box(t)
-            )
-            if t.done():
-                found.append(joint)
-        self._unique("joint", [j.label for j in found])
-        self._set(joints=tuple(found))
-
-    def _cutouts(self) -> None:
-        found = []
-        for t in self.table.tables("cutouts"):
-            cutout = self._cutout(t, t.text("label"), self._box(t))
-            t.raw("door", "a table", optional=True)
-            if t.done():
-                found.append(cutout)
-        for t in self.table.tables("cutout_rows"):
-            found.extend(self._cutout_row(t))
-        self._unique("cut-out", [c.label for c in found])
-        self._set(cutouts=tuple(found))
-
-    def _cutout(self, t: Table, label: str, box: Box) -> Cutout:
-        door = t.data.get("door")
-        return Cutout(
-            label=label,
-            kind=t.choice("kind", CUTOUT_KINDS),
-            box=box,
-            corner_radius_mm=t.measure("corner_radius", least=0.0),
-            surround_thickness_mm=t.measure("surround_thickness", above=0.0),
-            surround_width_mm=t.measure("surround_width", least=0.0),
-            filled_by=str(door.get("section", "")) if isinstance(door, dict) else "",
-        )
-
-    def _cutout_row(self, t: Table) -> list[Cutout]:
-        """One like cut-out in the middle of each frame bay between two frames."""
-        names = t.texts("frames")
-        ends = [self.section.frame(name) for name in names]
-        s1, s2 = self._across(t)
-        label, width = t.text("label"), t.measure("width", above=0.0)
-        model = self._cutout(t, label, Box(0.0, 0.0, s1, s2))
-        if len(ends) != 2 or None in ends:
-            t.wrong("“frames” must name the first and the last frame of the row.")
-        if not t.done() or ends[0] is None or ends[1] is None:
-            return []
-        row = self.section.frames[ends[0].ordinal - 1 : ends[1].ordinal]
-        found = []
-        for ahead, behind in itertools.pairwise(row):
-            middle = (ahead.map_mm + behind.map_mm) / 2.0
-            box = Box(middle - width / 2.0, middle + width / 2.0, s1, s2)
-            name = f"{label} {ahead.label}-{behind.label}"
-            found.append(replace(model, label=name, box=box))
-        return found
-
-    def _planes(self) -> None:
-        found = []
-        for t in self.table.tables("planes"):
-            first, last = stations_of(self.section, self.unit, t)
-            share = t.number("chord_percent", optional=True)
-            plane = Plane(
-                label=t.text("label"),
-                kind=t.choice("kind", PLANE_KINDS),
-                map1_mm=first,
-                map2_mm=last,
-                bl_mm=t.measure_or_none("bl", least=0.0),
-                half_width_mm=t.measure_or_none("half_width", above=0.0),
-                wl_mm=t.measure_or_none("wl"),
-                s_mm=None
-                if share is None
-                else share / 100.0 * self.section.reference_mm,
-            )
-            if t.done():
-                found.append(plane)
-        self._unique("plane", [p.label for p in found])
-        self._set(planes=tuple(found))
-
-    def _unique(self, kind: str, labels: list[str]) -> None:
-        for label in sorted({x for x in labels if labels.count(x) > 1}):
-            self.table.wrong(f"{kind} “{label}” is listed twice; give each its name.")
-
-
-def panel_from(t: Table, file: SectionFile, box: Box) -> Panel:
-    """A panel's engineering columns from its table."""
-    name = t.text("material")
-    material = file.materials.get(name)
-    if material is None and name:
-        listed = ", ".join(sorted(file.materials)) or "none"
-        t.wrong(f"material “{name}” is not in panel_materials; listed are: {listed}.")
-    clad = t.measure_or_none("clad_per_side", least=0.0)
-    if material and clad is not None:
-        if not material.clad:
-            t.wrong(f"a clad thickness is given, but material “{name}” is not clad.")
-        material = replace(material, clad_mm_per_side=clad)
-    shell = file.section.is_shell
-    return Panel(
-        label=t.text("label"),
-        surface=t.choice("surface", ("outer", "upper", "lower"), default="outer"),
-        box=box,
-        thickness_mm=t.measure("thickness", above=0.0),
-        material=material or PanelMaterial(name, "", "", False, False, None),
-        radius_mm=t.measure_or_none("radius", above=0.0)
-        or (_largest_radius(file.section, box) if shell else None),
-        pressurised=t.flag("pressurised", default=False),
-        criticality=t.choice("criticality", CRITICALITIES),
-        criticality_source=t.text("criticality_source"),
-        bending_1g_mpa=t.measure_or_none("bending_1g", "stress", least=0.0),
-        bending_limit_mpa=t.measure_or_none("bending_limit", "stress", least=0.0),
-        ultimate_running_load_n_per_mm=t.measure_or_none(
-            "ultimate_running_load", "running_load", above=0.0
-        ),
-        source=t.text("source"),
-    )
-
-
-def stations_of(section: Section, unit: str, t: Table) -> tuple[float, float]:
-    """Map positions of the two stations of an item."""
-    value = t.raw("stations", "two stations [from, to]")
-    if not isinstance(value, list) or len(value) != 2:
-        if value is not None:
-            t.wrong(f"“stations” is {value!r}; give two of them, [from, to].")
-        return section.map1_mm, section.map2_mm
-    first, last = (_station(section, unit, t, v) for v in value)
-    if last < first:
-        t.wrong(f"“stations” {value}: the second lies ahead of the first; exchange.")
-    elif first < section.map1_mm - TINY_MM or last > section.map2_mm + TINY_MM:
-        t.wrong(f"“stations” {value} reach outside section {section.code}.")
-    return first, last
-
-
-def _station(section: Section, unit: str, t: Table, value: Any) -> float:
-    """Map position of a station: a number of the plug-free variant or a label."""
-    if is_number(value):
-        return section.map_of(canonical(value, unit), "")
-    if isinstance(value, str):
-        found = re.fullmatch(r"([\w.]+?)(?:\+(\d+(?:\.\d+)?))?", value.strip())
-        for frame in section.frames:
-            if found and frame.station_label == found[1]:
-                return frame.map_mm + canonical(found[2] or 0, unit)
-    t.wrong(
-        f"station {value!r} is neither a number nor the label of a listed frame; "
-        "write it as 560 or, in a plug, as “560A” or “560A+4”."
-    )
-    return section.map1_mm
-
-
-def _largest_radius(section: Section, box: Box) -> float:
-    """The greatest radius over the panel: hoop stress is proportional to it."""
-    inside = [r for m, r in section.profile if box.map1_mm <= m <= box.map2_mm]
-    return max(section.size_at(box.map1_mm), section.size_at(box.map2_mm), *inside)
 
 
 def _is_pair(row: Any) -> bool:

@@ -5,7 +5,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from fleet.location.sections import Panel, Section, Variant
+from fleet.location.parts import Panel, Variant
+from fleet.location.sections import Section
 
 
 @dataclass(frozen=True)

@@ -8,8 +8,9 @@ from __future__ import annotations
 from decimal import Decimal
 
 from fleet.location.along import Work, door_text, station_label, station_word
+from fleet.location.parts import Stringer
 from fleet.location.place import Position
-from fleet.location.sections import Section, Stringer
+from fleet.location.sections import Section
 from fleet.location.words import ELEMENT_PHRASES, KEEL_BEAM
 
 _LATERAL = {"L": "LH", "R": "RH"}
