@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import re
 
 import pytest
 from django.urls import reverse
@@ -130,7 +129,8 @@ def test_what_is_not_covered_shows_no_number(client, world):
     client.force_login(world.engineer)
     text = client.get(address("evaluation", row.pk)).content.decode()
     assert "There is no number; this needs an engineer." in text
-    assert not re.search(r"\d MPa", text)
+    for figure in ("Residual strength", "Margin", "Life, ", "Threshold"):
+        assert figure not in text
 
 
 def test_the_form_shows_what_will_be_used_before_it_is_made(client, world, finding):
