@@ -28,11 +28,11 @@ from fleet.selectors.aircraft import (
     seen_until,
 )
 from fleet.selectors.history import Told, history_of
+from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
 from repairs.models import OPEN_STATES, Finding, Repair
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
-from reports.selectors.part_lines import PartLine, nearest_first
 
 SHOWN = 25
 STANDING_REPAIRS = ("planned", "in_work", "embodied")

@@ -10,6 +10,7 @@ from django.db.models import Count, Exists, OuterRef, Q, QuerySet
 
 from fleet.models import HistoryEntry, PartState, Role, SafeLifePart, User
 from fleet.selectors.aircraft import Seen, aircraft_visible, fleet_seen, is_own
+from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
 from repairs.models import (
     Approval,
@@ -21,7 +22,6 @@ from repairs.models import (
 )
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
-from reports.selectors.part_lines import PartLine, nearest_first
 
 SHOWN = 8
 STATES = (
