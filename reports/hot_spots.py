@@ -265,19 +265,17 @@ def _ranked(
 ) -> Iterator[tuple[Window, float]]:
     """Windows of the observed map that exceed their share, the strongest first."""
     total = int(counts.sum())
-    windows: list[Window] = []
-    ratios: list[float] = []
+    ratios: list[Floats] = []
+    places: list[Counts] = []
     all_counts = _window_sums(counts, wraps=wraps)
     all_shares = _window_sums(share, wraps=wraps)
     for (high, wide, c), (_, _, s) in zip(all_counts, all_shares, strict=True):
-        usable = (s > 1e-12) & (s < 1 - 1e-12)
-        ratio = np.zeros(c.shape)
-        ratio[usable] = scan_ratio(
-            c[usable].astype(np.float64), total * s[usable], total
-        )
-        for along, around in np.argwhere(ratio > 0).tolist():
-            windows.append(Window(along, around, high, wide))
-            ratios.append(float(ratio[along, around]))
-    order = np.argsort(-np.array(ratios), kind="stable")
-    for index in order.tolist():
-        yield windows[index], ratios[index]
+        usable = (s > 1e-12) & (s < 1 - 1e-12) & (c > total * s)
+        ratio = scan_ratio(c[usable].astype(np.float64), total * s[usable], total)
+        along, around = np.nonzero(usable)
+        sizes = np.full(len(along), high), np.full(len(along), wide)
+        ratios.append(ratio)
+        places.append(np.stack([along, around, *sizes], axis=1))
+    ranked, where = np.concatenate(ratios), np.concatenate(places)
+    for index in np.argsort(-ranked, kind="stable").tolist():
+        yield Window(*where[index].tolist()), float(ranked[index])

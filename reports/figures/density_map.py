@@ -98,11 +98,8 @@ class DensityFigure:
         """Class names and words, lowest first; only what is shown."""
         present = set(self.classes[self.density.lattice.present].tolist())
         rows = [("d0", "none found")] if NONE_FOUND in present else []
-        shown = [rate_words(edge) for edge in self.edges]
-        rows.append(("d1", f"below {shown[1]}"))
-        pairs = enumerate(pairwise(shown[1:]), start=2)
-        rows += [(f"d{number}", f"{low}–{high}") for number, (low, high) in pairs]
-        rows.append((f"d{CLASSES}", f"{shown[-1]} and more"))
+        if max(present, default=NONE_FOUND) > NONE_FOUND:
+            rows += self._class_rows()
         if self.density.few.any():
             rows.append(("few", f"fewer than {FEW} found"))
         if NO_EXPOSURE in present:
@@ -110,6 +107,15 @@ class DensityFigure:
         if self.outside:
             rows.append(("outside", "found outside the data, in no rate"))
         return rows
+
+    def _class_rows(self) -> list[tuple[str, str]]:
+        shown = [rate_words(edge) for edge in self.edges]
+        pairs = enumerate(pairwise(shown[1:]), start=2)
+        return [
+            ("d1", f"below {shown[1]}"),
+            *((f"d{number}", f"{low}–{high}") for number, (low, high) in pairs),
+            (f"d{CLASSES}", f"{shown[-1]} and more"),
+        ]
 
     def cell_words(self, along: int, around: int) -> str:
         """What a cell says when pointed at."""
@@ -145,7 +151,7 @@ def swatch(name: str) -> str:
     )
     over = ""
     if name == "few":
-        over = svg.tag("path", class_="few", d="M1 13L21 1")
+        over = svg.tag("path", class_="few", d="M1 13L8 1")
     elif name == "dx":
         over = svg.tag("path", class_="cross", d="M1 1L21 13M1 13L21 1")
     elif name == "outside":
@@ -244,8 +250,10 @@ def _found(figure: DensityFigure) -> Iterator[str]:
 
 
 def _stroke(box: Box) -> str:
+    """A stroke in the left third of the cell, so that the count stays legible."""
     n = svg.number
-    return f"M{n(box.left + 1)} {n(box.bottom - 1)}L{n(box.right - 1)} {n(box.top + 1)}"
+    end = box.left + 1 + (box.right - box.left) / 3
+    return f"M{n(box.left + 1)} {n(box.bottom - 1)}L{n(end)} {n(box.top + 1)}"
 
 
 def _count(count: str, box: Box, number: int) -> str:

@@ -105,8 +105,8 @@ class DensityPage:
             exposure = f"{data.amount:,.1f} aircraft-years"
         lines = [
             f"Exposure: {exposure} by {len(data.in_rates)} aircraft, {self.period}.",
-            f"Counted: {data.events} events, {data.density.counted} times a cell; "
-            f"{data.damages} single damages.",
+            f"Counted: {data.events:,} events with {data.damages:,} damages; an event "
+            f"counts once in each cell it touched, {data.density.counted:,} in all.",
             f"Beside the rates: {data.beside.to_be_placed} to be placed, "
             f"{data.beside.outside_data} found outside the aircraft's data"
             f"{''.join(self._more_beside())}.",
