@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
+import re
+import tomllib
 from pathlib import Path
 
 import pytest
 
 from fleet.location.geometry import GeometryFileError, geometry_from_toml
+from fleet.units import FACTORS
 
+ENDINGS = [f"_{unit}" for units in FACTORS.values() for unit in units]
 FILE = Path(__file__).parents[2] / "fixtures" / "ard52.toml"
 
 SMALL = """
@@ -241,3 +245,27 @@ def test_a_relief_pressure_below_the_normal_one_is_refused() -> None:
 def test_a_clad_thickness_of_a_bare_sheet_is_refused() -> None:
     text = changed(("thickness_mm = 2", "thickness_mm = 2\nclad_per_side_mm = 0.1"))
     assert "material “skin” is not clad" in problems(text)[0]
+
+
+def keys_of(data: object) -> set[str]:
+    """Every key of the file at any depth, without its unit."""
+    found: set[str] = set()
+    if isinstance(data, dict):
+        for key, value in data.items():
+            bare = next((key[: -len(e)] for e in ENDINGS if key.endswith(e)), key)
+            found |= {bare} | keys_of(value)
+    elif isinstance(data, list):
+        for value in data:
+            found |= keys_of(value)
+    return found
+
+
+def test_the_documentation_names_every_key_of_the_demonstration_file() -> None:
+    described = FILE.with_name("README.md").read_text()
+    data = tomllib.loads(FILE.read_text())
+    missing = {
+        key
+        for key in keys_of(data)
+        if not re.search(rf"[`.\[]{key}[_`\]< ]", described)
+    }
+    assert not missing
