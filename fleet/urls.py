@@ -5,7 +5,7 @@ from __future__ import annotations
 from django.contrib.auth.decorators import login_not_required
 from django.urls import path
 
-from fleet.views import aircraft, history, people, policies, sessions, types
+from fleet.views import aircraft, history, parts, people, policies, sessions, types
 
 urlpatterns = [
     path("sign-in/", login_not_required(sessions.sign_in), name="sign_in"),
@@ -27,4 +27,8 @@ urlpatterns = [
     path("policies/", policies.policies, name="policies"),
     path("policies/new/", policies.policy_new, name="policy_new"),
     path("history/", history.history, name="history"),
+    path("safe-life/", parts.part_list, name="part_list"),
+    path("safe-life/<int:pk>/", parts.part, name="part"),
+    path("safe-life/<int:pk>/install/", parts.part_on, name="part_install"),
+    path("safe-life/<int:pk>/remove/", parts.part_off, name="part_remove"),
 ]
