@@ -8,17 +8,10 @@ from typing import Any
 from django.db import models
 
 from fleet.location.place import LocationRefused, Place
-from fleet.location.placing import place
-from fleet.location.reader import read
 from fleet.models import Aircraft, Criticality
-from fleet.selectors.structure import geometry_of
+from fleet.selectors.structure import place_find
 from fleet.services.structure import place_columns
 from repairs.models import Element
-
-NO_GEOMETRY = (
-    "The type {type} has no published geometry, so nothing can be placed on it yet; "
-    "the location is kept as written."
-)
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,12 +26,11 @@ class Placed:
 
 def place_try(aircraft: Aircraft, text: str) -> Placed:
     """Read and place a text on the aircraft's variant; a refusal is a result."""
-    geometry = geometry_of(aircraft.variant.aircraft_type)
-    if geometry is None:
-        message = NO_GEOMETRY.format(type=aircraft.variant.aircraft_type.code)
-        return Placed(text, refused=LocationRefused("E_NO_GEOMETRY", message))
+    variant = aircraft.variant
     try:
-        found = place(read(text), geometry, aircraft.variant.code)
+        found = place_find(
+            aircraft_type=variant.aircraft_type, variant=variant.code, text=text
+        )
     except LocationRefused as refused:
         return Placed(text, refused=refused)
     return Placed(text, found, place_columns(aircraft, found))
