@@ -20,6 +20,7 @@ from repairs.models import (
     RepairState,
     RepairType,
 )
+from repairs.selectors.repairs import hiding_damage
 
 PLACED = [("no", "to be placed"), ("yes", "placed")]
 OPEN = "open"
@@ -129,11 +130,3 @@ class RepairFilter(django_filters.FilterSet):
         self, rows: QuerySet[Repair], name: str, value: bool
     ) -> QuerySet[Repair]:
         return hiding_damage(rows) if value else rows
-
-
-def hiding_damage(rows: QuerySet[Repair]) -> QuerySet[Repair]:
-    """Repairs on the aircraft that cover damage not shown to be removed."""
-    return rows.filter(
-        Q(finding_rows__covers=True) & ~Q(finding_rows__damage_removed="yes"),
-        state=RepairState.EMBODIED,
-    ).distinct()

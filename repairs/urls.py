@@ -6,12 +6,16 @@ from django.urls import path
 
 from repairs.views import (
     accomplishments,
+    approvals,
     attachments,
+    dispositions,
     evaluations,
     finding_entry,
     finding_steps,
     findings,
     maps,
+    repair_steps,
+    repairs,
     requirements,
 )
 
@@ -69,6 +73,37 @@ urlpatterns = [
         "requirements/<int:pk>/verify/<int:subject_pk>/",
         accomplishments.termination_check,
         name="requirement_verify",
+    ),
+    path(
+        "findings/<int:pk>/disposition/",
+        dispositions.disposition_new,
+        name="disposition_new",
+    ),
+    path("dispositions/<int:pk>/", dispositions.disposition, name="disposition"),
+    *(
+        path(
+            f"{what}s/<int:pk>/sign/",
+            approvals.approval_new,
+            {"what": what},
+            name=f"{what}_sign",
+        )
+        for what in approvals.SUBJECTS
+    ),
+    path("repairs/", repairs.repair_list, name="repair_list"),
+    path("repairs/new/", repairs.repair_new, name="repair_new"),
+    path("repairs/<int:pk>/", repairs.repair, name="repair"),
+    path(
+        "repairs/<int:pk>/photographs/",
+        repair_steps.repair_photographs,
+        name="repair_photographs",
+    ),
+    path(
+        "repairs/<int:pk>/remove/",
+        repair_steps.repair_remove_page,
+        name="repair_remove",
+    ),
+    path(
+        "aircraft/<int:pk>/repairs/", repairs.repair_status_page, name="repair_status"
     ),
     path("attachments/<int:pk>/", attachments.attachment, name="attachment"),
     path(

@@ -25,10 +25,13 @@ ACCEPTED_FILES = "image/jpeg,image/png,image/webp,image/tiff,application/pdf"
 
 
 class LengthField(forms.CharField):
-    """A length with its unit; its value is mm. A bare number is in the type's unit."""
+    """A length with its unit; its value is mm. A bare number is in the type's unit.
 
-    def __init__(self, *, unit: str = "", **kwargs: Any) -> None:
-        self.unit = unit
+    A margin may be negative: `signed`.
+    """
+
+    def __init__(self, *, unit: str = "", signed: bool = False, **kwargs: Any) -> None:
+        self.unit, self.signed = unit, signed
         kwargs.setdefault("required", False)
         super().__init__(**kwargs)
 
@@ -43,7 +46,7 @@ class LengthField(forms.CharField):
             length = length_read(text, unit=self.unit or None)
         except UnitError as error:
             raise ValidationError(str(error)) from error
-        if length <= 0:
+        if length <= 0 and not self.signed:
             raise ValidationError(NOT_POSITIVE.format(text=text))
         return length
 

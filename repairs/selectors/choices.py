@@ -3,11 +3,27 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from typing import Any
 
 from django.db.models import Q, QuerySet
 
-from fleet.models import Aircraft, AuthorisationScope, Operator, Person, User
-from repairs.models import Event
+from fleet.models import (
+    Aircraft,
+    AuthorisationScope,
+    Operator,
+    Organisation,
+    Person,
+    User,
+)
+from repairs.models import (
+    Disposition,
+    Event,
+    Finding,
+    InspectionRequirement,
+    Repair,
+    RepairState,
+    RequirementState,
+)
 
 
 def aircraft_of(operators: Sequence[Operator]) -> QuerySet[Aircraft]:
@@ -15,6 +31,11 @@ def aircraft_of(operators: Sequence[Operator]) -> QuerySet[Aircraft]:
     return Aircraft.objects.filter(
         operator__in=operators, data_to__isnull=True
     ).select_related("variant__aircraft_type", "operator")
+
+
+def aircraft_chosen(choices: QuerySet[Aircraft], key: str) -> Aircraft | None:
+    """The aircraft an address or form names, if it is one of the choices."""
+    return choices.in_bulk([int(key)]).get(int(key)) if key.isdecimal() else None
 
 
 def people_at(operators: Sequence[Operator]) -> QuerySet[Person]:
@@ -31,6 +52,57 @@ def signers_at(
     return Person.objects.filter(
         authorisations__operator=operator, authorisations__scope__in=scopes
     ).distinct()
+
+
+def decision_choices(
+    finding: Finding, states: Sequence[str], scopes: Sequence[AuthorisationScope]
+) -> dict[str, QuerySet[Any]]:
+    """What a decision on a finding may name."""
+    others = Finding.objects.filter(aircraft=finding.aircraft_id, state__in=states)
+    return {
+        "also": others.exclude(pk=finding.pk),
+        "decided_by": signers_at(finding.operator, scopes),
+        "evaluations": finding.evaluations.filter(replaced_by__isnull=True),
+        "limit_checks": finding.limit_checks.all(),
+        "requirement": InspectionRequirement.objects.filter(
+            subjects__aircraft=finding.aircraft_id,
+            subjects__applies="yes",
+            state=RequirementState.EFFECTIVE,
+        ).distinct(),
+        "replaces": Disposition.objects.filter(
+            finding_rows__finding=finding, replaced_by__isnull=True
+        ),
+    }
+
+
+def repair_choices(
+    aircraft: Aircraft | None, operators: Sequence[Operator]
+) -> dict[str, QuerySet[Any]]:
+    """What a repair on an aircraft may name; nothing before the aircraft is chosen."""
+    people = people_at(operators)
+    on_aircraft = {"aircraft": aircraft}
+    return {
+        "supersedes": Repair.objects.filter(**on_aircraft, state=RepairState.EMBODIED),
+        "disposition": Disposition.objects.filter(
+            **on_aircraft, replaced_by__isnull=True
+        ),
+        "performed_by": people,
+        "inspected_by": people,
+        "released_by": people,
+        "organisation": Organisation.objects.filter(
+            Q(operator__in=operators) | Q(operator__isnull=True)
+        ),
+    }
+
+
+def findings_to_answer(
+    aircraft: Aircraft | None, states: Sequence[str], also: int | None
+) -> list[Finding]:
+    """Open findings a repair may answer; and the one it is recorded for."""
+    if aircraft is None:
+        return []
+    rows = Finding.objects.filter(Q(state__in=states) | Q(pk=also), aircraft=aircraft)
+    return list(rows.order_by("pk"))
 
 
 def events_of(user: User) -> QuerySet[Event]:

@@ -166,6 +166,18 @@ def finding_around(finding: Finding) -> Around:
     )
 
 
+def disposition_whole() -> QuerySet[Disposition]:
+    """Dispositions with what their page shows at the top."""
+    return Disposition.objects.select_related(
+        "aircraft",
+        "basis_document",
+        "decided_by",
+        "authorisation",
+        "replaces",
+        "entered_by",
+    )
+
+
 def sizes_of(finding: Finding, measurements: Sequence[Measurement]) -> Sizes:
     """A table of dimensions by measuring, and the ratios of the last."""
     by_number = [

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import datetime as dt
 import json
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from django.core.exceptions import ValidationError
@@ -179,6 +180,36 @@ def approval_agrees(approval: Approval) -> bool:
     upto = json.loads(approval.content).get("measurement")
     made_again = content_of(subject, measurement=upto)
     return digest(approval.content) == approval.content_digest == digest(made_again)
+
+
+def approvals_verified(subject: Subject) -> list[tuple[Approval, bool]]:
+    """Signatures with whether the record still says what was signed."""
+    return [(row, approval_agrees(row)) for row in subject.approvals.all()]
+
+
+def content_lines(content: str) -> list[tuple[str, str]]:
+    """The canonical text for reading: names and values, in its own order."""
+    return list(_flat("", json.loads(content)))
+
+
+def _flat(name: str, value: object) -> Iterator[tuple[str, str]]:
+    if isinstance(value, dict):
+        for key, inner in value.items():
+            yield from _flat(f"{name} {key}".strip(), inner)
+    elif isinstance(value, list):
+        for number, inner in enumerate(value, 1):
+            yield from _flat(f"{name} {number}", inner)
+    else:
+        words = name.replace("_id", "").replace("_", " ").removeprefix("record ")
+        yield words, "—" if value in (None, "") else _told(value)
+
+
+def _told(value: object) -> str:
+    """Floats are kept to the last digit as hexadecimal; a reader sees the number."""
+    text = str(value)
+    if text.startswith(("0x", "-0x")) and "p" in text:
+        return f"{float.fromhex(text):g}"
+    return text
 
 
 def content_of(subject: Subject, *, measurement: int | None = None) -> str:

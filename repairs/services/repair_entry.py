@@ -16,6 +16,7 @@ from repairs.models import (
     RepairCategory,
     RepairState,
 )
+from repairs.services.photographs import Photo
 from repairs.services.requirement_draft import RequirementDraft
 
 RECTIFIABLE = (
@@ -140,6 +141,7 @@ class RepairEntry:
     supersedes: Sequence[Repair] = ()
     safe_life_part: SafeLifePart | None = None
     new_requirement: RequirementDraft | None = None
+    photographs: Sequence[Photo] = ()
 
 
 def repair_problems(entry: RepairEntry) -> list[str]:

@@ -37,6 +37,7 @@ from repairs.services.due_points import (
 )
 from repairs.services.findings import operator_on
 from repairs.services.inspections import requirement_raise_within
+from repairs.services.photographs import photographs_write
 from repairs.services.places import (
     Placed,
     item_columns,
@@ -49,6 +50,7 @@ STAGE_2_MONTHS = "stage_2_months"
 NO_POLICY = "no policy {key} is recorded for {operator}; record it with its source"
 CLOCK_BASIS = "stage 2 of the approval of a repair to PSE or FCS"
 SUPERSEDED_BY = "superseded by {number}"
+NOT_EMBODIED = "{repair} is {state}; only an embodied repair is removed."
 ANSWERED_BY = "answered by {number}"
 
 
@@ -123,6 +125,7 @@ def repair_write(w: Writing, entry: RepairEntry) -> Repair:
     )
     w.create(repair)
     _rows_write(w, repair, entry)
+    photographs_write(w, shown=repair, photos=entry.photographs)
     _clocks_open(w, repair, entry)
     _findings_rectify(w, repair, entry)
     _supersede(w, repair, superseded)
@@ -147,6 +150,9 @@ def repair_remove(
         reason=reason,
     ) as w:
         row = w.locked(Repair.objects.select_related("aircraft"), pk=repair.pk)
+        if row.state != RepairState.EMBODIED:
+            state = row.get_state_display()
+            raise ValidationError(NOT_EMBODIED.format(repair=row, state=state))
         _end(w, row, RepairState.REMOVED, on=removed_on, reason=reason)
     return row
 

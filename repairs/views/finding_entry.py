@@ -10,7 +10,6 @@ from dataclasses import dataclass, field
 from typing import Any
 
 from django.contrib import messages
-from django.db.models import QuerySet
 from django.http import HttpResponse, QueryDict
 from django.shortcuts import redirect, render
 from django.views.decorators.http import require_http_methods
@@ -24,7 +23,12 @@ from repairs.forms.dimensions import DimensionsForm
 from repairs.forms.findings import LINK_KINDS, FindingForm
 from repairs.measured import MeasuredError, Typed, measured_read, sizes_of
 from repairs.models import DamageType, Finding
-from repairs.selectors.choices import aircraft_of, events_of, people_at
+from repairs.selectors.choices import (
+    aircraft_chosen,
+    aircraft_of,
+    events_of,
+    people_at,
+)
 from repairs.selectors.duplicates import Candidate, duplicate_candidates
 from repairs.selectors.neighbours import Near, neighbours
 from repairs.services.findings import (
@@ -91,7 +95,7 @@ def page_of(request: Request, said: QueryDict, *, bound: bool) -> EntryPage:
     """Forms filled with what was said, the location read, likely doubles found."""
     operators = operators_for(request.user, "finding_record")
     choices = aircraft_of(operators)
-    aircraft = _chosen(choices, said.get("aircraft", ""))
+    aircraft = aircraft_chosen(choices, said.get("aircraft", ""))
     options: dict[str, Any] = {
         "aircraft": choices,
         "people": people_at(operators),
@@ -121,10 +125,6 @@ def _said(request: Request) -> QueryDict:
     if offer := said.get("offer"):
         said["place_entered"] = offer
     return said
-
-
-def _chosen(choices: QuerySet[Aircraft], key: str) -> Aircraft | None:
-    return choices.in_bulk([int(key)]).get(int(key)) if key.isdecimal() else None
 
 
 def _initial(

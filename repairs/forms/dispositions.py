@@ -1,0 +1,160 @@
+"""A decision on findings, and a signature under a record."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+from django import forms
+
+from fleet.due import Counters
+from fleet.forms.fields import CounterField, DayField, HoursField
+from fleet.models import Document, Person, User
+from repairs.forms.fields import CountersForm, DataForm, choose
+from repairs.forms.findings import not_in_future
+from repairs.models import (
+    Disposition,
+    DispositionKind,
+    Evaluation,
+    Finding,
+    InspectionRequirement,
+    LimitCheck,
+    RepairCategory,
+)
+from repairs.selectors.neighbours import Near
+from repairs.services.disposition_entry import KEEPS_DAMAGE, Basis, Reviewed
+
+REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
+WRONG_PASSWORD = "This is not your password; nothing was signed."
+REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
+SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
+
+
+class DispositionForm(CountersForm, DataForm):
+    """What is decided, on which data, by whom, and until when."""
+
+    kind = forms.ChoiceField(label="decision", choices=DispositionKind.choices)
+    also = forms.ModelMultipleChoiceField(
+        Finding.objects.none(), label="also for", required=False,
+        help_text="Other findings of this aircraft the same decision answers.",
+    )  # fmt: skip
+    reason = forms.CharField(widget=forms.Textarea)
+    decided_by = forms.ModelChoiceField(Person.objects.none(), label="decided by")
+    decided_on = DayField(label="decided on")
+    limit_minutes = HoursField(label="limit, flight hours", required=False)
+    limit_cycles = CounterField(label="limit, flight cycles", required=False)
+    limit_landings = CounterField(label="limit, landings", required=False)
+    limit_on = DayField(label="limit, date", required=False)
+    scale = forms.ChoiceField(choices=SCALES, label="minor or major")
+    scale_reason = forms.CharField(label="why minor or major", required=False)
+    category = forms.ChoiceField(
+        label="repair category", required=False,
+        choices=[("", "none yet"), *RepairCategory.choices],
+    )  # fmt: skip
+    evaluations = forms.ModelMultipleChoiceField(
+        Evaluation.objects.none(), label="evaluations relied on", required=False
+    )
+    limit_checks = forms.ModelMultipleChoiceField(
+        LimitCheck.objects.none(), label="limits checks relied on", required=False
+    )
+    requirement = forms.ModelChoiceField(
+        InspectionRequirement.objects.none(), required=False,
+        label="inspection requirement there is",
+    )  # fmt: skip
+    replaces = forms.ModelChoiceField(
+        Disposition.objects.none(), required=False, label="replaces",
+        help_text="An earlier decision, such as the deferral this one extends.",
+    )  # fmt: skip
+    field_order = (
+        "kind", "document_kind", "document_reference", "document_revision",
+        "document_page", "reason", "decided_by", "decided_on", "limit_cycles",
+        "limit_minutes", "limit_landings", "limit_on",
+    )  # fmt: skip
+
+    def __init__(
+        self, *args: Any, choices: dict[str, Any], today: Any, near: Sequence[Near],
+        **kwargs: Any,
+    ) -> None:  # fmt: skip
+        super().__init__(*args, **kwargs)
+        for name, rows in choices.items():
+            choose(self, name, rows)
+        self.today, self.near = today, near
+        for number, one in enumerate(near):
+            self.fields[f"near_{number}"] = forms.ChoiceField(
+                label=_near_label(one), choices=REVIEW, required=False
+            )
+
+    def clean_decided_on(self) -> Any:
+        return not_in_future(self.cleaned_data["decided_on"], self.today)
+
+    def clean(self) -> dict[str, Any]:
+        data = super().clean() or {}
+        if data.get("kind") in KEEPS_DAMAGE:
+            for number, one in enumerate(self.near):
+                if not data.get(f"near_{number}"):
+                    text = REVIEW_FIRST.format(item=one.item)
+                    self.add_error(f"near_{number}", text)
+        return data
+
+    def basis(self) -> Basis:
+        data = self.cleaned_data
+        return Basis(
+            kind=data["document_kind"],
+            reference=data["document_reference"],
+            page=data["document_page"],
+            revision=data["document_revision"],
+        )
+
+    def limit(self) -> Counters:
+        data = self.cleaned_data
+        return Counters(
+            data["limit_minutes"], data["limit_cycles"], data["limit_landings"]
+        )
+
+    def reviewed(self) -> list[Reviewed]:
+        answers = [
+            (one, self.cleaned_data.get(f"near_{number}"))
+            for number, one in enumerate(self.near)
+        ]
+        return [
+            Reviewed(one.item, one.distance_mm, answer == "yes")
+            for one, answer in answers
+            if answer
+        ]
+
+
+class SignForm(forms.Form):
+    """A signature under the text shown; the password shows that it is you."""
+
+    meaning = forms.ChoiceField(label="signed as")
+    statement = forms.CharField(required=False)
+    document_kind = forms.ChoiceField(
+        label="approval document", required=False,
+        choices=[("", "none: this signature"), *Document.Kind.choices],
+    )  # fmt: skip
+    document_number = forms.CharField(required=False, label="its number")
+    document_issuer = forms.CharField(required=False, label="its issuer")
+    document_revision = forms.CharField(required=False, label="its revision")
+    document_date = DayField(required=False, label="its date")
+    password = forms.CharField(
+        label="your password",
+        widget=forms.PasswordInput(attrs={"autocomplete": "current-password"}),
+    )
+    shown_digest = forms.CharField(widget=forms.HiddenInput)
+
+    def __init__(
+        self, *args: Any, meanings: list[tuple[str, str]], user: User, **kwargs: Any
+    ) -> None:
+        super().__init__(*args, **kwargs)
+        self.fields["meaning"].choices = meanings  # type: ignore[attr-defined]
+        self.user = user
+
+    def clean_password(self) -> str:
+        given: str = self.cleaned_data["password"]
+        if not self.user.check_password(given):
+            raise forms.ValidationError(WRONG_PASSWORD)
+        return given
+
+
+def _near_label(one: Near) -> str:
+    return f"{one.item} {one.item.place_text}, {one.distance_mm:.0f} mm away"

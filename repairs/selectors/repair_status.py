@@ -1,0 +1,211 @@
+"""The current repair status of one aircraft: every repair that stands on it.
+
+The columns are those that AMC M.A.305(c)2 asks of a current repair status: number,
+description, location, dimensions, remaining material, release with counters, data and
+approval, category, linked inspections and limits.
+"""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections import defaultdict
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any
+
+from django.db.models import Q
+
+from fleet.amounts import counters_write
+from fleet.canonical import canonical, digest
+from fleet.due import Counters
+from fleet.location.along import Work, station_label
+from fleet.location.geometry import Section, geometry_from_toml
+from fleet.location.reading import Reading
+from fleet.models import Aircraft, User
+from fleet.units import hours_write, measure_write
+from repairs.models import DueKind, DuePoint, Repair
+from repairs.selectors.due_items import due_of
+
+HEADER = (
+    "repair no.", "chart no.", "description", "ATA", "zone", "from station",
+    "to station", "stringer / WL / BL", "dimensions", "remaining material",
+    "release date", "release reference", "FH", "FC", "data", "data revision",
+    "approval document", "category", "linked requirements", "next due", "limit",
+)  # fmt: skip
+UNKNOWN = "unknown"
+TO_BE_PLACED = "to be placed: {text}"
+INSPECTED = (DueKind.THRESHOLD, DueKind.REPEAT)
+
+
+@dataclass(frozen=True)
+class StatusRow:
+    """One repair with its cells in the order of the header."""
+
+    repair: Repair
+    cells: Sequence[Any]
+
+
+@dataclass(frozen=True)
+class Status:
+    """The list, and what is printed with every copy of it."""
+
+    aircraft: Aircraft
+    as_of: dt.date
+    known_at: dt.datetime
+    rows: Sequence[StatusRow]
+
+    @property
+    def digest(self) -> str:
+        """Over the cells as exported."""
+        return digest(canonical([[str(c) for c in row.cells] for row in self.rows]))
+
+    def facts(self) -> list[tuple[str, str]]:
+        return [
+            ("aircraft", f"{self.aircraft} msn {self.aircraft.serial_number}"),
+            ("as of", self.as_of.isoformat()),
+            ("known at", self.known_at.isoformat(timespec="seconds")),
+            ("rows", str(len(self.rows))),
+            ("digest of the rows (SHA-256)", self.digest),
+        ]
+
+    def csv_rows(self) -> list[Sequence[Any]]:
+        """The rows, then an empty line and what belongs to the print."""
+        return [*(row.cells for row in self.rows), [], *self.facts()]
+
+
+def repair_status(
+    aircraft: Aircraft, *, as_of: dt.date, known_at: dt.datetime, user: User
+) -> Status:
+    """Repairs that stood on the aircraft that day, as known then; five queries."""
+    repairs = list(
+        Repair.objects.visible_to(user)
+        .filter(
+            Q(removed_on__isnull=True) | Q(removed_on__gt=as_of),
+            aircraft=aircraft,
+            released_on__lte=as_of,
+            entered_at__lte=known_at,
+        )
+        .exclude(state="cancelled")
+        .select_related(
+            "section", "geometry", "zone", "approval_document", "release_document"
+        )
+        .prefetch_related("requirements")
+        .order_by("number")
+    )
+    points = _points(repairs, as_of)
+    variant = aircraft.variant.code
+    unit = aircraft.variant.aircraft_type.entry_unit
+    rows = [
+        StatusRow(one, _cells(one, points[one.pk], variant, unit)) for one in repairs
+    ]
+    return Status(aircraft, as_of, known_at, rows)
+
+
+def _points(repairs: Sequence[Repair], as_of: dt.date) -> dict[int, list[DuePoint]]:
+    """Due points open that day, of the repair itself or of its requirements."""
+    rows = DuePoint.objects.filter(
+        Q(repair__in=repairs) | Q(subject__requirement__repair__in=repairs),
+        Q(closed_on__isnull=True) | Q(closed_on__gt=as_of),
+        opened_on__lte=as_of,
+    ).select_related("subject__requirement")
+    found: dict[int, list[DuePoint]] = defaultdict(list)
+    for row in rows:
+        key = row.subject.requirement.repair_id if row.subject else row.repair_id
+        if key is not None:
+            found[key].append(row)
+    return found
+
+
+def _cells(
+    repair: Repair, points: Sequence[DuePoint], variant: str, unit: str
+) -> list[Any]:
+    first, last, across = place_cells(repair, variant, unit)
+    approval, release = repair.approval_document, repair.release_document
+    inspected = [_due(point) for point in points if point.kind in INSPECTED]
+    limits = [_due(point) for point in points if point.kind not in INSPECTED]
+    minutes = repair.at_minutes
+    return [
+        repair.number,
+        repair.chart_number,
+        f"{repair.get_kind_display()}: {repair.description}",
+        repair.ata,
+        repair.zone.code if repair.zone else "",
+        first,
+        last,
+        across,
+        dimensions(repair, unit),
+        _thickness(repair, unit),
+        repair.released_on.isoformat() if repair.released_on else "",
+        release.reference if release else UNKNOWN,
+        UNKNOWN if minutes is None else hours_write(minutes),
+        UNKNOWN if repair.at_cycles is None else repair.at_cycles,
+        approval.reference if approval else UNKNOWN,
+        approval.revision if approval else "",
+        f"{repair.get_approval_basis_display()} {repair.approval_page}".strip(),
+        repair.get_category_display(),
+        ", ".join(str(one) for one in repair.requirements.all()),
+        "; ".join(inspected),
+        "; ".join(limits),
+    ]
+
+
+def place_cells(repair: Repair, variant: str, unit: str) -> tuple[str, str, str]:
+    """From station, to station, and stringers or lines; as written if unplaced."""
+    if repair.section is None or repair.geometry is None:
+        return TO_BE_PLACED.format(text=repair.place_entered), "", ""
+    section = geometry_from_toml(repair.geometry.content).section(repair.section.code)
+    work = Work(Reading(""), section, variant, unit)
+    word = section.station_words[0]
+    ends = [
+        f"{word} {station_label(work, x or 0.0)}" for x in (repair.x1_mm, repair.x2_mm)
+    ]
+    return ends[0], ends[1], _across(repair, section, work)
+
+
+def dimensions(repair: Repair, unit: str) -> str:
+    """Length by width, in the type's unit."""
+    sizes = [repair.length_mm, repair.width_mm]
+    if sizes == [None, None]:
+        return UNKNOWN
+    return " × ".join(
+        UNKNOWN if size is None else measure_write(size, unit) for size in sizes
+    )
+
+
+def _across(repair: Repair, section: Section, work: Work) -> str:
+    parts = []
+    if repair.s1_mm is not None and repair.s2_mm is not None:
+        if section.is_shell and section.stringers:
+            names = [_nearest(section, s) for s in (repair.s1_mm, repair.s2_mm)]
+            parts.append(" to ".join(dict.fromkeys(names)))
+        else:
+            chord = " to ".join(work.show(s) for s in (repair.s1_mm, repair.s2_mm))
+            parts.append(f"{chord} {work.unit} aft of the front reference")
+    if repair.wl_mm is not None:
+        parts.append(f"WL {work.show(repair.wl_mm)}")
+    if repair.bl_mm is not None:
+        side = "L" if repair.bl_mm < 0 else "R" if repair.bl_mm else ""
+        parts.append(f"{side}BL {work.show(abs(repair.bl_mm))}")
+    return ", ".join(parts)
+
+
+def _nearest(section: Section, s_mm: float) -> str:
+    near = min(section.stringers, key=lambda t: abs(section.wrapped(s_mm - t.s_mm)))
+    return near.label
+
+
+def _thickness(repair: Repair, unit: str) -> str:
+    if repair.kind != "blend":
+        return "not applicable"
+    value = repair.remaining_thickness_mm
+    return UNKNOWN if value is None else measure_write(value, unit)
+
+
+def _due(point: DuePoint) -> str:
+    """The due value, or why it cannot be computed."""
+    due = due_of(point)
+    if due.cannot_compute:
+        return f"due: {due.cannot_compute}"
+    at = counters_write(due.at) if due.at != Counters() else ""
+    when = f"{at} · {due.on}" if at and due.on else at or str(due.on)
+    return f"{point.get_kind_display()} {when}"

@@ -1,0 +1,127 @@
+"""Deciding on findings, a decision's page, and signing records."""
+
+from __future__ import annotations
+
+from functools import partial
+from typing import Any
+
+from django.contrib import messages
+from django.http import HttpResponse
+from django.shortcuts import redirect, render
+from django.views.decorators.http import require_http_methods, require_safe
+
+from fleet.access import may, require, visible_or_404
+from fleet.clock import now, today
+from fleet.selectors.history import history_of
+from fleet.views.requests import Request
+from fleet.views.sending import sent
+from repairs.forms.dispositions import DispositionForm
+from repairs.forms.raised import RaisedForm
+from repairs.models import Disposition, Finding
+from repairs.selectors.choices import decision_choices
+from repairs.selectors.findings import disposition_whole, finding_whole
+from repairs.selectors.neighbours import neighbours
+from repairs.services.approvals import approvals_verified
+from repairs.services.assessing import is_critical_crack
+from repairs.services.authority import ASSESSORS
+from repairs.services.disposition_entry import DECIDABLE, DispositionEntry
+from repairs.services.dispositions import disposition_decide
+from repairs.services.findings import standing_on
+
+METHODS = ["GET", "HEAD", "POST"]
+DECIDED = "{number} is recorded; it cannot be altered, only replaced."
+PASSED_ON = (
+    "reason", "decided_by", "decided_on", "limit_on", "scale", "scale_reason",
+    "category", "evaluations", "limit_checks", "requirement", "replaces",
+)  # fmt: skip
+
+
+@require_http_methods(METHODS)
+def disposition_new(request: Request, pk: int) -> HttpResponse:
+    """A decision on a finding, and on others of its aircraft if it answers them."""
+    row = visible_or_404(finding_whole(request.user), request.user, pk=pk)
+    require(request.user, "disposition_decide", row.operator_id)
+    near = neighbours(row, user=request.user).here
+    form = DispositionForm(
+        request.POST or None,
+        choices=decision_choices(row, DECIDABLE, ASSESSORS),
+        today=today(),
+        near=near,
+        initial=_initial(request, row),
+    )
+    raised = RaisedForm(request.POST or None, initial={"area": row.place_text})
+    if raised.is_valid() and (
+        made := sent(form, partial(_decide, request, row, form, raised))
+    ):
+        messages.success(request, DECIDED.format(number=made))
+        return redirect("disposition", made.pk)
+    context = {
+        "finding": row,
+        "form": form,
+        "raised": raised,
+        "critical": is_critical_crack(row),
+        "unit": row.aircraft.variant.aircraft_type.entry_unit,
+    }
+    return render(request, "repairs/disposition_new.html", context)
+
+
+@require_safe
+def disposition(request: Request, pk: int) -> HttpResponse:
+    """The decision as signed: findings, basis, neighbours, limit, what follows."""
+    row = visible_or_404(disposition_whole(), request.user, pk=pk)
+    context = {
+        "disposition": row,
+        "findings": row.finding_rows.select_related("finding"),
+        "basis": row.basis_rows.select_related("evaluation", "limit_check__limit"),
+        "neighbours": row.neighbour_reviews.select_related("finding", "repair"),
+        "requirements": row.requirements.all(),
+        "due_points": row.due_points.all(),
+        "repairs": row.repairs.all(),
+        "later": Disposition.objects.filter(replaces=row).first(),
+        "approvals": approvals_verified(row),
+        "may_sign": may(request.user, "approval_sign", row.operator_id),
+        "history": history_of(row),
+    }
+    return render(request, "repairs/disposition.html", context)
+
+
+def _initial(request: Request, row: Finding) -> dict[str, Any]:
+    """A crack in PSE or FCS starts as: rectify before further flight."""
+    flown = standing_on(row.aircraft, today()).at
+    current = row.disposition_rows.order_by("-pk").first()
+    return {
+        "kind": "rectify" if is_critical_crack(row) else "accept",
+        "decided_by": request.user.person_id,
+        "decided_on": today(),
+        "at_minutes": flown.minutes,
+        "at_cycles": flown.cycles,
+        "at_landings": flown.landings,
+        "replaces": current.disposition_id if current else None,
+        "limit_checks": row.limit_checks.all(),
+    }
+
+
+def _decide(
+    request: Request, row: Finding, form: DispositionForm, raised: RaisedForm
+) -> Disposition:
+    data = form.cleaned_data
+    return disposition_decide(
+        entry=DispositionEntry(
+            aircraft=row.aircraft,
+            findings=[row, *data["also"]],
+            kind=data["kind"],
+            basis=form.basis(),
+            at=form.counters(),
+            limit=form.limit(),
+            neighbours=form.reviewed(),
+            new_requirement=raised.draft(
+                operator=row.operator,
+                aircraft=row.aircraft,
+                on=data["decided_on"],
+                base="effective",
+            ),
+            **{name: data[name] for name in PASSED_ON},
+        ),
+        actor=request.user,
+        at=now(),
+    )
