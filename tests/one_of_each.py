@@ -1,0 +1,266 @@
+"""A small operator with one of each record, and readers who may not see them."""
+
+from __future__ import annotations
+
+import datetime as dt
+from dataclasses import dataclass
+from io import BytesIO
+from typing import Any
+
+from django.core.files.uploadedfile import SimpleUploadedFile
+from PIL import Image
+
+from fleet.due import Counters
+from fleet.models import (
+    AircraftPeriod,
+    Attachment,
+    Membership,
+    Operator,
+    Role,
+    SafeLifePart,
+    User,
+)
+from fleet.services.documents import attachment_store, document_get_or_create
+from fleet.services.history import Writing
+from fleet.services.materials import demo_values_load
+from fleet.services.part_records import part_number_record, part_record
+from repairs.models import (
+    Disposition,
+    Evaluation,
+    Finding,
+    FindingQuestion,
+    InspectionRequirement,
+    Photograph,
+    Repair,
+    RequirementSubject,
+)
+from repairs.services.disposition_entry import DispositionEntry
+from repairs.services.dispositions import disposition_decide
+from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluations import default_use, evaluation_make
+from repairs.services.inspections import requirement_raise
+from repairs.services.repair_entry import Data, RepairEntry
+from repairs.services.repairs import repair_record
+from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from tests.factories import (
+    BEGAN,
+    FIXTURES,
+    NOW,
+    TODAY,
+    operator_make,
+    user_make,
+)
+from tests.record_rows import (
+    CRACK,
+    FIRST,
+    FOUND,
+    MANUAL,
+    World,
+    assessed,
+    found,
+    world_make,
+)
+
+AT = Counters(604_000, 10_080, 10_080)
+RELEASED = FOUND + dt.timedelta(days=5)
+
+
+@dataclass(frozen=True)
+class OneOfEach:
+    """Keys of the records, by the name of what they are."""
+
+    world: World
+    outsiders: dict[str, User]
+    former: dict[str, User]
+    former_finding: Finding
+    finding: Finding
+    question: FindingQuestion
+    crack: Finding
+    evaluation: Evaluation
+    disposition: Disposition
+    repair: Repair
+    requirement: InspectionRequirement
+    subject: RequirementSubject
+    part: SafeLifePart
+    attachment: Attachment
+    membership: Membership
+
+
+def one_of_each_make() -> OneOfEach:
+    world = world_make()
+    former = operator_make("FRM", "Formerly Air")
+    finding, decided = found(world), assessed(world, place_entered="STA 500, S-3L")
+    crack = found(
+        world,
+        damage_type="crack",
+        typed=CRACK,
+        element="skin",
+        place_entered="STA 630, S-8R+5 in",
+    )
+    requirement = _requirement(world)
+    return OneOfEach(
+        world=world,
+        outsiders=_members(world.outsider.memberships.get().operator, "outsider"),
+        former=_members(former, "former"),
+        former_finding=_earlier(world, former),
+        finding=finding,
+        question=_question(finding),
+        crack=crack,
+        evaluation=_evaluation(world, crack),
+        disposition=_disposition(world, decided),
+        repair=_repair(world),
+        requirement=requirement,
+        subject=requirement.subjects.get(),
+        part=_part(world),
+        attachment=_photograph(world, finding),
+        membership=world.users["recorder"].memberships.get(),
+    )
+
+
+def _members(operator: Operator, prefix: str) -> dict[str, User]:
+    return {role: user_make(operator, role, f"{prefix}-{role}") for role in Role.values}
+
+
+def _earlier(world: World, former: Operator) -> Finding:
+    """The aircraft was another operator's before, and was damaged there."""
+    columns: dict[str, Any] = {
+        "aircraft": world.aircraft,
+        "operator": former,
+    }
+    with Writing(actor=None, action="period_record", at=NOW) as w:
+        w.create(
+            AircraftPeriod(
+                **columns,
+                registration="Q7-OLD",
+                regime="EASA",
+                from_on=BEGAN,
+                to_on=FIRST - dt.timedelta(days=1),
+            )
+        )
+        return w.create(
+            Finding(
+                **columns,
+                number="F-9001",
+                damage_type="dent",
+                state="reported",
+                found_on=BEGAN,
+                place_entered="behind the wing",
+            )
+        )
+
+
+def _question(finding: Finding) -> FindingQuestion:
+    with Writing(actor=None, action="question_ask", at=NOW) as w:
+        return w.create(
+            FindingQuestion(finding=finding, code="tested", asked="Is it a dent?")
+        )
+
+
+def _evaluation(world: World, crack: Finding) -> Evaluation:
+    demo_values_load(
+        path=FIXTURES / "materials.toml",
+        operator=world.operator,
+        person=world.assessor,
+        second_person=world.approver,
+        on=TODAY,
+        actor=world.engineer,
+        at=NOW,
+    )
+    return evaluation_make(
+        subject=crack,
+        choice=Choice(default_use(crack)),
+        as_of=TODAY,
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def _disposition(world: World, finding: Finding) -> Disposition:
+    return disposition_decide(
+        entry=DispositionEntry(
+            aircraft=world.aircraft,
+            findings=(finding,),
+            kind="accept",
+            basis=MANUAL,
+            reason="Within the manual's limits.",
+            decided_by=world.assessor,
+            decided_on=FOUND,
+            at=AT,
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def _repair(world: World) -> Repair:
+    return repair_record(
+        entry=RepairEntry(
+            aircraft=world.aircraft,
+            place_entered="STA 640 to 660, S-6R to S-8R",
+            kind="external_doubler",
+            description="external doubler over the dent",
+            category="a",
+            approval_basis="repair_manual",
+            approval=Data("repair_manual", "SRM 53-10-12", "14", "fig. 202"),
+            released_on=RELEASED,
+            at=AT,
+            released_by=world.certifier,
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def _requirement(world: World) -> InspectionRequirement:
+    with Writing(actor=None, action="document_record", at=NOW) as w:
+        document = document_get_or_create(
+            w, operator=world.operator, kind="programme", reference="AMP-1"
+        )
+    return requirement_raise(
+        draft=RequirementDraft(
+            operator=world.operator,
+            title="Look at the keel",
+            requirement_class="programme",
+            area="keel, FR 20 to 30",
+            criteria="no crack",
+            method="detailed_visual",
+            effective_on=FIRST,
+            limits=(LimitEntry("threshold", "10,100 FC", base="new"),),
+            aircraft=(world.aircraft,),
+            source_document=document,
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def _part(world: World) -> SafeLifePart:
+    kind = part_number_record(
+        actor=None,
+        at=NOW,
+        operator=world.operator,
+        number="ARD-FIT-1",
+        title="Main fitting",
+    )
+    return part_record(
+        actor=None,
+        at=NOW,
+        part_number=kind,
+        serial="S0001",
+        manufactured_on=BEGAN,
+        release_reference="release certificate 1",
+    )
+
+
+def _photograph(world: World, finding: Finding) -> Attachment:
+    drawn = BytesIO()
+    Image.new("RGB", (32, 24), "white").save(drawn, "PNG")
+    upload = SimpleUploadedFile("dent.png", drawn.getvalue())
+    with Writing(
+        actor=world.engineer, action="photograph_add", at=NOW, operator=world.operator
+    ) as w:
+        row = attachment_store(w, operator=world.operator, upload=upload)
+        w.create(
+            Photograph(attachment=row, finding=finding, role="close", caption="dent")
+        )
+    return row

@@ -1,0 +1,147 @@
+"""Who gets what from every address of the site; `tests/site_pages.py` names them."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from pathlib import Path
+
+import pytest
+from django.db import transaction
+from django.test import Client, override_settings
+from django.urls import get_resolver, reverse
+
+from fleet.models import HistoryHead, User
+from tests.one_of_each import OneOfEach, one_of_each_make
+from tests.site_pages import FORM, PAGES, PUBLIC, READ, SEND, names, nothing
+
+pytestmark = pytest.mark.django_db
+
+MARK = "Q7-AAA"
+
+
+@pytest.fixture(scope="module")
+def folder(tmp_path_factory) -> Path:
+    return tmp_path_factory.mktemp("attachments")
+
+
+@pytest.fixture(autouse=True)
+def _attachments(settings, folder):
+    settings.ATTACHMENTS = folder
+
+
+@pytest.fixture(scope="module")
+def each(django_db_setup, django_db_blocker, folder) -> Iterator[OneOfEach]:
+    """The records, once for all addresses; nothing of them stays."""
+    contained = override_settings(
+        PASSWORD_HASHERS=["django.contrib.auth.hashers.MD5PasswordHasher"],
+        ATTACHMENTS=folder,
+    )
+    with contained, django_db_blocker.unblock(), transaction.atomic():
+        yield one_of_each_make()
+        transaction.set_rollback(True)
+
+
+@pytest.fixture(scope="module")
+def clients(each) -> dict[int, Client]:
+    """A signed-in browser for every user."""
+    users = [
+        *each.world.users.values(),
+        *each.outsiders.values(),
+        *each.former.values(),
+    ]
+    signed_in = {}
+    for user in users:
+        signed_in[user.pk] = Client()
+        signed_in[user.pk].force_login(user)
+    return signed_in
+
+
+@pytest.fixture
+def ask(each, clients):
+    """The answer to a user, or to nobody: status and text."""
+
+    def asked(name: str, user: User | None, method: str = "get") -> tuple[int, str]:
+        address = reverse(name, kwargs=PAGES[name].keys(each))
+        client = Client() if user is None else clients[user.pk]
+        answer = getattr(client, method)(address)
+        text = "" if answer.streaming else answer.content.decode(errors="replace")
+        return answer.status_code, text
+
+    return asked
+
+
+def methods(name: str) -> list[str]:
+    """How the address is used; a page first."""
+    return {READ: ["get"], FORM: ["get", "post"], SEND: ["post"]}[PAGES[name].kind]
+
+
+CLOSED = [name for name, page in PAGES.items() if page.kind != PUBLIC]
+KEYED = [name for name in CLOSED if PAGES[name].keys is not nothing]
+OWN = [name for name in KEYED if not PAGES[name].shared]
+UNKEYED = [name for name in CLOSED if name not in KEYED and name != "sign_out"]
+
+
+def test_every_address_is_explained():
+    assert set(names(get_resolver().url_patterns)) == set(PAGES)
+
+
+@pytest.mark.parametrize("name", CLOSED)
+def test_nobody_gets_in_without_signing_in(name, each, ask):
+    for method in methods(name):
+        status, _ = ask(name, None, method)
+        assert status == 302, method
+
+
+@pytest.mark.parametrize("name", [n for n in CLOSED if n != "sign_out"])
+def test_each_role_gets_what_its_acts_allow(name, each, ask):
+    page = PAGES[name]
+    for role, user in each.world.users.items():
+        for method in methods(name):
+            status, _ = ask(name, user, method)
+            if role in page.roles:
+                assert status in ((200,) if method == "get" else (200, 302)), role
+            else:
+                assert status == 403, (role, method)
+
+
+@pytest.mark.parametrize("name", OWN)
+def test_an_outsider_does_not_find_the_record(name, each, ask):
+    for role in PAGES[name].roles:
+        for method in methods(name):
+            status, _ = ask(name, each.outsiders[role], method)
+            assert status == 404, (role, method)
+
+
+@pytest.mark.parametrize("name", UNKEYED)
+def test_an_outsiders_page_says_nothing_of_our_aircraft(name, each, ask):
+    for role in PAGES[name].roles:
+        status, text = ask(name, each.outsiders[role])
+        assert (status, MARK in text) == (200, False), role
+
+
+@pytest.mark.parametrize("name", OWN)
+def test_a_former_operator_reads_its_own_period_only(name, each, ask):
+    for role in PAGES[name].roles:
+        status, text = ask(name, each.former[role], methods(name)[0])
+        assert status == PAGES[name].former, role
+        assert each.finding.number not in text
+
+
+def test_damage_of_an_earlier_period_is_the_present_operators_to_act_on(each, clients):
+    address = reverse("finding", kwargs={"pk": each.former_finding.pk})
+    step = reverse("finding_measure", kwargs={"pk": each.former_finding.pk})
+    engineer, former = each.world.engineer, each.former["engineer"]
+    assert [clients[u.pk].get(address).status_code for u in (engineer, former)] == [
+        200,
+        200,
+    ]
+    assert clients[engineer.pk].get(step).status_code == 200
+    assert clients[former.pk].get(step).status_code == 403
+
+
+@pytest.mark.parametrize("name", [n for n, p in PAGES.items() if p.kind == FORM])
+def test_an_empty_form_writes_nothing(name, each, ask):
+    before = HistoryHead.objects.get().sequence
+    for role in PAGES[name].roles:
+        ask(name, each.world.users[role], "post")
+    assert HistoryHead.objects.get().sequence == before

@@ -1,0 +1,118 @@
+"""Every address of the site: what it is for, and who gets it.
+
+A page that is not here fails tests/reports/test_access_matrix.py, so that nobody adds
+one without saying whose it is.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
+from typing import Any
+
+from django.urls import URLPattern, URLResolver
+
+from fleet.access import ROLES_FOR
+from fleet.models import Role
+from tests.one_of_each import OneOfEach
+
+READ, FORM, SEND, PUBLIC = "read", "form", "send", "public"
+Keys = Callable[[OneOfEach], dict[str, Any]]
+
+
+def nothing(_: OneOfEach) -> dict[str, Any]:
+    return {}
+
+
+@dataclass(frozen=True)
+class Page:
+    """What an address is for.
+
+    `action` is the act its roles follow from; empty opens it to every role. `keys` are
+    the parts of its address. `former` is what a former operator of the aircraft gets.
+    `query` shows the page at work in a browser; what is no page has no `looks`.
+    """
+
+    kind: str = READ
+    action: str = ""
+    keys: Keys = nothing
+    former: int = 404
+    shared: bool = False
+    query: str = ""
+    looks: bool = True
+
+    @property
+    def roles(self) -> frozenset[str]:
+        return ROLES_FOR[self.action] if self.action else frozenset(Role.values)
+
+
+def key(name: str) -> Keys:
+    return lambda each: {"pk": getattr(each, name).pk}
+
+
+def aircraft(each: OneOfEach) -> dict[str, Any]:
+    return {"pk": each.world.aircraft.pk}
+
+
+def subject(each: OneOfEach) -> dict[str, Any]:
+    return {"pk": each.requirement.pk, "subject_pk": each.subject.pk}
+
+
+def of_type(**more: str) -> Keys:
+    return lambda each: {"code": each.world.variant.aircraft_type.code, **more}
+
+
+PAGES: dict[str, Page] = {
+    "sign_in": Page(PUBLIC),
+    "sign_out": Page(SEND),
+    "overview": Page(),
+    "aircraft_list": Page(),
+    "aircraft_new": Page(FORM, "fleet_change"),
+    "aircraft": Page(keys=aircraft, former=200),
+    "aircraft_state": Page(FORM, "fleet_change", aircraft, former=403),
+    "aircraft_opening": Page(FORM, "opening_rekey", aircraft, former=403),
+    "type": Page(keys=of_type(), shared=True),
+    "structure_map": Page(keys=of_type(section="FUS"), shared=True),
+    "people": Page(action="people_change"),
+    "person_new": Page(FORM, "people_change"),
+    "organisation_new": Page(FORM, "people_change"),
+    "membership_new": Page(FORM, "people_change"),
+    "membership_end": Page(FORM, "people_change", key("membership")),
+    "authorisation_new": Page(FORM, "people_change"),
+    "policies": Page(),
+    "policy_new": Page(FORM, "policy_set"),
+    "history": Page(action="history_read"),
+    "due_list": Page(),
+    "density": Page(),
+    "finding_list": Page(),
+    "finding_new": Page(FORM, "finding_record"),
+    "finding": Page(keys=key("finding")),
+    "finding_place": Page(FORM, "finding_record", key("finding")),
+    "finding_measure": Page(FORM, "finding_measure", key("finding")),
+    "finding_assess": Page(FORM, "finding_assess", key("finding")),
+    "finding_close": Page(FORM, "finding_assess", key("finding")),
+    "finding_link": Page(FORM, "finding_assess", key("finding")),
+    "finding_void": Page(FORM, "finding_assess", key("finding")),
+    "finding_photographs": Page(FORM, "finding_measure", key("finding")),
+    "finding_answer": Page(SEND, "finding_assess", key("question")),
+    "sisters_new": Page(FORM, "requirement_raise", key("finding")),
+    "requirement_list": Page(),
+    "requirement_new": Page(FORM, "requirement_raise"),
+    "requirement": Page(keys=key("requirement")),
+    "requirement_again": Page(FORM, "requirement_rekey", key("requirement")),
+    "accomplishment_new": Page(FORM, "accomplishment_record", subject),
+    "requirement_verify": Page(FORM, "accomplishment_record", subject),
+    "attachment": Page(keys=key("attachment"), looks=False),
+    "evaluation_new": Page(FORM, "evaluation_make", key("crack")),
+    "evaluation_new_repair": Page(FORM, "evaluation_make", key("repair")),
+    "evaluation": Page(keys=key("evaluation")),
+    "evaluation_again": Page(SEND, "evaluation_make", key("evaluation")),
+}
+
+
+def names(patterns: list[Any]) -> Iterator[str]:
+    for pattern in patterns:
+        if isinstance(pattern, URLResolver):
+            yield from names(pattern.url_patterns)
+        elif isinstance(pattern, URLPattern):
+            yield pattern.name or str(pattern.pattern)
