@@ -18,6 +18,7 @@ from repairs.models.dispositions import (
     NeighbourReview,
     RepairCategory,
 )
+from repairs.models.due_points import DueKind, DuePoint
 from repairs.models.evaluations import (
     Evaluation,
     EvaluationInput,
@@ -47,8 +48,6 @@ from repairs.models.findings import (
 )
 from repairs.models.inspections import (
     Accomplishment,
-    DueKind,
-    DuePoint,
     InspectionRequirement,
     RequirementClass,
     RequirementLimit,
