@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass
+from typing import Any
 
 from django.urls import reverse
 
@@ -20,7 +21,7 @@ from fleet.location.geometry import TypeGeometry, geometry_from_toml
 from fleet.models import Aircraft, Section, User
 from fleet.selectors.aircraft import aircraft_visible
 from fleet.selectors.structure import geometry_of
-from repairs.models import Finding, Repair
+from repairs.models import Finding, MeasuredValue, Repair
 from repairs.selectors.neighbours import (
     Item,
     Patch,
@@ -38,7 +39,7 @@ NO_LONGER = ("rectified", "closed")
 def finding_map_svg(finding: Finding, *, user: User) -> str:
     """The surroundings of a finding with all that is recorded there; empty if unplaced.
 
-    Two queries, and two more if section and geometry are not selected with the row.
+    Three queries, and more if section and geometry are not selected with the row.
     """
     return item_map_svg(finding, user=user)
 
@@ -94,7 +95,7 @@ def aircraft_map(
     user: User,
     skin: str = "",
 ) -> StructureMap:
-    """A whole section of one aircraft with its findings and repairs; two queries."""
+    """A whole section of one aircraft with its findings and repairs; three queries."""
     shape = geometry.section(section.code)
     findings = findings_shown(Finding.objects.visible_to(user))
     repairs = repairs_shown(Repair.objects.visible_to(user))
@@ -126,7 +127,11 @@ def _on_skin(rows: Iterable[Finding] | Iterable[Repair], skin: str) -> list[Item
 
 
 def marks_of(findings: Sequence[Item], *, focus: Item | None = None) -> list[MapMark]:
-    """Findings as marks, each with the words a reader hears."""
+    """Findings as marks at their measured size; one query for the sizes."""
+    placed = [
+        row for row in findings if isinstance(row, Finding) and row.x1_mm is not None
+    ]
+    sizes = measured_sizes(placed)
     return [
         MapMark(
             label=row.number,
@@ -134,14 +139,42 @@ def marks_of(findings: Sequence[Item], *, focus: Item | None = None) -> list[Map
             kind_words=row.get_damage_type_display(),
             title=_title(row, row.get_damage_type_display(), row.get_state_display()),
             href=reverse("finding", args=[row.pk]),
-            along=_along(row),
-            across=_across(row),
+            along=_grown(_along(row), sizes[row.pk][0]),
+            across=_wide(row, sizes[row.pk][1]),
             focus=isinstance(focus, Finding) and row.pk == focus.pk,
             faded=row.state in NO_LONGER,
         )
-        for row in findings
-        if isinstance(row, Finding) and row.x1_mm is not None
+        for row in placed
     ]
+
+
+def measured_sizes(
+    findings: Sequence[Finding],
+) -> dict[int, tuple[float | None, float | None]]:
+    """Size along and across by the latest measuring that states it; one query.
+
+    Where no direction is recorded the length is taken both ways.
+    """
+    values = MeasuredValue.objects.filter(
+        measurement__finding__in=findings,
+        quantity__in=("length_mm", "width_mm", "direction"),
+        status="known",
+    ).order_by("measurement__number", "pk")
+    known: dict[int, dict[str, Any]] = {row.pk: {} for row in findings}
+    rows = values.values_list("measurement__finding", "quantity", "value", "word")
+    for pk, quantity, value, word in rows:
+        known[pk][quantity] = word or value
+    return {pk: _sizes(size) for pk, size in known.items()}
+
+
+def _sizes(known: Mapping[str, Any]) -> tuple[float | None, float | None]:
+    length, width = known.get("length_mm"), known.get("width_mm")
+    direction = known.get("direction", "")
+    if direction == "longitudinal":
+        return length, width
+    if direction == "circumferential":
+        return width, length
+    return length, length
 
 
 def repairs_of(
@@ -154,7 +187,7 @@ def repairs_of(
             title=_title(row, row.get_kind_display(), row.get_state_display()),
             href=reverse("repair", args=[row.pk]),
             along=_grown(_along(row), row.length_mm),
-            across=_wide(row),
+            across=_wide(row, row.width_mm),
             focus=isinstance(focus, Repair) and row.pk == focus.pk,
         )
         for row in repairs
@@ -177,9 +210,9 @@ def _across(row: Item) -> Span | None:
     return row.s1_mm, row.s2_mm
 
 
-def _wide(row: Repair) -> Span | None:
+def _wide(row: Item, size_mm: float | None) -> Span | None:
     across = _across(row)
-    return None if across is None else _grown(across, row.width_mm)
+    return None if across is None else _grown(across, size_mm)
 
 
 def _grown(span: Span, size_mm: float | None) -> Span:
@@ -216,7 +249,7 @@ class MapPage:
 def map_page(
     section: Section, *, user: User, aircraft: Aircraft | None, skin: str
 ) -> MapPage:
-    """The structure map of a section; five queries, whatever is on it.
+    """The structure map of a section; six queries, whatever is on it.
 
     A surface with two skins shows one of them, the upper one first.
     """

@@ -139,7 +139,8 @@ def in_patch(patch: Patch, wrap_mm: float | None) -> Q:
 
 def findings_shown(rows: QuerySet[Finding]) -> QuerySet[Finding]:
     """Findings that stand in the record: no duplicates, none voided, none corrected."""
-    return rows.exclude(state__in=ASIDE_STATES).filter(replaced_by__isnull=True)
+    corrected = Finding.objects.filter(replaces__isnull=False).values("replaces")
+    return rows.exclude(state__in=ASIDE_STATES).exclude(pk__in=corrected)
 
 
 def repairs_shown(rows: QuerySet[Repair]) -> QuerySet[Repair]:

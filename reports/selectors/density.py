@@ -113,14 +113,14 @@ def density_data(
     asked = replace(asked, skin=_one_skin(asked.skin, section))
     lattice = lattice_of(section, [variant.code for variant in geometry.variants])
     windows = list(_windows(asked, user, as_of))
-    rows = _asked_for(asked, user, windows, as_of)
+    rows = _asked_for(asked, windows, as_of)
     counted = _counted(rows, asked, windows)
     seen = _tally(lattice, section, counted)
     density = Density(
         lattice, seen.counts, lattice.exposure(_amounts(windows)), asked.denominator
     )
     totals = _totals(counted)
-    earlier = rows.exclude(_in_windows(windows)).filter(_skin(asked))
+    earlier = rows.filter(~_in_windows(windows), _skin(asked), section=asked.section)
     return DensityData(
         asked=asked,
         geometry=geometry,
@@ -231,10 +231,13 @@ def _amounts(windows: Iterable[AircraftWindow]) -> dict[str, float]:
 
 
 def _asked_for(
-    asked: DensityFilter, user: User, windows: Sequence[AircraftWindow], as_of: dt.date
+    asked: DensityFilter, windows: Sequence[AircraftWindow], as_of: dt.date
 ) -> QuerySet[Finding]:
-    """Findings of these aircraft in the period, in this section or to be placed."""
-    rows = findings_shown(Finding.objects.visible_to(user)).filter(
+    """Findings of these aircraft in the period, in this section or to be placed.
+
+    The aircraft are the reader's own already, so that the index of the map suffices.
+    """
+    rows = findings_shown(Finding.objects.all()).filter(
         Q(section=asked.section) | Q(section__isnull=True),
         aircraft__in=[window.aircraft.pk for window in windows],
         found_on__lte=min(as_of, asked.to_on or as_of),
@@ -248,18 +251,21 @@ def _asked_for(
     return rows.order_by()
 
 
-def findings_in_rates(
-    data: DensityData, *, user: User, as_of: dt.date
-) -> QuerySet[Finding]:
+def findings_in_rates(data: DensityData, *, as_of: dt.date) -> QuerySet[Finding]:
     """The findings that the map counts."""
-    rows = _asked_for(data.asked, user, data.windows, as_of)
+    rows = _asked_for(data.asked, data.windows, as_of)
     return _counted(rows, data.asked, data.windows)
 
 
 def _counted(
     rows: QuerySet[Finding], asked: DensityFilter, windows: Sequence[AircraftWindow]
 ) -> QuerySet[Finding]:
-    return rows.filter(_in_windows(windows), _skin(asked), around_half__isnull=False)
+    return rows.filter(
+        _in_windows(windows),
+        _skin(asked),
+        section=asked.section,
+        around_half__isnull=False,
+    )
 
 
 def _in_windows(windows: Sequence[AircraftWindow]) -> Q:

@@ -54,6 +54,10 @@ class DensityPage:
         skin = f"{asked.skin} skin" if asked.skin else "skin"
         if self.data.section.skins == ("outer",):
             skin = "skin, outer surface"
+        words += (
+            [self.data.geometry.variant(asked.variant).name] if asked.variant else []
+        )
+        words += [one.registration for one in asked.aircraft]
         return f"{self.data.section.title} {skin}, {', '.join(words)}"
 
     @cached_property
@@ -174,7 +178,7 @@ def density_page(
     if geometry is None:
         return None
     data = density_data(asked, geometry, user=user, as_of=as_of)
-    spots = spot_rows(data, user=user, as_of=as_of, replicas=replicas)
+    spots = spot_rows(data, as_of=as_of, replicas=replicas)
     return DensityPage(data, spots, as_of, replicas, smoothed)
 
 

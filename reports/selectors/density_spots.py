@@ -9,7 +9,6 @@ from dataclasses import dataclass
 
 from django.db.models import Q
 
-from fleet.models import User
 from repairs.models import DamageType
 from reports.hot_spots import HotSpot, Window, hot_spots, window_mm
 from reports.selectors.density import DensityData, findings_in_rates
@@ -34,23 +33,17 @@ class SpotRow:
     mostly: Sequence[tuple[str, int]]
 
 
-def spot_rows(
-    data: DensityData, *, user: User, as_of: dt.date, replicas: int
-) -> list[SpotRow]:
+def spot_rows(data: DensityData, *, as_of: dt.date, replicas: int) -> list[SpotRow]:
     """The hot spots in order of strength; one query for each of the few."""
     found = hot_spots(data.density, data.seen, seed=SEED, replicas=replicas)
     return [
-        _row(letter, spot, data, user, as_of)
+        _row(letter, spot, data, as_of)
         for letter, spot in zip(LETTERS, found, strict=False)
     ]
 
 
-def _row(
-    letter: str, spot: HotSpot, data: DensityData, user: User, as_of: dt.date
-) -> SpotRow:
-    rows = findings_in_rates(data, user=user, as_of=as_of).filter(
-        _half_bays(spot.window, data)
-    )
+def _row(letter: str, spot: HotSpot, data: DensityData, as_of: dt.date) -> SpotRow:
+    rows = findings_in_rates(data, as_of=as_of).filter(_half_bays(spot.window, data))
     pairs = rows.values_list("aircraft", "damage_type")
     types: Counter[str] = Counter()
     aircraft = set()

@@ -8,9 +8,10 @@ from xml.etree import ElementTree
 import pytest
 
 from fleet.drawing.symbols import SYMBOLS
-from repairs.models import DamageType, Finding
-from repairs.selectors.maps import finding_map_svg, item_map_svg
-from tests.factories import operator_make, user_make
+from fleet.services.history import Writing
+from repairs.models import DamageType, Finding, MeasuredValue, Measurement
+from repairs.selectors.maps import finding_map_svg, item_map_svg, marks_of
+from tests.factories import NOW, TODAY, operator_make, user_make
 from tests.placed_rows import INCH, finding_make, fleet_make, repair_make
 
 pytestmark = pytest.mark.django_db
@@ -114,7 +115,39 @@ def test_a_repair_is_drawn_at_its_recorded_size(fleet, engineer):
     )
 
 
-def test_drawing_takes_two_queries_however_much_is_there(
+@pytest.mark.parametrize(
+    ("direction", "along", "across"),
+    [
+        ("longitudinal", 300.0, 0.0),
+        ("circumferential", 0.0, 300.0),
+        ("", 300.0, 300.0),
+    ],
+)
+def test_a_finding_is_drawn_at_its_last_measured_size(fleet, direction, along, across):
+    row = dent(fleet, 640, 6, damage_type="crack")
+    for number, length in ((1, 100.0), (2, 300.0)):
+        with Writing(actor=None, action="measurement_record", at=NOW) as w:
+            measuring = w.create(
+                Measurement(
+                    finding=row, number=number, stage="repeat", measured_on=TODAY
+                )
+            )
+            values = [("length_mm", {"value": length})]
+            values += [("direction", {"word": direction})] if direction else []
+            w.create_many(
+                [
+                    MeasuredValue(
+                        measurement=measuring, quantity=name, status="known", **known
+                    )
+                    for name, known in values
+                ]
+            )
+    (mark,) = marks_of([row])
+    assert mark.along[1] - mark.along[0] == pytest.approx(along)
+    assert mark.across[1] - mark.across[0] == pytest.approx(across)
+
+
+def test_drawing_takes_three_queries_however_much_is_there(
     fleet, engineer, django_assert_num_queries
 ):
     here = dent(fleet, 640, 6)
@@ -124,7 +157,7 @@ def test_drawing_takes_two_queries_however_much_is_there(
         "aircraft__variant", "section", "geometry"
     ).get(pk=here.pk)
     list(engineer.open_memberships)
-    with django_assert_num_queries(2):
+    with django_assert_num_queries(3):
         finding_map_svg(row, user=engineer)
 
 
