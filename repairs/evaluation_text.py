@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Mapping
 from typing import Any
 
 UNKNOWN = "—"
+SUPERSCRIPT = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 
 
 def number_text(value: float | int | None) -> str:
@@ -15,18 +17,27 @@ def number_text(value: float | int | None) -> str:
     if isinstance(value, int) or (float(value).is_integer() and abs(value) >= 1000):
         return f"{value:,.0f}"
     size = abs(value)
-    if size and (size < 1e-3 or size >= 1e7):
-        return f"{value:.4g}"
+    if size and (size < 1e-3 or size >= 1e9):
+        mantissa, power = f"{value:.3e}".split("e")
+        return f"{mantissa}·10{str(int(power)).translate(SUPERSCRIPT)}"
     digits = 0 if size >= 1000 else 1 if size >= 100 else 2 if size >= 10 else 4
     text = f"{value:,.{digits}f}"
     return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def value_text(line: Mapping[str, Any]) -> str:
+    """The value of a note line; whole cycles are rounded down, as everywhere."""
+    value = line["value"]
+    if value is not None and line["unit"] == "cycles":
+        value = math.floor(value)
+    return "" if value is None else number_text(value)
 
 
 def note_line_text(line: Mapping[str, Any]) -> str:
     """One step: number, symbol = formula = numbers = value unit [source, grade]."""
     parts = [line["symbol"], line["formula"], line["substitution"]]
     if line["value"] is not None:
-        parts.append(f"{number_text(line['value'])} {line['unit']}".strip())
+        parts.append(f"{value_text(line)} {line['unit']}".strip(" -"))
     text = " = ".join(part for part in parts if part)
     source = line["source"]
     if source and line["grade"]:

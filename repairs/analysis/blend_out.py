@@ -52,6 +52,7 @@ ECCENTRIC = Reference(
     Grade.PRINT,
 )
 SECTION = "net section, ultimate"
+ON_LEFT = "on the thickness left"
 ALL_REMOVED = "a blend leaves material"
 MORE_THAN_MEASURED = (
     "Depths of this and earlier blends sum to more than the measured loss: the sum is "
@@ -273,7 +274,7 @@ def _with_growth(
 ) -> Result:
     """Fill lives, threshold and repeat from stress-life and from growth."""
     sheet = sheet_of(inputs, note, section.left)
-    path = sheet.path(on_left, inputs, clearance(inputs))
+    path = sheet.path(on_left, inputs, clearance(inputs), ON_LEFT)
     start = flaw_start(sheet, path, note, assumed_flaw(inputs, section.left))
     grown = grow(inputs, note, path, start, on_left.residual)
     base = inputs.word("life_base") or ""

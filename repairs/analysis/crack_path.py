@@ -56,6 +56,7 @@ class CrackPath:
     law: WalkerLaw
     largest: float
     end_of_method: str
+    section: str = "gross"
 
     def lost_at(self, requirement: Requirement, start: float) -> float | None:
         """Return the length where a requirement is lost, None if not in range."""
@@ -234,7 +235,7 @@ def curves(path: CrackPath, start: float, base: str) -> tuple[Curve, ...]:
             "Residual strength",
             f"crack length {path.symbol}",
             "mm",
-            "strength, gross",
+            f"strength, {path.section}",
             "MPa",
             tuple((path.scale * a, float(path.strength(a).stress)) for a in lengths),
             (

@@ -13,7 +13,7 @@ from repairs.analysis.types import Interval, Life, MissingInput
 SINCE_NEW = "since new"
 FROM_FINDING = "from finding"
 LAST_DONE = "last accomplishment"
-NO_FACTOR = "No scatter factor recorded for {what}: no {result}; needs an engineer."
+NO_FACTOR = "No scatter factor ({what} not recorded): no {result}; needs an engineer."
 NO_DETECTABLE = (
     "No detectable size recorded for the inspection method: no repeat interval."
 )
@@ -24,8 +24,8 @@ TOO_LATE = (
 NO_VALIDITY = "No limit of validity recorded: the interval is not cut down to it."
 NOTHING_LEFT = "{cap} leaves no cycles: no interval; needs an engineer."
 SEVERITY_OUTSIDE = (
-    "The factor for {what} does not contain the severity of the spectrum: average "
-    "usage is assumed."
+    "The {what} does not contain the severity of the spectrum: average usage is "
+    "assumed."
 )
 FOUND_DAMAGE_LIFE = (
     "Life of known damage: not an inspection interval and no leave to fly with it."

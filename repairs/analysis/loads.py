@@ -47,15 +47,15 @@ RESIDUAL_WITH_FLIGHT = (
     "loads"
 )
 RESIDUAL_PRESSURE = (
-    "{factor:g} x (normal operating differential + external aerodynamic pressure), "
+    "{factor:g} × (normal operating differential + external aerodynamic pressure), "
     "other loads omitted"
 )
-ULTIMATE_WITH_FLIGHT = "{factor:g} x (limit flight loads + relief-valve differential)"
+ULTIMATE_WITH_FLIGHT = "{factor:g} × (limit flight loads + relief-valve differential)"
 ULTIMATE_PRESSURE = (
-    "{factor:g} x {proof:g} x relief-valve differential, other loads omitted"
+    "{factor:g} × {proof:g} × relief-valve differential, other loads omitted"
 )
 RESIDUAL_UNPRESSURISED = "limit flight loads"
-ULTIMATE_UNPRESSURISED = "{factor:g} x limit flight loads"
+ULTIMATE_UNPRESSURISED = "{factor:g} × limit flight loads"
 NO_FLIGHT_LOADS = "limit flight stress not recorded for this panel"
 PRESSURE_ONLY = (
     "Pressure only: {cases} not checked, because the limit flight stress is not "

@@ -61,7 +61,13 @@ class Sheet:
             ),
         }
 
-    def path(self, loads: PanelLoads, inputs: Inputs, keep: float | None) -> CrackPath:
+    def path(
+        self,
+        loads: PanelLoads,
+        inputs: Inputs,
+        keep: float | None,
+        section: str = "gross",
+    ) -> CrackPath:
         """Return the path of a crack here, as far as every part of it is valid."""
         ends = [(WIDEST_SECANT * self.width, "the range of the width correction")]
         if self.radius is not None:
@@ -80,6 +86,7 @@ class Sheet:
             self.law,
             largest,
             end,
+            section,
         )
 
 

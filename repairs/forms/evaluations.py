@@ -14,7 +14,7 @@ from repairs.models.evaluations import Use
 class SizeField(forms.ModelChoiceField):
     """A detectable size by method, place and length."""
 
-    def label_from_instance(self, obj: DetectableSize) -> str:  # type: ignore[override]
+    def label_from_instance(self, obj: DetectableSize) -> str:
         hidden = f" + {obj.hidden_mm:g} hidden" if obj.hidden_mm else ""
         method = obj.method.replace("_", " ")
         return f"{method}, {obj.detail}: {obj.length_mm:g}{hidden} mm"

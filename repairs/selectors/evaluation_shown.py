@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from fleet.drawing.chart import Chart, Level, Point, Series, chart_svg
-from repairs.evaluation_text import number_text
+from repairs.evaluation_text import number_text, value_text
 from repairs.models import Evaluation, Finding, Repair
 from repairs.selectors.evaluations import (
     APPROVED,
@@ -130,10 +130,11 @@ class Shown:
     figures: list[Figure]
     tests: list[TestRow]
     missing: list[dict[str, str]]
-    charts: list[str]
+    charts: list[tuple[str, str]]
     note: list[NoteRow]
     inputs: list[InputRow]
     libraries: str
+    digest: list[str]
 
 
 def evaluation_shown(evaluation: Evaluation, versions: Mapping[str, int]) -> Shown:
@@ -154,10 +155,13 @@ def evaluation_shown(evaluation: Evaluation, versions: Mapping[str, int]) -> Sho
         figures=_figures(data),
         tests=[_test(test) for test in data["applicability"]],
         missing=data["missing"],
-        charts=[chart_of(curve) for curve in data["curves"]],
+        charts=[(c["title"], chart_of(c)) for c in data["curves"]],
         note=[_note_row(line) for line in data["note"]],
         inputs=input_rows(evaluation),
         libraries=", ".join(f"{k} {v}" for k, v in sorted(data["libraries"].items())),
+        digest=[
+            evaluation.content_digest[start : start + 16] for start in range(0, 64, 16)
+        ],
     )
 
 
@@ -225,10 +229,10 @@ def _test(test: dict[str, Any]) -> TestRow:
 
 def _note_row(line: dict[str, Any]) -> NoteRow:
     grade = SOURCE_GRADES.get(line["grade"] or "", "")
-    value = "" if line["value"] is None else number_text(line["value"])
     return NoteRow(
-        line["number"], line["symbol"], line["formula"], line["substitution"], value,
-        line["unit"], line["source"], grade,
+        line["number"], line["symbol"], line["formula"], line["substitution"],
+        value_text(line),
+        line["unit"].strip("-"), line["source"], grade,
     )  # fmt: skip
 
 

@@ -131,7 +131,7 @@ def surroundings_of(subject: Subject, half_along_mm: float) -> Surroundings | No
         bay=frames[0],
         bay_label=frames[1],
         obstacles=(*_from_geometry(subject, section), *_from_repairs(subject, section)),
-        source=f"geometry revision {subject.geometry}",
+        source=f"geometry {subject.geometry}",
     )
 
 
@@ -148,7 +148,8 @@ def _bay(
     if not before or not after:
         return None, ""
     (low, first), (high, second) = before[-1], after[0]
-    return (low, high), f"{first} to {second}"
+    name = section.frame_prefix
+    return (low, high), f"{name} {first} to {name} {second}"
 
 
 def _from_geometry(subject: Subject, section: SectionGeometry) -> list[Obstacle]:

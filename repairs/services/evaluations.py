@@ -54,6 +54,26 @@ from repairs.services.evaluation_inputs import (
 from repairs.services.evaluation_place import Subject
 
 SCHEMA_VERSION = 1
+OPTIONAL = (
+    "limit_flight_stress",
+    "ultimate_running_load",
+    "second_growth_law",
+    "clad_thickness",
+    "clad_life_factor",
+    "assumed_flaw",
+    "blend_depth",
+    "stress_life_policy",
+    "growth_policy",
+    "repeat_policy",
+    "detectable_length",
+    "validity_cycles",
+    "class_maximum",
+    "residual_pressure_factor",
+    "ultimate_factor",
+    "proof_factor",
+    "clearance_multiple",
+)
+"""Inputs a method uses where they are recorded, in the order they are shown."""
 OTHER_TYPE = (
     "{size} is a detectable size of another aircraft type; choose one of {type}."
 )
@@ -150,7 +170,8 @@ def input_lines(prepared: Prepared) -> list[InputLine]:
         return []
     inputs = Inputs(prepared.gathered.values)
     needed = method.required(inputs, prepared.result.use)
-    optional = [name for name in prepared.gathered.values if name not in needed]
+    found = prepared.gathered.values
+    optional = [name for name in OPTIONAL if name in found and name not in needed]
     return [_input_line(name, prepared.gathered) for name in (*needed, *optional)]
 
 
@@ -167,8 +188,10 @@ def _input_line(name: str, found: Gathered) -> InputLine:
         made = value.reference
         return InputLine(spec.title, "Walker", made.source, made.grade.value)
     if isinstance(value, FatiguePolicy):
-        made = value.factor
-        return InputLine(spec.title, f"{made.value:g}", made.source, made.grade.value)
+        factor = value.factor
+        return InputLine(
+            spec.title, f"{factor.value:g}", factor.source, factor.grade.value
+        )
     if isinstance(value, StressLifeFamily):
         factors = ", ".join(f"{curve.kt:g}" for curve in value.curves)
         first = value.curves[0]

@@ -88,7 +88,7 @@ def test_note_reads_line_by_line(world):
     assert "UNAPPROVED CALCULATION" in text
     assert "Longitudinal through crack in pressurised skin" in text
     assert "margin, residual" in text
-    assert "1.15 x (normal operating differential" in text
+    assert "1.15 × (normal operating differential" in text
     assert "F_b = √(1 + 0.52 l + 1.29 l² − 0.074 l³)" in text
     assert "USAF Damage Tolerant Design Handbook, Table 11.3.13" in text
     assert "memory]" in text
@@ -163,7 +163,7 @@ def test_a_detectable_size_nobody_recorded_is_refused(world):
         (293.583, "293.6"),
         (68.4746, "68.47"),
         (1.0215, "1.0215"),
-        (3.1158e-8, "3.116e-08"),
+        (3.1158e-8, "3.116·10⁻⁸"),
         (-0.25, "-0.25"),
     ],
 )
