@@ -8,8 +8,9 @@ from fleet.services.history import Writing
 
 def number_next(w: Writing, *, operator: Operator, kind: str) -> str:
     """The next number, as F-0231; two writers at once get different ones."""
-    RecordNumber.objects.get_or_create(operator=operator, kind=kind)
-    row = RecordNumber.objects.select_for_update().get(operator=operator, kind=kind)
+    row, _ = RecordNumber.objects.select_for_update().get_or_create(
+        operator=operator, kind=kind
+    )
     row.last += 1
     row.save(update_fields=["last"])
     return f"{kind}-{row.last:04d}"

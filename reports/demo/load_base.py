@@ -36,7 +36,7 @@ from reports.demo.people import (
     PEOPLE,
     SECOND_OPERATOR,
 )
-from reports.demo.timeline import Rank, Step
+from reports.demo.timeline import Rank, Step, quarter_after
 from reports.demo.usage import Logbook, UsageDay
 
 BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
@@ -172,7 +172,7 @@ def type_load(loaded: Loaded) -> dict[str, Variant]:
 def fleet_steps(
     loaded: Loaded, variants: dict[str, Variant], books: dict[int, Logbook]
 ) -> Iterator[Step]:
-    """Aircraft joining, their states and leaving, and the log month by month."""
+    """Aircraft joining, their states and leaving, and the log quarter by quarter."""
     for plan in FLEET:
         mark, joined = plan.registration, plan.joined_on
         add = partial(_aircraft_add, loaded, plan, variants[plan.variant])
@@ -182,8 +182,8 @@ def fleet_steps(
             change = partial(_state_set, loaded, plan, span)
             yield Step(span.begin, Rank.STATE, mark, change)
         days = books[plan.msn].days
-        for _, month in groupby(days, key=lambda day: (day.day.year, day.day.month)):
-            lines = list(month)
+        for _, quarter in groupby(days, key=lambda day: quarter_after(day.day)):
+            lines = list(quarter)
             log = partial(_usage_import, loaded, plan, lines)
             yield Step(lines[-1].day, Rank.USAGE, mark, log)
         if plan.left_on is not None:

@@ -5,16 +5,20 @@ from __future__ import annotations
 import datetime as dt
 from collections.abc import Iterator
 from functools import partial
+from itertools import groupby
 
 from fleet.due import Counters as Amounts
+from fleet.services.aircraft import stream_of
+from fleet.services.history import Writing
 from repairs.services.assessing import (
     DataCited,
     Reportability,
     finding_assess,
+    finding_assess_write,
     finding_close,
 )
 from repairs.services.disposition_entry import Basis, DispositionEntry
-from repairs.services.dispositions import disposition_decide
+from repairs.services.dispositions import disposition_write
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
@@ -25,7 +29,7 @@ from reports.demo.records import (
     DemoRepair,
     Scenario,
 )
-from reports.demo.timeline import Rank, Step
+from reports.demo.timeline import Rank, Step, quarter_after
 
 REPORTABLE_HOLES = 4
 REPORT = Reportability(True, "several cracked holes in one row of a joint")
@@ -35,12 +39,15 @@ NO_REPORT = Reportability(False, "one crack, found by its planned inspection")
 def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
     """Assessment and decision in one sitting, closing after the repair."""
     findings = {finding.key: finding for finding in scenario.findings}
-    for decision in scenario.dispositions:
-        finding = findings[decision.findings[0]]
-        assess = partial(_assess, loaded, decision)
-        yield Step(decision.decided_on, Rank.ASSESSMENT, decision.key, assess)
-        decide = partial(_decide, loaded, decision)
-        yield Step(decision.decided_on, Rank.DISPOSITION, decision.key, decide)
+    ordered = sorted(scenario.dispositions, key=lambda d: (d.msn, d.decided_on, d.key))
+
+    def papers(decision: DemoDisposition) -> tuple[int, dt.date]:
+        return decision.msn, quarter_after(decision.decided_on)
+
+    for (msn, _), group in groupby(ordered, key=papers):
+        decisions = list(group)
+        decide = partial(_decide_all, loaded, msn, decisions)
+        yield Step(decisions[-1].decided_on, Rank.DISPOSITION, str(msn), decide)
     decided = {key for d in scenario.dispositions for key in d.findings}
     for finding in scenario.findings:
         if finding.state == "assessed" and finding.key not in decided:
@@ -57,18 +64,28 @@ def limit_entries(phase: str, limits: tuple[DemoLimit, ...]) -> list[LimitEntry]
     return [LimitEntry(phase, limit.entered, limit.base) for limit in limits]
 
 
-def _assess(loaded: Loaded, decision: DemoDisposition, at: dt.datetime) -> None:
-    document = decision.document
-    finding_assess(
-        finding=loaded.rows[decision.findings[0]],
-        person=loaded.people["engineer"],
-        on=decision.decided_on,
-        data=DataCited(
-            document.kind, document.reference, document.revision, document.page
-        ),
+def _decide_all(
+    loaded: Loaded, msn: int, decisions: list[DemoDisposition], at: dt.datetime
+) -> None:
+    with Writing(
         actor=loaded.users["engineer"],
+        action="disposition_decide",
         at=at,
-    )
+        operator=loaded.operator,
+        stream=stream_of(loaded.aircraft[msn]),
+    ) as w:
+        for decision in decisions:
+            document = decision.document
+            finding_assess_write(
+                w,
+                finding=loaded.rows[decision.findings[0]],
+                person=loaded.people["engineer"],
+                on=decision.decided_on,
+                data=DataCited(
+                    document.kind, document.reference, document.revision, document.page
+                ),
+            )
+            loaded.rows[decision.key] = disposition_write(w, _entry(loaded, decision))
 
 
 def _assess_alone(loaded: Loaded, finding: DemoFinding, at: dt.datetime) -> None:
@@ -82,31 +99,27 @@ def _assess_alone(loaded: Loaded, finding: DemoFinding, at: dt.datetime) -> None
     )
 
 
-def _decide(loaded: Loaded, decision: DemoDisposition, at: dt.datetime) -> None:
+def _entry(loaded: Loaded, decision: DemoDisposition) -> DispositionEntry:
     document = decision.document
     limits = {limit.counter: limit.value for limit in decision.limits}
     days = limits.get("days")
     limit_on = decision.decided_on + dt.timedelta(days=days) if days else None
-    loaded.rows[decision.key] = disposition_decide(
-        entry=DispositionEntry(
-            aircraft=loaded.aircraft[decision.msn],
-            findings=[loaded.rows[key] for key in decision.findings],
-            kind=decision.kind,
-            basis=Basis(
-                document.kind, document.reference, document.page, document.revision
-            ),
-            reason=decision.statement,
-            decided_by=loaded.people[decision.decided_by],
-            decided_on=decision.decided_on,
-            at=amounts(decision.at),
-            limit=Amounts(cycles=limits.get("cycles")),
-            limit_on=limit_on,
-            scale="minor",
-            scale_reason="within the published manual",
-            new_requirement=_inspection(loaded, decision),
+    return DispositionEntry(
+        aircraft=loaded.aircraft[decision.msn],
+        findings=[loaded.rows[key] for key in decision.findings],
+        kind=decision.kind,
+        basis=Basis(
+            document.kind, document.reference, document.page, document.revision
         ),
-        actor=loaded.users["certifier"],
-        at=at,
+        reason=decision.statement,
+        decided_by=loaded.people[decision.decided_by],
+        decided_on=decision.decided_on,
+        at=amounts(decision.at),
+        limit=Amounts(cycles=limits.get("cycles")),
+        limit_on=limit_on,
+        scale="minor",
+        scale_reason="within the published manual",
+        new_requirement=_inspection(loaded, decision),
     )
 
 

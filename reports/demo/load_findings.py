@@ -5,6 +5,7 @@ from __future__ import annotations
 import datetime as dt
 from collections.abc import Iterator, Sequence
 from functools import partial
+from itertools import groupby
 
 from fleet.due import Standing
 from fleet.models import Aircraft
@@ -18,7 +19,7 @@ from reports.demo.fleet import BY_MSN, day_date, day_number
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
 from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario
-from reports.demo.timeline import Rank, Step
+from reports.demo.timeline import Rank, Step, quarter_after
 from reports.demo.usage import Logbook
 
 COUNTERS_SOURCE = "technical log page of the day"
@@ -33,15 +34,28 @@ def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
         yield Step(
             event.happened_on, Rank.EVENT, event.key, partial(_event, loaded, event)
         )
+    for (msn, _), found in _by_quarter(scenario.findings):
+        record = partial(_record_all, loaded, found, scenario.logbooks[msn])
+        yield Step(found[-1].found_on, Rank.FINDING, str(msn), record)
     answered = {key: r.released_on for r in scenario.repairs for key in r.findings}
     for finding in scenario.findings:
-        book = scenario.logbooks[finding.msn]
-        record = partial(_record, loaded, finding, book)
-        yield Step(finding.found_on, Rank.FINDING, finding.key, record)
         if finding.reworked:
             on = answered.get(finding.key, finding.found_on)
+            book = scenario.logbooks[finding.msn]
             measure = partial(_measure, loaded, finding, on, book)
             yield Step(on, Rank.MEASUREMENT, finding.key, measure)
+
+
+def _by_quarter(
+    findings: list[DemoFinding],
+) -> list[tuple[tuple[int, dt.date], list[DemoFinding]]]:
+    """Findings of one aircraft and quarter together, as their papers come in."""
+
+    def papers(finding: DemoFinding) -> tuple[int, dt.date]:
+        return finding.msn, quarter_after(finding.found_on)
+
+    ordered = sorted(findings, key=lambda f: (f.msn, f.found_on, f.key))
+    return [(key, list(group)) for key, group in groupby(ordered, key=papers)]
 
 
 def typed(dimensions: Sequence[Dimension]) -> list[Typed]:
@@ -76,12 +90,29 @@ def _event(loaded: Loaded, event: DemoEvent, at: dt.datetime) -> None:
     )
 
 
-def _record(
-    loaded: Loaded, finding: DemoFinding, book: Logbook, at: dt.datetime
+def _record_all(
+    loaded: Loaded, findings: list[DemoFinding], book: Logbook, at: dt.datetime
 ) -> None:
+    aircraft = loaded.aircraft[book.aircraft.msn]
+    with Writing(
+        actor=loaded.users["recorder"],
+        action="finding_record",
+        at=at,
+        operator=loaded.operator,
+        stream=stream_of(aircraft),
+    ) as w:
+        rows = findings_record_many(
+            w,
+            [_entry(loaded, finding, book) for finding in findings],
+            standing_of=partial(_standing, book),
+        )
+    loaded.rows |= {f.key: row for f, row in zip(findings, rows, strict=True)}
+
+
+def _entry(loaded: Loaded, finding: DemoFinding, book: Logbook) -> FindingEntry:
     clean_on = last_clean(finding, book)
     event = loaded.rows[finding.event] if finding.event else None
-    entry = FindingEntry(
+    return FindingEntry(
         aircraft=loaded.aircraft[finding.msn],
         place_entered=finding.location,
         damage_type=finding.damage_type,
@@ -107,15 +138,6 @@ def _record(
         event=event,
         description=finding.description,
     )
-    with Writing(
-        actor=loaded.users["recorder"],
-        action="finding_record",
-        at=at,
-        operator=loaded.operator,
-        stream=stream_of(entry.aircraft),
-    ) as w:
-        (row,) = findings_record_many(w, [entry], standing_of=partial(_standing, book))
-    loaded.rows[finding.key] = row
 
 
 def _standing(book: Logbook, aircraft: Aircraft, day: dt.date) -> Standing:

@@ -91,8 +91,6 @@ def _repair(
 ) -> None:
     document = repair.document
     limits = {limit.counter: limit.value for limit in repair.replace_by}
-    for key in repair.findings:
-        loaded.rows[key].refresh_from_db(fields=["state"])
     months = limits.get("months")
     left_mm, removed_mm = _blend(repair, findings)
     known = document.kind != "other"
