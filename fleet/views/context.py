@@ -6,8 +6,9 @@ from typing import Any
 
 from django.conf import settings
 from django.http import HttpRequest
-from django.urls import NoReverseMatch, reverse
+from django.urls import reverse
 
+from fleet.access import may_somewhere
 from fleet.clock import today
 
 # Page name, its word, and the beginning of the addresses that belong to it.
@@ -20,6 +21,12 @@ NAVIGATION = (
     ("due_list", "Due", "/due/"),
     ("part_list", "Safe-life", "/safe-life/"),
     ("density", "Density", "/density/"),
+)
+# The same for pages about the records as a whole, with the act they are open to.
+OFFICE = (
+    ("policies", "Policies", "/policies/", ""),
+    ("people", "People", "/people/", "people_change"),
+    ("history", "History", "/history/", "history_read"),
 )
 
 
@@ -37,7 +44,11 @@ def page(request: HttpRequest) -> dict[str, Any]:
         "navigation": [
             (reverse(name), word, _is_here(request.path, start))
             for name, word, start in NAVIGATION
-            if _exists(name)
+        ],
+        "office": [
+            (reverse(name), word, _is_here(request.path, start))
+            for name, word, start, action in OFFICE
+            if not action or may_somewhere(user, action)
         ],
     }
 
@@ -45,10 +56,3 @@ def page(request: HttpRequest) -> dict[str, Any]:
 def _is_here(path: str, start: str) -> bool:
     return path.startswith(start) if start else path == "/"
 
-
-def _exists(name: str) -> bool:
-    try:
-        reverse(name)
-    except NoReverseMatch:
-        return False
-    return True
