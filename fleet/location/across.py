@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from fleet.location.along import Work, did_you_mean, door_cutout
 from fleet.location.parts import TINY_MM, Plane, Stringer
 from fleet.location.place import LocationRefused
 from fleet.location.reading import Across, Offer
+from fleet.location.words import INTERNAL
 
 SIDE_MISSING = "{what} has no side. Did you mean {offers}?"
 SIDE_CONFLICT = "“{what}” names a line on the {on}, but also says {said}; keep one."
@@ -47,6 +48,7 @@ def reach_of(work: Work, map_mm: float) -> Reach:
     if reading.stringers:
         reach = _stringers(work, map_mm)
         _clock_agrees(work, reach)
+        _butt_agrees(work, reach, map_mm)
     elif reading.clock_degrees:
         reach = _clock(work)
     elif reading.butt_lines or reading.water_lines:
@@ -69,10 +71,7 @@ def _with_side(work: Work, reach: Reach) -> Reach:
     """The side that the text names must be the side of the lines it names."""
     section, said = work.section, work.reading.side
     if section.side:
-        return Reach(
-            reach.s1_mm, reach.s2_mm, section.side, reach.bl_mm, reach.wl_mm,
-            reach.off_skin,
-        )  # fmt: skip
+        return replace(reach, side=section.side)
     if said and reach.side and said != reach.side:
         message = SIDE_CONFLICT.format(
             what=work.reading.text.strip(),
@@ -220,6 +219,23 @@ def _clock_agrees(work: Work, reach: Reach) -> None:
     if apart > CLOCK_AGREES_DEG + 1e-9:
         message = DISAGREE.format(
             one="the clock", other="the stringer", apart=f"{apart:.0f}°"
+        )
+        raise LocationRefused("E_MISMATCH", message)
+
+
+def _butt_agrees(work: Work, reach: Reach, map_mm: float) -> None:
+    """A butt line beside a stringer must be that of the skin there."""
+    section, points = work.section, work.reading.butt_lines
+    internal = work.reading.element in INTERNAL
+    if not points or internal or reach.s1_mm is None or section.axis_wl_mm is None:
+        return
+    skin = section.bl_of(map_mm, reach.s1_mm)
+    apart = abs(_butt_line(work, points[0], map_mm) - skin)
+    if apart > work.mm_in(OFF_SKIN_IN):
+        message = DISAGREE.format(
+            one="the butt line",
+            other="the stringer",
+            apart=f"{work.show(apart)} {work.unit}",
         )
         raise LocationRefused("E_MISMATCH", message)
 

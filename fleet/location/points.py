@@ -11,7 +11,7 @@ from dataclasses import replace
 from decimal import Decimal
 
 from fleet.location.cursor import Cursor
-from fleet.location.reading import Across, Along, Offset
+from fleet.location.reading import Across, Along, Offer, Offset, Problem
 from fleet.location.words import (
     BUTT_WORDS,
     FRAME_WORDS,
@@ -26,8 +26,15 @@ LETTERS = frozenset("abcdefghijklmnpqrstuvwxyz")
 """What may hang on a station or frame label; O is a nought."""
 SIDE_LETTERS = frozenset({"l", "r", "lh", "rh", "lt", "rt"})
 BUTT_PHRASE = frozenset({"left", "right", "butt"})
+REFERENCES = frozenset(
+    STATION_WORDS.keys() | FRAME_WORDS | RIB_WORDS | STRINGER_WORDS
+    | BUTT_WORDS.keys() | WATER_WORDS
+)  # fmt: skip
 Point = Along | Across
 
+WHICH_WAY = "“{text}” does not say which way. Did you mean {offers}?"
+TWO_POINTS = "“{first}” and “{second}” are two locations. Join a range with “to”."
+AMBIGUOUS = "“{text}” may be read in more than one way. Did you mean {offers}?"
 NO_CLOCK = "“{text} o'clock” is no hour of the clock. Use 12, 1 … 11, or 7:30."
 
 
@@ -156,7 +163,8 @@ def clock_point(c: Cursor) -> float | None:
 
 def door_named(c: Cursor) -> bool:
     """Whether a cargo door is named, as "aft cargo door"."""
-    return c.is_("cargo", ahead=1) and c.is_("door", ahead=2)
+    which = c.is_("fwd", "forward", "aft", "main", "upper", "lower", "bulk")
+    return which and c.is_("cargo", ahead=1) and c.is_("door", ahead=2)
 
 
 def door_name(c: Cursor) -> str:
@@ -184,6 +192,55 @@ def point_text(point: Point) -> str:
     if point.kind == "stringer":
         return f"S-{point.number:f}{point.side}"
     return f"{point.side}{point.kind.upper()} {point.number:f}"
+
+
+def reference_follows(c: Cursor, ahead: int = 0) -> bool:
+    """Whether a word of a station, frame, rib, stringer or line is ahead."""
+    token = c.peek(ahead)
+    return token is not None and token.text in REFERENCES
+
+
+def sign_after(c: Cursor, point: Point) -> None:
+    """ "S-7R + 4 in": a sign has no meaning across, so the words are asked for."""
+    start = c.at
+    if not c.is_("+") or not c.kind("num", 1):
+        return
+    c.at += 1
+    length = c.length()
+    if length is not None:
+        shown = f"{length.number:f} {length.unit}".strip()
+        ways = ("below", "above")
+        offers = [Offer(w, f"{shown} {w} {point_text(point)}") for w in ways]
+        text = c.text[c.tokens[start].start : c.tokens[c.at - 1].end]
+        given = " or ".join(offer.text for offer in offers)
+        c.ask("E_REL_NO_REF", WHICH_WAY.format(text=text, offers=given), *offers)
+
+
+def listed(c: Cursor, start: int) -> None:
+    """ "STA 500, 520": a second number after a comma is a second location."""
+    if not c.is_(",") or not c.kind("num", 1):
+        return
+    second = c.tokens[c.at + 1]
+    if second.tail or not (c.peek(2) is None or reference_follows(c, 2)):
+        return
+    first = c.text[c.tokens[start].start : c.tokens[c.at - 1].end]
+    c.ask("E_TWO_POINTS", TWO_POINTS.format(first=first, second=second.text))
+
+
+def hyphen_unclear(first: Point, last: Point) -> Problem:
+    """The question of "640-12": minus, or the end of a range cut short."""
+    a, b = first.number, last.number
+    word = "FR" if isinstance(first, Along) and first.kind == "frame" else "STA"
+    offers = [Offer("minus", f"{word} {a - b:f}", (float(a - b),))]
+    digits, short = f"{a:f}".partition(".")[0], f"{b:f}"
+    if len(short) < len(digits) and short.isdigit():
+        end = Decimal(digits[: -len(short)] + short)
+        if end > a:
+            text = f"{word} {a:f} to {end:f}"
+            offers.append(Offer("range", text, (float(a), float(end))))
+    given = " or ".join(offer.text for offer in offers)
+    message = AMBIGUOUS.format(text=f"{a:f}-{b:f}", offers=given)
+    return Problem("E_AMBIG_MINUS", message, tuple(offers))
 
 
 def with_offset(point: Point, offset: Offset | None) -> Point:

@@ -14,6 +14,7 @@ from typing import Any
 from fleet.location.cursor import Cursor
 from fleet.location.points import (
     BUTT_PHRASE,
+    TWO_POINTS,
     Point,
     butt_point,
     butt_words,
@@ -21,9 +22,13 @@ from fleet.location.points import (
     door_name,
     door_named,
     frame_point,
+    hyphen_unclear,
+    listed,
     order_of,
     point_text,
+    reference_follows,
     rib_point,
+    sign_after,
     station_point,
     stringer_follows,
     stringer_point,
@@ -32,9 +37,7 @@ from fleet.location.points import (
 )
 from fleet.location.reading import (
     Across,
-    Along,
     Door,
-    Offer,
     Offset,
     Problem,
     Reading,
@@ -45,7 +48,6 @@ from fleet.location.words import (
     FRAME_WORDS,
     RANGE_WORDS,
     RIB_WORDS,
-    SECTION_WORDS,
     SIDE_WORDS,
     SPARS,
     STATION_WORDS,
@@ -54,14 +56,14 @@ from fleet.location.words import (
     SURFACES,
     WATER_WORDS,
     element_of,
+    section_named,
 )
 
 EMPTY = "Nothing was given. Write a location such as STA 640+10 S-7R."
 VALUE_MISSING = "“{word}” has no number after it. Write it as {word} 640."
 NO_ALONG = "“{text}” does not say where along the section. Add a station or frame."
-AMBIGUOUS = "“{text}” may be read in more than one way. Did you mean {offers}?"
 NO_REFERENCE = "“{text}” does not say of what. Add a frame, station, stringer or door."
-TWO_POINTS = "“{first}” and “{second}” are two locations. Join a range with “to”."
+HOW_FAR = "“{text} of” does not say how far. Write it as 12 in {text} of ..."
 
 
 def read(text: str) -> Reading:
@@ -91,12 +93,11 @@ class _Reader(Cursor):
             if self.at == before:
                 self.at += 1
         self._pending_lost()
-        section = self._section()
         element, label = element_of(self.low)
         parts: dict[str, Any] = self.found | self.said
         reading = Reading(
             text=self.text,
-            section=section,
+            section=self._section(),
             side=self._one_side(),
             element=element,
             element_label=label,
@@ -107,16 +108,10 @@ class _Reader(Cursor):
         return replace(reading, problems=tuple(self.problems))
 
     def _section(self) -> str:
-        match = SECTION_WORDS.search(self.low)
-        if match is None:
-            keys = [p.key for p in self.found.get("stations", ())]
-            if keys:
-                return str(keys[0])
-            return "wing" if "ribs" in self.found else ""
-        kind = next(k for k, v in match.groupdict().items() if v and k != "number")
-        if kind == "nacelle":
-            return f"nacelle {match['number']}"
-        return "horizontal tail" if kind == "tail" else kind
+        """The section named, or else the one that the notation belongs to."""
+        stations = self.found.get("stations")
+        key = str(stations[0].key) if stations else "wing" * ("ribs" in self.found)
+        return section_named(self.low) or key
 
     def _one_side(self) -> str:
         sides = set(self.sides)
@@ -170,6 +165,8 @@ class _Reader(Cursor):
             self._side(word)
         elif word in DIRECTIONS and self._direction_of_spar():
             self._spar_side(word)
+        elif word in DIRECTIONS and self.is_("of", ahead=1):
+            self._length_missing()
 
     def _side(self, word: str) -> None:
         if not self.is_("hand", ahead=1) or word in ("left", "right"):
@@ -207,7 +204,7 @@ class _Reader(Cursor):
         of = self.is_("of", "from")
         if of:
             self.at += 1
-        if not (of or self._reference_follows()):
+        if not (of or reference_follows(self) or self._sentence_ends()):
             self.at = start + 1
             return
         if not length.unit:
@@ -217,13 +214,8 @@ class _Reader(Cursor):
         self.pending = Offset(length, 0, direction)
         self.pending_text = self.text[first.start : last.end]
 
-    def _reference_follows(self) -> bool:
-        token = self.peek()
-        words = (
-            STATION_WORDS.keys() | FRAME_WORDS | RIB_WORDS | STRINGER_WORDS
-            | BUTT_WORDS.keys() | WATER_WORDS
-        )  # fmt: skip
-        return token is not None and token.text in words
+    def _sentence_ends(self) -> bool:
+        return self.peek() is None or self.is_(",", ";", ".", ")")
 
     def _pending_lost(self) -> None:
         if self.pending is not None:
@@ -233,6 +225,13 @@ class _Reader(Cursor):
     def _take_pending(self) -> Offset | None:
         pending, self.pending = self.pending, None
         return pending
+
+    def _length_missing(self) -> None:
+        """ "aft of FR 20" with no length before it."""
+        if reference_follows(self, 2) or self.is_("door", ahead=2):
+            direction = self.tokens[self.at].text
+            self.ask("E_REL_NO_REF", HOW_FAR.format(text=direction))
+        self.at += 2
 
     # -- ranges ---------------------------------------------------------------
 
@@ -258,6 +257,10 @@ class _Reader(Cursor):
         if len(self.problems) > asked:
             return
         self._record(name, (first,) if last is None else (first, last), start)
+        if kind == "stringer":
+            sign_after(self, last or first)
+        elif kind in ("station", "frame"):
+            listed(self, start)
 
     def _range_end(
         self,
@@ -282,7 +285,7 @@ class _Reader(Cursor):
                 if order_of(last) >= order_of(first) or first.number == last.number:
                     return last
                 if joiner.text == "-" and not keyed and kind in ("station", "frame"):
-                    self._ambiguous(first, last)
+                    self.problems.append(hyphen_unclear(first, last))
                     return None
                 if keyed or joiner.text in ("to", "thru", "through", "-"):
                     return last
@@ -300,26 +303,12 @@ class _Reader(Cursor):
         if length is not None and token is not None and token.text in DIRECTIONS:
             self.at += 1
             self.skip("of")
-            if self._reference_follows():
+            if reference_follows(self):
                 if not length.unit:
                     self.codes.append("W_UNIT_ASSUMED")
                 return Offset(length, 0, DIRECTIONS[token.text])
         self.at = back
         return None
-
-    def _ambiguous(self, first: Point, last: Point) -> None:
-        a, b = first.number, last.number
-        word = "FR" if isinstance(first, Along) and first.kind == "frame" else "STA"
-        offers = [Offer("minus", f"{word} {a - b:f}", (float(a - b),))]
-        digits, short = f"{a:f}".partition(".")[0], f"{b:f}"
-        if len(short) < len(digits) and short.isdigit():
-            end = Decimal(digits[: -len(short)] + short)
-            if end > a:
-                text = f"{word} {a:f} to {end:f}"
-                offers.append(Offer("range", text, (float(a), float(end))))
-        shown = " or ".join(offer.text for offer in offers)
-        text = f"{a:f}-{b:f}"
-        self.ask("E_AMBIG_MINUS", AMBIGUOUS.format(text=text, offers=shown), *offers)
 
     def _record(self, name: str, points: tuple[Point, ...], start: int) -> None:
         before = self.found.get(name)

@@ -18,7 +18,7 @@ _TOKEN = re.compile(
     r"|(?P<clock>o\s?'?\s?clock\b)"
     r"|(?P<side>\b[lr]/h\b)"
     r"|(?P<num>\d+(?:[.,]\d+)*|\.\d+(?:[.,]\d+)*)"
-    r"(?P<tail>(?!o\s?'?\s?clock|(?:fr|wl|bs|sta|str|rbl|lbl)\d)[a-z][a-z0-9]*)?"
+    r"(?P<tail>(?!o\s?'?\s?clock|(?:fr|wl|bs|sta|str|rbl|lbl|s)\d|s-\d)[a-z][a-z0-9]*)?"
     r"|(?P<word>[a-z]+)\.?"
     r"|(?P<sym>''|\S)"
 )

@@ -99,6 +99,17 @@ INTERNAL = {
 KEEL_BEAM = "KEEL BEAM"
 
 
+def section_named(text: str) -> str:
+    """The section a lower-case text names: "wing", "nacelle 2"; '' if none."""
+    match = SECTION_WORDS.search(text)
+    if match is None:
+        return ""
+    if match["nacelle"]:
+        return f"nacelle {match['number']}"
+    kinds = {"tail": "horizontal tail"}
+    return kinds.get(match.lastgroup or "", match.lastgroup or "")
+
+
 def element_of(text: str) -> tuple[str, str]:
     """The structural item named in a lower-case text and its label; ('', '') if none.
 

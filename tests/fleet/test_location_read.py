@@ -291,6 +291,29 @@ def test_what_the_text_leaves_open_is_named(text: str, code: str) -> None:
     assert codes(read(text))[0] == code
 
 
+@pytest.mark.parametrize(
+    ("text", "code", "part"),
+    [
+        ("STA 640 S-7R + 4 in", "E_REL_NO_REF", "4 in below S-7R or 4 in above S-7R"),
+        ("STA 640 S-7R, 6 mm aft", "E_REL_NO_REF", "does not say of what"),
+        ("half an inch aft of FR 20", "E_REL_NO_REF", "“aft of” does not say how far"),
+        ("STA 500, 520 S-9L", "E_TWO_POINTS", "“STA 500” and “520”"),
+    ],
+)
+def test_nothing_that_was_written_is_dropped_in_silence(
+    text: str, code: str, part: str
+) -> None:
+    problem = read(text).problems[0]
+    assert problem.code == code
+    assert part in problem.message
+
+
+def test_letters_that_begin_a_stringer_are_no_plug() -> None:
+    reading = read("STA 640S-9L")
+    assert labels(reading.stations) == ["640"]
+    assert lines(reading.stringers) == [(9, "L")]
+
+
 def test_a_place_written_twice_is_one_place() -> None:
     reading = read("dent at STA 640 S-9L; repaired STA 640 S-9L")
     assert reading.problems == ()
