@@ -49,6 +49,14 @@ def aircraft_visible(user: User, *, text: str = "") -> ScopedQuerySet:
     return rows.distinct()
 
 
+def aircraft_own(user: User) -> ScopedQuerySet:
+    """Aircraft that the user's operators have today; others' usage is theirs."""
+    rows = aircraft_visible(user)
+    if user.sees_all_operators:
+        return rows
+    return rows.filter(operator__in=user.operator_ids())
+
+
 def is_own(user: User, aircraft: Aircraft) -> bool:
     """Whether one of the user's operators has the aircraft today."""
     return user.sees_all_operators or aircraft.operator_id in user.operator_ids()
