@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from fleet.location.along import Work, did_you_mean, door_cutout
 from fleet.location.parts import TINY_MM, Plane, Stringer
 from fleet.location.place import LocationRefused
+from fleet.location.reach import Reach, arc_reach, reach_between
 from fleet.location.reading import Across, Offer
 from fleet.location.words import INTERNAL
 
@@ -17,28 +18,13 @@ STR_RANGE = "{what} is not on this {section} ({low} to {high}).{offers}"
 BL_RANGE = "BL {read} is outside this {section} here (0 to {high})."
 WL_RANGE = "WL {read} is outside this {section} here ({low} to {high})."
 NO_LINES = "{what} is not a notation of this {section}; use {words}."
-HALF_ROUND = "{what} is as far over the crown as over the keel; name a line between."
 DISAGREE = "{one} and {other} are {apart} apart; correct one."
 OUTSIDE = "BL {bl} and WL {wl} meet {apart} outside the skin; correct one."
 SPAR_UNKNOWN = "This {section} has no {name} spar; it has {offers}."
 
 OFF_SKIN_IN = 2.0
 CLOCK_AGREES_DEG = 15.0
-CENTRELINE_MM = 0.04
-"""Nearer to the crown or keel than can be written, a point is on it."""
 _SIDES = {"L": "left", "R": "right"}
-
-
-@dataclass(frozen=True)
-class Reach:
-    """Across: s1..s2 (None: not said), side, and lines as read."""
-
-    s1_mm: float | None = None
-    s2_mm: float | None = None
-    side: str = ""
-    bl_mm: float | None = None
-    wl_mm: float | None = None
-    off_skin: bool = False
 
 
 def reach_of(work: Work, map_mm: float) -> Reach:
@@ -48,7 +34,7 @@ def reach_of(work: Work, map_mm: float) -> Reach:
     if reading.stringers:
         reach = _stringers(work, map_mm)
         _clock_agrees(work, reach)
-        _butt_agrees(work, reach, map_mm)
+        _lines_agree(work, reach, map_mm)
     elif reading.clock_degrees:
         reach = _clock(work)
     elif reading.butt_lines or reading.water_lines:
@@ -87,10 +73,7 @@ def _with_side(work: Work, reach: Reach) -> Reach:
 
 def _stringers(work: Work, map_mm: float) -> Reach:
     points = _sided(work.reading.stringers)
-    values = [_stringer_s(work, point, map_mm) for point in points]
-    if len(values) == 1:
-        return _reach(work, values[0], values[0])
-    return _between(work, values[0], values[1])
+    return reach_between(work, [_stringer_s(work, point, map_mm) for point in points])
 
 
 def _sided(points: tuple[Across, ...]) -> list[Across]:
@@ -162,37 +145,6 @@ def _side_missing(what: str, *texts: str) -> LocationRefused:
     return LocationRefused("E_SIDE_MISSING", message, offers)
 
 
-def _between(work: Work, one: float, other: float) -> Reach:
-    """The shorter way round between two lines; which way is seen from the result."""
-    section = work.section
-    if section.wrap_mm is None:
-        return _reach(work, min(one, other), max(one, other))
-    way = section.wrapped(other - one)
-    if abs(abs(way) - section.wrap_mm / 2.0) < TINY_MM:
-        what = f"“{work.reading.text.strip()}”"
-        raise LocationRefused("E_TWO_POINTS", HALF_ROUND.format(what=what))
-    start = section.wrapped(one if way >= 0.0 else other)
-    return _reach(work, start, start + abs(way))
-
-
-def _reach(work: Work, s1_mm: float, s2_mm: float) -> Reach:
-    """Reach of an arc, with its side: L, R, LR over the centreline, '' on it."""
-    section = work.section
-    if section.wrap_mm is None:
-        side = "" if section.skins != ("left", "right") else "L" if s1_mm < 0 else "R"
-        return Reach(s1_mm, s2_mm, side)
-    half = section.wrap_mm / 2.0
-    start = section.wrapped(s1_mm)
-    if s1_mm == s2_mm and min(abs(start), half - abs(start)) < CENTRELINE_MM:
-        start = 0.0 if abs(start) < CENTRELINE_MM else -half
-        return Reach(start, start, "")
-    end = start + (s2_mm - s1_mm)
-    if (start < -TINY_MM < TINY_MM < end) or end > half + TINY_MM:
-        work.codes.append("W_CROSSES_CENTRELINE")
-        return Reach(start, end, "LR")
-    return Reach(start, end, "L" if start + end < 0.0 else "R")
-
-
 # -- clock --------------------------------------------------------------------
 
 
@@ -203,9 +155,7 @@ def _clock(work: Work) -> Reach:
         section.wrapped(math.radians(d) * section.reference_mm)
         for d in work.reading.clock_degrees[:2]
     ]
-    if len(values) == 1:
-        return _reach(work, values[0], values[0])
-    return _between(work, values[0], values[1])
+    return reach_between(work, values)
 
 
 def _clock_agrees(work: Work, reach: Reach) -> None:
@@ -218,26 +168,36 @@ def _clock_agrees(work: Work, reach: Reach) -> None:
     apart = math.degrees(abs(section.wrapped(clock - middle)) / section.reference_mm)
     if apart > CLOCK_AGREES_DEG + 1e-9:
         message = DISAGREE.format(
-            one="the clock", other="the stringer", apart=f"{apart:.0f}°"
+            one="The clock", other="the stringer", apart=f"{apart:.0f}°"
         )
         raise LocationRefused("E_MISMATCH", message)
 
 
-def _butt_agrees(work: Work, reach: Reach, map_mm: float) -> None:
-    """A butt line beside a stringer must be that of the skin there."""
-    section, points = work.section, work.reading.butt_lines
-    internal = work.reading.element in INTERNAL
-    if not points or internal or reach.s1_mm is None or section.axis_wl_mm is None:
+def _lines_agree(work: Work, reach: Reach, map_mm: float) -> None:
+    """Butt and water lines beside a stringer must be those of the skin there."""
+    section, reading = work.section, work.reading
+    if reading.element in INTERNAL or reach.s1_mm is None:
         return
-    skin = section.bl_of(map_mm, reach.s1_mm)
-    apart = abs(_butt_line(work, points[0], map_mm) - skin)
-    if apart > work.mm_in(OFF_SKIN_IN):
-        message = DISAGREE.format(
-            one="the butt line",
-            other="the stringer",
-            apart=f"{work.show(apart)} {work.unit}",
-        )
-        raise LocationRefused("E_MISMATCH", message)
+    skin_wl = section.wl_of(map_mm, reach.s1_mm)
+    if skin_wl is None:
+        return
+    skin_bl = section.bl_of(map_mm, reach.s1_mm)
+    apart = {
+        "butt line": [
+            _butt_line(work, p, map_mm) - skin_bl for p in reading.butt_lines
+        ],
+        "water line": [
+            _water_line(work, p, map_mm) - skin_wl for p in reading.water_lines
+        ],
+    }
+    for name, values in apart.items():
+        nearest = min((abs(value) for value in values), default=0.0)
+        if nearest > work.mm_in(OFF_SKIN_IN):
+            shown = f"{work.show(nearest)} {work.unit}"
+            message = DISAGREE.format(
+                one=f"The {name}", other="the stringer", apart=shown
+            )
+            raise LocationRefused("E_MISMATCH", message)
 
 
 def _shell_only(work: Work, what: str) -> None:
@@ -331,7 +291,7 @@ def _from_water_line(work: Work, wls: list[float], map_mm: float, side: str) -> 
         math.acos(max(-1.0, min(1.0, (wl - section.axis_wl_mm) / radius))) for wl in wls
     ]
     values = sorted(sign * angle * section.reference_mm for angle in angles)
-    return _reach(work, values[0], values[-1])
+    return arc_reach(work, values[0], values[-1])
 
 
 def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reach:
@@ -349,7 +309,7 @@ def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reac
     if off < -work.mm_in(OFF_SKIN_IN):
         return Reach(None, None, side, bl, wl, off_skin=True)
     s_mm = math.atan2(bl, up) * section.reference_mm
-    return _reach(work, s_mm, s_mm)
+    return arc_reach(work, s_mm, s_mm)
 
 
 # -- spars --------------------------------------------------------------------
@@ -371,7 +331,7 @@ def _spar(work: Work, map_mm: float) -> Reach:
             raise _side_missing(plane.label.lower(), "LH", "RH")
         if work.reading.side == "L":
             low, high = -high, -low
-    return _reach(work, low, high)
+    return arc_reach(work, low, high)
 
 
 def _spar_reach(

@@ -63,6 +63,7 @@ def refused(
         ("STA 640 RBL 50 WL 190", "E_MISMATCH"),
         ("FR 39 STA 900 S-8L", "E_MISMATCH"),
         ("STA 640 S-9L to RBL 20", "E_MISMATCH"),
+        ("STA 640 S-9L WL 100", "E_MISMATCH"),
         ("STA 900 6 o'clock S-11R", "E_MISMATCH"),
         ("STA 640 S-44L", "E_STR_RANGE"),
         ("LH wing WS 470 70 in aft of rear spar", "E_STR_RANGE"),
