@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from fleet.location.across import Reach, reach_of
+from fleet.location.across import reach_of
 from fleet.location.along import (
     Work,
     did_you_mean,
@@ -15,6 +15,7 @@ from fleet.location.along import (
 )
 from fleet.location.parts import TINY_MM, Panel, Plane
 from fleet.location.place import LocationRefused, Place, Position
+from fleet.location.reach import Reach
 from fleet.location.reading import Offer, Problem, Reading
 from fleet.location.sections import Section
 from fleet.location.typegeometry import TypeGeometry, Zone
