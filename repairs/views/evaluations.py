@@ -88,6 +88,8 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
     context = {
         "shown": evaluation_shown(row, method_versions()),
         "may_make": may(request.user, ACTION, row.operator_id),
+        "may_sign": may(request.user, "approval_sign", row.operator_id),
+        "may_raise": may(request.user, "requirement_raise", row.operator_id),
     }
     return render(request, "repairs/evaluation.html", context)
 

@@ -51,7 +51,7 @@ def cracked(world: World):
         damage_type="crack",
         typed=CRACK,
         element="skin",
-        place_entered="STA 630, S-8R+5 in",
+        place_entered="STA 630, 5 in below S-8R",
     )
 
 

@@ -45,7 +45,7 @@ def finding(world) -> Finding:
         damage_type="crack",
         typed=CRACK,
         element="skin",
-        place_entered="STA 630, S-8R+5 in",
+        place_entered="STA 630, 5 in below S-8R",
     )
 
 
@@ -159,6 +159,8 @@ def test_posting_makes_it_and_goes_to_its_page(client, world, finding):
     assert row.repeat_cycles is not None
     text = client.get(answer["Location"]).content.decode()
     assert "Repeat interval" in text
+    assert f"?evaluation={row.pk}" in text
+    assert address("evaluation_sign", row.pk) in text
 
 
 def test_a_use_nobody_offers_is_refused_beside_the_field(client, world, finding):

@@ -72,7 +72,7 @@ def cracked(world: World, **changes: object) -> Finding:
         "damage_type": "crack",
         "typed": CRACK,
         "element": "skin",
-        "place_entered": "STA 630, S-8R+5 in",
+        "place_entered": "STA 630, 5 in below S-8R",
     }
     return found(world, **(entry | changes))
 
