@@ -118,11 +118,7 @@ def _evaluations(user: User) -> QuerySet[Evaluation]:
 
     def signed(meaning: Meaning) -> Exists:
         return Exists(
-            Approval.objects.filter(
-                evaluation=OuterRef("pk"),
-                meaning=meaning,
-                content_digest=OuterRef("content_digest"),
-            )
+            Approval.objects.filter(evaluation=OuterRef("pk"), meaning=meaning)
         )
 
     return (
