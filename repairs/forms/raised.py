@@ -37,7 +37,7 @@ class RaisedForm(forms.Form):
 
     def clean(self) -> dict[str, Any]:
         data = super().clean() or {}
-        said = [data.get(name) for name in ("title", "area", "criteria")]
+        said = [data.get(name) for name in ("title", "criteria")]
         limits = [data.get("threshold"), data.get("repeat")]
         if not any((*said, *limits)):
             return data

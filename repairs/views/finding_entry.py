@@ -180,7 +180,9 @@ def _ready(page: EntryPage) -> bool:
         text = REFUSED.format(code=refused.code, message=refused.message)
         page.form.add_error("place_entered", text)
         whole = False
-    if any(not answer for _, answer in page.candidates):
+    key = page.form.cleaned_data.get("client_key")
+    asked = [a for one, a in page.candidates if one.finding.client_key != key]
+    if not all(asked):
         page.form.add_error(None, ANSWER_FIRST)
         whole = False
     return whole
