@@ -12,11 +12,13 @@ from reports.demo.load_base import (
     type_load,
 )
 from reports.demo.load_decisions import decision_steps
+from reports.demo.load_evaluations import evaluations_load
 from reports.demo.load_findings import finding_steps
 from reports.demo.load_parts import part_numbers_load, part_steps
 from reports.demo.load_repairs import repair_steps
 from reports.demo.people import PASSWORD
 from reports.demo.records import Scenario
+from reports.demo.standing import marker_set
 from reports.demo.timeline import steps_run
 
 
@@ -35,4 +37,6 @@ def demo_load(scenario: Scenario, *, say: Callable[[str], None]) -> Loaded:
         *repair_steps(loaded, scenario),
     ]
     steps_run(steps, say)
+    evaluations_load(loaded, say)
+    marker_set(loaded, scenario.seed)
     return loaded

@@ -5,9 +5,27 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from fleet.models import Aircraft, AircraftType, Operator, Policy, User
-from reports.demo.load_base import OPERATOR_CODES
+from fleet.services.people import policy_set
+from reports.demo.fleet import DEMO_TODAY
+from reports.demo.load_base import OPERATOR_CODES, Loaded
+from reports.demo.load_evaluations import EVALUATED_AT
 
 SEED_KEY = "demo_seed"
+
+
+def marker_set(loaded: Loaded, seed: int) -> None:
+    """The last thing loaded says that the demo is whole, and with which seed."""
+    policy_set(
+        key=SEED_KEY,
+        value=seed,
+        unit="count",
+        source="drawn by this program",
+        grade="adopted",
+        operator=loaded.operator,
+        effective_from=DEMO_TODAY,
+        actor=loaded.users["administrator"],
+        at=EVALUATED_AT,
+    )
 
 
 @dataclass(frozen=True, slots=True)
