@@ -25,6 +25,7 @@ from repairs.selectors.neighbours import Near
 from repairs.services.disposition_entry import KEEPS_DAMAGE, Basis, Reviewed
 
 REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
+WHY = "Say why, in a few words."
 WRONG_PASSWORD = "This is not your password; nothing was signed."
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
 SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
@@ -83,17 +84,20 @@ class DispositionForm(CountersForm, DataForm):
             self.fields[f"near_{number}"] = forms.ChoiceField(
                 label=_near_label(one), choices=REVIEW, required=False
             )
+            self.fields[f"why_{number}"] = forms.CharField(label="why", required=False)
 
     def clean_decided_on(self) -> Any:
         return not_in_future(self.cleaned_data["decided_on"], self.today)
 
     def clean(self) -> dict[str, Any]:
         data = super().clean() or {}
-        if data.get("kind") in KEEPS_DAMAGE:
-            for number, one in enumerate(self.near):
-                if not data.get(f"near_{number}"):
-                    text = REVIEW_FIRST.format(item=one.item)
-                    self.add_error(f"near_{number}", text)
+        for number, one in enumerate(self.near):
+            answer = data.get(f"near_{number}")
+            if not answer and data.get("kind") in KEEPS_DAMAGE:
+                text = REVIEW_FIRST.format(item=one.item)
+                self.add_error(f"near_{number}", text)
+            if answer and not data.get(f"why_{number}"):
+                self.add_error(f"why_{number}", WHY)
         return data
 
     def basis(self) -> Basis:
@@ -112,13 +116,14 @@ class DispositionForm(CountersForm, DataForm):
         )
 
     def reviewed(self) -> list[Reviewed]:
+        data = self.cleaned_data
         answers = [
-            (one, self.cleaned_data.get(f"near_{number}"))
+            (one, data.get(f"near_{number}"), data.get(f"why_{number}"))
             for number, one in enumerate(self.near)
         ]
         return [
-            Reviewed(one.item, one.distance_mm, answer == "yes")
-            for one, answer in answers
+            Reviewed(one.item, one.distance_mm, answer == "yes", why)
+            for one, answer, why in answers
             if answer
         ]
 

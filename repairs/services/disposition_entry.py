@@ -87,7 +87,7 @@ class Reviewed:
     item: Finding | Repair
     gap_mm: float
     interacts: bool
-    reason: str = ""
+    reason: str
 
 
 @dataclass(frozen=True, slots=True)
