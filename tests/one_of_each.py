@@ -95,7 +95,7 @@ def one_of_each_make() -> OneOfEach:
         damage_type="crack",
         typed=CRACK,
         element="skin",
-        place_entered="STA 630, S-8R+5 in",
+        place_entered="STA 630, 5 in below S-8R",
     )
     requirement = _requirement(world)
     return OneOfEach(

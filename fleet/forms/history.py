@@ -14,7 +14,7 @@ class HistoryFilter(forms.Form):
     """All empty shows everything."""
 
     action = forms.ChoiceField(required=False, label="what")
-    who = forms.CharField(required=False)
+    who = forms.CharField(required=False, label="who")
     since = DayField(required=False, label="from")
     until = DayField(required=False, label="to")
     stream = forms.CharField(

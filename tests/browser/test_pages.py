@@ -19,9 +19,12 @@ SCREENS = {
 TOO_WIDE = """() => {
   const wide = document.documentElement.clientWidth;
   if (document.documentElement.scrollWidth <= wide) return [];
+  const scrolls = e => e && (getComputedStyle(e).overflowX !== 'visible' ||
+    scrolls(e.parentElement));
   return [...document.querySelectorAll('body *')]
     .filter(e => e.getBoundingClientRect().right > wide + 1)
-    .slice(0, 5).map(e => e.outerHTML.slice(0, 120));
+    .filter(e => !scrolls(e.parentElement))
+    .slice(0, 4).map(e => e.outerHTML.slice(0, 160));
 }"""
 AXE_RUN = """() => axe.run(document, {resultTypes: ['violations']}).then(r =>
   r.violations.map(v => `${v.id}: ${v.help} ` +

@@ -16,13 +16,15 @@ ROLES = ("engineer", "planner", "administrator", "auditor", "signatory")
 def main() -> None:
     django.setup()
     from django.core.management import call_command
+    from django.db import transaction
     from django.urls import reverse
 
     from tests.one_of_each import one_of_each_make
     from tests.site_pages import FORM, PAGES, READ
 
     call_command("migrate", verbosity=0)
-    each = one_of_each_make()
+    with transaction.atomic():
+        each = one_of_each_make()
     visits = []
     for name, page in PAGES.items():
         if page.kind in (FORM, READ) and page.looks:
