@@ -25,7 +25,7 @@ class Step:
 def next_step(finding: Finding, problems: list[str], user: User) -> Step | None:
     """The one step that comes next; None when it is not the reader's to take."""
     name, words, action, key = _next(finding, problems)
-    if not name or not may(user, action, finding.operator_id):
+    if not name or not may(user, action, finding.aircraft.operator_id):
         return None
     address = reverse(name, args=[] if name == "repair_new" else [finding.pk])
     if name == "repair_new":
@@ -58,7 +58,7 @@ def further_steps(finding: Finding, user: User) -> list[Step]:
     return [
         Step(reverse(name, args=[finding.pk]), words)
         for name, words, action, possible in offered
-        if possible and may(user, action, finding.operator_id)
+        if possible and may(user, action, finding.aircraft.operator_id)
     ]
 
 

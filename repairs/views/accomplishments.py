@@ -138,7 +138,7 @@ def sisters_new(request: Request, pk: int) -> HttpResponse:
     """Ask every sister aircraft to look at the location of a finding."""
     rows = Finding.objects.select_related("aircraft__variant", "operator")
     finding = visible_or_404(rows, request.user, pk=pk)
-    require(request.user, "requirement_raise", finding.operator_id)
+    require(request.user, "requirement_raise", finding.aircraft.operator_id)
     sisters = sisters_of(finding)
     place = finding.place_text or finding.place_entered
     initial = {

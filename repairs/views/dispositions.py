@@ -40,7 +40,7 @@ PASSED_ON = (
 def disposition_new(request: Request, pk: int) -> HttpResponse:
     """A decision on a finding, and on others of its aircraft if it answers them."""
     row = visible_or_404(finding_whole(request.user), request.user, pk=pk)
-    require(request.user, "disposition_decide", row.operator_id)
+    require(request.user, "disposition_decide", row.aircraft.operator_id)
     near = neighbours(row, user=request.user).here
     form = DispositionForm(
         request.POST or None,

@@ -55,7 +55,7 @@ def evaluation_new_repair(request: Request, pk: int) -> HttpResponse:
 
 
 def _new(request: Request, subject: Subject) -> HttpResponse:
-    require(request.user, ACTION, subject.operator_id)
+    require(request.user, ACTION, subject.aircraft.operator_id)
     sizes = detectable_sizes(subject.aircraft.variant.aircraft_type)
     first = {"use": default_use(subject).value}
     form = EvaluationForm(request.POST or None, sizes=sizes, initial=first)

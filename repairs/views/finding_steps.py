@@ -223,7 +223,7 @@ def finding_answer(request: Request, pk: int) -> HttpResponse:
     """The answer to one question, sent from the finding's page."""
     rows = FindingQuestion.objects.select_related("finding__aircraft")
     question = visible_or_404(rows, request.user, pk=pk)
-    require(request.user, "finding_assess", question.finding.operator_id)
+    require(request.user, "finding_assess", question.finding.aircraft.operator_id)
     form = AnswerForm(request.POST)
 
     def save() -> object:
@@ -247,7 +247,7 @@ def photos_of(form: Form) -> list[Photo]:
 
 def _row(request: Request, pk: int, action: str) -> Finding:
     row = visible_or_404(finding_whole(request.user), request.user, pk=pk)
-    require(request.user, action, row.operator_id)
+    require(request.user, action, row.aircraft.operator_id)
     return row
 
 

@@ -72,6 +72,6 @@ def finding(request: Request, pk: int) -> HttpResponse:
         "history": history_of(row),
         "next": next_step(row, problems, request.user),
         "further": further_steps(row, request.user),
-        "may_answer": may(request.user, "finding_assess", row.operator_id),
+        "may_answer": may(request.user, "finding_assess", row.aircraft.operator_id),
     }
     return render(request, "repairs/finding.html", context)

@@ -59,7 +59,7 @@ def _add(request: Request, row: Repair, form: PhotoForm) -> object:
 
 def _row(request: Request, pk: int) -> Repair:
     row = visible_or_404(repair_whole(), request.user, pk=pk)
-    require(request.user, "repair_record", row.operator_id)
+    require(request.user, "repair_record", row.aircraft.operator_id)
     return row
 
 

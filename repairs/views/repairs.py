@@ -79,8 +79,8 @@ def repair(request: Request, pk: int) -> HttpResponse:
         "evaluations": [(one, state_of(one)) for one in evaluations_current(row)],
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
         "approvals": approvals_verified(row),
-        "may_sign": may(request.user, "approval_sign", row.operator_id),
-        "may_evaluate": may(request.user, "evaluation_make", row.operator_id),
+        "may_sign": may(request.user, "approval_sign", row.aircraft.operator_id),
+        "may_evaluate": may(request.user, "evaluation_make", row.aircraft.operator_id),
         "history": history_of(row),
     }
     return render(request, "repairs/repair.html", context)
