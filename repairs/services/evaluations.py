@@ -142,14 +142,14 @@ def evaluation_prepare(*, subject: Subject, choice: Choice, as_of: dt.date) -> P
     if size is not None and size.aircraft_type_id != made.pk:
         raise ValidationError(OTHER_TYPE.format(size=size, type=made))
     method, cracked = _method(subject)
-    found = gather(subject, choice, as_of=as_of, cracked_hole=cracked)
-    inputs = Inputs(found.values)
-    if method is None:
+    if method is None:  # nothing asks for an input, so none is gathered
         result = Result(
             "", 0, "", choice.use, Outcome.NOT_COVERED, warnings=(NO_METHOD,)
         )
-    else:
-        result = evaluate(method.id, choice.use, inputs)
+        return Prepared(None, result, {}, Gathered())
+    found = gather(subject, choice, as_of=as_of, cracked_hole=cracked)
+    inputs = Inputs(found.values)
+    result = evaluate(method.id, choice.use, inputs)
     return Prepared(method, result, inputs.as_data(), found)
 
 
