@@ -13,6 +13,7 @@ from repairs.views import (
     finding_entry,
     finding_steps,
     findings,
+    life_limits,
     maps,
     repair_steps,
     repairs,
@@ -104,6 +105,11 @@ urlpatterns = [
     ),
     path(
         "aircraft/<int:pk>/repairs/", repairs.repair_status_page, name="repair_status"
+    ),
+    path(
+        "life-limits/<int:pk>/again/",
+        life_limits.life_limit_again,
+        name="life_limit_again",
     ),
     path("attachments/<int:pk>/", attachments.attachment, name="attachment"),
     path(

@@ -41,6 +41,9 @@ from repairs.selectors.due_items import (
 from reports.due_rows import DueRow, export_row, sort_key
 
 BUCKETS = (Bucket.OVERDUE, Bucket.TO_30, Bucket.TO_60, Bucket.TO_90, Bucket.LATER)
+SHORT = dict(
+    zip(BUCKETS, ("overdue", "to 30 d", "to 60 d", "to 90 d", "later"), strict=True)
+)
 FIXED = BUCKETS[:4]
 RETURN_TO_SERVICE = "{state}: due before return to service"
 FORECAST = (
@@ -91,7 +94,12 @@ class DueList:
     @property
     def counts(self) -> list[tuple[str, int]]:
         """The tally in the words of the page, without a bucket beyond the horizon."""
-        return [(name.value, n) for name, n in self.tally.items() if n or name in FIXED]
+        counted = self.tally
+        return [
+            (words, counted[x])
+            for x, words in SHORT.items()
+            if counted[x] or x in FIXED
+        ]
 
     @property
     def behind(self) -> list[AircraftStanding]:
@@ -157,7 +165,9 @@ def _lives(
     if user is not None:
         parts = parts.visible_to(user)
     if query.registration:
-        parts = parts.filter(installations__aircraft__in=standings).distinct()
+        there = Q(installations__removed_on__isnull=True)
+        there |= Q(installations__removed_on__gt=query.as_of)
+        parts = parts.filter(there, installations__aircraft__in=standings).distinct()
     if query.known_at is not None:
         parts = parts.filter(entered_at__lte=query.known_at)
     lives = part_lives(

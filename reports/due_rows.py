@@ -12,6 +12,7 @@ from fleet.due import (
     COUNTED,
     Bucket,
     Counter,
+    Counters,
     Due,
     DueState,
     DueStatus,
@@ -71,7 +72,8 @@ class DueRow:
     def last_done(self) -> str:
         if self.item.last_on is None:
             return ""
-        at = counters_write(self.item.last_at)
+        last = self.item.last_at
+        at = counters_write(Counters(last.minutes, last.cycles))
         return f"{self.item.last_on}, {at}" if at else str(self.item.last_on)
 
     @property

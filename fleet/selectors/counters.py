@@ -31,6 +31,7 @@ from django.db.models.functions import Coalesce
 
 from fleet.due import COUNTED, Counter, Counters, Standing
 from fleet.models import Aircraft, AircraftSpan, AircraftState, UsageRecord
+from fleet.units import hours_write
 
 RATE_DAYS = 90
 HIGH_RATE_DAYS = (30, 365)
@@ -38,8 +39,8 @@ WINDOWS = (RATE_DAYS, *HIGH_RATE_DAYS)
 FLYING = (AircraftState.IN_SERVICE, AircraftState.IN_MAINTENANCE)
 
 HOURS_MISSING = (
-    "at least {count} {flights} without hours; hours reconstructed with {longest} "
-    "minutes each, the longest recorded in twelve months"
+    "at least {count} {flights} without hours; hours reconstructed with {longest} FH "
+    "each, the longest flight or day recorded in twelve months"
 )
 HOURS_UNKNOWN = (
     "at least {count} {flights} without hours and no timed flight in twelve months; "
@@ -80,12 +81,11 @@ class AircraftStanding:
         count = self.flights_without_hours
         if not count:
             return ""
-        text = HOURS_UNKNOWN if self.longest_minutes is None else HOURS_MISSING
-        return text.format(
-            count=count,
-            flights="flight" if count == 1 else "flights",
-            longest=self.longest_minutes,
-        )
+        flights = "flight" if count == 1 else "flights"
+        if self.longest_minutes is None:
+            return HOURS_UNKNOWN.format(count=count, flights=flights)
+        longest = hours_write(self.longest_minutes)
+        return HOURS_MISSING.format(count=count, flights=flights, longest=longest)
 
 
 def usage_current(*, known_at: datetime | None = None) -> QuerySet[UsageRecord]:

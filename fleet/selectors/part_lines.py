@@ -30,7 +30,8 @@ BASES = {
 
 @dataclass(frozen=True)
 class LimitRow:
-    """One life limit in words: limit, accumulated, remaining, consumed."""
+    """One life limit in words; `unverified` is its key while it awaits its second
+    keying."""
 
     limit: str
     source: str
@@ -39,7 +40,7 @@ class LimitRow:
     remaining: str
     consumed: str
     carrier_ends: str
-    unverified: bool
+    unverified: int | None
 
 
 @dataclass(frozen=True)
@@ -94,7 +95,7 @@ class PartLine:
             remaining="" if remaining is None else amount_write(counter, remaining),
             consumed="" if percent is None else f"{percent} %",
             carrier_ends="" if carrier is None else amount_write(counter, carrier),
-            unverified=line.limit.state == KeyedState.KEYED,
+            unverified=line.limit.pk if line.limit.state == KeyedState.KEYED else None,
         )
 
     @property

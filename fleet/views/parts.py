@@ -56,6 +56,7 @@ def part(request: Request, pk: int) -> HttpResponse:
         "life": life,
         "card": card_of(life),
         "history": history_of(row),
+        "may_key_again": may(request.user, "requirement_rekey", row.operator_id),
         "may_install": allowed and row.state == PartState.IN_STORE,
         "may_remove": allowed and row.state == PartState.INSTALLED,
     }

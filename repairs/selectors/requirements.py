@@ -141,6 +141,12 @@ def origin_of(requirement: InspectionRequirement) -> tuple[str, int] | None:
     return None
 
 
+def limits_of(requirement: InspectionRequirement) -> list[RequirementLimit]:
+    """Threshold, repeat, replace: in the order in which they come due."""
+    order = ("threshold", "repeat", "replace")
+    return sorted(requirement.limits.all(), key=lambda row: order.index(row.phase))
+
+
 def marks_of(requirement: InspectionRequirement) -> list[str]:
     """What must be said beside it, in the words of the due list."""
     subjects = list(requirement.subjects.all())
@@ -173,7 +179,7 @@ def subject_lines(
         )
         .order_by("aircraft__registration", "part__serial", "pk")
     )
-    limits = list(requirement.limits.all())
+    limits = limits_of(requirement)
     standings = _standings(subjects, as_of)
     return [
         SubjectLine(

@@ -35,6 +35,7 @@ from repairs.models import (
 )
 from repairs.selectors.requirements import (
     coverage_of,
+    limits_of,
     marks_of,
     origin_of,
     requirement_of,
@@ -65,7 +66,7 @@ def requirement_list(request: Request) -> HttpResponse:
     context = {
         "form": form,
         "page": page,
-        "rows": [(row, marks_of(row)) for row in page],
+        "rows": [(row, limits_of(row), marks_of(row)) for row in page],
         "query": query_without_page(request),
         "may_raise": may_somewhere(request.user, "requirement_raise"),
     }
@@ -81,7 +82,7 @@ def requirement(request: Request, pk: int) -> HttpResponse:
     context = {
         "requirement": row,
         "origin": origin_of(row),
-        "limits": row.limits.all(),
+        "limits": limits_of(row),
         "lines": lines,
         "coverage": coverage_of(row, lines),
         "marks": marks_of(row),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from datetime import date
 
 from django import forms
@@ -23,13 +24,18 @@ class DueFilter(forms.Form):
     zone = forms.CharField(required=False)
     as_of = DayField(required=False, label="as of")
 
-    def query(self, today: date) -> DueQuery:
+    def __init__(self, asked: Mapping[str, str], *, today: date) -> None:
+        """An empty address asks for the next 90 days from today, and says so."""
+        super().__init__({"within": WITHIN, "as_of": today} | dict(asked))
+        self.today = today
+
+    def query(self) -> DueQuery:
         """What is asked; a filter that cannot be read falls back and says so."""
         self.is_valid()
         asked = self.cleaned_data
         within = asked.get("within")
         return DueQuery(
-            as_of=asked.get("as_of") or today,
+            as_of=asked.get("as_of") or self.today,
             within_days=WITHIN if within is None else within,
             registration=asked.get("aircraft", "").strip(),
             kind=asked.get("kind", ""),

@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date
+from fractions import Fraction
 
 from django.db.models import QuerySet
 
-from fleet.due import COUNTED, COUNTER_WORDS
+from fleet.due import COUNTED, COUNTER_WORDS, Counter
 from fleet.models import Aircraft, UsageRecord, User
 from fleet.selectors.counters import (
     RATE_DAYS,
@@ -16,6 +17,7 @@ from fleet.selectors.counters import (
     AircraftStanding,
     usage_current,
 )
+from fleet.units import hours_write
 from repairs.selectors.agreement import Disagreement, disagreements
 from reports.due_list import DueList, DueQuery, due_list
 from reports.due_rows import DueRow
@@ -63,15 +65,19 @@ def rate_rows(standing: AircraftStanding) -> list[RateRow]:
     return [
         RateRow(
             COUNTER_WORDS[counter][0],
-            [
-                f"{float(rates[window][counter]):.2f}"
-                if counter in rates.get(window, {})
-                else "none"
-                for window in windows
-            ],
+            [_rate(counter, rates.get(window, {}).get(counter)) for window in windows],
         )
         for counter in COUNTED
     ]
+
+
+def _rate(counter: Counter, rate: Fraction | None) -> str:
+    """Hours as h:mm, the rest with two decimals."""
+    if rate is None:
+        return "none"
+    return (
+        hours_write(int(rate)) if counter is Counter.MINUTES else f"{float(rate):.2f}"
+    )
 
 
 def consequences(user: User, aircraft: Aircraft, as_of: date) -> Consequences:

@@ -18,8 +18,8 @@ from reports.forms.due import DueFilter
 @require_safe
 def due_list_page(request: Request) -> HttpResponse:
     """What is due within the days asked for, overdue first; also as CSV."""
-    form = DueFilter(request.GET)
-    query = form.query(today())
+    form = DueFilter(request.GET.dict(), today=today())
+    query = form.query()
     found = due_list(query, user=request.user)
     if request.GET.get("format") == "csv":
         rows = due_csv_rows(found, printed_at=now())

@@ -48,7 +48,7 @@ def usage(request: Request, pk: int) -> HttpResponse:
     pages = Paginator(usage_rows(aircraft), PER_PAGE)
     context = {
         "aircraft": aircraft,
-        "standing": standing,
+        "flown": standing,
         "windows": sorted(WINDOWS),
         "rates": rate_rows(standing),
         "page": pages.get_page(request.GET.get("page")),

@@ -104,7 +104,7 @@ class TestRows:
         )
         record(requirement, day(2), 25_012)
         row = only()
-        assert row.last_done == f"{day(2)}, 20,010:00 FH · 25,012 FC · 25,012 landings"
+        assert row.last_done == f"{day(2)}, 20,010:00 FH · 25,012 FC"
         assert row.cells[0].due == "25,072 FC"
         assert row.state is DueState.OVERDUE
 
