@@ -65,6 +65,16 @@ class Tally:
         shared = np.bincount(flat, minlength=self.singles.size)
         return self.singles + shared.reshape(self.lattice.shape)
 
+    @cached_property
+    def middles(self) -> Counts:
+        """Events per cell, each once, at the middle one of the cells it touched.
+
+        What tests of place are made on: a hailstorm over fifty cells is one event.
+        """
+        flat = np.array([cells[len(cells) // 2] for cells in self.events], np.int64)
+        shared = np.bincount(flat, minlength=self.singles.size)
+        return self.singles + shared.reshape(self.lattice.shape)
+
 
 def tally(
     lattice: Lattice,
@@ -238,12 +248,6 @@ class Density:
                 self.counts[known], self.exposure[known]
             )
         return rate
-
-    @property
-    def overall(self) -> float | None:
-        """Rate over all exposed cells; None without exposure."""
-        total = float(self.exposure.sum())
-        return self.counted * self.denominator.per / total if total > 0 else None
 
     @cached_property
     def few(self) -> Flags:

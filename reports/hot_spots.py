@@ -130,23 +130,18 @@ def hot_spots(
     The list ends with the first window that does not stand out, so that a reader sees
     where the line was drawn; it is empty when nothing was counted.
 
-    Under the null hypothesis each event falls on a cell by its share of the exposure.
-    An event that touched several cells (hail) is thrown as one piece, so that one bad
-    day is not mistaken for a place.
+    Events are counted, each once: under the null hypothesis an event falls on a cell by
+    its share of the exposure, and one bad day is not mistaken for a place.
     """
-    counts = np.where(density.exposed, density.counts, 0)
+    counts = np.where(density.exposed, seen.middles, 0)
     total = int(counts.sum())
     if total == 0:
         return []
     share = density.exposure / density.exposure.sum()
-    throws = random_maps(density, seen, seed=seed, replicas=replicas)
-    wraps = density.lattice.wraps
-    best = np.concatenate(
-        [best_ratios(chunk, share, wraps=wraps) for chunk in _chunks(throws)]
-    )
+    best = best_of_random(total, share, density.lattice.wraps, seed, replicas)
     found: list[HotSpot] = []
     taken = np.zeros(share.shape, dtype=bool)
-    for window, llr in _ranked(counts, share, wraps=wraps):
+    for window, llr in _ranked(counts, share, wraps=density.lattice.wraps):
         cells = window.cells(share.shape)
         if (taken & cells).any():
             continue
@@ -159,51 +154,20 @@ def hot_spots(
     return found
 
 
-def _chunks(maps: Counts) -> Iterator[Counts]:
-    for start in range(0, len(maps), _CHUNK):
-        yield maps[start : start + _CHUNK]
-
-
-def random_maps(density: Density, seen: Tally, *, seed: int, replicas: int) -> Counts:
-    """Maps under the null hypothesis, shape (replicas, frames, stringers)."""
+def best_of_random(
+    total: int, share: Floats, wraps: bool, seed: int, replicas: int
+) -> Floats:
+    """The highest scan ratio of each of so many random maps of ``total`` events."""
     generator = np.random.default_rng(seed)
-    shape = density.lattice.shape
-    exposed = density.exposed.ravel()
-    share = (density.exposure / density.exposure.sum()).ravel()
-    pieces = [cells[exposed[cells]] for cells in seen.events]
-    single = int(seen.singles.ravel()[exposed].sum())
-    single += sum(len(cells) == 1 for cells in pieces)
-    maps = generator.multinomial(single, share, size=replicas).reshape(replicas, *shape)
-    for cells in pieces:
-        if len(cells) > 1:
-            _throw(maps, cells, density, share, generator)
-    return maps
-
-
-def _throw(
-    maps: Counts,
-    cells: NDArray[np.int64],
-    density: Density,
-    share: Floats,
-    generator: np.random.Generator,
-) -> None:
-    """Add one event's pattern to every map, moved to a cell drawn by exposure.
-
-    It keeps its shape: shifted back at the ends of the section, carried round a shell.
-    What falls on a cell without exposure is not seen there.
-    """
-    frames, stringers = density.lattice.shape
-    along, around = np.divmod(cells, stringers)
-    drawn = generator.choice(len(share), size=len(maps), p=share)
-    to_along, to_around = np.divmod(drawn, stringers)
-    step = np.clip(to_along - along[0], -along.min(), frames - 1 - along.max())
-    turn = to_around - around[0]
-    if not density.lattice.wraps:
-        turn = np.clip(turn, -around.min(), stringers - 1 - around.max())
-    new_along = along + step[:, None]
-    new_around = (around + turn[:, None]) % stringers
-    seen = density.exposed[new_along, new_around].astype(np.int64)
-    np.add.at(maps, (np.arange(len(maps))[:, None], new_along, new_around), seen)
+    maps = generator.multinomial(total, share.ravel(), size=replicas)
+    maps = maps.reshape(replicas, *share.shape)
+    starts = range(0, replicas, _CHUNK)
+    return np.concatenate(
+        [
+            best_ratios(maps[start : start + _CHUNK], share, wraps=wraps)
+            for start in starts
+        ]
+    )
 
 
 def _window_sums(
@@ -226,14 +190,15 @@ def _window_sums(
 
 
 def best_ratios(maps: Counts, share: Floats, *, wraps: bool) -> Floats:
-    """The highest scan ratio of each map (replicas, frames, stringers).
+    """The highest scan ratio of each map (replicas, frames, stringers) of one total.
 
     The ratio is rewritten as F(c) - c ln(s / (1 - s)) - C ln(1 - s) with s the window's
     share and F(c) = c ln c + (C - c) ln(C - c) - C ln C from a table, so that no
     logarithm is taken per map. A window with no share or the whole of it gives zero.
     """
-    totals = maps.sum(axis=(1, 2))
-    starts, table = _ratio_table(totals)
+    total = int(maps[0].sum())
+    n = np.arange(total + 1)
+    table = xlogy(n, n) + xlogy(total - n, total - n) - xlogy(total, total)
     best = np.zeros(len(maps))
     all_counts = _window_sums(maps.astype(np.int32), wraps=wraps)
     all_shares = _window_sums(share, wraps=wraps)
@@ -241,23 +206,12 @@ def best_ratios(maps: Counts, share: Floats, *, wraps: bool) -> Floats:
         some = np.where((s > 1e-12) & (s < 1 - 1e-12), s, 0.5)
         odds = np.where(some == s, np.log(some / (1 - some)), 0.0)
         rest = np.where(some == s, np.log1p(-some), 0.0)
-        ratio = np.take(table, c + starts)
+        ratio = np.take(table, c)
         ratio -= c * odds
-        ratio -= totals[:, None, None] * rest
-        ratio *= c > totals[:, None, None] * s
+        ratio -= total * rest
+        ratio *= c > total * s
         np.maximum(best, ratio.max(axis=(1, 2)), out=best)
     return best
-
-
-def _ratio_table(totals: Counts) -> tuple[NDArray[np.int32], Floats]:
-    """F(c) for every total among the maps, and where each map's part begins."""
-    different, which = np.unique(totals, return_inverse=True)
-    parts = []
-    for total in different.tolist():
-        c = np.arange(total + 1)
-        parts.append(xlogy(c, c) + xlogy(total - c, total - c) - xlogy(total, total))
-    starts = np.concatenate([[0], np.cumsum([len(part) for part in parts])[:-1]])
-    return starts[which].astype(np.int32)[:, None, None], np.concatenate(parts)
 
 
 def _ranked(

@@ -12,7 +12,7 @@ from fleet.models import Aircraft, AircraftType, GeometryRevision, Section, User
 from fleet.selectors.aircraft import aircraft_visible
 from repairs.models import Cause, DamageType
 from reports.density import CYCLES, DENOMINATORS
-from reports.selectors.density import DensityFilter
+from reports.selectors.exposure import DensityFilter
 
 RATES = [
     (

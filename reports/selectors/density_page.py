@@ -14,9 +14,15 @@ from fleet.drawing.sheet import Sheet
 from fleet.models import User
 from fleet.selectors.structure import geometry_of
 from repairs.models import Cause, DamageType
-from reports.figures.density_map import DensityFigure, density_svg, swatch
-from reports.selectors.density import DensityData, DensityFilter, density_data
+from reports.figures.density_map import (
+    DensityFigure,
+    density_svg,
+    rate_words,
+    swatch,
+)
+from reports.selectors.density import DensityData, density_data
 from reports.selectors.density_spots import SpotRow, spot_rows
+from reports.selectors.exposure import DensityFilter
 
 
 @dataclass(frozen=True)
@@ -115,6 +121,13 @@ class DensityPage:
             f"{data.beside.outside_data} found outside the aircraft's data"
             f"{''.join(self._more_beside())}.",
         ]
+        if data.fleet_rate:
+            rate, low, high = (rate_words(part) for part in data.fleet_rate)
+            lines.insert(
+                2,
+                f"Over the whole section, by events: {rate} (95 % {low} to {high}) "
+                f"{data.asked.denominator.rate_unit}.",
+            )
         if data.flights_without_hours and unit == "FH":
             lines.append(
                 f"At least {data.flights_without_hours} flights without hours are in "
@@ -132,10 +145,6 @@ class DensityPage:
         ):
             if count:
                 yield f", {count} {words}"
-
-    @property
-    def overall(self) -> float | None:
-        return self.data.density.overall
 
     @property
     def rows(self) -> list[CellRow]:
@@ -205,7 +214,8 @@ def density_json(page: DensityPage) -> dict[str, Any]:
         ],
         "exposure": {"unit": asked.denominator.unit, "total": round(data.amount, 3)},
         "rate_unit": density.denominator.rate_unit,
-        "rate": density.overall,
+        "fleet_rate": data.fleet_rate and data.fleet_rate[0],
+        "fleet_rate_95": data.fleet_rate and data.fleet_rate[1:],
         "count": {
             "events": data.events,
             "cells": density.counted,

@@ -175,18 +175,13 @@ def test_no_exposure_is_not_none_found():
 
 def test_without_any_exposure_there_is_no_rate_at_all():
     nothing = density([[2, 0]], [[0.0, 0.0]])
-    assert nothing.overall is None
+    assert np.isnan(nothing.rate).all()
     assert np.isnan(nothing.smoothed).all()
 
 
 def test_small_counts_are_marked_and_zero_is_not_one_of_them():
     four = density([[0, 1, 4, 5, 4]], [[9.0, 9.0, 9.0, 9.0, 0.0]])
     assert four.few.tolist() == [[False, True, True, False, False]]
-
-
-def test_the_overall_rate_is_counts_over_exposure():
-    some = density([[4, 6]], [[1000.0, 3000.0]], YEARS)
-    assert some.overall == pytest.approx(10 / 4000)
 
 
 def test_classes_follow_the_drawn_cells_and_not_the_masked_ones():

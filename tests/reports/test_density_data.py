@@ -14,7 +14,8 @@ from fleet.models import UsageRecord
 from fleet.services.history import Writing
 from reports.density import CYCLES, HOURS, YEARS
 from reports.forms.density import DensityForm
-from reports.selectors.density import DensityFilter, density_data
+from reports.selectors.density import density_data
+from reports.selectors.exposure import DensityFilter
 from tests.factories import BEGAN, NOW, TODAY, operator_make, user_make
 from tests.placed_rows import INCH, event_make, finding_make, fleet_make
 
@@ -137,7 +138,7 @@ def test_an_aircraft_without_usage_has_no_exposure_and_its_findings_are_beside(
 ):
     data = data_of(fleet, engineer, to_on=BEGAN - DAY)
     assert data.in_rates == []
-    assert data.density.overall is None
+    assert data.fleet_rate is None
     assert not data.density.exposed.any()
 
 
@@ -182,6 +183,10 @@ def test_a_hailstorm_counts_once_in_each_cell_and_once_for_the_fleet(fleet, engi
     assert data.density.counts[cell(data, "FR 29", "S-7R")] == 1
     assert data.events == 2
     assert data.damages == 31
+    whole = data.density.exposure.sum() / 1000
+    assert data.fleet_rate == pytest.approx(
+        (2 / whole, 0.2422 / whole, 7.2247 / whole), rel=1e-3
+    )
 
 
 def test_a_long_finding_counts_in_every_cell_it_touches(fleet, engineer):
