@@ -31,6 +31,7 @@ class Page:
     `action` is the act its roles follow from; empty opens it to every role. `keys` are
     the parts of its address. `former` is what a former operator of the aircraft gets.
     `query` shows the page at work in a browser; what is no page has no `looks`.
+    `sends` is the act behind a form on a page that every role may read.
     """
 
     kind: str = READ
@@ -40,10 +41,22 @@ class Page:
     shared: bool = False
     query: str = ""
     looks: bool = True
+    sends: str = ""
 
     @property
     def roles(self) -> frozenset[str]:
-        return ROLES_FOR[self.action] if self.action else frozenset(Role.values)
+        return self.roles_for("get")
+
+    def roles_for(self, method: str) -> frozenset[str]:
+        action = (method == "post" and self.sends) or self.action
+        return ROLES_FOR[action] if action else frozenset(Role.values)
+
+    @property
+    def methods(self) -> list[str]:
+        """How the address is used; as a page first."""
+        if self.kind == SEND:
+            return ["post"]
+        return ["get", "post"] if self.kind == FORM or self.sends else ["get"]
 
 
 def key(name: str) -> Keys:
@@ -56,6 +69,11 @@ def aircraft(each: OneOfEach) -> dict[str, Any]:
 
 def subject(each: OneOfEach) -> dict[str, Any]:
     return {"pk": each.requirement.pk, "subject_pk": each.subject.pk}
+
+
+def flown(each: OneOfEach) -> dict[str, Any]:
+    row = each.world.aircraft.usage.earliest("day")
+    return {"pk": row.aircraft_id, "row_pk": row.pk}
 
 
 def of_type(**more: str) -> Keys:
@@ -107,6 +125,23 @@ PAGES: dict[str, Page] = {
     "evaluation_new_repair": Page(FORM, "evaluation_make", key("repair")),
     "evaluation": Page(keys=key("evaluation")),
     "evaluation_again": Page(SEND, "evaluation_make", key("evaluation")),
+    "disposition_new": Page(FORM, "disposition_decide", key("finding")),
+    "disposition": Page(keys=key("disposition")),
+    "repair_list": Page(),
+    "repair_new": Page(FORM, "repair_record"),
+    "repair": Page(keys=key("repair")),
+    "repair_photographs": Page(FORM, "repair_record", key("repair")),
+    "repair_remove": Page(FORM, "repair_record", key("repair")),
+    "repair_status": Page(keys=aircraft, former=200),
+    "disposition_sign": Page(FORM, "approval_sign", key("disposition")),
+    "repair_sign": Page(FORM, "approval_sign", key("repair")),
+    "evaluation_sign": Page(FORM, "approval_sign", key("evaluation")),
+    "usage": Page(keys=aircraft, sends="usage_record"),
+    "usage_correct": Page(FORM, "usage_record", flown),
+    "part_list": Page(),
+    "part": Page(keys=key("part")),
+    "part_install": Page(FORM, "part_change", key("part")),
+    "part_remove": Page(FORM, "part_change", key("part")),
 }
 
 

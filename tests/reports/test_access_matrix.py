@@ -12,7 +12,7 @@ from django.urls import get_resolver, reverse
 
 from fleet.models import HistoryHead, User
 from tests.one_of_each import OneOfEach, one_of_each_make
-from tests.site_pages import FORM, PAGES, PUBLIC, READ, SEND, names, nothing
+from tests.site_pages import PAGES, PUBLIC, names, nothing
 
 pytestmark = pytest.mark.django_db
 
@@ -70,14 +70,10 @@ def ask(each, clients):
     return asked
 
 
-def methods(name: str) -> list[str]:
-    """How the address is used; a page first."""
-    return {READ: ["get"], FORM: ["get", "post"], SEND: ["post"]}[PAGES[name].kind]
-
-
 CLOSED = [name for name, page in PAGES.items() if page.kind != PUBLIC]
 KEYED = [name for name in CLOSED if PAGES[name].keys is not nothing]
 OWN = [name for name in KEYED if not PAGES[name].shared]
+WRITTEN_ON = [name for name in CLOSED if PAGES[name].methods == ["get", "post"]]
 UNKEYED = [name for name in CLOSED if name not in KEYED and name != "sign_out"]
 
 
@@ -87,7 +83,7 @@ def test_every_address_is_explained():
 
 @pytest.mark.parametrize("name", CLOSED)
 def test_nobody_gets_in_without_signing_in(name, each, ask):
-    for method in methods(name):
+    for method in PAGES[name].methods:
         status, _ = ask(name, None, method)
         assert status == 302, method
 
@@ -96,9 +92,9 @@ def test_nobody_gets_in_without_signing_in(name, each, ask):
 def test_each_role_gets_what_its_acts_allow(name, each, ask):
     page = PAGES[name]
     for role, user in each.world.users.items():
-        for method in methods(name):
+        for method in PAGES[name].methods:
             status, _ = ask(name, user, method)
-            if role in page.roles:
+            if role in page.roles_for(method):
                 assert status in ((200,) if method == "get" else (200, 302)), role
             else:
                 assert status == 403, (role, method)
@@ -106,8 +102,8 @@ def test_each_role_gets_what_its_acts_allow(name, each, ask):
 
 @pytest.mark.parametrize("name", OWN)
 def test_an_outsider_does_not_find_the_record(name, each, ask):
-    for role in PAGES[name].roles:
-        for method in methods(name):
+    for method in PAGES[name].methods:
+        for role in PAGES[name].roles_for(method):
             status, _ = ask(name, each.outsiders[role], method)
             assert status == 404, (role, method)
 
@@ -122,7 +118,7 @@ def test_an_outsiders_page_says_nothing_of_our_aircraft(name, each, ask):
 @pytest.mark.parametrize("name", OWN)
 def test_a_former_operator_reads_its_own_period_only(name, each, ask):
     for role in PAGES[name].roles:
-        status, text = ask(name, each.former[role], methods(name)[0])
+        status, text = ask(name, each.former[role], PAGES[name].methods[0])
         assert status == PAGES[name].former, role
         assert each.finding.number not in text
 
@@ -139,9 +135,9 @@ def test_damage_of_an_earlier_period_is_the_present_operators_to_act_on(each, cl
     assert clients[former.pk].get(step).status_code == 403
 
 
-@pytest.mark.parametrize("name", [n for n, p in PAGES.items() if p.kind == FORM])
+@pytest.mark.parametrize("name", WRITTEN_ON)
 def test_an_empty_form_writes_nothing(name, each, ask):
     before = HistoryHead.objects.get().sequence
-    for role in PAGES[name].roles:
+    for role in PAGES[name].roles_for("post"):
         ask(name, each.world.users[role], "post")
     assert HistoryHead.objects.get().sequence == before
