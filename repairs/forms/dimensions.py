@@ -49,6 +49,12 @@ class DimensionsForm(forms.Form):
                 widget=forms.Textarea(attrs={"rows": 2}),
             )
 
+    @property
+    def first_names(self) -> list[str]:
+        """What is needed before the finding can be assessed, and the ratio."""
+        rows = DIMENSIONS.get(self.damage_type, ())
+        return [*(one.quantity for one in rows if one.needed), RATIO]
+
     def clean(self) -> dict[str, Any]:
         data = super().clean() or {}
         try:

@@ -12,6 +12,7 @@ from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.models import Document, Person, User
 from repairs.forms.fields import CountersForm, DataForm, choose
 from repairs.forms.findings import not_in_future
+from repairs.forms.groups import Group, group
 from repairs.models import (
     Disposition,
     DispositionKind,
@@ -28,18 +29,39 @@ REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
 WHY = "Say why, in a few words."
 WRONG_PASSWORD = "This is not your password; nothing was signed."
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
+DATA = (
+    "document_kind", "document_reference", "document_revision", "document_page",
+    "evaluations", "limit_checks", "requirement", "replaces", "also",
+)  # fmt: skip
+LIMITS = ("limit_cycles", "limit_minutes", "limit_landings", "limit_on")
+COUNTERS = ("at_minutes", "at_cycles", "at_landings")
+SCALE = ("scale", "scale_reason", "category")
 SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
+
+
+class Several(forms.ModelMultipleChoiceField):
+    """Records to tick, each told in a few words."""
+
+    widget = forms.CheckboxSelectMultiple
+
+    def label_from_instance(self, obj: Any) -> str:
+        if isinstance(obj, Finding):
+            what = obj.get_damage_type_display()
+            return f"{obj} {what}, {obj.place_text or obj.place_entered}"
+        if isinstance(obj, Evaluation):
+            return f"{obj} {obj.get_use_display()}, {obj.get_outcome_display()}"
+        return f"{obj.checked_at:%Y-%m-%d} {obj.get_outcome_display()}"
 
 
 class DispositionForm(CountersForm, DataForm):
     """What is decided, on which data, by whom, and until when."""
 
     kind = forms.ChoiceField(label="decision", choices=DispositionKind.choices)
-    also = forms.ModelMultipleChoiceField(
+    also = Several(
         Finding.objects.none(), label="also for", required=False,
         help_text="Other findings of this aircraft the same decision answers.",
     )  # fmt: skip
-    reason = forms.CharField(widget=forms.Textarea)
+    reason = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
     decided_by = forms.ModelChoiceField(Person.objects.none(), label="decided by")
     decided_on = DayField(label="decided on")
     limit_minutes = HoursField(label="limit, flight hours", required=False)
@@ -52,10 +74,10 @@ class DispositionForm(CountersForm, DataForm):
         label="repair category", required=False,
         choices=[("", "none yet"), *RepairCategory.choices],
     )  # fmt: skip
-    evaluations = forms.ModelMultipleChoiceField(
+    evaluations = Several(
         Evaluation.objects.none(), label="evaluations relied on", required=False
     )
-    limit_checks = forms.ModelMultipleChoiceField(
+    limit_checks = Several(
         LimitCheck.objects.none(), label="limits checks relied on", required=False
     )
     requirement = forms.ModelChoiceField(
@@ -66,11 +88,6 @@ class DispositionForm(CountersForm, DataForm):
         Disposition.objects.none(), required=False, label="replaces",
         help_text="An earlier decision, such as the deferral this one extends.",
     )  # fmt: skip
-    field_order = (
-        "kind", "document_kind", "document_reference", "document_revision",
-        "document_page", "reason", "decided_by", "decided_on", "limit_cycles",
-        "limit_minutes", "limit_landings", "limit_on",
-    )  # fmt: skip
 
     def __init__(
         self, *args: Any, choices: dict[str, Any], today: Any, near: Sequence[Near],
@@ -79,12 +96,26 @@ class DispositionForm(CountersForm, DataForm):
         super().__init__(*args, **kwargs)
         for name, rows in choices.items():
             choose(self, name, rows)
+            if name != "decided_by" and not rows.exists():
+                del self.fields[name]
         self.today, self.near = today, near
         for number, one in enumerate(near):
             self.fields[f"near_{number}"] = forms.ChoiceField(
                 label=_near_label(one), choices=REVIEW, required=False
             )
             self.fields[f"why_{number}"] = forms.CharField(label="why", required=False)
+
+    def groups(self) -> list[Group]:
+        """The fields in the order they are asked."""
+        near = [n for n in self.fields if n.startswith(("near_", "why_"))]
+        return [
+            group(self, "Decision", ("kind", "reason", "decided_by", "decided_on")),
+            group(self, "Data it rests on", DATA),
+            group(self, "Limit", LIMITS),
+            group(self, "Neighbours reviewed", near),
+            group(self, "Counters that day", COUNTERS, True),
+            group(self, "Minor or major, repair category", SCALE, True),
+        ]
 
     def clean_decided_on(self) -> Any:
         return not_in_future(self.cleaned_data["decided_on"], self.today)
@@ -118,7 +149,7 @@ class DispositionForm(CountersForm, DataForm):
     def reviewed(self) -> list[Reviewed]:
         data = self.cleaned_data
         answers = [
-            (one, data.get(f"near_{number}"), data.get(f"why_{number}"))
+            (one, data.get(f"near_{number}"), data.get(f"why_{number}") or "")
             for number, one in enumerate(self.near)
         ]
         return [

@@ -63,7 +63,9 @@ class FindingForm(CountersForm, PhotoForm):
     ata = forms.CharField(
         label="ATA chapter-section", required=False, help_text="Such as 53-10."
     )
-    occasion = forms.ChoiceField(label="found during", choices=Occasion.choices)
+    occasion = forms.ChoiceField(
+        label="found during", choices=Occasion.choices, initial=Occasion.OTHER
+    )
     task_reference = forms.CharField(label="task card or work order", required=False)
     event = forms.ModelChoiceField(
         Event.objects.none(), required=False, help_text="When it follows an event."
@@ -83,7 +85,9 @@ class FindingForm(CountersForm, PhotoForm):
     )  # fmt: skip
     last_clean_cycles = CounterField(label="flight cycles then", required=False)
     last_clean_method = forms.CharField(label="method then", required=False)
-    description = forms.CharField(required=False, widget=forms.Textarea)
+    description = forms.CharField(
+        required=False, widget=forms.Textarea(attrs={"rows": 3})
+    )
     unplaced = forms.BooleanField(
         label="save as to be placed", required=False,
         help_text="Keeps the location as written; somebody places it later.",
@@ -91,14 +95,17 @@ class FindingForm(CountersForm, PhotoForm):
     client_key = forms.UUIDField(widget=forms.HiddenInput, initial=uuid.uuid4)
 
     first_fields = ("aircraft", "place_entered", "found_on", "damage_type")
-    more_fields = (
+    item_fields = (
         "element", "element_label", "surface", "criticality", "criticality_source",
-        "ata", "cluster_count", "cause",
+        "ata",
     )  # fmt: skip
     how_fields = (
-        "occasion", "task_reference", "event", "detection_method", "instrument",
-        "light", "found_by", "last_clean_on", "last_clean_cycles",
-        "last_clean_method", "description",
+        "occasion", "task_reference", "detection_method", "found_by", "cause",
+        "cluster_count", "description",
+    )  # fmt: skip
+    more_fields = (
+        "event", "instrument", "light", "last_clean_on", "last_clean_cycles",
+        "last_clean_method",
     )  # fmt: skip
     counter_fields = ("at_minutes", "at_cycles", "at_landings")
     photo_fields = ("photographs", "role", "caption")

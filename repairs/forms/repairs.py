@@ -13,6 +13,7 @@ from fleet.models import Aircraft, Criticality, Document, Organisation, Person
 from fleet.units import UnitError, length_read
 from repairs.forms.fields import CountersForm, LengthField, PhotoForm, choose
 from repairs.forms.findings import FROM_LOCATION, not_in_future
+from repairs.forms.groups import Group, group
 from repairs.models import (
     ApprovalBasis,
     Disposition,
@@ -60,7 +61,7 @@ class RepairForm(CountersForm, PhotoForm):
         label="location", help_text="As a range: STA 640 to 660, S-6R to S-8R."
     )
     kind = forms.ChoiceField(label="repair type", choices=RepairType.choices)
-    description = forms.CharField(widget=forms.Textarea)
+    description = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
     length_mm = LengthField(label="length, along the section")
     width_mm = LengthField(label="width, across it")
     element = forms.ChoiceField(
@@ -139,7 +140,7 @@ class RepairForm(CountersForm, PhotoForm):
         label="weight change, g", required=False, min_value=-(10**7), max_value=10**7
     )
 
-    groups = (
+    GROUPS = (
         ("What and where", ("aircraft", "place_entered", "kind", "description",
                             "length_mm", "width_mm")),
         ("Structural item", ("element", "element_label", "surface", "criticality",
@@ -180,6 +181,13 @@ class RepairForm(CountersForm, PhotoForm):
                 field.unit = unit
                 field.help_text = f"{field.help_text} {unit} unless you say.".strip()
         self.unit, self.today = unit, today
+
+    def groups(self) -> list[Group]:
+        """The fields in the order they are asked."""
+        return [
+            group(self, legend, names, legend == "Structural item")
+            for legend, names in self.GROUPS
+        ]
 
     def clean_released_on(self) -> Any:
         return not_in_future(self.cleaned_data["released_on"], self.today)

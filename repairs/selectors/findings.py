@@ -8,6 +8,8 @@ from functools import cached_property
 
 from django.db.models import QuerySet
 
+from fleet.amounts import counters_write
+from fleet.due import Counters
 from fleet.models import User
 from fleet.units import measure_write
 from repairs.measurements import DIMENSIONS, SIZE_ORDER, Dimension, Kind, ratios
@@ -131,6 +133,17 @@ class Around:
     photographs: list[Photograph] = field(default_factory=list)
     approvals: list[Approval] = field(default_factory=list)
     blends: list[Repair] = field(default_factory=list)
+
+    @property
+    def limit(self) -> str:
+        """The limit of the decision that holds, in words; empty without one."""
+        holds = [one.disposition for one in self.dispositions if one.current]
+        if not holds:
+            return ""
+        row = holds[0]
+        at = Counters(row.limit_minutes, row.limit_cycles, row.limit_landings)
+        parts = [counters_write(at), str(row.limit_on or "")]
+        return " · ".join(part for part in parts if part)
 
 
 def finding_around(finding: Finding) -> Around:

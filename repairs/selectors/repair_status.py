@@ -181,6 +181,8 @@ def _across(repair: Repair, section: Section, work: Work) -> str:
         else:
             chord = " to ".join(work.show(s) for s in (repair.s1_mm, repair.s2_mm))
             parts.append(f"{chord} {work.unit} aft of the front reference")
+    if parts:
+        return parts[0]
     if repair.wl_mm is not None:
         parts.append(f"WL {work.show(repair.wl_mm)}")
     if repair.bl_mm is not None:

@@ -6,6 +6,8 @@ from django import template
 from django.utils.html import format_html
 from django.utils.safestring import SafeString, mark_safe
 
+from fleet.units import measure_write
+
 register = template.Library()
 
 _SHAPES = {
@@ -20,6 +22,12 @@ _SHAPES = {
     "voided": '<path d="M1.5 14.5l13-13"/>',
 }
 _URGENT = frozenset({"to_rectify"})
+
+
+@register.filter
+def about(value: float, unit: str) -> str:
+    """A distance to be read at a glance: 11.1 in, 282 mm."""
+    return measure_write(value, unit, digits=1 if unit == "in" else 0)
 
 
 @register.simple_tag

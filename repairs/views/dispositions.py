@@ -16,6 +16,7 @@ from fleet.selectors.history import history_of
 from fleet.views.requests import Request
 from fleet.views.sending import sent
 from repairs.forms.dispositions import DispositionForm
+from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
 from repairs.models import Disposition, Finding
 from repairs.selectors.choices import decision_choices
@@ -59,6 +60,10 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
         "finding": row,
         "form": form,
         "raised": raised,
+        "groups": [
+            *form.groups(),
+            group(raised, "New inspection requirement", raised.fields, True),
+        ],
         "critical": is_critical_crack(row),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
     }
@@ -108,7 +113,7 @@ def _decide(
     return disposition_decide(
         entry=DispositionEntry(
             aircraft=row.aircraft,
-            findings=[row, *data["also"]],
+            findings=[row, *data.get("also", ())],
             kind=data["kind"],
             basis=form.basis(),
             at=form.counters(),
@@ -120,7 +125,7 @@ def _decide(
                 on=data["decided_on"],
                 base="effective",
             ),
-            **{name: data[name] for name in PASSED_ON},
+            **{name: data[name] for name in PASSED_ON if name in data},
         ),
         actor=request.user,
         at=now(),

@@ -21,6 +21,7 @@ from fleet.views.requests import Request
 from fleet.views.sending import sent
 from repairs.forms.dimensions import DimensionsForm
 from repairs.forms.findings import LINK_KINDS, FindingForm
+from repairs.forms.groups import Group, group
 from repairs.measured import MeasuredError, Typed, measured_read, sizes_of
 from repairs.models import DamageType, Finding
 from repairs.selectors.choices import (
@@ -59,17 +60,24 @@ class EntryPage:
     near: list[Near] = field(default_factory=list)
     link_kinds: list[tuple[str, str]] = field(default_factory=lambda: LINK_KINDS)
 
-    def groups(self) -> list[tuple[str, list[Any]]]:
-        """The form's fields in the order they are asked."""
+    def groups(self) -> list[Group]:
+        """The form's fields in the order they are asked; the rarer ones folded."""
         form = self.form
         return [
-            (legend, [form[name] for name in names])
-            for legend, names in (
-                ("Counters when it was found", form.counter_fields),
-                ("Structural item", form.more_fields),
-                ("How it was found", form.how_fields),
-                ("Photographs", form.photo_fields),
-            )
+            group(form, "Counters when it was found", form.counter_fields),
+            group(form, "How it was found", form.how_fields),
+            group(form, "Photographs", form.photo_fields),
+            group(form, "Structural item", form.item_fields, True),
+            group(form, "More on how it was found", form.more_fields, True),
+        ]
+
+    def sizes(self) -> list[Group]:
+        """The dimensions that are needed, then the others folded."""
+        form = self.dimensions
+        others = [name for name in form.fields if name not in form.first_names]
+        return [
+            group(form, "Dimensions", form.first_names),
+            group(form, "Further dimensions", others, True),
         ]
 
     def first(self) -> list[Any]:

@@ -54,11 +54,13 @@ def finding(request: Request, pk: int) -> HttpResponse:
     row = visible_or_404(finding_whole(request.user), request.user, pk=pk)
     problems = assess_problems(row) if row.state == "reported" else []
     evaluations = evaluations_current(row)
+    around = finding_around(row)
     near = neighbours(row, user=request.user, opposite=True)
     context = {
         "finding": row,
-        "around": finding_around(row),
-        "standing": aircraft_standing(row.aircraft, as_of=today()),
+        "around": around,
+        "limit": around.limit,
+        "flown": aircraft_standing(row.aircraft, as_of=today()),
         "problems": problems,
         "questions": row.questions.select_related("answered_by"),
         "links": row.links.select_related("earlier", "decided_by"),

@@ -27,6 +27,7 @@ from fleet.views.pages import query_without_page
 from fleet.views.requests import Request
 from fleet.views.sending import sent
 from repairs.filters import RepairFilter
+from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
 from repairs.forms.repairs import AnsweredForm, RepairForm
 from repairs.models import Repair
@@ -114,7 +115,8 @@ def repair_new(request: Request) -> HttpResponse:
         "form": form,
         "answered": answered,
         "raised": raised,
-        "groups": [(title, [form[n] for n in names]) for title, names in form.groups],
+        "groups": form.groups(),
+        "inspection": group(raised, "New inspection requirement", raised.fields, True),
     }
     return render(request, "repairs/repair_new.html", context)
 

