@@ -30,6 +30,8 @@ RESULTS = [
     ("terminated", "terminating action done"),
     ("not_applicable", "does not apply here"),
 ]
+WIDE = {"size": 60}
+SHORT = {"rows": 3}
 INTERVAL = "With its unit: 250 FC, 6,000 FH, 90 days or 18 months."
 LINES = {"threshold": 3, "repeat": 3, "replace": 1}
 
@@ -100,7 +102,9 @@ class LimitsForm(forms.Form):
 class RequirementForm(LimitsForm):
     """A requirement from a record or a document."""
 
-    title = forms.CharField(help_text="What it is called on the due list.")
+    title = forms.CharField(
+        widget=forms.TextInput(WIDE), help_text="What it is called on the due list."
+    )
     requirement_class = forms.ChoiceField(
         label="class", choices=RequirementClass.choices
     )
@@ -108,12 +112,14 @@ class RequirementForm(LimitsForm):
         Document.objects.none(), required=False, label="source document"
     )
     source_page = forms.CharField(required=False, label="page or paragraph")
-    area = forms.CharField(help_text="Where to look, as in the source.")
+    area = forms.CharField(
+        widget=forms.TextInput(WIDE), help_text="Where to look, as in the source."
+    )
     method = forms.ChoiceField(choices=DetectionMethod.choices)
     procedure = forms.CharField(required=False)
     task = forms.CharField(required=False, help_text="Task card or task number.")
     access = forms.CharField(required=False)
-    criteria = forms.CharField(label="accept or reject", widget=forms.Textarea)
+    criteria = forms.CharField(label="accept or reject", widget=forms.Textarea(SHORT))
     aircraft = forms.ModelMultipleChoiceField(
         Aircraft.objects.none(), required=False, label="applies to aircraft"
     )
@@ -193,7 +199,7 @@ class DoneForm(CountersForm):
     )
     evidence = forms.CharField(
         required=False,
-        widget=forms.Textarea,
+        widget=forms.Textarea(SHORT),
         help_text="For a terminating action what was seen, and by whom; why, when it "
         "does not apply.",
     )
@@ -225,10 +231,10 @@ class DoneForm(CountersForm):
 class SistersForm(forms.Form):
     """A look at the same location of other aircraft of the type."""
 
-    title = forms.CharField()
-    area = forms.CharField(help_text="Where to look.")
+    title = forms.CharField(widget=forms.TextInput(WIDE))
+    area = forms.CharField(widget=forms.TextInput(WIDE), help_text="Where to look.")
     method = forms.ChoiceField(choices=DetectionMethod.choices)
-    criteria = forms.CharField(label="accept or reject", widget=forms.Textarea)
+    criteria = forms.CharField(label="accept or reject", widget=forms.Textarea(SHORT))
     deadline = AmountField(
         required=True, help_text=f"From the effective date. {INTERVAL}"
     )

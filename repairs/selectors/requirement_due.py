@@ -43,6 +43,11 @@ from repairs.models import (
 
 REPLACE_GROUP = 9
 SHORTEST_MONTH = 28
+BASE_WORDS = {
+    Base.EFFECTIVE: "the effective date",
+    Base.INSTALLED: "installation",
+    Base.OTHER_TASK: "the other task",
+}
 
 
 @dataclass(frozen=True)
@@ -171,10 +176,9 @@ def _basis(rows: Sequence[RequirementLimit]) -> str:
     words = {"threshold": "first", "repeat": "repeat", "replace": "replace by"}
     parts = []
     for row in rows:
-        base = (
-            "" if row.base == Base.LAST_DONE else f" from {row.base.replace('_', ' ')}"
-        )
-        parts.append(f"{row.entered}{base}")
+        base = Base(row.base)
+        from_words = f" from {BASE_WORDS.get(base, row.base)}"
+        parts.append(row.entered + ("" if base is Base.LAST_DONE else from_words))
     glue = " or, whichever last, " if _combine(rows) is Combine.LAST else " or "
     return f"{words[rows[0].phase]} {glue.join(parts)}" if rows else ""
 

@@ -232,7 +232,8 @@ def _sentence(
     left = glue.join(
         amount_write(line.counter, line.remaining) for line in status.lines
     )
-    forecast = f", forecast {status.forecast}" if status.forecast else ""
+    flown = status.limiting is not None and status.limiting.counter in COUNTED
+    forecast = f", forecast {status.forecast}" if status.forecast and flown else ""
     text = f"Due {due} ({point.basis}): {left} left{forecast}."
     repeats = [x for x in limits if x.phase == "repeat" and x.group == point.group]
     if repeats and point.kind in ("threshold", "repeat"):
