@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from fleet.models import Aircraft
 from fleet.selectors.counters import AircraftStanding
 
 
@@ -32,17 +33,22 @@ class Validity:
 
 def validity_of(standing: AircraftStanding) -> Validity:
     """The aircraft's own limit where it has one, else its variant's; no query."""
-    aircraft, variant = standing.aircraft, standing.aircraft.variant
-    own = aircraft.validity_cycles is not None or aircraft.validity_minutes is not None
-    holder = aircraft if own else variant
-    cycles, minutes = holder.validity_cycles, holder.validity_minutes
+    cycles, minutes, source = validity_limits(standing.aircraft)
     return Validity(
         cycles=cycles,
         minutes=minutes,
         cycles_left=_left(cycles, standing.counters.cycles),
         minutes_left=_left(minutes, standing.counters.minutes),
-        source=aircraft.validity_source if own else variant.source,
+        source=source,
     )
+
+
+def validity_limits(aircraft: Aircraft) -> tuple[int | None, int | None, str]:
+    """Cycles, minutes and source of the limit of validity that holds; no query."""
+    own = aircraft.validity_cycles is not None or aircraft.validity_minutes is not None
+    holder = aircraft if own else aircraft.variant
+    source = aircraft.validity_source if own else aircraft.variant.source
+    return holder.validity_cycles, holder.validity_minutes, source
 
 
 def _left(limit: int | None, now: int | None) -> int | None:

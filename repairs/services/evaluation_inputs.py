@@ -13,6 +13,7 @@ from dataclasses import dataclass, field
 
 from django.db import models
 
+from fleet.location.geometry import geometry_from_toml
 from fleet.models import (
     AdoptedValue,
     DetectableSize,
@@ -26,7 +27,7 @@ from fleet.models import (
 )
 from fleet.selectors.counters import aircraft_standing
 from fleet.selectors.people import policy
-from fleet.selectors.validity import validity_of
+from fleet.selectors.validity import validity_limits
 from repairs.analysis import scatter
 from repairs.analysis.inputs import SPECS, Value
 from repairs.analysis.intervals import SINCE_NEW
@@ -61,6 +62,9 @@ POLICIES = {
 }
 LARGEST_INTERVAL = "largest_interval_{criticality}"
 """Policy key of the operator's largest interval of a class, in flight cycles."""
+
+BLEND = "blend"
+"""Where the type's file states the flaw that is assumed to remain."""
 
 LENGTHS = {
     "crack_length": "length_mm",
@@ -140,21 +144,39 @@ class Gathered:
             self.put(name, Stated(value, source), *rows)
 
 
-def measured_finding(subject: Subject) -> Finding | None:
-    """The finding whose measurements speak for a subject."""
+@dataclass(frozen=True, slots=True)
+class Measured:
+    """The finding whose measurements speak for a subject, with the latest of them."""
+
+    finding: Finding | None
+    values: dict[str, MeasuredValue] = field(default_factory=dict)
+
+    def word(self, quantity: str) -> str:
+        """A measured word, or '' where none is known."""
+        row = self.values.get(quantity)
+        return row.word if row else ""
+
+
+def measured_of(subject: Subject) -> Measured:
+    """What was measured of a finding, or of the first finding a repair answers."""
     if isinstance(subject, Finding):
-        return subject
+        return Measured(subject, _latest_values(subject))
     row = subject.finding_rows.select_related("finding").order_by("pk").first()
-    return row.finding if row else None
+    return Measured(row.finding, _latest_values(row.finding)) if row else Measured(None)
 
 
 def gather(
-    subject: Subject, choice: Choice, *, as_of: dt.date, cracked_hole: bool
+    subject: Subject,
+    measured: Measured,
+    choice: Choice,
+    *,
+    as_of: dt.date,
+    cracked_hole: bool,
 ) -> Gathered:
     """Everything the record says that any method may ask for."""
     found = Gathered()
     operator = subject.operator
-    _measurements(found, subject)
+    _measurements(found, subject, measured)
     found.word("hole_cracked", "yes" if cracked_hole else "no", str(subject))
     found.word("element", subject.element, str(subject))
     skin = skin_under(subject)
@@ -165,20 +187,23 @@ def gather(
         if name in ADOPTABLE:
             found.put(name, adopted_number(row, SPECS[name].unit), row)
     _policies(found, subject, operator, as_of)
-    _counters(found, subject, skin, choice, as_of)
+    _counters(found, subject, measured, skin, choice, as_of)
     if choice.detectable is not None:
         size = choice.detectable
         length = size.length_mm + size.hidden_mm
         source = f"{size.method.replace('_', ' ')}, {size.detail}: {size.source}"
         found.number("detectable_length", length, source, size,
                      grade=grade_of(size.grade))  # fmt: skip
-    around = surroundings_of(subject, _half_along(found))
+    _remaining_flaw(found, subject)
+    around = surroundings_of(
+        subject, _half_along(found), as_found=choice.use is Use.FOUND_DAMAGE
+    )
     if around is not None:
         found.put("surroundings", around)
     return found
 
 
-def latest_values(finding: Finding) -> dict[str, MeasuredValue]:
+def _latest_values(finding: Finding) -> dict[str, MeasuredValue]:
     """What was last measured of each dimension; one query."""
     rows = MeasuredValue.objects.filter(
         measurement__finding=finding,
@@ -189,9 +214,8 @@ def latest_values(finding: Finding) -> dict[str, MeasuredValue]:
     return {row.quantity: row for row in ordered}
 
 
-def _measurements(found: Gathered, subject: Subject) -> None:
-    finding = measured_finding(subject)
-    values = latest_values(finding) if finding else {}
+def _measurements(found: Gathered, subject: Subject, measured: Measured) -> None:
+    values = measured.values
     for name, quantity in LENGTHS.items():
         if row := values.get(quantity):
             found.number(name, row.value, _where(row), row.measurement)
@@ -202,12 +226,22 @@ def _measurements(found: Gathered, subject: Subject) -> None:
         if row := values.get(quantity):
             found.word(name, row.word, _where(row), row.measurement)
     if isinstance(subject, Repair):
-        source = f"{subject}, as embodied"
-        found.number("remaining_thickness", subject.remaining_thickness_mm, source)
-        found.number("blend_depth", subject.blend_depth_mm, source)
-    if finding is not None:
-        depth = earlier_depth_mm(finding)
+        _embodied(found, subject, measured)
+    if measured.finding is not None:
+        depth = earlier_depth_mm(measured.finding)
         found.number("earlier_depth", depth, "blend-outs recorded at this location")
+
+
+def _embodied(found: Gathered, repair: Repair, measured: Measured) -> None:
+    """What the repair itself records: sizes nobody measured, and what it removed."""
+    source = f"{repair}, as embodied"
+    if "remaining_thickness" not in found.values:
+        found.number("remaining_thickness", repair.remaining_thickness_mm, source)
+    found.number("blend_depth", repair.blend_depth_mm, source)
+    answer = repair.finding_rows.filter(finding=measured.finding).first()
+    if answer is not None and answer.damage_removed != "unknown":
+        gone = "yes" if answer.damage_removed == "yes" else "no"
+        found.word("damage_removed", gone, source)
 
 
 def _where(row: MeasuredValue) -> str:
@@ -216,6 +250,17 @@ def _where(row: MeasuredValue) -> str:
     return (
         f"measurement {measured.number}, {stage}, {measured.measured_on}: {row.entered}"
     )
+
+
+def _remaining_flaw(found: Gathered, subject: Subject) -> None:
+    """The flaw the type's file assumes to remain in a blend, unless one is adopted."""
+    if subject.geometry is None or "assumed_flaw" in found.values:
+        return
+    flaws = geometry_from_toml(subject.geometry.content).rogue_flaws
+    for flaw in flaws:
+        if flaw.where == BLEND:
+            source = f"{flaw.shape}: {flaw.source}"
+            found.number("assumed_flaw", flaw.size_mm, source)
 
 
 def _half_along(found: Gathered) -> float:
@@ -321,13 +366,14 @@ def _policy(row: FatiguePolicy) -> scatter.FatiguePolicy:
 def _counters(
     found: Gathered,
     subject: Subject,
+    measured: Measured,
     skin: Skin | None,
     choice: Choice,
     as_of: dt.date,
 ) -> None:
-    standing = aircraft_standing(subject.aircraft, as_of=as_of)
     cycles, source = subject.at_cycles, f"counters of {subject}"
     if cycles is None:
+        standing = aircraft_standing(subject.aircraft, as_of=as_of)
         cycles, source = standing.counters.cycles, f"usage to {standing.current_to}"
     base = f"since release of {subject}" if isinstance(subject, Repair) else SINCE_NEW
     fitted = skin.fitted if skin else None
@@ -336,15 +382,15 @@ def _counters(
         base = f"since the panel was fitted on {fitted.from_on}"
         known = cycles is not None and fitted.at_cycles is not None
         flown = (cycles or 0) - (fitted.at_cycles or 0) if known else None
-    finding = measured_finding(subject)
+    finding = measured.finding
     if finding is not None and finding.damage_type != "crack" and base == SINCE_NEW:
         base = f"since rework of {finding}"
     found.number("accumulated_cycles", _float(cycles), source)
     found.number("skin_cycles", _float(flown), source)
     found.word("life_base", base, "by the evaluation")
     found.word("life_used_reason", choice.life_used_reason, "the engineer's reason")
-    validity = validity_of(standing)
-    found.number("validity_cycles", _float(validity.cycles), validity.source)
+    limit, _, stated = validity_limits(subject.aircraft)
+    found.number("validity_cycles", _float(limit), stated)
 
 
 def _float(count: int | None) -> float | None:

@@ -112,11 +112,14 @@ def true_x(section: SectionGeometry, map_mm: float, variant: str) -> float:
     return section.x_of(seam, variant) or seam
 
 
-def surroundings_of(subject: Subject, half_along_mm: float) -> Surroundings | None:
+def surroundings_of(
+    subject: Subject, half_along_mm: float, *, as_found: bool
+) -> Surroundings | None:
     """Bay, cut-outs, joint rows and repairs round a location; None if unplaced.
 
     A location without a statement across has unknown surroundings. Blend-outs are not
-    repair edges: their depths are summed instead.
+    repair edges: their depths are summed instead. Damage as found was there before the
+    repair that answers it.
     """
     section = section_geometry(subject)
     if section is None or subject.s1_mm is None or subject.x1_mm is None:
@@ -130,7 +133,10 @@ def surroundings_of(subject: Subject, half_along_mm: float) -> Surroundings | No
         half_along=max(half_along_mm, stated),
         bay=frames[0],
         bay_label=frames[1],
-        obstacles=(*_from_geometry(subject, section), *_from_repairs(subject, section)),
+        obstacles=(
+            *_from_geometry(subject, section),
+            *_from_repairs(subject, section, as_found),
+        ),
         source=f"geometry {subject.geometry}",
     )
 
@@ -167,7 +173,9 @@ def _from_geometry(subject: Subject, section: SectionGeometry) -> list[Obstacle]
     ]
 
 
-def _from_repairs(subject: Subject, section: SectionGeometry) -> list[Obstacle]:
+def _from_repairs(
+    subject: Subject, section: SectionGeometry, as_found: bool
+) -> list[Obstacle]:
     rows = repairs_shown(
         Repair.objects.filter(
             aircraft=subject.aircraft_id,
@@ -177,7 +185,7 @@ def _from_repairs(subject: Subject, section: SectionGeometry) -> list[Obstacle]:
     ).exclude(kind="blend")
     if isinstance(subject, Repair):
         rows = rows.exclude(pk=subject.pk)
-    else:
+    elif as_found:
         rows = rows.exclude(finding_rows__finding=subject)
     return [_repair(subject, section, row) for row in rows]
 

@@ -40,15 +40,21 @@ from repairs.analysis.scatter import FatiguePolicy
 from repairs.analysis.stress_life import StressLifeFamily
 from repairs.analysis.types import Outcome, Result, Sourced, Stated, Use
 from repairs.evaluation_text import number_text
-from repairs.models import Evaluation, EvaluationInput, Finding, Measurement
+from repairs.models import (
+    Evaluation,
+    EvaluationInput,
+    Finding,
+    Measurement,
+    Repair,
+)
 from repairs.selectors.evaluations import evaluation_current
 from repairs.services.evaluation_inputs import (
     Choice,
     Gathered,
+    Measured,
     UsedRow,
     gather,
-    latest_values,
-    measured_finding,
+    measured_of,
     used_rows,
 )
 from repairs.services.evaluation_place import Subject
@@ -81,6 +87,8 @@ SUPERSEDED = "{number} was superseded by {by}; evaluate again from that one."
 AT_A_HOLE = frozenset({"fastener_hole"})
 HOLE = "open-or-trimmed-hole"
 KNOWN_BY_REWORK = "damage_removed"
+REPAIR_METHODS = {"blend": "corrosion-blend-out"}
+"""Repairs a method covers; what a doubler does to the skin is not one of them."""
 
 _INPUT_COLUMN: dict[type[models.Model], str] = {
     Panel: "panel",
@@ -118,8 +126,7 @@ def default_use(subject: Subject) -> Use:
     """
     if not isinstance(subject, Finding):
         return Use.NO_KNOWN_CRACK
-    removed = latest_values(subject).get(KNOWN_BY_REWORK)
-    gone = removed is not None and removed.word == "yes"
+    gone = measured_of(subject).word(KNOWN_BY_REWORK) == "yes"
     return Use.NO_KNOWN_CRACK if gone else Use.FOUND_DAMAGE
 
 
@@ -141,13 +148,14 @@ def evaluation_prepare(*, subject: Subject, choice: Choice, as_of: dt.date) -> P
     made = subject.aircraft.variant.aircraft_type
     if size is not None and size.aircraft_type_id != made.pk:
         raise ValidationError(OTHER_TYPE.format(size=size, type=made))
-    method, cracked = _method(subject)
-    if method is None:  # nothing asks for an input, so none is gathered
-        result = Result(
+    measured = measured_of(subject)
+    method, cracked = _method(subject, measured)
+    if method is None:
+        nothing = Result(
             "", 0, "", choice.use, Outcome.NOT_COVERED, warnings=(NO_METHOD,)
         )
-        return Prepared(None, result, {}, Gathered())
-    found = gather(subject, choice, as_of=as_of, cracked_hole=cracked)
+        return Prepared(None, nothing, {}, Gathered())
+    found = gather(subject, measured, choice, as_of=as_of, cracked_hole=cracked)
     inputs = Inputs(found.values)
     result = evaluate(method.id, choice.use, inputs)
     return Prepared(method, result, inputs.as_data(), found)
@@ -276,16 +284,17 @@ def evaluation_data(evaluation: Evaluation) -> dict[str, Any]:
     }
 
 
-def _method(subject: Subject) -> tuple[Method | None, bool]:
-    """The method for the damage, and whether a crack starts at a hole."""
-    finding = measured_finding(subject)
-    if finding is None:
+def _method(subject: Subject, measured: Measured) -> tuple[Method | None, bool]:
+    """The method for the damage or repair, and whether a crack starts at a hole."""
+    if measured.finding is None:
         return None, False
-    words = {name: row.word for name, row in latest_values(finding).items()}
-    methods = methods_for(finding.damage_type)
-    if finding.damage_type == "crack" and words.get("origin") in AT_A_HOLE:
+    if isinstance(subject, Repair):
+        return METHODS.get(REPAIR_METHODS.get(subject.kind, "")), False
+    damage = measured.finding.damage_type
+    methods = methods_for(damage)
+    if damage == "crack" and measured.word("origin") in AT_A_HOLE:
         return METHODS[HOLE], True
-    cracked = finding.damage_type == "hole" and words.get("radiating_cracks") == "yes"
+    cracked = damage == "hole" and measured.word("radiating_cracks") == "yes"
     return (methods[0] if methods else None), cracked
 
 

@@ -10,6 +10,7 @@ from django.core.exceptions import ValidationError
 from django.db import IntegrityError, transaction
 
 from fleet.canonical import canonical, digest
+from fleet.due import Counters
 from fleet.models import (
     AdoptedValue,
     DetectableSize,
@@ -22,7 +23,7 @@ from fleet.services.materials import demo_values_load
 from fleet.services.people import policy_set
 from repairs.analysis.types import INCH, ROOT_1000, Use
 from repairs.measured import Typed
-from repairs.models import Evaluation, Finding
+from repairs.models import Evaluation, Finding, Repair
 from repairs.selectors.evaluations import (
     evaluation_current,
     evaluation_state,
@@ -39,8 +40,10 @@ from repairs.services.evaluations import (
     method_versions,
 )
 from repairs.services.measuring import Measuring, measurement_record
+from repairs.services.repair_entry import Answered, Data, RepairEntry
+from repairs.services.repairs import repair_record
 from tests.factories import FIXTURES, NOW, TODAY
-from tests.record_rows import World, found, world_make
+from tests.record_rows import FOUND, World, assessed, found, world_make
 
 pytestmark = pytest.mark.django_db
 CRACK = (
@@ -77,13 +80,13 @@ def cracked(world: World, **changes: object) -> Finding:
     return found(world, **(entry | changes))
 
 
-def eddy(world: World) -> DetectableSize:
-    return DetectableSize.objects.get(method="detailed_visual", detail="open skin")
+def penetrant(world: World) -> DetectableSize:
+    return DetectableSize.objects.get(method="penetrant", detail="open skin")
 
 
 def evaluated(
     world: World,
-    subject: Finding,
+    subject: Finding | Repair,
     use: Use | None = None,
     size: DetectableSize | None = None,
 ) -> Evaluation:
@@ -224,7 +227,7 @@ def blended(world: World) -> Finding:
 def test_corrosion_blended_out_has_threshold_and_repeat_and_is_barred(world):
     finding = blended(world)
     assert default_use(finding) is Use.NO_KNOWN_CRACK
-    row = evaluated(world, finding, size=eddy(world))
+    row = evaluated(world, finding, size=penetrant(world))
     assert row.outcome == "computed", json.loads(row.outputs)["warnings"]
     assert row.method == "corrosion-blend-out"
     # Growth governs: 34,000 FC limit of validity less 10,080 flown at the finding.
@@ -259,7 +262,7 @@ def test_the_operators_largest_interval_caps(world):
         operator=world.operator,
         at=NOW,
     )
-    row = evaluated(world, blended(world), size=eddy(world))
+    row = evaluated(world, blended(world), size=penetrant(world))
     assert row.threshold_cycles == row.repeat_cycles == 2_000
     assert "maintenance programme 4.2" in row.cap
 
@@ -364,6 +367,70 @@ def test_the_same_record_gives_the_same_numbers(world):
     one = evaluated(world, finding)
     two = evaluation_remake(evaluation=one, as_of=TODAY, actor=None, at=LATER)
     assert (one.inputs, one.outputs, one.note) == (two.inputs, two.outputs, two.note)
+
+
+def blend_repair(world: World, finding: Finding, **changes: object) -> Repair:
+    entry: dict[str, object] = {
+        "aircraft": world.aircraft,
+        "place_entered": "STA 630, 5 in below S-8R",
+        "kind": "blend",
+        "description": "corrosion blended out",
+        "category": "a",
+        "approval_basis": "repair_manual",
+        "approval": Data("repair_manual", "SRM 53-10-12", "14", "fig. 202"),
+        "released_on": FOUND,
+        "at": Counters(604_000, 10_080),
+        "released_by": world.certifier,
+        "element": "skin",
+        "remaining_thickness_mm": 1.25,
+        "findings": (Answered(finding, covers=False, damage_removed="yes"),),
+    }
+    return repair_record(
+        entry=RepairEntry(**(entry | changes)),  # type: ignore[arg-type]
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def test_a_blend_repair_is_evaluated_since_its_release(world):
+    finding = assessed(world, blended(world))
+    repair = blend_repair(world, finding)
+    row = evaluated(world, repair, size=penetrant(world))
+    assert row.outcome == "computed", json.loads(row.outputs)["warnings"]
+    assert (row.repair, row.finding) == (repair, None)
+    assert row.use == "no_known_crack"
+    assert row.threshold_base == f"since release of {repair}"
+    assert evaluation_current(repair, "no_known_crack") == row
+
+
+def test_under_a_doubler_no_method_applies(world):
+    finding = assessed(world, blended(world))
+    doubler = blend_repair(world, finding, kind="external_doubler")
+    row = evaluated(world, doubler)
+    assert (row.outcome, row.method) == ("not_covered", "")
+    hidden = evaluated(world, finding)
+    assert hidden.outcome == "not_covered"
+    assert "repair edge" in hidden.governing
+
+
+def test_earlier_blends_at_the_location_are_summed(world):
+    earlier = assessed(world, blended(world))
+    blend_repair(world, earlier, blend_depth_mm=0.12)
+    row = evaluated(world, blended(world))
+    inputs = evaluation_data(row)["inputs"]
+    assert inputs["earlier_depth"]["value"] == pytest.approx(0.12)
+    unknown = assessed(world, blended(world))
+    blend_repair(world, unknown)
+    row = evaluated(world, blended(world))
+    assert row.outcome == "missing_input"
+    missing = json.loads(row.outputs)["missing"]
+    assert [m["name"] for m in missing] == ["earlier_depth"]
+
+
+def test_the_flaw_assumed_to_remain_is_the_type_files(world):
+    inputs = evaluation_data(evaluated(world, blended(world)))["inputs"]
+    assert inputs["assumed_flaw"]["value"] == pytest.approx(0.02 * INCH)
+    assert "adopted demo value" in inputs["assumed_flaw"]["source"]
 
 
 def test_staleness_is_a_query(world):
