@@ -10,7 +10,7 @@ from django import forms
 from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.models import Document, Person, User
-from repairs.forms.fields import CountersForm, DataForm, choose
+from repairs.forms.fields import CountersForm, DataForm, Several, choose
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
 from repairs.models import (
@@ -37,20 +37,6 @@ LIMITS = ("limit_cycles", "limit_minutes", "limit_landings", "limit_on")
 COUNTERS = ("at_minutes", "at_cycles", "at_landings")
 SCALE = ("scale", "scale_reason", "category")
 SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
-
-
-class Several(forms.ModelMultipleChoiceField):
-    """Records to tick, each told in a few words."""
-
-    widget = forms.CheckboxSelectMultiple
-
-    def label_from_instance(self, obj: Any) -> str:
-        if isinstance(obj, Finding):
-            what = obj.get_damage_type_display()
-            return f"{obj} {what}, {obj.place_text or obj.place_entered}"
-        if isinstance(obj, Evaluation):
-            return f"{obj} {obj.get_use_display()}, {obj.get_outcome_display()}"
-        return f"{obj.checked_at:%Y-%m-%d} {obj.get_outcome_display()}"
 
 
 class DispositionForm(CountersForm, DataForm):

@@ -11,6 +11,7 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, HoursField
 from fleet.models import Document
 from fleet.units import UnitError, length_read, measure_write
+from repairs.models import Evaluation, Finding, Repair
 
 NOT_POSITIVE = "“{text}” is not above zero."
 PHOTO_ROLES = [
@@ -67,6 +68,22 @@ class FilesField(forms.FileField):
     def clean(self, data: Any, initial: Any = None) -> Any:
         given = data if isinstance(data, list | tuple) else [data]
         return [super(FilesField, self).clean(one) for one in given if one]
+
+
+class Several(forms.ModelMultipleChoiceField):
+    """Records to tick, each told in a few words."""
+
+    widget = forms.CheckboxSelectMultiple
+
+    def label_from_instance(self, obj: Any) -> str:
+        if isinstance(obj, Finding):
+            what = obj.get_damage_type_display()
+            return f"{obj} {what}, {obj.place_text or obj.place_entered}"
+        if isinstance(obj, Repair):
+            return f"{obj} {obj.get_kind_display()}, {obj.place_text}"
+        if isinstance(obj, Evaluation):
+            return f"{obj} {obj.get_use_display()}, {obj.get_outcome_display()}"
+        return f"{obj.checked_at:%Y-%m-%d} {obj.get_outcome_display()}"
 
 
 class CountersForm(forms.Form):

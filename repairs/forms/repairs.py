@@ -11,7 +11,7 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.models import Aircraft, Criticality, Document, Organisation, Person
 from fleet.units import UnitError, length_read
-from repairs.forms.fields import CountersForm, LengthField, PhotoForm, choose
+from repairs.forms.fields import CountersForm, LengthField, PhotoForm, Several, choose
 from repairs.forms.findings import FROM_LOCATION, not_in_future
 from repairs.forms.groups import Group, group
 from repairs.models import (
@@ -60,7 +60,9 @@ class RepairForm(CountersForm, PhotoForm):
     place_entered = forms.CharField(
         label="location", help_text="As a range: STA 640 to 660, S-6R to S-8R."
     )
-    kind = forms.ChoiceField(label="repair type", choices=RepairType.choices)
+    kind = forms.ChoiceField(
+        label="repair type", choices=[("", "choose"), *RepairType.choices]
+    )
     description = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
     length_mm = LengthField(label="length, along the section")
     width_mm = LengthField(label="width, across it")
@@ -135,7 +137,7 @@ class RepairForm(CountersForm, PhotoForm):
         help_text="Known from hand-over papers: what is missing stays unknown.",
     )  # fmt: skip
     evidence = forms.ChoiceField(choices=EVIDENCE, label="evidence of a legacy repair")
-    supersedes = forms.ModelMultipleChoiceField(Repair.objects.none(), required=False)
+    supersedes = Several(Repair.objects.none(), required=False)
     weight_change_g = forms.IntegerField(
         label="weight change, g", required=False, min_value=-(10**7), max_value=10**7
     )
@@ -176,6 +178,8 @@ class RepairForm(CountersForm, PhotoForm):
         choose(self, "aircraft", aircraft)
         for name, rows in choices.items():
             choose(self, name, rows)
+            if name in ("supersedes", "disposition") and not rows.exists():
+                del self.fields[name]
         for field in self.fields.values():
             if isinstance(field, LengthField):
                 field.unit = unit

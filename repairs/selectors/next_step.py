@@ -15,22 +15,21 @@ S = FindingState
 
 @dataclass(frozen=True, slots=True)
 class Step:
-    """A page to go to, its word, and its key."""
+    """A page to go to, and its word."""
 
     address: str
     words: str
-    key: str = ""
 
 
 def next_step(finding: Finding, problems: list[str], user: User) -> Step | None:
     """The one step that comes next; None when it is not the reader's to take."""
-    name, words, action, key = _next(finding, problems)
+    name, words, action = _next(finding, problems)
     if not name or not may(user, action, finding.aircraft.operator_id):
         return None
     address = reverse(name, args=[] if name == "repair_new" else [finding.pk])
     if name == "repair_new":
         address += f"?aircraft={finding.aircraft_id}&finding={finding.pk}"
-    return Step(address, words, key)
+    return Step(address, words)
 
 
 def further_steps(finding: Finding, user: User) -> list[Step]:
@@ -62,17 +61,17 @@ def further_steps(finding: Finding, user: User) -> list[Step]:
     ]
 
 
-def _next(finding: Finding, problems: list[str]) -> tuple[str, str, str, str]:
+def _next(finding: Finding, problems: list[str]) -> tuple[str, str, str]:
     if finding.state == S.REPORTED:
         if finding.section_id is None:
-            return "finding_place", "Place it", "finding_record", "p"
+            return "finding_place", "Place it", "finding_record"
         if any(text.startswith("Measure") for text in problems):
-            return "finding_measure", "Measure", "finding_measure", "m"
-        return "finding_assess", "Assess", "finding_assess", "a"
+            return "finding_measure", "Measure", "finding_measure"
+        return "finding_assess", "Assess", "finding_assess"
     if finding.state in (S.ASSESSED, S.ACCEPTED, S.DEFERRED):
-        return "disposition_new", "Disposition", "disposition_decide", "d"
+        return "disposition_new", "Disposition", "disposition_decide"
     if finding.state == S.TO_RECTIFY:
-        return "repair_new", "Record the repair", "repair_record", "r"
+        return "repair_new", "Record the repair", "repair_record"
     if finding.state == S.RECTIFIED:
-        return "finding_close", "Close", "finding_assess", "c"
-    return "", "", "", ""
+        return "finding_close", "Close", "finding_assess"
+    return "", "", ""

@@ -108,9 +108,17 @@ class FindingEntry:
 
 
 def finding_record(
-    *, entry: FindingEntry, actor: User | None, at: dt.datetime
+    *,
+    entry: FindingEntry,
+    actor: User | None,
+    at: dt.datetime,
+    standing_of: StandingOf | None = None,
 ) -> Finding:
-    """A new finding, reported. The same form sent twice is one finding."""
+    """A new finding, reported. The same form sent twice is one finding.
+
+    `standing_of` gives counters from totals the caller already has, as a loader does;
+    without it the usage is asked.
+    """
     if (before := _sent_before(entry)) is not None:
         return before
     try:
@@ -121,7 +129,7 @@ def finding_record(
             operator=entry.aircraft.operator,
             stream=stream_of(entry.aircraft),
         ) as w:
-            return finding_write(w, entry)
+            return finding_write(w, entry, standing_of=standing_of)
     except ValidationError:
         if (before := _sent_before(entry)) is not None:
             return before
@@ -134,11 +142,7 @@ def findings_record_many(
     *,
     standing_of: StandingOf | None = None,
 ) -> list[Finding]:
-    """Many findings inside one writing, as from a loader or an import.
-
-    `standing_of` gives counters from totals the caller already has; without it each
-    entry asks the usage itself.
-    """
+    """Many findings inside one writing, as from an import."""
     return [finding_write(w, entry, standing_of=standing_of) for entry in entries]
 
 

@@ -178,7 +178,7 @@ def _record(
     ]
     return repair_record(
         entry=RepairEntry(
-            **{name: data[name] for name in form.PASSED_ON},
+            **{name: data[name] for name in form.PASSED_ON if name in data},
             at=form.counters(),
             approval=form.approval(),
             replacement_limit=form.replacement_limit(),
