@@ -32,8 +32,9 @@ from repairs.analysis import scatter
 from repairs.analysis.inputs import SPECS, Value
 from repairs.analysis.intervals import SINCE_NEW
 from repairs.analysis.types import Grade, Sourced, Stated, Use
-from repairs.models import Finding, MeasuredValue, Measurement, Repair
+from repairs.models import MeasuredValue, Measurement, Repair
 from repairs.selectors.edges import earlier_depth_mm
+from repairs.selectors.latest import Latest
 from repairs.services.evaluation_materials import (
     adopted_number,
     adopted_values,
@@ -144,30 +145,9 @@ class Gathered:
             self.put(name, Stated(value, source), *rows)
 
 
-@dataclass(frozen=True, slots=True)
-class Measured:
-    """The finding whose measurements speak for a subject, with the latest of them."""
-
-    finding: Finding | None
-    values: dict[str, MeasuredValue] = field(default_factory=dict)
-
-    def word(self, quantity: str) -> str:
-        """A measured word, or '' where none is known."""
-        row = self.values.get(quantity)
-        return row.word if row else ""
-
-
-def measured_of(subject: Subject) -> Measured:
-    """What was measured of a finding, or of the first finding a repair answers."""
-    if isinstance(subject, Finding):
-        return Measured(subject, _latest_values(subject))
-    row = subject.finding_rows.select_related("finding").order_by("pk").first()
-    return Measured(row.finding, _latest_values(row.finding)) if row else Measured(None)
-
-
 def gather(
     subject: Subject,
-    measured: Measured,
+    measured: Latest,
     choice: Choice,
     *,
     as_of: dt.date,
@@ -203,18 +183,7 @@ def gather(
     return found
 
 
-def _latest_values(finding: Finding) -> dict[str, MeasuredValue]:
-    """What was last measured of each dimension; one query."""
-    rows = MeasuredValue.objects.filter(
-        measurement__finding=finding,
-        measurement__replaced_by__isnull=True,
-        status="known",
-    ).select_related("measurement")
-    ordered = sorted(rows, key=lambda row: (row.measurement.number, row.pk))
-    return {row.quantity: row for row in ordered}
-
-
-def _measurements(found: Gathered, subject: Subject, measured: Measured) -> None:
+def _measurements(found: Gathered, subject: Subject, measured: Latest) -> None:
     values = measured.values
     for name, quantity in LENGTHS.items():
         if row := values.get(quantity):
@@ -232,7 +201,7 @@ def _measurements(found: Gathered, subject: Subject, measured: Measured) -> None
         found.number("earlier_depth", depth, "blend-outs recorded at this location")
 
 
-def _embodied(found: Gathered, repair: Repair, measured: Measured) -> None:
+def _embodied(found: Gathered, repair: Repair, measured: Latest) -> None:
     """What the repair itself records: sizes nobody measured, and what it removed."""
     source = f"{repair}, as embodied"
     if "remaining_thickness" not in found.values:
@@ -366,7 +335,7 @@ def _policy(row: FatiguePolicy) -> scatter.FatiguePolicy:
 def _counters(
     found: Gathered,
     subject: Subject,
-    measured: Measured,
+    measured: Latest,
     skin: Skin | None,
     choice: Choice,
     as_of: dt.date,

@@ -48,13 +48,12 @@ from repairs.models import (
     Repair,
 )
 from repairs.selectors.evaluations import evaluation_current
+from repairs.selectors.latest import Latest, measured_of
 from repairs.services.evaluation_inputs import (
     Choice,
     Gathered,
-    Measured,
     UsedRow,
     gather,
-    measured_of,
     used_rows,
 )
 from repairs.services.evaluation_place import Subject
@@ -284,7 +283,7 @@ def evaluation_data(evaluation: Evaluation) -> dict[str, Any]:
     }
 
 
-def _method(subject: Subject, measured: Measured) -> tuple[Method | None, bool]:
+def _method(subject: Subject, measured: Latest) -> tuple[Method | None, bool]:
     """The method for the damage or repair, and whether a crack starts at a hole."""
     if measured.finding is None:
         return None, False
