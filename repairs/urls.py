@@ -9,6 +9,7 @@ from repairs.views import (
     approvals,
     attachments,
     dispositions,
+    evaluation_list,
     evaluations,
     finding_entry,
     finding_steps,
@@ -64,6 +65,11 @@ urlpatterns = [
         "requirements/<int:pk>/again/",
         requirements.requirement_again,
         name="requirement_again",
+    ),
+    path(
+        "requirements/<int:pk>/answer/",
+        accomplishments.subject_new,
+        name="requirement_answer",
     ),
     path(
         "requirements/<int:pk>/done/<int:subject_pk>/",
@@ -122,6 +128,7 @@ urlpatterns = [
         evaluations.evaluation_new_repair,
         name="evaluation_new_repair",
     ),
+    path("evaluations/", evaluation_list.evaluation_list, name="evaluation_list"),
     path("evaluations/<int:pk>/", evaluations.evaluation, name="evaluation"),
     path(
         "evaluations/<int:pk>/again/",

@@ -123,6 +123,7 @@ PAGES: dict[str, Page] = {
     "attachment": Page(keys=key("attachment"), looks=False),
     "evaluation_new": Page(FORM, "evaluation_make", key("crack")),
     "evaluation_new_repair": Page(FORM, "evaluation_make", key("repair")),
+    "evaluation_list": Page(),
     "evaluation": Page(keys=key("evaluation")),
     "evaluation_again": Page(SEND, "evaluation_make", key("evaluation")),
     "disposition_new": Page(FORM, "disposition_decide", key("finding")),

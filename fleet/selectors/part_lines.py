@@ -63,11 +63,17 @@ class PartLine:
 
     @property
     def left(self) -> str:
-        """What is left on the limiting counter, or why that is not known."""
+        """What is left on the limiting counter; a dash where that is not known."""
         limiting = self.status.limiting
-        if self.status.state is DueState.CANNOT_COMPUTE or limiting is None:
-            return self.status.note
+        if self.reason or limiting is None:
+            return "—"
         return amount_write(limiting.counter, limiting.remaining)
+
+    @property
+    def reason(self) -> str:
+        """Why it cannot be computed; empty when it can."""
+        unknown = self.status.state is DueState.CANNOT_COMPUTE
+        return self.status.note if unknown or self.status.limiting is None else ""
 
     @property
     def forecast(self) -> dt.date | None:

@@ -34,7 +34,7 @@ from repairs.models import OPEN_STATES, Finding, Repair
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
 
-SHOWN = 25
+SHOWN = 12
 STANDING_REPAIRS = ("planned", "in_work", "embodied")
 
 

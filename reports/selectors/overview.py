@@ -6,24 +6,25 @@ import datetime as dt
 from collections.abc import Iterable
 from dataclasses import dataclass
 
-from django.db.models import Count, Exists, OuterRef, Q, QuerySet
+from django.db.models import Count, Q
 
 from fleet.models import HistoryEntry, PartState, Role, SafeLifePart, User
 from fleet.selectors.aircraft import Seen, aircraft_visible, fleet_seen, is_own
 from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
-from repairs.models import (
-    Approval,
-    Evaluation,
-    Finding,
-    FindingState,
-    Meaning,
-    Outcome,
+from repairs.models import Evaluation, Finding, FindingState
+from repairs.selectors.evaluation_list import (
+    NO_LONGER,
+    STANDINGS,
+    UNCHECKED,
+    evaluation_counts,
+    evaluations_open,
 )
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
 
 SHOWN = 8
+NEWEST = 5
 STATES = (
     FindingState.REPORTED,
     FindingState.ASSESSED,
@@ -32,7 +33,6 @@ STATES = (
     FindingState.RECTIFIED,
     FindingState.ACCEPTED,
 )
-NO_LONGER = (FindingState.CLOSED, FindingState.DUPLICATE, FindingState.VOIDED)
 
 # Panels in the order in which each role looks at them.
 ORDER: dict[str, tuple[str, ...]] = {
@@ -67,12 +67,17 @@ class FindingTally:
 
 
 @dataclass(frozen=True)
-class EvaluationTally:
-    """Calculations nobody has approved, the newest of them, and what has none."""
+class StandingCount:
+    standing: str
+    words: str
+    count: int
 
-    unchecked: int
-    checked: int
-    needs_engineer: int
+
+@dataclass(frozen=True)
+class EvaluationTally:
+    """Calculations nobody has approved by standing, and the newest with numbers."""
+
+    counts: list[StandingCount]
     newest: list[Evaluation]
 
 
@@ -97,38 +102,13 @@ def finding_tally(user: User) -> FindingTally:
 
 def evaluation_tally(user: User) -> EvaluationTally:
     """Of damage and repairs that still stand; two queries."""
-    rows = _evaluations(user)
-    computed = Q(outcome=Outcome.COMPUTED)
-    found = rows.aggregate(
-        unchecked=Count("pk", filter=computed & Q(checked=False)),
-        checked_=Count("pk", filter=computed & Q(checked=True)),
-        needs_engineer=Count("pk", filter=~computed),
-    )
-    newest = rows.select_related("finding__aircraft", "repair__aircraft")
+    counts = evaluation_counts(user)
     return EvaluationTally(
-        found["unchecked"],
-        found["checked_"],
-        found["needs_engineer"],
-        list(newest.order_by("-entered_at", "-pk")[:SHOWN]),
-    )
-
-
-def _evaluations(user: User) -> QuerySet[Evaluation]:
-    """The latest of each subject that no approval points at."""
-
-    def signed(meaning: Meaning) -> Exists:
-        return Exists(
-            Approval.objects.filter(evaluation=OuterRef("pk"), meaning=meaning)
-        )
-
-    return (
-        Evaluation.objects.filter(
-            pk__in=Evaluation.objects.visible_to(user).values("pk"),
-            replaced_by__isnull=True,
-        )
-        .exclude(finding__state__in=NO_LONGER)
-        .annotate(checked=signed(Meaning.CHECKED), approved=signed(Meaning.APPROVED))
-        .filter(approved=False)
+        [
+            StandingCount(standing, words, counts[standing])
+            for standing, words in STANDINGS
+        ],
+        list(evaluations_open(user, UNCHECKED)[:NEWEST]),
     )
 
 
