@@ -285,7 +285,13 @@ def _unit_error(
 def _sisters(logbooks: dict[int, Logbook], finding: str) -> DemoRequirement:
     """After a crack beside the cargo door: look at the same corner on every sister."""
     effective = dt.date(2024, 11, 25)
-    answered = {1001: dt.date(2024, 12, 3), 1009: dt.date(2024, 12, 11)}
+    answered = {
+        1001: dt.date(2024, 12, 3),
+        1009: dt.date(2024, 12, 11),
+        1022: dt.date(2024, 12, 12),
+        1026: dt.date(2024, 12, 16),
+        1027: dt.date(2024, 12, 18),
+    }
     subjects = []
     for aircraft in FLEET:
         if aircraft.left_on is not None or aircraft.msn == 1002:

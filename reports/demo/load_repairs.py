@@ -132,6 +132,7 @@ def _repair(
         replacement_limit_on=months_later(repair.released_on, months, CalendarRule.DATE)
         if months
         else None,
+        temporary_limit_cycles=repair.temporary_limit_cycles,
         stage_reached="1" if repair.stage_due_on else "not_applicable",
         performed_by=loaded.people[repair.performed_by],
         inspected_by=loaded.people[repair.inspected_by],

@@ -17,9 +17,9 @@ from reports.demo.usage import Counters, Logbook
 
 MAIN, STAY, NOSE = "ARD-3211-1", "ARD-3214-3", "ARD-3221-1"
 PART_NUMBERS = (
-    DemoPartNumber(MAIN, "main gear attachment fitting", "main fitting"),
+    DemoPartNumber(MAIN, "main gear attachment fitting", "main gear"),
     DemoPartNumber(STAY, "side stay", "side stay"),
-    DemoPartNumber(NOSE, "nose gear attachment fitting", "nose fitting"),
+    DemoPartNumber(NOSE, "nose gear attachment fitting", "nose gear"),
 )
 LIFE_LIMITS = (
     DemoLifeLimit(MAIN, "base", "cycles", 60_000, "birth"),
@@ -37,15 +37,15 @@ STAY_FITTED = {
 NOSE_MSNS = (1001, 1002, 1003, 1021, 1022)
 NEW = Counters(0, 0)
 SWAPS = (
-    ("main fitting LH", 1001, 1009, dt.date(2019, 8, 12)),
-    ("main fitting RH", 1002, 1010, dt.date(2020, 2, 3)),
-    ("main fitting LH", 1003, 1014, dt.date(2020, 9, 21)),
-    ("main fitting RH", 1014, 1021, dt.date(2021, 4, 19)),
-    ("main fitting LH", 1005, 1010, dt.date(2021, 11, 8)),
+    ("main gear LH", 1001, 1009, dt.date(2019, 8, 12)),
+    ("main gear RH", 1002, 1010, dt.date(2020, 2, 3)),
+    ("main gear LH", 1003, 1014, dt.date(2020, 9, 21)),
+    ("main gear RH", 1014, 1021, dt.date(2021, 4, 19)),
+    ("main gear LH", 1005, 1010, dt.date(2021, 11, 8)),
     ("side stay LH", 1001, 1003, dt.date(2022, 5, 16)),
-    ("main fitting RH", 1022, 1026, dt.date(2022, 10, 10)),
-    ("main fitting LH", 1021, 1027, dt.date(2023, 3, 27)),
-    ("nose fitting", 1021, 1022, dt.date(2023, 9, 4)),
+    ("main gear RH", 1022, 1026, dt.date(2022, 10, 10)),
+    ("main gear LH", 1021, 1027, dt.date(2023, 3, 27)),
+    ("nose gear", 1021, 1022, dt.date(2023, 9, 4)),
 )
 """Two parts of one position change aircraft on the same day; the fourth pair has one
 aircraft of either variant, so the base part goes under a lower limit."""
@@ -72,7 +72,7 @@ def parts_draw(
             planted["lower_limit_on_stretched"] = [first.key]
     parts = list(fitted.values())
     parts += _spares(logbooks, planted)
-    planted["part_close_to_limit"] = [fitted[1001, "nose fitting"].key]
+    planted["part_close_to_limit"] = [fitted[1001, "nose gear"].key]
     return sorted(parts, key=lambda part: part.key)
 
 
@@ -88,11 +88,11 @@ def run_of(part: DemoPart, logbooks: dict[int, Logbook]) -> Counters:
 
 
 def _positions(msn: int) -> list[tuple[str, str]]:
-    positions = [("main fitting LH", MAIN), ("main fitting RH", MAIN)]
+    positions = [("main gear LH", MAIN), ("main gear RH", MAIN)]
     if msn in STAY_FITTED:
         positions += [("side stay LH", STAY), ("side stay RH", STAY)]
     if msn in NOSE_MSNS:
-        positions.append(("nose fitting", NOSE))
+        positions.append(("nose gear", NOSE))
     return positions
 
 
@@ -140,7 +140,7 @@ def _spares(
         stints=(
             DemoStint(
                 GAP_AIRCRAFT,
-                "nose fitting",
+                "nose gear",
                 GAP_FITTED_ON,
                 logbooks[GAP_AIRCRAFT].at(GAP_FITTED_ON),
             ),

@@ -13,6 +13,7 @@ from reports.demo.usage import Logbook
 MISSING_DOCUMENTS = 4
 ELEVEN_MONTHS_AGO = dt.date(2024, 2, 1)
 OTHER_PENDING = ((1010, dt.date(2024, 7, 9)), (1022, dt.date(2024, 10, 3)))
+INTERIM_LIMIT_FC = 21_000
 UNKNOWN_PAPER = DemoDocument("other", "none found", "", "none", "unknown", held=False)
 
 
@@ -128,10 +129,12 @@ def _found_not_recorded(
         replace(
             _doubler(logbooks, "R-1010-P04", 1010, joined, where),
             category="pending",
-            category_reason="no approval found; survey item 7 of the joining check",
+            category_reason="no approval found; flown on the interim limit of "
+            "TS-DA-1010-IL until its data are found or made",
             document=UNKNOWN_PAPER,
             legacy=True,
-            stage_due_on=stage_two_due(joined).replace(year=2025, month=6),
+            stage_due_on=stage_two_due(joined),
+            temporary_limit_cycles=INTERIM_LIMIT_FC,
             description="External doubler found at the joining survey; "
             "no record of it in the files received with the aircraft.",
         )

@@ -138,6 +138,7 @@ class DemoRepair:
     fasteners: tuple[DemoFastener, ...] = ()
     replace_by: tuple[DemoLimit, ...] = ()
     stage_due_on: dt.date | None = None
+    temporary_limit_cycles: int | None = None
     legacy: bool = False
 
     @property

@@ -4,28 +4,31 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from fleet.models import Aircraft, AircraftType, Operator, Policy, User
-from fleet.services.people import policy_set
-from reports.demo.fleet import DEMO_TODAY
+from fleet.models import Aircraft, AircraftType, Document, Operator, User
+from fleet.services.documents import document_get_or_create
+from fleet.services.history import Writing
 from reports.demo.load_base import OPERATOR_CODES, Loaded
 from reports.demo.load_evaluations import EVALUATED_AT
 
-SEED_KEY = "demo_seed"
+MARKER = "Framebay demonstration"
 
 
 def marker_set(loaded: Loaded, seed: int) -> None:
     """The last thing loaded says that the demo is whole, and with which seed."""
-    policy_set(
-        key=SEED_KEY,
-        value=seed,
-        unit="count",
-        source="drawn by this program",
-        grade="adopted",
-        operator=loaded.operator,
-        effective_from=DEMO_TODAY,
+    with Writing(
         actor=loaded.users["administrator"],
+        action="document_record",
         at=EVALUATED_AT,
-    )
+        operator=loaded.operator,
+    ) as w:
+        document_get_or_create(
+            w,
+            operator=loaded.operator,
+            kind="other",
+            reference=MARKER,
+            revision=str(seed),
+            title="Seed from which this program drew the demonstration",
+        )
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,7 +41,7 @@ class Standing:
 
 def standing_now() -> Standing:
     """Read what the database holds; without the demo, any record is foreign."""
-    marker = Policy.objects.filter(key=SEED_KEY).first()
+    marker = Document.objects.filter(reference=MARKER).first()
     codes = list(OPERATOR_CODES.values()) if marker else []
     strangers = Operator.objects.exclude(code__in=codes)
     foreign = [f"operator {operator.name}" for operator in strangers]
@@ -48,4 +51,4 @@ def standing_now() -> Standing:
             f"{word} {row}" for kind, word in kinds for row in kind.objects.all()
         ]
         foreign += [f"login {user.username}" for user in User.objects.all()]
-    return Standing(marker.value if marker else None, tuple(foreign[:5]))
+    return Standing(int(marker.revision) if marker else None, tuple(foreign[:5]))
