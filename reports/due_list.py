@@ -38,6 +38,7 @@ from repairs.selectors.due_items import (
     point_item,
     points_with_words,
 )
+from repairs.selectors.requirements import Unaccounted, unaccounted_in
 from reports.due_rows import DueRow, export_row, sort_key
 
 BUCKETS = (Bucket.OVERDUE, Bucket.TO_30, Bucket.TO_60, Bucket.TO_90, Bucket.LATER)
@@ -70,6 +71,7 @@ class DueList:
     rows: tuple[DueRow, ...]
     fleet: tuple[AircraftStanding, ...]
     policies: tuple[str, ...]
+    unaccounted: tuple[Unaccounted, ...] = ()
 
     @property
     def data_current_to(self) -> date | None:
@@ -130,6 +132,7 @@ def due_list(query: DueQuery, *, user: User | None = None) -> DueList:
         tuple(sorted(shown, key=sort_key)),
         tuple(standings.values()),
         _policies(fleet, query.as_of),
+        tuple(unaccounted_in(fleet, as_of=query.as_of)),
     )
 
 

@@ -277,6 +277,24 @@ class RequirementFilter(forms.Form):
     )
 
 
+class AnswerForm(forms.Form):
+    """The answer for an aircraft that the requirement did not name."""
+
+    aircraft = forms.ModelChoiceField(Aircraft.objects.none())
+    applies = forms.ChoiceField(
+        label="does it apply", choices=[("yes", "yes"), ("no", "no, because")]
+    )
+    reason = forms.CharField(required=False, widget=forms.TextInput(WIDE))
+    on = DayField(label="from", help_text="The day of the answer.")
+
+    def __init__(
+        self, *args: Any, unaccounted: Sequence[Aircraft], **kwargs: Any
+    ) -> None:
+        super().__init__(*args, **kwargs)
+        keys = [item.pk for item in unaccounted]
+        choose(self, "aircraft", Aircraft.objects.filter(pk__in=keys))
+
+
 class VerifyForm(forms.Form):
     """A second person's confirmation of a terminating action."""
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from datetime import date
 from typing import Any
@@ -263,23 +263,10 @@ def coverage_of(
     """Applicable = done + open + not applicable, or the page says incomplete. Only what
     concerns a fleet can leave an aircraft unaccounted; one query."""
     lines = list(lines)
-    unaccounted: list[Aircraft] = []
-    if requirement.sisters or requirement.requirement_class in FLEET_CLASSES:
-        types = {
-            x.subject.aircraft.variant.aircraft_type_id
-            for x in lines
-            if x.subject.aircraft
-        }
-        named = {x.subject.aircraft_id for x in lines if x.subject.aircraft_id}
-        if requirement.finding is not None:
-            named.add(requirement.finding.aircraft_id)
-        unaccounted = list(
-            Aircraft.objects.filter(
-                operator=requirement.operator_id,
-                data_to__isnull=True,
-                variant__aircraft_type__in=types,
-            ).exclude(pk__in=named)
-        )
+    fleet = Aircraft.objects.filter(
+        operator=requirement.operator_id, data_to__isnull=True
+    ).select_related("variant")
+    unaccounted = missing_from(requirement, [x.subject for x in lines], fleet)
     words = [x.subject.applies for x in lines]
     return Coverage(
         done=sum(1 for x in lines if x.done),
@@ -288,6 +275,57 @@ def coverage_of(
         unanswered=words.count("unanswered"),
         unaccounted=tuple(unaccounted),
     )
+
+
+def missing_from(
+    requirement: InspectionRequirement,
+    subjects: Iterable[RequirementSubject],
+    fleet: Iterable[Aircraft],
+) -> list[Aircraft]:
+    """Aircraft of the fleet that a requirement of the whole fleet does not name. What
+    came from one record concerns that record's aircraft only."""
+    subjects = list(subjects)
+    named = {x.aircraft_id for x in subjects}
+    types = {x.aircraft.variant.aircraft_type_id for x in subjects if x.aircraft}
+    names = ("finding", "repair", "disposition", "event")
+    single = any(getattr(requirement, name) is not None for name in names)
+    whole = requirement.requirement_class in FLEET_CLASSES and not single
+    if not (requirement.sisters or whole):
+        return []
+    if requirement.finding is not None:
+        named.add(requirement.finding.aircraft_id)
+    return [
+        item
+        for item in fleet
+        if item.operator_id == requirement.operator_id
+        and item.variant.aircraft_type_id in types
+        and item.pk not in named
+    ]
+
+
+@dataclass(frozen=True)
+class Unaccounted:
+    """A requirement in force, and the aircraft that it leaves without an answer."""
+
+    requirement: InspectionRequirement
+    aircraft: tuple[Aircraft, ...]
+
+
+def unaccounted_in(fleet: Sequence[Aircraft], *, as_of: date) -> list[Unaccounted]:
+    """Requirements in force that do not name every aircraft of these; two queries."""
+    rows = InspectionRequirement.objects.filter(
+        Q(sisters=True) | Q(requirement_class__in=FLEET_CLASSES),
+        operator__in={item.operator_id for item in fleet},
+        state=RequirementState.EFFECTIVE,
+        effective_on__lte=as_of,
+    ).select_related("finding", "repair", "event", "disposition")
+    subjects = RequirementSubject.objects.select_related("aircraft__variant")
+    found = []
+    for row in rows.prefetch_related(Prefetch("subjects", subjects)):
+        missing = missing_from(row, list(row.subjects.all()), fleet)
+        if missing:
+            found.append(Unaccounted(row, tuple(missing)))
+    return found
 
 
 def sisters_of(finding: Finding) -> QuerySet[Aircraft]:

@@ -26,6 +26,7 @@ from repairs.selectors.requirement_due import (
 )
 from repairs.services.due_points import due_point_open, due_points_close
 from repairs.services.inspections import (
+    NO_REASON,
     RequirementRefused,
     dues_open,
     requirement_writing,
@@ -46,7 +47,6 @@ COUNTER_MISSING = (
 FINDING_MISSING = "Name the finding; a result with a finding has its own record."
 NO_EVIDENCE = "Say what shows that the terminating action is in place, and who saw it."
 UNVERIFIED = "the terminating action is not verified yet"
-NO_REASON = "Say why it does not apply."
 ALREADY_DONE = "It has been done here, so it applied; terminate it with evidence."
 SAME_PERSON = "The evidence is verified by someone other than who recorded it."
 NO_CLAIM = "No terminating action waits for verification here."

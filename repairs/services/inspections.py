@@ -11,8 +11,9 @@ from datetime import date, datetime
 from django.core.exceptions import ValidationError
 
 from fleet.amounts import amount_read
-from fleet.models import Operator, User
+from fleet.models import Aircraft, Operator, User
 from fleet.refusals import Refused
+from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
 from repairs.models import (
@@ -33,6 +34,8 @@ from repairs.services.requirement_draft import (
     evaluation_approved,
 )
 
+NOT_IN_FORCE = "{number} is {state}; only one in force is answered."
+NO_REASON = "Say why it does not apply."
 NOT_DRAFT = "{number} is {state}; only a draft is put in force."
 
 
@@ -158,6 +161,43 @@ def requirement_put_in_force(w: Writing, requirement: InspectionRequirement) -> 
     for subject in requirement.subjects.select_related("aircraft", "part"):
         w.change(subject, state=RequirementState.EFFECTIVE.value)
         dues_open(w, subject, requirement.effective_on)
+
+
+def subject_add(
+    *,
+    actor: User | None,
+    at: datetime,
+    requirement: InspectionRequirement,
+    aircraft: Aircraft,
+    on: date,
+    applies: bool,
+    reason: str = "",
+) -> RequirementSubject:
+    """Answer for an aircraft that a requirement did not name: it applies and falls due
+    from now on, or it does not, with the reason."""
+    problems = []
+    if requirement.state != RequirementState.EFFECTIVE:
+        state = requirement.get_state_display()
+        problems.append(NOT_IN_FORCE.format(number=requirement.number, state=state))
+    if not applies and not reason.strip():
+        problems.append(NO_REASON)
+    if problems:
+        raise RequirementRefused(problems)
+    with requirement_writing(
+        actor, "subject_add", at, requirement.operator, stream=stream_of(aircraft)
+    ) as w:
+        subject = w.create(
+            RequirementSubject(
+                requirement=requirement,
+                aircraft=aircraft,
+                applies="yes" if applies else "no",
+                reason=reason.strip(),
+                state=RequirementState.EFFECTIVE,
+            )
+        )
+        if applies:
+            dues_open(w, subject, on)
+    return subject
 
 
 def dues_open(

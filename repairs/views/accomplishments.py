@@ -17,17 +17,28 @@ from fleet.selectors.counters import aircraft_standing
 from fleet.selectors.parts import part_life
 from fleet.views.requests import Request
 from fleet.views.sending import sent
-from repairs.forms.requirements import DoneForm, SistersForm, VerifyForm
+from repairs.forms.requirements import (
+    AnswerForm,
+    DoneForm,
+    SistersForm,
+    VerifyForm,
+)
 from repairs.models import Finding, RequirementSubject
 from repairs.selectors.choices import people_at
-from repairs.selectors.requirements import findings_on, sisters_of
+from repairs.selectors.requirements import (
+    coverage_of,
+    findings_on,
+    requirement_of,
+    sisters_of,
+    subject_lines,
+)
 from repairs.services.accomplishments import (
     Accomplished,
     accomplishment_record,
     subject_not_applicable,
     termination_verify,
 )
-from repairs.services.inspections import requirement_raise
+from repairs.services.inspections import requirement_raise, subject_add
 from repairs.services.requirement_draft import RequirementDraft
 
 FORM_METHODS = ["GET", "HEAD", "POST"]
@@ -131,6 +142,30 @@ def termination_check(request: Request, pk: int, subject_pk: int) -> HttpRespons
         return redirect("requirement", pk)
     context = {"form": form, "subject": subject, "requirement": subject.requirement}
     return render(request, "repairs/termination_check.html", context)
+
+
+@require_http_methods(FORM_METHODS)
+def subject_new(request: Request, pk: int) -> HttpResponse:
+    """Answer for an aircraft that the requirement does not name yet."""
+    requirement = visible_or_404(requirement_of(request.user), request.user, pk=pk)
+    require(request.user, "requirement_raise", requirement.operator_id)
+    lines = subject_lines(requirement, as_of=today())
+    form = AnswerForm(
+        request.POST or None,
+        unaccounted=coverage_of(requirement, lines).unaccounted,
+        initial={"on": today()},
+    )
+
+    def save() -> Any:
+        data = dict(form.cleaned_data)
+        applies = data.pop("applies") == "yes"
+        service: dict[str, Any] = {"actor": request.user, "at": now()}
+        return subject_add(**service, **data, requirement=requirement, applies=applies)
+
+    if sent(form, save):
+        return redirect("requirement", pk)
+    context = {"form": form, "requirement": requirement}
+    return render(request, "repairs/subject_new.html", context)
 
 
 @require_http_methods(FORM_METHODS)

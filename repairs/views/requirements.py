@@ -88,6 +88,7 @@ def requirement(request: Request, pk: int) -> HttpResponse:
         "marks": marks_of(row),
         "reentries": row.reentries.select_related("keyed_by"),
         "history": history_of(row),
+        "may_answer": may(user, "requirement_raise", operator),
         "may_record": may(user, "accomplishment_record", operator),
         "may_key_again": not row.verified
         and row.keyed_by_id != user.pk

@@ -5,6 +5,7 @@ from __future__ import annotations
 from datetime import datetime
 from typing import Any
 
+from repairs.selectors.requirements import Unaccounted
 from reports.due_list import DueList
 from reports.due_rows import HEADER, DueRow, export_row
 
@@ -24,8 +25,14 @@ def facts(found: DueList, *, printed_at: datetime) -> Facts:
         ("data current to", str(found.data_current_to or "no usage")),
         ("rows", str(len(found.rows))),
         ("digest of the rows (SHA-256)", found.digest),
+        *(("incomplete", _gap(item)) for item in found.unaccounted),
         *(("policy", edition) for edition in found.policies),
     ]
+
+
+def _gap(item: Unaccounted) -> str:
+    marks = ", ".join(str(aircraft) for aircraft in item.aircraft)
+    return f"{item.requirement.number} has no answer for {marks}"
 
 
 def due_csv_rows(found: DueList, *, printed_at: datetime) -> list[list[Any]]:
@@ -48,6 +55,7 @@ def due_json(found: DueList, *, printed_at: datetime) -> dict[str, Any]:
         "data_current_to": current_to and current_to.isoformat(),
         "counts": {bucket.value: count for bucket, count in found.tally.items()},
         "digest": found.digest,
+        "incomplete": [_gap(item) for item in found.unaccounted],
         "policies": list(found.policies),
         "rows": [
             dict(zip(HEADER, export_row(row), strict=True)) | {"kind": row.item.kind}

@@ -5,12 +5,14 @@ from __future__ import annotations
 import pytest
 from django.contrib.messages import get_messages
 
+from fleet.models import Aircraft
 from repairs.models import (
     Accomplishment,
     DuePoint,
     InspectionRequirement,
     RequirementSubject,
 )
+from repairs.services.requirement_draft import LimitEntry
 from tests import due_rows as make
 from tests.due_rows import TODAY, day, fly
 from tests.repairs.test_inspections import (
@@ -95,8 +97,9 @@ class TestRequirementPage:
         make.aircraft("Q7-TSB")
         requirement = raised(
             fixed,
-            THRESHOLD,
+            LimitEntry("threshold", "26,000 FC", base="new"),
             requirement_class="directive",
+            repair=None,
             source_document=make.document(),
         )
         as_user(client)
@@ -334,3 +337,57 @@ def test_queries_of_a_requirement_do_not_grow_with_its_subjects(
     as_user(client)
     with django_assert_max_num_queries(24):
         client.get(f"/requirements/{requirement.pk}/")
+
+
+class TestAnswer:
+    @pytest.fixture
+    def directive(self, fixed):
+        make.aircraft("Q7-TSB")
+        return raised(
+            fixed,
+            LimitEntry("threshold", "26,000 FC", base="new"),
+            requirement_class="directive",
+            repair=None,
+            source_document=make.document(),
+        )
+
+    def answer(self, client, directive, **data):
+        aircraft = Aircraft.objects.get(registration="Q7-TSB")
+        data = {"aircraft": aircraft.pk, "on": "2025-01-01"} | data
+        return client.post(f"/requirements/{directive.pk}/answer/", data)
+
+    def test_the_due_list_says_which_aircraft_have_no_answer(self, client, directive):
+        as_user(client, "planner")
+        text = client.get("/due/").content.decode()
+        assert "I-0001</a> has no answer for 1 aircraft" in text
+
+    def test_that_it_applies_puts_the_aircraft_on_the_list(self, client, directive):
+        as_user(client)
+        self.answer(client, directive, applies="yes")
+        point = DuePoint.objects.get(aircraft__registration="Q7-TSB")
+        assert point.due_cycles == 26_000
+        assert "Incomplete" not in client.get("/due/").content.decode()
+
+    def test_that_it_does_not_needs_its_reason(self, client, directive):
+        as_user(client)
+        refused = self.answer(client, directive, applies="no")
+        assert "Say why it does not apply." in refused.content.decode()
+        self.answer(
+            client, directive, applies="no", reason="built with modification 12"
+        )
+        page = client.get(f"/requirements/{directive.pk}/").content.decode()
+        assert "does not apply: built with the change" in page
+        assert "Incomplete" not in page
+
+    def test_what_came_from_one_repair_concerns_its_aircraft_only(self, client, fixed):
+        make.aircraft("Q7-TSB")
+        requirement = raised(fixed, THRESHOLD)
+        as_user(client)
+        page = client.get(f"/requirements/{requirement.pk}/").content.decode()
+        assert "Incomplete" not in page
+
+    def test_an_outsider_and_an_auditor_cannot_answer(self, client, directive):
+        as_user(client, "engineer", make.operator("OTH"))
+        assert client.get(f"/requirements/{directive.pk}/answer/").status_code == 404
+        as_user(client, "auditor")
+        assert client.get(f"/requirements/{directive.pk}/answer/").status_code == 403
