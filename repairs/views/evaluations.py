@@ -14,6 +14,7 @@ from django.views.decorators.http import (
 
 from fleet.access import may, require, visible_or_404
 from fleet.clock import now, today
+from fleet.selectors.history import history_of
 from fleet.views.aircraft import FORM_METHODS
 from fleet.views.requests import Request
 from fleet.views.sending import sent
@@ -87,6 +88,7 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
     row = visible_or_404(evaluation_rows(), request.user, pk=pk)
     context = {
         "shown": evaluation_shown(row, method_versions()),
+        "history": history_of(row),
         "may_make": may(request.user, ACTION, row.operator_id),
         "may_sign": may(request.user, "approval_sign", row.operator_id),
         "may_raise": may(request.user, "requirement_raise", row.operator_id),
