@@ -372,9 +372,7 @@ class TestAnswer:
         as_user(client)
         refused = self.answer(client, directive, applies="no")
         assert "Say why it does not apply." in refused.content.decode()
-        self.answer(
-            client, directive, applies="no", reason="built with modification 12"
-        )
+        self.answer(client, directive, applies="no", reason="built with the change")
         page = client.get(f"/requirements/{directive.pk}/").content.decode()
         assert "does not apply: built with the change" in page
         assert "Incomplete" not in page
