@@ -29,16 +29,10 @@ from tests.record_rows import (
     MANUAL,
     assessed,
     found,
-    world_make,
 )
 
 pytestmark = pytest.mark.django_db
 AT = Counters(604_000, 10_080, 10_080)
-
-
-@pytest.fixture
-def world():
-    return world_make()
 
 
 def decide(world, *findings, kind="accept", **changes) -> Disposition:

@@ -13,16 +13,15 @@ from PIL import Image
 
 from repairs.models import Finding, Measurement
 from tests.queries import assert_same_queries
-from tests.record_rows import FOUND, assessed, found, world_make
+from tests.record_rows import FOUND, assessed, found
 
 pytestmark = pytest.mark.django_db
 STEPS = ("place", "measure", "assess", "close", "link", "void", "photographs")
 
 
-@pytest.fixture
-def world(monkeypatch, settings):
+@pytest.fixture(autouse=True)
+def _on_the_day(settings):
     settings.FRAMEBAY_TODAY = "2025-01-01"
-    return world_make()
 
 
 @pytest.fixture

@@ -35,15 +35,9 @@ from tests.record_rows import (
     FOUND,
     assessed,
     found,
-    world_make,
 )
 
 pytestmark = pytest.mark.django_db
-
-
-@pytest.fixture
-def world():
-    return world_make()
 
 
 def codes(finding: Finding) -> list[str]:

@@ -15,16 +15,15 @@ from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
 from tests.factories import NOW, PASSWORD
 from tests.queries import assert_same_queries
-from tests.record_rows import CRACK, FOUND, assessed, found, world_make
+from tests.record_rows import CRACK, FOUND, assessed, found
 
 pytestmark = pytest.mark.django_db
 APPROVAL = Data("repair_manual", "SRM 53-10-12", "14", "fig. 202")
 
 
-@pytest.fixture
-def world(settings):
+@pytest.fixture(autouse=True)
+def _on_the_day(settings):
     settings.FRAMEBAY_TODAY = "2025-01-01"
-    return world_make()
 
 
 @pytest.fixture
@@ -194,6 +193,7 @@ def test_a_repair_that_is_refused_says_why_and_keeps_what_was_typed(engineer, wo
     said |= {
         "place_entered": "STA 640 S-6R",
         "description": "left as it was",
+        "kind": "external_doubler",
         "category": "c",
         "released_by": world.certifier.pk,
         "document_reference": "SRM 53-10-12",

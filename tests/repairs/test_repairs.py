@@ -25,16 +25,11 @@ from repairs.services.repair_entry import (
 from repairs.services.repairs import repair_record, repair_remove
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests.factories import NOW
-from tests.record_rows import CRACK, FOUND, MANUAL, assessed, found, world_make
+from tests.record_rows import CRACK, FOUND, MANUAL, assessed, found
 
 pytestmark = pytest.mark.django_db
 RELEASED = FOUND + dt.timedelta(days=5)
 APPROVAL = Data("repair_manual", "SRM 53-10-12", "14", "fig. 202")
-
-
-@pytest.fixture
-def world():
-    return world_make()
 
 
 def record(world, **changes) -> Repair:
