@@ -155,6 +155,11 @@ class Chart:
         widest = max(svg.text_width(words) for words in figures)
         return Box(left=widest + 26.0, top=TOP, right=RIGHT, bottom=BOTTOM)
 
+    @property
+    def words_area(self) -> Box:
+        """Where labels may stand: the plot and the margin above it."""
+        return Box(self.plot.left, 2.0, RIGHT, BOTTOM)
+
     def at(self, x: float, y: float) -> tuple[float, float]:
         """Where a value lies on the drawing."""
         across = (x - self.x_axis.low) / (self.x_axis.high - self.x_axis.low)
@@ -281,11 +286,13 @@ def _placed(chart: Chart, places: list[Label], taken: list[Box], class_: str) ->
     rules = [_level_line(chart, level) for level in chart.levels]
     label = (
         svg.first_free(
-            places, within=chart.plot, taken=taken, lines=[*chart.curves, *rules]
+            places, within=chart.words_area, taken=taken, lines=[*chart.curves, *rules]
         )
-        or svg.first_free(places, within=chart.plot, taken=taken, lines=chart.curves)
-        or svg.first_free(places, within=chart.plot, taken=taken)
-        or svg.first_free(places, within=chart.plot, taken=())
+        or svg.first_free(
+            places, within=chart.words_area, taken=taken, lines=chart.curves
+        )
+        or svg.first_free(places, within=chart.words_area, taken=taken)
+        or svg.first_free(places, within=chart.words_area, taken=())
         or places[0]
     )
     taken.append(label.box)

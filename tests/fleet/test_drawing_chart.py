@@ -157,6 +157,15 @@ def test_reference_words_keep_off_the_curve_that_rises_at_the_right():
     assert not words.box.crossed_by(growth.curves[0])
 
 
+def test_a_point_at_the_top_of_a_falling_curve_is_named_off_the_curve():
+    chart = strength_chart(
+        series=[Series("strength", (15, 50, 150, 460), (300, 270, 100, 25))],
+        point=Point(29.7, 290.0, "29.7 mm"),
+    )
+    (words,) = [la for la in labels_of(chart) if la.words == "29.7 mm"]
+    assert not words.box.crossed_by(chart.curves[0])
+
+
 def test_several_curves_are_told_apart_by_class_and_by_name():
     chart = strength_chart(
         series=[Series("before", (0, 10), (5, 6)), Series("after", (0, 10), (2, 3))]
