@@ -15,6 +15,7 @@ from fleet.drawing.svg import Box, Label
 
 WIDTH, HEIGHT = 560.0, 270.0
 TOP, RIGHT, BOTTOM = 14.0, 544.0, 228.0
+LINE = 13.0
 _ROUND_STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 
 NOT_A_NUMBER = (
@@ -153,7 +154,20 @@ class Chart:
         """The area of the curves; its left edge leaves room for the figures."""
         figures = (self.y_axis.label(tick) for tick in self.y_axis.ticks)
         widest = max(svg.text_width(words) for words in figures)
-        return Box(left=widest + 26.0, top=TOP, right=RIGHT, bottom=BOTTOM)
+        title = LINE * len(self.y_words)
+        return Box(left=widest + title + 13.0, top=TOP, right=RIGHT, bottom=BOTTOM)
+
+    @cached_property
+    def y_words(self) -> list[str]:
+        """The title of the upright axis, in two lines if one were too long."""
+        words = self.y_label.split(" ")
+        if svg.text_width(self.y_label) <= HEIGHT - 10 or len(words) < 2:
+            return [self.y_label]
+        halves = (
+            (" ".join(words[:cut]), " ".join(words[cut:]))
+            for cut in range(1, len(words))
+        )
+        return list(min(halves, key=lambda pair: max(map(svg.text_width, pair))))
 
     @property
     def words_area(self) -> Box:
@@ -216,14 +230,18 @@ def _grid(chart: Chart) -> Iterator[str]:
     yield from (label.drawn("tick") for label in _tick_labels(chart))
     middle = (chart.plot.left + RIGHT) / 2
     yield Label(chart.x_label, middle, HEIGHT - 6, "middle").drawn("axis")
-    middle = (TOP + BOTTOM) / 2
-    yield svg.tag(
-        "text",
-        svg.text(chart.y_label),
-        class_="axis",
-        transform=f"translate(11 {svg.number(middle)}) rotate(-90)",
-        text_anchor="middle",
-    )
+    height = (TOP + BOTTOM) / 2 if len(chart.y_words) == 1 else HEIGHT / 2
+    for row, words in enumerate(chart.y_words):
+        place = (
+            f"translate({svg.number(11 + LINE * row)} {svg.number(height)}) rotate(-90)"
+        )
+        yield svg.tag(
+            "text",
+            svg.text(words),
+            class_="axis",
+            transform=place,
+            text_anchor="middle",
+        )
 
 
 def _tick_labels(chart: Chart) -> Iterator[Label]:

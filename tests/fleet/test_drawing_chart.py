@@ -166,6 +166,16 @@ def test_a_point_at_the_top_of_a_falling_curve_is_named_off_the_curve():
     assert not words.box.crossed_by(chart.curves[0])
 
 
+def test_a_long_title_of_the_upright_axis_stands_in_two_lines():
+    long = "residual strength, gross, on the thickness left by the blend, MPa"
+    chart = strength_chart(y_label=long)
+    assert " ".join(chart.y_words) == long
+    assert len(chart.y_words) == 2
+    assert all(svg.text_width(words) < HEIGHT for words in chart.y_words)
+    assert chart.plot.left > strength_chart().plot.left
+    assert strength_chart().y_words == ["strength, MPa"]
+
+
 def test_several_curves_are_told_apart_by_class_and_by_name():
     chart = strength_chart(
         series=[Series("before", (0, 10), (5, 6)), Series("after", (0, 10), (2, 3))]
