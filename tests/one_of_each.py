@@ -14,6 +14,8 @@ from fleet.due import Counters
 from fleet.models import (
     AircraftPeriod,
     Attachment,
+    Document,
+    LifeLimit,
     Membership,
     Operator,
     Role,
@@ -23,7 +25,11 @@ from fleet.models import (
 from fleet.services.documents import attachment_store, document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.materials import demo_values_load
-from fleet.services.part_records import part_number_record, part_record
+from fleet.services.part_records import (
+    life_limit_key,
+    part_number_record,
+    part_record,
+)
 from repairs.models import (
     Disposition,
     Evaluation,
@@ -82,6 +88,7 @@ class OneOfEach:
     requirement: InspectionRequirement
     subject: RequirementSubject
     part: SafeLifePart
+    life_limit: LifeLimit
     attachment: Attachment
     membership: Membership
 
@@ -97,7 +104,7 @@ def one_of_each_make() -> OneOfEach:
         element="skin",
         place_entered="STA 630, 5 in below S-8R",
     )
-    requirement = _requirement(world)
+    requirement, part = _requirement(world), _part(world)
     return OneOfEach(
         world=world,
         outsiders=_members(world.outsider.memberships.get().operator, "outsider"),
@@ -111,7 +118,8 @@ def one_of_each_make() -> OneOfEach:
         repair=_repair(world),
         requirement=requirement,
         subject=requirement.subjects.get(),
-        part=_part(world),
+        part=part,
+        life_limit=part.part_number.life_limits.get(),
         attachment=_photograph(world, finding),
         membership=world.users["recorder"].memberships.get(),
     )
@@ -211,11 +219,14 @@ def _repair(world: World) -> Repair:
     )
 
 
-def _requirement(world: World) -> InspectionRequirement:
+def _document(world: World, kind: str, reference: str) -> Document:
     with Writing(actor=None, action="document_record", at=NOW) as w:
-        document = document_get_or_create(
-            w, operator=world.operator, kind="programme", reference="AMP-1"
+        return document_get_or_create(
+            w, operator=world.operator, kind=kind, reference=reference
         )
+
+
+def _requirement(world: World) -> InspectionRequirement:
     return requirement_raise(
         draft=RequirementDraft(
             operator=world.operator,
@@ -227,7 +238,7 @@ def _requirement(world: World) -> InspectionRequirement:
             effective_on=FIRST,
             limits=(LimitEntry("threshold", "10,100 FC", base="new"),),
             aircraft=(world.aircraft,),
-            source_document=document,
+            source_document=_document(world, "programme", "AMP-1"),
         ),
         actor=world.engineer,
         at=NOW,
@@ -241,6 +252,16 @@ def _part(world: World) -> SafeLifePart:
         operator=world.operator,
         number="ARD-FIT-1",
         title="Main fitting",
+    )
+    life_limit_key(
+        actor=world.engineer,
+        at=NOW,
+        part_number=kind,
+        entered="30,000 FC",
+        base="birth",
+        document=_document(world, "limitations", "ALS-4"),
+        page="4-1",
+        effective_from=BEGAN,
     )
     return part_record(
         actor=None,

@@ -11,10 +11,10 @@ import pytest
 from tests.site_pages import FORM, PAGES, READ
 
 LOOKED_AT = [n for n, p in PAGES.items() if p.kind in (FORM, READ) and p.looks]
-DESK, PHONE = {"width": 1280, "height": 900}, {"width": 390, "height": 844}
+DESK, PHONE = "desk", "phone in the dark"
 SCREENS = {
-    "desk": {"viewport": DESK, "color_scheme": "light"},
-    "phone in the dark": {"viewport": PHONE, "color_scheme": "dark"},
+    DESK: {"viewport": {"width": 1280, "height": 900}, "color_scheme": "light"},
+    PHONE: {"viewport": {"width": 390, "height": 844}, "color_scheme": "dark"},
 }
 TOO_WIDE = """() => {
   const wide = document.documentElement.clientWidth;
@@ -49,7 +49,7 @@ def opened(
 
 @pytest.mark.parametrize("screen", SCREENS)
 @pytest.mark.parametrize("name", LOOKED_AT)
-def test_a_page_is_quiet_fits_and_is_accessible(
+def test_a_page_is_quiet_fits_is_accessible_and_prints(
     name, screen, site, chromium, signed_in, axe
 ):
     visit = site.visits[name]
@@ -58,24 +58,22 @@ def test_a_page_is_quiet_fits_and_is_accessible(
         assert page.evaluate(TOO_WIDE) == []
         page.evaluate(axe)
         assert page.evaluate(AXE_RUN) == []
+        if screen == DESK:
+            prints(page)
 
 
-@pytest.mark.parametrize("name", [n for n in LOOKED_AT if PAGES[n].kind == READ])
-def test_a_page_prints_without_its_navigation(name, site, chromium, signed_in):
-    visit = site.visits[name]
-    screen = SCREENS["desk"]
-    state = signed_in(visit.role)
-    with opened(chromium, state, site.origin, visit.address, screen) as page:
-        page.emulate_media(media="print")
-        assert not page.locator("header.top").is_visible()
-        assert page.locator("h1").first.is_visible()
-        printed = page.pdf()
+def prints(page: Any) -> None:
+    """On paper there is no navigation, and there is something to read."""
+    page.emulate_media(media="print")
+    assert not page.locator("header.top").is_visible()
+    assert page.locator("h1").first.is_visible()
+    printed = page.pdf()
     assert printed.startswith(b"%PDF-")
     assert len(printed) > 5_000
 
 
 def test_signing_in_is_accessible_and_says_what_went_wrong(site, chromium, axe):
-    screen = SCREENS["phone in the dark"]
+    screen = SCREENS[PHONE]
     with opened(chromium, None, site.origin, "/sign-in/", screen) as page:
         page.evaluate(axe)
         assert page.evaluate(AXE_RUN) == []
