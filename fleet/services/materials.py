@@ -54,7 +54,7 @@ def demo_values_load(
     actor: User | None,
     at: dt.datetime,
 ) -> int:
-    """Adopt the file's demonstration values for an operator, once; how many were new."""
+    """Adopt the demonstration values for an operator, once; how many were new."""
     new = 0
     with Writing(actor=actor, action="demo_values_load", at=at, operator=operator) as w:
         for entry in _file(path).adopted:
