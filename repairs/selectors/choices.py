@@ -61,7 +61,7 @@ def decision_choices(
     others = Finding.objects.filter(aircraft=finding.aircraft_id, state__in=states)
     return {
         "also": others.exclude(pk=finding.pk),
-        "decided_by": signers_at(finding.operator, scopes),
+        "decided_by": signers_at(finding.aircraft.operator, scopes),
         "evaluations": finding.evaluations.filter(replaced_by__isnull=True),
         "limit_checks": finding.limit_checks.all(),
         "requirement": InspectionRequirement.objects.filter(

@@ -18,14 +18,13 @@ from fleet.models import (
     Aircraft,
     Attachment,
     AuthorisationScope,
-    Operator,
     Person,
     User,
 )
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from repairs.models import Approval, Disposition, Evaluation, Finding, Meaning, Repair
-from repairs.services.authority import authorised
+from repairs.services.authority import authorised, operator_on
 
 Subject = Disposition | Evaluation | Repair | Finding
 SUBJECT_COLUMN: dict[type[Subject], str] = {
@@ -106,8 +105,8 @@ def approval_sign(
         actor=actor,
         action="approval_sign",
         at=at,
-        operator=subject.operator,
-        stream=stream_of(_aircraft_of(subject)),
+        operator=aircraft_of(subject).operator,
+        stream=stream_of(aircraft_of(subject)),
         reason=statement,
     ) as w:
         return approval_write(
@@ -138,7 +137,7 @@ def approval_write(
     wanted = scopes or SCOPES.get(meaning, ())
     if not wanted:
         raise ValidationError(NOT_SIGNABLE.format(meaning=meaning))
-    operator: Operator = subject.operator
+    operator = operator_on(aircraft_of(subject), on)
     authorisation = authorised(person=person, operator=operator, scopes=wanted, on=on)
     _another_person(subject, meaning, person)
     if isinstance(subject, Evaluation) and meaning in APPROVING:
@@ -294,7 +293,7 @@ def _approvable(evaluation: Evaluation) -> None:
         raise ValidationError(CHECK_FIRST.format(number=number))
 
 
-def _aircraft_of(subject: Subject) -> Aircraft:
+def aircraft_of(subject: Subject) -> Aircraft:
     if isinstance(subject, Evaluation):
         holder = subject.finding or subject.repair
         return holder.aircraft  # type: ignore[union-attr]  # it has exactly one

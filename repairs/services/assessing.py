@@ -22,7 +22,7 @@ from repairs.models import (
     OccurrenceReport,
 )
 from repairs.services.approvals import Signed, approval_write
-from repairs.services.authority import ASSESSORS, CERTIFIERS, authorised
+from repairs.services.authority import ASSESSORS, CERTIFIERS, authorised, operator_on
 from repairs.services.due_points import due_points_close
 from repairs.services.limits import limits_check
 
@@ -86,7 +86,7 @@ def finding_assess(
         actor=actor,
         action="finding_assess",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
         reason=f"{data.reference} rev {data.revision}, {data.page}",
     ) as w:
@@ -192,7 +192,7 @@ def finding_close(
         actor=actor,
         action="finding_close",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
         reason=reason,
     ) as w:
@@ -216,7 +216,8 @@ def finding_close_write(
     report: Reportability | None = None,
 ) -> Finding:
     """Inside a writing: guards, the answer on reporting, the release signature."""
-    authorised(person=person, operator=finding.operator, scopes=CERTIFIERS, on=on)
+    operator = operator_on(finding.aircraft, on)
+    authorised(person=person, operator=operator, scopes=CERTIFIERS, on=on)
     if problems := close_problems(finding, report):
         raise ValidationError(problems)
     if report is not None:
@@ -248,7 +249,7 @@ def close_problems(finding: Finding, report: Reportability | None) -> list[str]:
         if hidden and not finding.photographs.filter(role="before_covering").exists():
             problems.append(PHOTOGRAPH_FIRST.format(repair=row.repair))
     if report is None and must_decide_report(finding):
-        regime = finding.operator.regime
+        regime = finding.aircraft.operator.regime
         problems.append(REPORTABLE_UNDECIDED.format(number=finding, regime=regime))
     return problems
 
@@ -287,7 +288,7 @@ def finding_link(
         actor=actor,
         action="finding_link",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
     ) as w:
         return finding_link_write(
@@ -334,7 +335,7 @@ def finding_void(
         actor=actor,
         action="finding_void",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
         reason=reason.strip(),
     ) as w:
@@ -361,15 +362,16 @@ def _set_aside(w: Writing, finding: Finding, state: FindingState) -> None:
 def _report(w: Writing, finding: Finding, report: Reportability) -> None:
     if not report.reason.strip():
         raise ValidationError({"report_reason": REASON_NEEDED})
-    clock = policy(finding.operator, REPORT_HOURS, w.at.date())
+    operator = finding.aircraft.operator
+    clock = policy(operator, REPORT_HOURS, w.at.date())
     due_at = None
     if report.reportable and clock is not None:
         due_at = w.at + dt.timedelta(hours=clock.value)
     w.create(
         OccurrenceReport(
-            operator=finding.operator,
+            operator=operator,
             finding=finding,
-            regime=finding.operator.regime,
+            regime=operator.regime,
             state="reportable" if report.reportable else "not_reportable",
             reason=report.reason.strip(),
             detected_at=w.at,

@@ -6,7 +6,14 @@ import datetime as dt
 
 from django.core.exceptions import ValidationError
 
-from fleet.models import Authorisation, AuthorisationScope, Operator, Person
+from fleet.models import (
+    Aircraft,
+    AircraftPeriod,
+    Authorisation,
+    AuthorisationScope,
+    Operator,
+    Person,
+)
 from fleet.selectors.people import authorisation_on
 
 ASSESSORS = (AuthorisationScope.ASSESS, AuthorisationScope.CERTIFY)
@@ -40,6 +47,17 @@ def authorised(
             detail=_detail(person, operator, scopes, on),
         )
     )
+
+
+def operator_on(aircraft: Aircraft, day: dt.date) -> Operator:
+    """Who operated the aircraft that day; before its first period, who does now."""
+    period = (
+        AircraftPeriod.objects.filter(aircraft=aircraft, from_on__lte=day)
+        .select_related("operator")
+        .order_by("-from_on")
+        .first()
+    )
+    return period.operator if period else aircraft.operator
 
 
 def _detail(

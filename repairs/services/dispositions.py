@@ -23,7 +23,7 @@ from repairs.models import (
     NeighbourReview,
     Repair,
 )
-from repairs.services.authority import authorised
+from repairs.services.authority import authorised, operator_on
 from repairs.services.disposition_entry import (
     KEEPS_DAMAGE,
     DispositionEntry,
@@ -32,7 +32,6 @@ from repairs.services.disposition_entry import (
     scopes_for,
 )
 from repairs.services.due_points import deferral_due_open, due_points_close
-from repairs.services.findings import operator_on
 from repairs.services.inspections import requirement_raise_within
 
 STATE_AFTER: dict[str, FindingState] = {

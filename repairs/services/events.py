@@ -11,7 +11,7 @@ from fleet.services.history import Writing
 from fleet.services.numbers import number_next
 from fleet.services.parts import counter_columns
 from repairs.models import Event
-from repairs.services.findings import operator_on
+from repairs.services.authority import operator_on
 
 
 def event_record(

@@ -16,9 +16,7 @@ from django.core.exceptions import ValidationError
 from fleet.due import Counters, Standing
 from fleet.models import (
     Aircraft,
-    AircraftPeriod,
     Criticality,
-    Operator,
     Person,
     SafeLifePart,
     User,
@@ -38,6 +36,7 @@ from repairs.plausibility import (
     counter_questions,
 )
 from repairs.services.assessing import finding_link_write
+from repairs.services.authority import operator_on
 from repairs.services.measuring import Measuring, measurement_write, questions_ask
 from repairs.services.photographs import Photo, photographs_write
 from repairs.services.places import (
@@ -234,7 +233,7 @@ def finding_relocate(
         actor=actor,
         action="finding_relocate",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
         reason=reason,
     ) as w:
@@ -262,7 +261,7 @@ def finding_question_answer(
         actor=actor,
         action="finding_question_answer",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
     ) as w:
         row = w.locked(FindingQuestion.objects.all(), pk=question.pk)
@@ -275,17 +274,6 @@ def finding_question_answer(
 def standing_on(aircraft: Aircraft, day: dt.date) -> Standing:
     """What the aircraft had flown by that day."""
     return aircraft_standing(aircraft, as_of=day).standing
-
-
-def operator_on(aircraft: Aircraft, day: dt.date) -> Operator:
-    """Who operated the aircraft that day; before its first period, who does now."""
-    period = (
-        AircraftPeriod.objects.filter(aircraft=aircraft, from_on__lte=day)
-        .select_related("operator")
-        .order_by("-from_on")
-        .first()
-    )
-    return period.operator if period else aircraft.operator
 
 
 def _sent_before(entry: FindingEntry) -> Finding | None:

@@ -54,7 +54,7 @@ def measurement_record(
         actor=actor,
         action="measurement_record",
         at=at,
-        operator=finding.operator,
+        operator=finding.aircraft.operator,
         stream=stream_of(finding.aircraft),
     ) as w:
         w.locked(Finding.objects.all(), pk=finding.pk)

@@ -38,7 +38,7 @@ def photographs_add(
         actor=actor,
         action="photographs_add",
         at=at,
-        operator=shown.operator,
+        operator=shown.aircraft.operator,
         stream=stream_of(shown.aircraft),
     ) as w:
         return photographs_write(w, shown=shown, photos=photos)
@@ -54,7 +54,7 @@ def photographs_write(
             Photograph(
                 attachment=attachment_store(
                     w,
-                    operator=shown.operator,
+                    operator=shown.aircraft.operator,
                     upload=photo.upload,
                     title=photo.caption,
                 ),

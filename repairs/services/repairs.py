@@ -28,14 +28,13 @@ from repairs.models import (
 )
 from repairs.selectors.edges import edge_margin_mm
 from repairs.services.assessing import deferrals_close
-from repairs.services.authority import CERTIFIERS, authorised
+from repairs.services.authority import CERTIFIERS, authorised, operator_on
 from repairs.services.due_points import (
     due_point_open,
     due_points_close,
     replacement_due_open,
     stage_clock_open,
 )
-from repairs.services.findings import operator_on
 from repairs.services.inspections import requirement_raise_within
 from repairs.services.photographs import photographs_write
 from repairs.services.places import (
@@ -145,7 +144,7 @@ def repair_remove(
         actor=actor,
         action="repair_remove",
         at=at,
-        operator=repair.operator,
+        operator=repair.aircraft.operator,
         stream=stream_of(repair.aircraft),
         reason=reason,
     ) as w:

@@ -22,6 +22,7 @@ from repairs.models import Approval, Disposition, Evaluation, Meaning, Repair
 from repairs.services.approvals import (
     Signed,
     Subject,
+    aircraft_of,
     approval_sign,
     content_lines,
     content_of,
@@ -52,7 +53,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
     """The canonical text as it will be bound, and the form to sign it."""
     rows = SUBJECTS[what].objects.select_related("operator", "entered_by")
     subject: Any = visible_or_404(rows, request.user, pk=pk)
-    require(request.user, "approval_sign", subject.operator_id)
+    require(request.user, "approval_sign", aircraft_of(subject).operator_id)
     content = content_of(subject)
     form = SignForm(
         request.POST or None,

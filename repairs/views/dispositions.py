@@ -84,7 +84,7 @@ def disposition(request: Request, pk: int) -> HttpResponse:
         "repairs": row.repairs.all(),
         "later": Disposition.objects.filter(replaces=row).first(),
         "approvals": approvals_verified(row),
-        "may_sign": may(request.user, "approval_sign", row.operator_id),
+        "may_sign": may(request.user, "approval_sign", row.aircraft.operator_id),
         "history": history_of(row),
     }
     return render(request, "repairs/disposition.html", context)
@@ -120,7 +120,7 @@ def _decide(
             limit=form.limit(),
             neighbours=form.reviewed(),
             new_requirement=raised.draft(
-                operator=row.operator,
+                operator=row.aircraft.operator,
                 aircraft=row.aircraft,
                 on=data["decided_on"],
                 base="effective",

@@ -83,7 +83,7 @@ def finding_measure(request: Request, pk: int) -> HttpResponse:
     flown = standing_on(row.aircraft, today()).at
     form = MeasureForm(
         request.POST or None,
-        people=people_at([row.operator]),
+        people=people_at([row.aircraft.operator]),
         today=today(),
         initial={
             "measured_on": today(),
@@ -110,7 +110,7 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "finding_assess")
     form = AssessForm(
         request.POST or None,
-        people=signers_at(row.operator, ASSESSORS),
+        people=signers_at(row.aircraft.operator, ASSESSORS),
         today=today(),
         initial={
             "person": request.user.person_id,
@@ -144,7 +144,7 @@ def finding_close_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "finding_assess")
     form = CloseForm(
         request.POST or None,
-        people=signers_at(row.operator, CERTIFIERS),
+        people=signers_at(row.aircraft.operator, CERTIFIERS),
         today=today(),
         initial={
             "person": request.user.person_id,

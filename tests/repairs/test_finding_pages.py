@@ -11,7 +11,9 @@ from django.core.files.uploadedfile import SimpleUploadedFile
 from django.urls import reverse
 from PIL import Image
 
+from fleet.models import Aircraft, AircraftPeriod
 from repairs.models import Finding, Measurement
+from tests.factories import NOW, authorise
 from tests.queries import assert_same_queries
 from tests.record_rows import FOUND, assessed, found
 
@@ -345,3 +347,29 @@ def test_the_page_costs_the_same_among_more_neighbours(client, world):
         lambda: [found(world) for _ in range(8)],
         ceiling=50,
     )
+
+
+def test_the_present_operator_acts_on_damage_of_an_earlier_period(client, world):
+    finding = found(world)
+    present = world.outsider.open_memberships[0].operator
+    aircraft = world.aircraft
+    AircraftPeriod.objects.filter(aircraft=aircraft).update(to_on=FOUND)
+    AircraftPeriod.objects.create(
+        aircraft=aircraft,
+        operator=present,
+        registration="Q7-OTH",
+        regime="EASA",
+        from_on=FOUND + dt.timedelta(days=1),
+        entered_at=NOW,
+    )
+    Aircraft.objects.filter(pk=aircraft.pk).update(operator=present)
+    authorise(world.outsider.person, present, "assess")
+    url = reverse("finding_assess", args=[finding.pk])
+    client.force_login(world.engineer)
+    assert client.get(url).status_code == 403
+    client.force_login(world.outsider)
+    said = filled(client.get(url))
+    said |= {"document_reference": "SRM 53-10-12", "document_page": "p. 101"}
+    assert client.post(url, said).status_code == 302
+    finding.refresh_from_db()
+    assert (finding.state, finding.operator) == ("assessed", world.operator)
