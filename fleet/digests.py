@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
+from functools import cache
+from typing import Any
 
 from django.apps import apps
 from django.conf import settings
@@ -42,15 +44,26 @@ def recorded_models() -> list[type[models.Model]]:
 
 def row_digest(row: models.Model) -> str:
     """SHA-256 over all columns in name order, as the database gives them back."""
-    columns = sorted(row._meta.concrete_fields, key=lambda field: field.attname)
     return digest(
         canonical(
             [
-                [field.attname, plain(field.to_python(getattr(row, field.attname)))]
-                for field in columns
-                if field.attname not in NOT_DIGESTED
+                [name, plain(to_python(getattr(row, name)))]
+                for name, to_python in _columns(type(row))
             ]
         )
+    )
+
+
+@cache
+def _columns(model: type[models.Model]) -> list[tuple[str, Callable[[Any], Any]]]:
+    """The digested columns of a table, in name order."""
+    return sorted(
+        (
+            (field.attname, field.to_python)
+            for field in model._meta.concrete_fields
+            if field.attname not in NOT_DIGESTED
+        ),
+        key=lambda column: column[0],
     )
 
 
