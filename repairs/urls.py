@@ -77,6 +77,11 @@ urlpatterns = [
         name="accomplishment_new",
     ),
     path(
+        "accomplishments/<int:pk>/correct/",
+        accomplishments.accomplishment_correct,
+        name="accomplishment_correct",
+    ),
+    path(
         "requirements/<int:pk>/verify/<int:subject_pk>/",
         accomplishments.termination_check,
         name="requirement_verify",

@@ -31,6 +31,7 @@ from fleet.services.part_records import (
     part_record,
 )
 from repairs.models import (
+    Accomplishment,
     Disposition,
     Evaluation,
     Finding,
@@ -40,6 +41,7 @@ from repairs.models import (
     Repair,
     RequirementSubject,
 )
+from repairs.services.accomplishments import accomplishment_record
 from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
 from repairs.services.evaluation_inputs import Choice
@@ -87,6 +89,7 @@ class OneOfEach:
     repair: Repair
     requirement: InspectionRequirement
     subject: RequirementSubject
+    accomplishment: Accomplishment
     part: SafeLifePart
     life_limit: LifeLimit
     attachment: Attachment
@@ -118,6 +121,7 @@ def one_of_each_make() -> OneOfEach:
         repair=_repair(world),
         requirement=requirement,
         subject=requirement.subjects.get(),
+        accomplishment=_accomplishment(requirement),
         part=part,
         life_limit=part.part_number.life_limits.get(),
         attachment=_photograph(world, finding),
@@ -243,6 +247,18 @@ def _requirement(world: World) -> InspectionRequirement:
         actor=world.engineer,
         at=NOW,
     )
+
+
+def _accomplishment(requirement: InspectionRequirement) -> Accomplishment:
+    return accomplishment_record(
+        actor=None,
+        at=NOW,
+        today=TODAY,
+        subject=requirement.subjects.get(),
+        done_on=FOUND,
+        counters=AT,
+        result="no_finding",
+    ).row
 
 
 def _part(world: World) -> SafeLifePart:

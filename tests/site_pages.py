@@ -120,6 +120,9 @@ PAGES: dict[str, Page] = {
     "requirement_answer": Page(FORM, "requirement_raise", key("requirement")),
     "requirement_again": Page(FORM, "requirement_rekey", key("requirement")),
     "accomplishment_new": Page(FORM, "accomplishment_record", subject),
+    "accomplishment_correct": Page(
+        FORM, "accomplishment_record", key("accomplishment")
+    ),
     "requirement_verify": Page(FORM, "accomplishment_record", subject),
     "attachment": Page(keys=key("attachment"), looks=False),
     "evaluation_new": Page(FORM, "evaluation_make", key("crack")),

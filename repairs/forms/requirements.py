@@ -228,6 +228,12 @@ class DoneForm(CountersForm):
         )
 
 
+class DoneAgainForm(DoneForm):
+    """The accomplishment as it should have been recorded."""
+
+    reason = forms.CharField(label="why it is corrected", widget=forms.TextInput(WIDE))
+
+
 class SistersForm(forms.Form):
     """A look at the same location of other aircraft of the type."""
 

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from datetime import date, datetime
+from typing import Any
 
 from fleet.due import COUNTER_WORDS, Counters, Due, Remaining
 from fleet.models import Document, Person, User
+from fleet.selectors.life_limits import columns
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.parts import counter_columns
@@ -24,7 +26,11 @@ from repairs.selectors.requirement_due import (
     needed_counters,
     subject_overrun,
 )
-from repairs.services.due_points import due_point_open, due_points_close
+from repairs.services.due_points import (
+    due_point_close,
+    due_point_open,
+    due_points_close,
+)
 from repairs.services.inspections import (
     NO_REASON,
     RequirementRefused,
@@ -44,6 +50,9 @@ OUT_OF_ORDER = (
 COUNTER_MISSING = (
     "Give the {counter} at the inspection; the next one is counted from it."
 )
+NOT_CURRENT = "That row was corrected before; correct the row that replaced it."
+NO_CORRECTION_REASON = "Say why the row is corrected."
+CORRECTED = "the accomplishment before it was corrected"
 FINDING_MISSING = "Name the finding; a result with a finding has its own record."
 NO_EVIDENCE = "Say what shows that the terminating action is in place, and who saw it."
 UNVERIFIED = "the terminating action is not verified yet"
@@ -74,21 +83,31 @@ def accomplishment_record(
     release_document: Document | None = None,
     evidence: str = "",
     late_approval: str = "",
+    replaces: Accomplishment | None = None,
+    reason: str = "",
 ) -> Accomplished:
     """Record one doing on one subject and open the next due point.
 
     `counters` are the subject's own at release. `late_approval` names the approval of
     lateness, if there was one. A terminating action keeps the item on the list until
-    another person has verified its evidence.
+    another person has verified its evidence. `replaces` is the row that this one
+    corrects, with the reason; what is due next is made again from what holds now.
     """
     requirement = subject.requirement
     stream = stream_of(subject.aircraft) if subject.aircraft else "fleet"
     with requirement_writing(
-        actor, "accomplishment_record", at, requirement.operator, stream=stream
+        actor,
+        "accomplishment_correct" if replaces else "accomplishment_record",
+        at,
+        requirement.operator,
+        stream=stream,
+        reason=reason,
     ) as w:
         w.locked(RequirementSubject.objects.all(), pk=subject.pk)
         subject.refresh_from_db(fields=["state", "applies"])
-        problems = _done_problems(subject, done_on, counters, today)
+        problems = _done_problems(subject, done_on, counters, today, replaces)
+        if replaces is not None and not reason.strip():
+            problems.append(NO_CORRECTION_REASON)
         if result == "finding" and finding is None:
             problems.append(FINDING_MISSING)
         if result == "terminated" and not evidence.strip():
@@ -107,6 +126,7 @@ def accomplishment_record(
                 evidence=evidence,
                 late_approved=bool(late_approval.strip()),
                 late_approval=late_approval.strip(),
+                replaces=replaces,
                 **counter_columns("at", counters),
             )
         )
@@ -117,7 +137,11 @@ def accomplishment_record(
 
 
 def _done_problems(
-    subject: RequirementSubject, done_on: date, counters: Counters, today: date
+    subject: RequirementSubject,
+    done_on: date,
+    counters: Counters,
+    today: date,
+    replaces: Accomplishment | None,
 ) -> list[str]:
     requirement = subject.requirement
     problems = []
@@ -127,7 +151,10 @@ def _done_problems(
     if done_on > today:
         problems.append(IN_FUTURE.format(day=done_on, today=today))
     done = accomplishments_of(subject)
-    if done and done_on < done[-1].done_on:
+    if replaces is not None:
+        if replaces not in done:
+            problems.append(NOT_CURRENT)
+    elif done and done_on < done[-1].done_on:
         problems.append(OUT_OF_ORDER.format(day=done_on, last=done[-1].done_on))
     problems += [
         COUNTER_MISSING.format(counter=COUNTER_WORDS[counter][0])
@@ -147,9 +174,9 @@ def _next_due(w: Writing, subject: RequirementSubject, row: Accomplishment) -> N
             terminated_on=row.done_on,
             termination_evidence=row.evidence,
         )
-    due_points_close(
-        w, origin=subject, on=row.done_on, reason="done", by=row, kinds=INSPECTION
-    )
+    elif subject.state == RequirementState.TERMINATION_UNVERIFIED and row.replaces:
+        w.change(subject, state=RequirementState.EFFECTIVE.value)
+    _close(w, subject, row)
     opened = dues_open(w, subject, row.done_on, replacement=False)
     if row.result == "terminated" and not opened:
         due_point_open(
@@ -163,28 +190,38 @@ def _next_due(w: Writing, subject: RequirementSubject, row: Accomplishment) -> N
         )
 
 
+def _close(w: Writing, subject: RequirementSubject, row: Accomplishment) -> None:
+    """What was open is done; what a corrected row had opened never held."""
+    if row.replaces is None:
+        due_points_close(
+            w, origin=subject, on=row.done_on, reason="done", by=row, kinds=INSPECTION
+        )
+        return
+    for point in subject.due_points.filter(closed_on__isnull=True, kind__in=INSPECTION):
+        due_point_close(w, point, on=point.opened_on, reason=CORRECTED)
+
+
 def _looked(
     w: Writing, requirement: InspectionRequirement, row: Accomplishment
 ) -> None:
     """Every inspection of an aircraft is a look that rates per inspection count."""
-    subject = row.subject
+    subject, before = row.subject, row.replaces
     if subject.aircraft is None:
         return
-    w.create(
-        ZoneInspected(
-            aircraft=subject.aircraft,
-            area=requirement.area,
-            inspected_on=row.done_on,
-            level=LEVELS.get(requirement.method, "special"),
-            method=requirement.method,
-            inspected_by=row.done_by,
-            found=row.result == "finding",
-            at_minutes=row.at_minutes,
-            at_cycles=row.at_cycles,
-            at_landings=row.at_landings,
-            at_pressurisations=row.at_pressurisations,
-        )
-    )
+    seen: dict[str, Any] = {
+        "inspected_on": row.done_on,
+        "inspected_by_id": row.done_by_id,
+        "found": row.result == "finding",
+        **counter_columns("at", columns(row, "at")),
+    }
+    place = {"aircraft": subject.aircraft, "area": requirement.area}
+    if before is not None:
+        look = ZoneInspected.objects.filter(**place, inspected_on=before.done_on).last()
+        if look is not None:
+            w.change(look, **seen)
+        return
+    level = LEVELS.get(requirement.method, "special")
+    w.create(ZoneInspected(**place, level=level, method=requirement.method, **seen))
 
 
 def subject_not_applicable(

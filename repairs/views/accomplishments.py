@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from django.contrib import messages
+from django.forms.models import model_to_dict
 from django.http import HttpResponse
 from django.shortcuts import redirect, render
 from django.views.decorators.http import require_http_methods
@@ -19,11 +20,12 @@ from fleet.views.requests import Request
 from fleet.views.sending import sent
 from repairs.forms.requirements import (
     AnswerForm,
+    DoneAgainForm,
     DoneForm,
     SistersForm,
     VerifyForm,
 )
-from repairs.models import Finding, RequirementSubject
+from repairs.models import Accomplishment, Finding, RequirementSubject
 from repairs.selectors.choices import people_at
 from repairs.selectors.requirements import (
     coverage_of,
@@ -75,6 +77,31 @@ def accomplishment_new(request: Request, pk: int, subject_pk: int) -> HttpRespon
     return render(request, "repairs/accomplishment_new.html", context)
 
 
+@require_http_methods(FORM_METHODS)
+def accomplishment_correct(request: Request, pk: int) -> HttpResponse:
+    """The same inspection as it should have been recorded; the first row stays."""
+    rows = Accomplishment.objects.select_related(
+        "subject__requirement__operator", "subject__aircraft", "subject__part"
+    )
+    row = visible_or_404(rows, request.user, pk=pk)
+    subject = row.subject
+    operator = subject.requirement.operator
+    require(request.user, "accomplishment_record", operator.pk)
+    form = DoneAgainForm(
+        request.POST or None,
+        operator=operator,
+        findings=findings_on(subject),
+        people=people_at([operator]),
+        initial=model_to_dict(row),
+    )
+    made = sent(form, lambda: _record(request, subject, form, replaces=row))
+    if made:
+        _told(request, made)
+        return redirect("requirement", subject.requirement_id)
+    context = {"form": form, "subject": subject, "requirement": subject.requirement}
+    return render(request, "repairs/accomplishment_new.html", context)
+
+
 def _subject(request: Request, pk: int, subject_pk: int) -> RequirementSubject:
     rows = RequirementSubject.objects.select_related(
         "requirement__operator", "aircraft", "part__part_number"
@@ -93,10 +120,15 @@ def _initial(subject: RequirementSubject) -> dict[str, Any]:
     return counters | {"done_on": today()}
 
 
-def _record(request: Request, subject: RequirementSubject, form: DoneForm) -> Any:
+def _record(
+    request: Request,
+    subject: RequirementSubject,
+    form: DoneForm,
+    replaces: Accomplishment | None = None,
+) -> Any:
     data = form.cleaned_data
     service: dict[str, Any] = {"actor": request.user, "at": now(), "subject": subject}
-    if data["result"] == "not_applicable":
+    if data["result"] == "not_applicable" and replaces is None:
         return subject_not_applicable(
             **service, on=data["done_on"], reason=data["evidence"]
         )
@@ -107,6 +139,8 @@ def _record(request: Request, subject: RequirementSubject, form: DoneForm) -> An
         counters=form.counters(),
         evidence=data["evidence"],
         late_approval=data["late_approval"],
+        replaces=replaces,
+        reason=data.get("reason", ""),
         **{name: data[name] for name in names},
     )
 

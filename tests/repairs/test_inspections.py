@@ -426,3 +426,47 @@ def again(requirement, actor, limits):
         limits=limits,
         applicability=["q7-tsa"],
     )
+
+
+class TestCorrection:
+    def test_what_is_due_next_is_made_again_from_what_holds_now(self):
+        """Keyed 36,201 for 36,102: next 41,102 instead of 41,201."""
+        requirement = raised(repair(make.aircraft()), THRESHOLD, REPEAT)
+        subject = requirement.subjects.get()
+        wrong = done(subject, 36_201).row
+        right = done(subject, 36_102, replaces=wrong, reason="digits swapped").row
+        assert right.replaces == wrong
+        (point,) = open_points(requirement)
+        assert point.due_cycles == 41_102
+        void = DuePoint.objects.get(due_cycles=41_201)
+        assert void.closed_on == void.opened_on
+        assert ZoneInspected.objects.get().at_cycles == 36_102
+
+    def test_an_earlier_row_is_corrected_and_the_chain_follows(self):
+        """36,102 + 5,000 = 41,102 done at 41,150, 48 late: next 46,102. Corrected to
+        36,202: due 41,202, so 41,150 was early: next 46,150."""
+        requirement = raised(repair(make.aircraft()), THRESHOLD, REPEAT)
+        subject = requirement.subjects.get()
+        first = done(subject, 36_102).row
+        done(subject, 41_150, on=day(9))
+        assert open_points(requirement)[0].due_cycles == 46_102
+        done(subject, 36_202, replaces=first, reason="log page misread")
+        assert open_points(requirement)[0].due_cycles == 46_150
+
+    def test_a_termination_claimed_by_mistake_is_taken_back(self):
+        requirement = raised(repair(make.aircraft()), THRESHOLD, REPEAT)
+        subject = requirement.subjects.get()
+        claim = done(subject, 36_000, result="terminated", evidence="seen").row
+        done(subject, 36_000, replaces=claim, reason="wrong aircraft")
+        subject.refresh_from_db()
+        assert subject.state == "effective"
+        assert open_points(requirement)[0].due_cycles == 41_000
+
+    def test_it_needs_its_reason_and_the_row_that_holds(self):
+        subject = raised(repair(make.aircraft()), THRESHOLD, REPEAT).subjects.get()
+        wrong = done(subject, 36_201).row
+        with pytest.raises(RequirementRefused, match="Say why the row"):
+            done(subject, 36_102, replaces=wrong)
+        done(subject, 36_102, replaces=wrong, reason="digits swapped")
+        with pytest.raises(RequirementRefused, match="corrected before"):
+            done(subject, 36_103, replaces=wrong, reason="again")

@@ -389,3 +389,29 @@ class TestAnswer:
         assert client.get(f"/requirements/{directive.pk}/answer/").status_code == 404
         as_user(client, "auditor")
         assert client.get(f"/requirements/{directive.pk}/answer/").status_code == 403
+
+
+class TestCorrect:
+    @pytest.fixture
+    def wrong(self, fixed):
+        subject = raised(fixed, THRESHOLD, REPEAT).subjects.get()
+        return done(subject, 25_063, on=day(8)).row
+
+    def test_the_row_as_it_should_have_been_counts(self, client, wrong):
+        as_user(client, "certifier")
+        address = f"/accomplishments/{wrong.pk}/correct/"
+        assert 'value="25063"' in client.get(address).content.decode()
+        data = {"done_on": str(day(8)), "result": "no_finding", "at_cycles": "25,036"}
+        refused = client.post(address, data)
+        assert "This field is required" in refused.content.decode()
+        client.post(address, data | {"reason": "digits swapped"})
+        assert DuePoint.objects.get(closed_on=None).due_cycles == 30_036
+        page = client.get(f"/requirements/{wrong.subject.requirement_id}/")
+        assert "corrects an earlier entry" in page.content.decode()
+
+    def test_only_the_operator_and_its_roles(self, client, wrong):
+        address = f"/accomplishments/{wrong.pk}/correct/"
+        as_user(client, "certifier", make.operator("OTH"))
+        assert client.get(address).status_code == 404
+        as_user(client, "auditor")
+        assert client.get(address).status_code == 403
