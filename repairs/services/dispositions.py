@@ -187,6 +187,7 @@ def _follow(
     findings: Sequence[Finding],
 ) -> None:
     """States, the inspection raised with it, and the limit on the due list."""
+    decided_before = any(row.state != FindingState.ASSESSED for row in findings)
     for finding in findings:
         w.change(finding, state=STATE_AFTER[disposition.kind])
     if entry.new_requirement is not None:
@@ -194,7 +195,7 @@ def _follow(
             w, replace(entry.new_requirement, disposition=disposition)
         )
     extended = None
-    for earlier in _answered_before(disposition, findings):
+    for earlier in _answered_before(disposition, findings) if decided_before else ():
         closed = due_points_close(
             w,
             origin=earlier,

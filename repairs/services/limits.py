@@ -28,12 +28,12 @@ def limits_check(
     A dimension that was not measured is a missing input, never within a limit.
     """
     limits = list(limits_in_force(finding))
+    if not limits:
+        return w.create_many([_row(w, finding, measurement, None, "not_covered", [])])
     sizes = {}
     if measurement is not None:
         known = measurement.values.filter(value__isnull=False)
         sizes = dict(known.values_list("quantity", "value"))
-    if not limits:
-        return w.create_many([_row(w, finding, measurement, None, "not_covered", [])])
     rows = []
     for limit in limits:
         lines = [_line(rule, sizes.get(rule.quantity)) for rule in limit.rules.all()]
