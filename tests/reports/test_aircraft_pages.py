@@ -9,7 +9,7 @@ from fleet.selectors.aircraft import fleet_seen
 from fleet.services.aircraft import aircraft_leave, aircraft_set_state
 from tests import due_rows as make
 from tests.factories import NOW, aircraft_make
-from tests.placed_rows import INCH, finding_make, fleet_make
+from tests.placed_rows import INCH, finding_make, fleet_make, repair_make
 from tests.queries import assert_same_queries
 
 pytestmark = pytest.mark.django_db
@@ -87,6 +87,28 @@ def test_the_list_costs_the_same_for_more_aircraft(reader, fleet):
             finding_make(fleet.placing, made, x=(1e4, 1e4), s=(0.0, 1.0))
 
     assert_same_queries(reader, "/aircraft/", grow, ceiling=14)
+
+
+def test_a_page_costs_the_same_for_more_records(reader, fleet):
+    aircraft = fleet.aircraft["Q7-AAA"]
+
+    def grow():
+        for n in range(4):
+            place = {"x": (1e4 + n, 1e4 + n), "s": (0.0, 1.0)}
+            finding_make(fleet.placing, aircraft, **place)
+            finding_make(fleet.placing, aircraft, state="accepted", **place)
+            repair_make(fleet.placing, aircraft, **place)
+
+    grow()
+    assert_same_queries(reader, f"/aircraft/{aircraft.pk}/", grow, ceiling=45)
+
+
+def test_an_aircraft_that_left_keeps_its_page(reader, fleet):
+    aircraft = fleet.aircraft["Q7-AAB"]
+    aircraft_leave(aircraft=aircraft, left_on=make.TODAY, reason="handed back", at=NOW)
+    text = text_of(reader, f"/aircraft/{aircraft.pk}/")
+    assert f"This aircraft left on {make.TODAY}" in text
+    assert "Report damage" not in text
 
 
 def test_a_page_says_what_is_left_to_the_limit_of_validity(reader, fleet):
