@@ -144,6 +144,8 @@ PAGES: dict[str, Page] = {
     "usage": Page(keys=aircraft, sends="usage_record"),
     "usage_correct": Page(FORM, "usage_record", flown),
     "part_list": Page(),
+    "part_new": Page(FORM, "part_change"),
+    "life_limit_new": Page(FORM, "part_change"),
     "life_limit_again": Page(FORM, "requirement_rekey", key("life_limit")),
     "part": Page(keys=key("part")),
     "part_install": Page(FORM, "part_change", key("part")),

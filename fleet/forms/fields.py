@@ -7,6 +7,7 @@ from typing import Any
 from django import forms
 from django.core.exceptions import ValidationError
 
+from fleet.amounts import AmountError, amount_read
 from fleet.fields import COUNTER_HIGH
 from fleet.units import UnitError, hours_read, hours_write
 
@@ -55,3 +56,16 @@ class DayField(forms.DateField):
     def __init__(self, **kwargs: Any) -> None:
         kwargs.setdefault("input_formats", ["%Y-%m-%d"])
         super().__init__(**kwargs)
+
+
+class AmountField(forms.CharField):
+    """An interval with its unit; its value is the text, checked."""
+
+    def clean(self, value: Any) -> str:
+        text: str = super().clean(value)
+        if text:
+            try:
+                amount_read(text)
+            except AmountError as error:
+                raise ValidationError(str(error)) from error
+        return text

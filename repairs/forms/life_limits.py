@@ -4,16 +4,11 @@ from __future__ import annotations
 
 from django import forms
 
-from repairs.forms.requirements import INTERVAL, AmountField
+from fleet.forms.fields import AmountField
+from fleet.forms.part_records import BASES
+from repairs.forms.requirements import INTERVAL
 
 
 class LifeLimitForm(forms.Form):
-    entered = AmountField(required=True, label="life limit", help_text=INTERVAL)
-    base = forms.ChoiceField(
-        label="counted from",
-        choices=[
-            ("birth", "manufacture"),
-            ("first_fitted", "first installation"),
-            ("overhaul", "last overhaul"),
-        ],
-    )
+    entered = AmountField(label="life limit", help_text=INTERVAL)
+    base = forms.ChoiceField(label="counted from", choices=BASES)

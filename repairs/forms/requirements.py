@@ -6,11 +6,9 @@ from collections.abc import Sequence
 from typing import Any
 
 from django import forms
-from django.core.exceptions import ValidationError
 
-from fleet.amounts import AmountError, amount_read
 from fleet.due import Counters
-from fleet.forms.fields import CounterField, DayField
+from fleet.forms.fields import AmountField, CounterField, DayField
 from fleet.models import Aircraft, Document, Operator, Person, SafeLifePart
 from repairs.forms.fields import CountersForm, choose
 from repairs.models import DetectionMethod, Finding, RequirementClass
@@ -36,23 +34,6 @@ INTERVAL = "With its unit: 250 FC, 6,000 FH, 90 days or 18 months."
 LINES = {"threshold": 3, "repeat": 3, "replace": 1}
 
 
-class AmountField(forms.CharField):
-    """An interval with its unit; its value is the text, checked."""
-
-    def __init__(self, **kwargs: Any) -> None:
-        kwargs.setdefault("required", False)
-        super().__init__(**kwargs)
-
-    def clean(self, value: Any) -> str:
-        text: str = super().clean(value)
-        if text:
-            try:
-                amount_read(text)
-            except AmountError as error:
-                raise ValidationError(str(error)) from error
-        return text
-
-
 class LimitsForm(forms.Form):
     """Threshold, repeat and replace-by limits, one line each, as in the document."""
 
@@ -63,7 +44,7 @@ class LimitsForm(forms.Form):
                 label = phase if count == 1 else f"{phase} {n}"
                 help_text = INTERVAL if n == 1 else ""
                 self.fields[f"{phase}_{n}"] = AmountField(
-                    label=label, help_text=help_text
+                    required=False, label=label, help_text=help_text
                 )
                 if phase != "repeat":
                     self.fields[f"{phase}_{n}_base"] = forms.ChoiceField(
@@ -128,7 +109,7 @@ class RequirementForm(LimitsForm):
     )
     applicability = forms.CharField(required=False, help_text="As the source words it.")
     effective_on = DayField(label="effective on")
-    tolerance = AmountField(help_text="Of the repeats; empty: none.")
+    tolerance = AmountField(required=False, help_text="Of the repeats; empty: none.")
     tolerance_source = forms.CharField(required=False, label="programme that grants it")
     anchor = forms.ChoiceField(
         label="next interval counts from",
@@ -241,9 +222,7 @@ class SistersForm(forms.Form):
     area = forms.CharField(widget=forms.TextInput(WIDE), help_text="Where to look.")
     method = forms.ChoiceField(choices=DetectionMethod.choices)
     criteria = forms.CharField(label="accept or reject", widget=forms.Textarea(SHORT))
-    deadline = AmountField(
-        required=True, help_text=f"From the effective date. {INTERVAL}"
-    )
+    deadline = AmountField(help_text=f"From the effective date. {INTERVAL}")
     effective_on = DayField(label="effective on")
     source_document = forms.ModelChoiceField(
         Document.objects.none(), required=False, label="source document"

@@ -171,3 +171,48 @@ def test_queries_do_not_grow_with_parts(client, count, django_assert_max_num_que
     with django_assert_max_num_queries(14):
         response = client.get("/safe-life/")
     assert response.content.count(b'<th scope="row">') == count
+
+
+class TestNew:
+    DATA = {"serial": "17", "chain": "complete", "release_reference": "certificate 9"}
+
+    def test_a_serial_of_a_new_part_number(self, client):
+        as_user(client)
+        data = self.DATA | {"new_number": "ARD-9", "new_title": "Side stay"}
+        response = client.post("/safe-life/new/", data)
+        page = text(client.get(response.url))
+        assert "ARD-9" in page
+        assert "so the part counts as due" in page
+
+    @pytest.mark.parametrize("extra", [{}, {"new_number": "ARD-9"}])
+    def test_a_serial_needs_its_part_number_with_title(self, client, extra):
+        as_user(client)
+        page = text(client.post("/safe-life/new/", self.DATA | extra))
+        assert "Choose a part number, or give a new one with its title." in page
+
+    def test_a_serial_is_recorded_once(self, client, part):
+        as_user(client)
+        data = self.DATA | {"serial": "0447", "part_number": part.part_number_id}
+        assert "There is one already" in text(client.post("/safe-life/new/", data))
+
+    def test_a_life_limit_is_keyed_with_its_unit(self, client, part):
+        as_user(client)
+        data = {
+            "part_number": part.part_number_id,
+            "entered": "4,990",
+            "base": "birth",
+            "carry_over": "most_restrictive",
+            "document": make.document().pk,
+            "effective_from": "2024-01-01",
+        }
+        refused = text(client.post("/safe-life/limits/new/", data))
+        assert "“4,990” is not an interval" in refused
+        client.post("/safe-life/limits/new/", data | {"entered": "4,990 FC"})
+        page = text(client.get(f"/safe-life/{part.pk}/"))
+        assert "4,990 FC from manufacture" in page
+        assert "awaits second keying" in page
+
+    @pytest.mark.parametrize("address", ["new/", "limits/new/"])
+    def test_an_auditor_enters_nothing(self, client, address):
+        as_user(client, "auditor")
+        assert client.get(f"/safe-life/{address}").status_code == 403
