@@ -53,6 +53,15 @@ def _largest_mm(finding: Finding) -> float | None:
     return max(sizes) / 2 if sizes else None
 
 
+def stated_extent(
+    low: float | None, high: float | None, size: float | None
+) -> tuple[float, float] | None:
+    """The extent along one axis: as placed, or that size about its middle."""
+    if low is None or high is None:
+        return None
+    return _edges(low, high, _half(size)) or (low, high)
+
+
 def _along(repair: Repair, finding: Finding, half: float | None) -> float | None:
     inner = _edges(finding.x1_mm, finding.x2_mm, half)
     outer = _edges(repair.x1_mm, repair.x2_mm, _half(repair.length_mm))

@@ -22,9 +22,11 @@ from fleet.location.along import Work, station_label
 from fleet.location.geometry import Section, geometry_from_toml
 from fleet.location.reading import Reading
 from fleet.models import Aircraft, User
-from fleet.units import hours_write, measure_write
+from fleet.units import canonical as canonical_mm
+from fleet.units import hours_write, in_unit, measure_write
 from repairs.models import DueKind, DuePoint, Repair
 from repairs.selectors.due_items import due_of
+from repairs.selectors.edges import stated_extent
 
 HEADER = (
     "repair no.", "chart no.", "description", "ATA", "zone", "from station",
@@ -127,7 +129,7 @@ def _cells(
     return [
         repair.number,
         repair.chart_number,
-        f"{repair.get_kind_display()}: {repair.description}",
+        _description(repair),
         repair.ata,
         repair.zone.code if repair.zone else "",
         first,
@@ -149,6 +151,14 @@ def _cells(
     ]
 
 
+def _description(repair: Repair) -> str:
+    """The repair type in front, unless the words begin with it."""
+    kind = repair.get_kind_display()
+    if repair.description.lower().startswith(kind.lower()):
+        return repair.description
+    return f"{kind.capitalize()}: {repair.description}"
+
+
 def place_cells(repair: Repair, variant: str, unit: str) -> tuple[str, str, str]:
     """From station, to station, and stringers or lines; as written if unplaced."""
     if repair.section is None or repair.geometry is None:
@@ -156,10 +166,15 @@ def place_cells(repair: Repair, variant: str, unit: str) -> tuple[str, str, str]
     section = geometry_from_toml(repair.geometry.content).section(repair.section.code)
     work = Work(Reading(""), section, variant, unit)
     word = section.station_words[0]
-    ends = [
-        f"{word} {station_label(work, x or 0.0)}" for x in (repair.x1_mm, repair.x2_mm)
-    ]
+    along = stated_extent(repair.x1_mm, repair.x2_mm, repair.length_mm)
+    assert along is not None
+    ends = [f"{word} {station_label(work, _near(x, unit))}" for x in along]
     return ends[0], ends[1], _across(repair, section, work)
+
+
+def _near(x_mm: float, unit: str) -> float:
+    """To a tenth of an inch or a whole mm: nobody lays a doubler out closer."""
+    return canonical_mm(round(in_unit(x_mm, unit), 1 if unit == "in" else 0), unit)
 
 
 def dimensions(repair: Repair, unit: str) -> str:
@@ -174,12 +189,14 @@ def dimensions(repair: Repair, unit: str) -> str:
 
 def _across(repair: Repair, section: Section, work: Work) -> str:
     parts = []
-    if repair.s1_mm is not None and repair.s2_mm is not None:
+    across = stated_extent(repair.s1_mm, repair.s2_mm, repair.width_mm)
+    if across is not None:
         if section.is_shell and section.stringers:
-            names = [_nearest(section, s) for s in (repair.s1_mm, repair.s2_mm)]
+            outward = sorted(across, key=abs) if across[1] <= 0 else across
+            names = [_nearest(section, s) for s in outward]
             parts.append(" to ".join(dict.fromkeys(names)))
         else:
-            chord = " to ".join(work.show(s) for s in (repair.s1_mm, repair.s2_mm))
+            chord = " to ".join(work.show(_near(s, work.unit)) for s in across)
             parts.append(f"{chord} {work.unit} aft of the front reference")
     if parts:
         return parts[0]

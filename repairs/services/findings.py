@@ -48,6 +48,7 @@ from repairs.services.places import (
 )
 
 FROM_USAGE = "usage, as of {day}"
+BEFORE_USAGE = "not stated; usage begins on {day}"
 AS_STATED = "as stated on entry"
 PLACED_ALREADY = (
     "{number} is {state}; its location is fixed. Record a new finding that replaces it."
@@ -149,7 +150,7 @@ def finding_write(
     w: Writing, entry: FindingEntry, *, standing_of: StandingOf | None = None
 ) -> Finding:
     """Inside a writing: the finding with its first measurement and its questions."""
-    standing = (standing_of or standing_on)(entry.aircraft, entry.found_on)
+    standing = _standing(entry, standing_of)
     placed = place_try(entry.aircraft, entry.place_entered)
     at = standing.at if entry.at is None else entry.at
     operator = operator_on(entry.aircraft, entry.found_on)
@@ -282,7 +283,16 @@ def _sent_before(entry: FindingEntry) -> Finding | None:
     return Finding.objects.filter(client_key=entry.client_key).first()
 
 
+def _standing(entry: FindingEntry, standing_of: StandingOf | None) -> Standing:
+    """Usage that day; before the aircraft's data begin it says nothing."""
+    if entry.found_on < entry.aircraft.data_from:
+        return Standing()
+    return (standing_of or standing_on)(entry.aircraft, entry.found_on)
+
+
 def _source(entry: FindingEntry) -> str:
+    if entry.at is None and entry.found_on < entry.aircraft.data_from:
+        return BEFORE_USAGE.format(day=entry.aircraft.data_from)
     if entry.at is None:
         return FROM_USAGE.format(day=entry.found_on)
     return entry.counters_source or AS_STATED

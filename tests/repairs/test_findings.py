@@ -92,6 +92,16 @@ def test_counters_below_usage_are_asked_about(world):
     assert "1 FC below usage" in finding.questions.get().asked
 
 
+def test_before_the_data_begin_usage_says_nothing_of_counters(world):
+    day = world.aircraft.data_from - dt.timedelta(days=30)
+    stated = found(world, found_on=day, at=Counters(cycles=9_000))
+    assert not stated.counters_ahead
+    assert codes(stated) == []
+    unstated = found(world, found_on=day)
+    assert unstated.at_cycles is None
+    assert unstated.counters_source == "not stated; usage begins on 2024-12-01"
+
+
 def test_a_location_that_cannot_be_read_is_saved_to_be_placed(world):
     finding = found(world, place_entered="  somewhere aft of the door ")
     assert finding.section is None
