@@ -13,6 +13,7 @@ from reports.demo.airframe import (
     BAYS_AROUND,
     FRAME_PITCH_IN,
     FRAMES,
+    OPENINGS,
     PLUG_STA,
     RADIUS_IN,
     STRINGER_STEP_DEG,
@@ -102,7 +103,27 @@ def fuselage_text(stream: Stream, sta: float, deg: float, variant: str) -> Writt
         style = _station_stringer
     if style is _butt_water and not 240 <= sta <= 900:
         style = _station_offset
-    return style(stream, sta, deg, variant)
+    written = style(stream, sta, deg, variant)
+    if any(door.holds(*_centre(style, sta, deg)) for door in OPENINGS):
+        return precise_text(stream, sta, deg, variant)
+    return written
+
+
+def _centre(style: _Style, sta: float, deg: float) -> tuple[float, float]:
+    """Station and angle that a coarse notation would be read as."""
+    side = 1 if deg > 0 else -1
+    steps = abs(deg) / STRINGER_STEP_DEG
+    at_stringer = round(steps) * STRINGER_STEP_DEG * side
+    mid_bay = frame_station(min(frame_before(sta), FRAMES - 1)) + FRAME_PITCH_IN / 2
+    if style is _bay_words:
+        return mid_bay, (int(steps) + 0.5) * STRINGER_STEP_DEG * side
+    if style is _stations_range:
+        return mid_bay, at_stringer
+    if style is _clock:
+        nearest = frame_station(frame_before(sta + FRAME_PITCH_IN / 2))
+        return nearest, round(abs(deg) / 15) * 15 * side
+    exact = style in (_butt_water, _below_stringer)
+    return sta, deg if exact else at_stringer
 
 
 def precise_text(stream: Stream, sta: float, deg: float, variant: str) -> Written:
