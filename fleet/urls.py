@@ -11,6 +11,7 @@ urlpatterns = [
     path("sign-in/", login_not_required(sessions.sign_in), name="sign_in"),
     path("sign-out/", sessions.sign_out, name="sign_out"),
     path("aircraft/new/", aircraft.aircraft_new, name="aircraft_new"),
+    path("aircraft/<int:pk>/period/", aircraft.aircraft_period, name="aircraft_period"),
     path("aircraft/<int:pk>/state/", aircraft.aircraft_state, name="aircraft_state"),
     path(
         "aircraft/<int:pk>/opening/", aircraft.aircraft_opening, name="aircraft_opening"

@@ -88,6 +88,7 @@ PAGES: dict[str, Page] = {
     "aircraft_new": Page(FORM, "fleet_change"),
     "aircraft": Page(keys=aircraft, former=200),
     "aircraft_state": Page(FORM, "fleet_change", aircraft, former=403),
+    "aircraft_period": Page(FORM, "fleet_change", aircraft, former=403),
     "aircraft_opening": Page(FORM, "opening_rekey", aircraft, former=403),
     "type": Page(keys=of_type(), shared=True),
     "structure_map": Page(keys=of_type(section="FUS"), shared=True),

@@ -19,6 +19,33 @@ from fleet.models import (
 OTHER_TYPE = "{configuration} is not a configuration of {variant}; choose one of its."
 
 
+def _camo() -> forms.ModelChoiceField[Organisation]:
+    return forms.ModelChoiceField(
+        Organisation.objects.filter(
+            kind__in=(OrganisationKind.CAMO, OrganisationKind.OPERATOR)
+        ),
+        required=False,
+        label="continuing-airworthiness organisation",
+    )
+
+
+def _owner() -> forms.ModelChoiceField[Organisation]:
+    return forms.ModelChoiceField(
+        Organisation.objects.filter(
+            kind__in=(OrganisationKind.OWNER, OrganisationKind.OPERATOR)
+        ),
+        required=False,
+    )
+
+
+def _offer(form: forms.Form, operators: list[Operator]) -> None:
+    """The operators whose fleet the user may change; the only one is chosen."""
+    keys = [operator.pk for operator in operators]
+    form.fields["operator"].queryset = Operator.objects.filter(pk__in=keys)  # type: ignore[attr-defined]
+    if len(operators) == 1:
+        form.initial.setdefault("operator", operators[0])
+
+
 class AircraftFilter(forms.Form):
     """What the aircraft list shows."""
 
@@ -68,19 +95,8 @@ class AircraftForm(OpeningForm):
         help_text="The opening counters are those at the start of this day.",
     )
     state = forms.ChoiceField(choices=AircraftState.choices)
-    camo = forms.ModelChoiceField(
-        Organisation.objects.filter(
-            kind__in=(OrganisationKind.CAMO, OrganisationKind.OPERATOR)
-        ),
-        required=False,
-        label="continuing-airworthiness organisation",
-    )
-    owner = forms.ModelChoiceField(
-        Organisation.objects.filter(
-            kind__in=(OrganisationKind.OWNER, OrganisationKind.OPERATOR)
-        ),
-        required=False,
-    )
+    camo = _camo()
+    owner = _owner()
     opening_source = forms.CharField(
         label="evidence of the counters",
         help_text="Document, page and date, such as: joining record, page 3.",
@@ -105,12 +121,7 @@ class AircraftForm(OpeningForm):
 
     def __init__(self, *args: Any, operators: list[Operator], **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        choice = self.fields["operator"]
-        choice.queryset = Operator.objects.filter(  # type: ignore[attr-defined]
-            pk__in=[operator.pk for operator in operators]
-        )
-        if len(operators) == 1:
-            self.initial.setdefault("operator", operators[0])
+        _offer(self, operators)
 
     def clean(self) -> dict[str, Any]:
         data = super().clean() or {}
@@ -125,6 +136,30 @@ class AircraftForm(OpeningForm):
                 OTHER_TYPE.format(configuration=configuration, variant=variant),
             )
         return data
+
+
+class PeriodForm(forms.Form):
+    """The aircraft's next period: its mark, operator, rules and who looks after it."""
+
+    operator = forms.ModelChoiceField(Operator.objects.none())
+    registration = forms.CharField()
+    regime = forms.CharField(help_text="Rules it works under, such as EASA or FAA.")
+    from_on = DayField(label="from")
+    camo = _camo()
+    owner = _owner()
+    at_minutes = HoursField(required=False, label="flight hours then")
+    at_cycles = CounterField(required=False, label="flight cycles then")
+    at_landings = CounterField(required=False, label="landings then")
+    at_pressurisations = CounterField(
+        required=False, label="pressurisation cycles then"
+    )
+    reason = forms.CharField(
+        label="why", help_text="Such as: sold, lease ended, re-registered."
+    )
+
+    def __init__(self, *args: Any, operators: list[Operator], **kwargs: Any) -> None:
+        super().__init__(*args, **kwargs)
+        _offer(self, operators)
 
 
 class StateForm(forms.Form):

@@ -13,11 +13,13 @@ from fleet.forms.aircraft import (
     AircraftForm,
     OpeningCorrectionForm,
     OpeningForm,
+    PeriodForm,
     StateForm,
 )
 from fleet.selectors.aircraft import aircraft_visible
 from fleet.services.aircraft import aircraft_add, aircraft_set_state
 from fleet.services.opening import opening_correct, opening_rekey
+from fleet.services.periods import aircraft_period_open
 from fleet.views.requests import Request
 from fleet.views.sending import sent
 
@@ -25,6 +27,7 @@ FORM_METHODS = ["GET", "HEAD", "POST"]
 ADDED = "Recorded. A second person now keys the opening counters."
 AGREED = "Both entries of the opening counters agree."
 CORRECTED = "The first entry is corrected; a second person keys it again."
+PERIOD_OPENED = "The period is recorded."
 STATE_SET = "The state is recorded."
 
 
@@ -60,6 +63,26 @@ def aircraft_state(request: Request, pk: int) -> HttpResponse:
         return redirect("aircraft", pk)
     context = {"form": form, "aircraft": aircraft}
     return render(request, "fleet/aircraft_state.html", context)
+
+
+@require_http_methods(FORM_METHODS)
+def aircraft_period(request: Request, pk: int) -> HttpResponse:
+    """Its next period: another registration, operator or set of rules."""
+    aircraft = visible_or_404(aircraft_visible(request.user), request.user, pk=pk)
+    require(request.user, "fleet_change", aircraft.operator_id)
+    before = aircraft.periods.last()
+    names = ("operator", "registration", "regime", "camo", "owner")
+    form = PeriodForm(
+        request.POST or None,
+        operators=operators_for(request.user, "fleet_change"),
+        initial={name: getattr(before, name, None) for name in names},
+    )
+    service = {"aircraft": aircraft, "actor": request.user, "at": now()}
+    if sent(form, lambda: aircraft_period_open(**form.cleaned_data, **service)):
+        messages.success(request, PERIOD_OPENED)
+        return redirect("aircraft", pk)
+    context = {"form": form, "aircraft": aircraft}
+    return render(request, "fleet/aircraft_period.html", context)
 
 
 @require_http_methods(FORM_METHODS)

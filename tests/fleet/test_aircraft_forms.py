@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+import datetime as dt
+
 import pytest
 from django.core.exceptions import ValidationError
 
 from fleet.models import Aircraft, HistoryItem
 from fleet.selectors.verify import problems
 from fleet.services import opening
+from fleet.services.periods import aircraft_period_open
 from tests import factories
 
 pytestmark = pytest.mark.django_db
@@ -211,3 +214,67 @@ def test_a_state_cannot_begin_before_the_one_that_holds(send, aircraft):
     )
     assert "lies before" in text
     assert aircraft.spans.count() == 1
+
+
+def period(operator, **changes):
+    return {
+        "operator": operator.pk,
+        "registration": "Q7-XYZ",
+        "regime": "FAA",
+        "from_on": "2024-12-01",
+        "at_cycles": "21,400",
+        "reason": "sold",
+    } | changes
+
+
+def test_the_next_period_ends_the_one_before_it(send, aircraft, operator):
+    address = f"/aircraft/{aircraft.pk}/period/"
+    text = said(send("administrator", address, **period(operator)))
+    assert "<h1>Q7-XYZ" in text
+    first, second = aircraft.periods.all()
+    assert (first.registration, str(first.to_on)) == ("Q7-NEW", "2024-11-30")
+    assert (second.regime, second.at_cycles, second.at_minutes) == ("FAA", 21_400, None)
+    aircraft.refresh_from_db()
+    assert aircraft.registration == "Q7-XYZ"
+    assert list(problems()) == []
+
+
+def test_a_period_begins_after_the_one_that_holds(send, aircraft, operator):
+    address = f"/aircraft/{aircraft.pk}/period/"
+    early = period(operator, from_on="2024-10-01")
+    text = said(send("administrator", address, **early))
+    assert "2024-10-01 is not after 2024-10-01" in text
+    assert aircraft.periods.count() == 1
+
+
+def test_an_aircraft_is_not_handed_to_an_operator_one_does_not_administer(
+    send, aircraft
+):
+    other = factories.operator_make("OTH", "Other Air")
+    address = f"/aircraft/{aircraft.pk}/period/"
+    assert "Not saved" in said(send("administrator", address, **period(other)))
+    assert aircraft.periods.count() == 1
+
+
+def test_the_operator_before_keeps_its_period_and_reads_no_other(
+    send, client, aircraft, users, now
+):
+    other = factories.operator_make("OTH", "Other Air")
+    aircraft_period_open(
+        aircraft=aircraft,
+        operator=other,
+        registration="Q7-XYZ",
+        regime="EASA",
+        from_on=dt.date(2024, 12, 1),
+        reason="sold",
+        at=now,
+    )
+    client.force_login(users["engineer"])
+    text = said(client.get(f"/aircraft/{aircraft.pk}/"))
+    assert "This aircraft left on 2024-11-30" in text
+    assert "<h1>Q7-NEW" in text
+    assert "Q7-XYZ" not in text
+    client.force_login(factories.user_make(other, "engineer", "theirs"))
+    text = said(client.get(f"/aircraft/{aircraft.pk}/"))
+    assert "<h1>Q7-XYZ" in text
+    assert "Q7-NEW" in text
