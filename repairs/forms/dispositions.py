@@ -50,10 +50,10 @@ class DispositionForm(CountersForm, DataForm):
     reason = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
     decided_by = forms.ModelChoiceField(Person.objects.none(), label="decided by")
     decided_on = DayField(label="decided on")
-    limit_minutes = HoursField(label="limit, flight hours", required=False)
-    limit_cycles = CounterField(label="limit, flight cycles", required=False)
-    limit_landings = CounterField(label="limit, landings", required=False)
-    limit_on = DayField(label="limit, date", required=False)
+    limit_minutes = HoursField(label="deferral limit, flight hours", required=False)
+    limit_cycles = CounterField(label="deferral limit, flight cycles", required=False)
+    limit_landings = CounterField(label="deferral limit, landings", required=False)
+    limit_on = DayField(label="deferral limit, date", required=False)
     scale = forms.ChoiceField(choices=SCALES, label="minor or major")
     scale_reason = forms.CharField(label="why minor or major", required=False)
     category = forms.ChoiceField(
@@ -97,7 +97,7 @@ class DispositionForm(CountersForm, DataForm):
         return [
             group(self, "Decision", ("kind", "reason", "decided_by", "decided_on")),
             group(self, "Data it rests on", DATA),
-            group(self, "Limit", LIMITS),
+            group(self, "Deferral limit", LIMITS),
             group(self, "Neighbours reviewed", near),
             group(self, "Counters that day", COUNTERS, True),
             group(self, "Minor or major, repair category", SCALE, True),

@@ -109,7 +109,7 @@ class RepairForm(CountersForm, PhotoForm):
     replacement_limit_on = DayField(label="replacement limit, date", required=False)
     stage_reached = forms.ChoiceField(label="approval stage reached", choices=STAGES)
     temporary_limit_cycles = CounterField(
-        label="temporary limit of stage 1, flight cycles", required=False
+        label="limit approved at stage 1, flight cycles", required=False
     )
     approval_basis = forms.ChoiceField(choices=ApprovalBasis.choices)
     document_kind = forms.ChoiceField(

@@ -13,6 +13,7 @@ from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from repairs.measurements import missing
 from repairs.models import (
+    OPEN_STATES,
     Finding,
     FindingLink,
     FindingState,
@@ -48,6 +49,8 @@ ASIDE_ALREADY = "{number} is {state}; it stays as it is."
 REASON_NEEDED = "Say why."
 NOT_SAME_AIRCRAFT = "{number} and {earlier} are on different aircraft."
 LINKED_LATER = "{earlier} was recorded after {number}; link the later one to it."
+CRACK_CRITICAL = "{criticality} crack: rectify before further flight"
+CRACK_UNSTATED = "crack, criticality unknown: rectify before further flight"
 REPORT_HOURS = "report_hours"
 
 
@@ -267,6 +270,15 @@ def is_critical_crack(finding: Finding) -> bool:
     return (
         finding.damage_type == "crack" and finding.criticality != Criticality.SECONDARY
     )
+
+
+def crack_words(finding: Finding) -> str:
+    """What holds for an open crack in PSE or FCS; empty for anything else."""
+    if finding.state not in OPEN_STATES or not is_critical_crack(finding):
+        return ""
+    if finding.criticality == Criticality.UNKNOWN:
+        return CRACK_UNSTATED
+    return CRACK_CRITICAL.format(criticality=finding.get_criticality_display())
 
 
 def finding_link(

@@ -58,10 +58,12 @@ REQUIREMENT_NOT_LIVE = (
 REQUIREMENT_ELSEWHERE = (
     "{requirement} does not apply to {aircraft}; choose one that does."
 )
-LIMIT_NEEDED = "A deferral has a limit in flight hours, cycles, landings or a date."
+LIMIT_NEEDED = (
+    "A deferral has a deferral limit: flight hours, cycles, landings or a date."
+)
 LIMIT_PASSED = (
-    "The limit {limit} lies at or before the decision ({now}); it would be overdue at "
-    "once."
+    "The deferral limit {limit} lies at or before the decision ({now}); it would be "
+    "overdue at once."
 )
 NOT_YET_FOUND = "Decided on {decided_on}, before {finding} was found on {found_on}."
 STALE_REPLACES = "{replaced} was replaced by {by} already; decide from that one."

@@ -51,7 +51,8 @@ FROM_USAGE = "usage, as of {day}"
 BEFORE_USAGE = "not stated; usage begins on {day}"
 AS_STATED = "as stated on entry"
 PLACED_ALREADY = (
-    "{number} is {state}; its location is fixed. Record a new finding that replaces it."
+    "{number} is {state}; its location is fixed. Record a new finding where it is, and "
+    "link it to {number} as the same damage."
 )
 ALREADY_ANSWERED = "This question was answered before: {answer}"
 ANSWER_NEEDED = "Answer in words; the answer is kept with the question."

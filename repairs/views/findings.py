@@ -14,7 +14,7 @@ from fleet.selectors.history import history_of
 from fleet.views.pages import query_without_page
 from fleet.views.requests import Request
 from repairs.filters import FindingFilter
-from repairs.models import OPEN_STATES, Repair
+from repairs.models import Repair
 from repairs.selectors.evaluations import evaluations_current, state_of
 from repairs.selectors.findings import (
     Line,
@@ -26,7 +26,7 @@ from repairs.selectors.findings import (
 from repairs.selectors.maps import finding_map_svg
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.next_step import further_steps, next_step
-from repairs.services.assessing import assess_problems, is_critical_crack
+from repairs.services.assessing import assess_problems, crack_words
 
 PER_PAGE = 50
 
@@ -69,7 +69,7 @@ def finding(request: Request, pk: int) -> HttpResponse:
         "map": finding_map_svg(row, user=request.user),
         "near": near,
         "sisters": [(one, isinstance(one, Repair)) for one in near.sisters],
-        "critical": is_critical_crack(row) and row.state in OPEN_STATES,
+        "critical": crack_words(row),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
         "history": history_of(row),
         "next": next_step(row, problems, request.user),

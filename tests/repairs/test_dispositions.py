@@ -112,7 +112,7 @@ def test_every_objection_is_said_at_once(world):
 
 def test_a_deferral_is_certifying_staffs_and_has_a_limit(world):
     finding = assessed(world)
-    with pytest.raises(ValidationError, match="has a limit"):
+    with pytest.raises(ValidationError, match="has a deferral limit"):
         decide(world, finding, kind="defer", decided_by=world.certifier)
     limit = Counters(cycles=10_300)
     with pytest.raises(ValidationError, match="held no authorisation"):
