@@ -245,7 +245,7 @@ def _calendar_item(
     done = DemoAccomplishment(done_on, logbook.at(done_on), "no_finding", "hangar_2")
     return DemoRequirement(
         key=key,
-        kind="programme",
+        kind="operator",
         title=f"Two-yearly inspection: {area}",
         document=PROGRAMME,
         task="Inspect for corrosion, cracks and loose fasteners.",
