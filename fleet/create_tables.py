@@ -11,10 +11,10 @@ from django.db.migrations.operations.base import Operation
 class CreateTables(Operation):
     """All tables of an app in one step, each with its constraints and indexes.
 
-    Step by step, Django renders the whole state of the models anew after each table, and
-    SQLite rebuilds a table for each constraint added later: half a minute for some
-    eighty tables, at every first start and every test run. Here the state is rendered
-    once. Foreign keys may point to tables further down the list.
+    Step by step, Django renders the state of all models anew after each table, and
+    SQLite rebuilds a table for each constraint added later, at every first start and
+    every test run. Here the state is rendered once. Foreign keys may point to tables
+    further down the list.
     """
 
     reduces_to_sql = True

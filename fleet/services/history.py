@@ -97,7 +97,7 @@ class Writing:
         return row
 
     def create_many(self, rows: Sequence[Row]) -> list[Row]:
-        """Insert many rows of a table whose rows never change; one item a run of keys."""
+        """Insert many rows of a table that never changes; one item a run of keys."""
         if not rows:
             return []
         table = rows[0]._meta.db_table

@@ -2,7 +2,7 @@
 
 | variable | meaning | when absent |
 |---|---|---|
-| FRAMEBAY_DATA | folder of the SQLite file, attachments and the secret key | `data/` |
+| FRAMEBAY_DATA | folder of SQLite file, attachments and secret key | `data/` |
 | DATABASE_URL | the database, as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
 | FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
@@ -177,7 +177,9 @@ SECURE_HSTS_INCLUDE_SUBDOMAINS = SECURE_HSTS_PRELOAD = HTTPS
 LOGGING = {
     "version": 1,
     "disable_existing_loggers": False,
-    "formatters": {"line": {"format": "{asctime} {levelname} {name} {message}", "style": "{"}},
+    "formatters": {
+        "line": {"format": "{asctime} {levelname} {name} {message}", "style": "{"}
+    },
     "handlers": {"console": {"class": "logging.StreamHandler", "formatter": "line"}},
     "root": {"handlers": ["console"], "level": "WARNING"},
 }

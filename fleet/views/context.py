@@ -55,4 +55,3 @@ def page(request: HttpRequest) -> dict[str, Any]:
 
 def _is_here(path: str, start: str) -> bool:
     return path.startswith(start) if start else path == "/"
-

@@ -79,9 +79,7 @@ def demo_figure(data: Path) -> Figure:
 def main() -> None:
     parser = argparse.ArgumentParser(prog="python -m tests.bench", description=__doc__)
     parser.add_argument("--json", action="store_true", help="print JSON")
-    parser.add_argument(
-        "--data", type=Path, help="folder holding the demo already"
-    )
+    parser.add_argument("--data", type=Path, help="folder holding the demo already")
     options = parser.parse_args()
     with tempfile.TemporaryDirectory() as kept:
         data = options.data or Path(kept)

@@ -29,7 +29,9 @@ def test_an_interval_has_a_number_and_a_unit(text, expected):
     assert amount_read(text) == expected
 
 
-@pytest.mark.parametrize("text", ["250", "", "FC", "2,50 FC", "1.5 FC", "-5 FC", "5 kg"])
+@pytest.mark.parametrize(
+    "text", ["250", "", "FC", "2,50 FC", "1.5 FC", "-5 FC", "5 kg"]
+)
 def test_anything_else_is_refused_with_examples(text):
     with pytest.raises(AmountError, match="as 250 FC"):
         amount_read(text)

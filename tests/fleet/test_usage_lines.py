@@ -25,7 +25,9 @@ def test_a_table_with_hours_known_unknown_and_no_flight():
     )
     assert lines == [
         UsageLine(DAY, 5, 271, where="Line 2: "),
-        UsageLine(NEXT, 2, None, landings=3, cycles_without_minutes=2, where="Line 3: "),
+        UsageLine(
+            NEXT, 2, None, landings=3, cycles_without_minutes=2, where="Line 3: "
+        ),
         UsageLine(date(2025, 1, 1), 0, 0, landings=0, where="Line 4: "),
     ]
 

@@ -27,7 +27,8 @@ class Command(BaseCommand):
         if first is None:
             head = HistoryHead.objects.get(pk=1)
             self.stdout.write(
-                f"History agrees: {head.sequence:,} entries, every record accounted for."
+                f"History agrees: {head.sequence:,} entries, "
+                "every record accounted for."
             )
             return
         listed = [first, *(found if options["all"] else ())]
