@@ -8,11 +8,12 @@ from dataclasses import replace
 
 from django.core.exceptions import ValidationError
 
-from fleet.models import User
+from fleet.models import Authorisation, Operator, User
 from fleet.services.aircraft import stream_of
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
+from fleet.services.parts import counter_columns
 from repairs.models import (
     Disposition,
     DispositionBasis,
@@ -43,6 +44,10 @@ STATE_AFTER: dict[str, FindingState] = {
     K.NOT_DAMAGE: FindingState.CLOSED,
 }
 INSPECTED_BY = "{reason} Inspection: {requirement}."
+AS_ENTERED = (
+    "aircraft", "replaces", "kind", "scale", "scale_reason", "category", "decided_by",
+    "decided_on", "limit_on",
+)  # fmt: skip
 CLOSED_BY = "answered anew by {number}"
 
 
@@ -84,50 +89,48 @@ def disposition_write(w: Writing, entry: DispositionEntry) -> Disposition:
         scopes=scopes_for(entry.kind),
         on=entry.decided_on,
     )
-    replaces = entry.replaces
-    disposition = w.create(
-        Disposition(
-            operator=replaces.operator if replaces else operator,
-            aircraft=entry.aircraft,
-            number=(
-                replaces.number
-                if replaces
-                else number_next(w, operator=operator, kind="S")
-            ),
-            revision=replaces.revision + 1 if replaces else 0,
-            replaces=replaces,
-            kind=entry.kind,
-            scale=entry.scale,
-            scale_reason=entry.scale_reason,
-            category=entry.category,
-            found_on=_first_found(entry, findings),
-            basis_document=document_get_or_create(
-                w,
-                operator=operator,
-                kind=entry.basis.kind,
-                reference=entry.basis.reference,
-                revision=entry.basis.revision,
-                title=entry.basis.title,
-                issued_on=entry.basis.issued_on,
-            ),
-            basis_page=entry.basis.page.strip(),
-            reason=_reason(entry),
-            decided_by=entry.decided_by,
-            authorisation=authorisation,
-            decided_on=entry.decided_on,
-            at_minutes=entry.at.minutes,
-            at_cycles=entry.at.cycles,
-            at_landings=entry.at.landings,
-            at_pressurisations=entry.at.pressurisations,
-            limit_minutes=entry.limit.minutes,
-            limit_cycles=entry.limit.cycles,
-            limit_landings=entry.limit.landings,
-            limit_on=entry.limit_on,
-        )
-    )
+    disposition = w.create(_row(w, entry, findings, operator, authorisation))
     _rows_write(w, disposition, entry, findings)
     _follow(w, disposition, entry, findings)
     return disposition
+
+
+def _row(
+    w: Writing,
+    entry: DispositionEntry,
+    findings: Sequence[Finding],
+    operator: Operator,
+    authorisation: Authorisation,
+) -> Disposition:
+    """The decision; one that replaces another keeps its number as the next revision."""
+    replaces, basis = entry.replaces, entry.basis
+    number = (
+        replaces.number if replaces else number_next(w, operator=operator, kind="S")
+    )
+    document = document_get_or_create(
+        w,
+        operator=operator,
+        kind=basis.kind,
+        reference=basis.reference,
+        revision=basis.revision,
+        title=basis.title,
+        issued_on=basis.issued_on,
+    )
+    return Disposition(
+        operator=replaces.operator if replaces else operator,
+        number=number,
+        revision=replaces.revision + 1 if replaces else 0,
+        found_on=_first_found(entry, findings),
+        basis_document=document,
+        basis_page=basis.page.strip(),
+        reason=_reason(entry),
+        authorisation=authorisation,
+        limit_minutes=entry.limit.minutes,
+        limit_cycles=entry.limit.cycles,
+        limit_landings=entry.limit.landings,
+        **counter_columns("at", entry.at),
+        **{name: getattr(entry, name) for name in AS_ENTERED},
+    )
 
 
 def _reason(entry: DispositionEntry) -> str:

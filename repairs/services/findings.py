@@ -25,6 +25,7 @@ from fleet.selectors.counters import aircraft_standing
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
+from fleet.services.parts import counter_columns
 from repairs.measured import Hole, Typed
 from repairs.models import Element, Event, Finding, FindingQuestion, FindingState
 from repairs.plausibility import (
@@ -56,6 +57,12 @@ PLACED_ALREADY = (
 )
 ALREADY_ANSWERED = "This question was answered before: {answer}"
 ANSWER_NEEDED = "Answer in words; the answer is kept with the question."
+AS_ENTERED = (
+    "aircraft", "safe_life_part", "damage_type", "cluster_count", "cause", "found_on",
+    "found_by", "occasion", "task_reference", "detection_method",
+    "detection_procedure", "last_clean_on", "last_clean_cycles", "last_clean_method",
+    "event", "ata", "description", "client_key",
+)  # fmt: skip
 StandingOf = Callable[[Aircraft, dt.date], Standing]
 
 
@@ -154,38 +161,7 @@ def finding_write(
     standing = _standing(entry, standing_of)
     placed = place_try(entry.aircraft, entry.place_entered)
     at = standing.at if entry.at is None else entry.at
-    operator = operator_on(entry.aircraft, entry.found_on)
-    finding = Finding(
-        operator=operator,
-        aircraft=entry.aircraft,
-        safe_life_part=entry.safe_life_part,
-        number=number_next(w, operator=operator, kind="F"),
-        damage_type=entry.damage_type,
-        cluster_count=entry.cluster_count,
-        state=FindingState.REPORTED,
-        cause=entry.cause,
-        found_on=entry.found_on,
-        found_by=entry.found_by,
-        at_minutes=at.minutes,
-        at_cycles=at.cycles,
-        at_landings=at.landings,
-        at_pressurisations=at.pressurisations,
-        counters_source=_source(entry),
-        counters_ahead=ahead_of_usage(at, standing.at),
-        occasion=entry.occasion,
-        task_reference=entry.task_reference,
-        detection_method=entry.detection_method,
-        detection_procedure=entry.detection_procedure,
-        last_clean_on=entry.last_clean_on,
-        last_clean_cycles=entry.last_clean_cycles,
-        last_clean_method=entry.last_clean_method,
-        event=entry.event,
-        ata=entry.ata,
-        description=entry.description,
-        client_key=entry.client_key,
-        **place_columns_of(placed) | _item_columns(entry, placed),
-    )
-    w.create(finding)
+    finding = w.create(_row(w, entry, placed, at, standing))
     asked = [
         *counter_questions(at, standing, found_on=entry.found_on),
         *_date_questions(entry),
@@ -214,6 +190,22 @@ def finding_write(
             on=w.at.date(),
         )
     return finding
+
+
+def _row(
+    w: Writing, entry: FindingEntry, placed: Placed, at: Counters, standing: Standing
+) -> Finding:
+    operator = operator_on(entry.aircraft, entry.found_on)
+    same = {name: getattr(entry, name) for name in AS_ENTERED}
+    return Finding(
+        operator=operator,
+        number=number_next(w, operator=operator, kind="F"),
+        state=FindingState.REPORTED,
+        counters_source=_source(entry),
+        counters_ahead=ahead_of_usage(at, standing.at),
+        **counter_columns("at", at),
+        **same | place_columns_of(placed) | _item_columns(entry, placed),
+    )
 
 
 def finding_relocate(

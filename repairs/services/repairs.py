@@ -9,12 +9,13 @@ from dataclasses import replace
 from django.core.exceptions import ValidationError
 
 from fleet.due import Due
-from fleet.models import Criticality, Document, User
+from fleet.models import Criticality, Document, Operator, User
 from fleet.selectors.people import policy
 from fleet.services.aircraft import stream_of
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
+from fleet.services.parts import counter_columns
 from repairs.models import (
     DueKind,
     Finding,
@@ -45,6 +46,14 @@ from repairs.services.places import (
 )
 from repairs.services.repair_entry import Data, RepairEntry, repair_problems
 
+AS_ENTERED = (
+    "aircraft", "safe_life_part", "chart_number", "kind", "description", "length_mm",
+    "width_mm", "category", "category_reason", "disposition", "approval_basis",
+    "released_on", "organisation", "performed_by", "inspected_by", "released_by",
+    "legacy", "evidence", "weight_change_g", "arm_mm", "remaining_thickness_mm",
+    "blend_depth_mm", "replacement_limit_on", "stage_reached",
+    "temporary_limit_cycles", "ata",
+)  # fmt: skip
 STAGE_2_MONTHS = "stage_2_months"
 NO_POLICY = "no policy {key} is recorded for {operator}; record it with its source"
 CLOCK_BASIS = "stage 2 of the approval of a repair to PSE or FCS"
@@ -78,57 +87,31 @@ def repair_write(w: Writing, entry: RepairEntry) -> Repair:
             on=entry.released_on,
         )
     placed = place_try(entry.aircraft, entry.place_entered)
-    approval, limit = entry.approval, entry.replacement_limit
-    superseded = list(entry.supersedes)
-    repair = Repair(
-        operator=operator,
-        aircraft=entry.aircraft,
-        safe_life_part=entry.safe_life_part,
-        number=number_next(w, operator=operator, kind="R"),
-        chart_number=entry.chart_number,
-        kind=entry.kind,
-        state=RepairState.EMBODIED,
-        description=entry.description,
-        length_mm=entry.length_mm,
-        width_mm=entry.width_mm,
-        category=entry.category,
-        category_reason=entry.category_reason,
-        disposition=entry.disposition,
-        approval_basis=entry.approval_basis,
-        approval_document=_document(w, entry, approval) if approval else None,
-        approval_page=approval.page if approval else "",
-        release_document=_release(w, entry),
-        released_on=entry.released_on,
-        at_minutes=entry.at.minutes,
-        at_cycles=entry.at.cycles,
-        at_landings=entry.at.landings,
-        at_pressurisations=entry.at.pressurisations,
-        organisation=entry.organisation,
-        performed_by=entry.performed_by,
-        inspected_by=entry.inspected_by,
-        released_by=entry.released_by,
-        legacy=entry.legacy,
-        evidence=entry.evidence,
-        weight_change_g=entry.weight_change_g,
-        arm_mm=entry.arm_mm,
-        remaining_thickness_mm=entry.remaining_thickness_mm,
-        blend_depth_mm=entry.blend_depth_mm,
-        replacement_limit_cycles=limit.cycles,
-        replacement_limit_minutes=limit.minutes,
-        replacement_limit_on=entry.replacement_limit_on,
-        stage_reached=entry.stage_reached,
-        temporary_limit_cycles=entry.temporary_limit_cycles,
-        ata=entry.ata,
-        replaces=superseded[0] if superseded else None,
-        **place_columns_of(placed) | _item_columns(entry, placed),
-    )
-    w.create(repair)
+    repair = w.create(_row(w, entry, placed, operator))
     _rows_write(w, repair, entry)
     photographs_write(w, shown=repair, photos=entry.photographs)
     _clocks_open(w, repair, entry)
     _findings_rectify(w, repair, entry)
-    _supersede(w, repair, superseded)
+    _supersede(w, repair, entry.supersedes)
     return repair
+
+
+def _row(w: Writing, entry: RepairEntry, placed: Placed, operator: Operator) -> Repair:
+    approval, limit = entry.approval, entry.replacement_limit
+    same = {name: getattr(entry, name) for name in AS_ENTERED}
+    return Repair(
+        operator=operator,
+        number=number_next(w, operator=operator, kind="R"),
+        state=RepairState.EMBODIED,
+        approval_document=_document(w, entry, approval) if approval else None,
+        approval_page=approval.page if approval else "",
+        release_document=_release(w, entry),
+        replacement_limit_cycles=limit.cycles,
+        replacement_limit_minutes=limit.minutes,
+        replaces=entry.supersedes[0] if entry.supersedes else None,
+        **counter_columns("at", entry.at),
+        **same | place_columns_of(placed) | _item_columns(entry, placed),
+    )
 
 
 def repair_remove(
