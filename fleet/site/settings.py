@@ -3,7 +3,7 @@
 | variable | meaning | when absent |
 |---|---|---|
 | FRAMEBAY_DATA | folder of SQLite file, attachments and secret key | `data/` |
-| FRAMEBAY_DATA | folder of the SQLite file, attachments, secret key | `data/` |
+| DATABASE_URL | as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
 | FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
 | FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
