@@ -28,14 +28,9 @@ def authorisation_on(
     person: Person, operator: Operator, scopes: tuple[str, ...], day: dt.date
 ) -> Authorisation | None:
     """The person's authorisation of one of the scopes that holds on that day."""
-    return (
-        Authorisation.objects.filter(
-            Q(valid_to__isnull=True) | Q(valid_to__gte=day),
-            person=person,
-            operator=operator,
-            scope__in=scopes,
-            valid_from__lte=day,
-        )
-        .order_by("-valid_from", "-pk")
-        .first()
-    )
+    held = [
+        row
+        for row in person.authorisations.all()
+        if row.operator_id == operator.pk and row.scope in scopes and row.holds_on(day)
+    ]
+    return max(held, key=lambda row: (row.valid_from, row.pk), default=None)

@@ -8,7 +8,6 @@ from django.core.exceptions import ValidationError
 
 from fleet.models import (
     Aircraft,
-    AircraftPeriod,
     Authorisation,
     AuthorisationScope,
     Operator,
@@ -51,13 +50,13 @@ def authorised(
 
 def operator_on(aircraft: Aircraft, day: dt.date) -> Operator:
     """Who operated the aircraft that day; before its first period, who does now."""
-    period = (
-        AircraftPeriod.objects.filter(aircraft=aircraft, from_on__lte=day)
-        .select_related("operator")
-        .order_by("-from_on")
-        .first()
-    )
-    return period.operator if period else aircraft.operator
+    begun = [row for row in aircraft.periods.all() if row.from_on <= day]
+    if not begun:
+        return aircraft.operator
+    period = max(begun, key=lambda row: row.from_on)
+    if period.operator_id == aircraft.operator_id:
+        return aircraft.operator
+    return period.operator
 
 
 def _detail(

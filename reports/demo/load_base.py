@@ -10,6 +10,7 @@ from itertools import groupby
 from typing import Any
 
 from django.conf import settings
+from django.db.models import prefetch_related_objects
 
 from fleet.models import (
     Aircraft,
@@ -107,6 +108,7 @@ def people_load(password: str) -> Loaded:
             source=AUTHORISED_BY,
             at=BEGAN,
         )
+    prefetch_related_objects(list(loaded.people.values()), "authorisations")
     return loaded
 
 
@@ -214,6 +216,7 @@ def _aircraft_add(
         rekeyed_by=loaded.users["planner"],
         at=at,
     )
+    prefetch_related_objects([loaded.aircraft[plan.msn]], "periods")
 
 
 def _state_set(

@@ -10,18 +10,24 @@ from itertools import groupby
 from fleet.models import DetectableSize
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
-from repairs.models import Finding
-from repairs.services.evaluation_inputs import Choice
-from repairs.services.evaluations import default_use, evaluation_write
+from repairs.models import Finding, Use
+from repairs.services.evaluations import choice_from, evaluation_write
 from reports.demo.fleet import DEMO_TODAY
 from reports.demo.load_base import Loaded
+from reports.demo.records import Scenario
 
 EVALUATED_AT = dt.datetime.combine(DEMO_TODAY, dt.time(8), dt.UTC)
 HEAD, OPEN_SKIN = "fastener head", "open skin"
 
 
-def evaluations_load(loaded: Loaded, say: Callable[[str], None]) -> Counter[str]:
-    """One evaluation a finding, entered aircraft by aircraft; outcomes counted."""
+def evaluations_load(
+    loaded: Loaded, scenario: Scenario, say: Callable[[str], None]
+) -> Counter[str]:
+    """One evaluation a finding, entered aircraft by aircraft; outcomes counted.
+
+    Damage that was reworked is gone: the question is structure without known crack.
+    """
+    reworked = {loaded.rows[f.key].pk for f in scenario.findings if f.reworked}
     sizes = {(s.method, s.detail): s for s in DetectableSize.objects.all()}
     outcomes: Counter[str] = Counter()
     findings = Finding.objects.select_related(
@@ -36,7 +42,9 @@ def evaluations_load(loaded: Loaded, say: Callable[[str], None]) -> Counter[str]
             stream=stream_of(aircraft),
         ) as w:
             for finding in rows:
-                choice = Choice(default_use(finding), _size(finding, sizes))
+                gone = finding.pk in reworked
+                use = Use.NO_KNOWN_CRACK if gone else Use.FOUND_DAMAGE
+                choice = choice_from(finding, use=use, detectable=_size(finding, sizes))
                 made = evaluation_write(
                     w, subject=finding, choice=choice, as_of=DEMO_TODAY
                 )

@@ -37,6 +37,6 @@ def demo_load(scenario: Scenario, *, say: Callable[[str], None]) -> Loaded:
         *repair_steps(loaded, scenario),
     ]
     steps_run(steps, say)
-    evaluations_load(loaded, say)
+    evaluations_load(loaded, scenario, say)
     marker_set(loaded, scenario.seed)
     return loaded
