@@ -18,14 +18,15 @@ from repairs.services.measuring import Measuring, measurement_record
 from reports.demo.fleet import BY_MSN, day_date, day_number
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
-from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario
+from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario, Truth
 from reports.demo.timeline import Rank, Step, quarter_after
 from reports.demo.usage import Logbook
 
 COUNTERS_SOURCE = "technical log page of the day"
 INSPECTED = ("check", "task")
 PRINCIPAL_SOURCE = "type's list of principal structural elements, page 2"
-ATA = {"FUS": "53", "WING-L": "57", "WING-R": "57", "FIN": "55", "DOOR": "52"}
+ATA = {"FUS": "53", "WING": "57", "HT": "55", "FIN": "55", "NAC": "54"}
+"""ATA chapter by the beginning of the section's code."""
 
 
 def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
@@ -60,6 +61,10 @@ def _by_quarter(
 
 def typed(dimensions: Sequence[Dimension]) -> list[Typed]:
     return [Typed(d.quantity, d.entered, d.worked_out) for d in dimensions]
+
+
+def ata_of(truth: Truth) -> str:
+    return ATA.get(truth.section.partition("-")[0], "")
 
 
 def last_clean(finding: DemoFinding, book: Logbook) -> dt.date | None:
@@ -125,7 +130,7 @@ def _entry(loaded: Loaded, finding: DemoFinding, book: Logbook) -> FindingEntry:
         surface=finding.surface,
         criticality="" if finding.element == "skin" else "principal",
         criticality_source="" if finding.element == "skin" else PRINCIPAL_SOURCE,
-        ata=ATA.get(finding.truth.section, "54"),
+        ata=ata_of(finding.truth),
         cause=finding.cause,
         cluster_count=finding.cluster_count,
         occasion=finding.occasion,

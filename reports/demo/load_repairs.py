@@ -31,8 +31,10 @@ from reports.demo.airframe import INCH_MM
 from reports.demo.fleet import BY_MSN, DATA_BEGIN, DEMO_TODAY
 from reports.demo.load_base import Loaded
 from reports.demo.load_decisions import limit_entries
+from reports.demo.load_findings import ata_of
 from reports.demo.load_parts import amounts
 from reports.demo.people import MAINTENANCE
+from reports.demo.places import FUSELAGE
 from reports.demo.records import (
     DemoAccomplishment,
     DemoFastener,
@@ -89,24 +91,28 @@ def _repair(
     requirement: DemoRequirement | None,
     at: dt.datetime,
 ) -> None:
-    document = repair.document
-    limits = {limit.counter: limit.value for limit in repair.replace_by}
-    months = limits.get("months")
+    entry = _answering(loaded, repair, _embodied(loaded, repair, findings))
+    if requirement is not None:
+        entry = replace(entry, new_requirement=_draft(loaded, requirement))
+    row = repair_record(entry=entry, actor=loaded.users["engineer"], at=at)
+    loaded.rows[repair.key] = row
+    if requirement is not None:
+        loaded.rows[requirement.key] = row.requirements.get()
+
+
+def _embodied(
+    loaded: Loaded, repair: DemoRepair, findings: dict[str, DemoFinding]
+) -> RepairEntry:
+    """What was done, by whom and with which data."""
     left_mm, removed_mm = _blend(repair, findings)
-    known = document.kind != "other"
-    entry = RepairEntry(
+    return RepairEntry(
         aircraft=loaded.aircraft[repair.msn],
         place_entered=repair.location,
         kind=repair.kind,
         description=repair.description,
         category=repair.category,
         category_reason=repair.category_reason,
-        approval_basis=document.kind if known else "unknown",
-        approval=Data(
-            document.kind, document.reference, document.revision, document.page
-        )
-        if known
-        else None,
+        approval_basis="unknown",
         released_on=repair.released_on,
         at=amounts(repair.at),
         release_reference="" if repair.legacy else f"HA-{repair.key[2:]}",
@@ -117,35 +123,41 @@ def _repair(
             for material, thickness in repair.layers
         ],
         fasteners=[_fastener(one) for one in repair.fasteners],
-        findings=[
-            Answered(loaded.rows[key], repair.covers, repair.damage_removed)
-            for key in repair.findings
-        ],
-        disposition=loaded.rows.get(f"S{repair.findings[0][1:]}")
-        if repair.findings
-        else None,
-        surface="outer",
-        ata="53",
+        surface="outer" if repair.truth.section == FUSELAGE else "",
+        ata=ata_of(repair.truth),
         remaining_thickness_mm=left_mm,
         blend_depth_mm=removed_mm,
-        replacement_limit=Amounts(cycles=limits.get("cycles")),
-        replacement_limit_on=months_later(repair.released_on, months, CalendarRule.DATE)
-        if months
-        else None,
-        temporary_limit_cycles=repair.temporary_limit_cycles,
-        stage_reached="1" if repair.stage_due_on else "not_applicable",
         performed_by=loaded.people[repair.performed_by],
         inspected_by=loaded.people[repair.inspected_by],
         released_by=loaded.people[repair.released_by],
         organisation=loaded.organisations[MAINTENANCE],
         legacy=repair.legacy,
         evidence=_evidence(repair),
-        new_requirement=_draft(loaded, requirement) if requirement else None,
     )
-    row = repair_record(entry=entry, actor=loaded.users["engineer"], at=at)
-    loaded.rows[repair.key] = row
-    if requirement is not None:
-        loaded.rows[requirement.key] = row.requirements.get()
+
+
+def _answering(loaded: Loaded, repair: DemoRepair, entry: RepairEntry) -> RepairEntry:
+    """The findings it answers, its approval and the limits that follow from it."""
+    document = repair.document
+    limits = {limit.counter: limit.value for limit in repair.replace_by}
+    months, key = limits.get("months"), next(iter(repair.findings), "")
+    if document.kind != "other":
+        data = Data(document.kind, document.reference, document.revision, document.page)
+        entry = replace(entry, approval_basis=document.kind, approval=data)
+    if months:
+        last = months_later(repair.released_on, months, CalendarRule.DATE)
+        entry = replace(entry, replacement_limit_on=last)
+    return replace(
+        entry,
+        findings=[
+            Answered(loaded.rows[key], repair.covers, repair.damage_removed)
+            for key in repair.findings
+        ],
+        disposition=loaded.rows.get(f"S{key[1:]}"),
+        replacement_limit=Amounts(cycles=limits.get("cycles")),
+        temporary_limit_cycles=repair.temporary_limit_cycles,
+        stage_reached="1" if repair.stage_due_on else "not_applicable",
+    )
 
 
 def _evidence(repair: DemoRepair) -> str:
