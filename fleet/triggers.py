@@ -34,7 +34,7 @@ POSTGRESQL_FUNCTION = """
 CREATE OR REPLACE FUNCTION fleet_refuse_change() RETURNS trigger AS $$
 BEGIN
     RAISE EXCEPTION 'rows of % are never changed or removed; add a new row',
-        TG_TABLE_NAME;
+        TG_TABLE_NAME USING ERRCODE = 'integrity_constraint_violation';
 END $$ LANGUAGE plpgsql
 """
 

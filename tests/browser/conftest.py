@@ -20,11 +20,10 @@ from typing import Any, NoReturn
 
 import pytest
 
+from tests.browser.chromium import BROWSERS, FLAGS
 from tests.factories import PASSWORD, TODAY
 
 ROOT = Path(__file__).parents[2]
-BROWSERS = ("chromium", "chromium-browser", "google-chrome")
-FLAGS = ["--no-sandbox", "--disable-gpu", "--disable-background-networking"]
 AXE = "axe-core@4.14.1"
 AXE_SHA256 = "e6b0ce02b84d892e2e33e403485e7f3d6c29e2be6df65daf44d89ba564139745"
 START_SECONDS = 60

@@ -12,7 +12,7 @@ from pathlib import Path
 from playwright.sync_api import Page, sync_playwright
 
 from reports.demo.people import PASSWORD
-from tests.browser.conftest import BROWSERS, FLAGS
+from tests.browser.chromium import BROWSERS, FLAGS
 
 ORIGIN = "http://127.0.0.1:8000"
 FOLDER = Path(__file__).parents[2] / "fixtures" / "screenshots"
