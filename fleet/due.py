@@ -188,12 +188,17 @@ class Done:
 
 @dataclass(frozen=True)
 class Standing:
-    """A subject's counters on the day its data are current to, and its daily rates."""
+    """A subject's counters on the day its data are current to, and its daily rates.
+
+    `reconstructed_minutes` is the part of the hours that was put in for flights whose
+    hours are unknown.
+    """
 
     at: Counters = field(default_factory=Counters)
     current_to: date | None = None
     rates: Mapping[Counter, Fraction] = field(default_factory=dict)
     high_rates: Mapping[Counter, Fraction] = field(default_factory=dict)
+    reconstructed_minutes: int = 0
 
 
 @dataclass(frozen=True)

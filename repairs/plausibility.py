@@ -10,7 +10,7 @@ from dataclasses import dataclass
 from datetime import date
 
 from fleet.amounts import amount_write
-from fleet.due import COUNTED, Counters, Standing
+from fleet.due import COUNTED, Counter, Counters, Standing
 from repairs.measured import Measured, sizes_of
 from repairs.measurements import ASKED_RATIOS, RATIO_TOLERANCE, Ratio
 
@@ -112,7 +112,9 @@ def counter_questions(
         if stated is None or flown is None or stated == flown:
             continue
         if stated < flown:
-            below.append(amount_write(counter, flown - stated))
+            unsure = standing.reconstructed_minutes if counter is Counter.MINUTES else 0
+            if stated < flown - unsure:
+                below.append(amount_write(counter, flown - unsure - stated))
             continue
         allowed = int(standing.high_rates.get(counter, 0) * max(days, 0))
         if stated - flown > allowed:

@@ -243,7 +243,9 @@ def _standing(
     return AircraftStanding(
         aircraft,
         as_of,
-        Standing(at, current_to, rates.get(RATE_DAYS, {}), high),
+        Standing(
+            at, current_to, rates.get(RATE_DAYS, {}), high, without * (longest or 0)
+        ),
         state,
         without,
         longest,

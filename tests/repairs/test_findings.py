@@ -8,12 +8,13 @@ import uuid
 import pytest
 from django.core.exceptions import ValidationError
 
-from fleet.due import Counters
+from fleet.due import Counters, Standing
 from fleet.location.place import LocationRefused
 from fleet.models import HistoryEntry
 from fleet.selectors.verify import problems
 from repairs.measured import Typed
 from repairs.models import Approval, Finding, FindingQuestion, LimitCheck
+from repairs.plausibility import counter_questions
 from repairs.services.approvals import approval_agrees
 from repairs.services.assessing import (
     Reportability,
@@ -90,6 +91,16 @@ def test_counters_below_usage_are_asked_about(world):
     finding = found(world, at=Counters(cycles=10_079))
     assert codes(finding) == ["counters_below"]
     assert "1 FC below usage" in finding.questions.get().asked
+
+
+def test_hours_put_in_for_flights_without_hours_are_not_held_against_the_log():
+    # 604,000 min flown, of which 200 stand in for a flight whose hours are unknown.
+    standing = Standing(
+        Counters(minutes=604_000), current_to=FOUND, reconstructed_minutes=200
+    )
+    for stated, asked in ((604_000, 0), (603_800, 0), (603_799, 1)):
+        at = Counters(minutes=stated)
+        assert len(counter_questions(at, standing, found_on=FOUND)) == asked
 
 
 def test_before_the_data_begin_usage_says_nothing_of_counters(world):
