@@ -78,6 +78,7 @@ def _results(shown: Mapping[str, Any]) -> Iterable[str]:
         ("margin, ultimate", shown["margin_ultimate"], shown["ultimate_case"]),
         ("life before factor", shown["life_cycles"], f"FC {shown['life_base']}"),
         ("scatter factor", shown["scatter_factor"], ""),
+        ("life after factor", shown["life_after_factor_cycles"], "FC"),
         ("threshold", shown["threshold_cycles"], "FC"),
         ("repeat interval", shown["repeat_cycles"], "FC"),
     )

@@ -161,6 +161,16 @@ def test_the_operators_own_policy_governs_and_the_offered_one_stays(admin, opera
     assert newest.replaces == Policy.objects.get(value=9)
 
 
+def test_the_policies_page_costs_the_same_for_more_rows(admin, operator):
+    offered(operator)
+
+    def grow():
+        for n in range(10):
+            offered(operator, key=f"key_{n}", operator=operator)
+
+    assert_same_queries(admin, "/policies/", grow, ceiling=9)
+
+
 def test_a_number_from_memory_is_marked_unverified(admin, operator):
     offered(operator)
     assert "memory, unverified" in said(admin.get("/policies/"))
@@ -180,6 +190,16 @@ def test_the_history_page_is_filtered_and_paged(client, operator):
     assert last.digest in first
     assert "Nothing" not in first
     assert "No entry answers" in said(client.get("/history/?who=nobody"))
+
+
+def test_the_history_page_costs_the_same_for_more_entries(client, operator):
+    client.force_login(factories.user_make(operator, "auditor"))
+
+    def grow():
+        for n in range(20):
+            offered(operator, key=f"key_{n}", operator=operator)
+
+    assert_same_queries(client, "/history/", grow, ceiling=9)
 
 
 def test_the_history_of_another_operator_is_not_shown(client, operator):

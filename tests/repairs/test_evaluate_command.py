@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import math
 from io import StringIO
 
 import pytest
@@ -93,6 +94,18 @@ def test_note_reads_line_by_line(world):
     assert "USAF Damage Tolerant Design Handbook, Table 11.3.13" in text
     assert "memory]" in text
     assert "met       structural item: skin" in text
+
+
+def test_the_note_gives_the_life_before_and_after_the_factor(world):
+    data, text = (
+        evaluate(cracked(world).number, "--format", form) for form in ("json", "note")
+    )
+    shown = json.loads(data)
+    after = math.floor(shown["life_cycles"] / shown["scatter_factor"])
+    assert shown["life_after_factor_cycles"] == after
+    said = " ".join(text.split())
+    assert f"life before factor {shown['life_cycles']:,} FC from finding" in said
+    assert f"life after factor {after:,} FC" in said
 
 
 def test_the_same_question_is_answered_by_the_evaluation_in_force(world):
