@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from difflib import SequenceMatcher
+from itertools import combinations
 from typing import Any
 
 from django.db import models
@@ -13,6 +15,9 @@ from fleet.selectors.structure import place_find
 from fleet.services.structure import place_columns
 from repairs.models import Element
 
+MOST_WORDS = 12
+"""Words searched for the ones an offer replaces; a longer text is prose."""
+
 
 @dataclass(frozen=True, slots=True)
 class Placed:
@@ -22,18 +27,46 @@ class Placed:
     place: Place | None = None
     columns: dict[str, Any] = field(default_factory=dict)
     refused: LocationRefused | None = None
+    offers: tuple[str, ...] = ()
+    """The text as it may have been meant, whole."""
 
 
 def place_try(aircraft: Aircraft, text: str) -> Placed:
     """Read and place a text on the aircraft's variant; a refusal is a result."""
-    variant = aircraft.variant
     try:
-        found = place_find(
-            aircraft_type=variant.aircraft_type, variant=variant.code, text=text
-        )
+        found = _find(aircraft, text)
     except LocationRefused as refused:
-        return Placed(text, refused=refused)
+        offers = tuple(_mended(aircraft, text, one.text) for one in refused.offers)
+        return Placed(text, refused=refused, offers=offers)
     return Placed(text, found, place_columns(aircraft, found))
+
+
+def _find(aircraft: Aircraft, text: str) -> Place:
+    variant = aircraft.variant
+    return place_find(
+        aircraft_type=variant.aircraft_type, variant=variant.code, text=text
+    )
+
+
+def _mended(aircraft: Aircraft, text: str, offer: str) -> str:
+    """The text with the offer put for the words most like it that then give a place.
+
+    "STA 640-12 S-9L" with "STA 628" is "STA 628 S-9L": the rest of it stays.
+    """
+    words = text.split()[:MOST_WORDS]
+
+    def unlike(cut: tuple[int, int]) -> float:
+        matcher = SequenceMatcher(None, " ".join(words[slice(*cut)]).upper(), offer)
+        return -matcher.ratio()
+
+    for start, end in sorted(combinations(range(len(words) + 1), 2), key=unlike):
+        whole = " ".join([*words[:start], offer, *words[end:]])
+        try:
+            _find(aircraft, whole)
+        except LocationRefused:
+            continue
+        return whole
+    return offer
 
 
 def place_columns_of(placed: Placed) -> dict[str, Any]:

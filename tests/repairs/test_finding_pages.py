@@ -134,9 +134,35 @@ def test_an_offer_takes_the_place_of_the_location(recorder, world):
     said = start(recorder, world, place_entered="STA 650 S-7")
     response = recorder.post(reverse("finding_new"), {**said, "step": "show"})
     offers = re.findall(r'name="offer" value="([^"]+)"', response.content.decode())
-    assert len(offers) == 2
+    assert offers == ["STA 650 S-7L", "STA 650 S-7R"]
     taken = recorder.post(reverse("finding_new"), {**said, "offer": offers[1]})
     assert filled(taken)["place_entered"] == offers[1]
+
+
+@pytest.mark.parametrize(
+    ("text", "offered"),
+    [
+        ("STA 640-12 S-9L", ["STA 628 S-9L"]),
+        ("STA 64 0 S-9L", ["STA 640 S-9L"]),
+        ("STA 64O S-9L", ["STA 640 S-9L"]),
+        ("door S-7L", []),
+    ],
+)
+def test_an_offer_keeps_the_rest_of_the_location(recorder, world, text, offered):
+    said = start(recorder, world, place_entered=text)
+    response = recorder.post(reverse("finding_new"), {**said, "step": "show"})
+    found = re.findall(r'name="offer" value="([^"]+)"', response.content.decode())
+    assert found == offered
+
+
+def test_files_that_a_refused_form_loses_are_asked_for_again(recorder, world):
+    said = {**start(recorder, world), **SIZES, "d-depth_mm": "about 1", "step": "save"}
+    url, lost = reverse("finding_new"), "Files cannot be kept over this"
+    assert lost not in recorder.post(url, said).content.decode()
+    photograph = SimpleUploadedFile("dent.jpg", b"any", "image/jpeg")
+    text = recorder.post(url, {**said, "photographs": photograph}).content.decode()
+    assert text.count(lost) == 1
+    assert text.count("Not saved.") == 1
 
 
 def test_a_size_that_cannot_be_read_is_said_beside_its_field(recorder, world):
@@ -201,7 +227,7 @@ def test_the_page_shows_place_drawing_sizes_and_history(recorder, world):
         "<svg",
         "0.040 in (1.02 mm)",
         "width over depth",
-        "finding record",
+        "finding recorded",
         "10,080 FC",
     ):
         assert words in page
