@@ -8,6 +8,7 @@ from typing import Any
 from django import forms
 
 from fleet.forms.fields import DayField
+from fleet.models.history import action_words
 
 
 class HistoryFilter(forms.Form):
@@ -23,5 +24,5 @@ class HistoryFilter(forms.Form):
 
     def __init__(self, *args: Any, actions: Sequence[str], **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        known = [(action, action.replace("_", " ")) for action in actions]
+        known = [(action, action_words(action)) for action in actions]
         self.fields["action"].choices = [("", "everything"), *known]  # type: ignore[attr-defined]

@@ -15,6 +15,23 @@ from fleet.fields import Count, Word, text
 from fleet.models.people import Operator
 from fleet.scoping import ScopedQuerySet
 
+DONE = {
+    "add": "added", "answer": "answered", "assess": "assessed", "close": "closed",
+    "correct": "corrected", "create": "created", "decide": "decided", "end": "ended",
+    "grant": "granted", "import": "imported", "install": "installed", "key": "keyed",
+    "leave": "left", "link": "linked", "load": "loaded", "make": "made",
+    "open": "opened", "publish": "published", "raise": "raised", "record": "recorded",
+    "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
+    "set": "set", "sign": "signed", "void": "voided",
+}  # fmt: skip
+"""Last word of a service's name to what it did."""
+
+
+def action_words(action: str) -> str:
+    """finding_record -> finding recorded."""
+    *what, verb = action.split("_")
+    return " ".join([*what, DONE.get(verb, verb)])
+
 
 class HistoryHead(models.Model):
     """The end of the chain, and the lock that orders writers; one row."""
@@ -70,6 +87,10 @@ class HistoryEntry(models.Model):
 
     def __str__(self) -> str:
         return f"{self.sequence} {self.action}"
+
+    @property
+    def action_words(self) -> str:
+        return action_words(self.action)
 
 
 class HistoryItem(models.Model):

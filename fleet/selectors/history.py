@@ -36,7 +36,7 @@ def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
         Told(
             at=item.entry.at,
             actor_name=item.entry.actor_name,
-            action_words=item.entry.action.replace("_", " "),
+            action_words=item.entry.action_words,
             changes=[_words(k, a, b) for k, (a, b) in json.loads(item.changes).items()],
             reason=item.entry.reason,
         )

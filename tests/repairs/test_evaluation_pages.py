@@ -114,7 +114,7 @@ def test_the_page_says_unapproved_and_shows_the_whole_note(client, world, made):
     assert "crack length 2a, mm" in text
     assert "strength, gross, MPa" in text
     assert "not shown" in text
-    assert "evaluation make" in text
+    assert "evaluation made" in text
     assert "style=" not in text
 
 
