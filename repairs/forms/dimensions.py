@@ -7,6 +7,7 @@ from typing import Any
 from django import forms
 
 from fleet.units import UnitError
+from repairs.forms.fields import UNIT_WORDS
 from repairs.measured import Hole, MeasuredError, Typed, holes_read, measured_read
 from repairs.measurements import ASKED_RATIOS, DIMENSIONS, Dimension, Kind
 
@@ -94,8 +95,8 @@ def _field(one: Dimension, entry_unit: str) -> forms.Field:
         choices = [*OPEN, *one.words, *UNSURE]
         return forms.ChoiceField(label=label, required=False, choices=choices)
     unit = {
-        Kind.LENGTH: f"{entry_unit} unless you write another unit",
-        Kind.AREA: f"{entry_unit}² unless you write another unit",
+        Kind.LENGTH: f"{UNIT_WORDS[entry_unit]} unless you write another unit",
+        Kind.AREA: f"square {UNIT_WORDS[entry_unit]} unless you write another unit",
         Kind.COUNT: "a whole number",
     }.get(one.kind, one.unit)
     shown = f"{one.help}; {unit}" if one.help else unit

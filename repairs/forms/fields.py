@@ -12,7 +12,9 @@ from fleet.forms.fields import CounterField, HoursField
 from fleet.models import Document
 from fleet.units import UnitError, length_read, measure_write
 from repairs.models import Evaluation, Finding, Repair
+from repairs.selectors.findings import CHECK_WORDS
 
+UNIT_WORDS = {"in": "inches", "mm": "mm"}
 NOT_POSITIVE = "“{text}” is not above zero."
 PHOTO_ROLES = [
     ("close", "close"),
@@ -83,7 +85,7 @@ class Several(forms.ModelMultipleChoiceField):
             return f"{obj} {obj.get_kind_display()}, {obj.place_text}"
         if isinstance(obj, Evaluation):
             return f"{obj} {obj.get_use_display()}, {obj.get_outcome_display()}"
-        return f"{obj.checked_at:%Y-%m-%d} {obj.get_outcome_display()}"
+        return f"{obj.checked_at:%Y-%m-%d} {CHECK_WORDS[obj.outcome]}"
 
 
 class CountersForm(forms.Form):

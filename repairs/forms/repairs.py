@@ -11,7 +11,14 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.models import Aircraft, Criticality, Document, Organisation, Person
 from fleet.units import UnitError, length_read
-from repairs.forms.fields import CountersForm, LengthField, PhotoForm, Several, choose
+from repairs.forms.fields import (
+    UNIT_WORDS,
+    CountersForm,
+    LengthField,
+    PhotoForm,
+    Several,
+    choose,
+)
 from repairs.forms.findings import FROM_LOCATION, not_in_future
 from repairs.forms.groups import Group, group
 from repairs.models import (
@@ -183,7 +190,8 @@ class RepairForm(CountersForm, PhotoForm):
         for field in self.fields.values():
             if isinstance(field, LengthField):
                 field.unit = unit
-                field.help_text = f"{field.help_text} {unit} unless you say.".strip()
+                said = f"{UNIT_WORDS[unit]} unless you write another unit."
+                field.help_text = f"{field.help_text} {said}".strip()
         self.unit, self.today = unit, today
 
     def groups(self) -> list[Group]:

@@ -205,7 +205,8 @@ def sizes_of(finding: Finding, measurements: Sequence[Measurement]) -> Sizes:
     for one in by_number:
         last |= {q: v.value for q, v in one.items() if v.value is not None}
     found = ratios(finding.damage_type, last)
-    return Sizes(measurements, rows, [(r.label, f"{value:.3g}") for r, value in found])
+    told = [(r.name.replace("_", " "), f"{value:.3g}") for r, value in found]
+    return Sizes(measurements, rows, told)
 
 
 def size_words(measurements: Sequence[Measurement]) -> str:
