@@ -4,7 +4,14 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from fleet.models import Aircraft, AircraftType, Document, Operator, User
+from fleet.models import (
+    Aircraft,
+    AircraftType,
+    Document,
+    HistoryEntry,
+    Operator,
+    User,
+)
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
 from reports.demo.load_base import OPERATOR_CODES, Loaded
@@ -51,4 +58,6 @@ def standing_now() -> Standing:
             f"{word} {row}" for kind, word in kinds for row in kind.objects.all()
         ]
         foreign += [f"login {user.username}" for user in User.objects.all()]
+        if not foreign and (written := HistoryEntry.objects.count()):
+            foreign.append(f"history entries ({written})")
     return Standing(int(marker.revision) if marker else None, tuple(foreign[:5]))

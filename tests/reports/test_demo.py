@@ -39,7 +39,7 @@ from reports.demo.records import Scenario
 from reports.demo.scenario import draw
 from reports.due_list import DueList, DueQuery, due_list
 from reports.due_rows import DueRow
-from tests.factories import operator_make
+from tests.factories import FIXTURES, operator_make
 
 
 @dataclass(frozen=True)
@@ -463,3 +463,12 @@ def test_foreign_database_is_refused_and_left_alone(settings, tmp_path) -> None:
         call_command("demo", stdout=io.StringIO())
     assert Operator.objects.count() == 1
     assert not (tmp_path / "today").exists()
+
+
+@pytest.mark.django_db
+def test_whatever_was_written_before_is_foreign(settings, tmp_path) -> None:
+    settings.DATA_DIR = tmp_path
+    call_command("load_materials", FIXTURES / "materials.toml", stdout=io.StringIO())
+    with pytest.raises(CommandError, match=r"not the demo.s: history entries \(1\)"):
+        call_command("demo", stdout=io.StringIO())
+    assert not Operator.objects.exists()

@@ -75,15 +75,7 @@ class Command(BaseCommand):
                 why = f"{options[option]!r} is not known; known are {known}."
                 raise CommandError(WRONG.format(option=option, why=why))
         if not form.is_valid():
-            named = {field: option for option, field in OPTIONS.items()}
-            raise CommandError(
-                " ".join(
-                    WRONG.format(
-                        option=named.get(field, field), why=" ".join(map(str, errors))
-                    )
-                    for field, errors in form.errors.items()
-                )
-            )
+            raise CommandError(" ".join(_wrong(form)))
         page = density_page(
             form.asked(),
             user=reader,
