@@ -96,18 +96,20 @@ def test_the_database_refuses_to_change_the_history(two, statement):
         cursor.execute(statement)
 
 
-def test_insert_or_replace_is_refused_too(two):
-    if connection.vendor != "sqlite":
-        pytest.skip("INSERT OR REPLACE exists on SQLite only")
+AROUND = {
+    "sqlite": "INSERT OR REPLACE INTO fleet_historyentry "
+    "SELECT * FROM fleet_historyentry WHERE sequence = 1",
+    "postgresql": "TRUNCATE fleet_historyentry CASCADE",
+}
+
+
+def test_the_way_around_row_triggers_is_refused_too(two):
     with (
         pytest.raises(DatabaseError, match="never changed"),
         transaction.atomic(),
         connection.cursor() as cursor,
     ):
-        cursor.execute(
-            "INSERT OR REPLACE INTO fleet_historyentry "
-            "SELECT * FROM fleet_historyentry WHERE sequence = 1"
-        )
+        cursor.execute(AROUND[connection.vendor])
 
 
 def test_a_refused_row_leaves_nothing(two, now):
