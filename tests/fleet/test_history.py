@@ -99,7 +99,7 @@ def test_the_database_refuses_to_change_the_history(two, statement):
 AROUND = {
     "sqlite": "INSERT OR REPLACE INTO fleet_historyentry "
     "SELECT * FROM fleet_historyentry WHERE sequence = 1",
-    "postgresql": "TRUNCATE fleet_historyentry CASCADE",
+    "postgresql": "SET CONSTRAINTS ALL IMMEDIATE; TRUNCATE fleet_historyentry CASCADE",
 }
 
 
