@@ -72,8 +72,15 @@ class DueRow:
     def last_done(self) -> str:
         if self.item.last_on is None:
             return ""
-        last = self.item.last_at
-        at = counters_write(Counters(last.minutes, last.cycles))
+        last, due = self.item.last_at, self.due.at
+        at = counters_write(
+            Counters(
+                last.minutes,
+                last.cycles,
+                last.landings if due.landings is not None else None,
+                last.pressurisations if due.pressurisations is not None else None,
+            )
+        )
         return f"{self.item.last_on}, {at}" if at else str(self.item.last_on)
 
     @property
@@ -123,8 +130,7 @@ HEADER = (
     "action",
     "zone",
     "last done on",
-    "last done at FH",
-    "last done at FC",
+    *(f"last done at {unit}" for unit in ("FH", "FC", "landings", "PC")),
     *(f"due {unit}" for unit in ("minutes", "FC", "landings", "PC")),
     "due date",
     *(f"now {unit}" for unit in ("minutes", "FC", "landings", "PC")),
@@ -156,7 +162,7 @@ def export_row(row: DueRow) -> list[Any]:
         item.zone,
         _day(item.last_on),
         _hours(item.last_at.minutes),
-        item.last_at.cycles,
+        *(item.last_at[counter] for counter in COUNTED[1:]),
         *(row.due.at[counter] for counter in COUNTED),
         _day(row.due.on),
         *_column(lines, "now"),

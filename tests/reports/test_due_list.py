@@ -16,6 +16,7 @@ from repairs.services.accomplishments import accomplishment_record
 from repairs.services.inspections import requirement_raise
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from reports.due_list import DueQuery, due_list
+from reports.due_rows import HEADER, export_row
 from tests import due_rows as make
 from tests.due_rows import AT, FIRST, TODAY, day, fly
 
@@ -107,6 +108,20 @@ class TestRows:
         assert row.last_done == f"{day(2)}, 20,010:00 FH · 25,012 FC"
         assert row.cells[0].due == "25,072 FC"
         assert row.state is DueState.OVERDUE
+
+    def test_what_is_due_in_landings_was_done_at_landings(self, aircraft):
+        requirement = required(
+            aircraft,
+            at_total("25,100 FC"),
+            LimitEntry("repeat", "60 landings"),
+        )
+        record(requirement, day(2), 25_012)
+        row = only()
+        assert row.last_done.endswith(" · 25,012 FC · 25,012 landings")
+        assert row.cells[0].due == "25,072 landings"
+        exported = dict(zip(HEADER, export_row(row), strict=True))
+        assert exported["last done at landings"] == 25_012
+        assert exported["last done at PC"] is None
 
     def test_what_cannot_be_computed_counts_as_due_and_leads_its_group(self, aircraft):
         required(aircraft, LimitEntry("threshold", "500 FC", base="release"))
