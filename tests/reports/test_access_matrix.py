@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 from pathlib import Path
 
@@ -17,6 +18,9 @@ from tests.site_pages import PAGES, PUBLIC, names, nothing
 pytestmark = pytest.mark.django_db
 
 MARK = "Q7-AAA"
+INLINE = re.compile(
+    r"""<style|<script(?![^>]*\ssrc=)|<[^>]*\s(?:style|on[a-z]+)\s*=""", re.IGNORECASE
+)
 
 
 @pytest.fixture(scope="module")
@@ -98,6 +102,20 @@ def test_each_role_gets_what_its_acts_allow(name, each, ask):
                 assert status in ((200,) if method == "get" else (200, 302)), role
             else:
                 assert status == 403, (role, method)
+
+
+@pytest.mark.parametrize("name", [n for n in CLOSED if PAGES[n].methods[0] == "get"])
+def test_no_page_has_script_or_style_within_itself(name, each, clients):
+    page = PAGES[name]
+    role = sorted(page.roles)[0]
+    client = clients[each.world.users[role].pk]
+    answer = client.get(reverse(name, kwargs=page.keys(each)))
+    allowed = answer["Content-Security-Policy"]
+    assert "script-src 'self'" in allowed
+    assert "style-src 'self'" in allowed
+    assert "unsafe" not in allowed
+    if not answer.streaming and page.looks:
+        assert not INLINE.findall(answer.content.decode())
 
 
 @pytest.mark.parametrize("name", OWN)
