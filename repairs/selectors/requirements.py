@@ -25,6 +25,7 @@ from fleet.selectors.parts import part_lives
 from repairs.models import (
     Accomplishment,
     DuePoint,
+    Evaluation,
     Finding,
     InspectionRequirement,
     RequirementLimit,
@@ -348,3 +349,11 @@ def findings_on(subject: RequirementSubject) -> QuerySet[Finding]:
     if subject.part is not None:
         return Finding.objects.filter(safe_life_part=subject.part)
     return Finding.objects.filter(aircraft=subject.aircraft)
+
+
+def rework_counted_from(evaluation: Evaluation) -> date | None:
+    """The day of the rework that an evaluation's threshold counts from, if one."""
+    if evaluation.finding is None or "rework" not in evaluation.threshold_base:
+        return None
+    reworks = evaluation.finding.measurements.filter(stage="after_rework")
+    return reworks.order_by("-number").values_list("measured_on", flat=True).first()

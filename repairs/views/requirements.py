@@ -40,6 +40,7 @@ from repairs.selectors.requirements import (
     origin_of,
     requirement_of,
     requirements_shown,
+    rework_counted_from,
     subject_lines,
 )
 from repairs.services.inspections import requirement_raise
@@ -168,8 +169,10 @@ def _from_evaluation(row: Evaluation, initial: dict[str, Any]) -> Origin:
         cycles = getattr(row, f"{phase}_cycles")
         if cycles is not None:
             initial[f"{phase}_1"] = f"{cycles:,} FC"
+    if reworked := rework_counted_from(row):
+        initial |= {"threshold_1_base": "effective", "effective_on": reworked}
     columns = origin.columns | {"evaluation": row}
-    return Origin(row.operator, columns, initial, f"calculation {row.number}")
+    return Origin(row.operator, columns, initial, f"evaluation {row.number}")
 
 
 def _place(row: Any) -> str:

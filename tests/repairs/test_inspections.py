@@ -73,11 +73,11 @@ def evaluation(of: Repair, **columns) -> Evaluation:
         "outcome": "computed",
         "threshold_cycles": 15_000,
         "repeat_cycles": 5_000,
+        "repair": of,
     } | columns
     texts = ("inputs", "outputs", "applicability", "note", "libraries")
     return Evaluation.objects.create(
         operator=of.operator,
-        repair=of,
         number="E-0001",
         method_version=1,
         schema_version=1,

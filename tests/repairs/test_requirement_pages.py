@@ -10,12 +10,14 @@ from repairs.models import (
     Accomplishment,
     DuePoint,
     InspectionRequirement,
+    Measurement,
     RequirementSubject,
 )
 from repairs.services.requirement_draft import LimitEntry
 from tests import due_rows as make
 from tests.due_rows import TODAY, day, fly
 from tests.repairs.test_inspections import (
+    AT,
     REPEAT,
     THRESHOLD,
     done,
@@ -124,6 +126,35 @@ class TestNew:
         as_user(client)
         text = client.get(f"/requirements/new/?evaluation={calculated.pk}")
         assert 'value="15,000 FC"' in text.content.decode()
+
+    @pytest.mark.parametrize(
+        ("base", "counted", "effective"),
+        [
+            ("since rework of F-0001", "effective", day(5)),
+            ("since the panel was fitted on 2020-01-01", None, TODAY),
+        ],
+    )
+    def test_a_threshold_since_rework_counts_from_the_day_of_the_rework(
+        self, client, fixed, base, counted, effective
+    ):
+        blended = finding(fixed.aircraft)
+        for number, stage in ((1, "as_found"), (2, "after_rework"), (3, "repeat")):
+            Measurement.objects.create(
+                finding=blended,
+                number=number,
+                stage=stage,
+                measured_on=day(3 + number),
+                entered_at=AT,
+            )
+        calculated = evaluation(
+            fixed, repair=None, finding=blended, threshold_base=base
+        )
+        as_user(client)
+        form = client.get(f"/requirements/new/?evaluation={calculated.pk}").context[
+            "form"
+        ]
+        assert form.initial.get("threshold_1_base") == counted
+        assert form.initial["effective_on"] == effective
 
     def test_a_longer_interval_than_calculated_comes_back_with_the_reason(
         self, client, fixed
