@@ -31,7 +31,7 @@ WRONG_PASSWORD = "This is not your password; nothing was signed."
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
 DATA = (
     "document_kind", "document_reference", "document_revision", "document_page",
-    "evaluations", "limit_checks", "requirement", "replaces", "also",
+    "evaluations", "limit_checks", "requirement", "replaces",
 )  # fmt: skip
 LIMITS = ("limit_cycles", "limit_minutes", "limit_landings", "limit_on")
 COUNTERS = ("at_minutes", "at_cycles", "at_landings")
@@ -51,7 +51,10 @@ class DispositionForm(CountersForm, DataForm):
     decided_by = forms.ModelChoiceField(Person.objects.none(), label="decided by")
     decided_on = DayField(label="decided on")
     limit_minutes = HoursField(label="deferral limit, flight hours", required=False)
-    limit_cycles = CounterField(label="deferral limit, flight cycles", required=False)
+    limit_cycles = CounterField(
+        label="deferral limit, flight cycles", required=False,
+        help_text="What the aircraft then shows, not what is left.",
+    )  # fmt: skip
     limit_landings = CounterField(label="deferral limit, landings", required=False)
     limit_on = DayField(label="deferral limit, date", required=False)
     scale = forms.ChoiceField(choices=SCALES, label="minor or major")
@@ -68,7 +71,7 @@ class DispositionForm(CountersForm, DataForm):
     )
     requirement = forms.ModelChoiceField(
         InspectionRequirement.objects.none(), required=False,
-        label="inspection requirement there is",
+        label="inspection requirement in force",
     )  # fmt: skip
     replaces = forms.ModelChoiceField(
         Disposition.objects.none(), required=False, label="replaces",
@@ -98,7 +101,8 @@ class DispositionForm(CountersForm, DataForm):
             group(self, "Decision", ("kind", "reason", "decided_by", "decided_on")),
             group(self, "Data it rests on", DATA),
             group(self, "Deferral limit", LIMITS),
-            group(self, "Neighbours reviewed", near),
+            *([group(self, "Neighbours reviewed", near)] if near else []),
+            group(self, "Other findings it answers", ("also",), True),
             group(self, "Counters that day", COUNTERS, True),
             group(self, "Minor or major, repair category", SCALE, True),
         ]
