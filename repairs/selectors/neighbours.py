@@ -95,10 +95,12 @@ def neighbours(
     reach = reach_mm if reach_mm is not None else REACH_BAYS * section.frame_pitch_mm
     patch = patch_of(item)
     here = _near(item, section, patch, item.section, reach, user)
+    named = {str(near.item) for near in here}
+    mirrored = _opposite(item, section, patch, reach, user) if opposite else []
     return Neighbours(
         reach_mm=reach,
         here=here,
-        opposite=_opposite(item, section, patch, reach, user) if opposite else [],
+        opposite=[near for near in mirrored if str(near.item) not in named],
         sisters=sister_items(item, section, user=user),
     )
 

@@ -44,7 +44,7 @@ from repairs.services.places import Placed, place_try
 RECORDED = "{number} is recorded."
 TO_PLACE = "{number} is recorded, to be placed."
 ANSWER_FIRST = "Say for each earlier finding whether it is the same damage."
-REFUSED = "{code}: {message}"
+REFUSED = "{message} ({code})"
 COUNTERS = ("minutes", "cycles", "landings")
 
 

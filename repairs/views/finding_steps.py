@@ -256,7 +256,7 @@ def _relocate(request: Request, row: Finding, form: PlaceForm) -> Finding | None
     try:
         return finding_relocate(finding=row, **data, actor=request.user, at=now())
     except LocationRefused as refused:
-        form.add_error("place_entered", f"{refused.code}: {refused.message}")
+        form.add_error("place_entered", f"{refused.message} ({refused.code})")
         return None
 
 

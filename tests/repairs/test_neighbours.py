@@ -128,9 +128,11 @@ def test_a_location_without_a_place_across_is_near_along(fleet, engineer):
     here = dent(fleet, 640, 6)
     x = 645 * INCH
     vague = finding_make(fleet.placing, fleet.aircraft["Q7-AAA"], x=(x, x), s=None)
-    (near,) = neighbours(here, user=engineer).here
+    found = neighbours(here, user=engineer, opposite=True)
+    (near,) = found.here
     assert near.item.number == vague.number
     assert near.across_mm is None
+    assert found.opposite == []
 
 
 def test_the_other_side_is_mirrored_at_the_crown(fleet, engineer):
