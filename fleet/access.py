@@ -40,6 +40,8 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "opening_rekey": (ADMIN, PLANNER, ENGINEER, CERTIFIER),
         "people_change": (ADMIN,),
         "policy_set": (ADMIN,),
+        "value_adopt": (ENGINEER,),
+        "value_confirm": (ENGINEER, SIGNATORY),
         "history_read": (AUDITOR, MANAGER, ADMIN),
     }.items()
 }

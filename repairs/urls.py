@@ -6,6 +6,7 @@ from django.urls import path
 
 from repairs.views import (
     accomplishments,
+    adopted,
     approvals,
     attachments,
     dispositions,
@@ -22,6 +23,9 @@ from repairs.views import (
 )
 
 urlpatterns = [
+    path("adopted/", adopted.adopted_list, name="adopted_list"),
+    path("adopted/new/", adopted.adopted_new, name="adopted_new"),
+    path("adopted/<int:pk>/confirm/", adopted.adopted_confirm, name="adopted_confirm"),
     path("findings/", findings.finding_list, name="finding_list"),
     path("findings/new/", finding_entry.finding_new, name="finding_new"),
     path("findings/<int:pk>/", findings.finding, name="finding"),

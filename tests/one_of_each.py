@@ -12,6 +12,7 @@ from PIL import Image
 
 from fleet.due import Counters
 from fleet.models import (
+    AdoptedValue,
     AircraftPeriod,
     Attachment,
     Document,
@@ -22,6 +23,7 @@ from fleet.models import (
     SafeLifePart,
     User,
 )
+from fleet.services.adopted import value_adopt
 from fleet.services.documents import attachment_store, document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.materials import demo_values_load
@@ -94,6 +96,7 @@ class OneOfEach:
     life_limit: LifeLimit
     attachment: Attachment
     membership: Membership
+    adopted: AdoptedValue
 
 
 def one_of_each_make() -> OneOfEach:
@@ -126,6 +129,7 @@ def one_of_each_make() -> OneOfEach:
         life_limit=part.part_number.life_limits.get(),
         attachment=_photograph(world, finding),
         membership=world.users["recorder"].memberships.get(),
+        adopted=_adopted(world),
     )
 
 
@@ -286,6 +290,21 @@ def _part(world: World) -> SafeLifePart:
         serial="S0001",
         manufactured_on=BEGAN,
         release_reference="release certificate 1",
+    )
+
+
+def _adopted(world: World) -> AdoptedValue:
+    return value_adopt(
+        operator=world.operator,
+        quantity="residual_pressure_factor",
+        value=1.15,
+        unit="-",
+        document="14 CFR 25.571(b)",
+        page="(b)(5)(ii)",
+        revision="",
+        actor=world.engineer,
+        at=NOW,
+        on=TODAY,
     )
 
 

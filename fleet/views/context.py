@@ -25,6 +25,7 @@ NAVIGATION = (
 # The same for pages about the records as a whole, with the act they are open to.
 OFFICE = (
     ("policies", "Policies", "/policies/", ""),
+    ("adopted_list", "Adopted", "/adopted/", ""),
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),
 )

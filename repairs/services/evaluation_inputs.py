@@ -36,6 +36,7 @@ from repairs.models import MeasuredValue, Measurement, Repair
 from repairs.selectors.edges import earlier_depth_mm
 from repairs.selectors.latest import Latest
 from repairs.services.evaluation_materials import (
+    STRENGTHS,
     adopted_number,
     adopted_values,
     grade_of,
@@ -56,6 +57,16 @@ ADOPTABLE = (
     "clad_life_factor",
     "assumed_flaw",
 )
+ADOPTABLE_WORDS = {
+    **{name: (SPECS[name].title, SPECS[name].unit) for name in ADOPTABLE},
+    **{
+        quantity: (SPECS[name].title, unit)
+        for name, (quantity, unit) in STRENGTHS.items()
+    },
+}
+"""What may be adopted, with its words and the unit it is adopted in."""
+OF_MATERIAL = frozenset(quantity for quantity, _ in STRENGTHS.values())
+
 POLICIES = {
     "stress_life_policy": "stress_life",
     "growth_policy": "growth_threshold",

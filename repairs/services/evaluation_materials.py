@@ -62,8 +62,12 @@ def material_inputs(
 def adopted_values(
     operator: Operator, material: Material | None
 ) -> dict[str, AdoptedValue]:
-    """Values the operator adopted, by quantity; the newest of each that stands."""
-    rows = operator.adopted_values.filter(replaced_by__isnull=True)
+    """Values the operator adopted and a second person confirmed, by quantity.
+
+    One that replaces another counts from its own confirmation; till then the one
+    before it does.
+    """
+    rows = operator.adopted_values.filter(second_person__isnull=False).order_by("pk")
     if material is None:
         rows = rows.filter(material__isnull=True)
     else:
