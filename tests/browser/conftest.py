@@ -117,9 +117,12 @@ def _await(origin: str, server: subprocess.Popen[bytes], log: Path) -> None:
     pytest.fail(f"the server did not start:\n{log.read_text()[-2_000:]}")
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="module")
 def chromium() -> Iterator[Any]:
-    """A browser found on the machine; nothing is downloaded."""
+    """A browser found on the machine; nothing is downloaded.
+
+    For a module only: while it runs, its event loop keeps other tests from the database.
+    """
     try:
         from playwright.sync_api import sync_playwright
     except ImportError:
@@ -133,7 +136,7 @@ def chromium() -> Iterator[Any]:
         browser.close()
 
 
-@pytest.fixture(scope="session")
+@pytest.fixture(scope="module")
 def signed_in(site: Site, chromium: Any) -> Callable[[str], Any]:
     """Cookies of a role, from signing in through the form once."""
     kept: dict[str, Any] = {}
