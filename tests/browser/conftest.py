@@ -121,7 +121,7 @@ def _await(origin: str, server: subprocess.Popen[bytes], log: Path) -> None:
 def chromium() -> Iterator[Any]:
     """A browser found on the machine; nothing is downloaded.
 
-    For a module only: while it runs, its event loop keeps other tests from the database.
+    For a module only: its event loop keeps other tests from the database.
     """
     try:
         from playwright.sync_api import sync_playwright
