@@ -11,6 +11,18 @@ from django.db import models
 
 from fleet.models import HistoryItem
 
+# What a location's text already says; the entry keeps them, the page does not repeat.
+FOLLOWS_FROM_PLACE = frozenset(
+    f"{name}_id" for name in ("section", "geometry", "panel", "zone")
+) | frozenset(
+    (
+        *(f"{name}_mm" for name in ("x1", "x2", "map", "s1", "s2", "bl", "wl")),
+        "along_half",
+        "around_half",
+        "reader_version",
+    )
+)
+
 
 @dataclass(frozen=True)
 class Told:
@@ -37,15 +49,25 @@ def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
             at=item.entry.at,
             actor_name=item.entry.actor_name,
             action_words=item.entry.action_words,
-            changes=[_words(k, a, b) for k, (a, b) in json.loads(item.changes).items()],
+            changes=_told(json.loads(item.changes)),
             reason=item.entry.reason,
         )
         for item in items
     ]
 
 
+def _told(changes: dict[str, list[Any]]) -> list[str]:
+    left_out = FOLLOWS_FROM_PLACE if "place_text" in changes else frozenset()
+    return [
+        _words(column, before, after)
+        for column, (before, after) in changes.items()
+        if column not in left_out
+    ]
+
+
 def _words(column: str, before: Any, after: Any) -> str:
-    name = column.removesuffix("_id").replace("_", " ")
+    name = column.removesuffix("_id").replace("place_text", "location")
+    name = name.replace("_", " ")
     return f"{name}: {_shown(before)} → {_shown(after)}"
 
 

@@ -8,6 +8,7 @@ from django.core.management import CommandError, call_command
 from django.db import DatabaseError, connection, transaction
 
 from fleet.models import HistoryEntry, HistoryHead, HistoryItem, Organisation
+from fleet.selectors.history import _told
 from fleet.selectors.verify import problems
 from fleet.services.history import NESTED, Writing
 from fleet.triggers import statements
@@ -139,3 +140,14 @@ def drop_triggers(*tables: str) -> None:
             for rule in statements(connection.vendor):
                 on_table = f" ON {table}" if connection.vendor == "postgresql" else ""
                 cursor.execute(f"DROP TRIGGER {table}_{rule}{on_table}")
+
+
+def test_a_new_location_is_told_by_its_text_alone():
+    changes = {
+        "place_text": ["", "STA 500+18 S-14L"],
+        "s1_mm": [None, (-2904.6).hex()],
+        "panel_id": [None, 30],
+        "surface": ["", "outer"],
+    }
+    assert _told(changes) == ["location: — → STA 500+18 S-14L", "surface: — → outer"]
+    assert _told({"panel_id": [29, 30]}) == ["panel: 29 → 30"]
