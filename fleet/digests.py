@@ -13,7 +13,8 @@ from django.db import models
 from fleet.canonical import canonical, digest, plain
 from fleet.models import HistoryEntry, HistoryItem
 
-# The history cannot record itself; a record number is checked by its uniqueness.
+# The history cannot record itself; a record number is checked by its uniqueness, and a
+# sent form only points at the entry it made.
 NOT_RECORDED = frozenset(
     {
         "fleet_historyhead",
@@ -21,6 +22,7 @@ NOT_RECORDED = frozenset(
         "fleet_historyitem",
         "fleet_historyseal",
         "fleet_recordnumber",
+        "fleet_sentform",
     }
 )
 # The framework writes it at sign-in, outside any service.
@@ -43,12 +45,15 @@ def recorded_models() -> list[type[models.Model]]:
 
 
 def row_digest(row: models.Model) -> str:
-    """SHA-256 over all columns in name order, as the database gives them back."""
+    """SHA-256 over the columns that hold something, in name order, as the database
+    gives them back. NULL and '' are left out, so that a column added later, which
+    begins empty, leaves the digests of older rows as they are."""
     return digest(
         canonical(
             [
-                [name, plain(to_python(getattr(row, name)))]
+                [name, plain(value)]
                 for name, to_python in _columns(type(row))
+                if (value := to_python(getattr(row, name))) not in (None, "")
             ]
         )
     )

@@ -9,6 +9,7 @@ from fleet.models.aircraft import (
     PanelOnAircraft,
 )
 from fleet.models.history import HistoryEntry, HistoryHead, HistoryItem, HistorySeal
+from fleet.models.keeping import Backup, SentForm
 from fleet.models.materials import (
     AdoptedValue,
     Basis,
@@ -36,6 +37,7 @@ from fleet.models.people import (
     Authorisation,
     AuthorisationScope,
     Document,
+    DocumentApplicability,
     Membership,
     Operator,
     Organisation,
@@ -72,6 +74,7 @@ __all__ = [
     "Attachment",
     "Authorisation",
     "AuthorisationScope",
+    "Backup",
     "Basis",
     "Configuration",
     "Counter",
@@ -79,6 +82,7 @@ __all__ = [
     "Cutout",
     "DetectableSize",
     "Document",
+    "DocumentApplicability",
     "FatiguePolicy",
     "Frame",
     "FrameStation",
@@ -111,6 +115,7 @@ __all__ = [
     "Role",
     "SafeLifePart",
     "Section",
+    "SentForm",
     "Spectrum",
     "Stringer",
     "UsageRecord",

@@ -105,6 +105,9 @@ class User(AbstractUser):
         Person, on_delete=models.PROTECT, null=True, blank=True, related_name="user"
     )
     sees_all_operators = models.BooleanField(default=False)
+    second_factor_since = models.DateTimeField(
+        null=True, blank=True, help_text="Empty: signs in with the password alone."
+    )
 
     class Meta:
         ordering = ["username"]
@@ -278,7 +281,7 @@ class RecordNumber(models.Model):
     """The last number given to a kind of record of one operator; never reused."""
 
     operator = models.ForeignKey(Operator, on_delete=models.PROTECT, related_name="+")
-    kind = Word(words=("F", "E", "S", "R", "I", "V"))
+    kind = Word(words=("F", "D", "E", "S", "R", "I", "V"))
     last = Count(low=0, high=1_000_000_000, default=0)
 
     class Meta:
@@ -334,6 +337,38 @@ class Document(Entered):
         return (
             f"{self.reference} rev {self.revision}" if self.revision else self.reference
         )
+
+
+class DocumentApplicability(Entered):
+    """Which serials a document holds for; several rows are read as "or"."""
+
+    document = models.ForeignKey(
+        Document, on_delete=models.PROTECT, related_name="applicability"
+    )
+    variant = models.ForeignKey(
+        "fleet.Variant",
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="+",
+        help_text="Empty: any variant.",
+    )
+    first_serial = text(help_text="Empty: from the first.")
+    last_serial = text(help_text="Empty: and later.")
+    page = models.TextField(help_text="Where the document says so.")
+    objects = ScopedQuerySet.as_manager()
+    operator_paths = ("document__operator",)
+
+    class Meta:
+        ordering = ["document", "pk"]
+        verbose_name_plural = "document applicability"
+        constraints = [has_text("fleet_documentapplicability", "page")]
+
+    def __str__(self) -> str:
+        first, last = self.first_serial, self.last_serial
+        if not (first or last):
+            return "every serial"
+        return f"serial {first or 'first'} to {last or 'later'}"
 
 
 class Attachment(models.Model):

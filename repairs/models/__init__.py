@@ -8,6 +8,7 @@ from repairs.models.approvals import (
 )
 from repairs.models.columns import (
     Element,
+    RepairCategory,
     Surface,
 )
 from repairs.models.dispositions import (
@@ -16,7 +17,6 @@ from repairs.models.dispositions import (
     DispositionFinding,
     DispositionKind,
     NeighbourReview,
-    RepairCategory,
 )
 from repairs.models.due_points import DueKind, DuePoint
 from repairs.models.evaluations import (
@@ -35,6 +35,7 @@ from repairs.models.findings import (
     ASIDE_STATES,
     OPEN_STATES,
     Cause,
+    CorrosionLevel,
     DamageType,
     DetectionMethod,
     Finding,
@@ -67,18 +68,32 @@ from repairs.models.repairs import (
     RepairFastener,
     RepairFinding,
     RepairLayer,
+    RepairRequired,
     RepairState,
+    RepairStep,
     RepairType,
 )
+from repairs.models.substantiations import (
+    Answer,
+    Substantiation,
+    SubstantiationCase,
+    SubstantiationDocument,
+    SubstantiationEffect,
+    SubstantiationFinding,
+    SubstantiationNeighbour,
+)
+from repairs.models.surveys import Survey, SurveyItem
 
 __all__ = [
     "ASIDE_STATES",
     "OPEN_STATES",
     "Accomplishment",
+    "Answer",
     "Approval",
     "ApprovalBasis",
     "BlindReentry",
     "Cause",
+    "CorrosionLevel",
     "DamageType",
     "DetectionMethod",
     "Disposition",
@@ -116,13 +131,23 @@ __all__ = [
     "RepairFastener",
     "RepairFinding",
     "RepairLayer",
+    "RepairRequired",
     "RepairState",
+    "RepairStep",
     "RepairType",
     "RequirementClass",
     "RequirementLimit",
     "RequirementState",
     "RequirementSubject",
+    "Substantiation",
+    "SubstantiationCase",
+    "SubstantiationDocument",
+    "SubstantiationEffect",
+    "SubstantiationFinding",
+    "SubstantiationNeighbour",
     "Surface",
+    "Survey",
+    "SurveyItem",
     "Use",
     "ZoneInspected",
 ]

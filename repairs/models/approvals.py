@@ -16,6 +16,7 @@ from repairs.models.events import Event
 from repairs.models.findings import Finding, Measurement
 from repairs.models.inspections import Accomplishment, InspectionRequirement
 from repairs.models.repairs import Repair
+from repairs.models.substantiations import Substantiation
 
 
 class Meaning(models.TextChoices):
@@ -81,6 +82,21 @@ class Approval(Entered):
     event = models.ForeignKey(
         Event, on_delete=models.PROTECT, null=True, blank=True, related_name="approvals"
     )
+    substantiation = models.ForeignKey(
+        Substantiation,
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="approvals",
+    )
+    overrules = models.OneToOneField(
+        "self",
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="overruled_by",
+        help_text="The rejection that this one overrules.",
+    )
     meaning = Word(choices=Meaning)
     statement = models.TextField()
     content = models.TextField(help_text="The exact canonical text that was shown.")
@@ -123,6 +139,7 @@ class Approval(Entered):
                 "accomplishment",
                 "finding",
                 "event",
+                "substantiation",
             ),
             has_text("repairs_approval", "content"),
             *(
@@ -134,7 +151,13 @@ class Approval(Entered):
                     "signer_person",
                     when=Q(**{f"{field}__isnull": False}),
                 )
-                for field in ("disposition", "repair", "evaluation", "requirement")
+                for field in (
+                    "disposition",
+                    "repair",
+                    "evaluation",
+                    "requirement",
+                    "substantiation",
+                )
             ),
         ]
 
@@ -235,6 +258,20 @@ class OccurrenceReport(Entered):
         Event, on_delete=models.PROTECT, null=True, blank=True, related_name="reports"
     )
     regime = models.TextField()
+    rule = text(help_text="The paragraph that asks for the report.")
+    policy = models.ForeignKey(
+        "fleet.Policy",
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="+",
+        help_text="The clock that was used; empty: none is recorded.",
+    )
+    content = text(help_text="The report's text, as it was sent.")
+    recipients = text(help_text="Authority, design approval holder, owner.")
+    decided_by = models.ForeignKey(
+        Person, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
+    )
     state = Word(words=("to_assess", "not_reportable", "reportable", "sent", "closed"))
     reason = text()
     detected_at = models.DateTimeField()
@@ -256,6 +293,22 @@ class OccurrenceReport(Entered):
         ordering = ["detected_at", "pk"]
         constraints = [
             exactly_one("repairs_occurrencereport", "one_subject", "finding", "event"),
+            unique(
+                "repairs_occurrencereport",
+                "one_per_finding",
+                "finding",
+                "regime",
+                "number",
+                when=Q(finding__isnull=False),
+            ),
+            unique(
+                "repairs_occurrencereport",
+                "one_per_event",
+                "event",
+                "regime",
+                "number",
+                when=Q(event__isnull=False),
+            ),
             check(
                 "repairs_occurrencereport",
                 "sent_whole",

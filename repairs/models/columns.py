@@ -40,6 +40,14 @@ class Element(models.TextChoices):
     UNKNOWN = "unknown", "unknown"
 
 
+class RepairCategory(models.TextChoices):
+    A = "a", "A, permanent"
+    B = "b", "B, permanent with supplemental inspections"
+    C = "c", "C, time-limited"
+    PENDING = "pending", "pending"
+    NOT_APPLICABLE = "not_applicable", "not applicable"
+
+
 class Place(models.Model):
     """Where on the aircraft: as written, as canonical text, as coordinates.
 

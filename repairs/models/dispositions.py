@@ -10,7 +10,9 @@ from fleet.fields import Count, Measure, Word, optional_counter, text
 from fleet.models import Aircraft, Authorisation, Document, Operator, Person
 from fleet.models.columns import AtCounters, Entered
 from fleet.scoping import ScopedQuerySet
+from repairs.models.columns import RepairCategory
 from repairs.models.findings import Finding
+from repairs.models.substantiations import Substantiation
 
 
 class DispositionKind(models.TextChoices):
@@ -20,14 +22,6 @@ class DispositionKind(models.TextChoices):
     RECTIFY = "rectify", "rectify before further flight"
     REPLACE = "replace", "replace"
     NOT_DAMAGE = "not_damage", "not damage"
-
-
-class RepairCategory(models.TextChoices):
-    A = "a", "A, permanent"
-    B = "b", "B, permanent with supplemental inspections"
-    C = "c", "C, time-limited"
-    PENDING = "pending", "pending"
-    NOT_APPLICABLE = "not_applicable", "not applicable"
 
 
 class Disposition(AtCounters, Entered):
@@ -58,6 +52,16 @@ class Disposition(AtCounters, Entered):
     )
     basis_page = models.TextField(help_text="Page or paragraph of the basis.")
     reason = models.TextField()
+    substantiation = models.ForeignKey(
+        Substantiation,
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="dispositions",
+    )
+    crew_informed_on = models.DateField(
+        null=True, blank=True, help_text="Deferral: the crew was told."
+    )
     decided_by = models.ForeignKey(Person, on_delete=models.PROTECT, related_name="+")
     authorisation = models.ForeignKey(
         Authorisation, on_delete=models.PROTECT, related_name="+"

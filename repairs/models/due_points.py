@@ -14,6 +14,8 @@ from repairs.models.dispositions import Disposition
 from repairs.models.events import Event
 from repairs.models.inspections import Accomplishment, RequirementSubject
 from repairs.models.repairs import Repair
+from repairs.models.substantiations import Substantiation
+from repairs.models.surveys import SurveyItem
 
 
 class DueKind(models.TextChoices):
@@ -25,6 +27,7 @@ class DueKind(models.TextChoices):
     VALIDITY = "validity", "limit of validity"
     PHASE = "phase", "event inspection"
     LIFE = "life", "life limit"
+    ENGINEERING = "engineering", "engineering answer"
 
 
 class DuePoint(Entered):
@@ -71,6 +74,20 @@ class DuePoint(Entered):
     )
     event = models.ForeignKey(
         Event,
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="due_points",
+    )
+    substantiation = models.ForeignKey(
+        Substantiation,
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="due_points",
+    )
+    survey_item = models.ForeignKey(
+        SurveyItem,
         on_delete=models.PROTECT,
         null=True,
         blank=True,
@@ -131,6 +148,8 @@ class DuePoint(Entered):
                 "disposition",
                 "repair",
                 "event",
+                "substantiation",
+                "survey_item",
                 "life_of",
             ),
             check(
@@ -170,6 +189,8 @@ class DuePoint(Entered):
                     "disposition": ("disposition", "kind", "group"),
                     "repair": ("repair", "kind", "group"),
                     "event": ("event", "kind", "group"),
+                    "substantiation": ("substantiation", "kind", "group"),
+                    "survey_item": ("survey_item", "kind", "group"),
                     "life": ("life_of", "group"),
                 }.items()
             ),

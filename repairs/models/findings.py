@@ -259,6 +259,52 @@ class FindingLink(Entered):
         return self.kind
 
 
+class CorrosionLevel(Entered):
+    """The level of a corrosion finding under the operator's prevention programme.
+
+    Levels are worded differently in different sources: `definitions` says whose were
+    used. Levels 2 and 3 want an action on the programme, level 3 one on the fleet.
+    """
+
+    finding = models.ForeignKey(
+        Finding, on_delete=models.PROTECT, related_name="corrosion_levels"
+    )
+    replaces = models.OneToOneField(
+        "self",
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="replaced_by",
+    )
+    level = Count(low=1, high=3)
+    definitions = models.TextField(help_text="Document and paragraph of the wording.")
+    task = models.TextField(help_text="Task or area of the programme.")
+    first_inspection = models.BooleanField(null=True, blank=True)
+    last_inspected_on = models.DateField(null=True, blank=True)
+    spread = Word(words=("local", "widespread", "unknown"))
+    single_rework = Word(
+        words=("within", "beyond", "unknown"), help_text="Allowable after one rework."
+    )
+    cumulative = Word(
+        words=("within", "beyond", "unknown"), help_text="With earlier reworks."
+    )
+    determined_by = models.ForeignKey(
+        Person, on_delete=models.PROTECT, related_name="+"
+    )
+    determined_on = models.DateField()
+    programme_action = text()
+    fleet_action = text()
+    objects = ScopedQuerySet.as_manager()
+    operator_paths = ("finding__aircraft__operator", "finding__operator")
+
+    class Meta:
+        ordering = ["finding", "pk"]
+        constraints = [has_text("repairs_corrosionlevel", "definitions")]
+
+    def __str__(self) -> str:
+        return f"level {self.level}"
+
+
 class Measurement(AtCounters, Entered):
     """One measuring of a finding; a later measuring is a new row. Append-only."""
 

@@ -5,7 +5,7 @@ from __future__ import annotations
 from django.db import models
 from django.db.models import F, Q
 
-from fleet.constraints import check, has_text, unique
+from fleet.constraints import all_or_none, check, has_text, unique
 from fleet.fields import Count, Word, optional_counter, optional_measure, text
 from fleet.models import (
     Aircraft,
@@ -18,9 +18,15 @@ from fleet.models import (
 )
 from fleet.models.columns import AtCounters, Entered
 from fleet.scoping import ScopedQuerySet
-from repairs.models.columns import Place, StructuralItem, place_constraints
-from repairs.models.dispositions import Disposition, RepairCategory
+from repairs.models.columns import (
+    Place,
+    RepairCategory,
+    StructuralItem,
+    place_constraints,
+)
+from repairs.models.dispositions import Disposition
 from repairs.models.findings import Finding
+from repairs.models.substantiations import Substantiation
 
 
 class RepairType(models.TextChoices):
@@ -84,6 +90,17 @@ class Repair(Place, StructuralItem, AtCounters, Entered):
         blank=True,
         related_name="repairs",
     )
+    substantiation = models.ForeignKey(
+        Substantiation,
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="repairs",
+        help_text="The revision that was used.",
+    )
+    inspection_required = models.BooleanField(
+        null=True, blank=True, help_text="Independent inspection; empty: not said."
+    )
     approval_basis = Word(choices=ApprovalBasis)
     approval_document = models.ForeignKey(
         Document, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
@@ -126,12 +143,12 @@ class Repair(Place, StructuralItem, AtCounters, Entered):
     temporary_limit_cycles = optional_counter(
         help_text="Approved at stage 1; stage 2 is due before it."
     )
-    replaces = models.ForeignKey(
+    superseded_by = models.ForeignKey(
         "self",
         on_delete=models.PROTECT,
         null=True,
         blank=True,
-        related_name="replaced_by",
+        related_name="supersedes",
         help_text="A larger repair may supersede several.",
     )
     removed_on = models.DateField(null=True, blank=True)
@@ -266,3 +283,68 @@ class RepairFastener(models.Model):
 
     def __str__(self) -> str:
         return self.fastener
+
+
+class RepairRequired(models.Model):
+    """What the approved data ask for in one layer, to hold against what was fitted."""
+
+    repair = models.ForeignKey(
+        Repair, on_delete=models.PROTECT, related_name="required"
+    )
+    number = Count(low=1, high=99, help_text="Of the layer it stands against.")
+    material = models.ForeignKey(
+        Material, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
+    )
+    material_entered = models.TextField()
+    thickness_mm = optional_measure(0.01, 500)
+    thickness_entered = text()
+    page = text(help_text="Where the approved data say so.")
+    difference = text(help_text="What differs from the layer fitted; empty: nothing.")
+    answer = text(help_text="Why the difference stands, with its document.")
+    answered_by = models.ForeignKey(
+        Person, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
+    )
+    objects = ScopedQuerySet.as_manager()
+    operator_paths = ("repair__aircraft__operator", "repair__operator")
+
+    class Meta:
+        ordering = ["repair", "number"]
+        verbose_name_plural = "repair materials required"
+        constraints = [
+            unique("repairs_repairrequired", "once", "repair", "number"),
+            check(
+                "repairs_repairrequired",
+                "answer_whole",
+                Q(answer="", answered_by__isnull=True)
+                | (~Q(answer="") & Q(answered_by__isnull=False)),
+                "An answered difference has words and a person.",
+            ),
+        ]
+
+    def __str__(self) -> str:
+        return self.material_entered
+
+
+class RepairStep(models.Model):
+    """One part of a repair that is done in several, or at several times."""
+
+    repair = models.ForeignKey(Repair, on_delete=models.PROTECT, related_name="steps")
+    number = Count(low=1, high=99)
+    title = models.TextField()
+    option = text(help_text="Which of the data's options was chosen.")
+    done_on = models.DateField(null=True, blank=True, help_text="Empty: not done.")
+    done_by = models.ForeignKey(
+        Person, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
+    )
+    objects = ScopedQuerySet.as_manager()
+    operator_paths = ("repair__aircraft__operator", "repair__operator")
+
+    class Meta:
+        ordering = ["repair", "number"]
+        constraints = [
+            unique("repairs_repairstep", "once", "repair", "number"),
+            all_or_none("repairs_repairstep", "done_whole", "done_on", "done_by"),
+        ]
+
+    def __str__(self) -> str:
+        return self.title

@@ -51,7 +51,7 @@ def repair_whole() -> QuerySet[Repair]:
         "aircraft__variant__aircraft_type", "operator", "section", "geometry",
         "panel__material", "zone", "disposition", "approval_document",
         "release_document", "organisation", "performed_by", "inspected_by",
-        "released_by", "replaces", "entered_by",
+        "released_by", "superseded_by", "entered_by",
     )  # fmt: skip
 
 
@@ -65,7 +65,7 @@ class RepairAround:
     requirements: list[InspectionRequirement] = field(default_factory=list)
     due_points: list[DuePoint] = field(default_factory=list)
     photographs: list[Photograph] = field(default_factory=list)
-    superseded: list[Repair] = field(default_factory=list)
+    supersedes: list[Repair] = field(default_factory=list)
 
 
 def repair_around(repair: Repair) -> RepairAround:
@@ -80,5 +80,5 @@ def repair_around(repair: Repair) -> RepairAround:
         requirements=list(repair.requirements.all()),
         due_points=list(points.order_by("pk")),
         photographs=list(repair.photographs.select_related("attachment")),
-        superseded=list(repair.replaced_by.all()),
+        supersedes=list(repair.supersedes.all()),
     )

@@ -105,7 +105,7 @@ def _row(
     """The decision; one that replaces another keeps its number as the next revision."""
     replaces, basis = entry.replaces, entry.basis
     number = (
-        replaces.number if replaces else number_next(w, operator=operator, kind="S")
+        replaces.number if replaces else number_next(w, operator=operator, kind="D")
     )
     document = document_get_or_create(
         w,

@@ -108,7 +108,6 @@ def _row(w: Writing, entry: RepairEntry, placed: Placed, operator: Operator) -> 
         release_document=_release(w, entry),
         replacement_limit_cycles=limit.cycles,
         replacement_limit_minutes=limit.minutes,
-        replaces=entry.supersedes[0] if entry.supersedes else None,
         **counter_columns("at", entry.at),
         **same | place_columns_of(placed) | _item_columns(entry, placed),
     )
@@ -266,6 +265,7 @@ def _supersede(w: Writing, repair: Repair, superseded: Sequence[Repair]) -> None
         row = w.locked(Repair.objects.select_related("aircraft"), pk=other.pk)
         reason = SUPERSEDED_BY.format(number=repair)
         on = repair.released_on or w.at.date()
+        w.change(row, superseded_by_id=repair.pk)
         _end(w, row, RepairState.SUPERSEDED, on=on, reason=reason)
 
 

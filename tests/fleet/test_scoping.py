@@ -42,6 +42,8 @@ SHARED = {
     "fleet_historyitem": HISTORY,
     "fleet_historyseal": HISTORY,
     "fleet_recordnumber": "a counter that only the program reads",
+    "fleet_backup": "a copy holds the records of all",
+    "fleet_sentform": "found by its key only",
 }
 MODELS = [
     model

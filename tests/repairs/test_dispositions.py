@@ -79,7 +79,7 @@ def test_accepted_damage_remains_and_the_decision_cites_its_page(world):
     assert str(disposition.basis_document) == "SRM 53-10-12 rev 14"
     assert disposition.basis_page == "p. 101"
     assert disposition.authorisation.person == world.assessor
-    assert (disposition.number, disposition.revision) == ("S-0001", 0)
+    assert (disposition.number, disposition.revision) == ("D-0001", 0)
     assert not DuePoint.objects.exists()
     assert list(problems()) == []
 

@@ -229,7 +229,7 @@ def test_a_larger_repair_supersedes_what_lies_under_it(world):
         "superseded",
         f"superseded by {second.number}",
     )
-    assert second.replaces == first
+    assert first.superseded_by == second
     assert DuePoint.objects.get().closed_on == RELEASED
     with pytest.raises(ValidationError, match="only an embodied repair"):
         record(world, supersedes=(first,))
