@@ -147,9 +147,7 @@ class SubstantiationFinding(SubstantiationRow):
     class Meta:
         ordering = ["substantiation", "finding"]
         constraints = [
-            unique(
-                "repairs_substantiationfinding", "once", "substantiation", "finding"
-            )
+            unique("repairs_substantiationfinding", "once", "substantiation", "finding")
         ]
 
     def __str__(self) -> str:
@@ -273,9 +271,7 @@ class SubstantiationEffect(SubstantiationRow):
     class Meta:
         ordering = ["substantiation", "pk"]
         constraints = [
-            unique(
-                "repairs_substantiationeffect", "once", "substantiation", "touches"
-            ),
+            unique("repairs_substantiationeffect", "once", "substantiation", "touches"),
             check(
                 "repairs_substantiationeffect",
                 "effect_said",
