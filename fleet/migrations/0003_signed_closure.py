@@ -68,6 +68,7 @@ class Migration(migrations.Migration):
                     ('user', models.ForeignKey(on_delete=django.db.models.deletion.PROTECT, related_name='+', to=settings.AUTH_USER_MODEL)),
                     ('sent_at', models.DateTimeField()),
                     ('path', models.TextField()),
+                    ('content', models.TextField(help_text='Keyed digest of what was typed.')),
                     ('entry', models.ForeignKey(blank=True, null=True, on_delete=django.db.models.deletion.PROTECT, related_name='+', to='fleet.historyentry')),
                     ('answer', models.TextField(blank=True, default='', help_text='Address that the first sending led to.')),
                 ],

@@ -41,6 +41,7 @@ class SentForm(models.Model):
     user = models.ForeignKey(User, on_delete=models.PROTECT, related_name="+")
     sent_at = models.DateTimeField()
     path = models.TextField()
+    content = models.TextField(help_text="Keyed digest of what was typed.")
     entry = models.ForeignKey(
         "fleet.HistoryEntry",
         on_delete=models.PROTECT,
