@@ -35,6 +35,8 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "accomplishment_record": (CERTIFIER, ENGINEER),
         "usage_record": (PLANNER, CERTIFIER),
         "part_change": (PLANNER, CERTIFIER),
+        "survey_record": (RECORDER, ENGINEER, CERTIFIER),
+        "survey_answer": (ENGINEER, CERTIFIER),
         "event_record": (RECORDER, ENGINEER, CERTIFIER, PLANNER),
         "fleet_change": (ADMIN,),
         "opening_rekey": (ADMIN, PLANNER, ENGINEER, CERTIFIER),

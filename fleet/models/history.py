@@ -17,10 +17,11 @@ from fleet.scoping import ScopedQuerySet
 
 DONE = {
     "add": "added", "answer": "answered", "assess": "assessed", "close": "closed",
-    "correct": "corrected", "create": "created", "decide": "decided", "end": "ended",
+    "compare": "compared", "correct": "corrected", "create": "created",
+    "decide": "decided", "end": "ended",
     "grant": "granted", "import": "imported", "install": "installed", "key": "keyed",
     "leave": "left", "link": "linked", "load": "loaded", "make": "made",
-    "open": "opened", "publish": "published", "raise": "raised", "record": "recorded",
+    "match": "matched", "open": "opened", "publish": "published", "raise": "raised", "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
     "set": "set", "sign": "signed", "void": "voided",
 }  # fmt: skip

@@ -130,3 +130,16 @@ class SurveyItem(Place, Entered):
 
     def __str__(self) -> str:
         return f"{self.survey} item {self.number}"
+
+    @property
+    def aircraft(self) -> Aircraft:
+        return self.survey.aircraft
+
+    @property
+    def record(self) -> Finding | Repair | None:
+        """The finding or repair it is, or that it opened."""
+        return self.finding or self.repair
+
+    @property
+    def settled(self) -> bool:
+        return self.outcome == "matched" or bool(self.answer)

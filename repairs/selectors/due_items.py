@@ -18,6 +18,7 @@ from repairs.models import (
     InspectionRequirement,
     Repair,
     RequirementState,
+    SurveyItem,
 )
 
 UNVERIFIED = "unverified: awaits second keying"
@@ -63,6 +64,8 @@ def points_with_words(points: QuerySet[DuePoint]) -> QuerySet[DuePoint]:
         "subject__requirement__source_document",
         "repair__zone",
         "disposition",
+        "survey_item__survey",
+        "survey_item__zone",
     ).prefetch_related("disposition__finding_rows__finding__zone")
 
 
@@ -71,6 +74,8 @@ def point_item(point: DuePoint) -> Item:
         return _requirement(point, point.subject.requirement)
     if point.disposition is not None:
         return _deferral(point, point.disposition)
+    if point.survey_item is not None:
+        return _survey(point, point.survey_item)
     assert point.repair is not None
     return _repair(point, point.repair)
 
@@ -158,5 +163,17 @@ def _repair(point: DuePoint, repair: Repair) -> Item:
     )
 
 
-def _zone(origin: Repair | Finding | None) -> str:
+def _survey(point: DuePoint, item: SurveyItem) -> Item:
+    where = item.place_text or item.place_entered
+    return Item(
+        kind=point.kind,
+        item=f"{item} {item.description}, {where}",
+        action="answer what was found and is not recorded",
+        basis=point.basis,
+        address=("survey", item.survey_id),
+        zone=_zone(item),
+    )
+
+
+def _zone(origin: Repair | Finding | SurveyItem | None) -> str:
     return origin.zone.code if origin is not None and origin.zone else ""

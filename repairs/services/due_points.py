@@ -21,15 +21,17 @@ from repairs.models import (
     Event,
     Repair,
     RequirementSubject,
+    SurveyItem,
 )
 
-Origin = RequirementSubject | Disposition | Repair | Event
+Origin = RequirementSubject | Disposition | Repair | Event | SurveyItem
 
 ORIGIN_COLUMN: Mapping[type[Any], str] = {
     RequirementSubject: "subject",
     Disposition: "disposition",
     Repair: "repair",
     Event: "event",
+    SurveyItem: "survey_item",
 }
 NO_LIMIT = "no {what} is recorded for {number}"
 
