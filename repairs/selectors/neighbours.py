@@ -150,19 +150,31 @@ def repairs_shown(rows: QuerySet[Repair]) -> QuerySet[Repair]:
     return rows.exclude(state__in=GONE_STATES)
 
 
+def near_within(item: Item, reach_mm: float) -> list[Near]:
+    """All that is recorded within reach of a placed item, whoever asks; two queries."""
+    section = section_geometry(item)
+    if section is None:
+        return []
+    return _near(item, section, patch_of(item), item.section, reach_mm, None)
+
+
 def items_in(
-    aircraft: Aircraft, section: Section, patch: Patch, *, user: User
+    aircraft: Aircraft, section: Section, patch: Patch, *, user: User | None
 ) -> tuple[list[Finding], list[Repair]]:
-    """Findings and repairs of one aircraft that meet the patch; two queries."""
+    """Findings and repairs of one aircraft that meet the patch; two queries.
+
+    Those the user may see; without a user all of them.
+    """
     met = in_patch(patch, section.wrap_mm)
 
     def of(rows: QuerySet[Row]) -> list[Row]:
         mine = rows.filter(aircraft=aircraft, section=section).filter(met)
         return list(mine.select_related("aircraft", "section").order_by("x1_mm", "pk"))
 
-    findings = findings_shown(Finding.objects.visible_to(user))
-    repairs = repairs_shown(Repair.objects.visible_to(user))
-    return of(findings), of(repairs)
+    findings, repairs = Finding.objects.all(), Repair.objects.all()
+    if user is not None:
+        findings, repairs = findings.visible_to(user), repairs.visible_to(user)
+    return of(findings_shown(findings)), of(repairs_shown(repairs))
 
 
 def _near(
@@ -171,7 +183,7 @@ def _near(
     patch: Patch,
     row: Section | None,
     reach: float,
-    user: User,
+    user: User | None,
 ) -> list[Near]:
     """Those within reach, nearest first, the item itself left out."""
     if row is None:
@@ -192,14 +204,30 @@ def _near(
 
 def _gaps(patch: Patch, other: Item, section: SectionGeometry) -> Near:
     theirs = patch_of(other)
+    middle = other.map_mm if other.map_mm is not None else theirs.x1_mm
+    return Near(other, *gap_between(patch, theirs, section, middle))
+
+
+def gap_between(
+    patch: Patch, theirs: Patch, section: SectionGeometry, map_mm: float
+) -> tuple[float, float | None]:
+    """True gap between the nearest edges, along and across [mm]."""
     aft, fore = theirs.x1_mm - patch.x2_mm, patch.x1_mm - theirs.x2_mm
     along = aft if aft > 0 else -max(fore, 0.0)
     across = None
     if None not in (patch.s1_mm, patch.s2_mm, theirs.s1_mm, theirs.s2_mm):
-        middle = other.map_mm if other.map_mm is not None else theirs.x1_mm
         gap = _across_gap(patch, theirs, section.wrap_mm)
-        across = gap * section.scale_at(middle)
-    return Near(other, along, across)
+        across = gap * section.scale_at(map_mm)
+    return along, across
+
+
+def true_x(section: SectionGeometry, map_mm: float, variant: str) -> float:
+    """True distance of a map position; in a plug the variant lacks, its seam's."""
+    found = section.x_of(map_mm, variant)
+    if found is not None:
+        return found
+    seam = max(plug.map_mm for plug in section.plugs if plug.map_mm <= map_mm)
+    return section.x_of(seam, variant) or seam
 
 
 def _across_gap(one: Patch, two: Patch, wrap: float | None) -> float:

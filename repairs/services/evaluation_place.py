@@ -10,7 +10,7 @@ from fleet.models import Panel, PanelOnAircraft
 from fleet.selectors.structure import geometry_in_force
 from repairs.analysis.surroundings import Obstacle, ObstacleKind, Surroundings
 from repairs.models import Finding, Repair
-from repairs.selectors.neighbours import repairs_shown, section_geometry
+from repairs.selectors.neighbours import repairs_shown, section_geometry, true_x
 
 Subject = Finding | Repair
 
@@ -101,15 +101,6 @@ def _length(subject: Subject, section: SectionGeometry, panel: Panel) -> float |
 def middle_s(subject: Subject) -> float:
     """The middle of a stated extent across [mm]."""
     return ((subject.s1_mm or 0.0) + (subject.s2_mm or 0.0)) / 2
-
-
-def true_x(section: SectionGeometry, map_mm: float, variant: str) -> float:
-    """True distance of a map position; in a plug the variant lacks, its seam's."""
-    found = section.x_of(map_mm, variant)
-    if found is not None:
-        return found
-    seam = max(plug.map_mm for plug in section.plugs if plug.map_mm <= map_mm)
-    return section.x_of(seam, variant) or seam
 
 
 def surroundings_of(
