@@ -21,7 +21,8 @@ DONE = {
     "decide": "decided", "end": "ended",
     "grant": "granted", "import": "imported", "install": "installed", "key": "keyed",
     "leave": "left", "link": "linked", "load": "loaded", "make": "made",
-    "match": "matched", "open": "opened", "publish": "published", "raise": "raised", "record": "recorded",
+    "match": "matched", "open": "opened", "publish": "published", "raise": "raised",
+    "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
     "set": "set", "sign": "signed", "void": "voided",
 }  # fmt: skip
