@@ -39,9 +39,19 @@ def recorded_models() -> list[type[models.Model]]:
     return [
         model
         for app in settings.RECORDED_APPS
-        for model in apps.get_app_config(app).get_models()
+        for model in apps.get_app_config(app).get_models(include_auto_created=True)
         if model._meta.db_table not in NOT_RECORDED
     ]
+
+
+def guarded_tables() -> dict[str, str]:
+    """Every append-only table, which triggers guard, to its key column."""
+    return {
+        model._meta.db_table: model._meta.pk.column
+        for app in settings.RECORDED_APPS
+        for model in apps.get_app_config(app).get_models()
+        if append_only(model)
+    }
 
 
 def row_digest(row: models.Model) -> str:

@@ -15,9 +15,11 @@ NOW = dt.datetime(2025, 1, 1, 9, 0, tzinfo=dt.UTC)
 
 @pytest.fixture(autouse=True)
 def _quick_and_contained(tmp_path, settings):
-    """Passwords hash fast, attachments stay in the test's own folder."""
+    """Passwords hash fast, files stay in the test's own folder."""
     settings.PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
     settings.ATTACHMENTS = tmp_path / "attachments"
+    settings.SEALS, settings.BACKUPS = tmp_path / "seals", tmp_path / "backups"
+    settings.SEAL_KEY_FILE, settings.SEAL_KEY = tmp_path / "seal_key", ""
 
 
 @pytest.fixture

@@ -10,16 +10,14 @@ from __future__ import annotations
 import datetime as dt
 import hashlib
 import io
-import os
-import tempfile
 from dataclasses import dataclass
 from pathlib import Path
 
-from django.conf import settings
 from django.core.exceptions import ValidationError
 from django.core.files.uploadedfile import UploadedFile
 from PIL import Image, ImageOps, UnidentifiedImageError
 
+from fleet.kept_files import attachment_path, written_whole
 from fleet.models import Attachment, Document, Operator
 from fleet.services.history import Writing
 
@@ -147,11 +145,6 @@ def cleaned_copy(content: bytes, name: str) -> Cleaned:
         raise ValidationError(NOT_READABLE.format(name=name)) from error
 
 
-def attachment_path(sha256: str) -> Path:
-    """Where the bytes of that digest are kept."""
-    return Path(settings.ATTACHMENTS) / sha256[:2] / sha256
-
-
 def _drawn_anew(image: Image.Image, shown_as: str) -> Cleaned:
     upright = ImageOps.exif_transpose(image)
     mode = "RGBA" if shown_as == "PNG" and "A" in upright.getbands() else "RGB"
@@ -179,11 +172,7 @@ def _keep(content: bytes) -> str:
     """Write the bytes under their digest, whole or not at all; returns the digest."""
     digest = hashlib.sha256(content).hexdigest()
     path = attachment_path(digest)
-    if path.exists():
-        return digest
-    path.parent.mkdir(parents=True, exist_ok=True)
-    handle, temporary = tempfile.mkstemp(dir=path.parent)
-    with os.fdopen(handle, "wb") as file:
-        file.write(content)
-    os.replace(temporary, path)
+    if not path.exists():
+        with written_whole(path) as file:
+            file.write(content)
     return digest

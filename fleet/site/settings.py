@@ -5,14 +5,22 @@
 | FRAMEBAY_DATA | folder of SQLite file, attachments and secret key | `data/` |
 | DATABASE_URL | as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
 | FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
+| FRAMEBAY_SEAL_KEY | base64 of the 32 bytes of the Ed25519 key of seals | made once, kept there |
+| FRAMEBAY_BACKUPS | folder of the backups; better on another machine | `backups/` there |
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
 | FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
+| FRAMEBAY_PROXIES | proxies in front; the address and https are read from the last | 0 |
+| FRAMEBAY_SIGN_IN_LIMIT | wrong passwords of one name from one address until a lock | 5 |
+| FRAMEBAY_SIGN_IN_WAIT | minutes until the lock opens by itself | 15 |
+| FRAMEBAY_IDLE_MINUTES | minutes without a request after which one signs in again | 30 |
+| FRAMEBAY_SESSION_HOURS | hours after which one signs in again in any case | 12 |
 | FRAMEBAY_DEBUG | 1 shows tracebacks in the browser | 0 |
 | FRAMEBAY_TODAY | the date taken as today | the demo's, if it is here; else the clock |
 """
 
 from __future__ import annotations
 
+import datetime as dt
 import os
 import secrets
 from pathlib import Path
@@ -32,9 +40,22 @@ def env_flag(name: str) -> bool:
     return value == "1"
 
 
+def env_count(name: str, default: int, least: int = 1) -> int:
+    value = os.environ.get(name, str(default))
+    if not value.isdecimal() or int(value) < least:
+        raise ImproperlyConfigured(
+            f"{name} is {value!r}; write a whole number, at least {least}."
+        )
+    return int(value)
+
+
 DATA_DIR = Path(os.environ.get("FRAMEBAY_DATA", BASE_DIR / "data")).resolve()
 DATA_DIR.mkdir(parents=True, exist_ok=True)
 ATTACHMENTS = DATA_DIR / "attachments"
+SEALS = DATA_DIR / "seals"
+SEAL_KEY = os.environ.get("FRAMEBAY_SEAL_KEY", "")
+SEAL_KEY_FILE = DATA_DIR / "seal_key"
+BACKUPS = Path(os.environ.get("FRAMEBAY_BACKUPS") or DATA_DIR / "backups").resolve()
 
 
 def secret_key() -> str:
@@ -54,6 +75,7 @@ def secret_key() -> str:
 SECRET_KEY = secret_key()
 DEBUG = env_flag("FRAMEBAY_DEBUG")
 HTTPS = env_flag("FRAMEBAY_HTTPS")
+PROXIES = env_count("FRAMEBAY_PROXIES", 0, least=0)
 ALLOWED_HOSTS = os.environ.get("FRAMEBAY_HOSTS", "127.0.0.1,localhost,[::1]").split(",")
 TODAY_FILE = "today"
 
@@ -73,8 +95,12 @@ INSTALLED_APPS = [
     "django.contrib.sessions",
     "django.contrib.messages",
     "django.contrib.staticfiles",
+    "axes",
     "csp",
     "django_filters",
+    "django_otp",
+    "django_otp.plugins.otp_static",
+    "django_otp.plugins.otp_totp",
     "repairs",
     "reports",
 ]
@@ -89,6 +115,7 @@ MIDDLEWARE = [
     "django.contrib.auth.middleware.AuthenticationMiddleware",
     "django.contrib.auth.middleware.LoginRequiredMiddleware",
     "django.contrib.messages.middleware.MessageMiddleware",
+    "fleet.views.once.once",
     "django.middleware.clickjacking.XFrameOptionsMiddleware",
 ]
 ROOT_URLCONF = "fleet.site.urls"
@@ -104,7 +131,7 @@ TEMPLATES = [
                 "django.contrib.messages.context_processors.messages",
                 "fleet.views.context.page",
             ],
-            "builtins": ["fleet.templatetags.quantities"],
+            "builtins": ["fleet.templatetags.quantities", "fleet.templatetags.forms"],
         },
     }
 ]
@@ -128,6 +155,21 @@ if DATABASES["default"]["ENGINE"].endswith("sqlite3"):
 DEFAULT_AUTO_FIELD = "django.db.models.BigAutoField"
 
 AUTH_USER_MODEL = "fleet.User"
+AUTHENTICATION_BACKENDS = [
+    "axes.backends.AxesStandaloneBackend",
+    "django.contrib.auth.backends.ModelBackend",
+]
+AXES_FAILURE_LIMIT = env_count("FRAMEBAY_SIGN_IN_LIMIT", 5)
+AXES_COOLOFF_TIME = dt.timedelta(minutes=env_count("FRAMEBAY_SIGN_IN_WAIT", 15))
+AXES_LOCKOUT_PARAMETERS = [["username", "ip_address"]]
+AXES_CLIENT_IP_CALLABLE = "fleet.services.attempts.address_of"
+AXES_SENSITIVE_PARAMETERS = ["username", "ip_address", "code", "csrfmiddlewaretoken"]
+AXES_RESET_ON_SUCCESS = True
+AXES_RESET_COOL_OFF_ON_FAILURE_DURING_LOCKOUT = False
+AXES_DISABLE_ACCESS_LOG = True
+AXES_ENABLE_ADMIN = False
+AXES_VERBOSE = False
+SILENCED_SYSTEM_CHECKS = ["axes.W002"]  # the sign-in page answers when it is locked
 PASSWORD_HASHERS = ["django.contrib.auth.hashers.Argon2PasswordHasher"]
 AUTH_PASSWORD_VALIDATORS = [
     {"NAME": f"django.contrib.auth.password_validation.{name}"}
@@ -171,6 +213,8 @@ SESSION_COOKIE_HTTPONLY = True
 SESSION_COOKIE_AGE = 12 * 60 * 60
 SESSION_COOKIE_SECURE = CSRF_COOKIE_SECURE = HTTPS
 SECURE_SSL_REDIRECT = HTTPS
+if PROXIES:
+    SECURE_PROXY_SSL_HEADER = ("HTTP_X_FORWARDED_PROTO", "https")
 SECURE_HSTS_SECONDS = 31_536_000 if HTTPS else 0
 SECURE_HSTS_INCLUDE_SUBDOMAINS = SECURE_HSTS_PRELOAD = HTTPS
 

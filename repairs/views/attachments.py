@@ -6,8 +6,8 @@ from django.http import FileResponse, Http404, HttpResponseBase
 from django.views.decorators.http import require_safe
 
 from fleet.access import visible_or_404
+from fleet.kept_files import attachment_path
 from fleet.models import Attachment
-from fleet.services.documents import attachment_path
 from fleet.views.requests import Request
 
 LOST = "The file of this attachment is not in the store; restore it from a backup."
