@@ -6,8 +6,8 @@ import datetime as dt
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
-from fleet.due import Counters
-from fleet.models import Aircraft, AuthorisationScope, Document, Person
+from fleet.due import COUNTED, COUNTER_WORDS, Counters
+from fleet.models import Aircraft, AuthorisationScope, Document
 from repairs.models import (
     Disposition,
     DispositionKind,
@@ -19,35 +19,22 @@ from repairs.models import (
     Repair,
     RequirementState,
 )
-from repairs.services.assessing import is_critical_crack, open_questions
-from repairs.services.authority import ASSESSORS, CERTIFIERS
+from repairs.services.finding_guards import (
+    DECIDABLE,
+    KEEPS_DAMAGE,
+    STEPS,
+    Facts,
+    step_problems,
+)
 from repairs.services.requirement_draft import RequirementDraft
 
+__all__ = ["DECIDABLE", "KEEPS_DAMAGE"]
+
 K = DispositionKind
-DECIDABLE = (
-    FindingState.ASSESSED,
-    FindingState.ACCEPTED,
-    FindingState.DEFERRED,
-    FindingState.TO_RECTIFY,
-)
-SETS_RIGHT = (K.RECTIFY, K.REPLACE)
-KEEPS_DAMAGE = (K.ACCEPT, K.ACCEPT_WITH_INSPECTION, K.DEFER)
-HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
 LIVE = (RequirementState.EFFECTIVE, RequirementState.DRAFT)
 
 NO_FINDING = "A disposition answers at least one finding."
-OTHER_AIRCRAFT = "{finding} is not on {aircraft}; a disposition is for one aircraft."
-NOT_DECIDABLE = "{finding} is {state}; assess it before it is decided on."
 NO_BASIS = "Name the basis: document reference, and its page or paragraph."
-CRITICAL_CRACK = (
-    "{finding} is a crack in structure that is {criticality}: rectify it before "
-    "further flight, or cite the approval document of a design approval holder as "
-    "basis. “{reference}” is a {kind}."
-)
-CRITICAL_LIMIT = (
-    "{finding} is a crack in structure that is {criticality}: the approval it flies "
-    "on states a limit (FH, FC, landings or date) and inspections. Give {lacking}."
-)
 INSPECTION_NEEDED = (
     "“{kind}” is saved with its inspection requirement: choose one that is in force, "
     "or give a new one."
@@ -65,7 +52,13 @@ LIMIT_PASSED = (
     "The deferral limit {limit} lies at or before the decision ({now}); it would be "
     "overdue at once."
 )
-NOT_YET_FOUND = "Decided on {decided_on}, before {finding} was found on {found_on}."
+COUNTERS_NEEDED = (
+    "State the {counter} on the day of the decision: the deferral limit counts them."
+)
+CREW_NEEDED = (
+    "Say on which day the crew was informed of the deferral; it is not before the day "
+    "of the find, {found_on}, nor after the decision."
+)
 STALE_REPLACES = "{replaced} was replaced by {by} already; decide from that one."
 NOT_THE_FINDINGS = "{basis} does not belong to a finding of this disposition."
 
@@ -81,6 +74,10 @@ class Basis:
     title: str = ""
     issued_on: dt.date | None = None
 
+    @property
+    def kind_words(self) -> str:
+        return str(Document.Kind(self.kind).label)
+
 
 @dataclass(frozen=True, slots=True)
 class Reviewed:
@@ -94,7 +91,7 @@ class Reviewed:
 
 @dataclass(frozen=True, slots=True)
 class DispositionEntry:
-    """A decision as it is signed; `at` are the aircraft's counters that day.
+    """A decision as it is signed by who decides; `at` are that day's counters.
 
     `requirement` names an inspection requirement there is already; `new_requirement`
     is raised with the disposition as its origin, in the same writing.
@@ -105,11 +102,11 @@ class DispositionEntry:
     kind: str
     basis: Basis
     reason: str
-    decided_by: Person
     decided_on: dt.date
     at: Counters = field(default_factory=Counters)
     limit: Counters = field(default_factory=Counters)
     limit_on: dt.date | None = None
+    crew_informed_on: dt.date | None = None
     scale: str = "undecided"
     scale_reason: str = ""
     category: str = ""
@@ -137,7 +134,7 @@ def decision_problems(
     if not (entry.basis.reference.strip() and entry.basis.page.strip()):
         problems.append(NO_BASIS)
     for finding in findings:
-        problems += _finding_problems(entry, finding)
+        problems += step_problems(entry.kind, finding, Facts(entry=entry))
     if entry.kind == K.ACCEPT_WITH_INSPECTION and not entry.has_inspection:
         kind = K.ACCEPT_WITH_INSPECTION.label
         problems.append(INSPECTION_NEEDED.format(kind=kind))
@@ -149,8 +146,8 @@ def decision_problems(
         problems.append(
             REQUIREMENT_ELSEWHERE.format(requirement=chosen, aircraft=entry.aircraft)
         )
-    if entry.kind == K.DEFER and not entry.has_limit:
-        problems.append(LIMIT_NEEDED)
+    if entry.kind == K.DEFER:
+        problems += _deferral_problems(entry, findings)
     return problems + _limit_problems(entry) + _chain_problems(entry, findings)
 
 
@@ -159,58 +156,24 @@ def applies_to(requirement: InspectionRequirement, aircraft: Aircraft) -> bool:
 
 
 def scopes_for(kind: str) -> tuple[AuthorisationScope, ...]:
-    """A deferral is decided by certifying staff only."""
-    return CERTIFIERS if kind == K.DEFER else ASSESSORS
+    """A deferral, and closing as not damage, are certifying staff's only."""
+    return STEPS[kind].scopes
 
 
-def _finding_problems(entry: DispositionEntry, finding: Finding) -> list[str]:
-    problems = []
-    if finding.aircraft_id != entry.aircraft.pk:
-        text = OTHER_AIRCRAFT.format(finding=finding, aircraft=entry.aircraft)
-        problems.append(text)
-    if finding.state not in DECIDABLE:
-        state = finding.get_state_display()
-        problems.append(NOT_DECIDABLE.format(finding=finding, state=state))
-    problems += open_questions(finding)
-    if entry.decided_on < finding.found_on:
-        problems.append(
-            NOT_YET_FOUND.format(
-                decided_on=entry.decided_on, finding=finding, found_on=finding.found_on
-            )
-        )
-    if is_critical_crack(finding) and entry.kind not in SETS_RIGHT:
-        problems += _crack_problems(entry, finding)
+def _deferral_problems(
+    entry: DispositionEntry, findings: Sequence[Finding]
+) -> list[str]:
+    """A deferral has a limit that can be counted, and the crew knows of it."""
+    problems = [] if entry.has_limit else [LIMIT_NEEDED]
+    for counter in COUNTED:
+        if entry.limit[counter] is not None and entry.at[counter] is None:
+            words = COUNTER_WORDS[counter][0]
+            problems.append(COUNTERS_NEEDED.format(counter=words))
+    told = entry.crew_informed_on
+    found = min((one.found_on for one in findings), default=entry.decided_on)
+    if told is None or not found <= told <= entry.decided_on:
+        problems.append(CREW_NEEDED.format(found_on=found))
     return problems
-
-
-def _crack_problems(entry: DispositionEntry, finding: Finding) -> list[str]:
-    criticality = finding.get_criticality_display()
-    if entry.basis.kind not in HOLDER_DOCUMENTS:
-        return [
-            CRITICAL_CRACK.format(
-                finding=finding,
-                criticality=criticality,
-                reference=entry.basis.reference,
-                kind=Document.Kind(entry.basis.kind).label,
-            )
-        ]
-    if entry.kind not in KEEPS_DAMAGE:
-        return []
-    lacking = [
-        words
-        for words, given in (
-            ("the limit", entry.has_limit),
-            ("the inspection requirement", entry.has_inspection),
-        )
-        if not given
-    ]
-    if not lacking:
-        return []
-    return [
-        CRITICAL_LIMIT.format(
-            finding=finding, criticality=criticality, lacking=" and ".join(lacking)
-        )
-    ]
 
 
 def _limit_problems(entry: DispositionEntry) -> list[str]:

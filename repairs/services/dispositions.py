@@ -8,12 +8,13 @@ from dataclasses import replace
 
 from django.core.exceptions import ValidationError
 
-from fleet.models import Authorisation, Operator, User
+from fleet.models import Authorisation, User
 from fleet.services.aircraft import stream_of
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
 from fleet.services.parts import counter_columns
+from fleet.services.signing import Proof
 from repairs.models import (
     Disposition,
     DispositionBasis,
@@ -21,9 +22,12 @@ from repairs.models import (
     DueKind,
     Finding,
     FindingState,
+    Meaning,
     NeighbourReview,
     Repair,
 )
+from repairs.selectors.deferrals import chain_of, origin_on
+from repairs.services.approvals import approval_write
 from repairs.services.authority import authorised, operator_on
 from repairs.services.disposition_entry import (
     KEEPS_DAMAGE,
@@ -33,28 +37,23 @@ from repairs.services.disposition_entry import (
     scopes_for,
 )
 from repairs.services.due_points import deferral_due_open, due_points_close
+from repairs.services.finding_guards import STEPS
 from repairs.services.inspections import requirement_raise_within
+from repairs.services.reports import finding_questions_write
 
-STATE_AFTER: dict[str, FindingState] = {
-    K.ACCEPT: FindingState.ACCEPTED,
-    K.ACCEPT_WITH_INSPECTION: FindingState.ACCEPTED,
-    K.DEFER: FindingState.DEFERRED,
-    K.RECTIFY: FindingState.TO_RECTIFY,
-    K.REPLACE: FindingState.TO_RECTIFY,
-    K.NOT_DAMAGE: FindingState.CLOSED,
-}
 INSPECTED_BY = "{reason} Inspection: {requirement}."
 AS_ENTERED = (
-    "aircraft", "replaces", "kind", "scale", "scale_reason", "category", "decided_by",
-    "decided_on", "limit_on",
+    "aircraft", "replaces", "kind", "scale", "scale_reason", "category", "decided_on",
+    "limit_on", "crew_informed_on",
 )  # fmt: skip
+DECIDED = "{disposition} decided: {kind}"
 CLOSED_BY = "answered anew by {number}"
 
 
 def disposition_decide(
-    *, entry: DispositionEntry, actor: User | None, at: dt.datetime
+    *, entry: DispositionEntry, proof: Proof, actor: User | None, at: dt.datetime
 ) -> Disposition:
-    """Record a decision and put its findings where it says.
+    """Sign a decision and put its findings where it says; who signs decides.
 
     ValidationError says everything that stands against it: no valid authorisation that
     day, no basis, a crack in PSE or FCS without a design approval holder's approval,
@@ -67,12 +66,15 @@ def disposition_decide(
         operator=entry.aircraft.operator,
         stream=stream_of(entry.aircraft),
         reason=entry.reason,
+        origin=proof.how,
     ) as w:
-        return disposition_write(w, entry)
+        return disposition_write(w, entry, proof=proof)
 
 
-def disposition_write(w: Writing, entry: DispositionEntry) -> Disposition:
-    """Inside a writing: the disposition, its rows, and what follows from it."""
+def disposition_write(
+    w: Writing, entry: DispositionEntry, *, proof: Proof
+) -> Disposition:
+    """Inside a writing: the disposition, what follows from it, and its signature."""
     keys = [finding.pk for finding in entry.findings]
     findings = list(
         Finding.objects.select_for_update(of=("self",))
@@ -84,14 +86,26 @@ def disposition_write(w: Writing, entry: DispositionEntry) -> Disposition:
         raise ValidationError(problems)
     operator = operator_on(entry.aircraft, entry.decided_on)
     authorisation = authorised(
-        person=entry.decided_by,
+        person=proof.person,
         operator=operator,
         scopes=scopes_for(entry.kind),
         on=entry.decided_on,
     )
-    disposition = w.create(_row(w, entry, findings, operator, authorisation))
+    disposition = w.create(_row(w, entry, findings, authorisation))
     _rows_write(w, disposition, entry, findings)
     _follow(w, disposition, entry, findings)
+    deferred = entry.kind == K.DEFER
+    approval_write(
+        w,
+        subject=disposition,
+        meaning=Meaning.DEFERRED if deferred else Meaning.PREPARED,
+        proof=proof,
+        on=entry.decided_on,
+        statement=DECIDED.format(
+            disposition=disposition, kind=disposition.get_kind_display()
+        ),
+        scopes=scopes_for(entry.kind),
+    )
     return disposition
 
 
@@ -99,10 +113,10 @@ def _row(
     w: Writing,
     entry: DispositionEntry,
     findings: Sequence[Finding],
-    operator: Operator,
     authorisation: Authorisation,
 ) -> Disposition:
     """The decision; one that replaces another keeps its number as the next revision."""
+    operator = authorisation.operator
     replaces, basis = entry.replaces, entry.basis
     number = (
         replaces.number if replaces else number_next(w, operator=operator, kind="D")
@@ -124,6 +138,7 @@ def _row(
         basis_document=document,
         basis_page=basis.page.strip(),
         reason=_reason(entry),
+        decided_by=authorisation.person,
         authorisation=authorisation,
         limit_minutes=entry.limit.minutes,
         limit_cycles=entry.limit.cycles,
@@ -142,9 +157,10 @@ def _reason(entry: DispositionEntry) -> str:
 
 
 def _first_found(entry: DispositionEntry, findings: Sequence[Finding]) -> dt.date:
-    """The original date: it never moves, whatever is decided later."""
-    days = [finding.found_on for finding in findings]
-    return min([*days, entry.replaces.found_on] if entry.replaces else days)
+    """The original date: it never moves, whatever is decided later, nor under which
+    number the same damage is recorded again."""
+    first = origin_on(findings)
+    return min(first, entry.replaces.found_on) if entry.replaces else first
 
 
 def _rows_write(
@@ -192,7 +208,9 @@ def _follow(
     """States, the inspection raised with it, and the limit on the due list."""
     decided_before = any(row.state != FindingState.ASSESSED for row in findings)
     for finding in findings:
-        w.change(finding, state=STATE_AFTER[disposition.kind])
+        w.change(finding, state=STEPS[disposition.kind].to)
+        if disposition.scale == "major":
+            finding_questions_write(w, finding)
     if entry.new_requirement is not None:
         requirement_raise_within(
             w, replace(entry.new_requirement, disposition=disposition)
@@ -208,7 +226,10 @@ def _follow(
         )
         extended = closed[0] if closed else extended
     if entry.has_limit and disposition.kind in KEEPS_DAMAGE:
-        deferral_due_open(w, disposition=disposition, extends=extended)
+        chain = chain_of(findings)
+        deferral_due_open(
+            w, disposition=disposition, extends=extended, history=chain.words
+        )
 
 
 def _answered_before(

@@ -16,6 +16,7 @@ from fleet.services.history import Writing
 from repairs.models import (
     Accomplishment,
     Disposition,
+    DispositionKind,
     DueKind,
     DuePoint,
     Event,
@@ -109,9 +110,16 @@ def due_points_close(
 
 
 def deferral_due_open(
-    w: Writing, *, disposition: Disposition, extends: DuePoint | None = None
+    w: Writing,
+    *,
+    disposition: Disposition,
+    extends: DuePoint | None = None,
+    history: str = "",
 ) -> DuePoint:
-    """The limit of a deferral, with its original date in words."""
+    """The limit of a deferral; `history` tells the first date and how often."""
+    deferred = disposition.kind == DispositionKind.DEFER
+    word = "deferred" if deferred else "accepted to a limit"
+    first = history or f"found {disposition.found_on}"
     due = Due(
         Counters(
             disposition.limit_minutes,
@@ -126,7 +134,7 @@ def deferral_due_open(
         kind=DueKind.DEFERRAL,
         due=due,
         opened_on=disposition.decided_on,
-        basis=f"deferred by {disposition.number}; found {disposition.found_on}",
+        basis=f"{word} by {disposition.number}; {first}",
         replaces=extends,
     )
 
