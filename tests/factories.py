@@ -9,6 +9,7 @@ from __future__ import annotations
 import datetime as dt
 import itertools
 from pathlib import Path
+from typing import Any
 
 from fleet.models import (
     Aircraft,
@@ -22,6 +23,7 @@ from fleet.models import (
 )
 from fleet.services import people
 from fleet.services.aircraft import aircraft_add
+from fleet.services.signing import Proof
 
 NOW = dt.datetime(2025, 1, 1, 9, 0, tzinfo=dt.UTC)
 TODAY = dt.date(2025, 1, 1)
@@ -64,6 +66,16 @@ def authorise(person: Person, operator: Operator, scope: str) -> Authorisation:
         source="company authorisation register",
         at=NOW,
     )
+
+
+def signed(said: dict[str, Any]) -> dict[str, Any]:
+    """A form that signs, with the password every login here has."""
+    return {**said, "password": PASSWORD}
+
+
+def program(person: Person | None = None) -> Proof:
+    """What a service that signs is given where there is no browser."""
+    return Proof.by_program(person or Person(name="Robin Clerk"))
 
 
 def type_bare() -> tuple[AircraftType, Variant]:

@@ -58,6 +58,7 @@ from tests.factories import (
     NOW,
     TODAY,
     operator_make,
+    program,
     user_make,
 )
 from tests.record_rows import (
@@ -89,6 +90,7 @@ class OneOfEach:
     evaluation: Evaluation
     disposition: Disposition
     repair: Repair
+    document: Document
     requirement: InspectionRequirement
     subject: RequirementSubject
     accomplishment: Accomplishment
@@ -122,6 +124,7 @@ def one_of_each_make() -> OneOfEach:
         evaluation=_evaluation(world, crack),
         disposition=_disposition(world, decided),
         repair=_repair(world),
+        document=_document(world, "letter", "ARD-L-0088"),
         requirement=requirement,
         subject=requirement.subjects.get(),
         accomplishment=_accomplishment(requirement),
@@ -199,10 +202,10 @@ def _disposition(world: World, finding: Finding) -> Disposition:
             kind="accept",
             basis=MANUAL,
             reason="Within the manual's limits.",
-            decided_by=world.assessor,
             decided_on=FOUND,
             at=AT,
         ),
+        proof=program(world.assessor),
         actor=world.engineer,
         at=NOW,
     )
@@ -222,6 +225,7 @@ def _repair(world: World) -> Repair:
             at=AT,
             released_by=world.certifier,
         ),
+        proof=program(world.certifier),
         actor=world.engineer,
         at=NOW,
     )
@@ -262,6 +266,7 @@ def _accomplishment(requirement: InspectionRequirement) -> Accomplishment:
         done_on=FOUND,
         counters=AT,
         result="no_finding",
+        proof=program(),
     ).row
 
 

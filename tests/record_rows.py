@@ -22,6 +22,7 @@ from tests.factories import (
     aircraft_make,
     authorise,
     operator_make,
+    program,
     user_make,
     users_make,
 )
@@ -110,7 +111,7 @@ def assessed(
 ) -> Finding:
     return finding_assess(
         finding=finding or found(world, **changes),
-        person=world.assessor,
+        proof=program(world.assessor),
         on=FOUND,
         data=DATA,
         actor=world.engineer,

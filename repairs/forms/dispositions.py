@@ -9,7 +9,8 @@ from django import forms
 
 from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
-from fleet.models import Document, Person, User
+from fleet.forms.signing import SignatureForm
+from fleet.models import Document
 from repairs.forms.fields import CountersForm, DataForm, Several, choose
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
@@ -27,7 +28,6 @@ from repairs.services.disposition_entry import KEEPS_DAMAGE, Basis, Reviewed
 
 REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
 WHY = "Say why, in a few words."
-WRONG_PASSWORD = "This is not your password; nothing was signed."
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
 DATA = (
     "document_kind", "document_reference", "document_revision", "document_page",
@@ -39,8 +39,8 @@ SCALE = ("scale", "scale_reason", "category")
 SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
 
 
-class DispositionForm(CountersForm, DataForm):
-    """What is decided, on which data, by whom, and until when."""
+class DispositionForm(SignatureForm, CountersForm, DataForm):
+    """What is decided, on which data, and until when, by who signs it."""
 
     kind = forms.ChoiceField(label="decision", choices=DispositionKind.choices)
     also = Several(
@@ -48,7 +48,6 @@ class DispositionForm(CountersForm, DataForm):
         help_text="Other findings of this aircraft the same decision answers.",
     )  # fmt: skip
     reason = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
-    decided_by = forms.ModelChoiceField(Person.objects.none(), label="decided by")
     decided_on = DayField(label="decided on")
     limit_minutes = HoursField(label="deferral limit, flight hours", required=False)
     limit_cycles = CounterField(
@@ -85,7 +84,7 @@ class DispositionForm(CountersForm, DataForm):
         super().__init__(*args, **kwargs)
         for name, rows in choices.items():
             choose(self, name, rows)
-            if name != "decided_by" and not rows.exists():
+            if not rows.exists():
                 del self.fields[name]
         self.today, self.near = today, near
         for number, one in enumerate(near):
@@ -98,7 +97,7 @@ class DispositionForm(CountersForm, DataForm):
         """The fields in the order they are asked."""
         near = [n for n in self.fields if n.startswith(("near_", "why_"))]
         return [
-            group(self, "Decision", ("kind", "reason", "decided_by", "decided_on")),
+            group(self, "Decision", ("kind", "reason", "decided_on")),
             group(self, "Data it rests on", DATA),
             group(self, "Deferral limit", LIMITS),
             *([group(self, "Neighbours reviewed", near)] if near else []),
@@ -149,8 +148,8 @@ class DispositionForm(CountersForm, DataForm):
         ]
 
 
-class SignForm(forms.Form):
-    """A signature under the text shown; the password shows that it is you."""
+class SignForm(SignatureForm):
+    """A signature under the text shown."""
 
     meaning = forms.ChoiceField(label="signed as")
     statement = forms.CharField(required=False)
@@ -162,24 +161,13 @@ class SignForm(forms.Form):
     document_issuer = forms.CharField(required=False, label="its issuer")
     document_revision = forms.CharField(required=False, label="its revision")
     document_date = DayField(required=False, label="its date")
-    password = forms.CharField(
-        label="your password",
-        widget=forms.PasswordInput(attrs={"autocomplete": "current-password"}),
-    )
     shown_digest = forms.CharField(widget=forms.HiddenInput)
 
     def __init__(
-        self, *args: Any, meanings: list[tuple[str, str]], user: User, **kwargs: Any
+        self, *args: Any, meanings: list[tuple[str, str]], **kwargs: Any
     ) -> None:
         super().__init__(*args, **kwargs)
         self.fields["meaning"].choices = meanings  # type: ignore[attr-defined]
-        self.user = user
-
-    def clean_password(self) -> str:
-        given: str = self.cleaned_data["password"]
-        if not self.user.check_password(given):
-            raise forms.ValidationError(WRONG_PASSWORD)
-        return given
 
 
 def _near_label(one: Near) -> str:

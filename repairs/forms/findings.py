@@ -8,6 +8,7 @@ from typing import Any
 from django import forms
 
 from fleet.forms.fields import CounterField, DayField
+from fleet.forms.signing import SignatureForm
 from fleet.models import Aircraft, Criticality, Person
 from repairs.forms.fields import CountersForm, DataForm, PhotoForm, choose
 from repairs.models import (
@@ -164,22 +165,20 @@ class AnswerForm(forms.Form):
     answer = forms.CharField()
 
 
-class PersonOnDayForm(forms.Form):
-    """Who decided, and on which day; the authorisation is looked up."""
+class OnDayForm(SignatureForm):
+    """The day of a judgement, signed by who makes it."""
 
-    person = forms.ModelChoiceField(Person.objects.none())
     on = DayField(label="on")
 
-    def __init__(self, *args: Any, people: Any, today: Any, **kwargs: Any) -> None:
+    def __init__(self, *args: Any, today: Any, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        choose(self, "person", people)
         self.today = today
 
     def clean_on(self) -> Any:
         return not_in_future(self.cleaned_data["on"], self.today)
 
 
-class AssessForm(PersonOnDayForm, DataForm):
+class AssessForm(OnDayForm, DataForm):
     """Assessed against cited data."""
 
     cause = forms.ChoiceField(choices=Cause.choices)
@@ -187,7 +186,7 @@ class AssessForm(PersonOnDayForm, DataForm):
     criticality_source = forms.CharField(label="who says so", required=False)
 
 
-class CloseForm(PersonOnDayForm):
+class CloseForm(OnDayForm):
     """Closed by certifying staff, with the cause and the answer on reporting."""
 
     cause = forms.ChoiceField(choices=Cause.choices)

@@ -9,6 +9,7 @@ from django import forms
 
 from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
+from fleet.forms.signing import SignatureForm
 from fleet.models import Aircraft, Criticality, Document, Organisation, Person
 from fleet.units import UnitError, length_read
 from repairs.forms.fields import (
@@ -60,7 +61,7 @@ REMOVED = [
 ]
 
 
-class RepairForm(CountersForm, PhotoForm):
+class RepairForm(SignatureForm, CountersForm, PhotoForm):
     """What was done, with which data, at which release."""
 
     aircraft = forms.ModelChoiceField(Aircraft.objects.none())
@@ -129,8 +130,10 @@ class RepairForm(CountersForm, PhotoForm):
     released_on = DayField(label="released on")
     release_reference = forms.CharField(label="release reference", required=False)
     released_by = forms.ModelChoiceField(
-        Person.objects.none(), label="released by", required=False
-    )
+        Person.objects.none(), label="released by", required=False,
+        help_text="Yourself signs it here; another's release is recorded from its "
+        "paper, by its reference.",
+    )  # fmt: skip
     performed_by = forms.ModelChoiceField(
         Person.objects.none(), label="performed by", required=False
     )

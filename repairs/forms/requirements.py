@@ -9,6 +9,7 @@ from django import forms
 
 from fleet.due import Counters
 from fleet.forms.fields import AmountField, CounterField, DayField
+from fleet.forms.signing import SignatureForm
 from fleet.models import Aircraft, Document, Operator, Person, SafeLifePart
 from repairs.forms.fields import CountersForm, choose
 from repairs.models import DetectionMethod, Finding, RequirementClass
@@ -165,7 +166,7 @@ class AgainForm(LimitsForm):
         return str(self.cleaned_data["applies_to"]).split(",")
 
 
-class DoneForm(CountersForm):
+class DoneForm(SignatureForm, CountersForm):
     """One doing of a requirement; counters are those at release of the work."""
 
     at_pressurisations = CounterField(label="pressurisation cycles", required=False)
@@ -173,8 +174,9 @@ class DoneForm(CountersForm):
     result = forms.ChoiceField(choices=RESULTS)
     finding = forms.ModelChoiceField(Finding.objects.none(), required=False)
     done_by = forms.ModelChoiceField(
-        Person.objects.none(), required=False, label="done by"
-    )
+        Person.objects.none(), required=False, label="done by",
+        help_text="Yourself signs it here; another's work is recorded from paper.",
+    )  # fmt: skip
     release_document = forms.ModelChoiceField(
         Document.objects.none(), required=False, label="release document"
     )
@@ -280,7 +282,7 @@ class AnswerForm(forms.Form):
         choose(self, "aircraft", Aircraft.objects.filter(pk__in=keys))
 
 
-class VerifyForm(forms.Form):
+class VerifyForm(SignatureForm):
     """A second person's confirmation of a terminating action."""
 
     evidence = forms.CharField(label="what shows it, and who saw it")

@@ -9,7 +9,6 @@ from django.db.models import Q, QuerySet
 
 from fleet.models import (
     Aircraft,
-    AuthorisationScope,
     Operator,
     Organisation,
     Person,
@@ -45,23 +44,13 @@ def people_at(operators: Sequence[Operator]) -> QuerySet[Person]:
     )
 
 
-def signers_at(
-    operator: Operator, scopes: Sequence[AuthorisationScope]
-) -> QuerySet[Person]:
-    """Who holds or held such an authorisation; the day is checked when it is signed."""
-    return Person.objects.filter(
-        authorisations__operator=operator, authorisations__scope__in=scopes
-    ).distinct()
-
-
 def decision_choices(
-    finding: Finding, states: Sequence[str], scopes: Sequence[AuthorisationScope]
+    finding: Finding, states: Sequence[str]
 ) -> dict[str, QuerySet[Any]]:
     """What a decision on a finding may name."""
     others = Finding.objects.filter(aircraft=finding.aircraft_id, state__in=states)
     return {
         "also": others.exclude(pk=finding.pk),
-        "decided_by": signers_at(finding.aircraft.operator, scopes),
         "evaluations": finding.evaluations.filter(replaced_by__isnull=True),
         "limit_checks": finding.limit_checks.all(),
         "requirement": InspectionRequirement.objects.filter(

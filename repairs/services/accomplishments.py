@@ -7,16 +7,18 @@ from datetime import date, datetime
 from typing import Any
 
 from fleet.due import COUNTER_WORDS, Counters, Due, Remaining
-from fleet.models import Document, Person, User
+from fleet.models import AuthorisationScope, Document, Person, User
 from fleet.selectors.life_limits import columns
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.parts import counter_columns
+from fleet.services.signing import Proof
 from repairs.models import (
     Accomplishment,
     DueKind,
     Finding,
     InspectionRequirement,
+    Meaning,
     RequirementState,
     RequirementSubject,
     ZoneInspected,
@@ -26,6 +28,7 @@ from repairs.selectors.requirement_due import (
     needed_counters,
     subject_overrun,
 )
+from repairs.services.approvals import approval_write
 from repairs.services.due_points import (
     due_point_close,
     due_point_open,
@@ -58,6 +61,12 @@ NO_EVIDENCE = "Say what shows that the terminating action is in place, and who s
 UNVERIFIED = "the terminating action is not verified yet"
 ALREADY_DONE = "It has been done here, so it applied; terminate it with evidence."
 SAME_PERSON = "The evidence is verified by someone other than who recorded it."
+NEEDS_PAPER = (
+    "Who did it, if it was not you, did not sign here: name the release document of "
+    "the paper original; or choose yourself, and sign it."
+)
+PERFORMED = "{requirement} performed: {row}"
+VERIFIED = "{requirement} terminated: {evidence}"
 NO_CLAIM = "No terminating action waits for verification here."
 
 
@@ -78,6 +87,7 @@ def accomplishment_record(
     done_on: date,
     counters: Counters,
     result: str,
+    proof: Proof,
     done_by: Person | None = None,
     finding: Finding | None = None,
     release_document: Document | None = None,
@@ -88,7 +98,9 @@ def accomplishment_record(
 ) -> Accomplished:
     """Record one doing on one subject and open the next due point.
 
-    `counters` are the subject's own at release. `late_approval` names the approval of
+    Signed as performed when who did it is who signs; what another did, or nobody named,
+    is recorded from its release document. `counters` are the subject's own at release.
+    `late_approval` names the approval of
     lateness, if there was one. A terminating action keeps the item on the list until
     another person has verified its evidence. `replaces` is the row that this one
     corrects, with the reason; what is due next is made again from what holds now.
@@ -102,6 +114,7 @@ def accomplishment_record(
         requirement.operator,
         stream=stream,
         reason=reason,
+        origin=proof.how,
     ) as w:
         w.locked(RequirementSubject.objects.all(), pk=subject.pk)
         subject.refresh_from_db(fields=["state", "applies"])
@@ -112,6 +125,8 @@ def accomplishment_record(
             problems.append(FINDING_MISSING)
         if result == "terminated" and not evidence.strip():
             problems.append(NO_EVIDENCE)
+        if proof.reentered and done_by != proof.person and release_document is None:
+            problems.append(NEEDS_PAPER)
         if problems:
             raise RequirementRefused(problems)
         row = w.create(
@@ -133,6 +148,16 @@ def accomplishment_record(
         late = subject_overrun(subject, row)
         _next_due(w, subject, row)
         _looked(w, requirement, row)
+        if proof.reentered and done_by == proof.person:
+            statement = PERFORMED.format(row=row, requirement=requirement)
+            approval_write(
+                w,
+                subject=row,
+                meaning=Meaning.PERFORMED,
+                proof=proof,
+                on=done_on,
+                statement=statement,
+            )
     return Accomplished(row, tuple(late))
 
 
@@ -253,19 +278,20 @@ def termination_verify(
     subject: RequirementSubject,
     on: date,
     evidence: str,
+    proof: Proof,
 ) -> None:
     """A second person confirms the terminating action; only then it leaves the list."""
     requirement = subject.requirement
     with requirement_writing(
-        actor, "termination_verify", at, requirement.operator
+        actor, "termination_verify", at, requirement.operator, origin=proof.how
     ) as w:
         claim = subject.accomplishments.filter(result="terminated").last()
         problems = [] if evidence.strip() else [NO_EVIDENCE]
         if subject.state != RequirementState.TERMINATION_UNVERIFIED or claim is None:
             problems.append(NO_CLAIM)
-        elif actor is not None and claim.entered_by_id == actor.pk:
+        elif _same_hands(claim, actor, proof):
             problems.append(SAME_PERSON)
-        if problems:
+        if problems or claim is None:
             raise RequirementRefused(problems)
         w.change(
             subject,
@@ -273,8 +299,23 @@ def termination_verify(
             termination_evidence=f"{subject.termination_evidence}; {evidence.strip()}",
         )
         due_points_close(w, origin=subject, on=on, reason="terminating action verified")
+        approval_write(
+            w,
+            subject=claim,
+            meaning=Meaning.CHECKED,
+            proof=proof,
+            on=on,
+            statement=VERIFIED.format(requirement=requirement, evidence=evidence),
+            scopes=tuple(AuthorisationScope),
+        )
         open_subjects = requirement.subjects.exclude(
             state=RequirementState.TERMINATED
         ).exclude(applies="no")
         if not open_subjects.exists():
             w.change(requirement, state=RequirementState.TERMINATED.value)
+
+
+def _same_hands(claim: Accomplishment, actor: User | None, proof: Proof) -> bool:
+    """Whether who verifies also recorded it, or did it."""
+    recorded = actor is not None and claim.entered_by_id == actor.pk
+    return recorded or claim.done_by == proof.person

@@ -231,6 +231,7 @@ def requirement_writing(
     *,
     stream: str = "fleet",
     reason: str = "",
+    origin: str = "",
 ) -> Writing:
     return Writing(
         actor=actor,
@@ -239,4 +240,5 @@ def requirement_writing(
         stream=stream,
         operator=operator,
         reason=reason,
+        origin=origin,
     )

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import Any
 
 from django.contrib import messages
@@ -16,8 +17,9 @@ from fleet.clock import now, today
 from fleet.due import COUNTED
 from fleet.selectors.counters import aircraft_standing
 from fleet.selectors.parts import part_life
+from fleet.services.signing import Proof
 from fleet.views.requests import Request
-from fleet.views.sending import sent
+from fleet.views.sending import sent, sent_signed
 from repairs.forms.requirements import (
     AnswerForm,
     DoneAgainForm,
@@ -64,12 +66,13 @@ def accomplishment_new(request: Request, pk: int, subject_pk: int) -> HttpRespon
     require(request.user, "accomplishment_record", operator.pk)
     form = DoneForm(
         request.POST or None,
+        user=request.user,
         operator=operator,
         findings=findings_on(subject),
         people=people_at([operator]),
-        initial=_initial(subject),
+        initial=_initial(subject) | {"done_by": request.user.person_id},
     )
-    made = sent(form, lambda: _record(request, subject, form))
+    made = sent_signed(request, form, partial(_record, request, subject, form))
     if made:
         _told(request, made)
         return redirect("requirement", pk)
@@ -89,12 +92,14 @@ def accomplishment_correct(request: Request, pk: int) -> HttpResponse:
     require(request.user, "accomplishment_record", operator.pk)
     form = DoneAgainForm(
         request.POST or None,
+        user=request.user,
         operator=operator,
         findings=findings_on(subject),
         people=people_at([operator]),
         initial=model_to_dict(row),
     )
-    made = sent(form, lambda: _record(request, subject, form, replaces=row))
+    save = partial(_record, request, subject, form, replaces=row)
+    made = sent_signed(request, form, save)
     if made:
         _told(request, made)
         return redirect("requirement", subject.requirement_id)
@@ -124,6 +129,7 @@ def _record(
     request: Request,
     subject: RequirementSubject,
     form: DoneForm,
+    proof: Proof,
     replaces: Accomplishment | None = None,
 ) -> Any:
     data = form.cleaned_data
@@ -135,6 +141,7 @@ def _record(
     names = ("done_on", "result", "finding", "done_by", "release_document")
     return accomplishment_record(
         **service,
+        proof=proof,
         today=today(),
         counters=form.counters(),
         evidence=data["evidence"],
@@ -160,10 +167,12 @@ def termination_check(request: Request, pk: int, subject_pk: int) -> HttpRespons
     """A second person confirms that the terminating action is in place."""
     subject = _subject(request, pk, subject_pk)
     require(request.user, "accomplishment_record", subject.requirement.operator_id)
-    form = VerifyForm(request.POST or None)
-    done = sent(
+    form = VerifyForm(request.POST or None, user=request.user)
+    done = sent_signed(
+        request,
         form,
-        lambda: termination_verify(
+        lambda proof: termination_verify(
+            proof=proof,
             actor=request.user,
             at=now(),
             subject=subject,

@@ -6,7 +6,6 @@ from functools import partial
 from typing import Any
 
 from django.contrib import messages
-from django.core.exceptions import ValidationError
 from django.http import HttpResponse
 from django.shortcuts import redirect, render
 from django.views.decorators.http import require_http_methods
@@ -14,19 +13,18 @@ from django.views.decorators.http import require_http_methods
 from fleet.access import require, visible_or_404
 from fleet.canonical import digest
 from fleet.clock import now, today
-from fleet.models import Person, User
+from fleet.services.signing import Proof
 from fleet.views.requests import Request
-from fleet.views.sending import sent
+from fleet.views.sending import sent_signed
 from repairs.forms.dispositions import SignForm
 from repairs.models import Approval, Disposition, Evaluation, Meaning, Repair
-from repairs.services.approvals import (
-    Signed,
+from repairs.selectors.signatures import (
     Subject,
-    aircraft_of,
-    approval_sign,
+    approvals_verified,
     content_lines,
     content_of,
 )
+from repairs.services.approvals import Signed, aircraft_of, approval_sign
 
 SUBJECTS: dict[str, type[Disposition] | type[Evaluation] | type[Repair]] = {
     "disposition": Disposition,
@@ -42,9 +40,6 @@ MEANINGS = {
     ),
 }  # fmt: skip
 SIGNED = "Signed: {number} {meaning}."
-NO_PERSON = (
-    "Your login has no person behind it, so it cannot sign; ask an administrator."
-)
 METHODS = ["GET", "HEAD", "POST"]
 
 
@@ -61,7 +56,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         user=request.user,
         initial={"shown_digest": digest(content)},
     )
-    if made := sent(form, partial(_sign, request, subject, form)):
+    if made := sent_signed(request, form, partial(_sign, request, subject, form)):
         meaning = made.get_meaning_display()
         messages.success(request, SIGNED.format(number=subject, meaning=meaning))
         return redirect(what, pk)
@@ -71,17 +66,19 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         "form": form,
         "lines": content_lines(content),
         "digest": digest(content),
-        "approvals": subject.approvals.all(),
+        "approvals": approvals_verified(subject),
     }
     return render(request, "repairs/approval_new.html", context)
 
 
-def _sign(request: Request, subject: Subject, form: SignForm) -> Approval:
+def _sign(
+    request: Request, subject: Subject, form: SignForm, proof: Proof
+) -> Approval:
     data: dict[str, Any] = form.cleaned_data
     return approval_sign(
         subject=subject,
         meaning=data["meaning"],
-        person=_person(request.user),
+        proof=proof,
         shown_digest=data["shown_digest"],
         statement=data["statement"],
         document=Signed(
@@ -95,9 +92,3 @@ def _sign(request: Request, subject: Subject, form: SignForm) -> Approval:
         actor=request.user,
         at=now(),
     )
-
-
-def _person(user: User) -> Person:
-    if user.person is None:
-        raise ValidationError(NO_PERSON)
-    return user.person

@@ -12,9 +12,11 @@ from django.views.decorators.http import require_http_methods, require_safe
 
 from fleet.access import may, require, visible_or_404
 from fleet.clock import now, today
+from fleet.forms.signing import SIGNATURE
 from fleet.selectors.history import history_of
+from fleet.services.signing import Proof
 from fleet.views.requests import Request
-from fleet.views.sending import sent
+from fleet.views.sending import sent_signed
 from repairs.forms.dispositions import DispositionForm
 from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
@@ -22,9 +24,8 @@ from repairs.models import Disposition, Finding
 from repairs.selectors.choices import decision_choices
 from repairs.selectors.findings import disposition_whole, finding_whole
 from repairs.selectors.neighbours import neighbours
-from repairs.services.approvals import approvals_verified
+from repairs.selectors.signatures import approvals_verified
 from repairs.services.assessing import is_critical_crack
-from repairs.services.authority import ASSESSORS
 from repairs.services.disposition_entry import DECIDABLE, DispositionEntry
 from repairs.services.dispositions import disposition_decide
 from repairs.services.findings import standing_on
@@ -32,7 +33,7 @@ from repairs.services.findings import standing_on
 METHODS = ["GET", "HEAD", "POST"]
 DECIDED = "{number} is recorded; it cannot be altered, only replaced."
 PASSED_ON = (
-    "reason", "decided_by", "decided_on", "limit_on", "scale", "scale_reason",
+    "reason", "decided_on", "limit_on", "scale", "scale_reason",
     "category", "evaluations", "limit_checks", "requirement", "replaces",
 )  # fmt: skip
 
@@ -45,14 +46,15 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
     near = neighbours(row, user=request.user).here
     form = DispositionForm(
         request.POST or None,
-        choices=decision_choices(row, DECIDABLE, ASSESSORS),
+        user=request.user,
+        choices=decision_choices(row, DECIDABLE),
         today=today(),
         near=near,
         initial=_initial(request, row),
     )
     raised = RaisedForm(request.POST or None, initial={"area": row.place_text})
     if raised.is_valid() and (
-        made := sent(form, partial(_decide, request, row, form, raised))
+        made := sent_signed(request, form, partial(_decide, request, row, form, raised))
     ):
         messages.success(request, DECIDED.format(number=made))
         return redirect("disposition", made.pk)
@@ -63,6 +65,7 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
         "groups": [
             *form.groups(),
             group(raised, "New inspection requirement", raised.fields, True),
+            group(form, "Your signature", SIGNATURE),
         ],
         "critical": is_critical_crack(row),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
@@ -96,7 +99,6 @@ def _initial(request: Request, row: Finding) -> dict[str, Any]:
     current = row.disposition_rows.order_by("-pk").first()
     return {
         "kind": "rectify" if is_critical_crack(row) else "accept",
-        "decided_by": request.user.person_id,
         "decided_on": today(),
         "at_minutes": flown.minutes,
         "at_cycles": flown.cycles,
@@ -107,7 +109,11 @@ def _initial(request: Request, row: Finding) -> dict[str, Any]:
 
 
 def _decide(
-    request: Request, row: Finding, form: DispositionForm, raised: RaisedForm
+    request: Request,
+    row: Finding,
+    form: DispositionForm,
+    raised: RaisedForm,
+    proof: Proof,
 ) -> Disposition:
     data = form.cleaned_data
     return disposition_decide(
@@ -127,6 +133,7 @@ def _decide(
             ),
             **{name: data[name] for name in PASSED_ON if name in data},
         ),
+        proof=proof,
         actor=request.user,
         at=now(),
     )

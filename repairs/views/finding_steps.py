@@ -15,8 +15,9 @@ from django.views.decorators.http import require_http_methods, require_POST
 from fleet.access import require, visible_or_404
 from fleet.clock import now, today
 from fleet.location.place import LocationRefused
+from fleet.services.signing import Proof
 from fleet.views.requests import Request
-from fleet.views.sending import sent
+from fleet.views.sending import sent, sent_signed
 from repairs.forms.dimensions import DimensionsForm
 from repairs.forms.fields import PhotoForm
 from repairs.forms.findings import (
@@ -29,7 +30,7 @@ from repairs.forms.findings import (
     VoidForm,
 )
 from repairs.models import Finding, FindingQuestion
-from repairs.selectors.choices import people_at, signers_at
+from repairs.selectors.choices import people_at
 from repairs.selectors.findings import earlier_findings, finding_whole
 from repairs.services.assessing import (
     DataCited,
@@ -39,7 +40,6 @@ from repairs.services.assessing import (
     finding_link,
     finding_void,
 )
-from repairs.services.authority import ASSESSORS, CERTIFIERS
 from repairs.services.findings import (
     finding_question_answer,
     finding_relocate,
@@ -110,10 +110,9 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "finding_assess")
     form = AssessForm(
         request.POST or None,
-        people=signers_at(row.aircraft.operator, ASSESSORS),
+        user=request.user,
         today=today(),
         initial={
-            "person": request.user.person_id,
             "on": today(),
             "cause": row.cause,
             "criticality": row.criticality,
@@ -121,11 +120,11 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
         },
     )
 
-    def save() -> Finding:
+    def save(proof: Proof) -> Finding:
         data = form.cleaned_data
         return finding_assess(
             finding=row,
-            person=data["person"],
+            proof=proof,
             on=data["on"],
             data=DataCited(*(data[f"document_{name}"] for name in CITED)),
             cause=data["cause"],
@@ -135,7 +134,8 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
             at=now(),
         )
 
-    return _page(request, row, [form], save, "Assess", "Assessed")
+    send = partial(sent_signed, request)
+    return _page(request, row, [form], save, "Assess", "Assessed", send=send)
 
 
 @require_http_methods(METHODS)
@@ -144,22 +144,21 @@ def finding_close_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "finding_assess")
     form = CloseForm(
         request.POST or None,
-        people=signers_at(row.aircraft.operator, CERTIFIERS),
+        user=request.user,
         today=today(),
         initial={
-            "person": request.user.person_id,
             "on": today(),
             "cause": row.cause,
         },
     )
 
-    def save() -> Finding:
+    def save(proof: Proof) -> Finding:
         data = form.cleaned_data
         answer = data["reportable"]
         report = Reportability(answer == "yes", data["report_reason"])
         return finding_close(
             finding=row,
-            person=data["person"],
+            proof=proof,
             on=data["on"],
             cause=data["cause"],
             report=report if answer else None,
@@ -167,7 +166,8 @@ def finding_close_page(request: Request, pk: int) -> HttpResponse:
             at=now(),
         )
 
-    return _page(request, row, [form], save, "Close", "Closed")
+    send = partial(sent_signed, request)
+    return _page(request, row, [form], save, "Close", "Closed", send=send)
 
 
 @require_http_methods(METHODS)
@@ -281,15 +281,16 @@ def _page(
     request: Request,
     row: Finding,
     forms: Sequence[Form],
-    save: Callable[[], object],
+    save: Callable[..., object],
     heading: str,
     action: str,
     *,
+    send: Callable[[Form, Any], Any] = sent,
     placed: Placed | None = None,
 ) -> HttpResponse:
     """Save and go back to the finding, or the page with what is in the way."""
     invalid = [form for form in forms if not form.is_valid()]
-    if not invalid and sent(forms[0], save) and not forms[0].errors:
+    if not invalid and send(forms[0], save) and not forms[0].errors:
         messages.success(request, SAVED.format(number=row))
         return redirect("finding", row.pk)
     context: dict[str, Any] = {

@@ -20,12 +20,14 @@ from fleet.access import (
 )
 from fleet.clock import now, today
 from fleet.due import Counters
+from fleet.forms.signing import SIGNATURE
 from fleet.selectors.aircraft import aircraft_visible
 from fleet.selectors.history import history_of
+from fleet.services.signing import Proof
 from fleet.tables import csv_response
 from fleet.views.pages import query_without_page
 from fleet.views.requests import Request
-from fleet.views.sending import sent
+from fleet.views.sending import sent_signed
 from repairs.filters import RepairFilter
 from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
@@ -42,7 +44,7 @@ from repairs.selectors.maps import item_map_svg
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.repair_status import HEADER, repair_status
 from repairs.selectors.repairs import repair_around, repair_whole, repairs_listed
-from repairs.services.approvals import approvals_verified
+from repairs.selectors.signatures import approvals_verified
 from repairs.services.findings import standing_on
 from repairs.services.photographs import Photo
 from repairs.services.repair_entry import RECTIFIABLE, RepairEntry
@@ -108,7 +110,7 @@ def repair_new(request: Request) -> HttpResponse:
     form, answered, raised = _forms(request, said, bound=saving)
     refused = [one for one in (*answered, raised) if saving and not one.is_valid()]
     save = partial(_record, request, form, answered, raised)
-    if saving and not refused and (made := sent(form, save)):
+    if saving and not refused and (made := sent_signed(request, form, save)):
         messages.success(request, RECORDED.format(number=made))
         return redirect("repair", made.pk)
     context = {
@@ -117,6 +119,7 @@ def repair_new(request: Request) -> HttpResponse:
         "raised": raised,
         "groups": form.groups(),
         "inspection": group(raised, "New inspection requirement", raised.fields, True),
+        "signature": group(form, "Your signature", SIGNATURE),
     }
     return render(request, "repairs/repair_new.html", context)
 
@@ -140,7 +143,7 @@ def _forms(
     findings = findings_to_answer(aircraft, RECTIFIABLE, also)
     if bound:
         return (
-            RepairForm(said, request.FILES, **options),
+            RepairForm(said, request.FILES, user=request.user, **options),
             [AnsweredForm(said, finding=one, unit=unit) for one in findings],
             RaisedForm(said),
         )
@@ -156,7 +159,7 @@ def _forms(
         if one.pk == also:
             told.setdefault("place_entered", one.place_entered)
     return (
-        RepairForm(initial=first | told, **options),
+        RepairForm(initial=first | told, user=request.user, **options),
         [
             AnsweredForm(finding=one, unit=unit, initial={"answers": one.pk == also})
             for one in findings
@@ -170,6 +173,7 @@ def _record(
     form: RepairForm,
     answered: list[AnsweredForm],
     raised: RaisedForm,
+    proof: Proof,
 ) -> Repair:
     data = form.cleaned_data
     aircraft = data["aircraft"]
@@ -191,6 +195,7 @@ def _record(
                 base="release",
             ),
         ),
+        proof=proof,
         actor=request.user,
         at=now(),
     )

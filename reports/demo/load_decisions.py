@@ -10,6 +10,7 @@ from itertools import groupby
 from fleet.due import Counters as Amounts
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
+from fleet.services.signing import PROGRAM, Proof
 from repairs.services.assessing import (
     DataCited,
     Reportability,
@@ -73,25 +74,30 @@ def _decide_all(
         at=at,
         operator=loaded.operator,
         stream=stream_of(loaded.aircraft[msn]),
+        origin=PROGRAM,
     ) as w:
         for decision in decisions:
             document = decision.document
             finding_assess_write(
                 w,
                 finding=loaded.rows[decision.findings[0]],
-                person=loaded.people["engineer"],
+                proof=Proof.by_program(loaded.people["engineer"]),
                 on=decision.decided_on,
                 data=DataCited(
                     document.kind, document.reference, document.revision, document.page
                 ),
             )
-            loaded.rows[decision.key] = disposition_write(w, _entry(loaded, decision))
+            loaded.rows[decision.key] = disposition_write(
+                w,
+                _entry(loaded, decision),
+                proof=Proof.by_program(loaded.people[decision.decided_by]),
+            )
 
 
 def _assess_alone(loaded: Loaded, finding: DemoFinding, at: dt.datetime) -> None:
     finding_assess(
         finding=loaded.rows[finding.key],
-        person=loaded.people["engineer"],
+        proof=Proof.by_program(loaded.people["engineer"]),
         on=finding.found_on,
         data=DataCited("repair_manual", "ARD-52 SRM 53-10-01", "14", "p. 201"),
         actor=loaded.users["engineer"],
@@ -112,7 +118,6 @@ def _entry(loaded: Loaded, decision: DemoDisposition) -> DispositionEntry:
             document.kind, document.reference, document.page, document.revision
         ),
         reason=decision.statement,
-        decided_by=loaded.people[decision.decided_by],
         decided_on=decision.decided_on,
         at=amounts(decision.at),
         limit=Amounts(cycles=limits.get("cycles")),
@@ -154,7 +159,7 @@ def _close(
         report = REPORT if finding.cluster_count >= REPORTABLE_HOLES else NO_REPORT
     finding_close(
         finding=row,
-        person=loaded.people["certifier"],
+        proof=Proof.by_program(loaded.people["certifier"]),
         on=repair.released_on,
         cause=finding.cause,
         actor=loaded.users["certifier"],

@@ -11,6 +11,7 @@ from fleet.due import CalendarRule, months_later
 from fleet.due import Counters as Amounts
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
+from fleet.services.signing import Proof
 from fleet.units import measure_read
 from repairs.services.accomplishments import (
     accomplishment_record,
@@ -94,7 +95,12 @@ def _repair(
     entry = _answering(loaded, repair, _embodied(loaded, repair, findings))
     if requirement is not None:
         entry = replace(entry, new_requirement=_draft(loaded, requirement))
-    row = repair_record(entry=entry, actor=loaded.users["engineer"], at=at)
+    row = repair_record(
+        entry=entry,
+        proof=Proof.by_program(loaded.people["engineer"]),
+        actor=loaded.users["engineer"],
+        at=at,
+    )
     loaded.rows[repair.key] = row
     if requirement is not None:
         loaded.rows[requirement.key] = row.requirements.get()
@@ -280,6 +286,7 @@ def _accomplish(
         done_on=done.done_on,
         counters=amounts(done.at),
         result=done.result,
+        proof=Proof.by_program(loaded.people[done.performed_by]),
         done_by=loaded.people[done.performed_by],
         evidence=done.note,
     )

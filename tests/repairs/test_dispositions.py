@@ -13,15 +13,12 @@ from fleet.due import Counters
 from fleet.selectors.verify import problems
 from repairs.measured import Typed
 from repairs.models import Approval, Disposition, DuePoint, Evaluation
-from repairs.services.approvals import (
-    approval_agrees,
-    approval_sign,
-    content_of,
-)
+from repairs.selectors.signatures import approval_agrees, content_of
+from repairs.services.approvals import approval_sign
 from repairs.services.disposition_entry import DispositionEntry, Reviewed
 from repairs.services.dispositions import disposition_decide
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
-from tests.factories import NOW, authorise
+from tests.factories import NOW, authorise, program
 from tests.record_rows import (
     CRACK,
     FOUND,
@@ -35,19 +32,21 @@ pytestmark = pytest.mark.django_db
 AT = Counters(604_000, 10_080, 10_080)
 
 
-def decide(world, *findings, kind="accept", **changes) -> Disposition:
+def decide(world, *findings, kind="accept", by=None, **changes) -> Disposition:
     entry = {
         "aircraft": world.aircraft,
         "findings": findings or (assessed(world),),
         "kind": kind,
         "basis": MANUAL,
         "reason": "Within the manual's limits.",
-        "decided_by": world.assessor,
         "decided_on": FOUND,
         "at": AT,
     }
     return disposition_decide(
-        entry=DispositionEntry(**(entry | changes)), actor=world.engineer, at=NOW
+        entry=DispositionEntry(**(entry | changes)),
+        proof=program(by or world.assessor),
+        actor=world.engineer,
+        at=NOW,
     )
 
 
@@ -113,7 +112,7 @@ def test_every_objection_is_said_at_once(world):
 def test_a_deferral_is_certifying_staffs_and_has_a_limit(world):
     finding = assessed(world)
     with pytest.raises(ValidationError, match="has a deferral limit"):
-        decide(world, finding, kind="defer", decided_by=world.certifier)
+        decide(world, finding, kind="defer", by=world.certifier)
     limit = Counters(cycles=10_300)
     with pytest.raises(ValidationError, match="held no authorisation"):
         decide(world, finding, kind="defer", limit=limit)
@@ -123,9 +122,9 @@ def test_a_deferral_is_certifying_staffs_and_has_a_limit(world):
             finding,
             kind="defer",
             limit=Counters(cycles=10_080),
-            decided_by=world.certifier,
+            by=world.certifier,
         )
-    decide(world, finding, kind="defer", limit=limit, decided_by=world.certifier)
+    decide(world, finding, kind="defer", limit=limit, by=world.certifier)
     finding.refresh_from_db()
     assert finding.state == "deferred"
     due = DuePoint.objects.get()
@@ -139,7 +138,7 @@ def test_an_extension_keeps_the_original_date_and_moves_no_limit(world):
         finding,
         kind="defer",
         limit=Counters(cycles=10_300),
-        decided_by=world.certifier,
+        by=world.certifier,
     )
     later = FOUND + dt.timedelta(days=10)
     second = decide(
@@ -147,7 +146,7 @@ def test_an_extension_keeps_the_original_date_and_moves_no_limit(world):
         finding,
         kind="defer",
         limit=Counters(cycles=10_500),
-        decided_by=world.certifier,
+        by=world.certifier,
         decided_on=later,
         replaces=first,
     )
@@ -273,7 +272,7 @@ def sign(world, subject, meaning="approved", *, person=None, shown=None) -> Appr
     return approval_sign(
         subject=subject,
         meaning=meaning,
-        person=person or world.approver,
+        proof=program(person or world.approver),
         shown_digest=shown or digest(content_of(subject)),
         on=FOUND,
         actor=world.users["signatory"],

@@ -42,7 +42,7 @@ from repairs.services.evaluations import (
 from repairs.services.measuring import Measuring, measurement_record
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
-from tests.factories import FIXTURES, NOW, TODAY
+from tests.factories import FIXTURES, NOW, TODAY, program
 from tests.record_rows import FOUND, World, assessed, found, world_make
 
 pytestmark = pytest.mark.django_db
@@ -387,6 +387,7 @@ def blend_repair(world: World, finding: Finding, **changes: object) -> Repair:
     }
     return repair_record(
         entry=RepairEntry(**(entry | changes)),  # type: ignore[arg-type]
+        proof=program(world.certifier),
         actor=world.engineer,
         at=NOW,
     )

@@ -15,7 +15,7 @@ from fleet.selectors.verify import problems
 from repairs.measured import Typed
 from repairs.models import Approval, Finding, FindingQuestion, LimitCheck
 from repairs.plausibility import counter_questions
-from repairs.services.approvals import approval_agrees
+from repairs.selectors.signatures import approval_agrees
 from repairs.services.assessing import (
     Reportability,
     finding_assess,
@@ -28,7 +28,7 @@ from repairs.services.findings import (
     finding_relocate,
 )
 from repairs.services.measuring import Measuring, measurement_record
-from tests.factories import NOW
+from tests.factories import NOW, program
 from tests.record_rows import (
     CRACK,
     DATA,
@@ -260,7 +260,7 @@ def test_nobody_assesses_without_an_authorisation_valid_that_day(world):
     with pytest.raises(ValidationError, match="held no authorisation"):
         finding_assess(
             finding=found(world),
-            person=world.approver,
+            proof=program(world.approver),
             on=FOUND,
             data=DATA,
             actor=world.engineer,
@@ -329,7 +329,7 @@ def test_an_open_finding_is_not_closed(world):
     with pytest.raises(ValidationError, match="only a rectified finding"):
         finding_close(
             finding=assessed(world),
-            person=world.certifier,
+            proof=program(world.certifier),
             on=FOUND,
             cause="accidental",
             report=Reportability(False, "dent within limits"),

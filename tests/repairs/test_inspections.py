@@ -16,17 +16,19 @@ from repairs.models import (
     Repair,
     ZoneInspected,
 )
+from repairs.selectors.signatures import content_of
 from repairs.services.accomplishments import (
     accomplishment_record,
     subject_not_applicable,
     termination_verify,
 )
-from repairs.services.approvals import approval_sign, content_of
+from repairs.services.approvals import approval_sign
 from repairs.services.inspections import RequirementRefused, requirement_raise
 from repairs.services.reentry import ReentryRefused, requirement_rekey
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests import due_rows as make
 from tests.due_rows import AT, FIRST, TODAY, day, fly
+from tests.factories import program
 
 pytestmark = pytest.mark.django_db
 
@@ -129,6 +131,7 @@ def done(subject, cycles, on=DONE, *, result="no_finding", actor=None, **columns
         done_on=on,
         counters=Counters(cycles * 48, cycles, cycles),
         result=result,
+        proof=program(),
         **columns,
     )
 
@@ -230,7 +233,7 @@ def signed(calculated: Evaluation, meaning: str) -> None:
     approval_sign(
         subject=calculated,
         meaning=meaning,
-        person=signer,
+        proof=make.factories.program(signer),
         shown_digest=digest(content_of(calculated)),
         on=TODAY,
         actor=signer.user,
@@ -328,6 +331,7 @@ class TestDone:
                 done_on=dt.date(2025, 1, 2),
                 counters=Counters(),
                 result="finding",
+                proof=program(),
             )
         assert error.value.problems == [
             "2025-01-02 lies after today, 2025-01-01; record the inspection when it is "
@@ -353,6 +357,7 @@ class TestTermination:
     def test_it_stays_on_the_list_until_another_person_has_verified_it(self):
         one, two = make.user("certifier"), make.user("certifier")
         requirement = raised(repair(make.aircraft()), THRESHOLD)
+        make.factories.authorise(two.person, requirement.operator, "certify")
         subject = requirement.subjects.get()
         done(
             subject, 36_000, result="terminated", evidence="new fitting seen", actor=one
@@ -384,7 +389,12 @@ class TestTermination:
 
 def verify(subject, actor):
     termination_verify(
-        actor=actor, at=AT, subject=subject, on=day(9), evidence="part number read"
+        actor=actor,
+        at=AT,
+        subject=subject,
+        on=day(9),
+        evidence="part number read",
+        proof=program(actor.person),
     )
 
 

@@ -13,7 +13,7 @@ from repairs.models import Disposition, DuePoint, Finding, Repair
 from repairs.selectors.repair_status import HEADER
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
-from tests.factories import NOW, PASSWORD
+from tests.factories import NOW, PASSWORD, program, signed
 from tests.queries import assert_same_queries
 from tests.record_rows import CRACK, FOUND, assessed, found
 
@@ -61,7 +61,10 @@ def repaired(world, **changes) -> Repair:
         "released_by": world.certifier,
     }
     return repair_record(
-        entry=RepairEntry(**(entry | changes)), actor=world.engineer, at=NOW
+        entry=RepairEntry(**(entry | changes)),
+        proof=program(world.certifier),
+        actor=world.engineer,
+        at=NOW,
     )
 
 

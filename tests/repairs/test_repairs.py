@@ -24,7 +24,7 @@ from repairs.services.repair_entry import (
 )
 from repairs.services.repairs import repair_record, repair_remove
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
-from tests.factories import NOW
+from tests.factories import NOW, program
 from tests.record_rows import CRACK, FOUND, MANUAL, assessed, found
 
 pytestmark = pytest.mark.django_db
@@ -46,7 +46,10 @@ def record(world, **changes) -> Repair:
         "released_by": world.certifier,
     }
     return repair_record(
-        entry=RepairEntry(**(entry | changes)), actor=world.engineer, at=NOW
+        entry=RepairEntry(**(entry | changes)),
+        proof=program(world.certifier),
+        actor=world.engineer,
+        at=NOW,
     )
 
 
@@ -76,10 +79,10 @@ def test_a_repair_rectifies_the_finding_and_ends_its_deferral(world):
             kind="defer",
             basis=MANUAL,
             reason="next check",
-            decided_by=world.certifier,
             decided_on=FOUND,
             limit=Counters(cycles=10_300),
         ),
+        proof=program(world.certifier),
         actor=world.engineer,
         at=NOW,
     )
@@ -202,7 +205,7 @@ def test_release_is_by_an_authorised_person_on_stated_counters(world):
     with pytest.raises(ValidationError, match="hours and cycles at release"):
         record(world, at=Counters(cycles=10_080))
     with pytest.raises(ValidationError, match="held no authorisation"):
-        record(world, released_by=world.assessor)
+        record(world, released_by=world.assessor, release_reference="CRS 7")
     with pytest.raises(ValidationError, match="other than who performed"):
         record(world, performed_by=world.certifier, inspected_by=world.certifier)
 
@@ -283,7 +286,7 @@ def test_closing_needs_release_photograph_and_the_answer_on_reporting(world):
 def close(world, finding, report=None):
     return finding_close(
         finding=finding,
-        person=world.certifier,
+        proof=program(world.certifier),
         on=RELEASED,
         cause="fatigue",
         report=report,

@@ -19,6 +19,7 @@ from reports.due_list import DueQuery, due_list
 from reports.due_rows import HEADER, export_row
 from tests import due_rows as make
 from tests.due_rows import AT, FIRST, TODAY, day, fly
+from tests.factories import program
 
 pytestmark = pytest.mark.django_db
 LATER = AT + dt.timedelta(hours=3)
@@ -205,6 +206,7 @@ def record(requirement, on, cycles, at=AT):
         done_on=on,
         counters=Counters(1_200_600, cycles, cycles),
         result="no_finding",
+        proof=program(),
     )
 
 

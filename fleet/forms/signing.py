@@ -1,0 +1,51 @@
+"""The part of a form that shows who signs: the password, and the code, given again."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from django import forms
+
+from fleet.models import User
+
+SIGNATURE = ("password", "code")
+
+
+class CodeInput(forms.TextInput):
+    """A one-time code; like a password it is never sent back to the page."""
+
+    def __init__(self) -> None:
+        super().__init__(
+            {"autocomplete": "one-time-code", "autocapitalize": "none", "size": 12}
+        )
+
+    def get_context(self, name: str, value: Any, attrs: Any) -> dict[str, Any]:
+        return super().get_context(name, None, attrs)
+
+
+def password_field(label: str = "your password") -> forms.CharField:
+    """A password that is there already; its blanks count."""
+    return forms.CharField(
+        label=label,
+        strip=False,
+        widget=forms.PasswordInput(attrs={"autocomplete": "current-password"}),
+    )
+
+
+def code_field() -> forms.CharField:
+    return forms.CharField(
+        label="one-time code",
+        max_length=16,
+        widget=CodeInput(),
+        help_text="Six digits from your device, or a recovery code.",
+    )
+
+
+class SignatureForm(forms.Form):
+    """Fields at the end of a form that signs; the view proves what they say."""
+
+    def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
+        super().__init__(*args, **kwargs)
+        self.fields["password"] = password_field()
+        if user.second_factor_since is not None:
+            self.fields["code"] = code_field()
