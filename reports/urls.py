@@ -4,12 +4,17 @@ from __future__ import annotations
 
 from django.urls import path
 
-from reports.views import aircraft, density, due, overview, usage
+from reports.views import aircraft, density, due, overview, release, usage
 
 urlpatterns = [
     path("", overview.overview, name="overview"),
     path("aircraft/", aircraft.aircraft_list, name="aircraft_list"),
     path("aircraft/<int:pk>/", aircraft.aircraft, name="aircraft"),
+    path(
+        "aircraft/<int:pk>/before-release/",
+        release.before_release,
+        name="before_release",
+    ),
     path("aircraft/<int:pk>/usage/", usage.usage, name="usage"),
     path(
         "aircraft/<int:pk>/usage/<int:row_pk>/correct/",

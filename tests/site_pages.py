@@ -101,6 +101,10 @@ PAGES: dict[str, Page] = {
     "adopted_list": Page(),
     "adopted_new": Page(FORM, "value_adopt"),
     "adopted_confirm": Page(FORM, "value_confirm", key("adopted")),
+    "documents": Page(),
+    "document_applicability": Page(
+        FORM, "document_applicability_record", key("document")
+    ),
     "policies": Page(),
     "policy_new": Page(FORM, "policy_set"),
     "history": Page(action="history_read"),
@@ -145,6 +149,7 @@ PAGES: dict[str, Page] = {
     "disposition_sign": Page(FORM, "approval_sign", key("disposition")),
     "repair_sign": Page(FORM, "approval_sign", key("repair")),
     "evaluation_sign": Page(FORM, "approval_sign", key("evaluation")),
+    "before_release": Page(keys=aircraft),
     "usage": Page(keys=aircraft, sends="usage_record"),
     "usage_correct": Page(FORM, "usage_record", flown),
     "part_list": Page(),
