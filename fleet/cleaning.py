@@ -7,10 +7,16 @@ from typing import Any
 
 from django.apps import apps
 from django.core.exceptions import ValidationError
-from django.db import IntegrityError, models
+from django.db import IntegrityError, OperationalError, models
 
+BUSY = (
+    "The records were being written by others at the same moment and this was not "
+    "written; nothing is lost: send it again."
+)
 TAKEN = "There is one already, or someone else has just recorded it: {columns}."
 REFUSED = "The record was refused by the rule {rule}."
+WAITED = ("40P01", "40001", "55P03")
+"""PostgreSQL: deadlock found, serialization failure, lock not available."""
 CHECK_FAILED = "CHECK constraint failed: "
 TAKEN_COLUMNS = re.compile(
     r"Key \((?P<named>[^)]*)\)=.* already exists"
@@ -59,6 +65,32 @@ def refusal(error: IntegrityError) -> ValidationError:
         if constraint.name == rule:
             return ValidationError(str(constraint.violation_error_message), code=rule)
     return ValidationError(REFUSED.format(rule=rule), code="refused")
+
+
+def taken(row: models.Model, error: IntegrityError) -> models.Model | None:
+    """The row that already holds what this one was refused for."""
+    found = TAKEN_COLUMNS.search(str(error))
+    columns = (found["named"] or found["listed"]) if found else ""
+    bare = [column.strip().rsplit(".", 1)[-1] for column in columns.split(",")]
+    fields = {field.column: field.attname for field in row._meta.concrete_fields}
+    if not set(bare) <= set(fields):
+        return None
+    same = {fields[column]: getattr(row, fields[column]) for column in bare}
+    holds = [
+        rule.condition
+        for rule in row._meta.constraints
+        if isinstance(rule, models.UniqueConstraint)
+        and {row._meta.get_field(name).column for name in rule.fields} == set(bare)  # type: ignore[union-attr]
+    ]
+    rows = type(row)._default_manager.filter(**same)
+    return (rows.filter(*(x for x in holds if x)) if holds else rows).first()
+
+
+def busy(error: OperationalError) -> ValidationError | None:
+    """Words for two writings that waited for each other, or for one that waited too
+    long; None for anything else."""
+    waited = getattr(error.__cause__, "sqlstate", None) in WAITED
+    return ValidationError(BUSY) if waited or "is locked" in str(error) else None
 
 
 def _constraints() -> list[models.BaseConstraint]:

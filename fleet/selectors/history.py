@@ -9,6 +9,7 @@ from typing import Any
 
 from django.db import models
 
+from fleet.canonical import plain
 from fleet.models import HistoryItem
 
 # What a location's text already says; the entry keeps them, the page does not repeat.
@@ -22,6 +23,11 @@ FOLLOWS_FROM_PLACE = frozenset(
         "reader_version",
     )
 )
+JUST_DONE = "{row}: {what} by {who} on {at:%Y-%m-%d at %H:%M} UTC. {changes}"
+# Of a row that replaces another: what differs in any case.
+TELLS_NOTHING = frozenset(
+    {"id", "replaces_id", "revision", "number", "entered_at", "entered_by_id"}
+)
 
 
 @dataclass(frozen=True)
@@ -33,27 +39,75 @@ class Told:
     action_words: str
     changes: list[str]
     reason: str
+    entry: int
 
 
 def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
     """The newest entries that touched the row; one query."""
-    items = (
-        HistoryItem.objects.filter(
-            table=row._meta.db_table, first_pk__lte=row.pk, last_pk__gte=row.pk
-        )
-        .select_related("entry")
-        .order_by("-entry_id", "-number")[:limit]
+    items = _items_of(row).order_by("-entry_id", "-number")[:limit]
+    return [_one(item, _told(json.loads(item.changes))) for item in items]
+
+
+def changes_since(row: models.Model, entry: int) -> list[Told]:
+    """What entries after that one did to the row, oldest first. A row that replaced it,
+    as of what is never changed, is told by the columns in which it differs."""
+    told = []
+    for item in _items_of(row).filter(entry__gt=entry).order_by("entry_id", "number"):
+        changes = _told(json.loads(item.changes)) or _differing(row)
+        told.append(_one(item, changes))
+    if _replaces(row):
+        for later in type(row)._default_manager.filter(replaces=row.pk):
+            told += changes_since(later, entry)
+    return told
+
+
+def just_done(row: models.Model) -> str:
+    """The last thing done to the row, in a sentence; empty when nothing is known."""
+    last = next(iter(history_of(row, limit=1)), None)
+    if last is None:
+        return ""
+    return JUST_DONE.format(
+        row=row,
+        what=last.action_words,
+        who=last.actor_name,
+        at=last.at,
+        changes="; ".join(last.changes),
+    ).strip()
+
+
+def _items_of(row: models.Model) -> models.QuerySet[HistoryItem]:
+    return HistoryItem.objects.filter(
+        table=row._meta.db_table, first_pk__lte=row.pk, last_pk__gte=row.pk
+    ).select_related("entry")
+
+
+def _one(item: HistoryItem, changes: list[str]) -> Told:
+    return Told(
+        at=item.entry.at,
+        actor_name=item.entry.actor_name,
+        action_words=item.entry.action_words,
+        changes=changes,
+        reason=item.entry.reason,
+        entry=item.entry_id,
     )
-    return [
-        Told(
-            at=item.entry.at,
-            actor_name=item.entry.actor_name,
-            action_words=item.entry.action_words,
-            changes=_told(json.loads(item.changes)),
-            reason=item.entry.reason,
-        )
-        for item in items
-    ]
+
+
+def _replaces(row: models.Model) -> bool:
+    return any(field.name == "replaces" for field in row._meta.concrete_fields)
+
+
+def _differing(row: models.Model) -> list[str]:
+    """Of a new row: the columns in which it differs from the one it replaces."""
+    before = getattr(row, "replaces", None)
+    if before is None:
+        return []
+    names = (field.attname for field in row._meta.concrete_fields)
+    pairs = {
+        name: (plain(getattr(before, name)), plain(getattr(row, name)))
+        for name in names
+        if name not in TELLS_NOTHING
+    }
+    return _told({name: [a, b] for name, (a, b) in pairs.items() if a != b})
 
 
 def _told(changes: dict[str, list[Any]]) -> list[str]:

@@ -11,15 +11,16 @@ commits all of it together, or nothing.
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from contextvars import ContextVar
 from types import TracebackType
 from typing import Any, Self, TypeVar
 
-from django.db import IntegrityError, models, transaction
+from django.core.exceptions import ValidationError
+from django.db import IntegrityError, OperationalError, models, transaction
 
 from fleet.canonical import canonical, plain
-from fleet.cleaning import clean_row, refusal
+from fleet.cleaning import busy, clean_row, refusal, taken
 from fleet.digests import (
     append_only,
     entry_digest,
@@ -28,6 +29,9 @@ from fleet.digests import (
     run_digest,
 )
 from fleet.models import HistoryEntry, HistoryHead, HistoryItem, Operator, User
+from fleet.refusals import Refused
+from fleet.selectors.history import just_done
+from fleet.services.sending import changed_check, form_claim, form_written
 
 Row = TypeVar("Row", bound=models.Model)
 
@@ -35,6 +39,7 @@ PROGRAM = "Framebay"
 NESTED = "A service called another inside its own writing; pass the writing on instead."
 NOT_MANY = "Rows of {table} may change later, so they are written one by one."
 NOT_CHANGED = "Rows of {table} are never changed; write a new one that replaces it."
+CHANGED_MEANWHILE = "{row} is not what was read: {told}"
 SECRET = frozenset({"password"})
 
 _open: ContextVar[bool] = ContextVar("writing_open", default=False)
@@ -62,13 +67,23 @@ class Writing:
         self.stream, self.operator = stream, operator
         self.reason, self.origin = reason, origin
         self.items: list[HistoryItem] = []
+        self._held: dict[int, models.Model] = {}
+        self._creating: models.Model | None = None
 
     def __enter__(self) -> Self:
         if _open.get():
             raise RuntimeError(NESTED)
-        self._token = _open.set(True)
         self._atomic = transaction.atomic()
-        self._atomic.__enter__()
+        try:
+            self._atomic.__enter__()
+        except OperationalError as error:
+            raise busy(error) or error from error
+        self._token = _open.set(True)
+        try:
+            self._form = form_claim(self.at)
+        except BaseException as refused:
+            self._leave(refused)
+            raise
         return self
 
     def __exit__(
@@ -77,22 +92,43 @@ class Writing:
         error: BaseException | None,
         trace: TracebackType | None,
     ) -> None:
-        _open.reset(self._token)
         try:
             if error is None and self.items:
                 self._append()
         except BaseException as late:
-            self._atomic.__exit__(type(late), late, late.__traceback__)
+            self._leave(late)
             raise
-        self._atomic.__exit__(kind, error, trace)
+        self._leave(error)
         if isinstance(error, IntegrityError):
-            raise refusal(error) from error
+            raise self._refusal(error) from error
+        if isinstance(error, OperationalError) and (refused := busy(error)):
+            raise refused from error
+
+    def _leave(self, error: BaseException | None) -> None:
+        """Commit or roll back; what is rolled back leaves the form's key free."""
+        _open.reset(self._token)
+        if error is not None and (form := getattr(self, "_form", None)) is not None:
+            form.claimed = None
+        trace = error.__traceback__ if error else None
+        self._atomic.__exit__(type(error) if error else None, error, trace)
+
+    def _refusal(self, error: IntegrityError) -> ValidationError:
+        """The database's refusal; of what is taken, by whom and when."""
+        refused = refusal(error)
+        if refused.code == "taken" and self._creating is not None:
+            other = taken(self._creating, error)
+            told = just_done(other) if other is not None else ""
+            return Refused([*refused.messages, told]) if told else refused
+        return refused
 
     def create(self, row: Row) -> Row:
         """Check and insert one row."""
         self._stamp(row)
         clean_row(row)
+        self._creating = row
         row.save(force_insert=True)
+        self._creating = None
+        self._held[id(row)] = row
         self._note("created", row, {})
         return row
 
@@ -118,6 +154,7 @@ class Writing:
         table = row._meta.db_table
         if append_only(type(row)):
             raise RuntimeError(NOT_CHANGED.format(table=table))
+        self._hold(row, columns)
         changes = {}
         for name, value in columns.items():
             before = getattr(row, name)
@@ -139,7 +176,23 @@ class Writing:
 
     def locked(self, rows: models.QuerySet[Row], **key: Any) -> Row:
         """The row, fresh and held until the end of the writing."""
-        return rows.select_for_update().get(**key)
+        row = rows.select_for_update(no_key=True, of=("self",)).get(**key)
+        self._held[id(row)] = row
+        return row
+
+    def _hold(self, row: models.Model, columns: Iterable[str]) -> None:
+        """Hold a row that was read before the writing held it. What others changed in
+        between is taken over; a column that is to be changed is not changed twice."""
+        if id(row) in self._held:
+            return
+        now = type(row)._base_manager.select_for_update(no_key=True).get(pk=row.pk)
+        names = [field.attname for field in row._meta.concrete_fields]
+        differing = [name for name in names if getattr(row, name) != getattr(now, name)]
+        if not set(differing).isdisjoint(columns):
+            raise Refused([CHANGED_MEANWHILE.format(row=row, told=just_done(row))])
+        for name in differing:
+            setattr(row, name, getattr(now, name))
+        self._held[id(row)] = row
 
     def _stamp(self, row: models.Model) -> None:
         """Rows that say who entered them, and when, say what the entry says."""
@@ -166,7 +219,8 @@ class Writing:
         )
 
     def _append(self) -> None:
-        head = HistoryHead.objects.select_for_update().get(pk=1)
+        head = HistoryHead.objects.select_for_update(no_key=True).get(pk=1)
+        changed_check()
         before = (
             HistoryEntry.objects.filter(stream=self.stream)
             .order_by("-stream_sequence")
@@ -194,6 +248,7 @@ class Writing:
         HistoryItem.objects.bulk_create(self.items, batch_size=2_000)
         head.sequence, head.digest = entry.sequence, entry.digest
         head.save(update_fields=["sequence", "digest"])
+        form_written(self._form, entry)
 
 
 def _runs(rows: list[Row]) -> list[list[Row]]:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import uuid
 from collections.abc import Iterator
 from pathlib import Path
 
@@ -12,8 +13,10 @@ from django.test import Client, override_settings
 from django.urls import get_resolver, reverse
 
 from fleet.models import HistoryHead, User
+from fleet.services.sending import KEY_FIELD, SHOWN_FIELD
+from tests.forms import Forms
 from tests.one_of_each import OneOfEach, one_of_each_make
-from tests.site_pages import PAGES, PUBLIC, names, nothing
+from tests.site_pages import FORM, PAGES, PUBLIC, names, nothing
 
 pytestmark = pytest.mark.django_db
 
@@ -116,6 +119,22 @@ def test_no_page_has_script_or_style_within_itself(name, each, clients):
     assert "unsafe" not in allowed
     if not answer.streaming and page.looks:
         assert not INLINE.findall(answer.content.decode())
+
+
+@pytest.mark.parametrize("name", [n for n in CLOSED if PAGES[n].methods[0] == "get"])
+def test_every_form_carries_its_key_and_the_entry_it_was_read_at(name, each, clients):
+    page = PAGES[name]
+    role = sorted(page.roles_for("post" if page.sends else "get"))[0]
+    client = clients[each.world.users[role].pk]
+    answer = client.get(reverse(name, kwargs=page.keys(each)))
+    if answer.streaming:
+        return
+    forms = Forms(answer.content.decode()).posted
+    assert page.kind != FORM or len(forms) > 1, "sign-out is on every page"
+    for action, fields in forms:
+        assert uuid.UUID(fields[KEY_FIELD]), action
+        assert int(fields[SHOWN_FIELD]) == HistoryHead.objects.get().sequence
+    assert len({fields[KEY_FIELD] for _, fields in forms}) == len(forms)
 
 
 @pytest.mark.parametrize("name", OWN)
