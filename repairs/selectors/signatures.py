@@ -24,6 +24,7 @@ from repairs.models import (
     Repair,
     Substantiation,
 )
+from repairs.selectors.substantiation_content import substantiation_content
 
 Subject = (
     Disposition | Evaluation | Repair | Finding | Substantiation | Accomplishment
@@ -48,13 +49,6 @@ ROWS_OF: dict[type[Subject], tuple[tuple[str, str, str], ...]] = {
         ("findings", "finding_rows", "pk"),
         ("layers", "layers", "number"),
         ("fasteners", "fasteners", "number"),
-    ),
-    Substantiation: (
-        ("findings", "finding_rows", "pk"),
-        ("neighbours", "neighbours", "pk"),
-        ("cases", "cases", "number"),
-        ("effects", "effects", "pk"),
-        ("documents", "documents", "pk"),
     ),
 }
 """Rows that belong to a record: their name in the text, where they are, their order."""
@@ -188,6 +182,8 @@ def _signature(row: Approval, identity: str) -> dict[str, object]:
 
 
 def _content(subject: Subject, measurement: int | None) -> dict[str, object]:
+    if isinstance(subject, Substantiation):
+        return substantiation_content(subject)
     content: dict[str, object] = {"record": _columns(subject)}
     for name, rows, order in ROWS_OF.get(type(subject), ()):
         content[name] = _rows(getattr(subject, rows).order_by(order))
@@ -220,7 +216,10 @@ def _columns(row: object) -> dict[str, object]:
 
 
 def _still_open(row: object) -> frozenset[str]:
-    """Of a finding only what was seen is signed: the cause may be found later."""
+    """Of a finding only what was seen is signed: the cause may be found later; and a
+    repair's folder may be made after its release."""
+    if isinstance(row, Repair):
+        return frozenset({"substantiation_id"})
     return frozenset({"cause"}) if isinstance(row, Finding) else frozenset()
 
 

@@ -38,6 +38,10 @@ from repairs.selectors.signatures import (
     signed_text,
 )
 from repairs.services.authority import authorised, operator_on
+from repairs.services.substantiation_signing import (
+    substantiation_sign_check,
+    substantiation_signed,
+)
 
 SCOPES: dict[str, tuple[AuthorisationScope, ...]] = {
     Meaning.PREPARED: (AuthorisationScope.ASSESS, AuthorisationScope.CHECK,
@@ -56,6 +60,8 @@ SCOPES: dict[str, tuple[AuthorisationScope, ...]] = {
 }  # fmt: skip
 APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 JUDGING = (Meaning.CHECKED, *APPROVING)
+JUDGED_ELSEWHERE = (Finding, Accomplishment, Substantiation)
+"""Not judged by a second signature, or by rules of their own."""
 
 CHANGED_SINCE_SHOWN = (
     "{subject} has changed since the page was shown; read it again before signing."
@@ -105,9 +111,6 @@ def approval_sign(
     Refused when the record changed since, when the person lacks the authorisation that
     day, when the same person would judge own work, or when an evaluation is barred.
     """
-    content = content_of(subject)
-    if digest(content) != shown_digest:
-        raise ValidationError(CHANGED_SINCE_SHOWN.format(subject=subject))
     with Writing(
         actor=actor,
         action="approval_sign",
@@ -117,9 +120,13 @@ def approval_sign(
         reason=statement,
         origin=proof.how,
     ) as w:
+        rows = type(subject).objects.select_for_update(of=("self",))
+        held: Subject = rows.get(pk=subject.pk)
+        if digest(content_of(held)) != shown_digest:
+            raise ValidationError(CHANGED_SINCE_SHOWN.format(subject=held))
         return approval_write(
             w,
-            subject=subject,
+            subject=held,
             meaning=meaning,
             proof=proof,
             on=on,
@@ -153,10 +160,19 @@ def approval_write(
     if proof.day is not None:
         authorised(person=person, operator=operator, scopes=wanted, on=proof.day)
     authorisation = authorised(person=person, operator=operator, scopes=wanted, on=on)
+    signed = document or Signed()
+    if isinstance(subject, Substantiation):
+        substantiation_sign_check(
+            subject,
+            meaning=meaning,
+            person=person,
+            on=on,
+            statement=statement,
+            document=signed,
+        )
     _another_person(subject, meaning, person)
     if isinstance(subject, Evaluation) and meaning in APPROVING:
         _approvable(subject)
-    signed = document or Signed()
     row = Approval(
         operator=operator,
         meaning=meaning,
@@ -178,12 +194,15 @@ def approval_write(
     )
     row.content = signed_text(row, subject, identity=proof.how)
     row.content_digest = digest(row.content)
-    return w.create(row)
+    w.create(row)
+    if isinstance(subject, Substantiation):
+        substantiation_signed(w, subject, meaning=meaning, on=on)
+    return row
 
 
 def _another_person(subject: Subject, meaning: str, person: Person) -> None:
     """Who judges did not make, and who approves did not check."""
-    if meaning not in JUDGING or isinstance(subject, Finding | Accomplishment):
+    if meaning not in JUDGING or isinstance(subject, JUDGED_ELSEWHERE):
         return
     hands = set(
         subject.approvals.filter(
@@ -193,8 +212,6 @@ def _another_person(subject: Subject, meaning: str, person: Person) -> None:
     maker = subject.entered_by
     if isinstance(subject, Disposition):
         hands.add(subject.decided_by_id)
-    elif isinstance(subject, Substantiation):
-        hands.add(subject.prepared_by_id)
     elif maker is not None and maker.person_id is not None:
         hands.add(maker.person_id)
     if person.pk in hands:

@@ -10,8 +10,7 @@ from collections.abc import Mapping
 from datetime import date
 from typing import Any
 
-from fleet.due import Anchor, Base, Counter, Counters, Due, Limit
-from fleet.intervals import due_from
+from fleet.due import Counters, Due
 from fleet.services.history import Writing
 from repairs.models import (
     Accomplishment,
@@ -22,16 +21,18 @@ from repairs.models import (
     Event,
     Repair,
     RequirementSubject,
+    Substantiation,
     SurveyItem,
 )
 
-Origin = RequirementSubject | Disposition | Repair | Event | SurveyItem
+Origin = RequirementSubject | Disposition | Repair | Event | Substantiation | SurveyItem
 
 ORIGIN_COLUMN: Mapping[type[Any], str] = {
     RequirementSubject: "subject",
     Disposition: "disposition",
     Repair: "repair",
     Event: "event",
+    Substantiation: "substantiation",
     SurveyItem: "survey_item",
 }
 NO_LIMIT = "no {what} is recorded for {number}"
@@ -155,27 +156,4 @@ def replacement_due_open(w: Writing, *, repair: Repair, opened_on: date) -> DueP
         due=due,
         opened_on=opened_on,
         basis="category C, time-limited: replace by this limit",
-    )
-
-
-def stage_clock_open(
-    w: Writing, *, repair: Repair, stage: int, months: int, source: str
-) -> DuePoint:
-    """The clock of the next approval stage: the policy's months from release, or before
-    the temporary limit that stage 1 approved, counted in the aircraft's cycles."""
-    temporary = repair.temporary_limit_cycles
-    if temporary is not None:
-        due = Due(Counters(cycles=temporary))
-        basis = f"stage {stage} before the approved temporary limit of {temporary:,} FC"
-    else:
-        release = {Base.RELEASE: Anchor(on=repair.released_on)}
-        due = due_from([Limit(Counter.MONTHS, months, Base.RELEASE)], release)
-        basis = f"stage {stage} within {months} months of release ({source})"
-    return due_point_open(
-        w,
-        origin=repair,
-        kind=DueKind.STAGE_CLOCK,
-        due=due,
-        opened_on=repair.released_on or repair.entered_at.date(),
-        basis=basis,
     )
