@@ -5,7 +5,16 @@ from __future__ import annotations
 from django.contrib.auth.decorators import login_not_required
 from django.urls import path
 
-from fleet.views import aircraft, history, parts, people, policies, sessions, types
+from fleet.views import (
+    aircraft,
+    documents,
+    history,
+    parts,
+    people,
+    policies,
+    sessions,
+    types,
+)
 
 urlpatterns = [
     path("sign-in/", login_not_required(sessions.sign_in), name="sign_in"),
@@ -24,6 +33,12 @@ urlpatterns = [
     path("people/roles/<int:pk>/end/", people.role_end, name="membership_end"),
     path(
         "people/authorisations/new/", people.authorisation_new, name="authorisation_new"
+    ),
+    path("documents/", documents.documents, name="documents"),
+    path(
+        "documents/<int:pk>/applicability/",
+        documents.document_applicability,
+        name="document_applicability",
     ),
     path("policies/", policies.policies, name="policies"),
     path("policies/new/", policies.policy_new, name="policy_new"),

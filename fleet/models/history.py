@@ -16,15 +16,20 @@ from fleet.models.people import Operator
 from fleet.scoping import ScopedQuerySet
 
 DONE = {
-    "add": "added", "answer": "answered", "assess": "assessed", "close": "closed",
+    "add": "added", "answer": "answered", "assess": "assessed",
+    "cancel": "cancelled", "close": "closed",
     "compare": "compared", "correct": "corrected", "create": "created",
-    "decide": "decided", "end": "ended",
-    "grant": "granted", "import": "imported", "install": "installed", "key": "keyed",
+    "decide": "decided", "determine": "determined", "do": "done",
+    "embody": "embodied", "end": "ended",
+    "grant": "granted", "import": "imported", "inspect": "inspected",
+    "install": "installed", "key": "keyed",
     "leave": "left", "link": "linked", "load": "loaded", "make": "made",
-    "match": "matched", "open": "opened", "publish": "published", "raise": "raised",
+    "match": "matched", "open": "opened", "plan": "planned",
+    "publish": "published", "raise": "raised", "reclassify": "reclassified",
     "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
-    "set": "set", "sign": "signed", "void": "voided",
+    "send": "sent", "set": "set", "sign": "signed", "start": "begun",
+    "supplement": "supplemented", "void": "voided",
 }  # fmt: skip
 """Last word of a service's name to what it did."""
 

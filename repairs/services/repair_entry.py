@@ -1,4 +1,4 @@
-"""A repair as handed over at release, and everything that may stand against it."""
+"""A repair as handed over, when it is planned and when it is released."""
 
 from __future__ import annotations
 
@@ -8,14 +8,7 @@ from dataclasses import dataclass, field
 
 from fleet.due import Counters
 from fleet.models import Aircraft, Material, Organisation, Person, SafeLifePart
-from repairs.models import (
-    Disposition,
-    Finding,
-    FindingState,
-    Repair,
-    RepairCategory,
-    RepairState,
-)
+from repairs.models import Disposition, Finding, FindingState, Repair, Substantiation
 from repairs.services.photographs import Photo
 from repairs.services.requirement_draft import RequirementDraft
 
@@ -27,30 +20,6 @@ RECTIFIABLE = (
     FindingState.RECTIFIED,
 )
 
-NEEDS_APPROVAL_DATA = (
-    "Name the approval data: document, revision and page; category {category} holds "
-    "by them."
-)
-NEEDS_COUNTERS = "Give flight hours and cycles at release, as on the release record."
-NEEDS_RELEASER = "Name who released it; only a repair from before our records may not."
-B_NEEDS_FOLLOW_UP = (
-    "A category B repair is recorded with its inspection requirement, or with the "
-    "approval stage that is still to come."
-)
-C_NEEDS_LIMIT = (
-    "A category C repair is recorded with its replacement limit: flight hours, cycles "
-    "or a date."
-)
-LIMIT_BEFORE_RELEASE = "The replacement limit lies at or before the release."
-REASON_FOR_NONE = "Say why no category applies."
-NOT_RECTIFIABLE = "{finding} is {state}; assess it before a repair answers it."
-OTHER_AIRCRAFT = "{row} is not on {aircraft}."
-SUPERSEDED_ALREADY = "{repair} is {state}; only an embodied repair is superseded."
-BLEND_NEEDS_THICKNESS = (
-    "A blend-out is recorded with the remaining thickness, the smallest measured."
-)
-RELEASED_BEFORE_FOUND = "Released on {released_on}, before {finding} was found."
-
 
 @dataclass(frozen=True, slots=True)
 class Answered:
@@ -60,6 +29,11 @@ class Answered:
     covers: bool
     damage_removed: str = "unknown"
     edge_margin_mm: float | None = None
+
+    @property
+    def answers(self) -> bool:
+        """Whether the damage is gone or lies under the repair."""
+        return self.covers or self.damage_removed == "yes"
 
 
 @dataclass(frozen=True, slots=True)
@@ -71,6 +45,34 @@ class Layer:
     thickness_mm: float | None = None
     material: Material | None = None
     batch: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Required:
+    """What the approved data ask for in one layer; and why another was fitted.
+
+    An answer to a difference has its reason, its document and who gives it.
+    """
+
+    material_entered: str
+    thickness_entered: str = ""
+    thickness_mm: float | None = None
+    material: Material | None = None
+    page: str = ""
+    reason: str = ""
+    document: str = ""
+    answered_by: Person | None = None
+
+    @property
+    def is_answered(self) -> bool:
+        words = self.reason.strip() and self.document.strip()
+        return bool(words) and self.answered_by is not None
+
+    @property
+    def answer(self) -> str:
+        if not self.is_answered:
+            return ""
+        return f"{self.reason.strip()} ({self.document.strip()})"
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,6 +88,24 @@ class Fastener:
 
 
 @dataclass(frozen=True, slots=True)
+class Step:
+    """One part of a repair that is done in several, and the option of the data."""
+
+    title: str
+    option: str = ""
+    done_on: dt.date | None = None
+    done_by: Person | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Lies:
+    """How the repair lies to an earlier one whose extent it meets: over it, apart."""
+
+    repair: Repair
+    how: str
+
+
+@dataclass(frozen=True, slots=True)
 class Data:
     """Approval data of a repair: a document and where in it."""
 
@@ -98,7 +118,10 @@ class Data:
 
 @dataclass(frozen=True, slots=True)
 class RepairEntry:
-    """A repair as released; a legacy one is from before our records."""
+    """A repair as planned (no release date) or as released.
+
+    A legacy one is from before our records: what is missing stays unknown.
+    """
 
     aircraft: Aircraft
     place_entered: str
@@ -106,7 +129,7 @@ class RepairEntry:
     description: str
     category: str
     approval_basis: str
-    released_on: dt.date
+    released_on: dt.date | None
     at: Counters = field(default_factory=Counters)
     category_reason: str = ""
     approval: Data | None = None
@@ -114,9 +137,17 @@ class RepairEntry:
     length_mm: float | None = None
     width_mm: float | None = None
     layers: Sequence[Layer] = ()
+    required: Sequence[Required] = ()
     fasteners: Sequence[Fastener] = ()
     findings: Sequence[Answered] = ()
+    steps: Sequence[Step] = ()
+    lies: Sequence[Lies] = ()
+    sealant: str = ""
+    protection: str = ""
+    work_order: str = ""
     disposition: Disposition | None = None
+    substantiation: Substantiation | None = None
+    inspection_required: bool | None = None
     element: str = ""
     element_label: str = ""
     surface: str = ""
@@ -143,72 +174,10 @@ class RepairEntry:
     new_requirement: RequirementDraft | None = None
     photographs: Sequence[Photo] = ()
 
-
-def repair_problems(entry: RepairEntry) -> list[str]:
-    """Everything that stands against recording it; a place or size never does."""
-    problems = [*_data_problems(entry), *_category_problems(entry)]
-    for answered in entry.findings:
-        problems += _finding_problems(entry, answered.finding)
-    for other in entry.supersedes:
-        if other.aircraft_id != entry.aircraft.pk:
-            problems.append(OTHER_AIRCRAFT.format(row=other, aircraft=entry.aircraft))
-        if other.state != RepairState.EMBODIED:
-            state = other.get_state_display()
-            problems.append(SUPERSEDED_ALREADY.format(repair=other, state=state))
-    return problems
-
-
-def _data_problems(entry: RepairEntry) -> list[str]:
-    if entry.legacy:
-        return []
-    problems = []
-    approval = entry.approval
-    if approval is None or not (approval.reference.strip() and approval.page.strip()):
-        category = RepairCategory(entry.category).label
-        problems.append(NEEDS_APPROVAL_DATA.format(category=category))
-    if entry.at.minutes is None or entry.at.cycles is None:
-        problems.append(NEEDS_COUNTERS)
-    if entry.released_by is None:
-        problems.append(NEEDS_RELEASER)
-    if entry.kind == "blend" and entry.remaining_thickness_mm is None:
-        problems.append(BLEND_NEEDS_THICKNESS)
-    return problems
-
-
-def _category_problems(entry: RepairEntry) -> list[str]:
-    category = entry.category
-    if category == RepairCategory.B and not (
-        entry.new_requirement is not None or entry.stage_reached in ("none", "1", "2")
-    ):
-        return [B_NEEDS_FOLLOW_UP]
-    if category == RepairCategory.NOT_APPLICABLE and not entry.category_reason.strip():
-        return [REASON_FOR_NONE]
-    if category != RepairCategory.C:
-        return []
-    limit, day = entry.replacement_limit, entry.replacement_limit_on
-    if limit == Counters() and day is None:
-        return [] if entry.legacy else [C_NEEDS_LIMIT]
-    early = (
-        _not_after(limit.minutes, entry.at.minutes)
-        or _not_after(limit.cycles, entry.at.cycles)
-        or (day is not None and day <= entry.released_on)
-    )
-    return [LIMIT_BEFORE_RELEASE] if early else []
-
-
-def _not_after(limit: int | None, now: int | None) -> bool:
-    return limit is not None and now is not None and limit <= now
-
-
-def _finding_problems(entry: RepairEntry, finding: Finding) -> list[str]:
-    problems = []
-    if finding.aircraft_id != entry.aircraft.pk:
-        problems.append(OTHER_AIRCRAFT.format(row=finding, aircraft=entry.aircraft))
-    if finding.state not in RECTIFIABLE:
-        state = finding.get_state_display()
-        problems.append(NOT_RECTIFIABLE.format(finding=finding, state=state))
-    if entry.released_on < finding.found_on:
-        problems.append(
-            RELEASED_BEFORE_FOUND.format(released_on=entry.released_on, finding=finding)
+    @property
+    def is_major(self) -> bool:
+        """As the substantiation or the disposition behind it says."""
+        return "major" in (
+            self.substantiation.scale if self.substantiation else "",
+            self.disposition.scale if self.disposition else "",
         )
-    return problems

@@ -20,7 +20,7 @@ from repairs.forms.repairs import RemoveForm
 from repairs.models import Repair
 from repairs.selectors.repairs import repair_whole
 from repairs.services.photographs import Photo, photographs_add
-from repairs.services.repairs import repair_remove
+from repairs.services.repair_ends import repair_remove
 
 METHODS = ["GET", "HEAD", "POST"]
 SAVED = "{number}: saved."

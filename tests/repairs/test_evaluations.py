@@ -381,6 +381,8 @@ def blend_repair(world: World, finding: Finding, **changes: object) -> Repair:
         "released_on": FOUND,
         "at": Counters(604_000, 10_080),
         "released_by": world.certifier,
+        "release_reference": "CRS-77",
+        "performed_by": world.assessor,
         "element": "skin",
         "remaining_thickness_mm": 1.25,
         "findings": (Answered(finding, covers=False, damage_removed="yes"),),

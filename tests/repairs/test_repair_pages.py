@@ -59,6 +59,8 @@ def repaired(world, **changes) -> Repair:
         "released_on": FOUND,
         "at": Counters(604_000, 10_080),
         "released_by": world.certifier,
+        "release_reference": "CRS-77",
+        "performed_by": world.assessor,
     }
     return repair_record(
         entry=RepairEntry(**(entry | changes)),

@@ -22,7 +22,8 @@ from repairs.services.repair_entry import (
     Layer,
     RepairEntry,
 )
-from repairs.services.repairs import repair_record, repair_remove
+from repairs.services.repair_ends import repair_remove
+from repairs.services.repairs import repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests.factories import NOW, program
 from tests.record_rows import CRACK, FOUND, MANUAL, assessed, found
@@ -44,6 +45,8 @@ def record(world, **changes) -> Repair:
         "released_on": RELEASED,
         "at": Counters(604_000, 10_080),
         "released_by": world.certifier,
+        "release_reference": "CRS-77",
+        "performed_by": world.assessor,
     }
     return repair_record(
         entry=RepairEntry(**(entry | changes)),
