@@ -8,6 +8,7 @@ WITHOUT_SOURCE = (
     "{what} has no source. Name the document, drawing or record it is from."
 )
 UNKNOWN_INPUT = "No method knows an input called {name!r}. Use one of: {known}."
+UNKNOWN_FORM = "No form is called {name!r}. Use one of: {known}."
 UNKNOWN_METHOD = "No method is called {name!r}. Use one of: {known}."
 WRONG_KIND = "Input {name} reads {read!r}; {expected} is expected."
 WRONG_UNIT = "Input {name} is in {read}; {expected} is expected. Convert it on entry."

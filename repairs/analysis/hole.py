@@ -18,6 +18,11 @@ from repairs.analysis import fatigue, intervals, panel_loads
 from repairs.analysis import hole_intensity as hi
 from repairs.analysis import residual_strength as rs
 from repairs.analysis import stress_intensity as si
+from repairs.analysis.bulging import (
+    BULGING_HANDBOOK,
+    bulging_handbook,
+    shell_parameter,
+)
 from repairs.analysis.crack_growth import WalkerLaw, grow_part_through
 from repairs.analysis.crack_path import (
     CrackPath,
@@ -175,8 +180,8 @@ class Hole:
         if self.radius is None:
             return flat
         whole = HalfLength((self.diameter + c) / 2)
-        parameter = si.shell_parameter(whole, self.radius, self.thickness)
-        return flat * si.bulging_handbook(parameter)
+        parameter = shell_parameter(whole, self.radius, self.thickness)
+        return flat * bulging_handbook(parameter)
 
     def strength(self, c: float) -> rs.Strength:
         """Return residual strength with one crack, on gross stress."""
@@ -301,7 +306,7 @@ def _write_strength(hole: Hole, path: CrackPath, note: Note, c: float) -> rs.Str
         hi.HOLE_SINGLE,
     )
     if hole.radius is not None:
-        note.step("", "bulging in F", "", None, "", si.BULGING_HANDBOOK)
+        note.step("", "bulging in F", "", None, "", BULGING_HANDBOOK)
     note.step(
         "K_max",
         "σ F √(π c)",

@@ -6,6 +6,11 @@ from dataclasses import dataclass
 
 from repairs.analysis import residual_strength as rs
 from repairs.analysis import stress_intensity as si
+from repairs.analysis.bulging import (
+    BULGING_HANDBOOK,
+    bulging_handbook,
+    shell_parameter,
+)
 from repairs.analysis.crack_growth import WalkerLaw, grow_part_through
 from repairs.analysis.crack_path import CrackPath, Start, write_law
 from repairs.analysis.inputs import Inputs
@@ -42,8 +47,8 @@ class Sheet:
         """Return the bulging factor [-], 1 for a flat sheet."""
         if self.radius is None:
             return 1.0
-        parameter = si.shell_parameter(HalfLength(a), self.radius, self.thickness)
-        return si.bulging_handbook(parameter)
+        parameter = shell_parameter(HalfLength(a), self.radius, self.thickness)
+        return bulging_handbook(parameter)
 
     def factor(self, a: float) -> float:
         """Return bulging times width factor [-]."""
@@ -114,7 +119,7 @@ def write_strength(sheet: Sheet, path: CrackPath, note: Note, a: float) -> rs.St
     width = si.centre_crack_secant(HalfLength(a), sheet.width)
     bulging = sheet.bulging(a)
     if sheet.radius is not None:
-        parameter = si.shell_parameter(HalfLength(a), sheet.radius, sheet.thickness)
+        parameter = shell_parameter(HalfLength(a), sheet.radius, sheet.thickness)
         note.step(
             "l",
             "a / √(R t)",
@@ -128,7 +133,7 @@ def write_strength(sheet: Sheet, path: CrackPath, note: Note, a: float) -> rs.St
             f"l = {parameter:.4f}",
             bulging,
             "-",
-            si.BULGING_HANDBOOK,
+            BULGING_HANDBOOK,
         )
     note.step(
         "F_w",

@@ -10,7 +10,7 @@ published for and refuses outside it.
 
 References
 ----------
-.. [1] USAF Damage Tolerant Design Handbook, section 11.3, Tables 11.3.10 to 11.3.13.
+.. [1] USAF Damage Tolerant Design Handbook, section 11.3.
 .. [2] Tada, Paris and Irwin, The Stress Analysis of Cracks Handbook.
 .. [3] Public university notes on fracture mechanics of aircraft structure.
 """
@@ -38,12 +38,18 @@ EDGE_TADA = Reference(
     "Tada, Paris and Irwin, edge crack in tension, in public university notes",
     Grade.QUOTED,
 )
-BULGING_HANDBOOK = Reference(
-    "USAF Damage Tolerant Design Handbook, Table 11.3.13 (Newman 1976)", Grade.PRINT
+EDGE_BENDING_TADA = Reference(
+    "Tada, Paris and Irwin, edge crack in bending, in the USAF Damage Tolerant Design "
+    "Handbook, section 11.3",
+    Grade.PRINT,
 )
-BULGING_FOLIAS = Reference(
-    "Folias fit for an axial crack in a cylinder; from memory, unverified",
-    Grade.MEMORY,
+EDGE_BENDING_QUARTIC = Reference(
+    "Edge crack in bending, quartic fit, in public university notes", Grade.QUOTED
+)
+DOUBLE_EDGE = Reference(
+    "Tada, Paris and Irwin, double edge crack in tension, in a public transcription; "
+    "the sign of its last term proved by the exact limit of a short ligament",
+    Grade.QUOTED,
 )
 
 
@@ -198,85 +204,95 @@ def edge_crack_tada(length: EdgeLength, width: float) -> float:
     return math.sqrt(math.tan(angle) / angle) * shape / math.cos(angle)
 
 
-def shell_parameter(half_length: HalfLength, radius: float, thickness: float) -> float:
-    """Return the shell parameter l = a/sqrt(R t) [-].
+def edge_crack_bending_polynomial(length: EdgeLength, width: float) -> float:
+    r"""Return F of an edge crack in bending as a quartic, on :math:`6M/(tW^2)` [1]_.
+
+    .. math:: F = 1.122 - 1.40x + 7.33x^2 - 13.08x^3 + 14.0x^4,\quad x = a/W
 
     Parameters
     ----------
-    half_length
-        Half-length a [mm].
-    radius
-        Shell radius R [mm].
-    thickness
-        Shell thickness t [mm].
+    length
+        Length a from the edge in tension [mm].
+    width
+        Full width W [mm].
 
     Returns
     -------
     float
-        l [-].
+        Factor F on the outer-fibre stress [-].
 
     Notes
     -----
-    Range R, t > 0.
+    Range a/W <= 0.6; up to 2.2 % above the Tada form.
 
     References
     ----------
-    .. [1] USAF Damage Tolerant Design Handbook, Table 11.3.13.
+    .. [1] See `EDGE_BENDING_QUARTIC`.
     """
-    return half_length / math.sqrt(radius * thickness)
+    x = within("Edge crack length over width", length / width, 0, 0.6, "quartic fit")
+    return 1.122 - 1.40 * x + 7.33 * x**2 - 13.08 * x**3 + 14.0 * x**4
 
 
-def bulging_handbook(parameter: float) -> float:
-    r"""Return the bulging factor of an axial crack, handbook form (default) [1]_.
+def edge_crack_bending_tada(length: EdgeLength, width: float) -> float:
+    r"""Return F of an edge crack in bending after Tada, on :math:`6M/(tW^2)` [1]_.
 
-    .. math:: F = \sqrt{1 + 0.52l + 1.29l^2 - 0.074l^3}
+    .. math::
+        F = \sqrt{\tfrac{2}{\pi x}\tan\tfrac{\pi x}{2}}\;
+        \frac{0.923 + 0.199(1-\sin(\pi x/2))^4}{\cos(\pi x/2)},\quad x = a/W
 
     Parameters
     ----------
-    parameter
-        l = a/sqrt(R t) [-].
+    length
+        Length a from the edge in tension [mm].
+    width
+        Full width W [mm].
 
     Returns
     -------
     float
-        Factor on K [-].
+        Factor F on the outer-fibre stress [-].
 
     Notes
     -----
-    Range 0 <= l <= 5 (longest crack of the comparison with linear shell forms).
-    4 to 11 % above the Folias form. Linear shell: too high for long cracks in thin
-    shells at working pressure. No credit for frames or tear straps.
+    Range 0 < a/W < 1; enforced to 0.95.
 
     References
     ----------
-    .. [1] See `BULGING_HANDBOOK`.
+    .. [1] See `EDGE_BENDING_TADA`.
     """
-    x = within("Shell parameter a/sqrt(R t)", parameter, 0, 5, "handbook bulging fit")
-    return math.sqrt(1 + 0.52 * x + 1.29 * x**2 - 0.074 * x**3)
+    x = within("Edge crack length over width", length / width, 1e-9, 0.95, "Tada")
+    angle = math.pi * x / 2
+    shape = 0.923 + 0.199 * (1 - math.sin(angle)) ** 4
+    return math.sqrt(math.tan(angle) / angle) * shape / math.cos(angle)
 
 
-def bulging_folias(parameter: float) -> float:
-    r"""Return the bulging factor of an axial crack, Folias fit (selectable) [1]_.
+def double_edge_crack(length: EdgeLength, width: float) -> float:
+    r"""Return F of two equal edge cracks facing each other, in tension [1]_.
 
-    .. math:: F = \sqrt{1 + 1.255l^2 - 0.0135l^4}
+    .. math::
+        F = \frac{1.122 - 0.561x - 0.205x^2 + 0.471x^3 - 0.190x^4}{\sqrt{1 - x}},
+        \quad x = 2a/W
 
     Parameters
     ----------
-    parameter
-        l = a/sqrt(R t) [-].
+    length
+        Length a of each crack from its edge [mm].
+    width
+        Full width W [mm].
 
     Returns
     -------
     float
-        Factor on K [-].
+        Factor F [-].
 
     Notes
     -----
-    Range 0 <= l <= 5.
+    Range 0 <= 2a/W < 1 (0.5 % stated); enforced to 0.99.
 
     References
     ----------
-    .. [1] See `BULGING_FOLIAS` (from memory, unverified).
+    .. [1] See `DOUBLE_EDGE`.
     """
-    x = within("Shell parameter a/sqrt(R t)", parameter, 0, 5, "Folias fit")
-    return math.sqrt(1 + 1.255 * x**2 - 0.0135 * x**4)
+    x = within("Both cracks over width", 2 * length / width, 0, 0.99, "Tada")
+    series = 1.122 - 0.561 * x - 0.205 * x**2 + 0.471 * x**3 - 0.190 * x**4
+    return series / math.sqrt(1 - x)

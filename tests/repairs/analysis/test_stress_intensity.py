@@ -12,6 +12,7 @@ import math
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+from scipy.integrate import quad
 
 from repairs.analysis import hole_intensity as hi
 from repairs.analysis import stress_intensity as si
@@ -108,28 +109,88 @@ def test_edge_crack_starts_at_the_half_plane_value():
     assert si.edge_crack_tada(EdgeLength(1e-6), 1.0) == pytest.approx(1.1215, rel=1e-3)
 
 
-def test_worked_cylinder_with_the_selectable_folias_form():
-    # p 8.6 psi, R 56, t 0.047, a 1.0 in; recomputed independently: 22.057.
-    radius, thickness, a = 56 * INCH, 0.047 * INCH, HalfLength(INCH)
-    stress = GrossStress(8.6e-3 * KSI * 56 / 0.047)
-    parameter = si.shell_parameter(a, radius, thickness)
-    assert parameter == pytest.approx(0.6164, abs=5e-5)
-    beta = si.bulging_folias(parameter)
-    k = si.intensity(beta, stress, a) / KSI_ROOT_INCH
-    assert k == pytest.approx(22.057, rel=1e-4)
+def bueckner(length: float, stress: object) -> float:
+    """F of an edge crack, W = 1, by Bueckner's weight function (from memory, 1 %).
+
+    K is the integral of stress times 2/sqrt(2 pi (a - x)) (1 + m1 u + m2 u^2), u =
+    1 - x/a, over the crack; x = a (1 - s^2) takes the root out.
+    """
+    m1 = 0.6147 + 17.1844 * length**2 + 8.7822 * length**6
+    m2 = 0.2502 + 3.2889 * length**2 + 70.0444 * length**6
+
+    def over(s: float) -> float:
+        return stress(length * (1 - s * s)) * (1 + m1 * s**2 + m2 * s**4)  # type: ignore[operator]
+
+    value, _ = quad(over, 0, 1)
+    return (
+        4
+        * length
+        * value
+        / math.sqrt(2 * math.pi * length)
+        / math.sqrt(math.pi * length)
+    )
 
 
-def test_handbook_bulging_worked_case():
-    # Shell parameter 0.5812: beta 1.3128, recomputed independently.
-    assert si.bulging_handbook(0.5812) == pytest.approx(1.3128, abs=5e-5)
+@pytest.mark.parametrize("ratio", [0.05, 0.1, 0.2, 0.3, 0.4, 0.5])
+def test_edge_cracks_agree_with_quadrature_of_a_weight_function(ratio):
+    a = EdgeLength(ratio)
+    tension = bueckner(ratio, lambda x: 1.0)
+    bending = bueckner(ratio, lambda x: 1 - 2 * x)
+    for form in (si.edge_crack_tada, si.edge_crack_polynomial):
+        assert form(a, 1.0) == pytest.approx(tension, rel=0.015)
+    for form in (si.edge_crack_bending_tada, si.edge_crack_bending_polynomial):
+        assert form(a, 1.0) == pytest.approx(bending, rel=0.025)
 
 
 @pytest.mark.parametrize(
-    ("parameter", "percent"), [(0.25, 5.9), (0.5, 9.5), (1, 10.5), (2, 6.7), (3, 4.2)]
+    ("ratio", "quartic", "tada"),
+    [(0.1, 1.0436, 1.0408), (0.3, 1.1219, 1.0978), (0.6, 1.9099, 1.8982)],
 )
-def test_handbook_bulging_is_above_folias_by_the_stated_percentage(parameter, percent):
-    forms = si.bulging_handbook(parameter) / si.bulging_folias(parameter)
-    assert 100 * (forms - 1) == pytest.approx(percent, abs=0.06)
+def test_edge_crack_in_bending_table(ratio, quartic, tada):
+    # Recomputed independently from the printed forms.
+    a = EdgeLength(ratio)
+    assert si.edge_crack_bending_polynomial(a, 1) == pytest.approx(quartic, abs=6e-5)
+    assert si.edge_crack_bending_tada(a, 1) == pytest.approx(tada, abs=6e-5)
+
+
+def test_edge_crack_in_bending_reaches_the_limit_of_a_short_ligament():
+    # K = 3.975 M / (W - a)^1.5 per unit thickness, textbook limit, from memory.
+    a = 0.95
+    k = si.edge_crack_bending_tada(EdgeLength(a), 1) * 6 * math.sqrt(math.pi * a)
+    assert k == pytest.approx(3.975 / (1 - a) ** 1.5, rel=0.02)
+
+
+def test_double_edge_crack_reaches_both_exact_limits():
+    # Half plane 1.1215; two deep cracks K = P/sqrt(pi c), c half of the ligament.
+    assert si.double_edge_crack(EdgeLength(0.0), 1) == pytest.approx(1.1215, rel=1e-3)
+    deep = 0.495
+    k = si.double_edge_crack(EdgeLength(deep), 1) * math.sqrt(math.pi * deep)
+    assert k == pytest.approx(1 / math.sqrt(math.pi * (0.5 - deep)), rel=0.01)
+
+
+@given(st.floats(0.01, 0.9))
+def test_double_edge_crack_lies_above_the_row_of_centre_cracks(share):
+    # A row of centre cracks cut at its lines of symmetry is a strip whose sides are
+    # held straight; freeing them raises K, from nothing at the tips' end to 12 %.
+    row = math.sqrt(math.tan(math.pi * share / 2) / (math.pi * share / 2))
+    found = si.double_edge_crack(EdgeLength(share / 2), 1.0)
+    assert row <= found * 1.005
+    assert found <= 1.1215 * row * 1.005
+
+
+@given(st.floats(0.01, 0.45), st.floats(1.001, 1.3))
+def test_a_longer_edge_crack_has_a_larger_k(ratio, more):
+    for form in (
+        si.edge_crack_tada,
+        si.edge_crack_bending_tada,
+        si.double_edge_crack,
+    ):
+        short, long = (
+            form(EdgeLength(a), 1.0 if form is not si.double_edge_crack else 2.0)
+            * math.sqrt(a)
+            for a in (ratio, ratio * more)
+        )
+        assert short < long
 
 
 @pytest.mark.parametrize(
@@ -186,8 +247,9 @@ def test_a_longer_centre_crack_has_a_larger_factor(a, more):
         lambda: hi.hole_single(EdgeLength(5), 60, 100),
         lambda: hi.hole_double(EdgeLength(45), 10, 100),
         lambda: hi.hole_double_rational(EdgeLength(60), 10, 1000),
-        lambda: si.bulging_handbook(5.1),
-        lambda: si.bulging_folias(math.nan),
+        lambda: si.edge_crack_bending_polynomial(EdgeLength(61), 100),
+        lambda: si.edge_crack_bending_tada(EdgeLength(96), 100),
+        lambda: si.double_edge_crack(EdgeLength(math.nan), 100),
     ],
 )
 def test_outside_its_range_a_solution_refuses(call):
