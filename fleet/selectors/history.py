@@ -4,10 +4,12 @@ from __future__ import annotations
 
 import datetime as dt
 import json
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from django.db import models
+from django.db.models import Q
 
 from fleet.canonical import plain
 from fleet.models import HistoryItem
@@ -44,7 +46,8 @@ class Told:
 
 def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
     """The newest entries that touched the row; one query."""
-    items = _items_of(row).order_by("-entry_id", "-number")[:limit]
+    items = HistoryItem.objects.filter(_names(row)).select_related("entry")
+    items = items.order_by("-entry_id", "-number")[:limit]
     return [_one(item, _told(json.loads(item.changes))) for item in items]
 
 
@@ -90,10 +93,6 @@ def _one(item: HistoryItem, changes: list[str]) -> Told:
         reason=item.entry.reason,
         entry=item.entry_id,
     )
-
-
-def _replaces(row: models.Model) -> bool:
-    return any(field.name == "replaces" for field in row._meta.concrete_fields)
 
 
 def _differing(row: models.Model) -> list[str]:

@@ -50,6 +50,7 @@ class Sending:
     shown: int | None = None
     first: SentForm | None = None
     about: Sequence[models.Model] = ()
+    blind: bool = False
     claimed: SentForm | None = None
     told_sent: bool = False
     told_changes_to: int = 0
@@ -103,10 +104,11 @@ def sending_first(sending: Sending) -> SentForm | None:
     return first if same and first.user_id == sending.user.pk else None  # type: ignore[union-attr]
 
 
-def form_about(rows: Sequence[models.Model]) -> None:
-    """The records that the form edits or decides on."""
+def form_about(rows: Sequence[models.Model], *, blind: bool = False) -> None:
+    """The records that the form edits or decides on. Of a second, blind entry is told
+    who changed the first and when, but no value."""
     if (sending := current.get()) is not None:
-        sending.about = rows
+        sending.about, sending.blind = rows, blind
 
 
 def form_claim(at: dt.datetime) -> Sending | None:
@@ -158,19 +160,16 @@ def changed_meanwhile() -> list[str]:
     if sending is None or sending.shown is None:
         return []
     problems = []
-    for row in sending.about:
-        told = changes_since(row, sending.shown)
-        problems += [CHANGED.format(row=row)] if told else []
+    for row, told in changes_since(sending.about, sending.shown):
+        problems.append(CHANGED.format(row=row))
         problems += [
             CHANGE.format(
                 at=one.at,
                 who=one.actor_name,
                 what=one.action_words,
-                changes="; ".join(one.changes),
+                changes="" if sending.blind else "; ".join(one.changes),
             ).strip()
             for one in told
         ]
-        sending.told_changes_to = max(
-            sending.told_changes_to, *(one.entry for one in told), 0
-        )
+        sending.told_changes_to = max(sending.told_changes_to, told[-1].entry)
     return problems

@@ -58,7 +58,11 @@ def aircraft_state(request: Request, pk: int) -> HttpResponse:
         initial={"from_on": today()},
     )
     service = {"aircraft": aircraft, "actor": request.user, "at": now()}
-    if sent(form, lambda: aircraft_set_state(**form.cleaned_data, **service)):
+    if sent(
+        form,
+        lambda: aircraft_set_state(**form.cleaned_data, **service),
+        about=[aircraft, *aircraft.spans.all()],
+    ):
         messages.success(request, STATE_SET)
         return redirect("aircraft", pk)
     context = {"form": form, "aircraft": aircraft}
@@ -78,7 +82,11 @@ def aircraft_period(request: Request, pk: int) -> HttpResponse:
         initial={name: getattr(before, name, None) for name in names},
     )
     service = {"aircraft": aircraft, "actor": request.user, "at": now()}
-    if sent(form, lambda: aircraft_period_open(**form.cleaned_data, **service)):
+    if sent(
+        form,
+        lambda: aircraft_period_open(**form.cleaned_data, **service),
+        about=[aircraft, *aircraft.periods.all()],
+    ):
         messages.success(request, PERIOD_OPENED)
         return redirect("aircraft", pk)
     context = {"form": form, "aircraft": aircraft}
@@ -102,7 +110,7 @@ def aircraft_opening(request: Request, pk: int) -> HttpResponse:
         else:
             opening_rekey(counters=counters, **service)
 
-    if sent(form, save):
+    if sent(form, save, about=[aircraft], blind=not first):
         messages.success(request, CORRECTED if first else AGREED)
         return redirect("aircraft", pk)
     context = {"form": form, "aircraft": aircraft, "first": first}

@@ -96,7 +96,9 @@ def part_on(request: Request, pk: int) -> HttpResponse:
         request.POST or None, operator=row.operator, initial={"on": today()}
     )
     service: dict[str, Any] = {"actor": request.user, "at": now(), "part": row}
-    if sent(form, lambda: part_install(**service, **form.service_columns())):
+    if sent(
+        form, lambda: part_install(**service, **form.service_columns()), about=[row]
+    ):
         messages.success(request, INSTALLED.format(part=row))
         return redirect("part", pk)
     return render(request, "fleet/part_install.html", {"form": form, "part": row})
@@ -113,7 +115,7 @@ def part_off(request: Request, pk: int) -> HttpResponse:
         initial |= {f"at_{x.value}": carrier.counters[x] for x in COUNTED}
     form = RemoveForm(request.POST or None, initial=initial)
     service: dict[str, Any] = {"actor": request.user, "at": now(), "part": row}
-    if sent(form, lambda: _remove(form, service)):
+    if sent(form, lambda: _remove(form, service), about=[row]):
         messages.success(request, REMOVED.format(part=row))
         return redirect("part", pk)
     return render(request, "fleet/part_remove.html", {"form": form, "part": row})

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 from django.contrib import messages
+from django.db.models import Model
 from django.forms import Form
 from django.http import HttpResponse
 from django.shortcuts import redirect, render
@@ -92,7 +94,7 @@ def role_end(request: Request, pk: int) -> HttpResponse:
         membership_end(membership=row, **given)
 
     title = f"End of {row.user}'s role, {row.get_role_display()}"
-    return _send(request, form, end, title, "End role")
+    return _send(request, form, end, title, "End role", about=[row])
 
 
 def _grant(
@@ -108,9 +110,17 @@ def _grant(
 
 
 def _send(
-    request: Request, form: Form, service: Any, title: str, action: str
+    request: Request,
+    form: Form,
+    service: Any,
+    title: str,
+    action: str,
+    about: Sequence[Model] = (),
 ) -> HttpResponse:
-    if sent(form, lambda: service(**form.cleaned_data, actor=request.user, at=now())):
+    def save() -> object:
+        return service(**form.cleaned_data, actor=request.user, at=now())
+
+    if sent(form, save, about=about):
         messages.success(request, "Recorded.")
         return redirect("people")
     context = {"form": form, "title": title, "action": action}

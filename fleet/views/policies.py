@@ -42,12 +42,15 @@ def policy_new(request: Request) -> HttpResponse:
     first = {"key": request.GET.get("key", ""), "effective_from": today()}
     form = PolicyForm(request.POST or None, operators=operators, initial=first)
 
-    def save() -> Policy:
+    before = None
+    if form.is_valid():
         given = form.cleaned_data
         before = policy_to_replace(given["operator"], given["key"])
+
+    def save() -> Policy:
         return policy_set(**given, replaces=before, actor=request.user, at=now())
 
-    if sent(form, save):
+    if sent(form, save, about=[before] if before else []):
         messages.success(request, "The policy is recorded.")
         return redirect("policies")
     return render(request, "fleet/policy_new.html", {"form": form})

@@ -22,20 +22,29 @@ LOCKED = (
 LOCKED_FOR_GOOD = "Too many wrong passwords; an administrator lets you go on."
 
 
-def sent(form: Form, save: Callable[[], object], *, about: Sequence[Model] = ()) -> Any:
+def sent(
+    form: Form,
+    save: Callable[[], object],
+    *,
+    about: Sequence[Model] = (),
+    blind: bool = False,
+) -> Any:
     """What `save` made (True if nothing), or None: then the form says why not.
 
     `about` are the records that the form edits or decides on: when one of them changed
-    after its page was read, nothing is written and the form says who changed what.
+    after its page was read, nothing is written and the form says who changed what; a
+    `blind` second entry is not told the first one's values.
     """
+    form_about(about, blind=blind)
     if not form.is_valid():
+        if form.is_bound and (told := changed_meanwhile()):
+            form.add_error(None, told)
         return None
-    form_about(about)
     try:
         made = save()
     except ValidationError as error:
         if not isinstance(error, Changed) and (told := changed_meanwhile()):
-            form.add_error(None, told)  # type: ignore[arg-type]  # a list will do
+            form.add_error(None, told)
         for field, errors in error.update_error_dict({}).items():
             known = field in form.fields and field != NON_FIELD_ERRORS
             form.add_error(field if known else None, errors)

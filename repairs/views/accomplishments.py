@@ -72,7 +72,9 @@ def accomplishment_new(request: Request, pk: int, subject_pk: int) -> HttpRespon
         people=people_at([operator]),
         initial=_initial(subject) | {"done_by": request.user.person_id},
     )
-    made = sent_signed(request, form, partial(_record, request, subject, form))
+    save = partial(_record, request, subject, form)
+    about = [subject, *subject.accomplishments.all()]
+    made = sent_signed(request, form, save, about=about)
     if made:
         _told(request, made)
         return redirect("requirement", pk)
@@ -99,7 +101,7 @@ def accomplishment_correct(request: Request, pk: int) -> HttpResponse:
         initial=model_to_dict(row),
     )
     save = partial(_record, request, subject, form, replaces=row)
-    made = sent_signed(request, form, save)
+    made = sent_signed(request, form, save, about=[row, subject])
     if made:
         _told(request, made)
         return redirect("requirement", subject.requirement_id)
@@ -179,6 +181,7 @@ def termination_check(request: Request, pk: int, subject_pk: int) -> HttpRespons
             on=today(),
             evidence=form.cleaned_data["evidence"],
         ),
+        about=[subject],
     )
     if done:
         messages.success(request, VERIFIED)
@@ -205,7 +208,7 @@ def subject_new(request: Request, pk: int) -> HttpResponse:
         service: dict[str, Any] = {"actor": request.user, "at": now()}
         return subject_add(**service, **data, requirement=requirement, applies=applies)
 
-    if sent(form, save):
+    if sent(form, save, about=[requirement, *requirement.subjects.all()]):
         return redirect("requirement", pk)
     context = {"form": form, "requirement": requirement}
     return render(request, "repairs/subject_new.html", context)
@@ -231,7 +234,7 @@ def sisters_new(request: Request, pk: int) -> HttpResponse:
         sisters=sisters,
         initial=initial,
     )
-    made = sent(form, lambda: _ask(request, finding, form))
+    made = sent(form, lambda: _ask(request, finding, form), about=[finding])
     if made:
         text = ASKED.format(number=made.number, count=made.subjects.count())
         messages.success(request, text)

@@ -72,6 +72,8 @@ def adopted_confirm(request: Request, pk: int) -> HttpResponse:
         lambda: value_confirm(
             adopted=row, actor=request.user, at=now(), **form.cleaned_data
         ),
+        about=[row],
+        blind=True,
     )
     if made:
         messages.success(request, "Confirmed: evaluations made from now on use it.")

@@ -56,7 +56,9 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         user=request.user,
         initial={"shown_digest": digest(content)},
     )
-    if made := sent_signed(request, form, partial(_sign, request, subject, form)):
+    about = [subject, *subject.approvals.all()]
+    save = partial(_sign, request, subject, form)
+    if made := sent_signed(request, form, save, about=about):
         meaning = made.get_meaning_display()
         messages.success(request, SIGNED.format(number=subject, meaning=meaning))
         return redirect(what, pk)

@@ -53,8 +53,10 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
         initial=_initial(request, row),
     )
     raised = RaisedForm(request.POST or None, initial={"area": row.place_text})
+    also = form.cleaned_data.get("also", ()) if form.is_valid() else ()
+    save = partial(_decide, request, row, form, raised)
     if raised.is_valid() and (
-        made := sent_signed(request, form, partial(_decide, request, row, form, raised))
+        made := sent_signed(request, form, save, about=[row, *also])
     ):
         messages.success(request, DECIDED.format(number=made))
         return redirect("disposition", made.pk)

@@ -67,7 +67,7 @@ def _new(request: Request, subject: Subject) -> HttpResponse:
             subject=subject, choice=choice, as_of=today(), actor=request.user, at=now()
         )
 
-    if made := sent(form, make):
+    if made := sent(form, make, about=[subject]):
         return redirect("evaluation", pk=made.pk)
     prepared = evaluation_prepare(
         subject=subject, choice=choice_from(subject), as_of=today()

@@ -99,8 +99,9 @@ def finding_measure(request: Request, pk: int) -> HttpResponse:
         entry_unit=row.aircraft.variant.aircraft_type.entry_unit,
     )
     save = partial(_measure, request, row, form, dimensions)
+    both = [form, dimensions]
     return _page(
-        request, row, [form, dimensions], save, "Measure", "Record the measurement"
+        request, row, both, save, "Measure", "Record the measurement", adds=True
     )
 
 
@@ -215,7 +216,7 @@ def finding_photographs(request: Request, pk: int) -> HttpResponse:
             shown=row, photos=photos_of(form), actor=request.user, at=now()
         )
 
-    return _page(request, row, [form], save, "Photographs", "Add them")
+    return _page(request, row, [form], save, "Photographs", "Add them", adds=True)
 
 
 @require_POST
@@ -285,12 +286,14 @@ def _page(
     heading: str,
     action: str,
     *,
-    send: Callable[[Form, Any], Any] = sent,
+    send: Callable[..., Any] = sent,
     placed: Placed | None = None,
+    adds: bool = False,
 ) -> HttpResponse:
     """Save and go back to the finding, or the page with what is in the way."""
     invalid = [form for form in forms if not form.is_valid()]
-    if not invalid and send(forms[0], save) and not forms[0].errors:
+    about = [] if adds else [row]
+    if not invalid and send(forms[0], save, about=about) and not forms[0].errors:
         messages.success(request, SAVED.format(number=row))
         return redirect("finding", row.pk)
     context: dict[str, Any] = {

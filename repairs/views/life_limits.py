@@ -36,6 +36,8 @@ def life_limit_again(request: Request, pk: int) -> HttpResponse:
         lambda: life_limit_rekey(
             actor=request.user, at=now(), limit=limit, **form.cleaned_data
         ),
+        about=[limit],
+        blind=True,
     )
     if made:
         text = (AGREED if made.agrees else DIFFERS).format(number=limit.part_number)

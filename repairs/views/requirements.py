@@ -194,6 +194,8 @@ def requirement_again(request: Request, pk: int) -> HttpResponse:
             limits=form.entries(),
             applicability=form.subjects(),
         ),
+        about=[row],
+        blind=True,
     )
     if made:
         text = AGREED if made.agrees else DIFFERS

@@ -105,6 +105,7 @@ def usage_correction(request: Request, pk: int, row_pk: int) -> HttpResponse:
             source=form.cleaned_data["source"],
             reason=form.cleaned_data["reason"],
         ),
+        about=[row],
     )
     context: dict[str, Any] = {"form": form, "row": row, "aircraft": aircraft}
     if done and before is not None:
