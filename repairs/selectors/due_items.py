@@ -18,12 +18,14 @@ from repairs.models import (
     InspectionRequirement,
     Repair,
     RequirementState,
+    Substantiation,
     SurveyItem,
 )
 
 UNVERIFIED = "unverified: awaits second keying"
 INTERIM = "interim: from an unapproved calculation"
 UNANSWERED = "awaits an answer"
+NEXT_STAGE = "approval data of the next stage"
 CLAIMED = "terminating action awaits verification"
 
 
@@ -54,7 +56,7 @@ def due_of(point: DuePoint) -> Due:
 
 
 def points_with_words(points: QuerySet[DuePoint]) -> QuerySet[DuePoint]:
-    """The points with all that `point_item` reads; three queries in all."""
+    """The points with all that `point_item` reads; five queries at most."""
     return points.select_related(
         "aircraft",
         "part__part_number",
@@ -66,7 +68,11 @@ def points_with_words(points: QuerySet[DuePoint]) -> QuerySet[DuePoint]:
         "disposition",
         "survey_item__survey",
         "survey_item__zone",
-    ).prefetch_related("disposition__finding_rows__finding__zone")
+        "substantiation",
+    ).prefetch_related(
+        "disposition__finding_rows__finding__zone",
+        "substantiation__finding_rows__finding__zone",
+    )
 
 
 def point_item(point: DuePoint) -> Item:
@@ -76,6 +82,8 @@ def point_item(point: DuePoint) -> Item:
         return _deferral(point, point.disposition)
     if point.survey_item is not None:
         return _survey(point, point.survey_item)
+    if point.substantiation is not None:
+        return _folder(point, point.substantiation)
     assert point.repair is not None
     return _repair(point, point.repair)
 
@@ -150,13 +158,28 @@ def _damage(finding: Finding) -> str:
     return f"{finding.get_damage_type_display()}, {where}"
 
 
+def _folder(point: DuePoint, folder: Substantiation) -> Item:
+    """Damage that stays unrepaired while its approval is not complete."""
+    rows = [row for row in folder.finding_rows.all() if not row.withdrawn]
+    findings = [row.finding for row in rows]
+    told = ", ".join(f"{x.number} {_damage(x)}" for x in findings)
+    return Item(
+        kind=point.kind,
+        item=f"{folder.number} {folder.title}: {told}",
+        action=NEXT_STAGE,
+        basis=point.basis,
+        address=("substantiation", folder.pk),
+        zone=_zone(findings[0]) if findings else "",
+    )
+
+
 def _repair(point: DuePoint, repair: Repair) -> Item:
     clock = point.kind == DueKind.STAGE_CLOCK
     where = repair.place_text or repair.place_entered
     return Item(
         kind=point.kind,
         item=f"{repair.number} {repair.get_kind_display()}, {where}",
-        action="approval data of the next stage" if clock else "replace",
+        action=NEXT_STAGE if clock else "replace",
         basis=point.basis,
         address=("repair", repair.pk),
         zone=_zone(repair),

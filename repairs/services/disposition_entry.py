@@ -13,11 +13,11 @@ from repairs.models import (
     DispositionKind,
     Evaluation,
     Finding,
-    FindingState,
     InspectionRequirement,
     LimitCheck,
     Repair,
     RequirementState,
+    Substantiation,
 )
 from repairs.services.finding_guards import (
     DECIDABLE,
@@ -59,6 +59,7 @@ CREW_NEEDED = (
     "Say on which day the crew was informed of the deferral; it is not before the day "
     "of the find, {found_on}, nor after the decision."
 )
+NOT_COVERED = "{folder} does not cover {finding}; add it there, or cite another one."
 STALE_REPLACES = "{replaced} was replaced by {by} already; decide from that one."
 NOT_THE_FINDINGS = "{basis} does not belong to a finding of this disposition."
 
@@ -114,6 +115,7 @@ class DispositionEntry:
     limit_checks: Sequence[LimitCheck] = ()
     neighbours: Sequence[Reviewed] = ()
     replaces: Disposition | None = None
+    substantiation: Substantiation | None = None
     requirement: InspectionRequirement | None = None
     new_requirement: RequirementDraft | None = None
 
@@ -148,7 +150,18 @@ def decision_problems(
         )
     if entry.kind == K.DEFER:
         problems += _deferral_problems(entry, findings)
+    problems += _folder_problems(entry, findings)
     return problems + _limit_problems(entry) + _chain_problems(entry, findings)
+
+
+def _folder_problems(entry: DispositionEntry, findings: Sequence[Finding]) -> list[str]:
+    folder = entry.substantiation
+    if folder is None:
+        return []
+    covered = folder.finding_rows.filter(withdrawn=False).values_list("finding_id")
+    keys = {key for (key,) in covered}
+    left_out = [finding for finding in findings if finding.pk not in keys]
+    return [NOT_COVERED.format(folder=folder, finding=one) for one in left_out]
 
 
 def applies_to(requirement: InspectionRequirement, aircraft: Aircraft) -> bool:

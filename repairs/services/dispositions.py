@@ -40,11 +40,15 @@ from repairs.services.due_points import deferral_due_open, due_points_close
 from repairs.services.finding_guards import STEPS
 from repairs.services.inspections import requirement_raise_within
 from repairs.services.reports import finding_questions_write
+from repairs.services.stage_clocks import (
+    disposition_clock_follow,
+    findings_clocks_close,
+)
 
 INSPECTED_BY = "{reason} Inspection: {requirement}."
 AS_ENTERED = (
     "aircraft", "replaces", "kind", "scale", "scale_reason", "category", "decided_on",
-    "limit_on", "crew_informed_on",
+    "limit_on", "crew_informed_on", "substantiation",
 )  # fmt: skip
 DECIDED = "{disposition} decided: {kind}"
 CLOSED_BY = "answered anew by {number}"
@@ -230,6 +234,9 @@ def _follow(
         deferral_due_open(
             w, disposition=disposition, extends=extended, history=chain.words
         )
+    reason = CLOSED_BY.format(number=disposition)
+    findings_clocks_close(w, findings, on=disposition.decided_on, reason=reason)
+    disposition_clock_follow(w, disposition)
 
 
 def _answered_before(

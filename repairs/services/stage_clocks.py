@@ -25,6 +25,7 @@ from fleet.selectors.people import policy
 from fleet.services.history import Writing
 from repairs.models import (
     Disposition,
+    DispositionKind,
     DueKind,
     DuePoint,
     Finding,
@@ -55,6 +56,11 @@ SETTLED = (
     FindingState.VOIDED,
 )
 PENDING_STAGES = ("none", "1", "2")
+KEEPS_DAMAGE = (
+    DispositionKind.ACCEPT,
+    DispositionKind.ACCEPT_WITH_INSPECTION,
+    DispositionKind.DEFER,
+)
 
 NO_POLICY = "no policy {key} is recorded for {operator}; record it with its source"
 NO_THRESHOLD = (
@@ -262,6 +268,7 @@ def _own_clock_follow(w: Writing, folder: Substantiation, on: dt.date) -> None:
         Disposition.objects.filter(
             substantiation__operator=folder.operator_id,
             substantiation__number=folder.number,
+            kind__in=KEEPS_DAMAGE,
         )
         .order_by("decided_on", "pk")
         .first()
