@@ -51,17 +51,45 @@ def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
     return [_one(item, _told(json.loads(item.changes))) for item in items]
 
 
-def changes_since(row: models.Model, entry: int) -> list[Told]:
-    """What entries after that one did to the row, oldest first. A row that replaced it,
-    as of what is never changed, is told by the columns in which it differs."""
-    told = []
-    for item in _items_of(row).filter(entry__gt=entry).order_by("entry_id", "number"):
-        changes = _told(json.loads(item.changes)) or _differing(row)
-        told.append(_one(item, changes))
-    if _replaces(row):
-        for later in type(row)._default_manager.filter(replaces=row.pk):
-            told += changes_since(later, entry)
-    return told
+def changes_since(
+    rows: Sequence[models.Model], entry: int
+) -> list[tuple[models.Model, list[Told]]]:
+    """The rows that entries after that one touched, and what they did, oldest first.
+
+    A row that replaced one of them, as of what is never changed, is told by the columns
+    in which the two differ. One query, and one a table whose rows are replaced.
+    """
+    held = [*rows, *_replacing(rows)]
+    named = Q(pk__in=[])
+    for row in held:
+        named |= _names(row)
+    items = HistoryItem.objects.filter(named, entry__gt=entry).select_related("entry")
+    touched: dict[models.Model, list[Told]] = {}
+    for item in items.order_by("entry_id", "number"):
+        for row in held:
+            same_table = item.table == row._meta.db_table
+            if same_table and item.first_pk <= row.pk <= item.last_pk:
+                changes = _told(json.loads(item.changes)) or _differing(row)
+                touched.setdefault(row, []).append(_one(item, changes))
+    return list(touched.items())
+
+
+def _replacing(rows: Sequence[models.Model]) -> list[models.Model]:
+    """The rows that replaced some of these."""
+    keys: dict[type[models.Model], list[int]] = {}
+    for row in rows:
+        if any(field.name == "replaces" for field in row._meta.concrete_fields):
+            keys.setdefault(type(row), []).append(row.pk)
+    return [
+        later
+        for kind, replaced in keys.items()
+        for later in kind._default_manager.filter(replaces__in=replaced)
+    ]
+
+
+def _names(row: models.Model) -> Q:
+    """Items that name the row."""
+    return Q(table=row._meta.db_table, first_pk__lte=row.pk, last_pk__gte=row.pk)
 
 
 def just_done(row: models.Model) -> str:
@@ -76,12 +104,6 @@ def just_done(row: models.Model) -> str:
         at=last.at,
         changes="; ".join(last.changes),
     ).strip()
-
-
-def _items_of(row: models.Model) -> models.QuerySet[HistoryItem]:
-    return HistoryItem.objects.filter(
-        table=row._meta.db_table, first_pk__lte=row.pk, last_pk__gte=row.pk
-    ).select_related("entry")
 
 
 def _one(item: HistoryItem, changes: list[str]) -> Told:

@@ -31,8 +31,9 @@ def administrator(client):
 
 def typed(client, **changes) -> dict[str, str]:
     form = form_on(client, POLICY)
-    said = {"key": "late_entry_days", "value": "30", "unit": "days", "source": "M.A.305"}
-    return form | said | {"grade": "quoted", "effective_from": str(day(0))} | changes
+    said = {"key": "late_entry_days", "value": "30", "unit": "days", "grade": "quoted"}
+    since = {"source": "M.A.305", "effective_from": str(day(0))}
+    return form | said | since | changes
 
 
 def said_of(response) -> list[str]:
