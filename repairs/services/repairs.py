@@ -41,7 +41,7 @@ from repairs.services.repair_ends import UNDER_WAY, supersede_write
 from repairs.services.repair_entry import Data, RepairEntry
 from repairs.services.repair_guards import plan_problems, repair_problems
 from repairs.services.repair_rows import plan_rows_write, rows_write
-from repairs.services.stage_clocks import repair_clock_follow
+from repairs.services.stage_clocks import findings_clocks_close, repair_clock_follow
 
 AS_ENTERED = (
     "aircraft", "safe_life_part", "chart_number", "kind", "length_mm", "width_mm",
@@ -263,13 +263,15 @@ def _findings_rectify(
     w: Writing, repair: Repair, entry: RepairEntry, released_on: dt.date
 ) -> None:
     """Rectified when the damage is gone or lies under this repair; else unchanged."""
+    reason = ANSWERED_BY.format(number=repair)
     for answered in entry.findings:
         if not answered.answers:
             continue
         finding = w.locked(Finding.objects.all(), pk=answered.finding.pk)
         w.change(finding, state=FindingState.RECTIFIED)
-        reason = ANSWERED_BY.format(number=repair)
         deferrals_close(w, finding, on=released_on, reason=reason)
+    answers = [answered.finding for answered in entry.findings]
+    findings_clocks_close(w, answers, on=released_on, reason=reason)
 
 
 def _writing(
