@@ -18,3 +18,8 @@ def today() -> dt.date:
 def now() -> dt.datetime:
     """This instant in UTC; entries are always stamped with the true time."""
     return timezone.now()
+
+
+def moment() -> dt.datetime:
+    """The instant that countdowns are read at: now, on the day taken as today."""
+    return dt.datetime.combine(today(), now().timetz())

@@ -21,7 +21,6 @@ RATIO_DIFFERS = "ratio_differs"
 UNIT_SLIP = "unit_slip"
 COUNTERS_AHEAD = "counters_ahead"
 COUNTERS_BELOW = "counters_below"
-BEFORE_MANUFACTURE = "before_manufacture"
 PLACE_WARNING = "place_warning"
 
 ASKED = {
@@ -48,10 +47,6 @@ ASKED = {
     ),
     COUNTERS_BELOW: (
         "The counters lie {below} below usage on {found_on}. Which is wrong?"
-    ),
-    BEFORE_MANUFACTURE: (
-        "Found on {found_on}, before the aircraft was manufactured on "
-        "{manufactured_on}. Which date is right?"
     ),
     PLACE_WARNING: "The location was read with {code}. Is “{canonical}” meant?",
 }

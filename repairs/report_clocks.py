@@ -56,9 +56,7 @@ def report_due(
     end = _period_end(detected_at.astimezone(zone), clock.period_begins)
     due = (end.astimezone(dt.UTC) + hours).astimezone(zone)
     moved, because = _workday(due, holidays)
-    return ReportDue(
-        moved.astimezone(dt.UTC), (PERIOD.format(end=end), *because)
-    )
+    return ReportDue(moved.astimezone(dt.UTC), (PERIOD.format(end=end), *because))
 
 
 def follow_up_on(detected_on: dt.date, value: int, unit: str) -> dt.date:

@@ -9,6 +9,7 @@ from repairs.views import (
     adopted,
     approvals,
     attachments,
+    corrosion,
     dispositions,
     evaluation_list,
     evaluations,
@@ -19,6 +20,7 @@ from repairs.views import (
     maps,
     repair_steps,
     repairs,
+    reports,
     requirements,
 )
 
@@ -60,6 +62,20 @@ urlpatterns = [
         finding_steps.finding_photographs,
         name="finding_photographs",
     ),
+    path("findings/<int:pk>/level/", corrosion.finding_level, name="finding_level"),
+    path("findings/<int:pk>/report/", reports.finding_report, name="finding_report"),
+    path("reports/", reports.report_list, name="report_list"),
+    path("reports/<int:pk>/", reports.report, name="report"),
+    path(
+        "reports/<int:pk>/decide/", reports.report_decide_page, name="report_decide"
+    ),
+    path("reports/<int:pk>/send/", reports.report_send_page, name="report_send"),
+    path(
+        "reports/<int:pk>/supplement/",
+        reports.report_supplement_page,
+        name="report_supplement",
+    ),
+    path("reports/<int:pk>/close/", reports.report_close_page, name="report_close"),
     path("questions/<int:pk>/", finding_steps.finding_answer, name="finding_answer"),
     path("findings/<int:pk>/sisters/", accomplishments.sisters_new, name="sisters_new"),
     path("requirements/", requirements.requirement_list, name="requirement_list"),

@@ -39,6 +39,7 @@ from repairs.models import (
     Finding,
     FindingQuestion,
     InspectionRequirement,
+    OccurrenceReport,
     Photograph,
     Repair,
     RequirementSubject,
@@ -88,6 +89,8 @@ class OneOfEach:
     question: FindingQuestion
     crack: Finding
     evaluation: Evaluation
+    corroded: Finding
+    report: OccurrenceReport
     disposition: Disposition
     repair: Repair
     document: Document
@@ -121,6 +124,8 @@ def one_of_each_make() -> OneOfEach:
         finding=finding,
         question=_question(finding),
         crack=crack,
+        corroded=found(world, damage_type="corrosion", typed=()),
+        report=crack.reports.get(),
         evaluation=_evaluation(world, crack),
         disposition=_disposition(world, decided),
         repair=_repair(world),

@@ -17,7 +17,7 @@ from fleet.scoping import ScopedQuerySet
 
 DONE = {
     "add": "added", "answer": "answered", "assess": "assessed",
-    "cancel": "cancelled", "close": "closed",
+    "cancel": "cancelled", "change": "changed", "close": "closed",
     "compare": "compared", "correct": "corrected", "create": "created",
     "decide": "decided", "determine": "determined", "do": "done",
     "embody": "embodied", "end": "ended",
@@ -28,6 +28,7 @@ DONE = {
     "publish": "published", "raise": "raised", "reclassify": "reclassified",
     "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
+    "renew": "renewed", "reset": "reset",
     "send": "sent", "set": "set", "sign": "signed", "start": "begun",
     "supplement": "supplemented", "void": "voided",
 }  # fmt: skip

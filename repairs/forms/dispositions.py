@@ -33,7 +33,9 @@ DATA = (
     "document_kind", "document_reference", "document_revision", "document_page",
     "evaluations", "limit_checks", "requirement", "replaces",
 )  # fmt: skip
-LIMITS = ("limit_cycles", "limit_minutes", "limit_landings", "limit_on")
+LIMITS = (
+    "limit_cycles", "limit_minutes", "limit_landings", "limit_on", "crew_informed_on",
+)  # fmt: skip
 COUNTERS = ("at_minutes", "at_cycles", "at_landings")
 SCALE = ("scale", "scale_reason", "category")
 SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
@@ -56,6 +58,9 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
     )  # fmt: skip
     limit_landings = CounterField(label="deferral limit, landings", required=False)
     limit_on = DayField(label="deferral limit, date", required=False)
+    crew_informed_on = DayField(
+        label="crew informed on", required=False, help_text="Needed for a deferral."
+    )
     scale = forms.ChoiceField(choices=SCALES, label="minor or major")
     scale_reason = forms.CharField(label="why minor or major", required=False)
     category = forms.ChoiceField(

@@ -187,15 +187,30 @@ class AssessForm(OnDayForm, DataForm):
 
 
 class CloseForm(OnDayForm):
-    """Closed by certifying staff, with the cause and the answer on reporting."""
+    """Closed by certifying staff, with the cause and the answer on reporting.
 
+    `undecided` names the rules that still want that answer; with none it is not asked.
+    """
+
+    release_reference = forms.CharField(
+        label="certificate of release", required=False,
+        help_text="Its reference, where the repair does not name it.",
+    )  # fmt: skip
     cause = forms.ChoiceField(choices=Cause.choices)
+    reason = forms.CharField(
+        label="remark", required=False,
+        help_text="Needed when the cause is unknown: what was looked into.",
+    )  # fmt: skip
     reportable = forms.ChoiceField(
-        required=False,
-        choices=[("", "decided before, or not needed"), ("no", "no"), ("yes", "yes")],
-        label="reportable",
+        required=False, choices=[("", "choose"), ("no", "no"), ("yes", "yes")]
     )
     report_reason = forms.CharField(label="why", required=False)
+
+    def __init__(self, *args: Any, undecided: list[str], **kwargs: Any) -> None:
+        super().__init__(*args, **kwargs)
+        self.fields["reportable"].label = f"reportable under {', '.join(undecided)}"
+        if not undecided:
+            del self.fields["reportable"], self.fields["report_reason"]
 
 
 class LinkForm(forms.Form):

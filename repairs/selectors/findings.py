@@ -15,7 +15,6 @@ from fleet.units import measure_write
 from repairs.measurements import DIMENSIONS, SIZE_ORDER, Dimension, Kind, ratios
 from repairs.models import (
     ASIDE_STATES,
-    Approval,
     Disposition,
     Finding,
     InspectionRequirement,
@@ -27,6 +26,7 @@ from repairs.models import (
     RepairFinding,
 )
 from repairs.selectors.edges import earlier_blends
+from repairs.selectors.signatures import Signature, approvals_verified
 
 UNSTATED = "—"
 CHECK_WORDS = {
@@ -131,7 +131,7 @@ class Around:
     repairs: list[RepairFinding] = field(default_factory=list)
     checks: list[tuple[LimitCheck, str]] = field(default_factory=list)
     photographs: list[Photograph] = field(default_factory=list)
-    approvals: list[Approval] = field(default_factory=list)
+    approvals: list[Signature] = field(default_factory=list)
     blends: list[Repair] = field(default_factory=list)
 
     @property
@@ -174,7 +174,7 @@ def finding_around(finding: Finding) -> Around:
             for row in finding.limit_checks.select_related("limit__document")
         ],
         photographs=list(finding.photographs.select_related("attachment")),
-        approvals=list(finding.approvals.all()),
+        approvals=approvals_verified(finding),
         blends=list(earlier_blends(finding)),
     )
 

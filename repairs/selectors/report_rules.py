@@ -9,6 +9,7 @@ Clocks are policy rows of the regime: `report_hours` counts from detection;
 from __future__ import annotations
 
 import datetime as dt
+from collections.abc import Iterable
 from dataclasses import dataclass, field
 from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
 
@@ -100,25 +101,47 @@ def regimes_recorded(operator: Operator) -> list[str]:
     return sorted(named | {operator.regime})
 
 
+def regimes_open(subject: Subject) -> list[str]:
+    """Regimes the question may still be asked under; those that apply come first."""
+    applying = regimes_on(subject.aircraft, seen_on(subject))
+    asked = set(subject.reports.values_list("regime", flat=True))
+    every = [*applying, *regimes_recorded(subject.aircraft.operator)]
+    return [one for one in dict.fromkeys(every) if one not in asked]
+
+
 def rules_of(operator: Operator, regime: str, day: dt.date) -> Rules:
-    """One query. The operator's own row goes before the one offered; its own without a
-    regime is of its own regime."""
-    own = ("", regime) if regime == operator.regime else (regime,)
+    """The regime's report rows that count for the operator on the day; one query."""
     rows = Policy.objects.filter(
-        Q(operator=operator, regime__in=own)
-        | Q(operator__isnull=True, regime__in=("", regime)),
-        Q(effective_to__isnull=True) | Q(effective_to__gte=day),
-        key__startswith=PREFIX,
-        effective_from__lte=day,
-    ).exclude(key=HOLIDAY)
-    ordered = sorted(rows, key=lambda x: (x.operator_id is not None, x.effective_from))
-    return Rules(regime, {row.key: row for row in ordered})
+        Q(operator=operator) | Q(operator__isnull=True), key__startswith=PREFIX
+    )
+    return rules_from(rows, operator, regime, day)
+
+
+def rules_from(
+    rows: Iterable[Policy], operator: Operator, regime: str, day: dt.date
+) -> Rules:
+    """The same from rows at hand. The operator's own goes before one that is offered;
+    its own without a regime is of its own regime."""
+    own = ("", regime) if regime == operator.regime else (regime,)
+    counting = [
+        row
+        for row in rows
+        if row.key != HOLIDAY
+        and row.effective_from <= day
+        and (row.effective_to is None or day <= row.effective_to)
+        and (
+            row.regime in own
+            if row.operator_id == operator.pk
+            else row.operator_id is None and row.regime in ("", regime)
+        )
+    ]
+    counting.sort(key=lambda row: (row.operator_id is not None, row.effective_from))
+    return Rules(regime, {row.key: row for row in counting})
 
 
 def holidays_of(operator: Operator, regime: str) -> set[dt.date]:
     rows = Policy.objects.filter(
-        Q(operator=operator)
-        | Q(operator__isnull=True, regime__in=("", regime)),
+        Q(operator=operator) | Q(operator__isnull=True, regime__in=("", regime)),
         key=HOLIDAY,
     )
     return set(rows.values_list("effective_from", flat=True))
@@ -133,8 +156,10 @@ def asked_by(operator: Operator, regime: str, detected_at: dt.datetime) -> Asked
         clocks.append((rules.rows[HOURS], None, ""))
     if PERIOD_HOURS in rules.rows:
         begins = rules.count(PERIOD_BEGINS)
-        said = "" if begins is not None else NO_BEGIN.format(
-            key=PERIOD_BEGINS, regime=regime
+        said = (
+            ""
+            if begins is not None
+            else NO_BEGIN.format(key=PERIOD_BEGINS, regime=regime)
         )
         start = dt.time(begins % 24) if begins is not None else None
         clocks.append((rules.rows[PERIOD_HOURS], start, said))
@@ -164,7 +189,9 @@ def follow_ups(
 ) -> list[FollowUp]:
     """Follow-ups of a report, the first due first."""
     keys = (PRELIMINARY, FINAL, *((LEVEL_3,) if level_3 else ()))
-    rows = [(rules.rows[key], FOLLOW_UP_WORDS[key]) for key in keys if key in rules.rows]
+    rows = [
+        (rules.rows[key], FOLLOW_UP_WORDS[key]) for key in keys if key in rules.rows
+    ]
     made = [
         FollowUp(row, words, follow_up_on(detected_on, row.value, row.unit))
         for row, words in rows

@@ -1,4 +1,4 @@
-"""What makes somebody ask whether a finding is reportable, and what stands undecided."""
+"""What asks whether a finding is reportable, and what stands undecided."""
 
 from __future__ import annotations
 

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import datetime as dt
 
+from django.core.exceptions import ValidationError
+
 from fleet.due import Counters
 from fleet.models import Aircraft, User
 from fleet.services.aircraft import stream_of
@@ -12,6 +14,8 @@ from fleet.services.numbers import number_next
 from fleet.services.parts import counter_columns
 from repairs.models import Event
 from repairs.services.authority import operator_on
+from repairs.services.manufacture import made_before
+from repairs.services.reports import questions_open_write
 
 
 def event_record(
@@ -24,7 +28,12 @@ def event_record(
     actor: User | None,
     at: dt.datetime,
 ) -> Event:
-    """An event as reported; it stays open until its inspections are closed."""
+    """An event as reported, with the question whether it is to be reported further.
+
+    It stays open until its inspections are closed.
+    """
+    if refused := made_before(aircraft, happened_on):
+        raise ValidationError({"happened_on": refused})
     operator = operator_on(aircraft, happened_on)
     with Writing(
         actor=actor,
@@ -33,7 +42,7 @@ def event_record(
         operator=operator,
         stream=stream_of(aircraft),
     ) as w:
-        return w.create(
+        row = w.create(
             Event(
                 operator=operator,
                 aircraft=aircraft,
@@ -45,6 +54,8 @@ def event_record(
                 **counter_columns("at", counters),
             )
         )
+        questions_open_write(w, row)
+    return row
 
 
 def event_close(

@@ -1,4 +1,4 @@
-"""A finding's steps in one table: from which states, to which, by whom, what must stand.
+"""A finding's steps in one table: from where to where, by whom, what must stand.
 
 Every step asks the table and says everything that is missing at once. A finding that is
 closed stays closed: damage seen there again is a new finding, linked to it.
@@ -32,7 +32,7 @@ SETS_RIGHT = (K.RECTIFY, K.REPLACE)
 KEEPS_DAMAGE = (K.ACCEPT, K.ACCEPT_WITH_INSPECTION, K.DEFER)
 HOLDER_DOCUMENTS = ("letter", "design_approval")
 
-OUT_OF_TURN = "{number} is {state}; only a finding that is {wanted} is {word}."
+OUT_OF_TURN = "{number} is {state}; it is {word} only while {wanted}."
 CLOSED_STAYS = (
     "{number} is closed and stays so. Damage seen there again is a new finding: record "
     "it, and link it to {number}."
@@ -144,7 +144,7 @@ def _out_of_turn(step: Step, finding: Finding) -> str:
     return OUT_OF_TURN.format(
         number=finding,
         state=finding.get_state_display(),
-        wanted=" or ".join(str(state.label) for state in step.since),
+        wanted=" or ".join(state.value.replace("_", " ") for state in step.since),
         word=step.word,
     )
 
@@ -346,7 +346,7 @@ STEPS: dict[str, Step] = {
     K.NOT_DAMAGE: Step(
         "decided on", DECIDABLE, S.CLOSED, CERTIFIERS, (*_STAYS, _report_decided)
     ),
-    "rectify": Step("answered by a repair", RECTIFIABLE, S.RECTIFIED),
+    "repair": Step("answered by a repair", RECTIFIABLE, S.RECTIFIED),
     "close": Step(
         "closed", (S.RECTIFIED,), S.CLOSED, CERTIFIERS,
         (_released, _inspected, _photographed, _cause, _report_decided, _levelled),

@@ -30,14 +30,15 @@ from repairs.measured import Hole, Typed
 from repairs.models import Element, Event, Finding, FindingQuestion, FindingState
 from repairs.plausibility import (
     ASKED,
-    BEFORE_MANUFACTURE,
     PLACE_WARNING,
     Question,
     ahead_of_usage,
     counter_questions,
 )
+from repairs.selectors.report_triggers import is_critical_crack
 from repairs.services.assessing import finding_link_write
 from repairs.services.authority import operator_on
+from repairs.services.manufacture import made_before
 from repairs.services.measuring import Measuring, measurement_write, questions_ask
 from repairs.services.photographs import Photo, photographs_write
 from repairs.services.places import (
@@ -47,6 +48,7 @@ from repairs.services.places import (
     place_columns_of,
     place_try,
 )
+from repairs.services.reports import questions_open_write
 
 FROM_USAGE = "usage, as of {day}"
 BEFORE_USAGE = "not stated; usage begins on {day}"
@@ -158,13 +160,14 @@ def finding_write(
     w: Writing, entry: FindingEntry, *, standing_of: StandingOf | None = None
 ) -> Finding:
     """Inside a writing: the finding with its first measurement and its questions."""
+    if refused := made_before(entry.aircraft, entry.found_on):
+        raise ValidationError({"found_on": refused})
     standing = _standing(entry, standing_of)
     placed = place_try(entry.aircraft, entry.place_entered)
     at = standing.at if entry.at is None else entry.at
     finding = w.create(_row(w, entry, placed, at, standing))
     asked = [
         *counter_questions(at, standing, found_on=entry.found_on),
-        *_date_questions(entry),
         *_place_questions(placed),
     ]
     questions_ask(w, finding, asked)
@@ -180,6 +183,8 @@ def finding_write(
     )
     measurement_write(w, finding=finding, measuring=measuring)
     photographs_write(w, shown=finding, photos=entry.photographs)
+    if is_critical_crack(finding):
+        questions_open_write(w, finding)
     for link in entry.links:
         finding_link_write(
             w,
@@ -317,16 +322,6 @@ def _item_now(row: Finding, placed: Placed) -> dict[str, object]:
         criticality_source=row.criticality_source,
     )
     return _item_columns(entry, placed)
-
-
-def _date_questions(entry: FindingEntry) -> list[Question]:
-    made = entry.aircraft.manufactured_on
-    if made is None or entry.found_on >= made:
-        return []
-    text = ASKED[BEFORE_MANUFACTURE].format(
-        found_on=entry.found_on, manufactured_on=made
-    )
-    return [Question(BEFORE_MANUFACTURE, text)]
 
 
 def _place_questions(placed: Placed) -> list[Question]:

@@ -1,7 +1,7 @@
 """Occurrence reports: is it reportable, what was sent, and what followed.
 
-The question is opened for each regime that applies, with its clock. It is answered once
-for each; what was sent stays as it was sent, and more comes as a supplement. A report is
+The question is opened for each regime that applies, with its clock, and answered for
+each. What was sent stays as it was sent, and more comes as a supplement. A report is
 never held back because data are incomplete.
 """
 

@@ -22,6 +22,7 @@ from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
 from repairs.models import Disposition, Finding
 from repairs.selectors.choices import decision_choices
+from repairs.selectors.deferrals import chain_of
 from repairs.selectors.findings import disposition_whole, finding_whole
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.signatures import approvals_verified
@@ -33,7 +34,7 @@ from repairs.services.findings import standing_on
 METHODS = ["GET", "HEAD", "POST"]
 DECIDED = "{number} is recorded; it cannot be altered, only replaced."
 PASSED_ON = (
-    "reason", "decided_on", "limit_on", "scale", "scale_reason",
+    "reason", "decided_on", "limit_on", "crew_informed_on", "scale", "scale_reason",
     "category", "evaluations", "limit_checks", "requirement", "replaces",
 )  # fmt: skip
 
@@ -70,6 +71,7 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
             group(form, "Your signature", SIGNATURE),
         ],
         "critical": is_critical_crack(row),
+        "chain": chain_of([row]),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
     }
     return render(request, "repairs/disposition_new.html", context)
@@ -79,13 +81,15 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
 def disposition(request: Request, pk: int) -> HttpResponse:
     """The decision as signed: findings, basis, neighbours, limit, what follows."""
     row = visible_or_404(disposition_whole(), request.user, pk=pk)
+    findings = list(row.finding_rows.select_related("finding"))
     context = {
         "disposition": row,
-        "findings": row.finding_rows.select_related("finding"),
+        "findings": findings,
         "basis": row.basis_rows.select_related("evaluation", "limit_check__limit"),
         "neighbours": row.neighbour_reviews.select_related("finding", "repair"),
         "requirements": row.requirements.all(),
         "due_points": row.due_points.all(),
+        "chain": chain_of([one.finding for one in findings]),
         "repairs": row.repairs.all(),
         "later": Disposition.objects.filter(replaces=row).first(),
         "approvals": approvals_verified(row),

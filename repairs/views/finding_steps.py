@@ -32,6 +32,7 @@ from repairs.forms.findings import (
 from repairs.models import Finding, FindingQuestion
 from repairs.selectors.choices import people_at
 from repairs.selectors.findings import earlier_findings, finding_whole
+from repairs.selectors.report_triggers import reports_undecided
 from repairs.services.assessing import (
     DataCited,
     Reportability,
@@ -143,25 +144,26 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
 def finding_close_page(request: Request, pk: int) -> HttpResponse:
     """Closed by certifying staff, once no damage remains or a repair covers it."""
     row = _row(request, pk, "finding_assess")
+    waiting = reports_undecided(row)
     form = CloseForm(
         request.POST or None,
         user=request.user,
         today=today(),
-        initial={
-            "on": today(),
-            "cause": row.cause,
-        },
+        undecided=[regime for subject, regime in waiting if subject == row],
+        initial={"on": today(), "cause": row.cause},
     )
 
     def save(proof: Proof) -> Finding:
         data = form.cleaned_data
-        answer = data["reportable"]
-        report = Reportability(answer == "yes", data["report_reason"])
+        answer = data.get("reportable")
+        report = Reportability(answer == "yes", data.get("report_reason", ""))
         return finding_close(
             finding=row,
             proof=proof,
             on=data["on"],
             cause=data["cause"],
+            reason=data["reason"],
+            release_reference=data["release_reference"],
             report=report if answer else None,
             actor=request.user,
             at=now(),

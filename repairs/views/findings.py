@@ -2,19 +2,23 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from django.core.paginator import Paginator
 from django.http import HttpResponse
 from django.shortcuts import render
 from django.views.decorators.http import require_safe
 
 from fleet.access import may, may_somewhere, visible_or_404
-from fleet.clock import today
+from fleet.clock import moment, today
+from fleet.due import Counters
 from fleet.selectors.counters import aircraft_standing
 from fleet.selectors.history import history_of
 from fleet.views.pages import query_without_page
 from fleet.views.requests import Request
 from repairs.filters import FindingFilter
-from repairs.models import Repair
+from repairs.models import Finding, FindingState, Repair
+from repairs.selectors.deferrals import chain_of, passed_words
 from repairs.selectors.evaluations import evaluations_current, state_of
 from repairs.selectors.findings import (
     Line,
@@ -26,6 +30,8 @@ from repairs.selectors.findings import (
 from repairs.selectors.maps import finding_map_svg
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.next_step import further_steps, next_step
+from repairs.selectors.report_triggers import level_now
+from repairs.selectors.reports import finding_reports
 from repairs.services.assessing import assess_problems, crack_words
 
 PER_PAGE = 50
@@ -56,11 +62,12 @@ def finding(request: Request, pk: int) -> HttpResponse:
     evaluations = evaluations_current(row)
     around = finding_around(row)
     near = neighbours(row, user=request.user, opposite=True)
+    flown = aircraft_standing(row.aircraft, as_of=today())
     context = {
         "finding": row,
         "around": around,
         "limit": around.limit,
-        "flown": aircraft_standing(row.aircraft, as_of=today()),
+        "flown": flown,
         "problems": problems,
         "questions": row.questions.select_related("answered_by"),
         "links": row.links.select_related("earlier", "decided_by"),
@@ -70,6 +77,7 @@ def finding(request: Request, pk: int) -> HttpResponse:
         "near": near,
         "sisters": [(one, isinstance(one, Repair)) for one in near.sisters],
         "critical": crack_words(row),
+        **_asked(request, row, flown.counters),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
         "history": history_of(row),
         "next": next_step(row, problems, request.user),
@@ -77,3 +85,20 @@ def finding(request: Request, pk: int) -> HttpResponse:
         "may_answer": may(request.user, "finding_assess", row.aircraft.operator_id),
     }
     return render(request, "repairs/finding.html", context)
+
+
+def _asked(request: Request, row: Finding, flown: Counters) -> dict[str, Any]:
+    """Its deferrals, its corrosion level, and the reports the rules want."""
+    operator = row.aircraft.operator_id
+    chain = chain_of([row])
+    running = chain.rows[-1].disposition if chain.rows else None
+    deferred = running is not None and row.state == FindingState.DEFERRED
+    return {
+        "chain": chain,
+        "passed": passed_words(running, flown, today()) if deferred else "",  # type: ignore[arg-type]
+        "level": level_now(row) if row.damage_type == "corrosion" else None,
+        "reports": finding_reports(row, moment=moment()),
+        "may_level": may(request.user, "level_determine", operator),
+        "may_report": may(request.user, "report_decide", operator),
+        "may_sisters": may(request.user, "requirement_raise", operator),
+    }

@@ -93,7 +93,7 @@ def test_a_decision_cannot_be_altered_afterwards(world):
 
 
 def test_a_reported_finding_is_not_decided_on(world):
-    with pytest.raises(ValidationError, match="assess it before"):
+    with pytest.raises(ValidationError, match="decided on only while assessed"):
         decide(world, found(world))
 
 
@@ -115,16 +115,18 @@ def test_a_deferral_is_certifying_staffs_and_has_a_limit(world):
         decide(world, finding, kind="defer", by=world.certifier)
     limit = Counters(cycles=10_300)
     with pytest.raises(ValidationError, match="held no authorisation"):
-        decide(world, finding, kind="defer", limit=limit)
+        decide(world, finding, kind="defer", limit=limit, crew_informed_on=FOUND)
     with pytest.raises(ValidationError, match="overdue at once"):
         decide(
             world,
             finding,
             kind="defer",
             limit=Counters(cycles=10_080),
+            crew_informed_on=FOUND,
             by=world.certifier,
         )
-    decide(world, finding, kind="defer", limit=limit, by=world.certifier)
+    told = {"crew_informed_on": FOUND, "by": world.certifier}
+    decide(world, finding, kind="defer", limit=limit, **told)
     finding.refresh_from_db()
     assert finding.state == "deferred"
     due = DuePoint.objects.get()
@@ -138,6 +140,7 @@ def test_an_extension_keeps_the_original_date_and_moves_no_limit(world):
         finding,
         kind="defer",
         limit=Counters(cycles=10_300),
+        crew_informed_on=FOUND,
         by=world.certifier,
     )
     later = FOUND + dt.timedelta(days=10)
@@ -146,6 +149,7 @@ def test_an_extension_keeps_the_original_date_and_moves_no_limit(world):
         finding,
         kind="defer",
         limit=Counters(cycles=10_500),
+        crew_informed_on=later,
         by=world.certifier,
         decided_on=later,
         replaces=first,

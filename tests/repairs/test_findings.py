@@ -326,7 +326,7 @@ def test_a_finding_is_voided_with_a_reason_only(world):
 
 
 def test_an_open_finding_is_not_closed(world):
-    with pytest.raises(ValidationError, match="only a rectified finding"):
+    with pytest.raises(ValidationError, match="closed only while rectified"):
         finding_close(
             finding=assessed(world),
             proof=program(world.certifier),
