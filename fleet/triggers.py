@@ -83,7 +83,8 @@ def triggers_at_work(connection: Any, tables: dict[str, str]) -> set[str]:
             cursor.execute(
                 "SELECT tgname FROM pg_trigger JOIN pg_proc ON pg_proc.oid = tgfoid "
                 "WHERE tgenabled IN ('O', 'A') AND tgqual IS NULL "
-                "AND proname = 'fleet_refuse_change' AND %s LIKE '%%' || prosrc || '%%'",
+                "AND proname = 'fleet_refuse_change' "
+                "AND strpos(%s, prosrc) > 0",
                 [POSTGRESQL_FUNCTION],
             )
             return {name for (name,) in cursor.fetchall()}

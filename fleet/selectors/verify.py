@@ -6,6 +6,7 @@ from collections.abc import Collection, Iterator
 from pathlib import Path
 
 from django.db import connection
+from django.db.models import Exists, OuterRef
 
 from fleet.digests import (
     entry_digest,
@@ -99,9 +100,9 @@ def _end_problems(last: int, digest: str) -> Iterator[str]:
     head = HistoryHead.objects.filter(pk=1).first()
     if head is None or (head.sequence, head.digest) != (last, digest):
         yield WRONG_HEAD.format(last=last)
-    for pk, entry in HistoryItem.objects.filter(entry__sequence=None).values_list(
-        "pk", "entry_id"
-    ):
+    known = HistoryEntry.objects.filter(sequence=OuterRef("entry_id"))
+    loose = HistoryItem.objects.filter(~Exists(known)).order_by("pk")
+    for pk, entry in loose.values_list("pk", "entry_id").iterator(CHUNK):
         yield LOOSE_ITEM.format(pk=pk, entry=entry)
 
 

@@ -14,7 +14,7 @@ from fleet.selectors.verify_rows import RUN, Read, some_rows_problems
 from fleet.snapshot import snapshot
 
 DEPTH = 3
-"""Keys followed from a record to its aircraft: value, measurement, finding, aircraft."""
+"""Keys followed to the aircraft: from a value by its measurement and its finding."""
 AIRCRAFT = "aircraft:"
 
 

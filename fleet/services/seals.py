@@ -123,6 +123,4 @@ def _list(public: str, day: dt.date) -> None:
     kept = keys_file()
     before = kept.read_bytes() if kept.exists() else b""
     with written_whole(kept) as file:
-        file.write(
-            before + SEPARATOR.join((public, "since", str(day))).encode() + b"\n"
-        )
+        file.write(before + f"{public}{SEPARATOR}since {day}\n".encode())

@@ -5,15 +5,15 @@
 | FRAMEBAY_DATA | folder of SQLite file, attachments and secret key | `data/` |
 | DATABASE_URL | as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
 | FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
-| FRAMEBAY_SEAL_KEY | base64 of the 32 bytes of the Ed25519 key of seals | made once, kept there |
-| FRAMEBAY_BACKUPS | folder of the backups; better on another machine | `backups/` there |
+| FRAMEBAY_SEAL_KEY | Ed25519 key of seals, base64 of its 32 bytes | made once, kept |
+| FRAMEBAY_BACKUPS | folder of backups; better elsewhere | `backups/` in FRAMEBAY_DATA |
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
 | FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
-| FRAMEBAY_PROXIES | proxies in front; the address and https are read from the last | 0 |
-| FRAMEBAY_SIGN_IN_LIMIT | wrong passwords of one name from one address until a lock | 5 |
+| FRAMEBAY_PROXIES | how many proxies stand in front and are believed | 0 |
+| FRAMEBAY_SIGN_IN_LIMIT | wrong passwords of a name and address before a lock | 5 |
 | FRAMEBAY_SIGN_IN_WAIT | minutes until the lock opens by itself | 15 |
-| FRAMEBAY_IDLE_MINUTES | minutes without a request after which one signs in again | 30 |
-| FRAMEBAY_SESSION_HOURS | hours after which one signs in again in any case | 12 |
+| FRAMEBAY_IDLE_MINUTES | minutes without a request that end a session | 30 |
+| FRAMEBAY_SESSION_HOURS | hours that end a session in any case | 12 |
 | FRAMEBAY_DEBUG | 1 shows tracebacks in the browser | 0 |
 | FRAMEBAY_TODAY | the date taken as today | the demo's, if it is here; else the clock |
 """
@@ -107,6 +107,7 @@ INSTALLED_APPS = [
 RECORDED_APPS = ["fleet", "repairs"]  # whose rows the history must explain
 MIDDLEWARE = [
     "django.middleware.security.SecurityMiddleware",
+    "fleet.views.guard.headers",
     "whitenoise.middleware.WhiteNoiseMiddleware",
     "csp.middleware.CSPMiddleware",
     "django.contrib.sessions.middleware.SessionMiddleware",
@@ -115,6 +116,7 @@ MIDDLEWARE = [
     "django.contrib.auth.middleware.AuthenticationMiddleware",
     "django.contrib.auth.middleware.LoginRequiredMiddleware",
     "django.contrib.messages.middleware.MessageMiddleware",
+    "fleet.views.guard.session_age",
     "fleet.views.once.once",
     "django.middleware.clickjacking.XFrameOptionsMiddleware",
 ]
@@ -170,6 +172,7 @@ AXES_DISABLE_ACCESS_LOG = True
 AXES_ENABLE_ADMIN = False
 AXES_VERBOSE = False
 SILENCED_SYSTEM_CHECKS = ["axes.W002"]  # the sign-in page answers when it is locked
+OTP_TOTP_ISSUER = "Framebay"
 PASSWORD_HASHERS = ["django.contrib.auth.hashers.Argon2PasswordHasher"]
 AUTH_PASSWORD_VALIDATORS = [
     {"NAME": f"django.contrib.auth.password_validation.{name}"}
@@ -209,8 +212,11 @@ CONTENT_SECURITY_POLICY = {
 }
 X_FRAME_OPTIONS = "DENY"
 SECURE_REFERRER_POLICY = "same-origin"
-SESSION_COOKIE_HTTPONLY = True
-SESSION_COOKIE_AGE = 12 * 60 * 60
+SESSION_COOKIE_HTTPONLY = CSRF_COOKIE_HTTPONLY = True
+SESSION_COOKIE_SAMESITE = CSRF_COOKIE_SAMESITE = "Lax"
+SESSION_IDLE = dt.timedelta(minutes=env_count("FRAMEBAY_IDLE_MINUTES", 30))
+SESSION_LASTS = dt.timedelta(hours=env_count("FRAMEBAY_SESSION_HOURS", 12))
+SESSION_COOKIE_AGE = int(SESSION_LASTS.total_seconds())
 SESSION_COOKIE_SECURE = CSRF_COOKIE_SECURE = HTTPS
 SECURE_SSL_REDIRECT = HTTPS
 if PROXIES:
