@@ -6,6 +6,7 @@ from django.contrib.auth.decorators import login_not_required
 from django.urls import path
 
 from fleet.views import (
+    account,
     aircraft,
     documents,
     history,
@@ -18,7 +19,26 @@ from fleet.views import (
 
 urlpatterns = [
     path("sign-in/", login_not_required(sessions.sign_in), name="sign_in"),
+    path(
+        "sign-in/code/", login_not_required(sessions.sign_in_code), name="sign_in_code"
+    ),
     path("sign-out/", sessions.sign_out, name="sign_out"),
+    path("account/", account.account, name="account"),
+    path("account/password/", account.password, name="password"),
+    path("account/second-factor/", account.second_factor, name="second_factor"),
+    path(
+        "account/second-factor/remove/",
+        account.second_factor_off,
+        name="second_factor_remove",
+    ),
+    path(
+        "people/roles/<int:pk>/second-factor/",
+        account.second_factor_lost,
+        name="second_factor_reset",
+    ),
+    path(
+        "people/roles/<int:pk>/let-in/", account.sign_in_unlock, name="sign_in_unlock"
+    ),
     path("aircraft/new/", aircraft.aircraft_new, name="aircraft_new"),
     path("aircraft/<int:pk>/period/", aircraft.aircraft_period, name="aircraft_period"),
     path("aircraft/<int:pk>/state/", aircraft.aircraft_state, name="aircraft_state"),

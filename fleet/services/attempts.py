@@ -34,7 +34,8 @@ def locked_until(request: HttpRequest, username: str) -> dt.datetime | None:
     """When the lock opens by itself; None: an administrator opens it."""
     wait = get_cool_off(request)
     last = AccessAttempt.objects.filter(
-        username=username, ip_address=request.axes_ip_address  # type: ignore[attr-defined]
+        username=username,
+        ip_address=request.axes_ip_address,  # type: ignore[attr-defined]
     ).aggregate(last=Max("attempt_time"))["last"]
     return last + wait if last and wait else None
 

@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from django.core.exceptions import ValidationError
 
 from fleet.models import Person, User
+from fleet.selectors.people import second_factor_required
 from fleet.services.second_factor import code_accept
 
 PASSWORD = "password given again"
@@ -20,6 +21,9 @@ PROGRAM = "entered by the program, without re-entry"
 
 NO_PERSON = (
     "Your login has no person behind it, so it cannot sign; ask an administrator."
+)
+SET_UP_FIRST = (
+    "Your operator asks for a second factor before you sign: set one up under Account."
 )
 WRONG_PASSWORD = "This is not your password; nothing was signed."
 
@@ -58,10 +62,17 @@ def identity_prove(*, user: User, password: str, code: str, day: dt.date) -> Pro
     """
     if user.person is None:
         raise ValidationError(NO_PERSON)
+    how = identity_check(user=user, password=password, code=code)
+    if user.second_factor_since is None and second_factor_required(user, day):
+        raise ValidationError(SET_UP_FIRST)
+    return Proof(person=user.person, how=how, user=user, day=day)
+
+
+def identity_check(*, user: User, password: str, code: str) -> str:
+    """How it was shown that it is this user; ValidationError on the wrong field."""
     if not user.check_password(password):
         raise ValidationError({"password": WRONG_PASSWORD})
-    how = PASSWORD
-    if user.second_factor_since is not None:
-        code_accept(user=user, code=code)
-        how = PASSWORD_AND_CODE
-    return Proof(person=user.person, how=how, user=user, day=day)
+    if user.second_factor_since is None:
+        return PASSWORD
+    code_accept(user=user, code=code)
+    return PASSWORD_AND_CODE

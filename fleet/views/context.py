@@ -28,6 +28,7 @@ OFFICE = (
     ("adopted_list", "Adopted", "/adopted/", ""),
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),
+    ("account", "Account", "/account/", ""),
 )
 
 

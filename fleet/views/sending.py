@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from typing import Any
+from functools import partial
+from typing import Any, TypeVar
 
 from django.core.exceptions import NON_FIELD_ERRORS, ValidationError
 from django.db.models import Model
@@ -12,8 +13,10 @@ from django.forms import Form
 from fleet.clock import today
 from fleet.services.attempts import attempt_failed, is_locked, locked_until
 from fleet.services.sending import Changed, changed_meanwhile, form_about
-from fleet.services.signing import Proof, identity_prove
+from fleet.services.signing import Proof, identity_check, identity_prove
 from fleet.views.requests import Request
+
+Known = TypeVar("Known")
 
 LOCKED = (
     "Too many wrong passwords; nothing is signed until {until:%H:%M} UTC, unless an "
@@ -66,23 +69,28 @@ def sent_signed(
     """
 
     def proved() -> object:
-        return save(_proof(request, form))
+        return save(_counted(request, form, partial(identity_prove, day=today())))
 
     return sent(form, proved, about=about)
 
 
-def _proof(request: Request, form: Form) -> Proof:
+def sent_identified(request: Request, form: Form, save: Callable[[], object]) -> Any:
+    """The same for a form of one's own login, which signs nothing."""
+
+    def identified() -> object:
+        _counted(request, form, identity_check)
+        return save()
+
+    return sent(form, identified)
+
+
+def _counted(request: Request, form: Form, identity: Callable[..., Known]) -> Known:
     user, data = request.user, form.cleaned_data
     name = user.get_username()
     if is_locked(request, name):
         raise ValidationError({"password": locked_words(request, name)})
     try:
-        return identity_prove(
-            user=user,
-            password=data["password"],
-            code=data.get("code", ""),
-            day=today(),
-        )
+        return identity(user=user, password=data["password"], code=data.get("code", ""))
     except ValidationError as refused:
         if hasattr(refused, "error_dict"):
             attempt_failed(request, name)

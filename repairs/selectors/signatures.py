@@ -26,9 +26,7 @@ from repairs.models import (
 )
 from repairs.selectors.substantiation_content import substantiation_content
 
-Subject = (
-    Disposition | Evaluation | Repair | Finding | Substantiation | Accomplishment
-)
+Subject = Disposition | Evaluation | Repair | Finding | Substantiation | Accomplishment
 SUBJECT_COLUMN: dict[type[Subject], str] = {
     Disposition: "disposition",
     Evaluation: "evaluation",

@@ -27,6 +27,7 @@ from repairs.selectors.evaluations import (
     evaluations_current,
     subject_rows,
 )
+from repairs.selectors.signatures import approvals_verified
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluations import (
     choice_from,
@@ -88,6 +89,7 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
     row = visible_or_404(evaluation_rows(), request.user, pk=pk)
     context = {
         "shown": evaluation_shown(row, method_versions()),
+        "approvals": approvals_verified(row),
         "history": history_of(row),
         "may_make": may(request.user, ACTION, row.operator_id),
         "may_sign": may(request.user, "approval_sign", row.operator_id),
