@@ -47,9 +47,13 @@ def full(length: HalfLength) -> FullLength:
 
 
 class Grade(StrEnum):
-    """How well a number's origin is known."""
+    """How well a number's origin is known.
+
+    `DERIVED`: exact, derivable by hand, and proved by a second route in the tests.
+    """
 
     PRINT = "print"
+    DERIVED = "derived"
     QUOTED = "quoted"
     MEMORY = "memory"
     ADOPTED = "adopted"
