@@ -33,4 +33,6 @@ def _write(
     user: User, password: str, actor: User | None, at: dt.datetime, action: str
 ) -> None:
     with Writing(actor=actor, action=action, at=at) as w:
-        w.change(user, password=make_password(password))
+        row = w.locked(User.objects.all(), pk=user.pk)
+        w.change(row, password=make_password(password))
+    user.password = row.password
