@@ -1,6 +1,6 @@
 r"""Stress-intensity factors of part-through cracks (Newman and Raju).
 
-Both functions return :math:`F/\sqrt{Q}`, so that :math:`K = F_Q\,S\sqrt{\pi a}` with a
+The functions return :math:`F/\sqrt{Q}`, so that :math:`K = F_Q\,S\sqrt{\pi a}` with a
 the depth and S the gross tension stress.
 
 References
@@ -17,6 +17,7 @@ from dataclasses import dataclass
 
 from repairs.analysis.errors import within
 from repairs.analysis.hole_intensity import newman_g2
+from repairs.analysis.stress_intensity import secant
 from repairs.analysis.types import Grade, Reference
 
 CORNER_AT_HOLE = Reference(
@@ -50,34 +51,60 @@ class PartThrough:
     thickness: float
 
 
-def _terms(crack: PartThrough) -> tuple[float, float, float]:
-    """Return Q, the depth series M and the aspect a/c."""
-    aspect = crack.depth / crack.length
+def shape_factor(aspect: float, phi: float) -> tuple[float, float]:
+    """Return Q and f_phi of an ellipse of aspect a/c, at phi from the surface [rad]."""
+    sine, cosine = math.sin(phi), math.cos(phi)
+    if aspect <= 1:
+        bow = (aspect * cosine) ** 2 + sine**2
+        return 1 + 1.464 * aspect**1.65, bow**0.25
+    bow = (sine / aspect) ** 2 + cosine**2
+    return 1 + 1.464 / aspect**1.65, bow**0.25
+
+
+def _series(crack: PartThrough, aspect: float) -> float:
+    """Return the depth series M of a surface crack."""
     x = crack.depth / crack.thickness
     if aspect <= 1:
-        q = 1 + 1.464 * aspect**1.65
         m1 = 1.13 - 0.09 * aspect
         m2 = -0.54 + 0.89 / (0.2 + aspect)
         m3 = 0.5 - 1 / (0.65 + aspect) + 14 * (1 - aspect) ** 24
     else:
         flat = 1 / aspect
-        q = 1 + 1.464 * flat**1.65
         m1 = math.sqrt(flat) * (1 + 0.04 * flat)
         m2, m3 = 0.2 * flat**4, -0.11 * flat**4
-    return q, m1 + m2 * x**2 + m3 * x**4, aspect
+    return m1 + m2 * x**2 + m3 * x**4
 
 
-def _front(crack: PartThrough, aspect: float, phi: float) -> tuple[float, float]:
-    """Return g1 and f_phi at the angle phi from the free surface [rad]."""
+def _near_surface(crack: PartThrough, aspect: float, phi: float) -> float:
+    """Return g1 at the angle phi from the free surface [rad]."""
     x = crack.depth / crack.thickness
-    sine, cosine = math.sin(phi), math.cos(phi)
-    if aspect <= 1:
-        g1 = 1 + (0.1 + 0.35 * x**2) * (1 - sine) ** 2
-        shape = (aspect * cosine) ** 2 + sine**2
-    else:
-        g1 = 1 + (0.1 + 0.35 / aspect * x**2) * (1 - sine) ** 2
-        shape = (sine / aspect) ** 2 + cosine**2
-    return g1, shape**0.25
+    return 1 + (0.1 + 0.35 * x**2 / max(1, aspect)) * (1 - math.sin(phi)) ** 2
+
+
+def shah(crack: PartThrough, radius: float) -> float:
+    """Return Shah's factor: one crack at a hole over two, K over K [-]."""
+    area = crack.depth * crack.length / (crack.thickness * radius)
+    return math.sqrt((4 / math.pi + area / 2) / (4 / math.pi + area))
+
+
+def hole_width(
+    crack: PartThrough, radius: float, half_width: float, cracks: int
+) -> float:
+    """Return the width factor of part-through cracks at a hole, range checked [-]."""
+    c = crack.length
+    within(
+        "Hole radius plus crack over half-width",
+        (radius + c) / half_width,
+        0,
+        0.5,
+        "N-R",
+    )
+    swept = math.pi * (2 * radius + cracks * c)
+    swept /= 4 * (half_width - c) + 2 * cracks * c
+    depth = math.sqrt(crack.depth / crack.thickness)
+    return math.sqrt(
+        secant(math.pi * radius / (2 * half_width)) * secant(swept * depth)
+    )
 
 
 def _part_range(crack: PartThrough) -> None:
@@ -113,11 +140,12 @@ def surface_crack(crack: PartThrough, half_width: float, angle: float) -> float:
     """
     _part_range(crack)
     reach = within("Length over half-width", crack.length / half_width, 0, 0.5, "N-R")
-    q, series, aspect = _terms(crack)
-    g1, fphi = _front(crack, aspect, math.radians(angle))
+    aspect, phi = crack.depth / crack.length, math.radians(angle)
+    q, fphi = shape_factor(aspect, phi)
     depth = math.sqrt(crack.depth / crack.thickness)
-    fw = math.sqrt(1 / math.cos(math.pi / 2 * reach * depth))
-    return series * g1 * fphi * fw / math.sqrt(q)
+    fw = math.sqrt(secant(math.pi / 2 * reach * depth))
+    series = _series(crack, aspect) * _near_surface(crack, aspect, phi)
+    return series * fphi * fw / math.sqrt(q)
 
 
 def corner_crack_at_hole(
@@ -160,16 +188,8 @@ def corner_crack_at_hole(
     _part_range(crack)
     within("Hole radius over thickness", radius / crack.thickness, 0.5, 3, "N-R")
     a, c, t = crack.depth, crack.length, crack.thickness
-    within(
-        "Hole radius plus crack over half-width",
-        (radius + c) / half_width,
-        0,
-        0.5,
-        "N-R",
-    )
-    phi = math.radians(angle)
-    q, series, aspect = _terms(crack)
-    g1, fphi = _front(crack, aspect, phi)
+    aspect, phi = a / c, math.radians(angle)
+    q, fphi = shape_factor(aspect, phi)
     lam = 1 / (1 + c / radius * math.cos(0.85 * phi))
     g2 = newman_g2(lam) / (1 + 0.13 * lam**2)
     near = (1 + 0.1 * (1 - math.cos(phi)) ** 2) * (0.85 + 0.15 * (a / t) ** 0.25)
@@ -178,15 +198,7 @@ def corner_crack_at_hole(
         g4 = 1 - 0.7 * (1 - a / t) * (aspect - 0.2) * (1 - aspect)
     else:
         g3, g4 = (1.13 - 0.09 / aspect) * near, 1.0
-    swept = math.pi * (2 * radius + cracks * c)
-    swept /= 4 * (half_width - c) + 2 * cracks * c
-    fw = math.sqrt(
-        1
-        / math.cos(math.pi * radius / (2 * half_width))
-        / math.cos(swept * math.sqrt(a / t))
-    )
-    symmetric = series * g1 * g2 * g3 * g4 * fphi * fw / math.sqrt(q)
-    if cracks == 2:
-        return float(symmetric)
-    area = a * c / (t * radius)
-    return float(symmetric * math.sqrt((4 / math.pi + area / 2) / (4 / math.pi + area)))
+    series = _series(crack, aspect) * _near_surface(crack, aspect, phi)
+    width = hole_width(crack, radius, half_width, cracks)
+    symmetric = series * g2 * g3 * g4 * fphi * width / math.sqrt(q)
+    return float(symmetric if cracks == 2 else symmetric * shah(crack, radius))

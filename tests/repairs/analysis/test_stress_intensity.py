@@ -220,6 +220,37 @@ def test_two_cracks_of_the_k1_joint_without_transfer():
     assert k == pytest.approx(10.842, rel=2e-3)
 
 
+def test_two_cracks_of_the_k1_joint_with_transfer():
+    # Bypass 69.2 % of 82.737 MPa, pin 776.8 N, r 2.4257, c 1.27, W 19.05, t 1.6002 mm:
+    # 11.764 MPa*sqrt(m), recomputed independently.
+    c, diameter, width = EdgeLength(1.27), 2 * 2.4257, 19.05
+    bypass = GrossStress(82.737 - 776.8 / (width * 1.6002))
+    bearing = GrossStress(776.8 / (diameter * 1.6002))
+    k = si.intensity(hi.hole_double(c, diameter, width), bypass, c)
+    k += si.intensity(hi.hole_double_bearing(c, diameter, width), bearing, c)
+    assert k / ROOT_1000 == pytest.approx(11.764, rel=2e-3)
+
+
+@given(st.floats(0.1, 3.0))
+def test_pin_load_on_two_cracks_lies_near_the_handbooks_one_crack(ratio):
+    # Independent fits of a near case; two cracks open more, the more the longer.
+    one = hi.hole_single_bearing(EdgeLength(ratio), 2.0, 30.0)
+    two = hi.hole_double_bearing(EdgeLength(ratio), 2.0, 30.0)
+    assert 0.97 < two / one < 1.6
+
+
+def test_a_pin_on_a_short_crack_presses_at_the_handbooks_stress_concentration():
+    # Handbook value at c = 0: 1.38 on the bearing stress at D/W 0.25, over 1.1215.
+    assert hi.bearing_factor(0.0, 0.25) / 1.1215 == pytest.approx(1.38, abs=0.01)
+
+
+def test_long_split_cracks_approach_the_exact_splitting_pair():
+    # Half of P/(t sqrt(pi a)) and half of even tension, a = r + c >> r.
+    c = EdgeLength(50.0)
+    factor = hi.hole_double_bearing(c, 1.0, 1e5)
+    assert factor == pytest.approx(0.5 / (math.pi * 50.0), rel=0.02)
+
+
 @given(
     c=st.floats(0.01, 40), diameter=st.floats(2, 20), wide=st.floats(2.1, 40)
 )  # a plate at least a little wider than twice the hole
@@ -246,6 +277,7 @@ def test_a_longer_centre_crack_has_a_larger_factor(a, more):
         lambda: si.edge_crack_polynomial(EdgeLength(61), 100),
         lambda: hi.hole_single(EdgeLength(5), 60, 100),
         lambda: hi.hole_double(EdgeLength(45), 10, 100),
+        lambda: hi.hole_double_bearing(EdgeLength(0.1), 10, 100),
         lambda: hi.hole_double_rational(EdgeLength(60), 10, 1000),
         lambda: si.edge_crack_bending_polynomial(EdgeLength(61), 100),
         lambda: si.edge_crack_bending_tada(EdgeLength(96), 100),
