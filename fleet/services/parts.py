@@ -66,7 +66,7 @@ def part_install(
 ) -> PartInstallation:
     """Put a part on a position; `counters` are the aircraft's, as recorded."""
     with _writing(actor, "part_install", at, aircraft) as w:
-        _lock(part)
+        _lock(aircraft, part)
         problems = _missing(counters) + _install_problems(part, configuration, on)
         taken = PartInstallation.objects.filter(
             aircraft=aircraft, position=position, removed_on=None
@@ -183,7 +183,7 @@ def _writing(
 def _lock(*rows: Model) -> None:
     """Hold the rows until the end of the writing, and read them afresh."""
     for row in rows:
-        type(row)._default_manager.select_for_update().get(pk=row.pk)
+        type(row)._default_manager.select_for_update(no_key=True).get(pk=row.pk)
         row.refresh_from_db()
 
 

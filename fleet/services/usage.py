@@ -183,7 +183,7 @@ def usage_problems(
 
 
 def _locked(aircraft: Aircraft) -> None:
-    Aircraft.objects.select_for_update().get(pk=aircraft.pk)
+    Aircraft.objects.select_for_update(no_key=True).get(pk=aircraft.pk)
 
 
 def _row(aircraft: Aircraft, line: UsageLine, source: str) -> UsageRecord:

@@ -81,7 +81,7 @@ def disposition_write(
     """Inside a writing: the disposition, what follows from it, and its signature."""
     keys = [finding.pk for finding in entry.findings]
     findings = list(
-        Finding.objects.select_for_update(of=("self",))
+        Finding.objects.select_for_update(of=("self",), no_key=True)
         .filter(pk__in=keys)
         .select_related("aircraft")
         .order_by("pk")
