@@ -6,7 +6,7 @@ Reach 20 in and twelve months are the operator's policies here, with their sourc
 from __future__ import annotations
 
 import datetime as dt
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from fleet.canonical import digest
@@ -21,6 +21,7 @@ from repairs.services.substantiation_entry import (
     CaseEntry,
     DocumentEntry,
     FolderEntry,
+    entry_of,
 )
 from repairs.services.substantiation_rows import (
     substantiation_case_add,
@@ -28,7 +29,11 @@ from repairs.services.substantiation_rows import (
     substantiation_effects_answer,
     substantiation_neighbour_review,
 )
-from repairs.services.substantiations import substantiation_draft
+from repairs.services.substantiations import (
+    substantiation_draft,
+    substantiation_edit,
+    substantiation_revise,
+)
 from tests.factories import NOW, TODAY, authorise, program, user_make
 from tests.record_rows import World, assessed
 
@@ -77,6 +82,20 @@ class Folders:
     def ready(self, **changes: Any) -> Substantiation:
         """A draft with everything that stage 1 needs."""
         return self.fill(self.draft(**changes))
+
+    def revise(self, folder: Substantiation, **changes: Any) -> Substantiation:
+        """A new revision with other columns, its neighbours reviewed."""
+        by: dict[str, Any] = {"actor": self.world.users["recorder"], "at": NOW}
+        later = substantiation_revise(
+            substantiation=folder,
+            reason="the next stage",
+            prepared_by=self.world.assessor,
+            **by,
+        )
+        entry = replace(entry_of(later), **changes)
+        substantiation_edit(substantiation=later, entry=entry, **by)
+        self.review(later)
+        return later
 
     def fill(self, folder: Substantiation) -> Substantiation:
         self.review(folder)

@@ -310,7 +310,8 @@ def _reason(folder: Substantiation) -> str:
     reached = stage_reached(folder)
     if not reached:
         return CLOCK_AGREES_NOW.format(folder=folder)
-    return STAGE_APPROVED.format(stage=reached, folder=folder)
+    by = approved_revision(folder, reached)
+    return STAGE_APPROVED.format(stage=reached, folder=by)
 
 
 def _follow(

@@ -68,6 +68,22 @@ class FolderEntry:
         }
 
 
+def entry_of(row: Substantiation) -> FolderEntry:
+    """A revision as it would be written down again."""
+    same = {
+        one.name: getattr(row, one.name)
+        for one in fields(FolderEntry)
+        if one.name not in ("temporary_limit", "threshold")
+    }
+    return FolderEntry(
+        **same,
+        temporary_limit=Counters(
+            row.temporary_limit_minutes, row.temporary_limit_cycles
+        ),
+        threshold=Counters(row.threshold_minutes, row.threshold_cycles),
+    )
+
+
 @dataclass(frozen=True, slots=True)
 class CaseEntry:
     """A load case; the margin is empty where it was not shown as a number."""
