@@ -18,10 +18,12 @@ from repairs.views import (
     findings,
     life_limits,
     maps,
+    repair_entry,
     repair_steps,
     repairs,
     reports,
     requirements,
+    surveys,
 )
 
 urlpatterns = [
@@ -122,8 +124,22 @@ urlpatterns = [
         for what in approvals.SUBJECTS
     ),
     path("repairs/", repairs.repair_list, name="repair_list"),
-    path("repairs/new/", repairs.repair_new, name="repair_new"),
+    path("repairs/new/", repair_entry.repair_new, name="repair_new"),
+    path("repairs/plan/", repair_entry.repair_plan_page, name="repair_plan"),
     path("repairs/<int:pk>/", repairs.repair, name="repair"),
+    path(
+        "repairs/<int:pk>/release/", repair_entry.repair_release, name="repair_release"
+    ),
+    *(
+        path(f"repairs/<int:pk>/{word}/", page, name=f"repair_{word}")
+        for word, page in {
+            "start": repair_steps.repair_start_page,
+            "step": repair_steps.repair_step_page,
+            "inspect": repair_steps.repair_inspect_page,
+            "reclassify": repair_steps.repair_reclassify_page,
+            "cancel": repair_steps.repair_cancel_page,
+        }.items()
+    ),
     path(
         "repairs/<int:pk>/photographs/",
         repair_steps.repair_photographs,
@@ -141,6 +157,23 @@ urlpatterns = [
         "life-limits/<int:pk>/again/",
         life_limits.life_limit_again,
         name="life_limit_again",
+    ),
+    path("aircraft/<int:pk>/surveys/", surveys.survey_list, name="survey_list"),
+    path("aircraft/<int:pk>/surveys/new/", surveys.survey_new, name="survey_new"),
+    path("surveys/<int:pk>/", surveys.survey, name="survey"),
+    path("surveys/<int:pk>/lines/", surveys.survey_lines, name="survey_lines"),
+    path("surveys/<int:pk>/import/", surveys.survey_import, name="survey_import"),
+    path(
+        "surveys/<int:pk>/compare/", surveys.survey_compare_page, name="survey_compare"
+    ),
+    path("surveys/<int:pk>/close/", surveys.survey_close_page, name="survey_close"),
+    path(
+        "survey-items/<int:pk>/match/", surveys.survey_match_page, name="survey_match"
+    ),
+    path(
+        "survey-items/<int:pk>/answer/",
+        surveys.survey_answer_page,
+        name="survey_answer",
     ),
     path("attachments/<int:pk>/", attachments.attachment, name="attachment"),
     path(

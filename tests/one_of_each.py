@@ -43,6 +43,8 @@ from repairs.models import (
     Photograph,
     Repair,
     RequirementSubject,
+    Survey,
+    SurveyItem,
 )
 from repairs.services.accomplishments import accomplishment_record
 from repairs.services.disposition_entry import DispositionEntry
@@ -50,9 +52,12 @@ from repairs.services.dispositions import disposition_decide
 from repairs.services.evaluation_inputs import Choice
 from repairs.services.evaluations import default_use, evaluation_make
 from repairs.services.inspections import requirement_raise
-from repairs.services.repair_entry import Data, RepairEntry
-from repairs.services.repairs import repair_record
+from repairs.services.repair_entry import Data, RepairEntry, Step
+from repairs.services.repairs import repair_plan, repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from repairs.services.survey_entry import SurveyEntry
+from repairs.services.surveys import survey_item_record, survey_open
+from repairs.sheet_lines import SheetLine
 from tests.factories import (
     BEGAN,
     FIXTURES,
@@ -93,10 +98,13 @@ class OneOfEach:
     report: OccurrenceReport
     disposition: Disposition
     repair: Repair
+    planned: Repair
     document: Document
     requirement: InspectionRequirement
     subject: RequirementSubject
     accomplishment: Accomplishment
+    survey: Survey
+    survey_item: SurveyItem
     part: SafeLifePart
     life_limit: LifeLimit
     attachment: Attachment
@@ -129,10 +137,12 @@ def one_of_each_make() -> OneOfEach:
         evaluation=_evaluation(world, crack),
         disposition=_disposition(world, decided),
         repair=_repair(world),
+        planned=_planned(world),
         document=_document(world, "letter", "ARD-L-0088"),
         requirement=requirement,
         subject=requirement.subjects.get(),
         accomplishment=_accomplishment(requirement),
+        **_survey(world),
         part=part,
         life_limit=part.part_number.life_limits.get(),
         attachment=_photograph(world, finding),
@@ -236,6 +246,23 @@ def _repair(world: World) -> Repair:
     )
 
 
+def _planned(world: World) -> Repair:
+    return repair_plan(
+        entry=RepairEntry(
+            aircraft=world.aircraft,
+            place_entered="STA 500 to 520, S-3L to S-4L",
+            kind="external_doubler",
+            description="external doubler, to be done",
+            category="pending",
+            approval_basis="unknown",
+            released_on=None,
+            steps=(Step("drill and fit"), Step("seal")),
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
 def _document(world: World, kind: str, reference: str) -> Document:
     with Writing(actor=None, action="document_record", at=NOW) as w:
         return document_get_or_create(
@@ -273,6 +300,20 @@ def _accomplishment(requirement: InspectionRequirement) -> Accomplishment:
         result="no_finding",
         proof=program(),
     ).row
+
+
+def _survey(world: World) -> dict[str, Any]:
+    survey = survey_open(
+        entry=SurveyEntry(world.aircraft, "whole aircraft", FOUND, world.assessor),
+        today=TODAY,
+        actor=world.engineer,
+        at=NOW,
+    )
+    line = SheetLine("STA 641, 4 in below S-7R", "damage", "dent")
+    (item,) = survey_item_record(
+        survey=survey, lines=[line], actor=world.engineer, at=NOW
+    )
+    return {"survey": survey, "survey_item": item}
 
 
 def _part(world: World) -> SafeLifePart:

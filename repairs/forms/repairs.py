@@ -1,8 +1,7 @@
-"""A repair as it was released, its layers and fasteners, and what it answers."""
+"""A repair as planned, and as it was released; what it answers and lies over."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from typing import Any
 
 from django import forms
@@ -11,7 +10,7 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.forms.signing import SignatureForm
 from fleet.models import Aircraft, Criticality, Document, Organisation, Person
-from fleet.units import UnitError, length_read
+from repairs.described import APART, OVER
 from repairs.forms.fields import (
     UNIT_WORDS,
     CountersForm,
@@ -22,6 +21,19 @@ from repairs.forms.fields import (
 )
 from repairs.forms.findings import FROM_LOCATION, not_in_future
 from repairs.forms.groups import Group, group
+from repairs.forms.repair_lines import (
+    ANSWERS_HELP,
+    FASTENERS_HELP,
+    LAYERS_HELP,
+    REQUIRED_HELP,
+    STEPS_HELP,
+    LinesField,
+    answers_of,
+    fastener_of,
+    layer_of,
+    required_of,
+    step_of,
+)
 from repairs.models import (
     ApprovalBasis,
     Disposition,
@@ -30,17 +42,19 @@ from repairs.models import (
     Repair,
     RepairCategory,
     RepairType,
+    Substantiation,
     Surface,
 )
-from repairs.services.repair_entry import Answered, Data, Fastener, Layer
-
-LAYERS_HELP = "One a line: material; thickness; batch. As: 2024-T3 clad; 0.063 in; B-1."
-FASTENERS_HELP = (
-    "One a line: fastener; diameter; pitch; edge distance; rows; count. "
-    "A hyphen where it is not known."
+from repairs.services.repair_entry import (
+    Answered,
+    Data,
+    Fastener,
+    Layer,
+    Lies,
+    Required,
+    Step,
 )
-BLANK = ("", "-")
-NOT_WHOLE = "“{text}” is not a whole number."
+
 STAGES = [
     ("not_applicable", "not applicable"),
     ("none", "none yet"),
@@ -59,10 +73,19 @@ REMOVED = [
     ("partly", "partly"),
     ("no", "no"),
 ]
+REQUIRED_OR_NOT = [("", "not said"), ("yes", "required"), ("no", "not required")]
+SUPERSEDES = "supersedes"
+HOW_IT_LIES = [
+    ("", "choose"),
+    (SUPERSEDES, "supersedes it"),
+    (OVER, "lies over it"),
+    (APART, "does not touch it"),
+]
+OFFERED_IF_ANY = ("supersedes", "disposition", "substantiation")
 
 
-class RepairForm(SignatureForm, CountersForm, PhotoForm):
-    """What was done, with which data, at which release."""
+class PlanForm(forms.Form):
+    """What is known of a repair before it is done."""
 
     aircraft = forms.ModelChoiceField(Aircraft.objects.none())
     place_entered = forms.CharField(
@@ -90,35 +113,15 @@ class RepairForm(SignatureForm, CountersForm, PhotoForm):
     chart_number = forms.CharField(
         label="chart number",
         required=False,
-        help_text="On the damage and repair chart.",
+        help_text="On the damage and repair chart, and where it is marked outside.",
     )
-    layers = forms.CharField(
-        required=False, widget=forms.Textarea(attrs={"rows": 3}), help_text=LAYERS_HELP
-    )
-    fasteners = forms.CharField(
-        required=False,
-        widget=forms.Textarea(attrs={"rows": 3}),
-        help_text=FASTENERS_HELP,
-    )
-    remaining_thickness_mm = LengthField(
-        label="remaining thickness", help_text="Blend-out: the smallest measured."
-    )
-    blend_depth_mm = LengthField(label="blend depth")
+    required = LinesField(label="layers required", help_text=REQUIRED_HELP)
+    steps = LinesField(help_text=STEPS_HELP)
     category = forms.ChoiceField(choices=RepairCategory.choices, initial="pending")
     category_reason = forms.CharField(
         label="why this category", required=False, help_text="Needed if none applies."
     )
-    replacement_limit_cycles = CounterField(
-        label="replacement limit, flight cycles", required=False
-    )
-    replacement_limit_minutes = HoursField(
-        label="replacement limit, flight hours", required=False
-    )
-    replacement_limit_on = DayField(label="replacement limit, date", required=False)
     stage_reached = forms.ChoiceField(label="approval stage reached", choices=STAGES)
-    temporary_limit_cycles = CounterField(
-        label="limit approved at stage 1, flight cycles", required=False
-    )
     approval_basis = forms.ChoiceField(choices=ApprovalBasis.choices)
     document_kind = forms.ChoiceField(
         label="approval data", choices=Document.Kind.choices, initial="repair_manual"
@@ -126,9 +129,123 @@ class RepairForm(SignatureForm, CountersForm, PhotoForm):
     document_reference = forms.CharField(label="its reference", required=False)
     document_revision = forms.CharField(label="its revision", required=False)
     document_page = forms.CharField(label="page or figure", required=False)
+    substantiation = forms.ModelChoiceField(
+        Substantiation.objects.none(), required=False
+    )
     disposition = forms.ModelChoiceField(Disposition.objects.none(), required=False)
+    inspection_required = forms.ChoiceField(
+        label="independent inspection", choices=REQUIRED_OR_NOT, required=False
+    )
+
+    GROUPS: tuple[tuple[str, tuple[str, ...]], ...] = (
+        ("What and where", ("aircraft", "place_entered", "kind", "description",
+                            "length_mm", "width_mm")),
+        ("Structural item", ("element", "element_label", "surface", "criticality",
+                             "criticality_source", "ata", "chart_number")),
+        ("Approval data", ("approval_basis", "document_kind", "document_reference",
+                           "document_revision", "document_page", "substantiation",
+                           "disposition", "required")),
+        ("Category", ("category", "category_reason", "stage_reached")),
+        ("Work", ("steps", "inspection_required")),
+    )  # fmt: skip
+    PASSED_ON: tuple[str, ...] = (
+        "aircraft", "place_entered", "kind", "description", "length_mm", "width_mm",
+        "element", "element_label", "surface", "criticality", "criticality_source",
+        "ata", "chart_number", "category", "category_reason", "stage_reached",
+        "approval_basis", "disposition", "substantiation", "inspection_required",
+    )  # fmt: skip
+
+    def __init__(
+        self, *args: Any, aircraft: Any, choices: dict[str, Any], unit: str,
+        today: Any, **kwargs: Any,
+    ) -> None:  # fmt: skip
+        super().__init__(*args, **kwargs)
+        choose(self, "aircraft", aircraft)
+        for name, rows in choices.items():
+            if name not in self.fields:
+                continue
+            choose(self, name, rows)
+            if name in OFFERED_IF_ANY and not rows.exists():
+                del self.fields[name]
+        for field in self.fields.values():
+            if isinstance(field, LengthField):
+                field.unit = unit
+                said = f"{UNIT_WORDS[unit]} unless you write another unit."
+                field.help_text = f"{field.help_text} {said}".strip()
+        self.unit, self.today = unit, today
+
+    def groups(self) -> list[Group]:
+        """The fields in the order they are asked."""
+        return [
+            group(self, legend, names, legend == "Structural item")
+            for legend, names in self.GROUPS
+        ]
+
+    def clean_required(self) -> list[Required]:
+        return [required_of(row, self.unit) for row in self.cleaned_data["required"]]
+
+    def clean_inspection_required(self) -> bool | None:
+        return {"yes": True, "no": False}.get(self.cleaned_data["inspection_required"])
+
+    def approval(self) -> Data | None:
+        data = self.cleaned_data
+        if not data["document_reference"]:
+            return None
+        return Data(
+            data["document_kind"],
+            data["document_reference"],
+            data["document_revision"],
+            data["document_page"],
+        )
+
+    def said(self) -> dict[str, Any]:
+        """What a repair's entry is told by this form."""
+        data = self.cleaned_data
+        return {
+            **{name: data[name] for name in self.PASSED_ON if name in data},
+            "approval": self.approval(),
+            "required": data["required"],
+            "steps": self.steps_said(),
+        }
+
+    def steps_said(self) -> list[Step]:
+        return [step_of(cells, None, None) for cells in self.cleaned_data["steps"]]
+
+
+class RepairForm(SignatureForm, CountersForm, PhotoForm, PlanForm):
+    """What was done, with which data, at which release."""
+
+    layers = LinesField(label="layers fitted", help_text=LAYERS_HELP)
+    answers = LinesField(label="differences answered", help_text=ANSWERS_HELP)
+    answered_by = forms.ModelChoiceField(
+        Person.objects.none(), label="who answers them", required=False
+    )
+    fasteners = LinesField(help_text=FASTENERS_HELP)
+    sealant = forms.CharField(required=False)
+    protection = forms.CharField(
+        required=False, help_text="Primer, paint, corrosion inhibitor."
+    )
+    remaining_thickness_mm = LengthField(
+        label="remaining thickness", help_text="Blend-out: the smallest measured."
+    )
+    blend_depth_mm = LengthField(label="blend depth")
+    replacement_limit_cycles = CounterField(
+        label="replacement limit, flight cycles", required=False
+    )
+    replacement_limit_minutes = HoursField(
+        label="replacement limit, flight hours", required=False
+    )
+    replacement_limit_on = DayField(label="replacement limit, date", required=False)
+    temporary_limit_cycles = CounterField(
+        label="limit approved at stage 1, flight cycles", required=False
+    )
     released_on = DayField(label="released on")
     release_reference = forms.CharField(label="release reference", required=False)
+    work_order = forms.CharField(
+        label="work order",
+        required=False,
+        help_text="Or the form on which a major repair was reported.",
+    )
     released_by = forms.ModelChoiceField(
         Person.objects.none(), label="released by", required=False,
         help_text="Yourself signs it here; another's release is recorded from its "
@@ -151,84 +268,68 @@ class RepairForm(SignatureForm, CountersForm, PhotoForm):
     weight_change_g = forms.IntegerField(
         label="weight change, g", required=False, min_value=-(10**7), max_value=10**7
     )
+    arm_mm = LengthField(
+        label="moment arm", signed=True, help_text="Of the weight change, from datum."
+    )
 
     GROUPS = (
-        ("What and where", ("aircraft", "place_entered", "kind", "description",
-                            "length_mm", "width_mm")),
-        ("Structural item", ("element", "element_label", "surface", "criticality",
-                             "criticality_source", "ata", "chart_number")),
-        ("Materials", ("layers", "fasteners", "remaining_thickness_mm",
-                       "blend_depth_mm", "weight_change_g")),
+        *PlanForm.GROUPS[:3],
+        ("Materials", ("layers", "answers", "answered_by", "fasteners", "sealant",
+                       "protection", "remaining_thickness_mm", "blend_depth_mm",
+                       "weight_change_g", "arm_mm")),
         ("Category", ("category", "category_reason", "replacement_limit_cycles",
                       "replacement_limit_minutes", "replacement_limit_on",
                       "stage_reached", "temporary_limit_cycles")),
-        ("Approval data", ("approval_basis", "document_kind", "document_reference",
-                           "document_revision", "document_page", "disposition")),
-        ("Release", ("released_on", "release_reference", "released_by", "at_minutes",
-                     "at_cycles", "at_landings", "performed_by", "inspected_by",
-                     "organisation", "legacy", "evidence", "supersedes")),
+        ("Release", ("released_on", "release_reference", "work_order", "released_by",
+                     "at_minutes", "at_cycles", "at_landings", "performed_by", "steps",
+                     "inspection_required", "inspected_by", "organisation", "legacy",
+                     "evidence", "supersedes")),
         ("Photographs", ("photographs", "role", "caption")),
     )  # fmt: skip
     PASSED_ON = (
-        "aircraft", "place_entered", "kind", "description", "length_mm", "width_mm",
-        "element", "element_label", "surface", "criticality", "criticality_source",
-        "ata", "chart_number", "remaining_thickness_mm", "blend_depth_mm", "category",
-        "category_reason", "replacement_limit_on", "stage_reached",
-        "temporary_limit_cycles", "approval_basis", "disposition", "released_on",
+        *PlanForm.PASSED_ON, "layers", "fasteners", "sealant", "protection",
+        "work_order", "remaining_thickness_mm", "blend_depth_mm",
+        "replacement_limit_on", "temporary_limit_cycles", "released_on",
         "release_reference", "released_by", "performed_by", "inspected_by",
-        "organisation", "legacy", "evidence", "supersedes", "weight_change_g", "layers",
-        "fasteners",
+        "organisation", "legacy", "evidence", "weight_change_g", "arm_mm",
     )  # fmt: skip
-
-    def __init__(
-        self, *args: Any, aircraft: Any, choices: dict[str, Any], unit: str,
-        today: Any, **kwargs: Any,
-    ) -> None:  # fmt: skip
-        super().__init__(*args, **kwargs)
-        choose(self, "aircraft", aircraft)
-        for name, rows in choices.items():
-            choose(self, name, rows)
-            if name in ("supersedes", "disposition") and not rows.exists():
-                del self.fields[name]
-        for field in self.fields.values():
-            if isinstance(field, LengthField):
-                field.unit = unit
-                said = f"{UNIT_WORDS[unit]} unless you write another unit."
-                field.help_text = f"{field.help_text} {said}".strip()
-        self.unit, self.today = unit, today
-
-    def groups(self) -> list[Group]:
-        """The fields in the order they are asked."""
-        return [
-            group(self, legend, names, legend == "Structural item")
-            for legend, names in self.GROUPS
-        ]
 
     def clean_released_on(self) -> Any:
         return not_in_future(self.cleaned_data["released_on"], self.today)
 
     def clean_layers(self) -> list[Layer]:
-        return [_layer(cells, self.unit) for cells in _lines(self, "layers")]
+        return [layer_of(row, self.unit) for row in self.cleaned_data["layers"]]
 
     def clean_fasteners(self) -> list[Fastener]:
-        return [_fastener(cells, self.unit) for cells in _lines(self, "fasteners")]
+        return [fastener_of(row, self.unit) for row in self.cleaned_data["fasteners"]]
 
-    def approval(self) -> Data | None:
-        data = self.cleaned_data
-        if not data["document_reference"]:
-            return None
-        return Data(
-            data["document_kind"],
-            data["document_reference"],
-            data["document_revision"],
-            data["document_page"],
-        )
+    def clean(self) -> dict[str, Any]:
+        data = super().clean() or self.cleaned_data
+        if "required" in data and "answers" in data:
+            try:
+                data["required"] = answers_of(
+                    data["required"], data["answers"], data.get("answered_by")
+                )
+            except forms.ValidationError as error:
+                self.add_error("answers", error)
+        return data
 
-    def replacement_limit(self) -> Counters:
+    def said(self) -> dict[str, Any]:
         data = self.cleaned_data
-        return Counters(
-            data["replacement_limit_minutes"], data["replacement_limit_cycles"]
-        )
+        return {
+            **super().said(),
+            "at": self.counters(),
+            "replacement_limit": Counters(
+                data["replacement_limit_minutes"], data["replacement_limit_cycles"]
+            ),
+            "supersedes": list(data.get("supersedes", ())),
+        }
+
+    def steps_said(self) -> list[Step]:
+        """Of a repair done in one go, its parts were done then."""
+        data = self.cleaned_data
+        on, by = data["released_on"], data["performed_by"]
+        return [step_of(cells, on, by) for cells in data.get("steps", ())]
 
 
 class AnsweredForm(forms.Form):
@@ -258,51 +359,19 @@ class AnsweredForm(forms.Form):
         )
 
 
-class RemoveForm(forms.Form):
-    """When and why a repair left the aircraft."""
+class LiesForm(forms.Form):
+    """How the repair lies to an earlier one whose extent it meets."""
 
-    removed_on = DayField(label="removed on")
-    reason = forms.CharField(help_text="Such as: panel replaced under R-0031.")
+    how = forms.ChoiceField(choices=HOW_IT_LIES, label="this repair")
 
-    def __init__(self, *args: Any, today: Any, **kwargs: Any) -> None:
+    def __init__(self, *args: Any, repair: Repair, **kwargs: Any) -> None:
+        kwargs["prefix"] = f"over-{repair.pk}"
         super().__init__(*args, **kwargs)
-        self.today = today
+        self.repair = repair
 
-    def clean_removed_on(self) -> Any:
-        return not_in_future(self.cleaned_data["removed_on"], self.today)
+    @property
+    def supersedes(self) -> bool:
+        return self.cleaned_data["how"] == SUPERSEDES
 
-
-def _lines(form: RepairForm, name: str) -> list[list[str]]:
-    text = form.cleaned_data[name]
-    return [
-        [cell.strip() for cell in line.split(";")]
-        for line in text.splitlines()
-        if line.strip()
-    ]
-
-
-def _layer(cells: Sequence[str], unit: str) -> Layer:
-    material, thickness, batch = (*cells, "", "")[:3]
-    return Layer(material, thickness, _known_size(thickness, unit), batch=batch)
-
-
-def _fastener(cells: Sequence[str], unit: str) -> Fastener:
-    name, *rest = (*cells, "", "", "", "", "")[:6]
-    diameter, pitch, edge = (_known_size(text, unit) for text in rest[:3])
-    rows, count = (_whole(text) if text not in BLANK else None for text in rest[3:])
-    return Fastener(name, diameter, pitch, edge, rows, count)
-
-
-def _known_size(text: str, unit: str) -> float | None:
-    if text in BLANK:
-        return None
-    try:
-        return length_read(text, unit=unit)
-    except UnitError as error:
-        raise forms.ValidationError(str(error)) from error
-
-
-def _whole(text: str) -> int:
-    if not text.isdecimal():
-        raise forms.ValidationError(NOT_WHOLE.format(text=text))
-    return int(text)
+    def lies(self) -> Lies:
+        return Lies(self.repair, self.cleaned_data["how"])

@@ -22,6 +22,7 @@ from repairs.models import (
     Repair,
     RepairState,
     RequirementState,
+    Substantiation,
 )
 
 
@@ -75,7 +76,11 @@ def repair_choices(
         "disposition": Disposition.objects.filter(
             **on_aircraft, replaced_by__isnull=True
         ),
+        "substantiation": Substantiation.objects.filter(
+            **on_aircraft, replaced_by__isnull=True
+        ),
         "performed_by": people,
+        "answered_by": people,
         "inspected_by": people,
         "released_by": people,
         "organisation": Organisation.objects.filter(
@@ -85,13 +90,27 @@ def repair_choices(
 
 
 def findings_to_answer(
-    aircraft: Aircraft | None, states: Sequence[str], also: int | None
+    aircraft: Aircraft | None, states: Sequence[str], also: Sequence[int] = ()
 ) -> list[Finding]:
-    """Open findings a repair may answer; and the one it is recorded for."""
+    """Open findings a repair may answer; and those it is recorded for."""
     if aircraft is None:
         return []
-    rows = Finding.objects.filter(Q(state__in=states) | Q(pk=also), aircraft=aircraft)
-    return list(rows.order_by("pk"))
+    wanted = Q(state__in=states) | Q(pk__in=also)
+    return list(Finding.objects.filter(wanted, aircraft=aircraft).order_by("pk"))
+
+
+def covered_keys(asked: int | None, folder: int | None) -> list[int]:
+    """Keys of the findings a planned repair is for: the one asked, a folder's."""
+    rows = Finding.objects.filter(
+        Q(pk=asked)
+        | Q(
+            substantiation_rows__substantiation=folder,
+            substantiation_rows__withdrawn=False,
+        )
+    )
+    if asked is None and folder is None:
+        return []
+    return list(rows.distinct().values_list("pk", flat=True))
 
 
 def events_of(user: User) -> QuerySet[Event]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from django.db.models import QuerySet
 
 from fleet.models import AuthorisationScope
-from repairs.models import Approval, Meaning, Repair
+from repairs.models import Approval, Meaning, Repair, RepairStep
 
 INSPECTION_LINE = (AuthorisationScope.INSPECT, AuthorisationScope.NDT)
 
@@ -18,7 +18,17 @@ def inspections_of(repair: Repair) -> QuerySet[Approval]:
     ).select_related("overrules", "authorisation", "signer_person")
 
 
-def rejections_open(repair: Repair) -> list[Approval]:
-    """Rejections by an inspector that no other inspection has answered; a query."""
+def open_rejections(repair: Repair) -> QuerySet[Approval]:
+    """Rejections by an inspector that no other inspection has answered."""
     rows = inspections_of(repair).filter(meaning=Meaning.REJECTED)
-    return list(rows.filter(overruled_by__isnull=True))
+    return rows.filter(overruled_by__isnull=True)
+
+
+def rejections_open(repair: Repair) -> list[Approval]:
+    """The same, read; one query."""
+    return list(open_rejections(repair))
+
+
+def steps_open(repair: Repair) -> QuerySet[RepairStep]:
+    """Steps still to be done."""
+    return repair.steps.filter(done_on__isnull=True)

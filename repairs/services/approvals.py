@@ -145,6 +145,7 @@ def approval_write(
     statement: str = "",
     document: Signed | None = None,
     scopes: tuple[AuthorisationScope, ...] = (),
+    overrules: Approval | None = None,
 ) -> Approval:
     """Inside a writing: the signature, after the same checks but that of the digest.
 
@@ -190,6 +191,7 @@ def approval_write(
         document_revision=signed.revision,
         document_date=signed.date,
         attachment=signed.attachment,
+        overrules=overrules,
         **{SUBJECT_COLUMN[type(subject)]: subject},
     )
     row.content = signed_text(row, subject, identity=proof.how)
