@@ -77,8 +77,9 @@ def _beyond(finding: Finding) -> Iterable[str]:
     rows = finding.limit_checks.filter(outcome="beyond").select_related(
         "limit__document"
     )
-    words = (f"{row.limit.document} {row.limit.paragraph}".strip() for row in rows)
-    return [BEYOND.format(limit=limit) for limit in dict.fromkeys(words)]
+    limits = [row.limit for row in rows]
+    words = (f"{x.document} {x.paragraph}" if x is not None else "" for x in limits)
+    return [BEYOND.format(limit=limit).strip() for limit in dict.fromkeys(words)]
 
 
 def _crack(finding: Finding) -> Iterable[str]:

@@ -136,10 +136,11 @@ def report_decide_write(
     *,
     decided_by: Person | None,
     detected_at: dt.datetime | None = None,
+    field: str = "reason",
 ) -> None:
     """Inside a writing: the answer, and its clock anew if the moment was given."""
     if not answer.reason.strip():
-        raise ValidationError({"reason": REASON_NEEDED, "report_reason": REASON_NEEDED})
+        raise ValidationError({field: REASON_NEEDED})
     columns: dict[str, object] = {
         "state": "reportable" if answer.reportable else "not_reportable",
         "reason": answer.reason.strip(),
@@ -157,7 +158,9 @@ def finding_decide_write(
     questions_open_write(w, finding)
     rows = OccurrenceReport.objects.select_for_update(of=("self",))
     for row in rows.filter(finding=finding, state="to_assess"):
-        report_decide_write(w, row, answer, decided_by=decided_by)
+        report_decide_write(
+            w, row, answer, decided_by=decided_by, field="report_reason"
+        )
 
 
 def report_send(
@@ -168,10 +171,17 @@ def report_send(
     at: dt.datetime,
 ) -> OccurrenceReport:
     """What was sent, kept as it was sent; missing data hold nothing back."""
-    _complete(report, sending, at)
     with _writing(subject_of(report), "report_send", actor, at) as w:
-        row = _locked(w, report, "send")
-        w.change(row, state="sent", **_sent(sending))
+        return report_send_write(w, report, sending)
+
+
+def report_send_write(
+    w: Writing, report: OccurrenceReport, sending: Sending
+) -> OccurrenceReport:
+    """Inside a writing: the text as it went out, and when."""
+    _complete(report, sending, w.at)
+    row = _locked(w, report, "send")
+    w.change(row, state="sent", **_sent(sending))
     return row
 
 
@@ -219,10 +229,15 @@ def report_close(
     if not reason.strip():
         raise ValidationError({"reason": REASON_NEEDED})
     with _writing(subject_of(report), "report_close", actor, at, reason) as w:
-        row = _locked(w, report, "close")
-        if row.supplements_id is not None:
-            raise ValidationError(SUPPLEMENTS_OWN)
-        w.change(row, state="closed")
+        return report_close_write(w, report)
+
+
+def report_close_write(w: Writing, report: OccurrenceReport) -> OccurrenceReport:
+    """Inside a writing: closed; its reason is the writing's."""
+    row = _locked(w, report, "close")
+    if row.supplements_id is not None:
+        raise ValidationError(SUPPLEMENTS_OWN)
+    w.change(row, state="closed")
     return row
 
 

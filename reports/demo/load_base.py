@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import datetime as dt
 from collections.abc import Iterator
-from dataclasses import dataclass, field
+from dataclasses import asdict, dataclass, field
 from functools import partial
 from itertools import groupby
 from typing import Any
@@ -37,16 +37,12 @@ from reports.demo.people import (
     PEOPLE,
     SECOND_OPERATOR,
 )
+from reports.demo.policies import EUROPE, POLICIES
 from reports.demo.timeline import Rank, Step, quarter_after
 from reports.demo.usage import Logbook, UsageDay
 
 BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
-REGIME = "EASA"
 POLICIES_SINCE = dt.date(2000, 1, 1)
-POLICIES = (
-    ("stage_2_months", 12, "months", "AMC 20-20A appendix 3 annex 1"),
-    ("report_hours", 72, "hours", "Regulation (EU) No 376/2014, article 4"),
-)
 OPERATOR_CODES = {OPERATOR: "BRF", SECOND_OPERATOR: "OAL"}
 GEOMETRY_FILE, MATERIALS_FILE = "ard52.toml", "materials.toml"
 AUTHORISED_BY = "company authorisation register"
@@ -77,7 +73,7 @@ def people_load(password: str) -> Loaded:
             operators[name] = fleet_people.operator_create(
                 code=code,
                 name=name,
-                regime=REGIME,
+                regime=EUROPE,
                 programme_three_stages=True,
                 at=BEGAN,
             )
@@ -113,15 +109,10 @@ def people_load(password: str) -> Loaded:
 
 
 def policies_load(loaded: Loaded) -> None:
-    """Clocks of the demo operator's regime, each with its source."""
-    for key, value, unit, source in POLICIES:
+    """Clocks of the demo operator's regime and of others, each with its source."""
+    for row in POLICIES:
         fleet_people.policy_set(
-            key=key,
-            value=value,
-            unit=unit,
-            source=source,
-            grade="quoted",
-            regime=REGIME,
+            **asdict(row),
             effective_from=POLICIES_SINCE,
             actor=loaded.users["administrator"],
             at=BEGAN,

@@ -13,7 +13,6 @@ from fleet.services.history import Writing
 from fleet.services.signing import PROGRAM, Proof
 from repairs.services.assessing import (
     DataCited,
-    Reportability,
     finding_assess,
     finding_assess_write,
     finding_close,
@@ -23,6 +22,7 @@ from repairs.services.dispositions import disposition_write
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
+from reports.demo.load_reports import crack_report_write, level_determine
 from reports.demo.records import (
     DemoDisposition,
     DemoFinding,
@@ -31,10 +31,6 @@ from reports.demo.records import (
     Scenario,
 )
 from reports.demo.timeline import Rank, Step, quarter_after
-
-REPORTABLE_HOLES = 4
-REPORT = Reportability(True, "several cracked holes in one row of a joint")
-NO_REPORT = Reportability(False, "one crack, found by its planned inspection")
 
 
 def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
@@ -92,6 +88,8 @@ def _decide_all(
                 _entry(loaded, decision),
                 proof=Proof.by_program(loaded.people[decision.decided_by]),
             )
+            for key in decision.findings:
+                crack_report_write(w, loaded, loaded.rows[key])
 
 
 def _assess_alone(loaded: Loaded, finding: DemoFinding, at: dt.datetime) -> None:
@@ -122,6 +120,7 @@ def _entry(loaded: Loaded, decision: DemoDisposition) -> DispositionEntry:
         at=amounts(decision.at),
         limit=Amounts(cycles=limits.get("cycles")),
         limit_on=limit_on,
+        crew_informed_on=decision.decided_on if limits else None,
         scale="minor",
         scale_reason="within the published manual",
         new_requirement=_inspection(loaded, decision),
@@ -154,9 +153,7 @@ def _close(
     loaded: Loaded, finding: DemoFinding, repair: DemoRepair, at: dt.datetime
 ) -> None:
     row = loaded.rows[finding.key]
-    report = None
-    if finding.damage_type == "crack":
-        report = REPORT if finding.cluster_count >= REPORTABLE_HOLES else NO_REPORT
+    level_determine(loaded, row, at)
     finding_close(
         finding=row,
         proof=Proof.by_program(loaded.people["certifier"]),
@@ -164,6 +161,5 @@ def _close(
         cause=finding.cause,
         actor=loaded.users["certifier"],
         at=at,
-        report=report,
         reason=f"repaired: {loaded.rows[repair.key]}",
     )

@@ -18,6 +18,7 @@ from repairs.services.measuring import Measuring, measurement_record
 from reports.demo.fleet import BY_MSN, day_date, day_number
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
+from reports.demo.load_reports import event_report
 from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario, Truth
 from reports.demo.timeline import Rank, Step, quarter_after
 from reports.demo.usage import Logbook
@@ -87,6 +88,7 @@ def _event(loaded: Loaded, event: DemoEvent, at: dt.datetime) -> None:
         actor=recorder,
         at=at,
     )
+    event_report(loaded, row, at)
     loaded.rows[event.key] = event_close(
         event=row,
         reason="inspected as the manual asks; damage recorded as findings",
