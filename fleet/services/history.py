@@ -17,7 +17,13 @@ from types import TracebackType
 from typing import Any, Self, TypeVar
 
 from django.core.exceptions import ValidationError
-from django.db import IntegrityError, OperationalError, models, transaction
+from django.db import (
+    IntegrityError,
+    OperationalError,
+    connection,
+    models,
+    transaction,
+)
 
 from fleet.canonical import canonical, plain
 from fleet.cleaning import busy, clean_row, refusal, taken
@@ -28,7 +34,14 @@ from fleet.digests import (
     row_digest,
     run_digest,
 )
-from fleet.models import HistoryEntry, HistoryHead, HistoryItem, Operator, User
+from fleet.models import (
+    Aircraft,
+    HistoryEntry,
+    HistoryHead,
+    HistoryItem,
+    Operator,
+    User,
+)
 from fleet.refusals import Refused
 from fleet.selectors.history import just_done
 from fleet.services.sending import changed_check, form_claim, form_written
@@ -81,6 +94,7 @@ class Writing:
         self._token = _open.set(True)
         try:
             self._form = form_claim(self.at)
+            self._queue()
         except BaseException as refused:
             self._leave(refused)
             raise
@@ -103,6 +117,14 @@ class Writing:
             raise self._refusal(error) from error
         if isinstance(error, OperationalError) and (refused := busy(error)):
             raise refused from error
+
+    def _queue(self) -> None:
+        """Who writes about one aircraft waits here for one another, before any other
+        lock: in whatever order services lock findings, repairs and numbers after it,
+        they cannot wait for each other. SQLite has one writer at a time anyway."""
+        kind, _, key = self.stream.partition(":")
+        if kind == "aircraft" and connection.features.has_select_for_update:
+            Aircraft.objects.select_for_update(no_key=True).filter(pk=int(key)).first()
 
     def _leave(self, error: BaseException | None) -> None:
         """Commit or roll back; what is rolled back leaves the form's key free."""
