@@ -161,9 +161,15 @@ def _answering(loaded: Loaded, repair: DemoRepair, entry: RepairEntry) -> Repair
         ],
         disposition=loaded.rows.get(f"S{key[1:]}"),
         replacement_limit=Amounts(cycles=limits.get("cycles")),
-        temporary_limit_cycles=repair.temporary_limit_cycles,
+        temporary_limit_cycles=_from_release(repair),
         stage_reached="1" if repair.stage_due_on else "not_applicable",
     )
+
+
+def _from_release(repair: DemoRepair) -> int | None:
+    """The scenario names what the aircraft may show; a limit counts from release."""
+    shown = repair.temporary_limit_cycles
+    return None if shown is None else shown - repair.at.cycles
 
 
 def _evidence(repair: DemoRepair) -> str:

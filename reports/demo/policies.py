@@ -1,6 +1,7 @@
 """Numbers of rules that the demo offers, each with its source and how it was read.
 
-They are true rules, not invented ones; a clock from memory says so on its page.
+They are true rules, not invented ones; a clock from memory says so on its page. Only
+the reach of a review is the invented operator's own choice, one bay.
 """
 
 from __future__ import annotations
@@ -32,6 +33,10 @@ class DemoPolicy:
 
 POLICIES = (
     DemoPolicy(EUROPE, "stage_2_months", 12, "months", "AMC 20-20A app. 3 annex 1"),
+    DemoPolicy(
+        EUROPE, "review_reach_mm", 508, "mm", "engineering procedure EP-07 (invented)",
+        "", "adopted",
+    ),
     DemoPolicy(EUROPE, "report_hours", 72, "hours", OCCURRENCES, "2015, 2014"),
     DemoPolicy(
         EUROPE, "report_preliminary_days", 30, "days", ANALYSIS, "2014", "memory"
