@@ -13,7 +13,7 @@ from PIL import Image
 
 from fleet.models import Aircraft, AircraftPeriod
 from repairs.models import Finding, Measurement
-from tests.factories import NOW, authorise
+from tests.factories import NOW, authorise, signed
 from tests.queries import assert_same_queries
 from tests.record_rows import FOUND, assessed, found
 
@@ -274,7 +274,7 @@ def test_assessing_through_the_form(client, world):
     url = reverse("finding_assess", args=[finding.pk])
     said = filled(client.get(url))
     said |= {"document_reference": "SRM 53-10-12", "document_page": "p. 101"}
-    response = client.post(url, said)
+    response = client.post(url, signed(said))
     assert response.url == reverse("finding", args=[finding.pk])
     finding.refresh_from_db()
     assert finding.state == "assessed"
@@ -396,6 +396,6 @@ def test_the_present_operator_acts_on_damage_of_an_earlier_period(client, world)
     client.force_login(world.outsider)
     said = filled(client.get(url))
     said |= {"document_reference": "SRM 53-10-12", "document_page": "p. 101"}
-    assert client.post(url, said).status_code == 302
+    assert client.post(url, signed(said)).status_code == 302
     finding.refresh_from_db()
     assert (finding.state, finding.operator) == ("assessed", world.operator)

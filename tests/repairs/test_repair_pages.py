@@ -79,7 +79,7 @@ def decision(client, finding, **changes):
         "document_page": "p. 101",
         "reason": "within the manual's limits",
     }
-    return client.post(url, {**said, **changes})
+    return client.post(url, signed({**said, **changes}))
 
 
 def test_a_decision_through_the_form(engineer, world):
@@ -147,10 +147,10 @@ def test_a_signature_needs_the_password_and_shows_whether_it_holds(client, world
     wrong = client.post(url, {**said, "password": "not it"})
     assert "not your password" in wrong.content.decode()
     assert client.post(url, {**said, "password": PASSWORD}).status_code == 302
-    approval = row.approvals.get()
+    approval = row.approvals.get(meaning="approved")
     assert approval.signer == world.users["signatory"]
     page = client.get(reverse("disposition", args=[row.pk])).content.decode()
-    assert "as signed" in page
+    assert page.count("agrees with what was signed") == 2
 
 
 def test_a_repair_through_the_form_rectifies_its_finding(engineer, world):
@@ -170,6 +170,8 @@ def test_a_repair_through_the_form_rectifies_its_finding(engineer, world):
         "document_reference": "SRM 53-10-12",
         "document_page": "fig. 202",
         "released_by": world.certifier.pk,
+        "release_reference": "CRS-77",
+        "performed_by": world.assessor.pk,
         "length_mm": "20",
         "layers": "2024-T3 clad; 0.063 in; B-1",
         "fasteners": "solid rivet; 5/32 in; 0.8 in; -; 3; 48",
@@ -178,7 +180,7 @@ def test_a_repair_through_the_form_rectifies_its_finding(engineer, world):
         f"{key}-damage_removed": "yes",
         "step": "save",
     }
-    response = engineer.post(url, said)
+    response = engineer.post(url, signed(said))
     repair = Repair.objects.get()
     assert response.url == reverse("repair", args=[repair.pk])
     assert repair.length_mm == pytest.approx(508.0)  # 20 in, the type's unit
@@ -205,7 +207,7 @@ def test_a_repair_that_is_refused_says_why_and_keeps_what_was_typed(engineer, wo
         "document_page": "fig. 202",
         "step": "save",
     }
-    page = engineer.post(url, said).content.decode()
+    page = engineer.post(url, signed(said)).content.decode()
     assert "recorded with its replacement limit" in page
     assert "left as it was" in page
     assert not Repair.objects.exists()

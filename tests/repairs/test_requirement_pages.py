@@ -16,6 +16,7 @@ from repairs.models import (
 from repairs.services.requirement_draft import LimitEntry
 from tests import due_rows as make
 from tests.due_rows import TODAY, day, fly
+from tests.factories import authorise, signed
 from tests.repairs.test_inspections import (
     AT,
     REPEAT,
@@ -53,6 +54,11 @@ def as_user(client, role="engineer", of=None):
 
 def said(response) -> str:
     return " ".join(str(x) for x in get_messages(response.wsgi_request))
+
+
+def from_paper(done) -> dict:
+    """What another did, recorded from its release document."""
+    return signed(done) | {"release_document": make.document().pk}
 
 
 FIELDS = {
@@ -214,12 +220,14 @@ class TestDone:
         assert 'value="25360"' in page
         response = client.post(
             self.address(requirement),
-            {
-                "done_on": "2024-12-30",
-                "result": "no_finding",
-                "at_minutes": "20,300:00",
-                "at_cycles": "25,360",
-            },
+            from_paper(
+                {
+                    "done_on": "2024-12-30",
+                    "result": "no_finding",
+                    "at_minutes": "20,300:00",
+                    "at_cycles": "25,360",
+                }
+            ),
         )
         assert said(response) == "Recorded. The next due point is open."
         assert Accomplishment.objects.get().at_minutes == 20_300 * 60
@@ -230,14 +238,20 @@ class TestDone:
         as_user(client, "certifier")
         response = client.post(
             self.address(requirement),
-            {"done_on": "2024-12-30", "result": "no_finding", "at_cycles": "36,371"},
+            from_paper(
+                {
+                    "done_on": "2024-12-30",
+                    "result": "no_finding",
+                    "at_cycles": "36,371",
+                }
+            ),
         )
         assert said(response).startswith("Recorded, 31 FC beyond its due")
 
     def test_what_does_not_apply_needs_its_reason(self, client, fixed):
         requirement = raised(fixed, THRESHOLD)
         as_user(client, "certifier")
-        answer = {"done_on": "2024-12-30", "result": "not_applicable"}
+        answer = signed({"done_on": "2024-12-30", "result": "not_applicable"})
         refused = client.post(self.address(requirement), answer)
         assert "Say why it does not apply." in refused.content.decode()
         client.post(self.address(requirement), answer | {"evidence": "skin renewed"})
@@ -249,10 +263,12 @@ class TestDone:
         subject = requirement.subjects.get()
         done(subject, 36_000, result="terminated", evidence="seen", actor=one)
         address = f"/requirements/{requirement.pk}/verify/{subject.pk}/"
-        refused = client.post(address, {"evidence": "part number read"})
+        evidence = signed({"evidence": "part number read"})
+        refused = client.post(address, evidence)
         assert "someone other than who recorded it" in refused.content.decode()
-        as_user(client, "certifier")
-        assert client.post(address, {"evidence": "part number read"}).status_code == 302
+        two = as_user(client, "certifier")
+        authorise(two.person, requirement.operator, "inspect")
+        assert client.post(address, evidence).status_code == 302
         assert not DuePoint.objects.filter(closed_on=None).exists()
 
 
@@ -432,7 +448,9 @@ class TestCorrect:
         as_user(client, "certifier")
         address = f"/accomplishments/{wrong.pk}/correct/"
         assert 'value="25063"' in client.get(address).content.decode()
-        data = {"done_on": str(day(8)), "result": "no_finding", "at_cycles": "25,036"}
+        data = from_paper(
+            {"done_on": str(day(8)), "result": "no_finding", "at_cycles": "25,036"}
+        )
         refused = client.post(address, data)
         assert "This field is required" in refused.content.decode()
         client.post(address, data | {"reason": "digits swapped"})
