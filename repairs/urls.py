@@ -16,6 +16,7 @@ from repairs.views import (
     finding_entry,
     finding_steps,
     findings,
+    late_entries,
     life_limits,
     maps,
     repair_entry,
@@ -66,6 +67,7 @@ urlpatterns = [
     ),
     path("findings/<int:pk>/level/", corrosion.finding_level, name="finding_level"),
     path("findings/<int:pk>/report/", reports.finding_report, name="finding_report"),
+    path("late/", late_entries.late_list, name="late_list"),
     path("reports/", reports.report_list, name="report_list"),
     path("reports/<int:pk>/", reports.report, name="report"),
     path(

@@ -129,6 +129,7 @@ PAGES: dict[str, Page] = {
     "finding_level": Page(FORM, "level_determine", key("corroded")),
     "finding_report": Page(FORM, "report_decide", key("finding")),
     "report_list": Page(),
+    "late_list": Page(),
     "report": Page(keys=key("report")),
     "report_decide": Page(FORM, "report_decide", key("report")),
     "report_send": Page(FORM, "report_send", key("report")),

@@ -40,6 +40,7 @@ from repairs.services.inspections import (
     dues_open,
     requirement_writing,
 )
+from repairs.services.manufacture import made_before
 
 INSPECTION = (DueKind.THRESHOLD, DueKind.REPEAT)
 IN_FORCE = (RequirementState.EFFECTIVE, RequirementState.TERMINATION_UNVERIFIED)
@@ -119,6 +120,7 @@ def accomplishment_record(
         w.locked(RequirementSubject.objects.all(), pk=subject.pk)
         subject.refresh_from_db(fields=["state", "applies"])
         problems = _done_problems(subject, done_on, counters, today, replaces)
+        problems += made_before(subject.aircraft or subject.part, done_on)
         if replaces is not None and not reason.strip():
             problems.append(NO_CORRECTION_REASON)
         if result == "finding" and finding is None:

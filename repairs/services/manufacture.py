@@ -1,20 +1,20 @@
-"""Nothing happened to an aircraft before it was made."""
+"""Nothing happened to an aircraft or a part before it was made."""
 
 from __future__ import annotations
 
 import datetime as dt
 
-from fleet.models import Aircraft
+from fleet.models import Aircraft, SafeLifePart
 
 BEFORE_MANUFACTURE = (
-    "{day} lies before {aircraft} was manufactured on {made}: mend the day here, or "
-    "the date of manufacture on the aircraft."
+    "{day} lies before {item} was manufactured on {made}: mend the day here, or the "
+    "date of manufacture on record."
 )
 
 
-def made_before(aircraft: Aircraft, day: dt.date | None) -> list[str]:
+def made_before(item: Aircraft | SafeLifePart | None, day: dt.date | None) -> list[str]:
     """Why the day cannot be; empty: it can, or the date of manufacture is unknown."""
-    made = aircraft.manufactured_on
+    made = item.manufactured_on if item is not None else None
     if made is None or day is None or day >= made:
         return []
-    return [BEFORE_MANUFACTURE.format(day=day, aircraft=aircraft, made=made)]
+    return [BEFORE_MANUFACTURE.format(day=day, item=item, made=made)]

@@ -28,6 +28,7 @@ from repairs.selectors.repair_fitted import thickness_percent
 from repairs.selectors.repair_inspections import rejections_open
 from repairs.selectors.substantiation_stages import stage_reached
 from repairs.services.authority import CERTIFIERS, authorised
+from repairs.services.manufacture import made_before
 from repairs.services.repair_entry import RECTIFIABLE, RepairEntry
 from repairs.services.repair_rows import plies
 
@@ -115,6 +116,7 @@ def repair_problems(
     structural item's, where unknown counts as PSE.
     """
     problems = [
+        *made_before(entry.aircraft, entry.released_on),
         *_data_problems(entry),
         *_people_problems(entry, operator, repair),
         *_category_problems(entry, repair, criticality),

@@ -20,10 +20,12 @@ from repairs.described import read_apart
 from repairs.filters import RepairFilter
 from repairs.models import Repair
 from repairs.selectors.evaluations import evaluations_current, state_of
+from repairs.selectors.late_entries import repair_late_words
 from repairs.selectors.maps import item_map_svg
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.repair_files import repair_files
-from repairs.selectors.repair_status import HEADER, repair_status
+from repairs.selectors.repair_status import repair_status
+from repairs.selectors.repair_status_cells import HEADER
 from repairs.selectors.repairs import (
     approval_applies,
     repair_around,
@@ -69,6 +71,7 @@ def _around(request: Request, row: Repair) -> dict[str, Any]:
         "applies": approval_applies(row),
         "file": repair_files([row])[row.pk],
         "under_way": row.state in UNDER_WAY,
+        "late": repair_late_words(row),
         "map": item_map_svg(row, user=request.user),
         "near": neighbours(row, user=request.user),
         "evaluations": [(one, state_of(one)) for one in evaluations_current(row)],
@@ -87,5 +90,5 @@ def repair_status_page(request: Request, pk: int) -> HttpResponse:
     if request.GET.get("format") == "csv":
         name = f"repairs-{aircraft.serial_number}-{found.as_of}.csv"
         return csv_response(name, HEADER, found.csv_rows())
-    context = {"status": found, "header": HEADER}
+    context = {"status": found}
     return render(request, "repairs/repair_status.html", context)

@@ -33,6 +33,7 @@ from repairs.models import (
     InspectionRequirement,
     Repair,
 )
+from repairs.selectors.late_entries import accomplishments_late
 from repairs.selectors.requirements import (
     coverage_of,
     limits_of,
@@ -87,6 +88,9 @@ def requirement(request: Request, pk: int) -> HttpResponse:
         "lines": lines,
         "coverage": coverage_of(row, lines),
         "marks": marks_of(row),
+        "late": accomplishments_late(
+            row.operator, (done for line in lines for done in line.done), as_of=today()
+        ),
         "reentries": row.reentries.select_related("keyed_by"),
         "history": history_of(row),
         "may_answer": may(user, "requirement_raise", operator),
