@@ -20,10 +20,23 @@ from repairs.models import (
     RepairState,
     RepairType,
 )
-from repairs.selectors.repairs import hiding_damage
+from repairs.selectors.hidden import hiding_damage
+from repairs.selectors.unknowns import (
+    finding_unknowns,
+    findings_unknown,
+    repair_unknowns,
+    repairs_unknown,
+)
 
 PLACED = [("no", "to be placed"), ("yes", "placed")]
 OPEN = "open"
+LEGACY = "legacy"
+EVIDENCE = [
+    (LEGACY, "all legacy repairs"),
+    ("seen", "legacy, evidence seen"),
+    ("not_seen", "legacy, evidence not seen"),
+    ("not_applicable", "legacy, evidence not stated"),
+]
 DAY = forms.DateInput(attrs={"type": "date"})
 
 
@@ -64,6 +77,12 @@ class FindingFilter(django_filters.FilterSet):
     found_to = django_filters.DateFilter(
         field_name="found_on", lookup_expr="lte", label="to", widget=DAY
     )
+    unknown = django_filters.ChoiceFilter(
+        method="by_unknown",
+        choices=[(key, words) for key, (words, _) in finding_unknowns().items()],
+        empty_label="known or not",
+        label="not known",
+    )
 
     class Meta:
         model = Finding
@@ -89,6 +108,11 @@ class FindingFilter(django_filters.FilterSet):
     ) -> QuerySet[Finding]:
         return rows.filter(section__isnull=value == "no")
 
+    def by_unknown(
+        self, rows: QuerySet[Finding], name: str, value: str
+    ) -> QuerySet[Finding]:
+        return findings_unknown(rows, value)
+
 
 class RepairFilter(django_filters.FilterSet):
     """What the list of repairs shows; all empty shows everything."""
@@ -106,10 +130,22 @@ class RepairFilter(django_filters.FilterSet):
     category = django_filters.ChoiceFilter(
         choices=RepairCategory.choices, empty_label="every category"
     )
+    evidence = django_filters.ChoiceFilter(
+        method="by_evidence",
+        choices=EVIDENCE,
+        empty_label="legacy or not",
+        label="before our records",
+    )
     hiding = django_filters.BooleanFilter(
         method="by_hiding",
         label="hides damage not shown removed",
         widget=forms.CheckboxInput,
+    )
+    unknown = django_filters.ChoiceFilter(
+        method="by_unknown",
+        choices=[(key, words) for key, (words, _) in repair_unknowns().items()],
+        empty_label="known or not",
+        label="not known",
     )
 
     class Meta:
@@ -130,3 +166,14 @@ class RepairFilter(django_filters.FilterSet):
         self, rows: QuerySet[Repair], name: str, value: bool
     ) -> QuerySet[Repair]:
         return hiding_damage(rows) if value else rows
+
+    def by_evidence(
+        self, rows: QuerySet[Repair], name: str, value: str
+    ) -> QuerySet[Repair]:
+        legacy = rows.filter(legacy=True)
+        return legacy if value == LEGACY else legacy.filter(evidence=value)
+
+    def by_unknown(
+        self, rows: QuerySet[Repair], name: str, value: str
+    ) -> QuerySet[Repair]:
+        return repairs_unknown(rows, value)

@@ -31,6 +31,7 @@ from fleet.selectors.history import Told, history_of
 from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
 from repairs.models import OPEN_STATES, Finding, Repair
+from repairs.selectors.unknowns import Unknown, unknowns
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
 
@@ -80,6 +81,7 @@ class AircraftPage:
     panels: list[PanelOnAircraft]
     parts: list[PartLine]
     history: list[Told]
+    unknowns: list[Unknown]
 
     @property
     def period(self) -> AircraftPeriod | None:
@@ -177,6 +179,7 @@ def aircraft_page(user: User, aircraft: Aircraft, *, as_of: dt.date) -> Aircraft
         ),
         parts=_installed(user, aircraft, until) if own else [],
         history=history_of(aircraft) if own else [],
+        unknowns=unknowns(aircraft) if own else [],
     )
 
 

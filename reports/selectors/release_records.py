@@ -37,7 +37,7 @@ from repairs.models import (
     SubstantiationFinding,
 )
 from repairs.selectors.neighbours import findings_shown
-from repairs.selectors.repairs import with_hiding
+from repairs.selectors.hidden import with_hiding
 
 APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
@@ -266,7 +266,7 @@ def _repair_lines(repair: Repair, signed: _Signed) -> Iterable[Line]:
         yield line("inspection_rejected", f"{state}, its inspection rejected")
     elif repair.inspection_required and not signed.inspected(repair):
         yield line("inspection_missing", f"{state}, required inspection not recorded")
-    if repair.hides_damage:
+    if repair.hides_damage:  # type: ignore[attr-defined]  # annotated by the query
         yield line("hides", state)
     for step in repair.steps.all():
         yield line("steps", f"part {step.number}: {step.title}")
@@ -325,8 +325,6 @@ def _reports(aircraft: Aircraft) -> Iterable[Line]:
     for row in rows.exclude(finding__state__in=ASIDE_STATES):
         cause = "report_undecided" if row.state == "to_assess" else "report_unsent"
         due = f", due {row.due_at:%Y-%m-%d %H:%M} UTC" if row.due_at else ""
-        on_finding = row.finding is not None
-        address = (
-            ("finding", row.finding_id) if on_finding else ("aircraft", aircraft.pk)
-        )
-        yield Line(cause, str(row.finding or row.event), address, f"{row.regime}{due}")
+        finding = row.finding
+        address = ("finding", finding.pk) if finding else ("aircraft", aircraft.pk)
+        yield Line(cause, str(finding or row.event), address, f"{row.regime}{due}")
