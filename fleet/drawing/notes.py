@@ -6,7 +6,7 @@ from collections.abc import Iterator
 
 from fleet.drawing import svg
 from fleet.drawing.sheet import Sheet
-from fleet.drawing.svg import Label
+from fleet.drawing.svg import Box, Label
 from fleet.drawing.symbols import symbol
 
 UNIT_MM = {"in": 25.4, "mm": 1.0}
@@ -127,11 +127,27 @@ def _sample(mark: str, x: float, y: float) -> str:
         return svg.tag(
             "rect", class_="cutout", x=x - 8, y=y - 6, width=16, height=12, rx=3
         )
-    if mark == "repair":
+    if mark == "planned":
+        return svg.tag(
+            "rect", class_="repair planned", x=x - 10, y=y - 6, width=20, height=12
+        )
+    if mark in ("repair", "hides"):
         outer = svg.tag("rect", class_="repair", x=x - 10, y=y - 6, width=20, height=12)
-        return outer + svg.tag(
+        outer += svg.tag(
             "rect", class_="repair in", x=x - 7.5, y=y - 3.5, width=15, height=7
         )
+        box = Box(x - 10, y - 6, x + 10, y + 6)
+        return outer + crossed(box) if mark == "hides" else outer
     if mark == "extent":
         return svg.tag("rect", class_="extent", x=x - 9, y=y - 6, width=18, height=12)
     return symbol(mark, x, y)
+
+
+def crossed(box: Box) -> str:
+    """Two strokes corner to corner, for a repair with damage beneath it."""
+    n = svg.number
+    ends = (
+        f"M{n(box.left)} {n(box.top)} L{n(box.right)} {n(box.bottom)} "
+        f"M{n(box.left)} {n(box.bottom)} L{n(box.right)} {n(box.top)}"
+    )
+    return svg.tag("path", class_="repair cross-out", d=ends)

@@ -19,6 +19,11 @@ from fleet.drawing.symbols import LEAST, MOST, symbol
 
 Span = tuple[float, float]
 HALO = MOST + 5
+REPAIRS = {
+    "repair": "repair",
+    "planned": "repair planned or in work",
+    "hides": "repair over damage not shown to be removed",
+}
 
 
 @dataclass(frozen=True)
@@ -52,6 +57,15 @@ class MapRepair:
     across: Span | None
     focus: bool = False
     faded: bool = False
+    planned: bool = False
+    hides: bool = False
+
+    @property
+    def mark(self) -> str:
+        """Which of the marks of the legend it bears: dashed, crossed or plain."""
+        if self.planned:
+            return "planned"
+        return "hides" if self.hides else "repair"
 
 
 @dataclass(frozen=True)
@@ -141,8 +155,8 @@ def _legend(map_: StructureMap) -> list[notes.Piece]:
     pieces = sorted(kinds.items(), key=lambda piece: piece[1])
     if any(_outlined(box) for _, box in map_.drawn_marks):
         pieces.append(("extent", "extent of a finding"))
-    if map_.drawn_repairs:
-        pieces.append(("repair", "repair"))
+    there = {repair.mark for repair, _ in map_.drawn_repairs}
+    pieces += [(mark, words) for mark, words in REPAIRS.items() if mark in there]
     shown = "".join(skeleton.skeleton(map_.sheet))
     for class_, words in (
         ("cutout", "cut-out"),
@@ -165,7 +179,7 @@ def _items(map_: StructureMap, names: Sequence[Label]) -> Iterator[str]:
         taken += _sides(_least(box))
     page = Box(2, 2, map_.sheet.width - 2, map_.sheet.plot.bottom + 2)
     entries: list[tuple[MapMark | MapRepair, str, list[Label]]] = [
-        (repair, _repair(box), _around_repair(repair.label, _least(box)))
+        (repair, _repair(repair, box), _around_repair(repair.label, _least(box)))
         for repair, box in map_.drawn_repairs
     ]
     entries += [
@@ -263,10 +277,14 @@ def _sides(box: Box) -> list[Box]:
     ]
 
 
-def _repair(box: Box) -> str:
-    """Two outlines, so that grey print tells it from a cut-out."""
+def _repair(repair: MapRepair, box: Box) -> str:
+    """Two outlines, so that grey print tells it from a cut-out; one dashed outline of
+    what is planned; corner to corner a cross over damage that is not shown removed."""
     outer = _least(box)
-    return _rectangle("repair", outer, 0.0) + _rectangle("repair in", outer, 2.5)
+    if repair.planned:
+        return _rectangle("repair planned", outer, 0.0)
+    drawn = _rectangle("repair", outer, 0.0) + _rectangle("repair in", outer, 2.5)
+    return drawn + notes.crossed(outer) if repair.hides else drawn
 
 
 def _rectangle(class_: str, box: Box, inset: float) -> str:

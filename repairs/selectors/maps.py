@@ -22,6 +22,7 @@ from fleet.models import Aircraft, Section, User
 from fleet.selectors.aircraft import aircraft_visible
 from fleet.selectors.structure import geometry_of
 from repairs.models import Finding, MeasuredValue, Repair
+from repairs.selectors.hidden import with_hiding
 from repairs.selectors.neighbours import (
     Item,
     Patch,
@@ -34,6 +35,8 @@ from repairs.selectors.neighbours import (
 BAYS_ALONG, BAYS_ACROSS = 5, 6.5
 NARROW = 760.0
 NO_LONGER = ("rectified", "closed")
+UNDER_WAY = ("planned", "in_work")
+HIDES = "over damage not shown to be removed"
 
 
 def finding_map_svg(finding: Finding, *, user: User) -> str:
@@ -98,7 +101,7 @@ def aircraft_map(
     """A whole section of one aircraft with its findings and repairs; three queries."""
     shape = geometry.section(section.code)
     findings = findings_shown(Finding.objects.visible_to(user))
-    repairs = repairs_shown(Repair.objects.visible_to(user))
+    repairs = with_hiding(repairs_shown(Repair.objects.visible_to(user)))
     own = {"aircraft": aircraft, "section": section}
     return StructureMap(
         title=f"{aircraft.registration}, {shape.title}",
@@ -184,15 +187,23 @@ def repairs_of(
     return [
         MapRepair(
             label=row.number,
-            title=_title(row, row.get_kind_display(), row.get_state_display()),
+            title=_repair_title(row),
             href=reverse("repair", args=[row.pk]),
             along=_grown(_along(row), row.length_mm),
             across=_wide(row, row.width_mm),
             focus=isinstance(focus, Repair) and row.pk == focus.pk,
+            planned=row.state in UNDER_WAY,
+            hides=row.state not in UNDER_WAY and getattr(row, "hides_damage", False),
         )
         for row in repairs
         if isinstance(row, Repair) and row.x1_mm is not None
     ]
+
+
+def _repair_title(row: Repair) -> str:
+    title = _title(row, row.get_kind_display(), row.get_state_display())
+    hides = row.state not in UNDER_WAY and getattr(row, "hides_damage", False)
+    return f"{title}, {HIDES}" if hides else title
 
 
 def _title(row: Item, what: str, state: str) -> str:

@@ -17,6 +17,7 @@ from fleet.location.geometry import geometry_from_toml
 from fleet.models import Aircraft, Section, User
 from repairs.models import Finding, Repair
 from repairs.models.findings import ASIDE_STATES
+from repairs.selectors.hidden import with_hiding
 
 LONG_MM = 500.0
 """Longer places have an index of their own; its condition is repeated word for word."""
@@ -174,7 +175,7 @@ def items_in(
     findings, repairs = Finding.objects.all(), Repair.objects.all()
     if user is not None:
         findings, repairs = findings.visible_to(user), repairs.visible_to(user)
-    return of(findings_shown(findings)), of(repairs_shown(repairs))
+    return of(findings_shown(findings)), of(with_hiding(repairs_shown(repairs)))
 
 
 def _near(

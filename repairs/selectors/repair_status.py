@@ -2,49 +2,49 @@
 
 The columns are those that AMC M.A.305(c)2 asks of a current repair status: number,
 description, location, dimensions, remaining material, release with counters, data and
-approval, category, linked inspections and limits.
+approval, category, linked inspections and limits; and beside them what lies beneath,
+what it supersedes, and how complete its file is.
 """
 
 from __future__ import annotations
 
 import datetime as dt
 from collections import defaultdict
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from django.db.models import Q
 
-from fleet.amounts import counters_write
 from fleet.canonical import canonical, digest
-from fleet.due import Counters
-from fleet.location.along import Work, station_label
-from fleet.location.geometry import Section, geometry_from_toml
-from fleet.location.reading import Reading
-from fleet.models import Aircraft, User
-from fleet.units import canonical as canonical_mm
-from fleet.units import hours_write, in_unit, measure_write
-from repairs.models import DueKind, DuePoint, Repair
-from repairs.selectors.due_items import due_of
-from repairs.selectors.edges import stated_extent
+from fleet.models import Aircraft, Policy, User
+from fleet.selectors.people import policy
+from repairs.models import DuePoint, Repair
+from repairs.selectors.hidden import with_hiding
+from repairs.selectors.repair_files import repair_files
+from repairs.selectors.repair_fitted import THICKNESS_PERCENT
+from repairs.selectors.repair_status_cells import HEADER, RepairCells, cells_of
 
-HEADER = (
-    "repair no.", "chart no.", "description", "ATA", "zone", "from station",
-    "to station", "stringer / WL / BL", "dimensions", "remaining material",
-    "release date", "release reference", "FH", "FC", "data", "data revision",
-    "approval document", "category", "linked requirements", "next due", "limit",
-)  # fmt: skip
-UNKNOWN = "unknown"
-TO_BE_PLACED = "to be placed: {text}"
-INSPECTED = (DueKind.THRESHOLD, DueKind.REPEAT)
+UNDER_WAY = ("planned", "in_work")
+POLICIES = ("stage_2_months", THICKNESS_PERCENT)
+NO_POLICY = "not recorded"
 
 
 @dataclass(frozen=True)
 class StatusRow:
-    """One repair with its cells in the order of the header."""
+    """One repair with its cells by the names of the header."""
 
     repair: Repair
-    cells: Sequence[Any]
+    told: Mapping[str, Any]
+
+    @property
+    def cells(self) -> Sequence[Any]:
+        return [self.told[name] for name in HEADER]
+
+    @property
+    def by_name(self) -> Mapping[str, Any]:
+        """The cells under names a page can ask for: `from_station`."""
+        return {_name(name): value for name, value in self.told.items()}
 
 
 @dataclass(frozen=True)
@@ -55,6 +55,8 @@ class Status:
     as_of: dt.date
     known_at: dt.datetime
     rows: Sequence[StatusRow]
+    under_way: Sequence[Repair] = ()
+    policies: Sequence[tuple[str, Policy | None]] = ()
 
     @property
     def digest(self) -> str:
@@ -66,6 +68,7 @@ class Status:
             ("aircraft", f"{self.aircraft} msn {self.aircraft.serial_number}"),
             ("as of", self.as_of.isoformat()),
             ("known at", self.known_at.isoformat(timespec="seconds")),
+            *((f"policy {key}", _edition(row)) for key, row in self.policies),
             ("rows", str(len(self.rows))),
             ("digest of the rows (SHA-256)", self.digest),
         ]
@@ -78,29 +81,48 @@ class Status:
 def repair_status(
     aircraft: Aircraft, *, as_of: dt.date, known_at: dt.datetime, user: User
 ) -> Status:
-    """Repairs that stood on the aircraft that day, as known then; five queries."""
+    """Repairs that stood on the aircraft that day, as known then, and those under way;
+    a fixed number of queries."""
+    seen = Repair.objects.visible_to(user).filter(
+        aircraft=aircraft, entered_at__lte=known_at
+    )
     repairs = list(
-        Repair.objects.visible_to(user)
+        with_hiding(seen)
         .filter(
             Q(removed_on__isnull=True) | Q(removed_on__gt=as_of),
-            aircraft=aircraft,
             released_on__lte=as_of,
-            entered_at__lte=known_at,
         )
         .exclude(state="cancelled")
         .select_related(
             "section", "geometry", "zone", "approval_document", "release_document"
         )
-        .prefetch_related("requirements")
+        .prefetch_related(
+            "requirements", "supersedes", "approval_document__applicability"
+        )
         .order_by("number")
+        .distinct()
     )
-    points = _points(repairs, as_of)
-    variant = aircraft.variant.code
-    unit = aircraft.variant.aircraft_type.entry_unit
+    points, files = _points(repairs, as_of), repair_files(repairs)
+    variant = aircraft.variant
+    unit = variant.aircraft_type.entry_unit
     rows = [
-        StatusRow(one, _cells(one, points[one.pk], variant, unit)) for one in repairs
+        StatusRow(
+            one,
+            cells_of(
+                RepairCells(one, points[one.pk], files[one.pk], variant.code, unit),
+                aircraft,
+            ),
+        )
+        for one in repairs
     ]
-    return Status(aircraft, as_of, known_at, rows)
+    return Status(
+        aircraft,
+        as_of,
+        known_at,
+        rows,
+        list(seen.filter(state__in=UNDER_WAY).distinct().order_by("number")),
+        [(key, policy(aircraft.operator, key, as_of)) for key in POLICIES],
+    )
 
 
 def _points(repairs: Sequence[Repair], as_of: dt.date) -> dict[int, list[DuePoint]]:
@@ -118,113 +140,13 @@ def _points(repairs: Sequence[Repair], as_of: dt.date) -> dict[int, list[DuePoin
     return found
 
 
-def _cells(
-    repair: Repair, points: Sequence[DuePoint], variant: str, unit: str
-) -> list[Any]:
-    first, last, across = place_cells(repair, variant, unit)
-    approval, release = repair.approval_document, repair.release_document
-    inspected = [_due(point) for point in points if point.kind in INSPECTED]
-    limits = [_due(point) for point in points if point.kind not in INSPECTED]
-    minutes = repair.at_minutes
-    return [
-        repair.number,
-        repair.chart_number,
-        _description(repair),
-        repair.ata,
-        repair.zone.code if repair.zone else "",
-        first,
-        last,
-        across,
-        dimensions(repair, unit),
-        _thickness(repair, unit),
-        repair.released_on.isoformat() if repair.released_on else "",
-        release.reference if release else UNKNOWN,
-        UNKNOWN if minutes is None else hours_write(minutes),
-        UNKNOWN if repair.at_cycles is None else repair.at_cycles,
-        approval.reference if approval else UNKNOWN,
-        approval.revision if approval else "",
-        f"{repair.get_approval_basis_display()} {repair.approval_page}".strip(),
-        repair.get_category_display(),
-        ", ".join(str(one) for one in repair.requirements.all()),
-        "; ".join(inspected),
-        "; ".join(limits),
-    ]
+def _edition(row: Policy | None) -> str:
+    if row is None:
+        return NO_POLICY
+    parts = (f"{row.value} {row.unit}", row.source, row.edition)
+    return ", ".join(part for part in parts if part)
 
 
-def _description(repair: Repair) -> str:
-    """The repair type in front, unless the words begin with it."""
-    kind = repair.get_kind_display()
-    if repair.description.lower().startswith(kind.lower()):
-        return repair.description
-    return f"{kind.capitalize()}: {repair.description}"
-
-
-def place_cells(repair: Repair, variant: str, unit: str) -> tuple[str, str, str]:
-    """From station, to station, and stringers or lines; as written if unplaced."""
-    if repair.section is None or repair.geometry is None:
-        return TO_BE_PLACED.format(text=repair.place_entered), "", ""
-    section = geometry_from_toml(repair.geometry.content).section(repair.section.code)
-    work = Work(Reading(""), section, variant, unit)
-    word = section.station_words[0]
-    along = stated_extent(repair.x1_mm, repair.x2_mm, repair.length_mm)
-    assert along is not None
-    ends = [f"{word} {station_label(work, _near(x, unit))}" for x in along]
-    return ends[0], ends[1], _across(repair, section, work)
-
-
-def _near(x_mm: float, unit: str) -> float:
-    """To a tenth of an inch or a whole mm: nobody lays a doubler out closer."""
-    return canonical_mm(round(in_unit(x_mm, unit), 1 if unit == "in" else 0), unit)
-
-
-def dimensions(repair: Repair, unit: str) -> str:
-    """Length by width, in the type's unit."""
-    sizes = [repair.length_mm, repair.width_mm]
-    if sizes == [None, None]:
-        return UNKNOWN
-    return " × ".join(
-        UNKNOWN if size is None else measure_write(size, unit) for size in sizes
-    )
-
-
-def _across(repair: Repair, section: Section, work: Work) -> str:
-    parts = []
-    across = stated_extent(repair.s1_mm, repair.s2_mm, repair.width_mm)
-    if across is not None:
-        if section.is_shell and section.stringers:
-            outward = sorted(across, key=abs) if across[1] <= 0 else across
-            names = [_nearest(section, s) for s in outward]
-            parts.append(" to ".join(dict.fromkeys(names)))
-        else:
-            chord = " to ".join(work.show(_near(s, work.unit)) for s in across)
-            parts.append(f"{chord} {work.unit} aft of the front reference")
-    if parts:
-        return parts[0]
-    if repair.wl_mm is not None:
-        parts.append(f"WL {work.show(repair.wl_mm)}")
-    if repair.bl_mm is not None:
-        side = "L" if repair.bl_mm < 0 else "R" if repair.bl_mm else ""
-        parts.append(f"{side}BL {work.show(abs(repair.bl_mm))}")
-    return ", ".join(parts)
-
-
-def _nearest(section: Section, s_mm: float) -> str:
-    near = min(section.stringers, key=lambda t: abs(section.wrapped(s_mm - t.s_mm)))
-    return near.label
-
-
-def _thickness(repair: Repair, unit: str) -> str:
-    if repair.kind != "blend":
-        return "not applicable"
-    value = repair.remaining_thickness_mm
-    return UNKNOWN if value is None else measure_write(value, unit)
-
-
-def _due(point: DuePoint) -> str:
-    """The due value, or why it cannot be computed."""
-    due = due_of(point)
-    if due.cannot_compute:
-        return f"due: {due.cannot_compute}"
-    at = counters_write(due.at) if due.at != Counters() else ""
-    when = f"{at} · {due.on}" if at and due.on else at or str(due.on)
-    return f"{point.get_kind_display()} {when}"
+def _name(header: str) -> str:
+    words = "".join(c if c.isalnum() else " " for c in header)
+    return "_".join(words.lower().split())

@@ -6,7 +6,7 @@ import datetime as dt
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
-from django.db.models import Exists, OuterRef, Q, QuerySet
+from django.db.models import Q, QuerySet
 
 from fleet.models import User
 from fleet.selectors.applicability import Applies, applies_to
@@ -22,6 +22,7 @@ from repairs.models import (
     RepairStep,
 )
 from repairs.selectors.findings import size_words
+from repairs.selectors.hidden import with_hiding
 from repairs.selectors.repair_fitted import LayerLine, layer_lines
 from repairs.selectors.repair_inspections import inspections_of
 from repairs.selectors.repair_overlaps import Overlap, chain_of, overlaps_of
@@ -38,21 +39,6 @@ def repairs_listed(user: User) -> QuerySet[Repair]:
         )
         .order_by("-released_on", "-pk")
     )
-
-
-def with_hiding(rows: QuerySet[Repair]) -> QuerySet[Repair]:
-    """Rows that say whether they hide damage not shown to be removed."""
-    return rows.annotate(hides_damage=_hides())
-
-
-def hiding_damage(rows: QuerySet[Repair]) -> QuerySet[Repair]:
-    """Repairs on the aircraft that cover damage not shown to be removed."""
-    return rows.filter(_hides(), state=RepairState.EMBODIED)
-
-
-def _hides() -> Exists:
-    covered = RepairFinding.objects.filter(repair=OuterRef("pk"), covers=True)
-    return Exists(covered.exclude(damage_removed="yes"))
 
 
 def repair_whole() -> QuerySet[Repair]:

@@ -10,7 +10,7 @@ from django.urls import reverse
 
 from fleet.due import Counters
 from repairs.models import Disposition, DuePoint, Finding, Repair
-from repairs.selectors.repair_status import HEADER
+from repairs.selectors.repair_status_cells import HEADER
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
 from tests.factories import NOW, PASSWORD, program, signed
