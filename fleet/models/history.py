@@ -29,7 +29,7 @@ DONE = {
     "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
     "renew": "renewed", "reset": "reset",
-    "send": "sent", "set": "set", "sign": "signed", "start": "begun",
+    "restore": "restored", "send": "sent", "set": "set", "sign": "signed", "start": "begun",
     "supplement": "supplemented", "void": "voided",
 }  # fmt: skip
 """Last word of a service's name to what it did."""

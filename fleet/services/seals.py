@@ -28,7 +28,7 @@ from fleet.selectors.seals import (
 EMPTY = "There is nothing to seal: the history has no entry yet."
 BAD_KEY = (
     "The seal key in {where} could not be read; expected base64 of the 32 bytes of an "
-    "Ed25519 private key. Put the right key back, or move it away and a new one is made."
+    "Ed25519 private key. Put the right key back, or move it away to have one made."
 )
 FIXED_KEY = (
     "The seal key comes from FRAMEBAY_SEAL_KEY; set the new key there and seal again."
