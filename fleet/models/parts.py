@@ -90,6 +90,7 @@ class LifeLimit(Entered):
     )
     objects = ScopedQuerySet.as_manager()
     operator_paths = ("part_number__operator",)
+    changeable = frozenset({"state"})
 
     class Meta:
         ordering = ["part_number", "counter", "pk"]

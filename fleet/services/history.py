@@ -52,6 +52,7 @@ PROGRAM = "Framebay"
 NESTED = "A service called another inside its own writing; pass the writing on instead."
 NOT_MANY = "Rows of {table} may change later, so they are written one by one."
 NOT_CHANGED = "Rows of {table} are never changed; write a new one that replaces it."
+FIXED = "{columns} of {table} are never edited; write a new row that replaces it."
 CHANGED_MEANWHILE = "{row} is not what was read: {told}"
 SECRET = frozenset({"password"})
 
@@ -176,6 +177,9 @@ class Writing:
         table = row._meta.db_table
         if append_only(type(row)):
             raise RuntimeError(NOT_CHANGED.format(table=table))
+        fixed = set(columns) - getattr(row, "changeable", set(columns))
+        if fixed:
+            raise RuntimeError(FIXED.format(table=table, columns=", ".join(fixed)))
         self._hold(row, columns)
         changes = {}
         for name, value in columns.items():

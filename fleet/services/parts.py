@@ -43,6 +43,7 @@ BACKWARDS = (
 )
 MISSING = "Give the aircraft's {counter}; a part's life is counted from it."
 NOT_INSTALLED = "{part} is not installed, so it cannot be {act}."
+REMOVED_ALREADY = "It is off {position} since {day}; nothing was changed."
 NO_REASON = "Say why the part was removed."
 NEEDED = (COUNTED[0], COUNTED[1], COUNTED[2])
 
@@ -67,7 +68,9 @@ def part_install(
     """Put a part on a position; `counters` are the aircraft's, as recorded."""
     with _writing(actor, "part_install", at, aircraft) as w:
         _lock(aircraft, part)
-        problems = _missing(counters) + _install_problems(part, configuration, on)
+        release = release_reference.strip() or part.release_reference
+        problems = _missing(counters)
+        problems += _install_problems(part, configuration, on, release)
         taken = PartInstallation.objects.filter(
             aircraft=aircraft, position=position, removed_on=None
         ).select_related("part")
@@ -89,7 +92,7 @@ def part_install(
                 position=position,
                 configuration=configuration,
                 installed_on=on,
-                release_reference=release_reference or part.release_reference,
+                release_reference=release,
                 installed_by=installed_by,
                 **counter_columns("installed", counters),
             )
@@ -211,13 +214,13 @@ def _missing(counters: Counters) -> list[str]:
 
 
 def _install_problems(
-    part: SafeLifePart, configuration: Configuration, on: date
+    part: SafeLifePart, configuration: Configuration, on: date, release: str
 ) -> list[str]:
     problems = []
     if part.state != PartState.IN_STORE:
         state = part.get_state_display()
         problems.append(NOT_IN_STORE.format(part=part, state=state))
-    if not part.release_reference:
+    if not release:
         problems.append(NO_RELEASE.format(part=part))
     last = part.installations.order_by("installed_on", "pk").last()
     if last and max(last.installed_on, last.removed_on or last.installed_on) > on:
@@ -245,6 +248,8 @@ def _life_problems(
 
 
 def _removal_problems(row: PartInstallation, on: date, counters: Counters) -> list[str]:
+    if row.removed_on is not None:
+        return [REMOVED_ALREADY.format(position=row.position, day=row.removed_on)]
     problems = _missing(counters)
     if on < row.installed_on:
         problems.append(OUT_OF_ORDER.format(day=on, last=row.installed_on))

@@ -136,6 +136,7 @@ class DuePoint(Entered):
     closed_reason = text()
     objects = ScopedQuerySet.as_manager()
     operator_paths = ("aircraft__operator", "part__operator")
+    changeable = frozenset({"closed_on", "closed_reason", "closed_by_id"})
 
     class Meta:
         ordering = ["pk"]

@@ -133,6 +133,7 @@ class InspectionRequirement(Entered):
     )
     objects = ScopedQuerySet.as_manager()
     operator_paths = ("operator",)
+    changeable = frozenset({"state", "verified", "interim"})
 
     class Meta:
         ordering = ["number", "pk"]
@@ -263,6 +264,7 @@ class RequirementLimit(models.Model):
     tolerance_source = text()
     objects = ScopedQuerySet.as_manager()
     operator_paths = ("requirement__operator",)
+    changeable = frozenset[str]()
 
     class Meta:
         ordering = ["requirement", "phase", "group", "counter", "pk"]

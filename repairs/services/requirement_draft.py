@@ -23,11 +23,7 @@ from repairs.models import (
     Use,
 )
 
-STRICT = (
-    RequirementClass.DIRECTIVE,
-    RequirementClass.LIMITATION,
-    RequirementClass.REPAIR,
-)
+STRICT = (RequirementClass.LIMITATION, RequirementClass.REPAIR)
 APPROVED = (Meaning.APPROVED, Meaning.STAGE_2, Meaning.STAGE_3)
 
 NO_ORIGIN = (
@@ -41,6 +37,10 @@ NO_LIMIT = (
 NOT_STRICT = (
     "Tolerance {tolerance} is not possible on a requirement of class {kind}: such "
     "limits are not exceeded."
+)
+NOT_IN_DIRECTIVE = (
+    "Tolerance {tolerance} on a directive is possible only where the directive itself "
+    "grants it: name {reference} and the paragraph as its source."
 )
 NO_TOLERANCE_SOURCE = "Tolerance {tolerance} needs the programme that grants it."
 OTHER_UNIT = "Tolerance {tolerance} is not in the unit of its limit, {limit}."
@@ -167,9 +167,19 @@ def _entry_problems(entry: LimitEntry, draft: RequirementDraft) -> list[str]:
     if draft.requirement_class in STRICT:
         kind = RequirementClass(draft.requirement_class).label
         problems.append(NOT_STRICT.format(tolerance=entry.tolerance, kind=kind))
+    elif draft.requirement_class == RequirementClass.DIRECTIVE:
+        problems += _directive_problems(entry, draft.source_document)
     elif not entry.tolerance_source.strip():
         problems.append(NO_TOLERANCE_SOURCE.format(tolerance=entry.tolerance))
     return problems
+
+
+def _directive_problems(entry: LimitEntry, directive: Document | None) -> list[str]:
+    """A directive is not exceeded, but by what it grants in its own words."""
+    reference = directive.reference if directive else "the directive"
+    if directive is not None and reference in entry.tolerance_source:
+        return []
+    return [NOT_IN_DIRECTIVE.format(tolerance=entry.tolerance, reference=reference)]
 
 
 def _evaluation_problems(draft: RequirementDraft, evaluation: Evaluation) -> list[str]:
