@@ -7,8 +7,9 @@ from django.shortcuts import render
 from django.views.decorators.http import require_safe
 
 from fleet.access import may_somewhere
-from fleet.clock import today
+from fleet.clock import moment, today
 from fleet.views.requests import Request
+from repairs.selectors.reports import open_counts
 from reports.selectors import overview as selected
 
 
@@ -24,6 +25,7 @@ def overview(request: Request) -> HttpResponse:
         "may_audit": may_somewhere(user, "history_read"),
         "due": selected.due_today(user, as_of=day),
         "findings": selected.finding_tally(user),
+        "reports": open_counts(user, moment=moment()),
         "evaluations": selected.evaluation_tally(user),
         "parts": selected.parts_nearest(user, as_of=day),
         "fleet": selected.aircraft_standing_today(user, as_of=day),
