@@ -10,7 +10,7 @@ from django.contrib.auth.password_validation import (
     validate_password,
 )
 
-from fleet.forms.signing import SignatureForm, code_field, password_field
+from fleet.forms.signing import IdentityForm, code_field, password_field
 from fleet.models import User
 
 DIFFERENT = "The two new passwords differ; type both again."
@@ -23,7 +23,7 @@ class CodeForm(forms.Form):
     code = code_field()
 
 
-class PasswordChangeForm(SignatureForm):
+class PasswordChangeForm(IdentityForm):
     """A new password, typed twice; one's own comes first."""
 
     new = forms.CharField(

@@ -7,8 +7,11 @@ from typing import Any
 from django import forms
 
 from fleet.models import User
+from fleet.services.signing import NO_PERSON
 
 SIGNATURE = ("password", "code")
+SIGNS_AS = "You sign as {person}, under {under}."
+UNDER = "{number} ({scope}, until {until})"
 
 
 class CodeInput(forms.TextInput):
@@ -41,11 +44,35 @@ def code_field() -> forms.CharField:
     )
 
 
-class SignatureForm(forms.Form):
-    """Fields at the end of a form that signs; the view proves what they say."""
+class IdentityForm(forms.Form):
+    """Fields at the end of a form that shows who is there; the view proves them."""
 
     def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
         self.fields["password"] = password_field()
         if user.second_factor_since is not None:
             self.fields["code"] = code_field()
+
+
+class SignatureForm(IdentityForm):
+    """The same where a record is signed, saying as whom and under what."""
+
+    def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
+        super().__init__(*args, user=user, **kwargs)
+        self.fields["password"].help_text = signs_as(user)
+
+
+def signs_as(user: User) -> str:
+    """Name and authorisations, as a signature of this login will carry them."""
+    if user.person is None:
+        return NO_PERSON
+    held = [
+        UNDER.format(
+            number=row.number,
+            scope=row.get_scope_display(),
+            until=row.valid_to or "open",
+        )
+        for row in user.person.authorisations.all()
+    ]
+    under = "; ".join(held) or "no authorisation"
+    return SIGNS_AS.format(person=user.person, under=under)

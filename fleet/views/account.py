@@ -15,7 +15,7 @@ from django.views.decorators.http import require_http_methods, require_safe
 from fleet.access import require, visible_or_404
 from fleet.clock import now, today
 from fleet.forms.account import CodeForm, PasswordChangeForm, ResetForm
-from fleet.forms.signing import SignatureForm
+from fleet.forms.signing import IdentityForm
 from fleet.models import Membership
 from fleet.selectors.people import (
     enrolling_device,
@@ -110,7 +110,7 @@ def second_factor(request: Request) -> HttpResponse:
 
 def _begin(request: Request) -> HttpResponse:
     """The password first: who finds an open session sets up nothing."""
-    form = SignatureForm(request.POST or None, user=request.user)
+    form = IdentityForm(request.POST or None, user=request.user)
     if sent_identified(request, form, lambda: second_factor_begin(user=request.user)):
         return redirect("second_factor")
     context = {"form": form, "title": "Second factor", "action": "Show the key"}
@@ -123,7 +123,7 @@ def second_factor_off(request: Request) -> HttpResponse:
     """Off again: with the password and a code."""
     if request.user.second_factor_since is None:
         return redirect("second_factor")
-    form = SignatureForm(request.POST or None, user=request.user)
+    form = IdentityForm(request.POST or None, user=request.user)
 
     def save() -> None:
         second_factor_remove(user=request.user, actor=request.user, at=now())

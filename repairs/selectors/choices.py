@@ -9,6 +9,7 @@ from django.db.models import Q, QuerySet
 
 from fleet.models import (
     Aircraft,
+    AuthorisationScope,
     Operator,
     Organisation,
     Person,
@@ -43,6 +44,15 @@ def people_at(operators: Sequence[Operator]) -> QuerySet[Person]:
     return Person.objects.filter(
         Q(organisation__operator__in=operators) | Q(organisation__operator__isnull=True)
     )
+
+
+def signers_at(
+    operator: Operator, scopes: Sequence[AuthorisationScope]
+) -> QuerySet[Person]:
+    """Who holds or held such an authorisation; the day is checked when it is signed."""
+    return Person.objects.filter(
+        authorisations__operator=operator, authorisations__scope__in=scopes
+    ).distinct()
 
 
 def decision_choices(

@@ -47,6 +47,8 @@ ROWS_OF: dict[type[Subject], tuple[tuple[str, str, str], ...]] = {
         ("findings", "finding_rows", "pk"),
         ("layers", "layers", "number"),
         ("fasteners", "fasteners", "number"),
+        ("required", "required", "number"),
+        ("steps", "steps", "number"),
     ),
 }
 """Rows that belong to a record: their name in the text, where they are, their order."""
@@ -90,23 +92,23 @@ def approvals_verified(subject: Subject) -> list[Signature]:
 
 def signatures_broken() -> Iterator[Signature]:
     """Every signature of every operator that no longer agrees; reads all of them."""
-    columns = SUBJECT_COLUMN.values()
     rows = Approval.objects.select_related(
-        "authorisation", "operator", "attachment", *columns
+        "authorisation", "operator", "attachment", *SUBJECT_COLUMN.values()
     )
     for row in rows.order_by("pk").iterator(chunk_size=500):
-        subject = next((s for c in columns if (s := getattr(row, c))), None)
-        if subject is None:
-            continue
-        found = _verified(row, subject, {})
+        found = _verified(row, subject_of(row), {})
         if not found.agrees:
             yield found
 
 
+def subject_of(approval: Approval) -> Subject:
+    """The record under which it stands; it has exactly one."""
+    return next(s for c in SUBJECT_COLUMN.values() if (s := getattr(approval, c)))
+
+
 def approval_agrees(approval: Approval) -> bool:
     """Whether the record, the name, the authorisation and the time are as signed."""
-    subject = next(s for c in SUBJECT_COLUMN.values() if (s := getattr(approval, c)))
-    return _verified(approval, subject, {}).agrees
+    return _verified(approval, subject_of(approval), {}).agrees
 
 
 def content_of(subject: Subject, *, measurement: int | None = None) -> str:
@@ -168,6 +170,7 @@ def _signature(row: Approval, identity: str) -> dict[str, object]:
         "signing_time": plain(row.signed_at),
         "second_factor": row.second_factor,
         "identity": identity,
+        "overruled_rejection": row.overrules_id,
         "document": {
             "kind": row.document_kind,
             "number": row.document_number,
