@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Sequence
+from collections.abc import Callable, Iterable, Mapping, Sequence
 from dataclasses import replace
 from datetime import date, datetime, timedelta
 
@@ -60,6 +60,8 @@ DISAGREES = (
 NOT_CURRENT = "This row was corrected before; correct the row that replaced it."
 NO_SOURCE = "Name the source of the usage, such as the technical log and its pages."
 NO_REASON = "Say why the row is corrected."
+MOVED = "Due items before and after: {items}."
+NONE_MOVED = "No due item moved."
 NO_LINES = "There is no line of usage to record."
 
 HIGHEST = {
@@ -135,11 +137,13 @@ def usage_correct(
     line: UsageLine,
     source: str,
     reason: str,
+    due_items: Callable[[], Mapping[str, str]] | None = None,
 ) -> UsageRecord:
     """Replace one row by another of the same day and flight; zeros void it.
 
     No recorded event is changed; `repairs.selectors.agreement` lists those whose
-    counters no longer agree.
+    counters no longer agree. `due_items` computes what is due of the aircraft, each in
+    words; what it gives before and after is logged with the correction.
     """
     aircraft = record.aircraft
     line = replace(line, day=record.day, flight=record.flight_number)
@@ -163,8 +167,21 @@ def usage_correct(
             raise UsageRefused(problems)
         row = _row(aircraft, line, source)
         row.revision, row.replaces = record.revision + 1, record
+        before = due_items() if due_items else {}
         w.create(row)
+        if due_items:
+            w.origin = _moved(before, due_items())
     return row
+
+
+def _moved(before: Mapping[str, str], after: Mapping[str, str]) -> str:
+    """Every due item that is not what it was, before and after."""
+    items = [
+        f"{item}: {before.get(item, 'not listed')} → {after.get(item, 'not listed')}"
+        for item in {**before, **after}
+        if before.get(item) != after.get(item)
+    ]
+    return MOVED.format(items="; ".join(items)) if items else NONE_MOVED
 
 
 def usage_problems(

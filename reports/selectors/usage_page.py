@@ -104,6 +104,13 @@ def moved(before: Consequences, after: Consequences) -> list[Moved]:
     ]
 
 
+def due_words(found: Consequences) -> dict[str, str]:
+    """Every due item of the aircraft, and how it stands."""
+    return {
+        f"{row.item.item} ({row.item.basis})": _words(row) for row in found.due.rows
+    }
+
+
 def no_longer(before: Consequences, after: Consequences) -> list[Disagreement]:
     """Events that agreed with usage before and do not any more."""
     known = {(x.what, x.on, x.recorded) for x in before.disagree}

@@ -8,6 +8,7 @@ from django.contrib import messages
 from django.core.paginator import Paginator
 from django.http import HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
+from django.urls import reverse
 from django.views.decorators.http import require_http_methods
 
 from fleet.access import may, require, visible_or_404
@@ -21,7 +22,9 @@ from fleet.views.requests import Request
 from fleet.views.sending import sent
 from reports.forms.usage import CorrectionForm, UsageForm, UsageTableForm
 from reports.selectors.usage_page import (
+    Consequences,
     consequences,
+    due_words,
     moved,
     no_longer,
     rate_rows,
@@ -94,7 +97,12 @@ def usage_correction(request: Request, pk: int, row_pk: int) -> HttpResponse:
     names = (*CorrectionForm.base_fields,)
     initial = {x: getattr(row, x) for x in names if hasattr(row, x)}
     form = CorrectionForm(request.POST or None, initial=initial)
-    before = consequences(request.user, aircraft, today()) if form.is_bound else None
+    seen: list[Consequences] = []
+
+    def due_items() -> dict[str, str]:
+        seen.append(consequences(request.user, aircraft, today()))
+        return due_words(seen[-1])
+
     done = sent(
         form,
         lambda: usage_correct(
@@ -104,16 +112,14 @@ def usage_correction(request: Request, pk: int, row_pk: int) -> HttpResponse:
             line=form.line(day=row.day, flight=row.flight_number),
             source=form.cleaned_data["source"],
             reason=form.cleaned_data["reason"],
+            due_items=due_items,
         ),
         about=[row],
     )
     context: dict[str, Any] = {"form": form, "row": row, "aircraft": aircraft}
-    if done and before is not None:
-        after = consequences(request.user, aircraft, today())
-        context |= {
-            "moved": moved(before, after),
-            "no_longer": no_longer(before, after),
-            "new": done,
-        }
-        return render(request, "reports/usage_corrected.html", context)
+    if done:
+        context |= {"moved": moved(*seen), "no_longer": no_longer(*seen), "new": done}
+        answer = render(request, "reports/usage_corrected.html", context)
+        answer["Content-Location"] = reverse("usage", args=[pk])
+        return answer
     return render(request, "reports/usage_correct.html", context)
