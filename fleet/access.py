@@ -33,6 +33,7 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "disposition_decide": (ENGINEER, CERTIFIER, SIGNATORY),
         "evaluation_make": (ENGINEER, SIGNATORY),
         "approval_sign": (ENGINEER, SIGNATORY),
+        "substantiation_draft": (ENGINEER, SIGNATORY),
         "repair_record": (RECORDER, ENGINEER, CERTIFIER),
         "repair_inspect": (ENGINEER, CERTIFIER, SIGNATORY),
         "document_applicability_record": (ENGINEER, SIGNATORY),
@@ -51,6 +52,7 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "value_adopt": (ENGINEER,),
         "value_confirm": (ENGINEER, SIGNATORY),
         "history_read": (AUDITOR, MANAGER, ADMIN),
+        "backup_watch": (ADMIN,),
     }.items()
 }
 

@@ -71,6 +71,15 @@ def subject(each: OneOfEach) -> dict[str, Any]:
     return {"pk": each.requirement.pk, "subject_pk": each.subject.pk}
 
 
+def neighbour(each: OneOfEach) -> dict[str, Any]:
+    return {"pk": each.folder.pk, "row_pk": each.folder.neighbours.earliest("pk").pk}
+
+
+def folder_row(each: OneOfEach) -> dict[str, Any]:
+    row = each.folder.cases.get()
+    return {"pk": each.folder.pk, "what": "case", "row_pk": row.pk}
+
+
 def flown(each: OneOfEach) -> dict[str, Any]:
     row = each.world.aircraft.usage.earliest("day")
     return {"pk": row.aircraft_id, "row_pk": row.pk}
@@ -115,6 +124,8 @@ PAGES: dict[str, Page] = {
     "policies": Page(),
     "policy_new": Page(FORM, "policy_set"),
     "history": Page(action="history_read"),
+    "seals": Page(action="history_read"),
+    "keeping": Page(action="history_read"),
     "due_list": Page(),
     "density": Page(),
     "finding_list": Page(),
@@ -182,6 +193,20 @@ PAGES: dict[str, Page] = {
     "survey_close": Page(FORM, "survey_answer", key("survey")),
     "survey_match": Page(SEND, "survey_record", key("survey_item")),
     "survey_answer": Page(FORM, "survey_answer", key("survey_item")),
+    "substantiation_list": Page(),
+    "substantiation_new": Page(FORM, "substantiation_draft"),
+    "substantiation": Page(keys=key("folder")),
+    "substantiation_edit": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_revise": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_neighbours": Page(SEND, "substantiation_draft", key("folder")),
+    "substantiation_neighbour": Page(FORM, "substantiation_draft", neighbour),
+    "substantiation_finding": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_repair": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_case": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_effects": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_document": Page(FORM, "substantiation_draft", key("folder")),
+    "substantiation_withdraw": Page(SEND, "substantiation_draft", folder_row),
+    "substantiation_sign": Page(FORM, "approval_sign", key("folder")),
     "usage": Page(keys=aircraft, sends="usage_record"),
     "usage_correct": Page(FORM, "usage_record", flown),
     "part_list": Page(),

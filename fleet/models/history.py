@@ -20,6 +20,7 @@ DONE = {
     "cancel": "cancelled", "change": "changed", "close": "closed",
     "compare": "compared", "correct": "corrected", "create": "created",
     "decide": "decided", "determine": "determined", "do": "done",
+    "draft": "drafted", "edit": "edited", "find": "looked for",
     "embody": "embodied", "end": "ended",
     "grant": "granted", "import": "imported", "inspect": "inspected",
     "install": "installed", "key": "keyed",
@@ -29,7 +30,9 @@ DONE = {
     "record": "recorded",
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
     "renew": "renewed", "reset": "reset",
-    "restore": "restored", "send": "sent", "set": "set", "sign": "signed", "start": "begun",
+    "restore": "restored", "send": "sent", "set": "set", "sign": "signed",
+    "start": "begun",
+    "review": "reviewed", "revise": "revised", "withdraw": "withdrawn",
     "supplement": "supplemented", "void": "voided",
 }  # fmt: skip
 """Last word of a service's name to what it did."""

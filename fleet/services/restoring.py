@@ -88,6 +88,11 @@ def backup_restore(
     return Restored(_recorded(backup, at, found), read, found)
 
 
+def drill_record(*, backup: BackupReader, at: dt.datetime, found: list[str]) -> Backup:
+    """That the backup was restored elsewhere and thrown away, and what was found."""
+    return _recorded(backup, at, found)
+
+
 def records_held() -> list[str]:
     """Tables with rows that a new database does not have."""
     return [

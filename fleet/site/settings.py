@@ -6,6 +6,7 @@
 | DATABASE_URL | as `postgres://user@host/name` | SQLite in FRAMEBAY_DATA |
 | FRAMEBAY_SECRET_KEY | signing key of sessions | made once, kept in FRAMEBAY_DATA |
 | FRAMEBAY_SEAL_KEY | Ed25519 key of seals, base64 of its 32 bytes | made once, kept |
+| FRAMEBAY_SEAL_HOURS | hours after which the last seal is called old | 24 |
 | FRAMEBAY_BACKUPS | folder of backups; better elsewhere | `backups/` in FRAMEBAY_DATA |
 | FRAMEBAY_HOSTS | host names served, comma between | this machine only |
 | FRAMEBAY_HTTPS | 1 when served over TLS: secure cookies, HSTS | 0 |
@@ -55,6 +56,7 @@ ATTACHMENTS = DATA_DIR / "attachments"
 SEALS = DATA_DIR / "seals"
 SEAL_KEY = os.environ.get("FRAMEBAY_SEAL_KEY", "")
 SEAL_KEY_FILE = DATA_DIR / "seal_key"
+SEAL_HOURS = env_count("FRAMEBAY_SEAL_HOURS", 24)
 BACKUPS = Path(os.environ.get("FRAMEBAY_BACKUPS") or DATA_DIR / "backups").resolve()
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from typing import Any
 
 from django.conf import settings
@@ -9,7 +10,9 @@ from django.http import HttpRequest
 from django.urls import reverse
 
 from fleet.access import may_somewhere
-from fleet.clock import today
+from fleet.clock import now, today
+from fleet.models import User
+from fleet.selectors.keeping import backup_warning
 
 # Page name, its word, and the beginning of the addresses that belong to it.
 NAVIGATION = (
@@ -28,12 +31,14 @@ OFFICE = (
     ("adopted_list", "Adopted", "/adopted/", ""),
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),
+    ("keeping", "Keeping", "/keeping/", "history_read"),
     ("account", "Account", "/account/", ""),
 )
 
 
 def page(request: HttpRequest) -> dict[str, Any]:
-    """Navigation with the current page marked; no query beyond the user's own."""
+    """Navigation with the current page marked; no query beyond the user's own, but for
+    administrators one or two on the last backup."""
     known = {"demonstration": bool(settings.FRAMEBAY_TODAY), "today": today()}
     user = getattr(request, "user", None)
     if user is None or not user.is_authenticated:
@@ -52,7 +57,15 @@ def page(request: HttpRequest) -> dict[str, Any]:
             for name, word, start, action in OFFICE
             if not action or may_somewhere(user, action)
         ],
+        "backup_warning": partial(_backup_warning, user),
     }
+
+
+def _backup_warning(user: User) -> str:
+    """For administrators, on every page: what is wrong with the last backup."""
+    if not may_somewhere(user, "backup_watch"):
+        return ""
+    return backup_warning(user, at=now(), on=today())
 
 
 def _is_here(path: str, start: str) -> bool:

@@ -8,9 +8,11 @@ from django.shortcuts import render
 from django.views.decorators.http import require_safe
 
 from fleet.access import require_somewhere
+from fleet.clock import now
 from fleet.forms.history import HistoryFilter
 from fleet.models import HistoryHead
 from fleet.selectors.entries import actions_of, entries
+from fleet.selectors.keeping import seal_warning
 from fleet.views.pages import query_without_page
 from fleet.views.requests import Request
 
@@ -29,5 +31,6 @@ def history(request: Request) -> HttpResponse:
         "page": pages.get_page(request.GET.get("page")),
         "query": query_without_page(request),
         "head": HistoryHead.objects.first(),
+        "seal_warning": seal_warning(at=now()),
     }
     return render(request, "fleet/history.html", context)

@@ -44,6 +44,7 @@ POLICIES = (
     DemoPolicy(
         EUROPE, "report_final_months", 3, "months", ANALYSIS, "2014", "memory"
     ),
+    DemoPolicy(EUROPE, "backup_hours", 24, "hours", "AMC CAMO.A.220, AMC M.A.614"),
     DemoPolicy(EUROPE, "late_entry_days", 30, "days", "M.A.305(a)"),
     DemoPolicy("FAA", "report_period_hours", 96, "hours", DIFFICULTIES),
     DemoPolicy("FAA", "report_period_begins", 9, "hours", DIFFICULTIES),

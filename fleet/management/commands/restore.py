@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+import os
+import subprocess
+import sys
+import tempfile
 from pathlib import Path
 from typing import Any
 
@@ -11,13 +15,16 @@ from django.core.management.base import BaseCommand, CommandError
 
 from fleet.backup_file import BackupReader, NotABackup
 from fleet.clock import now
-from fleet.services.restoring import backup_restore, records_held
+from fleet.services.restoring import backup_restore, drill_record, records_held
 
 ASKED = (
     "This gives up every record of this database for those of the backup made "
     "{made_at} (history entry {sequence:,}). Type replace to go on: "
 )
 GIVEN_UP = "Nothing was changed."
+DRILLED = (
+    "This was a drill: that database is gone, the outcome is recorded in this one."
+)
 GOOD = (
     "Restored {path}, made {made_at}: {rows:,} rows and {files:,} files put back and "
     "verified, {entries:,} history entries. Everything agrees.\n"
@@ -47,6 +54,11 @@ class Command(BaseCommand):
             "--no-input", action="store_true", help="with --replace: do not ask"
         )
         parser.add_argument(
+            "--drill",
+            action="store_true",
+            help="into a database thrown away afterwards; the outcome is recorded here",
+        )
+        parser.add_argument(
             "--progress", action="store_true", help="say what is being done"
         )
 
@@ -54,6 +66,9 @@ class Command(BaseCommand):
         say = self._say if options["progress"] else lambda _: None
         try:
             backup = BackupReader(options["file"], say)
+            if options["drill"]:
+                self._drill(backup)
+                return
             call_command("migrate", verbosity=0)
             if options["replace"] and records_held() and not options["no_input"]:
                 self._ask(backup)
@@ -82,6 +97,23 @@ class Command(BaseCommand):
                 digest=backup.manifest.digest,
             )
         )
+
+    def _drill(self, backup: BackupReader) -> None:
+        """Restore it as on a new machine: a process of its own, SQLite, a new folder."""
+        with tempfile.TemporaryDirectory() as folder:
+            environment = os.environ | {"FRAMEBAY_DATA": folder, "DATABASE_URL": ""}
+            done = subprocess.run(
+                [sys.executable, sys.argv[0], "restore", str(backup.path.resolve())],
+                env=environment,
+                capture_output=True,
+                text=True,
+                check=False,
+            )
+        found = done.stderr.strip().splitlines() if done.returncode else []
+        drill_record(backup=backup, at=now(), found=found)
+        if found:
+            raise CommandError("\n".join(found))
+        self.stdout.write(done.stdout + DRILLED)
 
     def _ask(self, backup: BackupReader) -> None:
         question = ASKED.format(
