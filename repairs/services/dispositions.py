@@ -9,6 +9,7 @@ from dataclasses import replace
 from django.core.exceptions import ValidationError
 
 from fleet.models import Authorisation, User
+from fleet.selectors.applicability import document_refusals
 from fleet.services.aircraft import stream_of
 from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
@@ -89,6 +90,11 @@ def disposition_write(
     if problems := decision_problems(entry, findings):
         raise ValidationError(problems)
     operator = operator_on(entry.aircraft, entry.decided_on)
+    basis = entry.basis
+    if refusals := document_refusals(
+        operator, entry.aircraft, basis.reference, basis.revision
+    ):
+        raise ValidationError(refusals)
     authorisation = authorised(
         person=proof.person,
         operator=operator,

@@ -12,7 +12,14 @@ from typing import TYPE_CHECKING
 
 from fleet.models import AuthorisationScope
 from repairs.measurements import missing
-from repairs.models import Cause, DispositionKind, Finding, FindingState, RepairFinding
+from repairs.models import (
+    Cause,
+    DispositionKind,
+    Finding,
+    FindingState,
+    RepairFinding,
+    RepairState,
+)
 from repairs.selectors.deferrals import running_deferral
 from repairs.selectors.report_triggers import (
     is_critical_crack,
@@ -61,6 +68,9 @@ PASSED_ALREADY = (
     "deferred further on maintenance data. Rectify it, or cite the approval document "
     "of a design approval holder."
 )
+ANSWERING = (RepairState.EMBODIED, RepairState.SUPERSEDED)
+"""A repair that gave way to a larger one answers through that one."""
+
 NO_RELEASE = "{number} has no released repair that answers it; record the repair first."
 NO_REFERENCE = (
     "{repair} names no certificate of release; give the reference of the release."
@@ -253,7 +263,7 @@ def _extends(finding: Finding, facts: Facts) -> list[str]:
 def released_rows(finding: Finding) -> list[RepairFinding]:
     """The repairs that answer it and are released."""
     rows = finding.repair_rows.select_related("repair__release_document")
-    return list(rows.filter(repair__released_on__isnull=False))
+    return list(rows.filter(repair__state__in=ANSWERING))
 
 
 def _released(finding: Finding, facts: Facts) -> list[str]:

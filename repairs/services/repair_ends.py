@@ -15,6 +15,7 @@ from repairs.models import (
     FindingState,
     InspectionRequirement,
     Repair,
+    RepairFinding,
     RepairState,
     RequirementState,
 )
@@ -139,11 +140,21 @@ def _uncover(w: Writing, repair: Repair, *, gone: bool) -> None:
     """Damage that only lay under the repair is in the open again, or went with it."""
     if gone:
         return
-    hidden = repair.finding_rows.filter(covers=True).exclude(damage_removed="yes")
-    for row in hidden:
+    rows = RepairFinding.objects.filter(repair__in=_lying_under(repair), covers=True)
+    for row in rows.exclude(damage_removed="yes"):
         finding = w.locked(Finding.objects.all(), pk=row.finding_id)
         if finding.state in ANSWERED and not _hidden_elsewhere(finding, repair):
             w.change(finding, state=FindingState.ASSESSED)
+
+
+def _lying_under(repair: Repair) -> list[Repair]:
+    """The repair and all that gave way to it, on through the chain."""
+    found, todo = [repair], [repair]
+    while todo:
+        earlier = list(todo.pop().supersedes.all())
+        found += earlier
+        todo += earlier
+    return found
 
 
 def _hidden_elsewhere(finding: Finding, repair: Repair) -> bool:

@@ -13,6 +13,7 @@ from django.views.decorators.http import require_http_methods, require_safe
 from fleet.access import may, require, visible_or_404
 from fleet.clock import now, today
 from fleet.forms.signing import SIGNATURE
+from fleet.selectors.applicability import applies_to
 from fleet.selectors.history import history_of
 from fleet.services.signing import Proof
 from fleet.views.requests import Request
@@ -84,6 +85,7 @@ def disposition(request: Request, pk: int) -> HttpResponse:
     findings = list(row.finding_rows.select_related("finding"))
     context = {
         "disposition": row,
+        "applies": applies_to(row.basis_document, row.aircraft),
         "findings": findings,
         "basis": row.basis_rows.select_related("evaluation", "limit_check__limit"),
         "neighbours": row.neighbour_reviews.select_related("finding", "repair"),

@@ -31,6 +31,7 @@ from fleet.selectors.history import Told, history_of
 from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
 from repairs.models import OPEN_STATES, Finding, Repair
+from repairs.selectors.hidden import hiding_damage, with_hiding
 from repairs.selectors.unknowns import Unknown, unknowns
 from reports.due_list import DueQuery, due_list
 from reports.selectors.due_shown import DueShown
@@ -78,6 +79,7 @@ class AircraftPage:
     open_findings: Shown
     accepted: Shown
     repairs: Shown
+    hiding: int
     panels: list[PanelOnAircraft]
     parts: list[PartLine]
     history: list[Told]
@@ -171,7 +173,8 @@ def aircraft_page(user: User, aircraft: Aircraft, *, as_of: dt.date) -> Aircraft
         due=_due(user, aircraft, as_of) if own and aircraft.data_to is None else None,
         open_findings=_shown(findings.filter(state__in=OPEN_STATES)),
         accepted=_shown(findings.filter(state="accepted")),
-        repairs=_shown(repairs.distinct()),
+        repairs=_shown(with_hiding(repairs).distinct()),
+        hiding=hiding_damage(repairs).distinct().count(),
         panels=list(
             PanelOnAircraft.objects.visible_to(user)
             .filter(aircraft=aircraft, replaced_by__isnull=True)

@@ -109,7 +109,7 @@ def test_a_repair_is_drawn_at_its_recorded_size(fleet, engineer):
         width_mm=250.0,
     )
     root = ElementTree.fromstring(item_map_svg(repair, user=engineer))
-    outer = next(n for n in root.iter("rect") if n.get("class") == "repair")
+    outer = next(n for n in root.iter("rect") if "repair" in n.get("class", ""))
     assert float(outer.get("width")) / float(outer.get("height")) == pytest.approx(
         2.0, abs=0.01
     )
