@@ -50,7 +50,9 @@ def limit(entered: str, *, in_force: bool = True, **columns):
     return row
 
 
-def install(part, aircraft, cycles, *, on=FIRST, config="base", position="MLG LH"):
+def install(
+    part, aircraft, cycles, *, on=FIRST, config="base", position="MLG LH", release=""
+):
     return part_install(
         actor=None,
         at=AT,
@@ -60,6 +62,7 @@ def install(part, aircraft, cycles, *, on=FIRST, config="base", position="MLG LH
         configuration=make.configuration(config),
         on=on,
         counters=at(cycles),
+        release_reference=release,
     )
 
 
