@@ -46,6 +46,7 @@ from reports.demo.records import (
 )
 from reports.demo.timeline import Rank, Step
 
+HOLDER_DOCUMENTS = ("letter", "design_approval")
 UNVERIFIED_DAYS = 120
 """Requirements younger than this still wait for their second keying."""
 
@@ -162,7 +163,7 @@ def _answering(loaded: Loaded, repair: DemoRepair, entry: RepairEntry) -> Repair
         disposition=loaded.rows.get(f"S{key[1:]}"),
         replacement_limit=Amounts(cycles=limits.get("cycles")),
         temporary_limit_cycles=_from_release(repair),
-        stage_reached="1" if repair.stage_due_on else "not_applicable",
+        stage_reached=_stage(repair),
     )
 
 
@@ -170,6 +171,13 @@ def _from_release(repair: DemoRepair) -> int | None:
     """The scenario names what the aircraft may show; a limit counts from release."""
     shown = repair.temporary_limit_cycles
     return None if shown is None else shown - repair.at.cycles
+
+
+def _stage(repair: DemoRepair) -> str:
+    """Data by letter or design approval came complete, unless a stage is awaited."""
+    if repair.stage_due_on:
+        return "1"
+    return "3" if repair.document.kind in HOLDER_DOCUMENTS else "not_applicable"
 
 
 def _evidence(repair: DemoRepair) -> str:
