@@ -11,12 +11,12 @@ import datetime as dt
 import hashlib
 import io
 from dataclasses import dataclass
-from pathlib import Path
 
 from django.core.exceptions import ValidationError
 from django.core.files.uploadedfile import UploadedFile
 from PIL import Image, ImageOps, UnidentifiedImageError
 
+from fleet.file_checks import is_pdf, name_plain, pdf_problem
 from fleet.kept_files import attachment_path, written_whole
 from fleet.models import Attachment, Document, Operator
 from fleet.services.history import Writing
@@ -36,6 +36,11 @@ TOO_MANY_PIXELS = (
     "“{name}” is {width} by {height} pixels; at most {most} million are read. "
     "Send a smaller copy."
 )
+FAR_TOO_MANY = (
+    "“{name}” unpacks to far more than the {most} million pixels that are read. Send a "
+    "smaller copy."
+)
+PDF_REFUSED = "“{name}” is not kept: {problem}."
 NOT_READABLE = (
     "“{name}” is not an image this program reads (JPEG, PNG, WebP, TIFF) nor a PDF, "
     "or it is damaged. Its content is judged, not its name."
@@ -94,7 +99,7 @@ def attachment_store(
 
     The same file sent twice by one operator is one attachment.
     """
-    name = Path(upload.name or "file").name
+    name = name_plain(upload.name)
     content = _bytes_of(upload, name)
     original = hashlib.sha256(content).hexdigest()
     found = operator.attachments.filter(original_sha256=original).first()
@@ -124,7 +129,9 @@ def attachment_store(
 
 def cleaned_copy(content: bytes, name: str) -> Cleaned:
     """The upright image without metadata; a PDF is shown as it came."""
-    if content.startswith(b"%PDF-"):
+    if is_pdf(content):
+        if problem := pdf_problem(content):
+            raise ValidationError(PDF_REFUSED.format(name=name, problem=problem))
         return Cleaned(content, PDF)
     try:
         with Image.open(io.BytesIO(content), formats=READERS) as image:
@@ -142,7 +149,8 @@ def cleaned_copy(content: bytes, name: str) -> Cleaned:
     except (UnidentifiedImageError, OSError, ValueError, SyntaxError) as error:
         raise ValidationError(NOT_READABLE.format(name=name)) from error
     except Image.DecompressionBombError as error:
-        raise ValidationError(NOT_READABLE.format(name=name)) from error
+        most = MAX_PIXELS // 1_000_000
+        raise ValidationError(FAR_TOO_MANY.format(name=name, most=most)) from error
 
 
 def _drawn_anew(image: Image.Image, shown_as: str) -> Cleaned:

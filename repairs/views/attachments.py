@@ -12,6 +12,7 @@ from fleet.views.requests import Request
 
 LOST = "The file of this attachment is not in the store; restore it from a backup."
 SHOWN = ("image/jpeg", "image/png")
+ENDING = {"image/jpeg": ".jpg", "image/png": ".png", "application/pdf": ".pdf"}
 
 
 @require_safe
@@ -25,8 +26,8 @@ def attachment(request: Request, pk: int) -> HttpResponseBase:
         path.open("rb"),
         content_type=row.media_type,
         as_attachment=row.media_type not in SHOWN,
-        filename=f"attachment-{row.pk}",
+        filename=f"attachment-{row.pk}{ENDING.get(row.media_type, '')}",
     )
     response["X-Content-Type-Options"] = "nosniff"
-    response["Cache-Control"] = "private, max-age=86400"
+    response["Content-Security-Policy"] = "default-src 'none'; sandbox"
     return response

@@ -65,7 +65,7 @@ def test_the_same_file_twice_is_one_attachment():
 
 
 def test_a_report_is_kept_as_it_came():
-    content = b"%PDF-1.7 report"
+    content = b"%PDF-1.7 report %%EOF"
     row = store(operator_make(), content, "report.pdf")
     assert row.media_type == "application/pdf"
     assert row.sha256 == row.original_sha256
