@@ -48,6 +48,7 @@ def finding_level(request: Request, pk: int) -> HttpResponse:
             actor=request.user,
             at=now(),
         ),
+        about=[row, *filter(None, [level_now(row)])],
     )
     if made:
         messages.success(request, DETERMINED.format(number=row, level=made))

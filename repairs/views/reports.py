@@ -235,7 +235,7 @@ def _page(
     """Save and go back to the report, or the page with what is in the way."""
     content = form.data.get("content", form.initial.get("content", ""))
     notice = length_notice(row, content) if content else ""
-    if sent(form, save):
+    if sent(form, save, about=[row]):
         messages.success(request, SENT if content else SAVED)
         if notice:
             messages.warning(request, notice)

@@ -246,7 +246,7 @@ def survey_answer_page(request: Request, pk: int) -> HttpResponse:
             at=now(),
         )
 
-    if sent(form, save):
+    if sent(form, save, about=[item]):
         messages.success(request, SETTLED.format(number=item.number))
         return redirect("survey", item.survey_id)
     choices = record_choices(item.survey) if item.seen_as != "nothing" else []
@@ -269,7 +269,7 @@ def survey_close_page(request: Request, pk: int) -> HttpResponse:
             at=now(),
         )
 
-    if sent(form, save):
+    if sent(form, save, about=[row]):
         messages.success(request, CLOSED.format(number=row.number))
         return redirect("survey", pk)
     context = {"survey": row, "form": form, "page": survey_page(row)}
