@@ -24,6 +24,8 @@ from repairs.views import (
     repairs,
     reports,
     requirements,
+    substantiation_rows,
+    substantiations,
     surveys,
 )
 
@@ -187,6 +189,45 @@ urlpatterns = [
         "repairs/<int:pk>/evaluate/",
         evaluations.evaluation_new_repair,
         name="evaluation_new_repair",
+    ),
+    path(
+        "substantiations/",
+        substantiations.substantiation_list,
+        name="substantiation_list",
+    ),
+    path(
+        "substantiations/new/",
+        substantiations.substantiation_new,
+        name="substantiation_new",
+    ),
+    path(
+        "substantiations/<int:pk>/",
+        substantiations.substantiation,
+        name="substantiation",
+    ),
+    path(
+        "substantiations/<int:pk>/edit/",
+        substantiations.substantiation_edit_page,
+        name="substantiation_edit",
+    ),
+    path(
+        "substantiations/<int:pk>/revise/",
+        substantiations.substantiation_revise_page,
+        name="substantiation_revise",
+    ),
+    *(
+        path(f"substantiations/<int:pk>/{one}/", view, name=f"substantiation_{one}")
+        for one, view in substantiation_rows.ADDED.items()
+    ),
+    path(
+        "substantiations/<int:pk>/neighbours/<int:row_pk>/",
+        substantiation_rows.substantiation_neighbour,
+        name="substantiation_neighbour",
+    ),
+    path(
+        "substantiations/<int:pk>/<str:what>/<int:row_pk>/withdraw/",
+        substantiation_rows.substantiation_withdraw,
+        name="substantiation_withdraw",
     ),
     path("evaluations/", evaluation_list.evaluation_list, name="evaluation_list"),
     path("evaluations/<int:pk>/", evaluations.evaluation, name="evaluation"),

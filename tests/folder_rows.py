@@ -13,10 +13,12 @@ from fleet.canonical import digest
 from fleet.due import Counters
 from fleet.models import Person
 from fleet.services.people import policy_set
-from repairs.models import Approval, Finding, Repair, Substantiation
+from repairs.models import Approval, Evaluation, Finding, Repair, Substantiation
 from repairs.selectors.signatures import content_of
 from repairs.selectors.substantiation_needs import TOUCHES
 from repairs.services.approvals import Signed, approval_sign
+from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluations import default_use, evaluation_make
 from repairs.services.substantiation_entry import (
     CaseEntry,
     DocumentEntry,
@@ -145,6 +147,16 @@ class Folders:
             },
         )
         self.document(folder, role="calculation", reference="ARD-DT-0077")
+
+    def evaluation(self, finding: Finding) -> Evaluation:
+        """A calculation of the finding; unchecked, as it is made."""
+        return evaluation_make(
+            subject=finding,
+            choice=Choice(default_use(finding)),
+            as_of=TODAY,
+            actor=self.world.engineer,
+            at=NOW,
+        )
 
     def effects(self, folder: Substantiation) -> None:
         substantiation_effects_answer(

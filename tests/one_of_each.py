@@ -43,6 +43,7 @@ from repairs.models import (
     Photograph,
     Repair,
     RequirementSubject,
+    Substantiation,
     Survey,
     SurveyItem,
 )
@@ -67,6 +68,7 @@ from tests.factories import (
     program,
     user_make,
 )
+from tests.folder_rows import folders_make
 from tests.record_rows import (
     CRACK,
     FIRST,
@@ -110,6 +112,7 @@ class OneOfEach:
     attachment: Attachment
     membership: Membership
     adopted: AdoptedValue
+    folder: Substantiation
 
 
 def one_of_each_make() -> OneOfEach:
@@ -148,6 +151,7 @@ def one_of_each_make() -> OneOfEach:
         attachment=_photograph(world, finding),
         membership=world.users["recorder"].memberships.get(),
         adopted=_adopted(world),
+        folder=_folder(world, finding),
     )
 
 
@@ -238,7 +242,9 @@ def _repair(world: World) -> Repair:
             approval=Data("repair_manual", "SRM 53-10-12", "14", "fig. 202"),
             released_on=RELEASED,
             at=AT,
+            performed_by=world.assessor,
             released_by=world.certifier,
+            release_reference="CRS-77",
         ),
         proof=program(world.certifier),
         actor=world.engineer,
@@ -357,6 +363,13 @@ def _adopted(world: World) -> AdoptedValue:
         at=NOW,
         on=TODAY,
     )
+
+
+def _folder(world: World, finding: Finding) -> Substantiation:
+    folders = folders_make(world)
+    folder = folders.draft(findings=[finding])
+    folders.case(folder)
+    return folder
 
 
 def _photograph(world: World, finding: Finding) -> Attachment:

@@ -54,11 +54,16 @@ def further_steps(finding: Finding, user: User) -> list[Step]:
             finding.state in (S.REPORTED, S.ASSESSED),
         ),
     ]
-    return [
+    steps = [
         Step(reverse(name, args=[finding.pk]), words)
         for name, words, action, possible in offered
         if possible and may(user, action, finding.aircraft.operator_id)
     ]
+    may_draft = may(user, "substantiation_draft", finding.aircraft.operator_id)
+    if open_to_change and may_draft:
+        address = f"{reverse('substantiation_new')}?finding={finding.pk}"
+        steps.append(Step(address, "Draft a substantiation"))
+    return steps
 
 
 def _next(finding: Finding, problems: list[str]) -> tuple[str, str, str]:

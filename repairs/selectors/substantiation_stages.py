@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from django.db.models import (
     Case,
     Exists,
     IntegerField,
     OuterRef,
+    Q,
     QuerySet,
     Value,
     When,
@@ -75,22 +78,23 @@ def with_standing(rows: QuerySet[Substantiation]) -> QuerySet[Substantiation]:
         is_rejected=own(Meaning.REJECTED),
         own_stage=_highest({stage: own(*BY_STAGE[stage]) for stage in (3, 2, 1)}),
         reached=_highest({stage: of_number(stage) for stage in (3, 2, 1)}),
-        has_open_clock=Exists(open_clocks_of(OuterRef("operator"), OuterRef("number"))),
+        has_open_clock=Exists(
+            clocks_of(OuterRef("operator"), OuterRef("number")).filter(
+                closed_on__isnull=True
+            )
+        ),
     )
 
 
-def open_clocks_of(operator: object, number: object) -> QuerySet[DuePoint]:
-    """Open stage clocks of a number: on its repairs, or on itself."""
-    points = DuePoint.objects.filter(kind=DueKind.STAGE_CLOCK, closed_on__isnull=True)
-    on_repair = points.filter(
-        repair__substantiation__operator=operator,
-        repair__substantiation__number=number,
-    )
-    on_itself = points.filter(
-        substantiation__operator=operator, substantiation__number=number
-    )
-    return points.filter(pk__in=on_repair.values("pk")) | points.filter(
-        pk__in=on_itself.values("pk")
+def clocks_of(operator: Any, number: Any) -> QuerySet[DuePoint]:
+    """Stage clocks of a number, open and closed: on its repairs, or on itself."""
+    return DuePoint.objects.filter(
+        Q(
+            repair__substantiation__operator=operator,
+            repair__substantiation__number=number,
+        )
+        | Q(substantiation__operator=operator, substantiation__number=number),
+        kind=DueKind.STAGE_CLOCK,
     )
 
 

@@ -17,7 +17,14 @@ from fleet.services.signing import Proof
 from fleet.views.requests import Request
 from fleet.views.sending import sent_signed
 from repairs.forms.dispositions import SignForm
-from repairs.models import Approval, Disposition, Evaluation, Meaning, Repair
+from repairs.models import (
+    Approval,
+    Disposition,
+    Evaluation,
+    Meaning,
+    Repair,
+    Substantiation,
+)
 from repairs.selectors.signatures import (
     Subject,
     approvals_verified,
@@ -25,11 +32,13 @@ from repairs.selectors.signatures import (
     content_of,
 )
 from repairs.services.approvals import Signed, aircraft_of, approval_sign
+from repairs.services.substantiation_signing import MEANINGS as SUBSTANTIATION_MEANINGS
 
-SUBJECTS: dict[str, type[Disposition] | type[Evaluation] | type[Repair]] = {
+SUBJECTS: dict[str, type[Any]] = {
     "disposition": Disposition,
     "evaluation": Evaluation,
     "repair": Repair,
+    "substantiation": Substantiation,
 }
 MEANINGS = {
     "disposition": (Meaning.CHECKED, Meaning.APPROVED, Meaning.REJECTED),
@@ -38,6 +47,7 @@ MEANINGS = {
         Meaning.CHECKED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3,
         Meaning.INSPECTED, Meaning.RELEASED, Meaning.REJECTED,
     ),
+    "substantiation": SUBSTANTIATION_MEANINGS,
 }  # fmt: skip
 SIGNED = "Signed: {number} {meaning}."
 METHODS = ["GET", "HEAD", "POST"]

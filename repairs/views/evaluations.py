@@ -28,6 +28,7 @@ from repairs.selectors.evaluations import (
     subject_rows,
 )
 from repairs.selectors.signatures import approvals_verified
+from repairs.selectors.substantiations import folders_citing
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluations import (
     choice_from,
@@ -90,6 +91,7 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
     context = {
         "shown": evaluation_shown(row, method_versions()),
         "approvals": approvals_verified(row),
+        "folders": folders_citing(row),
         "history": history_of(row),
         "may_make": may(request.user, ACTION, row.operator_id),
         "may_sign": may(request.user, "approval_sign", row.operator_id),

@@ -32,6 +32,7 @@ from repairs.selectors.neighbours import neighbours
 from repairs.selectors.next_step import further_steps, next_step
 from repairs.selectors.report_triggers import level_now
 from repairs.selectors.reports import finding_reports
+from repairs.selectors.substantiations import folders_of_finding
 from repairs.services.assessing import assess_problems, crack_words
 
 PER_PAGE = 50
@@ -69,6 +70,7 @@ def finding(request: Request, pk: int) -> HttpResponse:
         "limit": around.limit,
         "flown": flown,
         "problems": problems,
+        "folders": folders_of_finding(row),
         "questions": row.questions.select_related("answered_by"),
         "links": row.links.select_related("earlier", "decided_by"),
         "later": row.later_links.select_related("finding"),

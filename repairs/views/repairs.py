@@ -36,7 +36,10 @@ from repairs.selectors.signatures import approvals_verified
 from repairs.services.repair_ends import UNDER_WAY
 
 PER_PAGE = 50
-MAY = ("approval_sign", "evaluation_make", "repair_record", "repair_inspect")
+MAY = (
+    "approval_sign", "evaluation_make", "repair_record", "repair_inspect",
+    "substantiation_draft",
+)  # fmt: skip
 
 
 @require_safe
