@@ -26,11 +26,16 @@ NO_THICKNESS = "layer {number}: thickness {required} is required, fitted not rec
 class Ply(Protocol):
     """One layer as required or as fitted."""
 
-    number: int
-    material_id: int | None
-    material_entered: str
-    thickness_mm: float | None
-    thickness_entered: str
+    @property
+    def number(self) -> int: ...
+    @property
+    def material_id(self) -> int | None: ...
+    @property
+    def material_entered(self) -> str: ...
+    @property
+    def thickness_mm(self) -> float | None: ...
+    @property
+    def thickness_entered(self) -> str: ...
 
 
 @dataclass(frozen=True, slots=True)

@@ -41,7 +41,7 @@ class LinesField(forms.CharField):
         super().__init__(widget=forms.Textarea(attrs={"rows": 3}), **kwargs)
 
     def to_python(self, value: Any) -> Any:
-        text = super().to_python(value)
+        text = super().to_python(value) or ""
         return [
             [cell.strip() for cell in line.split(";")]
             for line in text.splitlines()

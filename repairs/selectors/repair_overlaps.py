@@ -106,8 +106,14 @@ def _how(repair: Repair, other: Repair) -> str:
 
 def _meet(one: Repair, two: Repair, wrap_mm: float | None) -> bool:
     """Whether both extents share a point; where nothing is said across, not known."""
-    along = [stated_extent(r.x1_mm, r.x2_mm, r.length_mm) for r in (one, two)]
-    across = [stated_extent(r.s1_mm, r.s2_mm, r.width_mm) for r in (one, two)]
+    along = (
+        stated_extent(one.x1_mm, one.x2_mm, one.length_mm),
+        stated_extent(two.x1_mm, two.x2_mm, two.length_mm),
+    )
+    across = (
+        stated_extent(one.s1_mm, one.s2_mm, one.width_mm),
+        stated_extent(two.s1_mm, two.s2_mm, two.width_mm),
+    )
     return _share(*along, None) and _share(*across, wrap_mm)
 
 

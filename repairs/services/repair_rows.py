@@ -31,7 +31,7 @@ class EnteredPly:
     thickness_entered: str
 
 
-def plies(rows: Sequence[Layer] | Sequence[Required]) -> list[EnteredPly]:
+def plies(rows: Sequence[Layer | Required]) -> list[EnteredPly]:
     return [
         EnteredPly(
             number,
