@@ -11,9 +11,13 @@ from fleet.forms.fields import DayField
 from fleet.models import Person
 from repairs.forms.fields import choose
 from repairs.forms.findings import not_in_future
-from repairs.models import CorrosionLevel
 
-WORDED = ("spread", "single_rework", "cumulative")
+SPREAD = [("local", "local"), ("widespread", "widespread"), ("unknown", "unknown")]
+REWORK = [
+    ("within", "within the allowable limits"),
+    ("beyond", "beyond the allowable limits"),
+    ("unknown", "unknown"),
+]
 
 
 class LevelForm(forms.Form):
@@ -32,11 +36,9 @@ class LevelForm(forms.Form):
         label="first inspection of the area", required=False
     )
     last_inspected_on = DayField(label="last inspected on", required=False)
-    spread = forms.ChoiceField()
-    single_rework = forms.ChoiceField(
-        label="after one rework", help_text="Against the allowable limits."
-    )
-    cumulative = forms.ChoiceField(label="with earlier reworks")
+    spread = forms.ChoiceField(choices=SPREAD)
+    single_rework = forms.ChoiceField(choices=REWORK, label="after one rework")
+    cumulative = forms.ChoiceField(choices=REWORK, label="with earlier reworks")
     programme_action = forms.CharField(
         label="change to the corrosion programme", required=False,
         widget=forms.Textarea(attrs={"rows": 2}),
@@ -54,9 +56,6 @@ class LevelForm(forms.Form):
         super().__init__(*args, **kwargs)
         self.today = today
         choose(self, "determined_by", people)
-        for name in WORDED:
-            choices = CorrosionLevel._meta.get_field(name).choices
-            self.fields[name].choices = choices  # type: ignore[attr-defined]
 
     def clean_determined_on(self) -> Any:
         return not_in_future(self.cleaned_data["determined_on"], self.today)

@@ -98,7 +98,6 @@ def _period(subject: Finding | Event) -> AircraftPeriod | None:
 def _of_finding(finding: Finding) -> list[tuple[str, str]]:
     size = size_words(list(finding.measurements.prefetch_related("values")))
     part = finding.safe_life_part
-    level = level_now(finding) if finding.damage_type == "corrosion" else None
     item = f"{finding.get_element_display()} {finding.element_label}".strip()
     cause = finding.get_cause_display()
     return [
@@ -113,7 +112,7 @@ def _of_finding(finding: Finding) -> list[tuple[str, str]]:
         ("How discovered", _discovered(finding)),
         ("Last inspection without a finding", _clean(finding)),
         ("Apparent cause", _known(cause)),
-        ("Corrosion level", str(level or "") if level else _level(finding)),
+        ("Corrosion level", _level(finding)),
         ("Action taken", _action(finding)),
         ("Aircraft grounded", _grounded(finding)),
         ("Limits that apply", "; ".join(triggers(finding)) or "none recorded"),
@@ -136,7 +135,10 @@ def _known(words: str) -> str:
 
 
 def _level(finding: Finding) -> str:
-    return "" if finding.damage_type == "corrosion" else "not corrosion"
+    if finding.damage_type != "corrosion":
+        return "not corrosion"
+    level = level_now(finding)
+    return "" if level is None else str(level)
 
 
 def _discovered(finding: Finding) -> str:

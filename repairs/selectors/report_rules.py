@@ -9,7 +9,7 @@ Clocks are policy rows of the regime: `report_hours` counts from detection;
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, field
 from zoneinfo import ZoneInfo, ZoneInfoNotFoundError
 
@@ -151,28 +151,31 @@ def asked_by(operator: Operator, regime: str, detected_at: dt.datetime) -> Asked
     """The regime's deadline for something detected then; without a clock, none."""
     zone, note = zone_of(operator)
     rules = rules_of(operator, regime, detected_at.astimezone(zone).date())
-    clocks = []
-    if HOURS in rules.rows:
-        clocks.append((rules.rows[HOURS], None, ""))
-    if PERIOD_HOURS in rules.rows:
-        begins = rules.count(PERIOD_BEGINS)
-        said = (
-            ""
-            if begins is not None
-            else NO_BEGIN.format(key=PERIOD_BEGINS, regime=regime)
-        )
-        start = dt.time(begins % 24) if begins is not None else None
-        clocks.append((rules.rows[PERIOD_HOURS], start, said))
-    if not clocks:
-        return Asked(regime, None, None, (NO_CLOCK.format(regime=regime),))
     holidays = holidays_of(operator, regime) if PERIOD_HOURS in rules.rows else ()
-    answers: list[tuple[Policy, ReportDue, str]] = []
-    for row, start, said in clocks:
-        clock = ReportClock(row.value, start)
-        due = report_due(clock, detected_at, zone=zone, holidays=holidays)
-        answers.append((row, due, said))
+    answers: list[tuple[Policy, ReportDue, str]] = [
+        (row, report_due(clock, detected_at, zone=zone, holidays=holidays), said)
+        for row, clock, said in _clocks(rules)
+    ]
+    if not answers:
+        return Asked(regime, None, None, (NO_CLOCK.format(regime=regime),))
     row, due, said = min(answers, key=lambda answer: answer[1].at)
     return Asked(regime, row, due.at, tuple(filter(None, (*due.because, said, note))))
+
+
+def _clocks(rules: Rules) -> Iterator[tuple[Policy, ReportClock, str]]:
+    """The clocks on record. A period whose beginning is not on record is not waited
+    for: its hours count from detection, and that is said."""
+    if plain := rules.rows.get(HOURS):
+        yield plain, ReportClock(plain.value), ""
+    period = rules.rows.get(PERIOD_HOURS)
+    if period is None:
+        return
+    begins = rules.count(PERIOD_BEGINS)
+    if begins is None or not 0 <= begins < 24:
+        said = NO_BEGIN.format(key=PERIOD_BEGINS, regime=rules.regime)
+        yield period, ReportClock(period.value), said
+    else:
+        yield period, ReportClock(period.value, dt.time(begins)), ""
 
 
 @dataclass(frozen=True)

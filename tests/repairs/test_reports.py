@@ -24,7 +24,7 @@ from repairs.selectors.report_draft import (
     problem_text,
     report_draft,
 )
-from repairs.selectors.report_rules import rules_of
+from repairs.selectors.report_rules import asked_by, rules_of
 from repairs.selectors.reports import finding_reports, follow_ups_of, span_words
 from repairs.services.events import event_record
 from repairs.services.reports import (
@@ -201,7 +201,10 @@ def test_the_clock_runs_from_the_moment_that_is_given(world, clocks):
 
 def test_detection_is_not_before_the_find_nor_ahead_of_now(world, clocks):
     report = asked(world)
-    for moment, words in ((NOON - DAY, "before F-0001 was found"), (NOW + DAY, "ahead")):
+    for moment, words in (
+        (NOON - DAY, "before F-0001 was found"),
+        (NOW + DAY, "ahead"),
+    ):
         with pytest.raises(ValidationError, match=words):
             decided(world, report, detected_at=moment)
 
@@ -240,9 +243,7 @@ def test_a_report_says_when_where_to_and_under_which_reference(world, clocks):
         ({"sent_at": NOON - DAY}, "sent_on"),
     ):
         with pytest.raises(ValidationError) as refused:
-            report_send(
-                report=report, sending=sending(**changes), actor=None, at=NOW
-            )
+            report_send(report=report, sending=sending(**changes), actor=None, at=NOW)
         assert list(refused.value.message_dict) == [field]
 
 
@@ -388,3 +389,12 @@ def test_a_problem_text_too_long_for_the_form_is_noticed_not_refused(world, cloc
     assert length_notice(report, head + "x" * 1_500) == ""
     notice = length_notice(report, head + "x" * 1_501)
     assert "1,501 characters; the form takes 1,500 (form instructions)" in notice
+
+
+def test_a_period_whose_beginning_is_not_on_record_is_not_waited_for(world):
+    aircraft = operated(world, regime="FAA")
+    clock("report_period_hours", 96, "hours", regime="FAA")
+    report = crack(world, aircraft=aircraft).reports.get(regime="FAA")
+    assert report.due_at == dt.datetime(2024, 12, 24, tzinfo=dt.UTC)
+    asked = asked_by(aircraft.operator, "FAA", report.detected_at)
+    assert any("no report_period_begins is recorded" in x for x in asked.because)
