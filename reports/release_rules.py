@@ -100,6 +100,11 @@ STOPS: dict[str, Rule] = {
         "14 CFR 121.379(b)",
         "The approval data recorded with the repair, or its replacement.",
     ),
+    "other_serial": Rule(
+        "Approved data hold for the serials that they name.",
+        "14 CFR 121.379(b)",
+        "Approval data that hold for this serial, or the applicability put right.",
+    ),
     "stage_1": Rule(
         "A repair to fatigue-critical structure has stage 1 of its approval before "
         "return to service.",

@@ -54,6 +54,11 @@ class StopsQuery:
     leg_minutes: int | None = None
 
     @property
+    def eve(self) -> date:
+        """The day to which usage must be recorded."""
+        return self.as_of - timedelta(days=1)
+
+    @property
     def needs(self) -> Counters:
         """What the next flights use up on each counter."""
         minutes = max(self.leg_minutes or 1, 1)
@@ -75,7 +80,7 @@ class ReleaseStops:
     def behind(self) -> bool:
         """Usage does not reach the eve of the day: counters are too low."""
         current_to = self.standing.current_to
-        return current_to is None or current_to < self.query.as_of - timedelta(days=1)
+        return current_to is None or current_to < self.query.eve
 
     @property
     def states_note(self) -> str:
@@ -149,8 +154,8 @@ def _due_lines(
     for row in listed.rows:
         here = row.aircraft is not None and row.aircraft.pk == aircraft.pk
         if here and row.item.kind != DueKind.PHASE:
-            cause = _cause(row) if stops_flight(row, query.needs) else "due"
-            yield Line(cause, row.item.item, row.item.address, _stands(row))
+            cause = _cause(row) if stops_flight(row, query) else "due"
+            yield Line(cause, row.item.item, row.item.address, _stands(row, query))
 
 
 def _cause(row: DueRow) -> str:
@@ -160,17 +165,23 @@ def _cause(row: DueRow) -> str:
     return CAUSE_OF_KIND.get(kind, "overdue")
 
 
-def stops_flight(row: DueRow, needs: Counters) -> bool:
+def stops_flight(row: DueRow, query: StopsQuery) -> bool:
     """Whether what remains does not hold the next flights, or that is not known.
 
     A calendar limit is the last permitted day; a counter must still hold the flights.
     """
-    if row.state in (DueState.CANNOT_COMPUTE, DueState.PRESUMED_OVERDUE):
+    if row.state is DueState.CANNOT_COMPUTE or _presumed(row, query):
         return True
-    short = [_short(line, needs) for line in row.status.lines]
+    short = [_short(line, query.needs) for line in row.status.lines]
     if row.due.combine is Combine.LAST:
         return all(short)
     return any(short)
+
+
+def _presumed(row: DueRow, query: StopsQuery) -> bool:
+    """Counters not reported count against it; once reported, they alone are judged."""
+    lags = row.current_to is None or row.current_to < query.eve
+    return row.state is DueState.PRESUMED_OVERDUE and lags
 
 
 def _short(line: Remaining, needs: Counters) -> bool:
@@ -180,13 +191,15 @@ def _short(line: Remaining, needs: Counters) -> bool:
     return line.remaining < (1 if needed is None else needed)
 
 
-def _stands(row: DueRow) -> str:
+def _stands(row: DueRow, query: StopsQuery) -> str:
     told = [
         f"due {cell.due}, {f'now {cell.now}, ' if cell.now else ''}"
         f"remaining {cell.remaining}"
         for cell in row.cells
     ]
-    return "; ".join([*told, row.item.basis, *row.said, *row.item.marks])
+    reported = row.state is DueState.PRESUMED_OVERDUE and not _presumed(row, query)
+    said = row.notes if reported else row.said
+    return "; ".join(filter(None, [*told, row.item.basis, *said, *row.item.marks]))
 
 
 def _unaccounted(listed: DueList, aircraft: Aircraft) -> Iterable[Line]:

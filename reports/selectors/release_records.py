@@ -14,6 +14,7 @@ from django.db.models import Prefetch, Q
 from fleet.amounts import counters_write
 from fleet.due import Counters
 from fleet.models import Aircraft, Criticality, Document
+from fleet.selectors.applicability import applies_to
 from repairs.models import (
     ASIDE_STATES,
     Approval,
@@ -36,11 +37,13 @@ from repairs.models import (
     RepairStep,
     SubstantiationFinding,
 )
-from repairs.selectors.neighbours import findings_shown
 from repairs.selectors.hidden import with_hiding
+from repairs.selectors.neighbours import findings_shown
+from repairs.selectors.repair_inspections import INSPECTION_LINE
 
 APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
+IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
 STANDING = (RepairState.PLANNED, RepairState.IN_WORK, RepairState.EMBODIED)
 STAYS = (FindingState.ACCEPTED, FindingState.DEFERRED)
 STAGED = ("1", "2", "3")
@@ -88,9 +91,9 @@ class _Signed:
         return seen or repair.inspected_by_id is not None
 
     def rejected(self, repair: Repair) -> bool:
-        """The last word of the inspection is a rejection that nobody overruled."""
+        """A rejection of the inspection line stands until that line answers it."""
         rows = self.inspections.get(repair.pk, [])
-        return bool(rows) and rows[-1].meaning == Meaning.REJECTED
+        return any(row.meaning == Meaning.REJECTED for row in rows)
 
 
 def _signed(aircraft: Aircraft) -> _Signed:
@@ -99,22 +102,24 @@ def _signed(aircraft: Aircraft) -> _Signed:
     rows = Approval.objects.filter(
         Q(repair__aircraft=aircraft) | Q(substantiation__aircraft=aircraft),
         overruled_by__isnull=True,
-    ).select_related("substantiation")
+    ).select_related("substantiation", "authorisation")
     for row in rows.order_by("signed_at", "pk"):
         if row.substantiation is not None and row.meaning in APPROVING:
             found.approved_folders.add(row.substantiation.number)
         elif row.repair_id is not None and row.meaning in APPROVING:
             found.approved_repairs.add(row.repair_id)
-        elif row.repair_id is not None and row.meaning in (
-            Meaning.INSPECTED,
-            Meaning.REJECTED,
-        ):
+        elif row.repair_id is not None and _inspected(row):
             found.inspections.setdefault(row.repair_id, []).append(row)
     limited = DuePoint.objects.filter(
         aircraft=aircraft, kind=DueKind.DEFERRAL, closed_on__isnull=True
     )
     found.deferrals_limited.update(limited.values_list("disposition_id", flat=True))
     return found
+
+
+def _inspected(row: Approval) -> bool:
+    judged = row.meaning in (Meaning.INSPECTED, Meaning.REJECTED)
+    return judged and row.authorisation.scope in INSPECTION_LINE
 
 
 # --- findings -----------------------------------------------------------------
@@ -227,12 +232,15 @@ def _asks_report(finding: Finding, decided: Sequence[Disposition]) -> bool:
 
 
 def _repairs(aircraft: Aircraft) -> Iterable[Repair]:
-    """Three queries."""
+    """Five queries at most."""
     rows = Repair.objects.filter(aircraft=aircraft, state__in=STANDING)
     return (
         with_hiding(rows)
-        .select_related("substantiation")
+        .select_related(
+            "aircraft__variant", "operator", "substantiation", "approval_document"
+        )
         .prefetch_related(
+            "approval_document__applicability__variant",
             Prefetch(
                 "required",
                 RepairRequired.objects.exclude(difference="").filter(answer=""),
@@ -255,8 +263,11 @@ def _repair_lines(repair: Repair, signed: _Signed) -> Iterable[Line]:
         return
     if repair.state == RepairState.IN_WORK:
         yield line("in_work", "in work, not released")
-    if repair.approval_document_id is None:
+    document = repair.approval_document
+    if document is None:
         yield line("no_data", f"{state}, approval data unknown")
+    elif (applies := applies_to(document, repair.aircraft)).refused:
+        yield line("other_serial", f"{document} says {applies.ranges}")
     if _lacks_stage_1(repair, signed):
         words = repair.get_criticality_display()
         yield line("stage_1", f"{state}, criticality {words}, no stage approved")
@@ -273,16 +284,19 @@ def _repair_lines(repair: Repair, signed: _Signed) -> Iterable[Line]:
 
 
 def _lacks_stage_1(repair: Repair, signed: _Signed) -> bool:
-    """Only where stages were said to apply: recorded as none reached, or by a folder
-    that nobody approved."""
+    """Where stages were said to apply, or the operator's programme adopts them and the
+    data are no published repair whose page says its own limits."""
     if repair.criticality == Criticality.SECONDARY or repair.stage_reached in STAGED:
         return False
-    folder = repair.substantiation
-    if repair.stage_reached != "none" and folder is None:
+    folder, document = repair.substantiation, repair.approval_document
+    if repair.pk in signed.approved_repairs or (
+        folder is not None and folder.number in signed.approved_folders
+    ):
         return False
-    if repair.pk in signed.approved_repairs:
-        return False
-    return folder is None or folder.number not in signed.approved_folders
+    if repair.stage_reached == "none" or folder is not None:
+        return True
+    adopted = repair.operator.programme_three_stages and not repair.legacy
+    return adopted and document is not None and document.kind not in IN_LIMITS
 
 
 # --- events and reports -------------------------------------------------------
