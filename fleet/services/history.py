@@ -110,6 +110,8 @@ class Writing:
         try:
             if error is None and self.items:
                 self._append()
+            elif error is None:
+                changed_check()
         except BaseException as late:
             self._leave(late)
             raise

@@ -293,9 +293,10 @@ def _page(
     adds: bool = False,
 ) -> HttpResponse:
     """Save and go back to the finding, or the page with what is in the way."""
-    invalid = [form for form in forms if not form.is_valid()]
+    first, *others = forms
     about = [] if adds else [row]
-    if not invalid and send(forms[0], save, about=about) and not forms[0].errors:
+    whole = all([form.is_valid() for form in others])
+    if whole and send(first, save, about=about) and not first.errors:
         messages.success(request, SAVED.format(number=row))
         return redirect("finding", row.pk)
     context: dict[str, Any] = {
