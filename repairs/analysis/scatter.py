@@ -20,10 +20,27 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from enum import StrEnum
 from statistics import NormalDist
 
-from repairs.analysis.errors import within
-from repairs.analysis.types import Sourced
+from repairs.analysis.errors import UNKNOWN_FORM, InputError, within
+from repairs.analysis.types import Grade, Sourced
+
+
+class Form(StrEnum):
+    """How a factor is made from scatter: confidence on the mean, or one future item."""
+
+    CONFIDENCE = "confidence"
+    PREDICTIVE = "predictive"
+
+
+class Multiplied(StrEnum):
+    """What life a factor divides; one made for one life is wrong on another."""
+
+    TEST_MEAN = "geometric mean of the lives tested"
+    ANALYSIS_MEDIAN = "median life by analysis with S-N data"
+    GROWTH = "crack growth life by analysis"
+    CHARACTERISTIC = "Weibull characteristic life"
 
 
 @dataclass(frozen=True, slots=True)
@@ -155,3 +172,114 @@ def first_of_fleet(survival: float, locations: int) -> float:
     within("Survival", survival, 1e-12, 1 - 1e-12, "a probability")
     within("Locations", locations, 1, 1e9, "a count")
     return float(survival ** (1 / locations))
+
+
+@dataclass(frozen=True, slots=True)
+class Scatter:
+    """Scatter of life with its source, and what is asked of the factor.
+
+    Parameters
+    ----------
+    log_deviation
+        s, standard deviation of log10 life [-].
+    tests
+        n, tests behind the mean [-].
+    survival, confidence
+        p and C [-]; the predictive form has no confidence.
+    locations
+        Alike locations or aircraft, the first of which is to survive [-].
+    """
+
+    log_deviation: Sourced
+    tests: int
+    survival: float
+    confidence: float
+    locations: int = 1
+
+
+def policy_of_scatter(
+    scatter: Scatter, form: Form, multiplies: Multiplied, *, severity_inside: bool
+) -> FatiguePolicy:
+    """Return a factor from scatter, with all that it means.
+
+    Parameters
+    ----------
+    scatter
+        Deviation with source, tests, survival, confidence, locations.
+    form
+        Confidence on the mean, or prediction of one future item.
+    multiplies
+        The life it divides.
+    severity_inside
+        Whether the severity of the spectrum is already inside the deviation.
+
+    Returns
+    -------
+    FatiguePolicy
+        Factor, graded as the deviation is.
+
+    Notes
+    -----
+    Range of the form. Not to be stacked on a fixed factor.
+
+    References
+    ----------
+    .. [1] See the module.
+    """
+    deviation = scatter.log_deviation.value
+    z = quantile(first_of_fleet(scatter.survival, scatter.locations))
+    if form is Form.CONFIDENCE:
+        factor = factor_confidence(deviation, z, scatter.confidence, scatter.tests)
+    else:
+        factor = factor_predictive(deviation, z, scatter.tests)
+    source = (
+        f"{form} form, s = {deviation:g} ({scatter.log_deviation.source}), "
+        f"n = {scatter.tests}, p = {scatter.survival:g}"
+    )
+    if form is Form.CONFIDENCE:
+        source += f", C = {scatter.confidence:g}"
+    if scatter.locations > 1:
+        source += f", first of {scatter.locations}"
+    return FatiguePolicy(
+        Sourced(factor, "-", source, scatter.log_deviation.grade),
+        multiplies,
+        deviation,
+        scatter.tests,
+        scatter.survival,
+        scatter.confidence if form is Form.CONFIDENCE else None,
+        severity_inside,
+    )
+
+
+def _fixed(
+    value: float, source: str, what: Multiplied, tests: int | None = None
+) -> FatiguePolicy:
+    return FatiguePolicy(Sourced(value, "-", source, Grade.QUOTED), what, tests=tests)
+
+
+_SMALL = "FAA AC 23-13A, {place}, as quoted in a public engineering code"
+PUBLISHED_FACTORS: dict[str, FatiguePolicy] = {
+    "AC 23-13A, analysis": _fixed(
+        8.0, _SMALL.format(place="paragraph 2-26"), Multiplied.ANALYSIS_MEDIAN
+    ),
+    **{
+        f"AC 23-13A, full-scale tests: {tests}": _fixed(
+            value, _SMALL.format(place="Table 2"), Multiplied.TEST_MEAN, tests
+        )
+        for tests, value in ((1, 4.96), (2, 4.0), (3, 3.7), (4, 3.54))
+    },
+    "AC 25.571-1D, base factor on tests": _fixed(
+        3.0,
+        "FAA AC 25.571-1D, before its adjustments, as quoted in a public code",
+        Multiplied.TEST_MEAN,
+    ),
+}
+"""Fixed factors of published guidance, to be chosen by name; none is a default."""
+
+
+def published_factor(name: str) -> FatiguePolicy:
+    """Return a published fixed factor, else refuse with the names there are."""
+    if name not in PUBLISHED_FACTORS:
+        known = ", ".join(PUBLISHED_FACTORS)
+        raise InputError(UNKNOWN_FORM.format(name=name, known=known))
+    return PUBLISHED_FACTORS[name]

@@ -12,11 +12,14 @@ import math
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+from scipy.special import ellipe
 
+from repairs.analysis.corner_crack import corner_crack
 from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.part_through import (
     PartThrough,
     corner_crack_at_hole,
+    shape_factor,
     surface_crack,
 )
 
@@ -74,6 +77,43 @@ def test_corner_crack_at_a_hole(cracks, angle, factor):
     crack = PartThrough(0.05, 0.05, 0.09)
     found = corner_crack_at_hole(crack, 0.09375, 20, angle, cracks=cracks)
     assert found == pytest.approx(factor, rel=1e-4)
+
+
+@given(st.floats(0.21, 1.99))
+def test_q_is_the_square_of_the_elliptic_integral(aspect):
+    # Exact for an ellipse in a large body; the report states 0.13 %.
+    flat = min(aspect, 1 / aspect)
+    exact = float(ellipe(1 - flat**2)) ** 2
+    assert shape_factor(aspect, 0.0)[0] == pytest.approx(exact, rel=1.5e-3)
+
+
+@given(st.floats(0.21, 1.99), st.floats(0.0, 90.0))
+def test_a_shallow_surface_crack_is_the_buried_ellipse_and_a_little_more(aspect, angle):
+    # Exact K of the ellipse (Irwin) under S: f_phi sqrt(c/a) if deep, over E(k). The
+    # free surface adds nothing to a quarter, over the full range of a/c.
+    q, bow = shape_factor(aspect, math.radians(angle))
+    buried = bow * (math.sqrt(1 / aspect) if aspect > 1 else 1.0) / math.sqrt(q)
+    found = surface_crack(PartThrough(1e-4, 1e-4 / aspect, 1.0), 1e3, angle)
+    assert 1.0 <= found / buried <= 1.25
+
+
+@pytest.mark.parametrize("aspect", [1.25, 2.0])
+def test_a_deep_narrow_surface_crack_opens_most_at_its_surface_end(aspect):
+    # K of an ellipse is largest on its short axis; a/c > 1 puts that at the surface.
+    crack = PartThrough(0.4, 0.4 / aspect, 1.0)
+    surface = surface_crack(crack, 1e3, 10)
+    assert surface > surface_crack(crack, 1e3, 90)
+
+
+@given(st.floats(1.01, 1.99), st.floats(0.01, 0.05), st.sampled_from([10, 80]))
+def test_a_small_deep_crack_at_a_large_hole_is_a_plate_corner_in_three_times_the_stress(
+    aspect, depth, angle
+):
+    # Another published solution, over the branch a/c > 1; the hole's stress falls off
+    # along the crack, so up to a tenth less.
+    crack = PartThrough(depth, depth / aspect, 1.0)
+    at_hole = corner_crack_at_hole(crack, 3.0, 1e4, angle, cracks=2)
+    assert 0.9 < at_hole / (3 * corner_crack(crack, 1e4, angle)) < 1.0
 
 
 @given(st.floats(0.3, 2.0), st.floats(0.05, 0.95))

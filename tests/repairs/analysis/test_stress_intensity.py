@@ -244,6 +244,19 @@ def test_a_pin_on_a_short_crack_presses_at_the_handbooks_stress_concentration():
     assert hi.bearing_factor(0.0, 0.25) / 1.1215 == pytest.approx(1.38, abs=0.01)
 
 
+def test_a_pin_against_even_tension_on_a_short_crack_is_the_ratio_of_concentrations():
+    # D/W 0.25: pin 1.41 on bearing stress (Niu's curve, quoted), open hole 3.23 on
+    # gross stress (Heywood, from memory).
+    found = hi.bearing_over_bypass(EdgeLength(1e-4), 5.0, 20.0)
+    assert found == pytest.approx(1.41 / 3.23, rel=0.04)
+
+
+@given(st.floats(0.05, 2.0), st.floats(1.05, 1.5))
+def test_a_pin_matters_less_the_longer_the_crack(ratio, more):
+    short = hi.bearing_over_bypass(EdgeLength(ratio), 2.0, 60.0)
+    assert hi.bearing_over_bypass(EdgeLength(ratio * more), 2.0, 60.0) < short
+
+
 def test_long_split_cracks_approach_the_exact_splitting_pair():
     # Half of P/(t sqrt(pi a)) and half of even tension, a = r + c >> r.
     c = EdgeLength(50.0)
