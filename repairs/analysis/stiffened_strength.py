@@ -236,7 +236,8 @@ def two_bay_strength(
 
     References
     ----------
-    .. [1] Swift's two-bay criterion; from memory the guidance of AC 25.571-1D.
+    .. [1] Swift, Damage tolerance capability (1994): a two-bay skin crack with a broken
+       central stiffener, sustained at limit load; read in a public copy.
     """
 
     def effect(half_length: HalfLength) -> StiffenedCrack:
