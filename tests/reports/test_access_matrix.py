@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import html
 import re
 import uuid
 from collections.abc import Iterator
@@ -13,13 +14,29 @@ from django.test import Client, override_settings
 from django.urls import get_resolver, reverse
 
 from fleet.models import HistoryHead, User
-from fleet.services.sending import KEY_FIELD, SHOWN_FIELD
-from tests.forms import Forms
+from fleet.services.sending import CHANGED, KEY_FIELD, SHOWN_FIELD
+from tests.forms import Forms, form_on
 from tests.one_of_each import OneOfEach, one_of_each_make
 from tests.site_pages import FORM, PAGES, PUBLIC, names, nothing
 
 pytestmark = pytest.mark.django_db
 
+ONLY_ADD = frozenset(
+    {
+        "document_applicability",
+        "finding_measure",
+        "finding_photographs",
+        "finding_report",
+        "repair_photographs",
+        "second_factor_reset",
+        "sign_in_unlock",
+        "survey_import",
+        "survey_lines",
+        "survey_new",
+    }
+)
+"""Forms that add to a record, or let somebody sign in, whatever has happened to it."""
+TOLD = CHANGED.split("}")[1].split(";")[0]
 MARK = "Q7-AAA"
 INLINE = re.compile(
     r"""<style|<script(?![^>]*\ssrc=)|<[^>]*\s(?:style|on[a-z]+)\s*=""", re.IGNORECASE
@@ -81,6 +98,9 @@ CLOSED = [name for name, page in PAGES.items() if page.kind != PUBLIC]
 KEYED = [name for name in CLOSED if PAGES[name].keys is not nothing]
 OWN = [name for name in KEYED if not PAGES[name].shared]
 WRITTEN_ON = [name for name in CLOSED if PAGES[name].methods == ["get", "post"]]
+ABOUT_A_RECORD = [
+    name for name in KEYED if PAGES[name].kind == FORM and name not in ONLY_ADD
+]
 UNKEYED = [name for name in CLOSED if name not in KEYED and name != "sign_out"]
 
 
@@ -130,11 +150,26 @@ def test_every_form_carries_its_key_and_the_entry_it_was_read_at(name, each, cli
     if answer.streaming:
         return
     forms = Forms(answer.content.decode()).posted
-    assert page.kind != FORM or len(forms) > 1, "sign-out is on every page"
+    assert forms or answer.status_code != 200, "sign-out is on every page"
     for action, fields in forms:
         assert uuid.UUID(fields[KEY_FIELD]), action
         assert int(fields[SHOWN_FIELD]) == HistoryHead.objects.get().sequence
     assert len({fields[KEY_FIELD] for _, fields in forms}) == len(forms)
+
+
+@pytest.mark.parametrize("name", ABOUT_A_RECORD)
+def test_a_form_about_a_record_tells_what_happened_since_its_page(name, each, clients):
+    """As of a page opened before anything was recorded: whatever the form is about has
+    an entry since then, and the answer says so. What only adds to a record does not."""
+    page = PAGES[name]
+    client = clients[each.world.users[sorted(page.roles_for("post"))[0]].pk]
+    address = reverse(name, kwargs=page.keys(each))
+    form = form_on(client, address) | {"step": "save", SHOWN_FIELD: "0"}
+    before = HistoryHead.objects.get().sequence
+    answer = client.post(address, form)
+    assert answer.status_code == 200
+    assert TOLD in html.unescape(answer.content.decode())
+    assert HistoryHead.objects.get().sequence == before
 
 
 @pytest.mark.parametrize("name", OWN)
