@@ -52,7 +52,7 @@ def document_applicability(request: Request, pk: int) -> HttpResponse:
             document=row, **form.cleaned_data, actor=request.user, at=now()
         )
 
-    if made := sent(form, save):
+    if made := sent(form, save, about=[row]):
         said = RECORDED.format(document=row, ranges=range_words(made))
         messages.success(request, said)
         return redirect("documents")
