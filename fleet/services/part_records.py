@@ -57,9 +57,12 @@ def part_record(
     release_reference: str,
     chain: str = "complete",
 ) -> SafeLifePart:
-    """A serial, in store. `chain` says how its back-to-birth record stands."""
+    """A serial, in store. `chain` says how its back-to-birth record stands. A part
+    number that is not recorded yet is recorded with it, both or neither."""
     operator = part_number.operator
     with Writing(actor=actor, action="part_record", at=at, operator=operator) as w:
+        if part_number.pk is None:
+            w.create(part_number)
         return w.create(
             SafeLifePart(
                 operator=operator,

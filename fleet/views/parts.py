@@ -22,15 +22,11 @@ from fleet.clock import now, today
 from fleet.due import COUNTED
 from fleet.forms.part_records import LifeLimitForm, PartForm
 from fleet.forms.parts import InstallForm, PartFilter, RemoveForm
-from fleet.models import PartState, SafeLifePart
+from fleet.models import PartNumber, PartState, SafeLifePart
 from fleet.selectors.history import history_of
 from fleet.selectors.part_lines import PartLine, card_of, nearest_first, parts_shown
 from fleet.selectors.parts import part_life, part_lives
-from fleet.services.part_records import (
-    life_limit_key,
-    part_number_record,
-    part_record,
-)
+from fleet.services.part_records import life_limit_key, part_record
 from fleet.services.parts import part_install, part_remove
 from fleet.views.aircraft import FORM_METHODS
 from fleet.views.pages import query_without_page
@@ -138,8 +134,8 @@ def part_new(request: Request) -> HttpResponse:
         service: dict[str, Any] = {"actor": request.user, "at": now()}
         number, title = data.pop("new_number"), data.pop("new_title")
         if number:
-            data["part_number"] = part_number_record(
-                **service, operator=operator, number=number, title=title
+            data["part_number"] = PartNumber(
+                operator=operator, number=number, title=title
             )
         return part_record(**service, **data)
 

@@ -13,7 +13,7 @@ from typing import Any
 
 from fleet.amounts import amount_read
 from fleet.canonical import canonical, digest
-from fleet.models import LifeLimit, Operator, User
+from fleet.models import KeyedState, LifeLimit, Operator, User
 from fleet.refusals import Refused
 from fleet.services.history import Writing
 from fleet.services.part_records import life_limit_put_in_force
@@ -23,6 +23,8 @@ from repairs.services.requirement_draft import LimitEntry
 SAME_PERSON = (
     "{name} keyed it first; the second keying is by another person, from the document."
 )
+
+NOT_AWAITED = "{limit} is {state}; no second keying is awaited."
 
 
 class ReentryRefused(Refused):
@@ -63,9 +65,13 @@ def life_limit_rekey(
     held = canonical([limit.counter, limit.value, limit.base])
     again = canonical([counter.value, value, base])
     with _writing(actor, "life_limit_rekey", at, operator) as w:
+        now = w.locked(LifeLimit.objects.all(), pk=limit.pk)
+        if now.state != KeyedState.KEYED:
+            state = now.get_state_display()
+            raise ReentryRefused([NOT_AWAITED.format(limit=limit, state=state)])
         row = _reentry(w, operator, limit.entered_by, held, again, limit)
         if row.agrees:
-            life_limit_put_in_force(w, limit=limit)
+            life_limit_put_in_force(w, limit=now)
     return row
 
 

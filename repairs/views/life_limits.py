@@ -9,7 +9,7 @@ from django.views.decorators.http import require_http_methods
 
 from fleet.access import require, visible_or_404
 from fleet.clock import now
-from fleet.models import KeyedState, LifeLimit
+from fleet.models import LifeLimit
 from fleet.views.requests import Request
 from fleet.views.sending import sent
 from repairs.forms.life_limits import LifeLimitForm
@@ -25,7 +25,7 @@ DIFFERS = (
 @require_http_methods(["GET", "HEAD", "POST"])
 def life_limit_again(request: Request, pk: int) -> HttpResponse:
     """Another person keys the limit from its document; the first is not shown."""
-    rows = LifeLimit.objects.filter(state=KeyedState.KEYED).select_related(
+    rows = LifeLimit.objects.select_related(
         "part_number__operator", "configuration", "document"
     )
     limit = visible_or_404(rows, request.user, pk=pk)
