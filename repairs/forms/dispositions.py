@@ -11,7 +11,7 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.forms.signing import SignatureForm
 from fleet.models import Document
-from repairs.forms.fields import CountersForm, DataForm, Several, choose
+from repairs.forms.fields import ACCEPTED_FILES, CountersForm, DataForm, Several, choose
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
 from repairs.models import (
@@ -22,6 +22,7 @@ from repairs.models import (
     InspectionRequirement,
     LimitCheck,
     RepairCategory,
+    Substantiation,
 )
 from repairs.selectors.neighbours import Near
 from repairs.services.disposition_entry import KEEPS_DAMAGE, Basis, Reviewed
@@ -31,7 +32,7 @@ WHY = "Say why, in a few words."
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
 DATA = (
     "document_kind", "document_reference", "document_revision", "document_page",
-    "evaluations", "limit_checks", "requirement", "replaces",
+    "substantiation", "evaluations", "limit_checks", "requirement", "replaces",
 )  # fmt: skip
 LIMITS = (
     "limit_cycles", "limit_minutes", "limit_landings", "limit_on", "crew_informed_on",
@@ -76,6 +77,10 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
     requirement = forms.ModelChoiceField(
         InspectionRequirement.objects.none(), required=False,
         label="inspection requirement in force",
+    )  # fmt: skip
+    substantiation = forms.ModelChoiceField(
+        Substantiation.objects.none(), required=False,
+        help_text="The folder that covers the finding; its stage clock starts here.",
     )  # fmt: skip
     replaces = forms.ModelChoiceField(
         Disposition.objects.none(), required=False, label="replaces",
@@ -166,6 +171,10 @@ class SignForm(SignatureForm):
     document_issuer = forms.CharField(required=False, label="its issuer")
     document_revision = forms.CharField(required=False, label="its revision")
     document_date = DayField(required=False, label="its date")
+    document_file = forms.FileField(
+        required=False, label="its file", help_text="PDF, JPEG, PNG, WebP or TIFF.",
+        widget=forms.FileInput(attrs={"accept": ACCEPTED_FILES}),
+    )  # fmt: skip
     shown_digest = forms.CharField(widget=forms.HiddenInput)
 
     def __init__(

@@ -64,6 +64,11 @@ def decision_choices(
         "also": others.exclude(pk=finding.pk),
         "evaluations": finding.evaluations.filter(replaced_by__isnull=True),
         "limit_checks": finding.limit_checks.all(),
+        "substantiation": Substantiation.objects.filter(
+            finding_rows__finding=finding,
+            finding_rows__withdrawn=False,
+            replaced_by__isnull=True,
+        ),
         "requirement": InspectionRequirement.objects.filter(
             subjects__aircraft=finding.aircraft_id,
             subjects__applies="yes",

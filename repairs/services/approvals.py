@@ -6,9 +6,10 @@
 from __future__ import annotations
 
 import datetime as dt
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from django.core.exceptions import ValidationError
+from django.core.files.uploadedfile import UploadedFile
 
 from fleet.canonical import digest
 from fleet.models import (
@@ -20,6 +21,7 @@ from fleet.models import (
     User,
 )
 from fleet.services.aircraft import stream_of
+from fleet.services.documents import attachment_store
 from fleet.services.history import Writing
 from fleet.services.signing import Proof
 from repairs.models import (
@@ -105,8 +107,9 @@ def approval_sign(
     at: dt.datetime,
     statement: str = "",
     document: Signed | None = None,
+    upload: UploadedFile | None = None,
 ) -> Approval:
-    """Sign the text whose digest was shown.
+    """Sign the text whose digest was shown; `upload` is the approval document's file.
 
     Refused when the record changed since, when the person lacks the authorisation that
     day, when the same person would judge own work, or when an evaluation is barred.
@@ -124,6 +127,8 @@ def approval_sign(
         held: Subject = rows.get(pk=subject.pk)
         if digest(content_of(held)) != shown_digest:
             raise ValidationError(CHANGED_SINCE_SHOWN.format(subject=held))
+        if upload is not None:
+            document = _with_file(w, held, document or Signed(), upload)
         return approval_write(
             w,
             subject=held,
@@ -133,6 +138,20 @@ def approval_sign(
             statement=statement,
             document=document,
         )
+
+
+def _with_file(
+    w: Writing, subject: Subject, document: Signed, upload: UploadedFile
+) -> Signed:
+    """The approval document with its file, kept as it came."""
+    kept = attachment_store(
+        w,
+        operator=aircraft_of(subject).operator,
+        upload=upload,
+        kind=Attachment.Kind.SCAN,
+        title=document.number,
+    )
+    return replace(document, attachment=kept)
 
 
 def approval_write(

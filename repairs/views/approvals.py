@@ -62,6 +62,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
     content = content_of(subject)
     form = SignForm(
         request.POST or None,
+        request.FILES or None,
         meanings=[(one.value, one.label) for one in MEANINGS[what]],
         user=request.user,
         initial={"shown_digest": digest(content)},
@@ -83,9 +84,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
     return render(request, "repairs/approval_new.html", context)
 
 
-def _sign(
-    request: Request, subject: Subject, form: SignForm, proof: Proof
-) -> Approval:
+def _sign(request: Request, subject: Subject, form: SignForm, proof: Proof) -> Approval:
     data: dict[str, Any] = form.cleaned_data
     return approval_sign(
         subject=subject,
@@ -100,6 +99,7 @@ def _sign(
             data["document_revision"],
             data["document_date"],
         ),
+        upload=data["document_file"],
         on=today(),
         actor=request.user,
         at=now(),

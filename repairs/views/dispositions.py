@@ -37,6 +37,7 @@ DECIDED = "{number} is recorded; it cannot be altered, only replaced."
 PASSED_ON = (
     "reason", "decided_on", "limit_on", "crew_informed_on", "scale", "scale_reason",
     "category", "evaluations", "limit_checks", "requirement", "replaces",
+    "substantiation",
 )  # fmt: skip
 
 
