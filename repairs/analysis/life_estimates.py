@@ -109,7 +109,7 @@ def fit(lives: Lives, model: LifeModel) -> LifeEstimate:
     Parameters
     ----------
     lives
-        Failures and suspensions.
+        Failures and suspensions [cycles, or any one unit].
     model
         Lognormal or Weibull.
 
@@ -218,7 +218,7 @@ def normal_lower_life(
     Parameters
     ----------
     estimate, survival, confidence
-        As `lower_life`.
+        As `lower_life` [-].
 
     Returns
     -------

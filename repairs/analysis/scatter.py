@@ -205,7 +205,7 @@ def policy_of_scatter(
     Parameters
     ----------
     scatter
-        Deviation with source, tests, survival, confidence, locations.
+        Deviation with source, tests, survival, confidence, locations [-].
     form
         Confidence on the mean, or prediction of one future item.
     multiplies

@@ -8,12 +8,24 @@ import re
 import pytest
 
 from repairs.analysis import (
+    bulging,
+    compounding,
+    corner_crack,
+    crack_row,
     hole_intensity,
+    life_estimates,
+    link_up,
+    load_paths,
     loads,
     part_through,
+    r_curve,
     residual_strength,
     scatter,
+    stiffened_sheet,
+    stiffened_strength,
     stress_intensity,
+    tolerance,
+    toughness,
 )
 from repairs.analysis.errors import InputError
 from repairs.analysis.inputs import SPECS, Inputs
@@ -79,12 +91,24 @@ def test_an_unknown_method_is_refused_with_the_ids_there_are():
 FORMULAS = [
     function
     for module in (
+        bulging,
+        compounding,
+        corner_crack,
+        crack_row,
         hole_intensity,
+        life_estimates,
+        link_up,
+        load_paths,
         loads,
         part_through,
+        r_curve,
         residual_strength,
         scatter,
+        stiffened_sheet,
+        stiffened_strength,
         stress_intensity,
+        tolerance,
+        toughness,
     )
     for name, function in inspect.getmembers(module, inspect.isfunction)
     if function.__module__ == module.__name__
