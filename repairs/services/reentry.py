@@ -23,7 +23,6 @@ from repairs.services.requirement_draft import LimitEntry
 SAME_PERSON = (
     "{name} keyed it first; the second keying is by another person, from the document."
 )
-
 NOT_AWAITED = "{limit} is {state}; no second keying is awaited."
 
 
