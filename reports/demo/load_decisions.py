@@ -22,7 +22,7 @@ from repairs.services.dispositions import disposition_write
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
-from reports.demo.load_reports import crack_report_write, level_determine
+from reports.demo.load_reports import crack_report_write, level_1, level_2
 from reports.demo.records import (
     DemoDisposition,
     DemoFinding,
@@ -50,6 +50,12 @@ def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
         if finding.state == "assessed" and finding.key not in decided:
             assess = partial(_assess_alone, loaded, finding)
             yield Step(finding.found_on, Rank.ASSESSMENT, finding.key, assess)
+    newest = max(
+        (x for x in scenario.findings if x.damage_type == "corrosion"),
+        key=lambda x: (x.found_on, x.key),
+    )
+    level = partial(level_2, loaded, newest.key)
+    yield Step(newest.found_on, Rank.CLOSING, newest.key, level)
     for repair in scenario.repairs:
         for key in repair.findings:
             if findings[key].state == "closed":
@@ -153,7 +159,7 @@ def _close(
     loaded: Loaded, finding: DemoFinding, repair: DemoRepair, at: dt.datetime
 ) -> None:
     row = loaded.rows[finding.key]
-    level_determine(loaded, row, at)
+    level_1(loaded, row, at)
     finding_close(
         finding=row,
         proof=Proof.by_program(loaded.people["certifier"]),

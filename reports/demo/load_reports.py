@@ -23,7 +23,7 @@ REPORTABLE_HOLES = 4
 REPORT = Reportability(True, "several cracked holes in one row of a joint")
 NO_REPORT = Reportability(False, "one crack, found by its planned inspection")
 NO_DAMAGE = Reportability(False, "no serious damage of the structure came of it")
-UNDECIDED_DAYS, OPEN_DAYS = 8, 150
+UNDECIDED_DAYS, OPEN_DAYS = 30, 150
 SENT_AFTER = dt.timedelta(hours=30)
 RECIPIENTS = (
     "the authority's reporting portal; Ardlune Aircraft, design approval holder"
@@ -62,21 +62,31 @@ def event_report(loaded: Loaded, event: Event, at: dt.datetime) -> None:
         )
 
 
-def level_determine(loaded: Loaded, finding: Finding, at: dt.datetime) -> None:
-    """Local corrosion, reworked within its limits: level 1."""
-    if finding.damage_type != "corrosion":
-        return
+def level_1(loaded: Loaded, finding: Finding, at: dt.datetime) -> None:
+    """Local corrosion, reworked within its limits."""
+    if finding.damage_type == "corrosion":
+        _determine(loaded, finding, at, 1, "within")
+
+
+def level_2(loaded: Loaded, key: str, at: dt.datetime) -> None:
+    """A single rework would exceed the limits: the question on reporting runs."""
+    finding = loaded.rows[key]
+    _determine(loaded, finding, at, 2, "beyond")
+
+
+def _determine(
+    loaded: Loaded, finding: Finding, at: dt.datetime, level: int, rework: str
+) -> None:
     corrosion_level_determine(
         finding=finding,
         entry=LevelEntry(
-            level=1,
+            level=level,
             definitions=DEFINITIONS,
             task=finding.task_reference or "zonal inspection of the area",
             determined_by=loaded.people["engineer"],
             determined_on=finding.found_on,
             spread="local",
-            single_rework="within",
-            cumulative="within",
+            single_rework=rework,
         ),
         actor=loaded.users["engineer"],
         at=at,
