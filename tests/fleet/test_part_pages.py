@@ -168,7 +168,7 @@ def test_queries_do_not_grow_with_parts(client, count, django_assert_max_num_que
     for n in range(count):
         install(make.part(), make.aircraft(f"Q7-T{n:02d}"), 25_000)
     as_user(client)
-    with django_assert_max_num_queries(14):
+    with django_assert_max_num_queries(15):
         response = client.get("/safe-life/")
     assert response.content.count(b'<th scope="row">') == count
 
