@@ -63,6 +63,9 @@ def further_steps(finding: Finding, user: User) -> list[Step]:
     if open_to_change and may_draft:
         address = f"{reverse('substantiation_new')}?finding={finding.pk}"
         steps.append(Step(address, "Draft a substantiation"))
+    if open_to_change and may(user, "repair_record", finding.aircraft.operator_id):
+        said = f"?aircraft={finding.aircraft_id}&finding={finding.pk}"
+        steps.append(Step(reverse("repair_plan") + said, "Plan a repair"))
     return steps
 
 
