@@ -70,14 +70,14 @@ def _common(
     zone, _ = zone_of(report.operator)
     aircraft = subject.aircraft
     period = _period(subject)
-    variant = aircraft.variant
+    kind, variant = aircraft.variant.aircraft_type, aircraft.variant
     counters = Counters(subject.at_minutes, subject.at_cycles, subject.at_landings)
     detected = report.detected_at.astimezone(zone)
     return [
         ("Operator", str(report.operator)),
         ("Operator's approval reference", ""),
         ("Operator's number", f"{subject.number} ({report.regime})"),
-        ("Aircraft type", f"{variant.aircraft_type} {variant}"),
+        ("Aircraft type", " ".join(dict.fromkeys(f"{kind} {variant}".split()))),
         ("Serial number", aircraft.serial_number),
         ("Registration", period.registration if period else aircraft.registration),
         ("Date", seen_on(subject).isoformat()),

@@ -37,7 +37,7 @@ POLICIES = (
         EUROPE, "review_reach_mm", 508, "mm", "engineering procedure EP-07 (invented)",
         "", "adopted",
     ),
-    DemoPolicy(EUROPE, "report_hours", 72, "hours", OCCURRENCES, "2015, 2014"),
+    DemoPolicy(EUROPE, "report_hours", 72, "hours", OCCURRENCES, "2015"),
     DemoPolicy(
         EUROPE, "report_preliminary_days", 30, "days", ANALYSIS, "2014", "memory"
     ),
