@@ -28,11 +28,6 @@ urlpatterns = [
     path("account/password/", account.password, name="password"),
     path("account/second-factor/", account.second_factor, name="second_factor"),
     path(
-        "account/second-factor/remove/",
-        account.second_factor_off,
-        name="second_factor_remove",
-    ),
-    path(
         "people/roles/<int:pk>/second-factor/",
         account.second_factor_lost,
         name="second_factor_reset",

@@ -95,7 +95,6 @@ PAGES: dict[str, Page] = {
     "account": Page(),
     "password": Page(FORM),
     "second_factor": Page(FORM),
-    "second_factor_remove": Page(FORM),
     "second_factor_reset": Page(FORM, "people_change", key("membership")),
     "sign_in_unlock": Page(FORM, "people_change", key("membership")),
     "sign_out": Page(SEND),

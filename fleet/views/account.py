@@ -76,9 +76,9 @@ def password(request: Request) -> HttpResponse:
 @sensitive_post_parameters()
 @require_http_methods(METHODS)
 def second_factor(request: Request) -> HttpResponse:
-    """Set up a device: the key after the password, then the first code."""
+    """Set up a device: the key after the password, then the first code; or remove it."""
     if request.user.second_factor_since is not None:
-        return redirect("second_factor_remove")
+        return _off(request)
     if enrolling_device(request.user) is None:
         return _begin(request)
     codes: list[str] = []
@@ -117,12 +117,8 @@ def _begin(request: Request) -> HttpResponse:
     return render(request, "fleet/account_form.html", context)
 
 
-@sensitive_post_parameters()
-@require_http_methods(METHODS)
-def second_factor_off(request: Request) -> HttpResponse:
+def _off(request: Request) -> HttpResponse:
     """Off again: with the password and a code."""
-    if request.user.second_factor_since is None:
-        return redirect("second_factor")
     form = IdentityForm(request.POST or None, user=request.user)
 
     def save() -> None:
