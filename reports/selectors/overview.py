@@ -10,6 +10,7 @@ from django.db.models import Count, Q
 
 from fleet.models import HistoryEntry, PartState, Role, SafeLifePart, User
 from fleet.selectors.aircraft import Seen, aircraft_visible, fleet_seen, is_own
+from fleet.selectors.entries import names_kept
 from fleet.selectors.part_lines import PartLine, nearest_first
 from fleet.selectors.parts import part_lives
 from repairs.models import Evaluation, Finding, FindingState
@@ -139,4 +140,5 @@ def aircraft_standing_today(user: User, *, as_of: dt.date) -> list[Seen]:
 
 
 def entries_newest(user: User) -> list[HistoryEntry]:
-    return list(HistoryEntry.objects.visible_to(user).order_by("-sequence")[:SHOWN])
+    rows = HistoryEntry.objects.visible_to(user).order_by("-sequence")[:SHOWN]
+    return names_kept(user, rows)

@@ -277,3 +277,21 @@ def test_closing_asks_on_reporting_only_while_it_is_undecided(client, world, clo
     assert cracks["reportable"].label == "reportable under EASA"
     close(world, dent, proof=program(world.certifier), at=NOW)
     assert "closed" in page(client, "finding", dent.pk)
+
+
+def test_the_history_tells_who_reported_to_those_only_who_may_know(
+    client, world, report
+):
+    client.force_login(world.users["certifier"])
+    decide(client, report)
+    name = str(world.users["certifier"])
+    for role, may in (("manager", True), ("auditor", False)):
+        client.force_login(world.users[role])
+        for page_name in ("history", "overview"):
+            text = " ".join(client.get(reverse(page_name)).content.decode().split())
+            row = f"<td>{name}</td><td>report decided</td>"
+            assert (row in text) is may, (role, page_name)
+            hidden = "<td>confidential</td><td>report decided</td>"
+            assert (hidden in text) is not may, (role, page_name)
+        found = client.get(reverse("history"), {"who": name}).content.decode()
+        assert ("<td>report decided</td>" in found) is may, role
