@@ -44,4 +44,4 @@ class FolderFilter(django_filters.FilterSet):
     def by_clock(
         self, rows: QuerySet[Substantiation], name: str, value: bool
     ) -> QuerySet[Substantiation]:
-        return rows.filter(has_open_clock=True) if value else rows
+        return rows.filter(has_open_clock=True) if value else rows  # type: ignore[misc]

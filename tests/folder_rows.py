@@ -161,7 +161,7 @@ class Folders:
     def effects(self, folder: Substantiation) -> None:
         substantiation_effects_answer(
             substantiation=folder,
-            answers={word: ("none", "") for word, _ in TOUCHES},
+            answers=dict.fromkeys(TOUCHES, ("none", "")),
             actor=self.world.engineer,
             at=NOW,
         )

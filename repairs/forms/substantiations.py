@@ -78,7 +78,7 @@ class FolderForm(forms.Form):
     )
     temporary_limit_on = DayField(label="temporary limit, date", required=False)
     temporary_limit_source = forms.CharField(
-        label="approved by", required=False, help_text="Document and page."
+        label="temporary limit, source", required=False, help_text="Document and page."
     )
     threshold_cycles = CounterField(
         label="threshold, flight cycles", required=False, help_text=FROM_RELEASE
@@ -86,7 +86,7 @@ class FolderForm(forms.Form):
     threshold_minutes = HoursField(label="threshold, flight hours", required=False)
     threshold_on = DayField(label="threshold, date", required=False)
     threshold_source = forms.CharField(
-        label="threshold from", required=False, help_text="Document and page."
+        label="threshold, source", required=False, help_text="Document and page."
     )
     method = forms.CharField(label="inspection method", required=False)
     procedure = forms.CharField(required=False)
@@ -217,7 +217,7 @@ class EffectsForm(forms.Form):
 
     def __init__(self, *args: Any, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
-        for touches, _ in TOUCHES:
+        for touches in TOUCHES:
             words = touches.replace("_", " ")
             said = bool(self.initial.get(touches))
             self.fields[touches] = forms.ChoiceField(
@@ -229,7 +229,7 @@ class EffectsForm(forms.Form):
 
     def clean(self) -> dict[str, Any]:
         data = super().clean() or {}
-        if not any(data.get(touches) for touches, _ in TOUCHES):
+        if not any(data.get(touches) for touches in TOUCHES):
             raise forms.ValidationError(NOTHING_ANSWERED)
         return data
 
@@ -237,7 +237,7 @@ class EffectsForm(forms.Form):
         data = self.cleaned_data
         return {
             touches: (data[touches], data[f"{touches}_note"])
-            for touches, _ in TOUCHES
+            for touches in TOUCHES
             if data[touches]
         }
 

@@ -46,9 +46,8 @@ from repairs.selectors.substantiation_content import (
 )
 from repairs.selectors.substantiation_stages import stage_reached
 
-TOUCHES = tuple(
-    SubstantiationEffect._meta.get_field("touches").choices  # type: ignore[union-attr]
-)
+TOUCHES: tuple[str, ...] = SubstantiationEffect._meta.get_field("touches").words
+"""Effects that a major one answers, all of them."""
 
 NO_REACH = (
     "No policy {key} is recorded for {operator}, so nobody can say that every "
@@ -163,7 +162,7 @@ def needs(row: Substantiation, meaning: str, *, day: dt.date) -> list[str]:
 def not_listed(row: Substantiation, day: dt.date) -> list[Within]:
     """What is within reach that day and stands in no row of the folder."""
     reach = review_reach(row, day)
-    items = [*findings_covered(row), *repairs_using(row)]
+    items: list[Item] = [*findings_covered(row), *repairs_using(row)]
     near = within_reach(items, float(reach.value) if reach else None)
     listed = {
         (type(one), one.pk)
@@ -220,7 +219,7 @@ def effects_open(row: Substantiation) -> list[str]:
     """Effects that are not answered, in words; unknown is no answer."""
     answered = row.effects.exclude(answer="unknown").values_list("touches", flat=True)
     said = set(answered)
-    return [word.replace("_", " ") for word, _ in TOUCHES if word not in said]
+    return [word.replace("_", " ") for word in TOUCHES if word not in said]
 
 
 def _cited(folder: Folder) -> Iterator[str]:

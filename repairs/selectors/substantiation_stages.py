@@ -30,7 +30,9 @@ BY_STAGE = {
     2: (Meaning.STAGE_2,),
     1: (Meaning.STAGE_1,),
 }
-STAGE_OF = {meaning: stage for stage, all_ in BY_STAGE.items() for meaning in all_}
+STAGE_OF: dict[str, int] = {
+    meaning: stage for stage, all_ in BY_STAGE.items() for meaning in all_
+}
 
 
 def revisions_of(row: Substantiation) -> QuerySet[Substantiation]:

@@ -113,7 +113,7 @@ class NewFolder:
     """What a new folder starts with: its aircraft, findings, repair and title."""
 
     aircraft: str = ""
-    initial: Mapping[str, Any] = field(default_factory=dict)
+    initial: dict[str, Any] = field(default_factory=dict)
 
 
 def new_folder_of(asked: Mapping[str, str], choices: QuerySet[Aircraft]) -> NewFolder:
@@ -149,7 +149,7 @@ def neighbour_next(row: Substantiation) -> SubstantiationNeighbour | None:
 
 def effects_said(row: Substantiation) -> dict[str, str]:
     """The effects as their form shows them."""
-    said = {}
+    said: dict[str, str] = {}
     for one in row.effects.all():
         said |= {one.touches: one.answer, f"{one.touches}_note": one.note}
     return said
@@ -290,7 +290,7 @@ def _strip(row: Substantiation, following: Meaning | None) -> list[StageStep]:
         return found[-1] if found else None
 
     steps = [
-        StageStep(one.label, last((one,), own=True), one == following)
+        StageStep(str(one.label), last((one,), own=True), one == following)
         for one in (Meaning.PREPARED, Meaning.CHECKED)
     ]
     steps += [
@@ -330,7 +330,7 @@ def _to_place(row: Substantiation) -> int:
 
 def _effects(row: Substantiation) -> list[tuple[str, SubstantiationEffect | None]]:
     held = {one.touches: one for one in row.effects.all()}
-    return [(word.replace("_", " "), held.get(word)) for word, _ in TOUCHES]
+    return [(word.replace("_", " "), held.get(word)) for word in TOUCHES]
 
 
 def _dispositions(row: Substantiation) -> list[Disposition]:

@@ -270,5 +270,5 @@ def aircraft_of(subject: Subject) -> Aircraft:
 def _operator_of(subject: Subject, on: dt.date) -> Operator:
     aircraft = aircraft_of(subject)
     if aircraft is None:
-        return subject.subject.requirement.operator  # type: ignore[union-attr]
+        return subject.subject.requirement.operator
     return operator_on(aircraft, on)

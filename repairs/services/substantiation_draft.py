@@ -8,6 +8,7 @@ from fleet.models import Joint
 from fleet.services.history import Writing
 from repairs.models import Finding, Repair, Substantiation, SubstantiationNeighbour
 from repairs.selectors.review_reach import (
+    Neighbour,
     Within,
     review_reach,
     reviewed_from,
@@ -55,20 +56,21 @@ def neighbours_write(w: Writing, row: Substantiation) -> list[Within]:
     """
     reach = review_reach(row, w.at.date())
     near = within_reach(reviewed_from(row), float(reach.value) if reach else None)
-    listed = {_key(one): one for one in row.neighbours.all()}
+    rows = row.neighbours.select_related("finding", "repair", "joint")
+    listed = {_key(one): one for one in rows}
     added = [one for one in near if one.key not in listed]
-    for one in added:
-        w.create(_neighbour(row, one))
+    for found in added:
+        w.create(_neighbour(row, found))
     inside = {one.key: one for one in near}
-    for key, one in listed.items():
-        _relisted(w, one, inside.get(key))
+    for key, held_row in listed.items():
+        _relisted(w, held_row, inside.get(key))
     return added
 
 
-def _key(row: SubstantiationNeighbour) -> tuple[type, int | None]:
-    if row.finding_id is not None:
-        return Finding, row.finding_id
-    return (Repair, row.repair_id) if row.repair_id else (Joint, row.joint_id)
+def _key(row: SubstantiationNeighbour) -> tuple[type[Neighbour], int]:
+    item = row.finding or row.repair or row.joint
+    assert item is not None  # the table's own rule: exactly one
+    return type(item), item.pk
 
 
 def _neighbour(row: Substantiation, one: Within) -> SubstantiationNeighbour:

@@ -8,10 +8,11 @@ from __future__ import annotations
 
 import datetime as dt
 from collections.abc import Mapping
+from typing import Any
 
 from django.core.exceptions import ValidationError
 from django.core.files.uploadedfile import UploadedFile
-from django.db.models import Max
+from django.db.models import Max, QuerySet
 
 from fleet.models import Attachment, Person, User
 from fleet.services.documents import attachment_store, document_get_or_create
@@ -231,7 +232,8 @@ def substantiation_row_withdraw(
     folder = row.substantiation
     with writing_on(folder, "substantiation_row_withdraw", actor, at) as w:
         draft = draft_of(folder)
-        held = w.locked(type(row).objects.all(), pk=row.pk)
+        rows: QuerySet[Any] = type(row).objects.all()
+        held: Withdrawable = w.locked(rows, pk=row.pk)
         if held.withdrawn:
             raise ValidationError(WITHDRAWN_ALREADY)
         w.change(held, withdrawn=True)

@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import datetime as dt
 from collections.abc import Sequence
+from typing import Any
 
 from django.core.exceptions import ValidationError
 
@@ -40,7 +41,7 @@ from repairs.services.substantiation_entry import (
 
 REVISION_REASON = "Say why it is revised; the reason stands in the new revision."
 STILL_A_DRAFT = "{folder} is not signed yet; edit it instead of revising it."
-COPIED = (
+COPIED: tuple[type[Any], ...] = (
     SubstantiationFinding,
     SubstantiationNeighbour,
     SubstantiationCase,
@@ -201,7 +202,10 @@ def _refuse(problems: list[str], entry: FolderEntry) -> None:
 
 
 def _rows_copy(
-    w: Writing, table: type, last: Substantiation, row: Substantiation
+    w: Writing,
+    table: type[Any],
+    last: Substantiation,
+    row: Substantiation,
 ) -> None:
     rows = table.objects.filter(substantiation=last)
     if table is not SubstantiationEffect:

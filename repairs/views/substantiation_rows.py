@@ -84,7 +84,7 @@ def substantiation_neighbour(request: Request, pk: int, row_pk: int) -> HttpResp
 def substantiation_neighbours(request: Request, pk: int) -> HttpResponse:
     """Look again for what is within reach."""
     folder = folder_to_draft(request, pk)
-    by = {"actor": request.user, "at": now()}
+    by: dict[str, Any] = {"actor": request.user, "at": now()}
     find = partial(substantiation_neighbours_find, substantiation=folder, **by)
     if (found := _tried(request, find)) is not None:
         text = FOUND if found else NONE_FOUND
@@ -162,7 +162,7 @@ def substantiation_withdraw(
     """A finding, case or document that holds no more."""
     folder = folder_to_draft(request, pk)
     row = get_object_or_404(getattr(folder, ROWS[what]), pk=row_pk)
-    by = {"actor": request.user, "at": now()}
+    by: dict[str, Any] = {"actor": request.user, "at": now()}
     if _tried(request, partial(substantiation_row_withdraw, row=row, **by)) is not None:
         messages.success(request, WITHDRAWN.format(number=folder))
     return redirect("substantiation", folder.pk)
@@ -202,7 +202,7 @@ def _page(
     heading: str,
     about: Any = (),
 ) -> HttpResponse:
-    by = {"actor": request.user, "at": now()}
+    by: dict[str, Any] = {"actor": request.user, "at": now()}
     if sent(form, partial(save, **by), about=about or [folder]):
         messages.success(request, SAVED.format(number=folder))
         return redirect("substantiation", folder.pk)

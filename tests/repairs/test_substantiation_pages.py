@@ -138,7 +138,7 @@ def test_rows_are_added_and_withdrawn(engineer, folders, settings, tmp_path):
     pk = folder.pk
     case = {"kind": "fatigue", "requirement": "25.571", "case": "pressure"}
     post(engineer, "substantiation_case", pk, **case, margin="0.2")
-    effects = {touches: "none" for touches, _ in TOUCHES}
+    effects = dict.fromkeys(TOUCHES, "none")
     post(engineer, "substantiation_effects", pk, **effects)
     paper = SimpleUploadedFile("letter.pdf", b"%PDF-1.4\nletter\n%%EOF\n")
     document = {"document_kind": "letter", "document_reference": "L-7"}
