@@ -97,6 +97,10 @@ class Arrest:
         """Whether a fracture at the weakest length is arrested."""
         return self.peak.stress >= self.critical
 
+    def meets(self, required: GrossStress) -> bool:
+        """Whether the panel bears a required residual stress with this damage."""
+        return self.peak.stress >= required
+
 
 def effect_of(sheet: StiffenedSheet, centre: CrackCentre) -> Effect:
     """Return the computed effect of the stiffeners as a function of half-length."""

@@ -121,6 +121,28 @@ def test_bounds_are_near_the_exact_ones_where_there_are_such():
     assert le.normal_lower_life(found, 0.99, 0.95) == pytest.approx(exact, rel=0.06)
 
 
+def test_the_bound_lies_where_the_likelihood_has_fallen_by_the_allowed_amount():
+    # Second route: scipy's Weibull over a fine grid of shapes, the 10 % life held at
+    # the bound; twice the fall is chi-square's 90 % point of one degree, 2.7055.
+    found = le.fit(READOUT, WEIBULL)
+    life = le.lower_life(found, 0.9, 0.95)
+    shapes = np.linspace(0.5, 4, 20_001)[:, None]
+    scales = life / (-math.log(0.9)) ** (1 / shapes)
+    total = weibull_min.logpdf(READOUT.failures, shapes, 0, scales).sum(axis=1)
+    total += weibull_min.logsf(READOUT.suspensions, shapes, 0, scales).sum(axis=1)
+    assert 2 * (found.log_likelihood - total.max()) == pytest.approx(2.7055, abs=1e-3)
+
+
+def test_weibull_covariance_is_that_of_the_tables_for_many_failures():
+    # Variance of ln eta 1.109/(n beta^2) and of ln beta 0.608/n, n large (Lawless).
+    n = 2000
+    share = (np.arange(n) + 0.5) / n
+    found = le.fit(Lives(tuple(1e5 * (-np.log(share)) ** 0.25)), WEIBULL)
+    (a, _), (_, d) = found.covariance
+    assert a * n / found.scale**2 == pytest.approx(1.109, rel=0.01)
+    assert d * n == pytest.approx(0.608, rel=0.01)
+
+
 @pytest.mark.parametrize("model", [WEIBULL, LOGNORMAL])
 def test_more_confidence_and_more_survival_shorten_the_life(model):
     found = le.fit(ALLOY, model)

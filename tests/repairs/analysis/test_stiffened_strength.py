@@ -20,7 +20,7 @@ from repairs.analysis.stiffened_sheet import (
     StiffenedSheet,
     stiffened_crack,
 )
-from repairs.analysis.types import INCH, KSI, HalfLength
+from repairs.analysis.types import INCH, KSI, GrossStress, HalfLength
 
 PITCH, THICKNESS = 10.0, 0.063
 PANEL = sp.StiffenedPanel(68, 1.0, 1.0, 65, 50 * math.pi / 4 * (5 / 16) ** 2)
@@ -86,6 +86,8 @@ def test_arrest_of_the_worksheet():
     assert found.peak.governing == sp.STIFFENER
     assert found.peak.stress == pytest.approx(37, abs=0.5)
     assert found.holds
+    assert found.meets(GrossStress(36.0))
+    assert not found.meets(GrossStress(38.0))
 
 
 def test_without_a_stiffener_in_range_there_is_no_arrest():
