@@ -37,13 +37,13 @@ from fleet.digests import (
 from fleet.models import (
     Aircraft,
     HistoryEntry,
-    HistoryHead,
     HistoryItem,
     Operator,
     User,
 )
 from fleet.refusals import Refused
 from fleet.selectors.history import just_done
+from fleet.services.chain import end_locked, end_moved, stream_end
 from fleet.services.sending import changed_check, form_claim, form_written
 
 Row = TypeVar("Row", bound=models.Model)
@@ -247,19 +247,15 @@ class Writing:
         )
 
     def _append(self) -> None:
-        head = HistoryHead.objects.select_for_update(no_key=True).get(pk=1)
+        sequence, digest = end_locked()
         changed_check()
-        before = (
-            HistoryEntry.objects.filter(stream=self.stream)
-            .order_by("-stream_sequence")
-            .first()
-        )
+        of_stream, stream_digest = stream_end(self.stream)
         entry = HistoryEntry(
-            sequence=head.sequence + 1,
-            previous_digest=head.digest,
+            sequence=sequence + 1,
+            previous_digest=digest,
             stream=self.stream,
-            stream_sequence=before.stream_sequence + 1 if before else 1,
-            stream_previous_digest=before.digest if before else "",
+            stream_sequence=of_stream + 1,
+            stream_previous_digest=stream_digest,
             operator=self.operator,
             actor=self.actor,
             actor_name=str(self.actor) if self.actor else PROGRAM,
@@ -270,12 +266,9 @@ class Writing:
             items_digest=items_digest(self.items),
         )
         entry.digest = entry_digest(entry)
-        entry.save(force_insert=True)
         for item in self.items:
-            item.entry = entry
-        HistoryItem.objects.bulk_create(self.items, batch_size=2_000)
-        head.sequence, head.digest = entry.sequence, entry.digest
-        head.save(update_fields=["sequence", "digest"])
+            item.entry_id = entry.sequence
+        end_moved(entry, self.items)
         form_written(self._form, entry)
 
 

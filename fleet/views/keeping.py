@@ -1,4 +1,4 @@
-"""How the records are kept: backups, restores and seals, for those who answer for it."""
+"""How the records are kept: backups, restores and seals."""
 
 from __future__ import annotations
 

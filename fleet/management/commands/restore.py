@@ -99,7 +99,7 @@ class Command(BaseCommand):
         )
 
     def _drill(self, backup: BackupReader) -> None:
-        """Restore it as on a new machine: a process of its own, SQLite, a new folder."""
+        """Restore it as on a new machine: in a process and a folder of its own."""
         with tempfile.TemporaryDirectory() as folder:
             environment = os.environ | {"FRAMEBAY_DATA": folder, "DATABASE_URL": ""}
             done = subprocess.run(
