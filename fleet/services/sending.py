@@ -14,6 +14,7 @@ import uuid
 from collections.abc import Sequence
 from contextvars import ContextVar
 from dataclasses import dataclass
+from typing import Any
 
 from django.db import IntegrityError, models
 
@@ -38,6 +39,9 @@ AWAIT_ANSWER = 20
 """Tenths of a second that a second sending waits for the page of the first."""
 
 
+About = models.Model | models.QuerySet[Any]
+
+
 @dataclass
 class Sending:
     """One request of a signed-in user; `key` only when it sends a form."""
@@ -49,7 +53,7 @@ class Sending:
     content: str = ""
     shown: int | None = None
     first: SentForm | None = None
-    about: Sequence[models.Model] = ()
+    about: Sequence[About] = ()
     blind: bool = False
     claimed: SentForm | None = None
     told_sent: bool = False
@@ -104,8 +108,9 @@ def sending_first(sending: Sending) -> SentForm | None:
     return first if same and first.user_id == sending.user.pk else None  # type: ignore[union-attr]
 
 
-def form_about(rows: Sequence[models.Model], *, blind: bool = False) -> None:
-    """The records that the form edits or decides on. Of a second, blind entry is told
+def form_about(rows: Sequence[About], *, blind: bool = False) -> None:
+    """The records that the form edits or decides on; rows that others may add to them
+    as a queryset, which is read when it is checked. Of a second, blind entry is told
     who changed the first and when, but no value."""
     if (sending := current.get()) is not None:
         sending.about, sending.blind = rows, blind
@@ -160,7 +165,10 @@ def changed_meanwhile() -> list[str]:
     if sending is None or sending.shown is None:
         return []
     problems = []
-    for row, told in changes_since(sending.about, sending.shown):
+    rows: list[models.Model] = []
+    for one in sending.about:
+        rows += one.all() if isinstance(one, models.QuerySet) else [one]
+    for row, told in changes_since(rows, sending.shown):
         problems.append(CHANGED.format(row=row))
         problems += [
             CHANGE.format(

@@ -61,7 +61,7 @@ def aircraft_state(request: Request, pk: int) -> HttpResponse:
     if sent(
         form,
         lambda: aircraft_set_state(**form.cleaned_data, **service),
-        about=[aircraft, *aircraft.spans.all()],
+        about=[aircraft, aircraft.spans.all()],
     ):
         messages.success(request, STATE_SET)
         return redirect("aircraft", pk)
@@ -85,7 +85,7 @@ def aircraft_period(request: Request, pk: int) -> HttpResponse:
     if sent(
         form,
         lambda: aircraft_period_open(**form.cleaned_data, **service),
-        about=[aircraft, *aircraft.periods.all()],
+        about=[aircraft, aircraft.periods.all()],
     ):
         messages.success(request, PERIOD_OPENED)
         return redirect("aircraft", pk)

@@ -6,7 +6,6 @@ from collections.abc import Sequence
 from typing import Any
 
 from django.contrib import messages
-from django.db.models import Model
 from django.forms import Form
 from django.http import HttpResponse
 from django.shortcuts import redirect, render
@@ -23,6 +22,7 @@ from fleet.forms.people import (
 )
 from fleet.models import Membership
 from fleet.selectors.members import authorisations_of, memberships_of
+from fleet.services.sending import About
 from fleet.services.people import (
     authorisation_grant,
     membership_end,
@@ -115,7 +115,7 @@ def _send(
     service: Any,
     title: str,
     action: str,
-    about: Sequence[Model] = (),
+    about: Sequence[About] = (),
 ) -> HttpResponse:
     def save() -> object:
         return service(**form.cleaned_data, actor=request.user, at=now())

@@ -7,12 +7,11 @@ from functools import partial
 from typing import Any, TypeVar
 
 from django.core.exceptions import NON_FIELD_ERRORS, ValidationError
-from django.db.models import Model
 from django.forms import Form
 
 from fleet.clock import today
 from fleet.services.attempts import attempt_failed, is_locked, locked_until
-from fleet.services.sending import Changed, changed_meanwhile, form_about
+from fleet.services.sending import About, Changed, changed_meanwhile, form_about
 from fleet.services.signing import Proof, identity_check, identity_prove
 from fleet.views.requests import Request
 
@@ -29,7 +28,7 @@ def sent(
     form: Form,
     save: Callable[[], object],
     *,
-    about: Sequence[Model] = (),
+    about: Sequence[About] = (),
     blind: bool = False,
 ) -> Any:
     """What `save` made (True if nothing), or None: then the form says why not.
@@ -60,7 +59,7 @@ def sent_signed(
     form: Form,
     save: Callable[[Proof], object],
     *,
-    about: Sequence[Model] = (),
+    about: Sequence[About] = (),
 ) -> Any:
     """The same for a form that signs: `save` takes the proof of who is there.
 

@@ -73,7 +73,7 @@ def accomplishment_new(request: Request, pk: int, subject_pk: int) -> HttpRespon
         initial=_initial(subject) | {"done_by": request.user.person_id},
     )
     save = partial(_record, request, subject, form)
-    about = [subject, *subject.accomplishments.all()]
+    about = [subject, subject.accomplishments.all()]
     made = sent_signed(request, form, save, about=about)
     if made:
         _told(request, made)
@@ -208,7 +208,7 @@ def subject_new(request: Request, pk: int) -> HttpResponse:
         service: dict[str, Any] = {"actor": request.user, "at": now()}
         return subject_add(**service, **data, requirement=requirement, applies=applies)
 
-    if sent(form, save, about=[requirement, *requirement.subjects.all()]):
+    if sent(form, save, about=[requirement, requirement.subjects.all()]):
         return redirect("requirement", pk)
     context = {"form": form, "requirement": requirement}
     return render(request, "repairs/subject_new.html", context)

@@ -67,7 +67,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         user=request.user,
         initial={"shown_digest": digest(content)},
     )
-    about = [subject, *subject.approvals.all()]
+    about = [subject, subject.approvals.all()]
     save = partial(_sign, request, subject, form)
     if made := sent_signed(request, form, save, about=about):
         meaning = made.get_meaning_display()

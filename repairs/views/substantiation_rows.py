@@ -136,7 +136,7 @@ def substantiation_effects(request: Request, pk: int) -> HttpResponse:
             substantiation=folder, answers=answers, **by
         )
 
-    about = [folder, *folder.effects.all()]
+    about = [folder, folder.effects.all()]
     return _page(request, folder, form, save, "Effects", about=about)
 
 
