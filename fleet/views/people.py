@@ -22,7 +22,6 @@ from fleet.forms.people import (
 )
 from fleet.models import Membership
 from fleet.selectors.members import authorisations_of, memberships_of
-from fleet.services.sending import About
 from fleet.services.people import (
     authorisation_grant,
     membership_end,
@@ -30,6 +29,7 @@ from fleet.services.people import (
     organisation_create,
     person_add,
 )
+from fleet.services.sending import About
 from fleet.views.aircraft import FORM_METHODS
 from fleet.views.requests import Request
 from fleet.views.sending import sent

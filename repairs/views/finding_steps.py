@@ -295,7 +295,7 @@ def _page(
     """Save and go back to the finding, or the page with what is in the way."""
     first, *others = forms
     about = [] if adds else [row]
-    whole = all([form.is_valid() for form in others])
+    whole = all(form.is_valid() for form in others)
     if whole and send(first, save, about=about) and not first.errors:
         messages.success(request, SAVED.format(number=row))
         return redirect("finding", row.pk)
