@@ -237,8 +237,9 @@ class RepairForm(SignatureForm, CountersForm, PhotoForm, PlanForm):
     )
     replacement_limit_on = DayField(label="replacement limit, date", required=False)
     temporary_limit_cycles = CounterField(
-        label="limit approved at stage 1, flight cycles", required=False
-    )
+        label="limit approved at stage 1, flight cycles", required=False,
+        help_text="Counted from the release.",
+    )  # fmt: skip
     released_on = DayField(label="released on")
     release_reference = forms.CharField(label="release reference", required=False)
     work_order = forms.CharField(

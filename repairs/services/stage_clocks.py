@@ -209,7 +209,7 @@ def repair_clock_follow(w: Writing, repair: Repair, *, on: dt.date) -> None:
     if folder is not None:
         w.change(repair, stage_reached=_stage_word(repair, folder))
     clock = _repair_clock(repair) if repair.state == RepairState.EMBODIED else None
-    if clock is not None and folder is not None:
+    if folder is not None and repair.state == RepairState.EMBODIED:
         _own_clocks_close(w, folder, on, CARRIED_BY.format(repair=repair))
     reason = _reason(folder) if folder else ""
     _follow(w, repair, [repair], clock, on, reason)

@@ -104,6 +104,11 @@ def test_the_replacement_limit_of_category_c_stands_beside_the_clock(folders, wo
     assert kinds["stage_clock"].due_on == dt.date(2026, 1, 31)
 
 
+def test_a_limit_stated_of_a_repair_without_a_folder_counts_from_release_too(world):
+    released(world, stage_reached="1", temporary_limit_cycles=1_200)
+    assert clock().due_cycles == 22_200
+
+
 def test_a_temporary_limit_that_nobody_approved_extends_nothing(folders, world):
     folder = folders.ready(
         scale="minor", temporary_limit=Counters(cycles=90_000), **SOURCE

@@ -121,6 +121,11 @@ def test_category_b_keeps_its_clock_until_an_inspection_is_in_force(folders, wor
         folders.approve(later, "stage_3", on=ON)
 
 
+def test_stage_2_without_its_threshold_on_record_is_due(folders, world):
+    released(world, stage_reached="2")
+    assert "no approved threshold is recorded" in clock().cannot_compute
+
+
 def test_stages_are_not_skipped(folders):
     folder = folders.ready(scale="minor", inspections=INSPECTIONS, **THRESHOLD)
     folders.fatigue(folder)
