@@ -36,6 +36,7 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "substantiation_draft": (ENGINEER, SIGNATORY),
         "repair_record": (RECORDER, ENGINEER, CERTIFIER),
         "repair_inspect": (ENGINEER, CERTIFIER, SIGNATORY),
+        "repair_reclassify": (ENGINEER,),
         "document_applicability_record": (ENGINEER, SIGNATORY),
         "requirement_raise": (ENGINEER,),
         "requirement_rekey": (ENGINEER, PLANNER, SIGNATORY),

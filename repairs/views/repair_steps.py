@@ -141,7 +141,7 @@ def repair_inspect_page(request: Request, pk: int) -> HttpResponse:
 @require_http_methods(METHODS)
 def repair_reclassify_page(request: Request, pk: int) -> HttpResponse:
     """Another category by a new approval; its clocks follow."""
-    row = _row(request, pk)
+    row = _row(request, pk, "repair_reclassify")
     form = ReclassifyForm(request.POST or None, today=today(), initial={"on": today()})
     raised = RaisedForm(request.POST or None)
 
