@@ -62,14 +62,18 @@ class SurveyForm(CountersForm):
         )
 
 
+def short() -> forms.TextInput:
+    return forms.TextInput(attrs={"size": 8})
+
+
 class LineForm(forms.Form):
     """One line of the sheet."""
 
     place_entered = forms.CharField(label="location")
     seen_as = forms.ChoiceField(label="seen as", choices=SEEN_AS, initial="damage")
     description = forms.CharField(label="what", required=False)
-    length_mm = LengthField(label="length")
-    width_mm = LengthField(label="width")
+    length_mm = LengthField(label="length", widget=short())
+    width_mm = LengthField(label="width", widget=short())
 
     def __init__(self, *args: Any, unit: str, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)

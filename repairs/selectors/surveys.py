@@ -136,10 +136,12 @@ def item_key(item: SurveyItem) -> str:
 
 @dataclass(frozen=True)
 class Candidate:
-    """A record that an item may be, and the gap between the two [mm]."""
+    """A record that an item may be, and the gap between the two [mm]; along only, when
+    one of them says nothing of the circumference."""
 
     record: Record
     gap_mm: float | None
+    along_only: bool = False
 
     @property
     def key(self) -> str:
@@ -258,7 +260,7 @@ def candidates_of(
         along, across = gap_between(patch, theirs, section, middle)
         gap = (along**2 + (across or 0.0) ** 2) ** 0.5
         if gap <= REACH_BAYS * section.frame_pitch_mm:
-            near.append(Candidate(row, gap))
+            near.append(Candidate(row, gap, across is None))
     wanted = {"damage": False, "repair": True}.get(item.seen_as)
     near.sort(key=lambda x: (wanted not in (None, x.is_repair), x.gap_mm, x.key))
     return near[:MOST_CANDIDATES]

@@ -1,7 +1,8 @@
 """Numbers of rules that the demo offers, each with its source and how it was read.
 
 They are true rules, not invented ones; a clock from memory says so on its page. Only
-the reach of a review is the invented operator's own choice, one bay.
+the reach of a review, one bay, and the days in which a survey is answered are the
+invented operator's own choice.
 """
 
 from __future__ import annotations
@@ -35,6 +36,10 @@ POLICIES = (
     DemoPolicy(EUROPE, "stage_2_months", 12, "months", "AMC 20-20A app. 3 annex 1"),
     DemoPolicy(
         EUROPE, "review_reach_mm", 508, "mm", "engineering procedure EP-07 (invented)",
+        "", "adopted",
+    ),
+    DemoPolicy(
+        EUROPE, "survey_answer_days", 10, "days", "intake procedure IP-03 (invented)",
         "", "adopted",
     ),
     DemoPolicy(EUROPE, "report_hours", 72, "hours", OCCURRENCES, "2015"),
