@@ -10,14 +10,17 @@ from pathlib import Path
 
 import pytest
 from django.db import transaction
+from django.template.backends.django import Template
 from django.test import Client, override_settings
 from django.urls import get_resolver, reverse
 
-from fleet.models import HistoryHead, User
+from fleet.models import HistoryHead, Role, User
+from fleet.services import people
 from fleet.services.sending import CHANGED, KEY_FIELD, SHOWN_FIELD
+from tests.factories import BEGAN, NOW, PASSWORD
 from tests.forms import Forms, form_on
 from tests.one_of_each import OneOfEach, one_of_each_make
-from tests.site_pages import FORM, PAGES, PUBLIC, names, nothing
+from tests.site_pages import FORM, PAGES, PUBLIC, SEND, names, nothing
 
 pytestmark = pytest.mark.django_db
 
@@ -94,10 +97,35 @@ def ask(each, clients):
     return asked
 
 
+@pytest.fixture
+def unshown(monkeypatch):
+    """Access is decided before a page is drawn: answers only are asked for here."""
+    monkeypatch.setattr(Template, "render", lambda *args, **kwargs: "")
+
+
+@pytest.fixture(scope="module")
+def strangers(each) -> dict[str, Client]:
+    """Logins an operator should not have, and has now and then: with every role and no
+    person behind it, and with no role at all."""
+    made = {}
+    for name, roles in (("nobody", Role.values), ("roleless", ())):
+        user = people.user_create(username=name, password=PASSWORD, at=NOW)
+        for role in roles:
+            people.membership_grant(
+                user=user,
+                operator=each.world.operator,
+                role=role,
+                began_on=BEGAN,
+                at=NOW,
+            )
+        made[name] = Client()
+        made[name].force_login(user)
+    return made
+
+
 CLOSED = [name for name, page in PAGES.items() if page.kind != PUBLIC]
 KEYED = [name for name in CLOSED if PAGES[name].keys is not nothing]
 OWN = [name for name in KEYED if not PAGES[name].shared]
-WRITTEN_ON = [name for name in CLOSED if PAGES[name].methods == ["get", "post"]]
 ABOUT_A_RECORD = [
     name for name in KEYED if PAGES[name].kind == FORM and name not in ONLY_ADD
 ]
@@ -116,8 +144,10 @@ def test_nobody_gets_in_without_signing_in(name, each, ask):
 
 
 @pytest.mark.parametrize("name", [n for n in CLOSED if n != "sign_out"])
-def test_each_role_gets_what_its_acts_allow(name, each, ask):
-    page = PAGES[name]
+@pytest.mark.usefixtures("unshown")
+def test_each_role_gets_what_its_acts_allow_and_writes_nothing(name, each, ask):
+    """An empty form is answered with what is missing; only a bare button acts."""
+    page, before = PAGES[name], HistoryHead.objects.get().sequence
     for role, user in each.world.users.items():
         for method in PAGES[name].methods:
             status, _ = ask(name, user, method)
@@ -125,30 +155,58 @@ def test_each_role_gets_what_its_acts_allow(name, each, ask):
                 assert status in ((200,) if method == "get" else (200, 302)), role
             else:
                 assert status == 403, (role, method)
+    assert page.kind == SEND or HistoryHead.objects.get().sequence == before
 
 
-@pytest.mark.parametrize("name", [n for n in CLOSED if PAGES[n].methods[0] == "get"])
-def test_no_page_has_script_or_style_within_itself(name, each, clients):
+@pytest.mark.parametrize("name", CLOSED)
+def test_an_address_answers_in_no_other_way(name, each, clients):
+    """What is sent otherwise is refused before anything is looked up."""
     page = PAGES[name]
-    role = sorted(page.roles)[0]
-    client = clients[each.world.users[role].pk]
-    answer = client.get(reverse(name, kwargs=page.keys(each)))
-    allowed = answer["Content-Security-Policy"]
-    assert "script-src 'self'" in allowed
-    assert "style-src 'self'" in allowed
-    assert "unsafe" not in allowed
-    if not answer.streaming and page.looks:
-        assert not INLINE.findall(answer.content.decode())
+    address = reverse(name, kwargs=page.keys(each))
+    client = clients[each.world.users[sorted(page.roles)[0]].pk]
+    for method in {"get", "post", "put", "patch", "delete"} - set(page.methods):
+        assert getattr(client, method)(address).status_code == 405, method
+
+
+@pytest.mark.parametrize("name", [n for n in CLOSED if n != "sign_out"])
+@pytest.mark.usefixtures("unshown")
+def test_a_login_without_a_person_is_answered_like_any_other(name, each, strangers):
+    page = PAGES[name]
+    address = reverse(name, kwargs=page.keys(each))
+    for method in page.methods:
+        status = getattr(strangers["nobody"], method)(address).status_code
+        assert status in ((200,) if method == "get" else (200, 302)), method
 
 
 @pytest.mark.parametrize("name", [n for n in CLOSED if PAGES[n].methods[0] == "get"])
-def test_every_form_carries_its_key_and_the_entry_it_was_read_at(name, each, clients):
+def test_a_login_without_a_role_learns_nothing(name, each, strangers):
+    page = PAGES[name]
+    answer = strangers["roleless"].get(reverse(name, kwargs=page.keys(each)))
+    if page.keys is not nothing and not page.shared:
+        assert answer.status_code == 404
+    else:
+        assert answer.status_code == (403 if page.action else 200)
+        assert MARK not in answer.text
+
+
+@pytest.mark.parametrize("name", [n for n in CLOSED if PAGES[n].methods[0] == "get"])
+def test_a_page_has_no_script_or_style_and_every_form_its_key(name, each, clients):
+    """The key, and the entry of the history that the page was read at."""
     page = PAGES[name]
     role = sorted(page.roles_for("post" if page.sends else "get"))[0]
     client = clients[each.world.users[role].pk]
     answer = client.get(reverse(name, kwargs=page.keys(each)))
+    allowed = answer["Content-Security-Policy"]
+    if page.looks:
+        assert "script-src 'self'" in allowed
+        assert "style-src 'self'" in allowed
+    else:
+        assert "default-src 'none'" in allowed
+    assert "unsafe" not in allowed
     if answer.streaming:
         return
+    if page.looks:
+        assert not INLINE.findall(answer.content.decode())
     forms = Forms(answer.content.decode()).posted
     assert forms or answer.status_code != 200, "sign-out is on every page"
     for action, fields in forms:
@@ -173,6 +231,7 @@ def test_a_form_about_a_record_tells_what_happened_since_its_page(name, each, cl
 
 
 @pytest.mark.parametrize("name", OWN)
+@pytest.mark.usefixtures("unshown")
 def test_an_outsider_does_not_find_the_record(name, each, ask):
     for method in PAGES[name].methods:
         for role in PAGES[name].roles_for(method):
@@ -205,11 +264,3 @@ def test_damage_of_an_earlier_period_is_the_present_operators_to_act_on(each, cl
     ]
     assert clients[engineer.pk].get(step).status_code == 200
     assert clients[former.pk].get(step).status_code == 403
-
-
-@pytest.mark.parametrize("name", WRITTEN_ON)
-def test_an_empty_form_writes_nothing(name, each, ask):
-    before = HistoryHead.objects.get().sequence
-    for role in PAGES[name].roles_for("post"):
-        ask(name, each.world.users[role], "post")
-    assert HistoryHead.objects.get().sequence == before
