@@ -175,7 +175,7 @@ PAGES: dict[str, Page] = {
     "repair_step": Page(FORM, "repair_record", key("planned")),
     "repair_inspect": Page(FORM, "repair_inspect", key("planned")),
     "repair_cancel": Page(FORM, "repair_record", key("planned")),
-    "repair_reclassify": Page(FORM, "repair_record", key("repair")),
+    "repair_reclassify": Page(FORM, "repair_reclassify", key("repair")),
     "repair_photographs": Page(FORM, "repair_record", key("repair")),
     "repair_remove": Page(FORM, "repair_record", key("repair")),
     "repair_status": Page(keys=aircraft, former=200),

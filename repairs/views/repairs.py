@@ -38,7 +38,7 @@ from repairs.services.repair_ends import UNDER_WAY
 PER_PAGE = 50
 MAY = (
     "approval_sign", "evaluation_make", "repair_record", "repair_inspect",
-    "substantiation_draft",
+    "substantiation_draft", "repair_reclassify", "document_applicability_record",
 )  # fmt: skip
 
 
