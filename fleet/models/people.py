@@ -116,7 +116,7 @@ class User(AbstractUser):
     def __str__(self) -> str:
         return self.get_full_name() or self.username
 
-    def check_password(self, raw_password: str) -> bool:
+    def check_password(self, raw_password: str | None) -> bool:
         """Only an answer: a hash of older parameters is renewed by a service, because
         what the framework would write here the history would not know."""
         return check_password(raw_password, self.password)

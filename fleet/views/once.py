@@ -11,6 +11,7 @@ from django.http import HttpRequest, HttpResponse, HttpResponseRedirect
 from django.utils.crypto import salted_hmac
 
 from fleet.canonical import canonical
+from fleet.forms.signing import SIGNATURE
 from fleet.models import SentForm
 from fleet.services.sending import (
     KEY_FIELD,
@@ -23,7 +24,7 @@ from fleet.services.sending import (
     sending_open,
 )
 
-NOT_TYPED = frozenset({KEY_FIELD, SHOWN_FIELD, "csrfmiddlewaretoken"})
+NOT_TYPED = frozenset({KEY_FIELD, SHOWN_FIELD, "csrfmiddlewaretoken", *SIGNATURE})
 TWICE = "This was already sent at {at:%H:%M:%S} UTC; nothing was written twice."
 
 
