@@ -42,9 +42,3 @@ def evaluations_to_cite(row: Substantiation) -> QuerySet[Evaluation]:
     }
     rows = Evaluation.objects.filter(Q(finding__in=covered) | Q(**using))
     return rows.filter(replaced_by__isnull=True).order_by("-pk")
-
-
-def folders_to_cite(aircraft: Aircraft | None) -> QuerySet[Substantiation]:
-    """Latest revisions of the folders of an aircraft: for decisions and repairs."""
-    rows = Substantiation.objects.filter(aircraft=aircraft, replaced_by__isnull=True)
-    return rows.order_by("-pk")
