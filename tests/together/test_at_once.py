@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import datetime as dt
 import html
+import re
 import uuid
 from functools import partial
 
@@ -36,10 +37,14 @@ from fleet.services.part_records import (
 from fleet.services.parts import part_remove
 from fleet.services.sending import CHANGED, KEY_FIELD, SHOWN_FIELD
 from repairs.models import Finding
+from repairs.services.disposition_entry import DispositionEntry
+from repairs.services.dispositions import disposition_decide
 from repairs.services.findings import FindingEntry, finding_record
-from tests.factories import BEGAN, NOW, TODAY
-from tests.forms import form_in
-from tests.record_rows import DENT, FOUND, found
+from repairs.services.inspections import requirement_raise
+from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from tests.factories import BEGAN, NOW, TODAY, program, signed
+from tests.forms import form_in, form_on
+from tests.record_rows import DENT, FOUND, MANUAL, assessed, found
 from tests.together.threads import at_once
 
 pytestmark = pytest.mark.django_db
@@ -57,7 +62,7 @@ def _on_the_day(settings):
 def browsers(world) -> dict[str, list[Client]]:
     """Two signed-in browsers for every role that is asked for."""
     made: dict[str, list[Client]] = {}
-    for role in ("engineer", "planner", "administrator"):
+    for role in ("engineer", "planner", "administrator", "signatory", "certifier"):
         made[role] = [Client(), Client()]
         for client in made[role]:
             client.force_login(world.users[role])
@@ -123,8 +128,9 @@ def one_wins(answers, *, told=TOLD):
     text only: the contexts of answers made at once mix."""
     statuses = sorted(answer.status_code for answer in answers)
     text = html.unescape("".join(a.content.decode() for a in answers))
-    assert statuses == [200, 302], text[:3000]
-    assert told in text
+    listed = re.findall(r"<li>(.*?)</li>", text)
+    assert statuses == [200, 302], listed
+    assert told in text, listed
     return next(form_in(a) for a in answers if a.status_code == 200)
 
 
@@ -232,6 +238,88 @@ def test_two_people_correct_one_usage_day_at_once(world, browsers):
         assert f"→ {row.cycles}" in lost
 
 
+def test_two_people_decide_on_one_finding_at_once(world, browsers):
+    said = {
+        "document_reference": "SRM 53-10-12",
+        "document_page": "p. 101",
+        "reason": "Within the manual's limits.",
+        "limit_cycles": 12_000,
+        "limit_on": "2025-03-01",
+        "crew_informed_on": str(TODAY),
+    }
+    page: dict[str, str] = {}
+    for n in range(ROUNDS):
+        finding = assessed(world, place_entered=_apart(n))
+        address = f"/findings/{finding.pk}/disposition/"
+        page = page or form_on(browsers["certifier"][0], address)
+        page.pop("limit_checks", None)
+        forms = [
+            signed(page | said | opened() | {"kind": kind})
+            for kind in ("defer", "accept")
+        ]
+        lost = one_wins(both_send(browsers["certifier"], address, *forms))
+        assert lost["reason"] == "Within the manual's limits."
+        assert finding.disposition_rows.count() == 1
+
+
+def test_two_people_sign_one_decision_at_once(world, browsers):
+    for n in range(ROUNDS):
+        finding = assessed(world, place_entered=_apart(ROUNDS + n))
+        decision = disposition_decide(
+            entry=DispositionEntry(
+                aircraft=world.aircraft,
+                findings=(finding,),
+                kind="accept",
+                basis=MANUAL,
+                reason="Within the manual's limits.",
+                decided_on=FOUND,
+                at=Counters(604_000, 10_080, 10_080),
+            ),
+            proof=program(world.assessor),
+            actor=world.engineer,
+            at=NOW,
+        )
+        address = f"/dispositions/{decision.pk}/sign/"
+        page = form_on(browsers["signatory"][0], address)
+        forms = [
+            signed(page | opened() | {"meaning": "approved", "statement": said})
+            for said in ("One read it.", "Another read it.")
+        ]
+        lost = one_wins(both_send(browsers["signatory"], address, *forms))
+        kept = decision.approvals.get(meaning="approved")
+        assert lost["statement"] != kept.statement
+
+
+def test_two_people_record_one_inspection_at_once(world, browsers):
+    requirement = requirement_raise(
+        draft=RequirementDraft(
+            operator=world.operator,
+            title="Look at the keel",
+            requirement_class="operator",
+            area="keel",
+            criteria="no crack",
+            method="detailed_visual",
+            effective_on=BEGAN,
+            limits=(LimitEntry("repeat", "500 FC"),),
+            aircraft=(world.aircraft,),
+            finding=found(world),
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+    subject = requirement.subjects.get()
+    address = f"/requirements/{requirement.pk}/done/{subject.pk}/"
+    page = form_on(browsers["certifier"][0], address) | {"result": "no_finding"}
+    for n in range(ROUNDS):
+        forms = [
+            signed(page | opened() | {"evidence": said}) for said in ("one", "other")
+        ]
+        lost = one_wins(both_send(browsers["certifier"], address, *forms))
+        assert subject.accomplishments.count() == n + 1
+        assert lost["evidence"] != subject.accomplishments.last().evidence
+    assert subject.due_points.filter(closed_on=None).count() == 1
+
+
 def test_two_people_claim_the_next_number_at_once(world):
     before = Finding.objects.count()
     for _ in range(ROUNDS):
@@ -239,6 +327,11 @@ def test_two_people_claim_the_next_number_at_once(world):
         assert all(isinstance(one, Finding) for one in made), made
         assert len({one.number for one in made}) == 2
     assert Finding.objects.count() == before + 2 * ROUNDS
+
+
+def _apart(n: int) -> str:
+    """Bays so far from each other that no finding is near another."""
+    return f"STA {400 + 32 * (n % 20)}, S-3{'LR'[n // 20]}"
 
 
 def _found(world) -> Finding:
