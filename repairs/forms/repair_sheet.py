@@ -8,7 +8,8 @@ from typing import Any
 from django.forms import Form
 
 from repairs.forms.raised import RaisedForm
-from repairs.forms.repairs import AnsweredForm, LiesForm, PlanForm
+from repairs.forms.repair_answers import AnsweredForm, LiesForm
+from repairs.forms.repairs import PlanForm
 from repairs.services.photographs import Photo
 from repairs.services.repair_entry import RepairEntry
 

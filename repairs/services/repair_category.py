@@ -90,7 +90,7 @@ def _problems(repair: Repair, change: NewCategory) -> list[str]:
     if not (data.reference.strip() and data.page.strip()):
         return [NEEDS_APPROVAL_DATA.format(category=label)]
     problems = document_refusals(
-        repair.operator, repair.aircraft, data.reference, data.revision
+        repair.aircraft.operator, repair.aircraft, data.reference, data.revision
     )
     before = repair.approval_document
     same = before is not None and (
@@ -134,7 +134,7 @@ def _write(w: Writing, repair: Repair, change: NewCategory) -> None:
     data, limit = change.approval, change.replacement_limit
     document = document_get_or_create(
         w,
-        operator=repair.operator,
+        operator=repair.aircraft.operator,
         kind=data.kind,
         reference=data.reference,
         revision=data.revision,

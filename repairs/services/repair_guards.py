@@ -140,7 +140,7 @@ def plan_problems(entry: RepairEntry) -> list[str]:
     ]
     if entry.category == RepairCategory.NOT_APPLICABLE and not entry.category_reason:
         found.append(REASON_FOR_NONE)
-    return found + _applicability_problems(entry, entry.aircraft.operator)
+    return found + _applicability_problems(entry)
 
 
 def _data_problems(entry: RepairEntry) -> Iterator[str]:
@@ -266,7 +266,7 @@ def _stage_problems(
 ) -> Iterator[str]:
     """Stage 1 before release, where the operator's programme adopts the stages."""
     approval = entry.approval
-    yield from _applicability_problems(entry, operator)
+    yield from _applicability_problems(entry)
     if entry.legacy or approval is None or not operator.programme_three_stages:
         return
     if criticality == Criticality.SECONDARY or approval.kind in IN_LIMITS:
@@ -279,11 +279,11 @@ def _stage_problems(
         )
 
 
-def _applicability_problems(entry: RepairEntry, operator: Operator) -> list[str]:
+def _applicability_problems(entry: RepairEntry) -> list[str]:
     if entry.approval is None:
         return []
-    data = entry.approval
-    return document_refusals(operator, entry.aircraft, data.reference, data.revision)
+    data, aircraft = entry.approval, entry.aircraft
+    return document_refusals(aircraft.operator, aircraft, data.reference, data.revision)
 
 
 def _material_problems(

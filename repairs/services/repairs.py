@@ -23,6 +23,7 @@ from repairs.models import (
     RepairCategory,
     RepairState,
     RequirementState,
+    RequirementSubject,
 )
 from repairs.services.approvals import approval_write
 from repairs.services.assessing import deferrals_close
@@ -108,8 +109,8 @@ def repair_embody(
         if row.aircraft_id != entry.aircraft.pk:
             words = OTHER_AIRCRAFT.format(repair=row, aircraft=row.aircraft)
             raise ValidationError(words)
-        operator, placed = _checked(entry, repair=row)
-        columns = _columns(w, entry, placed, operator)
+        _, placed = _checked(entry, repair=row)
+        columns = _columns(w, entry, placed)
         w.change(row, state=RepairState.EMBODIED, **keyed(row, columns))
         row = Repair.objects.select_related("aircraft", "operator").get(pk=row.pk)
         _follow(w, row, entry, proof)
@@ -151,20 +152,18 @@ def _row(
         operator=operator,
         number=number_next(w, operator=operator, kind="R"),
         state=state,
-        **_columns(w, entry, placed, operator),
+        **_columns(w, entry, placed),
     )
 
 
-def _columns(
-    w: Writing, entry: RepairEntry, placed: Placed, operator: Operator
-) -> dict[str, object]:
+def _columns(w: Writing, entry: RepairEntry, placed: Placed) -> dict[str, object]:
     approval, limit = entry.approval, entry.replacement_limit
     same = {name: getattr(entry, name) for name in AS_ENTERED}
     return {
         "description": _description(entry),
-        "approval_document": _document(w, operator, approval) if approval else None,
+        "approval_document": _document(w, entry, approval) if approval else None,
         "approval_page": approval.page if approval else "",
-        "release_document": _release(w, operator, entry),
+        "release_document": _release(w, entry),
         "replacement_limit_cycles": limit.cycles,
         "replacement_limit_minutes": limit.minutes,
         **counter_columns("at", entry.at),
@@ -184,12 +183,12 @@ def _description(entry: RepairEntry) -> str:
     return described(entry.description, said, lies)
 
 
-def _document(w: Writing, operator: Operator, data: Data) -> Document | None:
+def _document(w: Writing, entry: RepairEntry, data: Data) -> Document | None:
     if not data.reference.strip():
         return None
     return document_get_or_create(
         w,
-        operator=operator,
+        operator=entry.aircraft.operator,
         kind=data.kind,
         reference=data.reference,
         revision=data.revision,
@@ -197,9 +196,8 @@ def _document(w: Writing, operator: Operator, data: Data) -> Document | None:
     )
 
 
-def _release(w: Writing, operator: Operator, entry: RepairEntry) -> Document | None:
-    data = Data(Document.Kind.RELEASE, entry.release_reference)
-    return _document(w, operator, data)
+def _release(w: Writing, entry: RepairEntry) -> Document | None:
+    return _document(w, entry, Data(Document.Kind.RELEASE, entry.release_reference))
 
 
 def _item_columns(entry: RepairEntry, placed: Placed) -> dict[str, object]:
@@ -239,9 +237,9 @@ def _clocks_open(
     w: Writing, repair: Repair, entry: RepairEntry, released_on: dt.date
 ) -> None:
     """What the category puts on the due list."""
+    _inspections_count_anew(w, repair, released_on)
     if entry.new_requirement is not None:
         requirement_raise_within(w, replace(entry.new_requirement, repair=repair))
-    _inspections_count_anew(w, repair, released_on)
     if repair.category == RepairCategory.C:
         replacement_due_open(w, repair=repair, opened_on=released_on)
     repair_clock_follow(w, repair, on=released_on)
@@ -249,14 +247,13 @@ def _clocks_open(
 
 def _inspections_count_anew(w: Writing, repair: Repair, released_on: dt.date) -> None:
     """Inspections raised while it was planned could not be counted yet."""
-    rows = repair.requirements.filter(
-        state=RequirementState.EFFECTIVE, entered_at__lt=w.at
+    subjects = RequirementSubject.objects.filter(
+        requirement__repair=repair, state=RequirementState.EFFECTIVE, applies="yes"
     )
-    for requirement in rows:
-        for subject in requirement.subjects.select_related("aircraft", "part"):
-            reason = COUNTED_ANEW.format(number=repair)
-            due_points_close(w, origin=subject, on=released_on, reason=reason)
-            dues_open(w, subject, released_on)
+    for subject in subjects.select_related("aircraft", "part", "requirement__repair"):
+        reason = COUNTED_ANEW.format(number=repair)
+        due_points_close(w, origin=subject, on=released_on, reason=reason)
+        dues_open(w, subject, released_on)
 
 
 def _findings_rectify(

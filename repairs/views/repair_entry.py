@@ -19,8 +19,9 @@ from fleet.views.requests import Request
 from fleet.views.sending import sent, sent_signed
 from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
+from repairs.forms.repair_answers import AnsweredForm, LiesForm
 from repairs.forms.repair_sheet import RepairSheet
-from repairs.forms.repairs import AnsweredForm, LiesForm, PlanForm, RepairForm
+from repairs.forms.repairs import PlanForm, RepairForm
 from repairs.models import OPEN_STATES, Finding, Repair
 from repairs.selectors.choices import (
     aircraft_chosen,

@@ -15,6 +15,7 @@ from repairs.selectors.edges import earlier_depth_mm
 from repairs.services.assessing import Reportability, finding_close
 from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
+from repairs.services.repair_ends import repair_remove
 from repairs.services.repair_entry import (
     Answered,
     Data,
@@ -22,7 +23,6 @@ from repairs.services.repair_entry import (
     Layer,
     RepairEntry,
 )
-from repairs.services.repair_ends import repair_remove
 from repairs.services.repairs import repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests.factories import NOW, program
