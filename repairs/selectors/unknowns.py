@@ -155,7 +155,7 @@ def repairs_unknown(rows: QuerySet[Repair], key: str) -> QuerySet[Repair]:
 
 
 def unknowns(aircraft: Aircraft) -> list[Unknown]:
-    """Everything not known of the aircraft and its records; seven queries."""
+    """Everything not known of the aircraft and its records; eight queries."""
     return [
         row
         for row in (

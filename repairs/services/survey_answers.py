@@ -70,10 +70,10 @@ def survey_item_answer(
         stream=stream_of(aircraft),
         reason=answer.strip(),
     ) as w:
+        open_survey(w, item.survey)
         row = w.locked(
             SurveyItem.objects.select_related("survey__aircraft__variant"), pk=item.pk
         )
-        open_survey(w, row.survey)
         answerable(row, answer, on)
         made = _opened(w, row, opens, person)
         w.change(

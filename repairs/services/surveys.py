@@ -143,10 +143,10 @@ def survey_match(
 ) -> SurveyItem:
     """The line is this record; without one, the match is taken back."""
     with _writing("survey_match", item.survey.aircraft, actor, at) as w:
+        survey = open_survey(w, item.survey)
         row = w.locked(
             SurveyItem.objects.select_related("survey__aircraft"), pk=item.pk
         )
-        survey = open_survey(w, row.survey)
         if row.answer:
             raise ValidationError(_answered(row))
         if row.seen_as == "nothing":
@@ -222,7 +222,7 @@ def answerable(item: SurveyItem, answer: str, on: dt.date) -> None:
 
 
 def open_survey(w: Writing, survey: Survey) -> Survey:
-    """The survey, held; ValidationError once it is closed."""
+    """The survey, held before any of its items; ValidationError once it is closed."""
     row = w.locked(Survey.objects.select_related("aircraft__operator"), pk=survey.pk)
     if row.state == "closed":
         raise ValidationError(

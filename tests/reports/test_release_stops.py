@@ -12,6 +12,7 @@ from django.core.management import CommandError, call_command
 
 from fleet.due import Counters
 from repairs.services.repair_entry import Answered
+from repairs.services.requirement_draft import LimitEntry
 from reports.release_rules import OPEN_ITEMS, STOPS
 from reports.release_stops import EMPTY, StopsQuery, release_stops
 from tests.factories import TODAY
@@ -129,6 +130,14 @@ class TestCounters:
         defer(world, finding, limit=Counters(), limit_on=JUDGED_ON)
         assert causes(world) == set()
         assert causes(world, as_of=JUDGED_ON + dt.timedelta(days=1)) == {"deferral"}
+
+    def test_what_cannot_be_computed_stops_it_and_says_why(self, world):
+        """R23: a missing input is never taken as passed."""
+        base = LimitEntry("threshold", "500 FC", base="release")
+        raised(world, "", limits=(base,))
+        (stop,) = judged(world).stops
+        assert stop.cause == "overdue"
+        assert "cannot be computed: no flight cycles recorded" in stop.stands
 
     def test_usage_that_lags_is_said_on_top_and_judged_as_it_stands(self, world):
         raised(world, "10,082 FC")
