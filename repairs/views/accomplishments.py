@@ -73,7 +73,7 @@ def accomplishment_new(request: Request, pk: int, subject_pk: int) -> HttpRespon
         initial=_initial(subject) | {"done_by": request.user.person_id},
     )
     save = partial(_record, request, subject, form)
-    about = [subject, subject.accomplishments.all()]
+    about: list[Any] = [subject, subject.accomplishments.all()]
     made = sent_signed(request, form, save, about=about)
     if made:
         _told(request, made)
