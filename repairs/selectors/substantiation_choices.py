@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from typing import Any
 
 from django.db.models import Q, QuerySet
@@ -42,3 +44,37 @@ def evaluations_to_cite(row: Substantiation) -> QuerySet[Evaluation]:
     }
     rows = Evaluation.objects.filter(Q(finding__in=covered) | Q(**using))
     return rows.filter(replaced_by__isnull=True).order_by("-pk")
+
+
+@dataclass(frozen=True)
+class NewFolder:
+    """What a new folder starts with: its aircraft, findings, repair and title."""
+
+    aircraft: str = ""
+    initial: dict[str, Any] = field(default_factory=dict)
+
+
+def new_folder_of(asked: Mapping[str, str], choices: QuerySet[Aircraft]) -> NewFolder:
+    """From the finding, repair or aircraft that an address names; else the only one."""
+    finding = _named(Finding.objects.filter(aircraft__in=choices), asked, "finding")
+    repair = _named(Repair.objects.filter(aircraft__in=choices), asked, "repair")
+    if repair is not None:
+        keys = repair.finding_rows.values_list("finding", flat=True)
+        said = {"findings": list(keys), "repair": repair.pk, "answer": "permanent"}
+        title = f"{repair.get_kind_display().capitalize()} at {place_of(repair)}"
+        return NewFolder(str(repair.aircraft_id), said | {"title": title})
+    if finding is not None:
+        title = f"{finding.get_damage_type_display().capitalize()}, {place_of(finding)}"
+        said = {"findings": [finding.pk], "title": title}
+        return NewFolder(str(finding.aircraft_id), said)
+    only = list(choices.values_list("pk", flat=True)[:2])
+    return NewFolder(asked.get("aircraft") or (str(only[0]) if len(only) == 1 else ""))
+
+
+def _named(rows: QuerySet[Any], asked: Mapping[str, str], name: str) -> Any:
+    key = asked.get(name, "")
+    return rows.filter(pk=int(key)).first() if key.isdecimal() else None
+
+
+def place_of(item: Finding | Repair) -> str:
+    return item.place_text or item.place_entered

@@ -3,13 +3,12 @@
 from __future__ import annotations
 
 import datetime as dt
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field
-from typing import Any
+from collections.abc import Sequence
+from dataclasses import dataclass
 
 from django.db.models import Prefetch, QuerySet
 
-from fleet.models import Aircraft, Policy, User
+from fleet.models import Policy, User
 from repairs.inspections_text import inspections_said
 from repairs.models import (
     ASIDE_STATES,
@@ -108,40 +107,6 @@ def _lines(rows: QuerySet[Substantiation]) -> list[FolderLine]:
     return [FolderLine(row) for row in standing.order_by("-pk")]
 
 
-@dataclass(frozen=True)
-class NewFolder:
-    """What a new folder starts with: its aircraft, findings, repair and title."""
-
-    aircraft: str = ""
-    initial: dict[str, Any] = field(default_factory=dict)
-
-
-def new_folder_of(asked: Mapping[str, str], choices: QuerySet[Aircraft]) -> NewFolder:
-    """From the finding, repair or aircraft that an address names; else the only one."""
-    finding = _named(Finding.objects.filter(aircraft__in=choices), asked, "finding")
-    repair = _named(Repair.objects.filter(aircraft__in=choices), asked, "repair")
-    if repair is not None:
-        keys = repair.finding_rows.values_list("finding", flat=True)
-        said = {"findings": list(keys), "repair": repair.pk, "answer": "permanent"}
-        title = f"{repair.get_kind_display().capitalize()} at {place_of(repair)}"
-        return NewFolder(str(repair.aircraft_id), said | {"title": title})
-    if finding is not None:
-        title = f"{finding.get_damage_type_display().capitalize()}, {place_of(finding)}"
-        said = {"findings": [finding.pk], "title": title}
-        return NewFolder(str(finding.aircraft_id), said)
-    only = list(choices.values_list("pk", flat=True)[:2])
-    return NewFolder(asked.get("aircraft") or (str(only[0]) if len(only) == 1 else ""))
-
-
-def _named(rows: QuerySet[Any], asked: Mapping[str, str], name: str) -> Any:
-    key = asked.get(name, "")
-    return rows.filter(pk=int(key)).first() if key.isdecimal() else None
-
-
-def place_of(item: Finding | Repair) -> str:
-    return item.place_text or item.place_entered
-
-
 def neighbour_next(row: Substantiation) -> SubstantiationNeighbour | None:
     """The nearest neighbour that nobody has answered yet."""
     return neighbours_of(row).filter(answer="").first()
@@ -217,6 +182,13 @@ class FolderShown:
     revisions: Sequence[tuple[Substantiation, str]]
     changed: Sequence[Difference]
     later: Substantiation | None
+
+    @property
+    def standing(self) -> str:
+        """The state of the revision, and of the number where that is another."""
+        if self.state == "complete" or self.reached in self.state:
+            return self.state
+        return f"{self.state} · {self.reached}"
 
     @property
     def is_draft(self) -> bool:

@@ -37,6 +37,7 @@ from repairs.selectors.choices import aircraft_chosen, aircraft_of
 from repairs.selectors.signatures import approvals_verified
 from repairs.selectors.substantiation_choices import (
     findings_to_cover,
+    new_folder_of,
     preparers_at,
     repairs_without_folder,
 )
@@ -44,7 +45,6 @@ from repairs.selectors.substantiations import (
     FolderLine,
     folder_shown,
     folders_listed,
-    new_folder_of,
     substantiation_whole,
 )
 from repairs.services.substantiations import (
