@@ -14,6 +14,7 @@ from reports.demo.load_base import (
 from reports.demo.load_decisions import decision_steps
 from reports.demo.load_evaluations import evaluations_load
 from reports.demo.load_findings import finding_steps
+from reports.demo.load_folders import folders_load
 from reports.demo.load_parts import part_numbers_load, part_steps
 from reports.demo.load_repairs import repair_steps
 from reports.demo.people import PASSWORD
@@ -38,5 +39,6 @@ def demo_load(scenario: Scenario, *, say: Callable[[str], None]) -> Loaded:
     ]
     steps_run(steps, say)
     evaluations_load(loaded, scenario, say)
+    folders_load(loaded, scenario, say)
     marker_set(loaded, scenario.seed)
     return loaded
