@@ -12,8 +12,9 @@ from fleet.services.usage import usage_import
 from fleet.usage_lines import UsageLine
 from repairs.measured import Typed
 from repairs.models import Finding
-from repairs.services.assessing import DataCited, finding_assess
+from repairs.services.assessing import finding_assess
 from repairs.services.disposition_entry import Basis
+from repairs.services.finding_guards import DataCited
 from repairs.services.findings import FindingEntry, finding_record
 from tests.factories import (
     FIXTURES,

@@ -25,7 +25,8 @@ from repairs.models import (
     Substantiation,
 )
 from repairs.selectors.neighbours import Near
-from repairs.services.disposition_entry import KEEPS_DAMAGE, Basis, Reviewed
+from repairs.services.disposition_entry import Basis, Reviewed
+from repairs.services.finding_guards import KEEPS_DAMAGE
 
 REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
 WHY = "Say why, in a few words."

@@ -17,7 +17,6 @@ from repairs.models import (
     Meaning,
     Measurement,
 )
-from repairs.selectors.report_triggers import crack_words, is_critical_crack
 from repairs.services.approvals import Signed, approval_write
 from repairs.services.authority import authorised, operator_on
 from repairs.services.due_points import due_points_close
@@ -28,8 +27,6 @@ from repairs.services.reports import (
     finding_decide_write,
     finding_questions_write,
 )
-
-__all__ = ["DataCited", "Reportability", "crack_words", "is_critical_crack"]
 
 REASON_NEEDED = "Say why."
 NOT_SAME_AIRCRAFT = "{number} and {earlier} are on different aircraft."

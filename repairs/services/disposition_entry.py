@@ -20,15 +20,11 @@ from repairs.models import (
     Substantiation,
 )
 from repairs.services.finding_guards import (
-    DECIDABLE,
-    KEEPS_DAMAGE,
     STEPS,
     Facts,
     step_problems,
 )
 from repairs.services.requirement_draft import RequirementDraft
-
-__all__ = ["DECIDABLE", "KEEPS_DAMAGE"]
 
 K = DispositionKind
 LIVE = (RequirementState.EFFECTIVE, RequirementState.DRAFT)

@@ -31,14 +31,13 @@ from repairs.selectors.deferrals import chain_of, origin_on
 from repairs.services.approvals import approval_write
 from repairs.services.authority import authorised, operator_on
 from repairs.services.disposition_entry import (
-    KEEPS_DAMAGE,
     DispositionEntry,
     K,
     decision_problems,
     scopes_for,
 )
 from repairs.services.due_points import deferral_due_open, due_points_close
-from repairs.services.finding_guards import STEPS
+from repairs.services.finding_guards import KEEPS_DAMAGE, STEPS
 from repairs.services.inspections import requirement_raise_within
 from repairs.services.reports import finding_questions_write
 from repairs.services.stage_clocks import (

@@ -8,17 +8,10 @@ from dataclasses import dataclass, field
 
 from fleet.due import Counters
 from fleet.models import Aircraft, Material, Organisation, Person, SafeLifePart
-from repairs.models import Disposition, Finding, FindingState, Repair, Substantiation
+from repairs.models import Disposition, Finding, Repair, Substantiation
+from repairs.services.finding_guards import RECTIFIABLE as RECTIFIABLE
 from repairs.services.photographs import Photo
 from repairs.services.requirement_draft import RequirementDraft
-
-RECTIFIABLE = (
-    FindingState.ASSESSED,
-    FindingState.ACCEPTED,
-    FindingState.DEFERRED,
-    FindingState.TO_RECTIFY,
-    FindingState.RECTIFIED,
-)
 
 
 @dataclass(frozen=True, slots=True)

@@ -26,10 +26,11 @@ from repairs.selectors.choices import decision_choices
 from repairs.selectors.deferrals import chain_of
 from repairs.selectors.findings import disposition_whole, finding_whole
 from repairs.selectors.neighbours import neighbours
+from repairs.selectors.report_triggers import is_critical_crack
 from repairs.selectors.signatures import approvals_verified
-from repairs.services.assessing import is_critical_crack
-from repairs.services.disposition_entry import DECIDABLE, DispositionEntry
+from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
+from repairs.services.finding_guards import DECIDABLE
 from repairs.services.findings import standing_on
 
 METHODS = ["GET", "HEAD", "POST"]

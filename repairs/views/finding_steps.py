@@ -34,13 +34,12 @@ from repairs.selectors.choices import people_at
 from repairs.selectors.findings import earlier_findings, finding_whole
 from repairs.selectors.report_triggers import reports_undecided
 from repairs.services.assessing import (
-    DataCited,
-    Reportability,
     finding_assess,
     finding_close,
     finding_link,
     finding_void,
 )
+from repairs.services.finding_guards import DataCited
 from repairs.services.findings import (
     finding_question_answer,
     finding_relocate,
@@ -49,6 +48,7 @@ from repairs.services.findings import (
 from repairs.services.measuring import Measuring, measurement_record
 from repairs.services.photographs import Photo, photographs_add
 from repairs.services.places import Placed, place_try
+from repairs.services.reports import Reportability
 
 METHODS = ["GET", "HEAD", "POST"]
 CITED = ("kind", "reference", "revision", "page")

@@ -30,10 +30,10 @@ from repairs.selectors.findings import (
 from repairs.selectors.maps import finding_map_svg
 from repairs.selectors.neighbours import neighbours
 from repairs.selectors.next_step import further_steps, next_step
-from repairs.selectors.report_triggers import level_now
+from repairs.selectors.report_triggers import crack_words, level_now
 from repairs.selectors.reports import finding_reports
 from repairs.selectors.substantiations import folders_of_finding
-from repairs.services.assessing import assess_problems, crack_words
+from repairs.services.assessing import assess_problems
 
 PER_PAGE = 50
 

@@ -12,13 +12,13 @@ from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.signing import PROGRAM, Proof
 from repairs.services.assessing import (
-    DataCited,
     finding_assess,
     finding_assess_write,
     finding_close,
 )
 from repairs.services.disposition_entry import Basis, DispositionEntry
 from repairs.services.dispositions import disposition_write
+from repairs.services.finding_guards import DataCited
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts

@@ -17,7 +17,6 @@ from repairs.models import Approval, Finding, FindingQuestion, LimitCheck
 from repairs.plausibility import counter_questions
 from repairs.selectors.signatures import approval_agrees
 from repairs.services.assessing import (
-    Reportability,
     finding_assess,
     finding_close,
     finding_link,
@@ -28,6 +27,7 @@ from repairs.services.findings import (
     finding_relocate,
 )
 from repairs.services.measuring import Measuring, measurement_record
+from repairs.services.reports import Reportability
 from tests.factories import NOW, program
 from tests.record_rows import (
     CRACK,

@@ -12,7 +12,7 @@ from fleet.selectors.verify import problems
 from fleet.services.people import policy_set
 from repairs.models import DuePoint, Photograph, Repair
 from repairs.selectors.edges import earlier_depth_mm
-from repairs.services.assessing import Reportability, finding_close
+from repairs.services.assessing import finding_close
 from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
 from repairs.services.repair_ends import repair_remove
@@ -24,6 +24,7 @@ from repairs.services.repair_entry import (
     RepairEntry,
 )
 from repairs.services.repairs import repair_record
+from repairs.services.reports import Reportability
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests.factories import NOW, program
 from tests.record_rows import CRACK, FOUND, MANUAL, assessed, found

@@ -12,7 +12,7 @@ import pytest
 from django.core.exceptions import ValidationError
 
 from repairs.models import CorrosionLevel
-from repairs.services.assessing import Reportability
+from repairs.services.reports import Reportability
 from tests.finding_rows import CORROSION, close, levelled, rectified
 
 pytestmark = pytest.mark.django_db

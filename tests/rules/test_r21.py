@@ -16,9 +16,8 @@ from django.core.exceptions import ValidationError
 from fleet.due import Counters
 from fleet.models import AircraftPeriod
 from repairs.models import LimitCheck
-from repairs.services.assessing import Reportability
 from repairs.services.events import event_record
-from repairs.services.reports import report_decide
+from repairs.services.reports import Reportability, report_decide
 from tests.factories import NOW
 from tests.finding_rows import CORROSION, close, decide, levelled, rectified, repaired
 from tests.record_rows import CRACK, FOUND, assessed, found
