@@ -13,6 +13,7 @@ import pytest
 from django.core.exceptions import ValidationError
 
 from fleet.due import Bucket, Counters, DueState
+from fleet.selectors.verify import problems
 from fleet.services.people import policy_set
 from repairs.models import DuePoint, Finding, Repair, SurveyItem
 from repairs.selectors.surveys import record_key, survey_page
@@ -366,6 +367,17 @@ class TestClosing:
             world.certifier,
             TODAY,
         )
+
+    def test_every_step_of_it_agrees_with_the_history(self, world):
+        known = found(world)
+        survey = opened(world, document_reference="SURVEY-7")
+        one, two, three = lines(world, survey, HERE, "STA 500, S-4R", "STA 520, S-4R")
+        match(world, one, known)
+        compared(world, survey)
+        answer(world, two, NewFinding("dent"))
+        answer(world, three, LegacyRepair("flush"))
+        close(world, survey)
+        assert list(problems()) == []
 
     def test_a_closed_survey_stays_as_it_is(self, world):
         survey = opened(world)
