@@ -47,7 +47,7 @@ def recorded_models() -> list[type[models.Model]]:
 def guarded_tables() -> dict[str, str]:
     """Every append-only table, which triggers guard, to its key column."""
     return {
-        model._meta.db_table: model._meta.pk.column
+        model._meta.db_table: str(model._meta.pk.column)
         for app in settings.RECORDED_APPS
         for model in apps.get_app_config(app).get_models()
         if append_only(model)

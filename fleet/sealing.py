@@ -135,7 +135,8 @@ def seal_read(text: str, where: str) -> Seal:
             NOT_A_SEAL.format(where=where, read=f"“{lines[2]}”", expected="entry: 123")
         )
     signature = lines[len(LINES) + 2].removeprefix(f"{SIGNATURE}: ")
-    return Seal(said[0], int(said[1]), *said[2:], signature)
+    database, sequence, digest, sealed_at, published, key = said
+    return Seal(database, int(sequence), digest, sealed_at, published, key, signature)
 
 
 def _bytes(text: str) -> bytes:

@@ -95,7 +95,7 @@ def _write(writer: BackupWriter, say: Callable[[str], None]) -> None:
         manifest.migrations = sorted([app, name] for app, name in applied)
         for model in copied_models():
             say(model._meta.db_table)
-            columns = [field.column for field in model._meta.concrete_fields]
+            columns = [str(field.column) for field in model._meta.concrete_fields]
             writer.table(model._meta.db_table, columns, _rows(model))
         kept = _digests_kept()
     say(f"{len(kept):,} attachments")

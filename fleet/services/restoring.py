@@ -109,7 +109,7 @@ def _check_columns(
     for table in backup.tables:
         if table not in by_table:
             raise ValidationError(NO_TABLE.format(table=table))
-        fields = {f.column: f for f in by_table[table]._meta.concrete_fields}
+        fields = {str(f.column): f for f in by_table[table]._meta.concrete_fields}
         columns = backup.columns(table)
         for column in columns:
             if column not in fields:
@@ -154,12 +154,12 @@ def _empty(tables: list[str], say: Callable[[str], None]) -> None:
 
 def _fill(model: type[models.Model], backup: BackupReader) -> None:
     table, quote = model._meta.db_table, connection.ops.quote_name
-    fields = {field.column: field for field in model._meta.concrete_fields}
+    fields = {str(field.column): field for field in model._meta.concrete_fields}
     columns = backup.columns(table)
     added = [column for column in fields if column not in columns]
     beginning = [None if fields[column].null else "" for column in added]
     ordered = [fields[column] for column in (*columns, *added)]
-    listed = ", ".join(quote(field.column) for field in ordered)
+    listed = ", ".join(map(quote, (*columns, *added)))
     sql = (
         f"INSERT INTO {quote(table)} ({listed}) "
         f"VALUES ({', '.join(['%s'] * len(ordered))})"

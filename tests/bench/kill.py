@@ -92,9 +92,10 @@ def main() -> None:
 
         django.setup()
         began, tally = time.monotonic(), Run(options).go()
+    took = time.monotonic() - began
     print(
-        f"{tally.ways.total()} kills ({dict(tally.ways)}) in {time.monotonic() - began:.0f} s:"
-        f" {tally.confirmed} confirmed, {tally.unanswered} without an answer, of which "
+        f"{tally.ways.total()} kills ({dict(tally.ways)}) in {took:.0f} s: "
+        f"{tally.confirmed} confirmed, {tally.unanswered} without an answer, of which "
         f"{tally.recorded_unanswered} had been recorded whole and "
         f"{tally.recorded_again} were when sent again, {tally.asked} asked back; "
         f"{len(tally.wrong)} wrong"

@@ -34,6 +34,7 @@ MAY_WRITE = {
     "fleet/services/seals.py": "a seal stands outside the history it seals",
     "fleet/services/sending.py": "sent forms point at the entry they made",
     "fleet/services/restoring.py": "puts back rows together with their history",
+    "fleet/services/second_factor.py": "keys of devices, no records; the user's is one",
     "fleet/services/documents.py:save": "saves a picture, not a row",
 }
 

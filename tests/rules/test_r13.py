@@ -27,6 +27,7 @@ SOURCES = sorted(
 )
 # What deletes rows of the database, and why it may.
 MAY_DELETE = {
+    "fleet/services/second_factor.py": "removes keys of devices, which are no records",
     "fleet/services/restoring.py": "empties the database that a backup replaces",
 }
 RAW = ("DELETE FROM ", "TRUNCATE ")
