@@ -17,6 +17,7 @@ from repairs.models import Approval, Meaning, Substantiation
 from repairs.selectors.signatures import approvals_verified
 from repairs.selectors.substantiation_needs import needs
 from repairs.selectors.substantiation_stages import STAGE_OF, approvals_of_number
+from repairs.services.reports import finding_questions_write
 from repairs.services.stage_clocks import stage_clocks_follow
 from repairs.services.substantiation_draft import held, latest_of
 
@@ -96,9 +97,14 @@ def substantiation_sign_check(
 def substantiation_signed(
     w: Writing, substantiation: Substantiation, *, meaning: str, on: dt.date
 ) -> None:
-    """After the signature: an approved stage moves the clocks of the folder."""
+    """After the signature: an approved stage moves the clocks of the folder; a major
+    one asks whether its findings are reportable."""
     if meaning in STAGE_OF:
         stage_clocks_follow(w, held(substantiation), on=on)
+    if meaning == Meaning.PREPARED and substantiation.scale == "major":
+        covered = substantiation.finding_rows.filter(withdrawn=False)
+        for row in covered.select_related("finding__aircraft__operator"):
+            finding_questions_write(w, row.finding)
 
 
 def _order_problems(

@@ -38,6 +38,7 @@ from repairs.services.reports import (
 )
 from tests.factories import NOW
 from tests.finding_rows import CORROSION, clock, levelled
+from tests.folder_rows import folders_make
 from tests.record_rows import CRACK, FOUND, assessed, found
 
 pytestmark = pytest.mark.django_db
@@ -119,6 +120,14 @@ def test_a_dent_asks_nothing_until_something_on_record_does(world):
     assert not corroded.reports.exists()
     levelled(world, corroded, 2)
     assert corroded.reports.get().state == "to_assess"
+
+
+def test_a_folder_signed_as_major_asks_for_what_it_covers(world, clocks):
+    folders = folders_make(world)
+    for scale, asks in (("minor", False), ("major", True)):
+        folder = folders.ready(scale=scale, scale_reason="as the manual says")
+        folders.sign(folder, "prepared")
+        assert folder.finding_rows.get().finding.reports.exists() is asks
 
 
 def test_an_event_asks_for_itself(world, clocks):
