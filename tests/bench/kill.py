@@ -13,6 +13,7 @@ is there by half; and a form that got no answer, sent again, is recorded exactly
 from __future__ import annotations
 
 import argparse
+import contextlib
 import http.client
 import io
 import os
@@ -106,7 +107,7 @@ def main() -> None:
 
 
 class Run:
-    """The world, the server's socket, and one kill after another."""
+    """The world, and one kill after another."""
 
     def __init__(self, options: argparse.Namespace) -> None:
         from django.conf import settings
@@ -122,8 +123,8 @@ class Run:
             for n in range(AIRCRAFT)
         ]
         self.form, self.cookie = self._form()
-        self.listening = socket.create_server(("127.0.0.1", 0), backlog=64)
-        self.port = self.listening.getsockname()[1]
+        with socket.create_server(("127.0.0.1", 0)) as free:
+            self.port = free.getsockname()[1]
         self.verified = 0
         self.ways = ["server"]
         if options.server:
@@ -150,6 +151,7 @@ class Run:
         server = os.fork()
         if server == 0:
             self._serve()
+        self._await()
         before = [sent for sent in again if self._recorded(sent.marker)]
         self.tally.recorded_unanswered += len(before)
         for sent in again:
@@ -183,13 +185,17 @@ class Run:
     def _serve(self) -> None:
         from fleet.site.wsgi import application
 
-        httpd = Threaded(("127.0.0.1", self.port), Quiet, bind_and_activate=False)
-        httpd.socket = self.listening
-        httpd.server_name, httpd.server_port = "127.0.0.1", self.port
-        httpd.setup_environ()
-        httpd.set_app(application)
         os.dup2(os.open(os.devnull, os.O_WRONLY), 2)
+        httpd = Threaded(("127.0.0.1", self.port), Quiet)
+        httpd.set_app(application)
         httpd.serve_forever(poll_interval=0.02)
+
+    def _await(self) -> None:
+        for _ in range(1_000):
+            with contextlib.suppress(OSError):
+                socket.create_connection(("127.0.0.1", self.port)).close()
+                return
+            time.sleep(0.01)
 
     def _kill(self, way: str, server: int) -> None:
         if way == "server":
