@@ -9,7 +9,7 @@ from typing import Any
 from django.contrib import messages
 from django.core.exceptions import ValidationError
 from django.forms import Form
-from django.http import HttpResponse
+from django.http import Http404, HttpResponse
 from django.shortcuts import get_object_or_404, redirect
 from django.views.decorators.http import require_http_methods, require_POST
 
@@ -50,6 +50,7 @@ FOUND = "{number}: {count} more within reach; review them."
 NONE_FOUND = "{number}: nothing within reach that is not listed."
 WITHDRAWN = "{number}: withdrawn; it stays in the record."
 REVIEWED = "{name} is reviewed."
+NO_SUCH_ROW = "A folder has no such rows."
 ROWS = {"finding": "finding_rows", "case": "cases", "document": "documents"}
 
 
@@ -161,6 +162,8 @@ def substantiation_withdraw(
 ) -> HttpResponse:
     """A finding, case or document that holds no more."""
     folder = folder_to_draft(request, pk)
+    if what not in ROWS:
+        raise Http404(NO_SUCH_ROW)
     row = get_object_or_404(getattr(folder, ROWS[what]), pk=row_pk)
     by: dict[str, Any] = {"actor": request.user, "at": now()}
     if _tried(request, partial(substantiation_row_withdraw, row=row, **by)) is not None:

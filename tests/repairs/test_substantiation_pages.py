@@ -157,6 +157,11 @@ def test_rows_are_added_and_withdrawn(engineer, folders, settings, tmp_path):
     assert "pressure" not in text_of(engineer, "substantiation", pk)
 
 
+def test_rows_of_no_kind_are_not_found(engineer, folders):
+    pk = folders.draft().pk
+    assert post(engineer, "substantiation_withdraw", pk, "repair", 1).status_code == 404
+
+
 def test_an_affected_item_says_what_and_how(engineer, folders):
     folder = folders.draft()
     said = {"systems": "affected"}
