@@ -61,6 +61,7 @@ KEEPS_DAMAGE = (
 )
 STAGE_APPROVED = "stage {stage} approved: {folder}"
 CLOCK_AGREES_NOW = "counted anew after {folder}"
+REPAIR_SAYS_NOW = "{repair}: category {category}; approval stage reached: {stage}"
 CARRIED_BY = "the clock runs on {repair}"
 
 
@@ -91,8 +92,17 @@ def repair_clock_follow(w: Writing, repair: Repair, *, on: dt.date) -> None:
     clock = _repair_clock(repair) if repair.state == RepairState.EMBODIED else None
     if folder is not None and repair.state == RepairState.EMBODIED:
         _own_clocks_close(w, folder, on, CARRIED_BY.format(repair=repair))
-    reason = _reason(folder) if folder else ""
+    reason = _reason(folder) if folder else _of_repair(repair)
     _follow(w, repair, [repair], clock, on, reason)
+
+
+def _of_repair(repair: Repair) -> str:
+    """Why a clock without a folder ends: what the repair says of itself now."""
+    return REPAIR_SAYS_NOW.format(
+        repair=repair,
+        category=repair.get_category_display(),
+        stage=repair.get_stage_reached_display(),
+    )
 
 
 def _stage_word(repair: Repair, folder: Substantiation) -> str:

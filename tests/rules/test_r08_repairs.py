@@ -107,3 +107,14 @@ def test_a_new_category_brings_what_it_needs(world):
     reclassify(world, repair, category="b", new_requirement=inspection(world))
     # 15,000 FC from the release at 10,080 FC.
     assert DuePoint.objects.get(closed_on__isnull=True).due_cycles == 25_080
+
+
+def test_a_complete_approval_ends_the_clock_of_a_repair_without_a_folder(world):
+    """A of AC 120-93 needs the complete approval; nothing is due towards it then, and
+    the record says why."""
+    repair = record(world, category="pending", approval=LETTER, stage_reached="1")
+    assert DuePoint.objects.get().closed_on is None
+    reclassify(world, repair)
+    clock = DuePoint.objects.get()
+    assert (clock.kind, clock.closed_on) == ("stage_clock", LATER)
+    assert "A, permanent" in clock.closed_reason
