@@ -13,6 +13,16 @@ from django.db.models import Q
 
 from fleet.canonical import plain
 from fleet.models import HistoryItem
+from fleet.selectors.in_words import (
+    Keys,
+    Table,
+    keys_told,
+    name_words,
+    table_named,
+    value_words,
+)
+
+Changes = dict[str, list[Any]]
 
 # What a location's text already says; the entry keeps them, the page does not repeat.
 FOLLOWS_FROM_PLACE = frozenset(
@@ -45,10 +55,13 @@ class Told:
 
 
 def history_of(row: models.Model, *, limit: int = 100) -> list[Told]:
-    """The newest entries that touched the row; one query."""
+    """The newest entries that touched the row: one query, and one a table that its
+    columns point at."""
     items = HistoryItem.objects.filter(_names(row)).select_related("entry")
     items = items.order_by("-entry_id", "-number")[:limit]
-    return [_one(item, _told(json.loads(item.changes))) for item in items]
+    changed = [(item, _shown_of(json.loads(item.changes))) for item in items]
+    keys = _keys_told(changed)
+    return [_one(item, changes, keys) for item, changes in changed]
 
 
 def changes_since(
@@ -57,20 +70,24 @@ def changes_since(
     """The rows that entries after that one touched, and what they did, oldest first.
 
     A row that replaced one of them, as of what is never changed, is told by the columns
-    in which the two differ. One query, and one a table whose rows are replaced.
+    in which the two differ. One query, one a table whose rows are replaced, and one a
+    table that the columns point at.
     """
     held = [*rows, *_replacing(rows)]
     named = Q(pk__in=[])
     for row in held:
         named |= _names(row)
     items = HistoryItem.objects.filter(named, entry__gt=entry).select_related("entry")
+    changed = [
+        (row, item, _shown_of(json.loads(item.changes)) or _differing(row))
+        for item in items.order_by("entry_id", "number")
+        for row in held
+        if item.table == row._meta.db_table and item.first_pk <= row.pk <= item.last_pk
+    ]
+    keys = _keys_told([(item, changes) for _, item, changes in changed])
     touched: dict[models.Model, list[Told]] = {}
-    for item in items.order_by("entry_id", "number"):
-        for row in held:
-            same_table = item.table == row._meta.db_table
-            if same_table and item.first_pk <= row.pk <= item.last_pk:
-                changes = _told(json.loads(item.changes)) or _differing(row)
-                touched.setdefault(row, []).append(_one(item, changes))
+    for row, item, changes in changed:
+        touched.setdefault(row, []).append(_one(item, changes, keys))
     return list(touched.items())
 
 
@@ -106,49 +123,49 @@ def just_done(row: models.Model) -> str:
     ).strip()
 
 
-def _one(item: HistoryItem, changes: list[str]) -> Told:
+def _one(item: HistoryItem, changes: Changes, keys: Keys) -> Told:
     return Told(
         at=item.entry.at,
         actor_name=item.entry.actor_name,
         action_words=item.entry.action_words,
-        changes=changes,
+        changes=_told(table_named(item.table), changes, keys),
         reason=item.entry.reason,
         entry=item.entry_id,
     )
 
 
-def _differing(row: models.Model) -> list[str]:
+def _differing(row: models.Model) -> Changes:
     """Of a new row: the columns in which it differs from the one it replaces."""
     before = getattr(row, "replaces", None)
     if before is None:
-        return []
+        return {}
     names = (field.attname for field in row._meta.concrete_fields)
     pairs = {
-        name: (plain(getattr(before, name)), plain(getattr(row, name)))
+        name: [plain(getattr(before, name)), plain(getattr(row, name))]
         for name in names
         if name not in TELLS_NOTHING
     }
-    return _told({name: [a, b] for name, (a, b) in pairs.items() if a != b})
+    return _shown_of({name: pair for name, pair in pairs.items() if pair[0] != pair[1]})
 
 
-def _told(changes: dict[str, list[Any]]) -> list[str]:
+def _shown_of(changes: Changes) -> Changes:
+    """The columns that a reader is told of."""
     left_out = FOLLOWS_FROM_PLACE if "place_text" in changes else frozenset()
+    return {name: pair for name, pair in changes.items() if name not in left_out}
+
+
+def _keys_told(changed: Sequence[tuple[HistoryItem, Changes]]) -> Keys:
+    return keys_told(
+        (table_named(item.table), column, value)
+        for item, changes in changed
+        for column, pair in changes.items()
+        for value in pair
+    )
+
+
+def _told(table: Table | None, changes: Changes, keys: Keys) -> list[str]:
     return [
-        _words(column, before, after)
+        f"{name_words(column)}: {value_words(table, column, before, keys)} → "
+        f"{value_words(table, column, after, keys)}"
         for column, (before, after) in changes.items()
-        if column not in left_out
     ]
-
-
-def _words(column: str, before: Any, after: Any) -> str:
-    name = column.removesuffix("_id").replace("place_text", "location")
-    name = name.replace("_", " ")
-    return f"{name}: {_shown(before)} → {_shown(after)}"
-
-
-def _shown(value: Any) -> str:
-    if value is None or value == "":
-        return "—"
-    if isinstance(value, str) and value.startswith(("0x", "-0x")):
-        return f"{float.fromhex(value):g}"
-    return str(value).replace("_", " ")

@@ -113,7 +113,7 @@ def test_a_row_that_is_never_changed_is_told_by_what_replaced_it():
     first.post(address, forms[0] | {"cycles": "6", "landings": "6"})
     told = text(second.post(address, forms[1] | {"cycles": "7", "landings": "7"}))
     assert TOLD in told
-    assert "cycles: 4 → 6" in told
+    assert "cycles: 4 FC → 6 FC" in told
     assert aircraft.usage.filter(day=day(5)).count() == 2
 
 

@@ -8,7 +8,7 @@ from django.core.management import CommandError, call_command
 from django.db import DatabaseError, connection, transaction
 
 from fleet.models import HistoryEntry, HistoryHead, HistoryItem, Organisation
-from fleet.selectors.history import _told
+from fleet.selectors.history import _shown_of
 from fleet.selectors.verify import problems
 from fleet.services.history import NESTED, Writing
 from fleet.triggers import statements
@@ -149,5 +149,5 @@ def test_a_new_location_is_told_by_its_text_alone():
         "panel_id": [None, 30],
         "surface": ["", "outer"],
     }
-    assert _told(changes) == ["location: — → STA 500+18 S-14L", "surface: — → outer"]
-    assert _told({"panel_id": [29, 30]}) == ["panel: 29 → 30"]
+    assert set(_shown_of(changes)) == {"place_text", "surface"}
+    assert set(_shown_of({"panel_id": [29, 30]})) == {"panel_id"}
