@@ -11,6 +11,7 @@ from dataclasses import dataclass, replace
 from typing import TypeVar
 
 from django.db.models import F, Q, QuerySet
+from django.db.models.functions import Coalesce, Greatest, Least
 
 from fleet.location.geometry import Section as SectionGeometry
 from fleet.location.geometry import geometry_from_toml
@@ -48,6 +49,15 @@ class Patch:
             None if s1 is None else s1 - across_mm,
             None if s2 is None else s2 + across_mm,
         )
+
+
+    def at_least(self, along_mm: float, across_mm: float) -> Patch:
+        """The patch, grown about its middle where it is smaller than that."""
+        along = max((along_mm - (self.x2_mm - self.x1_mm)) / 2, 0.0)
+        across = 0.0
+        if self.s1_mm is not None and self.s2_mm is not None:
+            across = max((across_mm - (self.s2_mm - self.s1_mm)) / 2, 0.0)
+        return self.grown(along, across)
 
 
 @dataclass(frozen=True)
@@ -114,10 +124,14 @@ def section_geometry(item: Item) -> SectionGeometry | None:
 
 
 def patch_of(item: Item) -> Patch:
-    """The extent of a placed finding or repair."""
+    """The extent of a placed finding or repair; a repair is at least as large as its
+    length and width say, about the middle of its place."""
     if item.x1_mm is None or item.x2_mm is None:
         raise ValueError(f"{item} is still to be placed; it has no extent.")
-    return Patch(item.x1_mm, item.x2_mm, item.s1_mm, item.s2_mm)
+    patch = Patch(item.x1_mm, item.x2_mm, item.s1_mm, item.s2_mm)
+    if isinstance(item, Finding):
+        return patch
+    return patch.at_least(item.length_mm or 0.0, item.width_mm or 0.0)
 
 
 def in_patch(patch: Patch, wrap_mm: float | None) -> Q:
@@ -129,15 +143,44 @@ def in_patch(patch: Patch, wrap_mm: float | None) -> Q:
     along = Q(x1_mm__gte=low - LONG_MM, x1_mm__lte=high, x2_mm__gte=low) | Q(
         x1_mm__lt=low - LONG_MM, x2_mm__gt=F("x1_mm") + LONG_MM, x2_mm__gte=low
     )
+    return along & _meets_across(patch, wrap_mm, "s1_mm", "s2_mm")
+
+
+def repairs_in_patch(
+    rows: QuerySet[Repair], patch: Patch, wrap_mm: float | None
+) -> QuerySet[Repair]:
+    """Repairs whose extent meets the patch, by place and by stated length and width."""
+    edges = {
+        name: edge(F(of), (F(f"{axis}1_mm") + F(f"{axis}2_mm") + sign * size) / 2.0)
+        for axis, size in (
+            ("x", Coalesce(F("length_mm"), 0.0)),
+            ("s", Coalesce(F("width_mm"), 0.0)),
+        )
+        for name, of, edge, sign in (
+            (f"{axis}_low", f"{axis}1_mm", Least, -1.0),
+            (f"{axis}_high", f"{axis}2_mm", Greatest, 1.0),
+        )
+    }
+    met = Q(x_low__lte=patch.x2_mm, x_high__gte=patch.x1_mm)
+    across = _meets_across(patch, wrap_mm, "s_low", "s_high")
+    return rows.alias(**edges).filter(met & across)
+
+
+def _meets_across(patch: Patch, wrap_mm: float | None, low: str, high: str) -> Q:
     if patch.s1_mm is None or patch.s2_mm is None:
-        return along
+        return Q()
     if wrap_mm is not None and patch.s2_mm - patch.s1_mm >= wrap_mm:
-        return along
+        return Q()
     across = Q(s1_mm__isnull=True)
     for turn in (-1, 0, 1) if wrap_mm else (0,):
         shift = turn * (wrap_mm or 0.0)
-        across |= Q(s1_mm__lte=patch.s2_mm + shift, s2_mm__gte=patch.s1_mm + shift)
-    return along & across
+        across |= Q(
+            **{
+                f"{low}__lte": patch.s2_mm + shift,
+                f"{high}__gte": patch.s1_mm + shift,
+            }
+        )
+    return across
 
 
 def findings_shown(rows: QuerySet[Finding]) -> QuerySet[Finding]:
@@ -166,16 +209,19 @@ def items_in(
 
     Those the user may see; without a user all of them.
     """
-    met = in_patch(patch, section.wrap_mm)
+    wrap = section.wrap_mm
 
     def of(rows: QuerySet[Row]) -> list[Row]:
-        mine = rows.filter(aircraft=aircraft, section=section).filter(met)
+        mine = rows.filter(aircraft=aircraft, section=section)
         return list(mine.select_related("aircraft", "section").order_by("x1_mm", "pk"))
 
     findings, repairs = Finding.objects.all(), Repair.objects.all()
     if user is not None:
         findings, repairs = findings.visible_to(user), repairs.visible_to(user)
-    return of(findings_shown(findings)), of(with_hiding(repairs_shown(repairs)))
+    return (
+        of(findings_shown(findings).filter(in_patch(patch, wrap))),
+        of(with_hiding(repairs_in_patch(repairs_shown(repairs), patch, wrap))),
+    )
 
 
 def _near(

@@ -199,3 +199,28 @@ def test_the_number_of_queries_does_not_grow(
         ]
         assert len(text) == 10
         assert len({item.aircraft.registration for item in found.sisters}) == 1
+
+
+def doubler(fleet, sta, bay, **changes):
+    x, s = sta * INCH, bay * BAY
+    return repair_make(
+        fleet.placing, fleet.aircraft["Q7-AAA"], x=(x, x), s=(s, s), **changes
+    )
+
+
+def test_a_repair_placed_at_a_point_reaches_as_far_as_its_size(fleet, engineer):
+    """A doubler 24 in long about STA 640 ends at STA 652, 8 in from STA 660."""
+    large = doubler(fleet, 640, 6, length_mm=24 * INCH, width_mm=4 * INCH)
+    here = dent(fleet, 660, 6)
+    (near,) = neighbours(here, user=engineer, reach_mm=10 * INCH).here
+    assert near.item.number == large.number
+    assert near.along_mm == pytest.approx(-8 * INCH)
+    (back,) = neighbours(large, user=engineer, reach_mm=10 * INCH).here
+    assert (back.item.number, back.along_mm) == (here.number, pytest.approx(8 * INCH))
+
+
+def test_two_doublers_that_overlap_are_no_distance_apart(fleet, engineer):
+    one = doubler(fleet, 640, 6, length_mm=10 * INCH)
+    doubler(fleet, 646, 6, length_mm=8 * INCH)
+    (near,) = neighbours(one, user=engineer).here
+    assert near.distance_mm == 0.0

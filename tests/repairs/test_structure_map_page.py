@@ -229,7 +229,7 @@ def test_the_number_of_queries_does_not_grow(
     aircraft = fleet.aircraft["Q7-AAA"]
 
     def counted():
-        with django_assert_max_num_queries(14) as queries:
+        with django_assert_max_num_queries(15) as queries:
             client.get(f"/types/ARD-52/FUS/map/?aircraft={aircraft.pk}")
         return len(queries)
 
