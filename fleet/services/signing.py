@@ -23,7 +23,8 @@ NO_PERSON = (
     "Your login has no person behind it, so it cannot sign; ask an administrator."
 )
 SET_UP_FIRST = (
-    "Your operator asks for a second factor before you sign: set one up under Account."
+    "Your operator asks for a second factor before you sign: set one up on your "
+    "account, the link with your roles above."
 )
 WRONG_PASSWORD = "This is not your password; nothing was signed."
 

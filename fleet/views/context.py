@@ -32,7 +32,6 @@ OFFICE = (
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),
     ("keeping", "Keeping", "/keeping/", "history_read"),
-    ("account", "Account", "/account/", ""),
 )
 
 

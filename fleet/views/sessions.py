@@ -32,7 +32,8 @@ PENDING_LASTS = dt.timedelta(minutes=5)
 METHODS = ["GET", "HEAD", "POST"]
 TOO_LATE = "Sign in again: the code was not given within five minutes."
 ADVICE = (
-    "You sign records with the password alone. Set up a second factor under Account."
+    "You sign records with the password alone. Set up a second factor on your account: "
+    "the link with your roles above."
 )
 
 sign_out = LogoutView.as_view()
