@@ -76,7 +76,7 @@ def password(request: Request) -> HttpResponse:
 @sensitive_post_parameters()
 @require_http_methods(METHODS)
 def second_factor(request: Request) -> HttpResponse:
-    """Set up a device: the key after the password, then the first code; or remove it."""
+    """Set up a device: the key after the password, the first code; or remove it."""
     if request.user.second_factor_since is not None:
         return _off(request)
     if enrolling_device(request.user) is None:
