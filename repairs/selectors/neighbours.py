@@ -50,7 +50,6 @@ class Patch:
             None if s2 is None else s2 + across_mm,
         )
 
-
     def at_least(self, along_mm: float, across_mm: float) -> Patch:
         """The patch, grown about its middle where it is smaller than that."""
         along = max((along_mm - (self.x2_mm - self.x1_mm)) / 2, 0.0)
