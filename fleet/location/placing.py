@@ -138,7 +138,7 @@ def _position(work: Work) -> Position:
         s2_mm=reach.s2_mm,
         surface=_surface(work, reach, element),
         element=element,
-        element_label=label or _label(work, element, sum(ends) / 2.0),
+        element_label=label or _label(work, element, ends),
         side=reach.side,
         bl_mm=reach.bl_mm,
         wl_mm=reach.wl_mm,
@@ -162,9 +162,11 @@ def _surface(work: Work, reach: Reach, element: str) -> str:
     return "outer" if outer else ""
 
 
-def _label(work: Work, element: str, x_mm: float) -> str:
-    """Which frame the web or cap is of."""
-    near = work.section.nearest_frame(x_mm, work.variant)
+def _label(work: Work, element: str, ends: tuple[float, float]) -> str:
+    """Which frame the web or cap is of; an extent along the section names none."""
+    if work.show(ends[1] - ends[0]) != "0":
+        return ""
+    near = work.section.nearest_frame(sum(ends) / 2.0, work.variant)
     if element.startswith("frame_") and near and work.show(near[1]) == "0":
         return f"{work.section.frame_prefix} {near[0].label}"
     return ""

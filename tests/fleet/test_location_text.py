@@ -124,6 +124,12 @@ elements = st.sampled_from(
 )  # fmt: skip
 
 
+def test_webs_over_several_frames_keep_their_extent():
+    reads_back("FRAME WEB STA 574 to 746", "base")
+    found = place(read("FRAME WEB STA 574 to 746"), GEOMETRY, "base")
+    assert found.canonical == "FRAME WEB STA 574-746"
+
+
 @settings(max_examples=400, deadline=None)
 @given(elements, stations, across, st.sampled_from(["base", "S"]))
 def test_fuselage_text_reads_back(
