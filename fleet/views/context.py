@@ -31,7 +31,6 @@ OFFICE = (
     ("adopted_list", "Adopted", "/adopted/", ""),
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),
-    ("keeping", "Keeping", "/keeping/", "history_read"),
 )
 
 
