@@ -165,7 +165,7 @@ def _keys_told(changed: Sequence[tuple[HistoryItem, Changes]]) -> Keys:
 
 def _told(table: Table | None, changes: Changes, keys: Keys) -> list[str]:
     return [
-        f"{name_words(column)}: {value_words(table, column, before, keys)} → "
+        f"{name_words(column, table)}: {value_words(table, column, before, keys)} → "
         f"{value_words(table, column, after, keys)}"
         for column, (before, after) in changes.items()
     ]

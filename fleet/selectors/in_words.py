@@ -40,31 +40,39 @@ NAMES = {
     "counters_ahead": "counters ahead of usage",
     "data_due_on": "damage-tolerance data due on",
     "element": "structural item",
-    "element_label": "its label",
+    "disposition.kind": "decision",
+    "element_label": "label of the item",
     "evidence": "evidence of release",
     "found_on": "first found on",
     "geometry": "geometry revision",
-    "interacts": "interacts",
     "inspection_required": "independent inspection required",
     "last_clean_on": "last inspected without a finding on",
+    "limit_cycles": "deferral limit in flight cycles",
+    "limit_landings": "deferral limit in landings",
+    "limit_minutes": "deferral limit in flight hours",
+    "limit_on": "deferral limit on",
     "legacy": "from before these records",
     "map_mm": "on the map axis",
     "minutes": "flight hours",
-    "place_codes": "warnings of the reader, accepted",
+    "place_codes": "accepted warnings of the reader",
     "place_entered": "location as written",
     "place_text": "location",
+    "repair.kind": "repair type",
     "replaces": "takes the place of",
     "s1_mm": "across from",
     "s2_mm": "across to",
+    "safe_life_part": "safe-life part",
     "scale": "minor or major",
     "scale_reason": "why minor or major",
+    "substantiation.aircraft": "serial number of the aircraft",
     "weight_change_g": "change of weight",
     "wl_mm": "water line",
     "worked_out": "ratio as worked out on the spot",
     "x1_mm": "along from",
     "x2_mm": "along to",
 }
-"""Where the column's own name says too little, or is not the trade's."""
+"""Where the column's own name says too little, or is not the trade's; of one table
+where it stands before the point."""
 
 ENDS = {
     "_id": "",
@@ -80,7 +88,7 @@ ENDS = {
 }
 """Ends of a column's name that are a unit or a key, and what a reader is told."""
 
-LENGTHS = {"_mm": "mm", "_mm2": "mm2", "_mpa": "mpa", "_n_per_mm": "n_per_mm"}
+UNITS = {"_mm2": "mm2", "_mpa": "mpa", "_n_per_mm": "n_per_mm"}
 COUNTERS = {
     "minutes": Counter.MINUTES,
     "cycles": Counter.CYCLES,
@@ -89,10 +97,11 @@ COUNTERS = {
 }
 
 
-def name_words(column: str) -> str:
+def name_words(column: str, table: Table | None = None) -> str:
     """A column's name without its unit and without what makes it a key."""
     bare = column.removesuffix("_id")
-    if told := NAMES.get(bare):
+    own = f"{table._meta.model_name}.{bare}" if table else bare
+    if told := NAMES.get(own, NAMES.get(bare)):
         return told
     for end, words in ENDS.items():
         if bare.endswith(end):
@@ -101,7 +110,11 @@ def name_words(column: str) -> str:
 
 
 def value_words(
-    table: Table | None, column: str, value: Any, keys: Keys = NO_KEYS
+    table: Table | None,
+    column: str,
+    value: Any,
+    keys: Keys = NO_KEYS,
+    length_unit: str = "mm",
 ) -> str:
     """A kept value with its label, its unit or the name of the record it points at."""
     if value is None or value == "":
@@ -118,16 +131,18 @@ def value_words(
         return f"{at:%Y-%m-%d %H:%M} UTC"
     if isinstance(value, str) and not value.startswith(("0x", "-0x")):
         return value
-    return _number_words(column, value)
+    return _number_words(column, value, length_unit)
 
 
-def _number_words(column: str, kept: Any) -> str:
+def _number_words(column: str, kept: Any, length_unit: str) -> str:
     """A number with its unit, which is the end of the column's name."""
     value = float.fromhex(kept) if isinstance(kept, str) else kept
     counter = COUNTERS.get(column.rpartition("_")[2])
     if counter is not None and isinstance(value, int):
         return amount_write(counter, value)
-    for end, unit in LENGTHS.items():
+    if column.endswith("_mm"):
+        return measure_write(value, length_unit)
+    for end, unit in UNITS.items():
         if column.endswith(end):
             return measure_write(value, unit)
     if column.endswith("_percent"):

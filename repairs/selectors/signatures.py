@@ -122,11 +122,6 @@ def signed_text(approval: Approval, subject: Subject, *, identity: str) -> str:
     return canonical(_content(subject, None) | {SIGNATURE: signature})
 
 
-def content_lines(content: str) -> list[tuple[str, str]]:
-    """The canonical text for reading: names and values, in its own order."""
-    return list(_flat("", json.loads(content)))
-
-
 def _verified(
     row: Approval, subject: Subject, made: dict[int | None, str]
 ) -> Signature:
@@ -226,23 +221,3 @@ def _still_open(row: object) -> frozenset[str]:
 
 def _rows(rows: object) -> list[dict[str, object]]:
     return [_columns(row) for row in rows]  # type: ignore[attr-defined]
-
-
-def _flat(name: str, value: object) -> Iterator[tuple[str, str]]:
-    if isinstance(value, dict):
-        for key, inner in value.items():
-            yield from _flat(f"{name} {key}".strip(), inner)
-    elif isinstance(value, list):
-        for number, inner in enumerate(value, 1):
-            yield from _flat(f"{name} {number}", inner)
-    else:
-        words = name.replace("_id", "").replace("_", " ").removeprefix("record ")
-        yield words, "—" if value in (None, "") else _told(value)
-
-
-def _told(value: object) -> str:
-    """Floats are kept to the last digit as hexadecimal; a reader sees the number."""
-    text = str(value)
-    if text.startswith(("0x", "-0x")) and "p" in text:
-        return f"{float.fromhex(text):g}"
-    return text

@@ -25,13 +25,11 @@ from repairs.models import (
     Repair,
     Substantiation,
 )
-from repairs.selectors.signatures import (
-    Subject,
-    approvals_verified,
-    content_lines,
-    content_of,
-)
+from repairs.selectors.evaluation_shown import evaluation_shown
+from repairs.selectors.signatures import Subject, approvals_verified, content_of
+from repairs.selectors.signed_words import content_in_words
 from repairs.services.approvals import Signed, aircraft_of, approval_sign
+from repairs.services.evaluations import method_versions
 from repairs.services.substantiation_signing import MEANINGS as SUBSTANTIATION_MEANINGS
 
 SUBJECTS: dict[str, type[Any]] = {
@@ -55,7 +53,7 @@ METHODS = ["GET", "HEAD", "POST"]
 
 @require_http_methods(METHODS)
 def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
-    """The canonical text as it will be bound, and the form to sign it."""
+    """What is signed in words and as the exact text bound, and the form to sign it."""
     rows = SUBJECTS[what].objects.select_related("operator", "entered_by")
     subject: Any = visible_or_404(rows, request.user, pk=pk)
     require(request.user, "approval_sign", aircraft_of(subject).operator_id)
@@ -73,15 +71,24 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         meaning = made.get_meaning_display()
         messages.success(request, SIGNED.format(number=subject, meaning=meaning))
         return redirect(what, pk)
-    context = {
+    context = {"what": what, "form": form, **_to_read(subject, content)}
+    return render(request, "repairs/approval_new.html", context)
+
+
+def _to_read(subject: Subject, content: str) -> dict[str, Any]:
+    """What is signed: in words, an evaluation by its results and note; then exactly."""
+    aircraft = aircraft_of(subject)
+    read: dict[str, Any] = {
         "subject": subject,
-        "what": what,
-        "form": form,
-        "lines": content_lines(content),
+        "aircraft": aircraft,
+        "content": content,
         "digest": digest(content),
         "approvals": approvals_verified(subject),
     }
-    return render(request, "repairs/approval_new.html", context)
+    if isinstance(subject, Evaluation):
+        return read | {"shown": evaluation_shown(subject, method_versions())}
+    unit = aircraft.variant.aircraft_type.entry_unit
+    return read | {"parts": content_in_words(subject, content, unit)}
 
 
 def _sign(request: Request, subject: Subject, form: SignForm, proof: Proof) -> Approval:
