@@ -28,6 +28,7 @@ from fleet.models import Aircraft, PartInstallation, Policy, SafeLifePart, User
 from fleet.selectors.counters import AircraftStanding, aircraft_standings
 from fleet.selectors.known import changed_after
 from fleet.selectors.parts import GONE, PartLife, part_lives
+from fleet.selectors.policies import policy_words
 from fleet.selectors.validity import validity_of
 from repairs.models import DueKind, DuePoint, EventPhase
 from repairs.selectors.due_items import (
@@ -303,10 +304,4 @@ def _policies(fleet: Sequence[Aircraft], as_of: date) -> tuple[str, ...]:
         effective_from__lte=as_of,
         replaced_by__isnull=True,
     )
-    return tuple(map(_edition, rows))
-
-
-def _edition(row: Policy) -> str:
-    what = f"{row.key.replace('_', ' ')} {row.value} {row.get_unit_display()}"
-    source = " ".join(filter(None, (row.source, row.edition)))
-    return f"{what}: {source}, from {row.effective_from}"
+    return tuple(map(policy_words, rows))

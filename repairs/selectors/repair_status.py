@@ -19,6 +19,7 @@ from django.db.models import Q
 from fleet.canonical import canonical, digest
 from fleet.models import Aircraft, Policy, User
 from fleet.selectors.people import policy
+from fleet.selectors.policies import policy_number, policy_source, rule_words
 from repairs.models import DuePoint, Repair
 from repairs.selectors.hidden import with_hiding
 from repairs.selectors.repair_files import repair_files
@@ -68,7 +69,7 @@ class Status:
             ("aircraft", f"{self.aircraft} msn {self.aircraft.serial_number}"),
             ("as of", self.as_of.isoformat()),
             ("known at", self.known_at.isoformat(timespec="seconds")),
-            *((f"policy {key}", _edition(row)) for key, row in self.policies),
+            *((rule_words(key), _edition(row)) for key, row in self.policies),
             ("rows", str(len(self.rows))),
             ("digest of the rows (SHA-256)", self.digest),
         ]
@@ -143,8 +144,7 @@ def _points(repairs: Sequence[Repair], as_of: dt.date) -> dict[int, list[DuePoin
 def _edition(row: Policy | None) -> str:
     if row is None:
         return NO_POLICY
-    parts = (f"{row.value} {row.unit}", row.source, row.edition)
-    return ", ".join(part for part in parts if part)
+    return f"{policy_number(row)}: {policy_source(row)}"
 
 
 def _name(header: str) -> str:

@@ -310,7 +310,7 @@ def test_the_status_prints_its_policies_and_keeps_planned_repairs_apart(
     assert [row.repair.state for row in status.rows] == ["embodied"]
     assert planned.number in shown.content.decode()
     facts = dict(status.facts())
-    assert facts["policy stage_2_months"] == "not recorded"
+    assert facts["stage 2 of a repair's approval within"] == "not recorded"
     assert set(facts) >= {"as of", "known at", "digest of the rows (SHA-256)"}
     assert planned.number in engineer.get(reverse("repair_list")).content.decode()
 
