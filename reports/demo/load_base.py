@@ -38,7 +38,7 @@ from reports.demo.people import (
     SECOND_OPERATOR,
 )
 from reports.demo.policies import EUROPE, POLICIES
-from reports.demo.timeline import Rank, Step, quarter_after
+from reports.demo.timeline import Rank, Step, month_after
 from reports.demo.usage import Logbook, UsageDay
 
 BEGAN = dt.datetime(2019, 1, 1, 5, 0, tzinfo=dt.UTC)
@@ -165,7 +165,7 @@ def type_load(loaded: Loaded) -> dict[str, Variant]:
 def fleet_steps(
     loaded: Loaded, variants: dict[str, Variant], books: dict[int, Logbook]
 ) -> Iterator[Step]:
-    """Aircraft joining, their states and leaving, and the log quarter by quarter."""
+    """Aircraft joining, their states and leaving, and the log month by month."""
     for plan in FLEET:
         mark, joined = plan.registration, plan.joined_on
         add = partial(_aircraft_add, loaded, plan, variants[plan.variant])
@@ -175,8 +175,8 @@ def fleet_steps(
             change = partial(_state_set, loaded, plan, span)
             yield Step(span.begin, Rank.STATE, mark, change)
         days = books[plan.msn].days
-        for _, quarter in groupby(days, key=lambda day: quarter_after(day.day)):
-            lines = list(quarter)
+        for _, month in groupby(days, key=lambda day: month_after(day.day)):
+            lines = list(month)
             log = partial(_usage_import, loaded, plan, lines)
             yield Step(lines[-1].day, Rank.USAGE, mark, log)
         if plan.left_on is not None:

@@ -30,7 +30,7 @@ from reports.demo.records import (
     DemoRepair,
     Scenario,
 )
-from reports.demo.timeline import Rank, Step, quarter_after
+from reports.demo.timeline import Rank, Step, month_after
 
 
 def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
@@ -39,7 +39,7 @@ def decision_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
     ordered = sorted(scenario.dispositions, key=lambda d: (d.msn, d.decided_on, d.key))
 
     def papers(decision: DemoDisposition) -> tuple[int, dt.date]:
-        return decision.msn, quarter_after(decision.decided_on)
+        return decision.msn, month_after(decision.decided_on)
 
     for (msn, _), group in groupby(ordered, key=papers):
         decisions = list(group)

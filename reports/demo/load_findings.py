@@ -20,7 +20,7 @@ from reports.demo.load_base import Loaded
 from reports.demo.load_parts import amounts
 from reports.demo.load_reports import event_report
 from reports.demo.records import DemoEvent, DemoFinding, Dimension, Scenario, Truth
-from reports.demo.timeline import Rank, Step, quarter_after
+from reports.demo.timeline import Rank, Step, month_after
 from reports.demo.usage import Logbook
 
 COUNTERS_SOURCE = "technical log page of the day"
@@ -36,7 +36,7 @@ def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
         yield Step(
             event.happened_on, Rank.EVENT, event.key, partial(_event, loaded, event)
         )
-    for (msn, _), found in _by_quarter(scenario.findings):
+    for (msn, _), found in _by_month(scenario.findings):
         record = partial(_record_all, loaded, found, scenario.logbooks[msn])
         yield Step(found[-1].found_on, Rank.FINDING, str(msn), record)
     answered = {key: r.released_on for r in scenario.repairs for key in r.findings}
@@ -48,13 +48,13 @@ def finding_steps(loaded: Loaded, scenario: Scenario) -> Iterator[Step]:
             yield Step(on, Rank.MEASUREMENT, finding.key, measure)
 
 
-def _by_quarter(
+def _by_month(
     findings: list[DemoFinding],
 ) -> list[tuple[tuple[int, dt.date], list[DemoFinding]]]:
-    """Findings of one aircraft and quarter together, as their papers come in."""
+    """Findings of one aircraft and month together, as their papers come in."""
 
     def papers(finding: DemoFinding) -> tuple[int, dt.date]:
-        return finding.msn, quarter_after(finding.found_on)
+        return finding.msn, month_after(finding.found_on)
 
     ordered = sorted(findings, key=lambda f: (f.msn, f.found_on, f.key))
     return [(key, list(group)) for key, group in groupby(ordered, key=papers)]

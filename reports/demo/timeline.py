@@ -14,7 +14,7 @@ Act = Callable[[dt.datetime], None]
 
 
 class Rank(IntEnum):
-    """The order of one quarter's papers on the desk."""
+    """The order of one month's papers on the desk."""
 
     AIRCRAFT = 0
     STATE = 1
@@ -50,18 +50,18 @@ class Step:
 
     @property
     def entered_on(self) -> dt.date:
-        """With the quarter's papers, on the first day after it; never after today.
+        """With the month's papers, on the first day after it; never after today.
 
         Records older than the data are entered on the day the aircraft joins.
         """
         if self.day < self.joined_on:
             return self.joined_on
-        return min(quarter_after(self.day), DEMO_TODAY)
+        return min(month_after(self.day), DEMO_TODAY)
 
 
-def quarter_after(day: dt.date) -> dt.date:
-    """The first day of the quarter after this day's."""
-    year, month0 = divmod(day.year * 12 + (day.month + 2) // 3 * 3, 12)
+def month_after(day: dt.date) -> dt.date:
+    """The first day of the month after this day's."""
+    year, month0 = divmod(day.year * 12 + day.month, 12)
     return dt.date(year, month0 + 1, 1)
 
 
