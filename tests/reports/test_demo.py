@@ -30,6 +30,8 @@ from repairs.models import (
     Repair,
 )
 from repairs.selectors.duplicates import duplicate_candidates
+from repairs.selectors.signatures import approvals_verified
+from repairs.selectors.substantiation_stages import stage_reached
 from repairs.services.authority import CERTIFIERS, authorised
 from reports.demo.fleet import DEMO_TODAY, FLEET
 from reports.demo.load_base import Loaded
@@ -285,6 +287,15 @@ class TestRepairCases:
         (row,) = demo.rows_of("repair", repair.pk)
         assert row.item.kind == "stage_clock"
         assert remaining(row) == 31
+
+    def test_the_folder_behind_the_clock_is_approved_to_stage_1(
+        self, demo: Demo
+    ) -> None:
+        repair = demo.repair("stage_clock_eleven_months")
+        folder = repair.substantiation
+        assert folder is not None
+        assert (stage_reached(folder), repair.stage_reached) == (1, "1")
+        assert all(one.agrees for one in approvals_verified(folder))
 
     def test_damage_under_a_doubler_is_not_shown_removed(self, demo: Demo) -> None:
         repair = demo.repair("damage_hidden_under_doubler")
