@@ -50,6 +50,7 @@ class Sent:
     marker: str
     body: bytes
     led_to: str = ""
+    asked: bool = False
 
 
 @dataclass
@@ -162,7 +163,7 @@ class Run:
         self.tally.recorded_again += len(
             [sent for sent in again if sent.led_to and sent not in before]
         )
-        lost = [sent for sent in again if not sent.led_to]
+        lost = [sent for sent in again if not (sent.led_to or sent.asked)]
         ended, sent_forms = threading.Event(), list[Sent]()
         people = [
             threading.Thread(target=self._person, args=(ended, sent_forms))
@@ -178,7 +179,7 @@ class Run:
         for person in people:
             person.join()
         self._look([sent for sent in sent_forms if sent.led_to])
-        unanswered = [sent for sent in sent_forms if not sent.led_to]
+        unanswered = [s for s in sent_forms if not (s.led_to or s.asked)]
         self.tally.unanswered += len(unanswered)
         return unanswered + lost
 
@@ -260,6 +261,7 @@ class Run:
         if answer.status == 302:
             sent.led_to = answer.headers["Location"]
         elif KNOWN in page:
+            sent.asked = True
             self.tally.asked += 1
         elif answer.status < 500:
             told = re.findall(r'class="errorlist[^>]*>(.*?)</ul>', page, re.S)
