@@ -6,7 +6,7 @@ import datetime as dt
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
-from django.db.models import Min, Q
+from django.db.models import F, Min, Q, QuerySet
 from django.db.models.functions import Coalesce
 
 from fleet.models import Operator, User
@@ -66,16 +66,23 @@ def repair_late_words(repair: Repair) -> str:
 def accomplishments_late(
     operator: Operator, rows: Iterable[Accomplishment], *, as_of: dt.date
 ) -> set[int]:
-    """Keys of the inspections that were entered late; one query."""
+    """Keys of the inspections that were entered late; two queries."""
     row = policy(operator, DAYS, as_of)
     if row is None:
         return set()
-    return {
+    late = [
         one.pk
         for one in rows
         if one.replaces_id is None
         and (one.entered_at.date() - one.done_on).days > row.value
-    }
+    ]
+    return set(_in_our_time(Accomplishment.objects.filter(pk__in=late)))
+
+
+def _in_our_time(rows: QuerySet[Accomplishment]) -> QuerySet[Accomplishment, int]:
+    """Keys without those done before the aircraft's records here begin."""
+    before = Q(done_on__lt=F("subject__aircraft__data_from"))
+    return rows.exclude(before).values_list("pk", flat=True)
 
 
 def late_entries(user: User, *, as_of: dt.date) -> list[Late]:
@@ -121,6 +128,6 @@ def _accomplishments(user: User) -> Iterator[Row]:
         "subject__aircraft__registration", "subject__requirement", "done_on",
         "entered_at",
     )  # fmt: skip
-    first = rows.filter(replaces__isnull=True)
+    first = rows.filter(replaces__isnull=True, pk__in=_in_our_time(rows))
     for operator, number, mark, key, on, at in first.values_list(*columns):
         yield operator, number, mark or "in store", ("requirement", key), on, at

@@ -12,11 +12,19 @@ import datetime as dt
 import pytest
 from django.urls import reverse
 
-from repairs.models import Repair
+from fleet.due import Counters
+from fleet.models import Document
+from fleet.services.documents import document_get_or_create
+from fleet.services.history import Writing
+from repairs.models import Accomplishment, Repair
 from repairs.selectors.late_entries import late_entries, repair_late_words
-from tests.factories import NOW, TODAY
+from repairs.services.accomplishments import accomplishment_record
+from repairs.services.inspections import requirement_raise
+from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from tests.factories import NOW, TODAY, program
 from tests.finding_rows import clock, repaired
 from tests.queries import assert_same_queries
+from tests.record_rows import FIRST
 
 pytestmark = pytest.mark.django_db
 
@@ -63,6 +71,54 @@ def test_without_a_number_on_record_the_days_are_still_said(world):
 def test_a_repair_from_before_our_records_is_not_late(world, policy):
     repair = released(world, 3_000, legacy=True, evidence="seen")
     assert repair_late_words(repair) == ""
+    assert counted(world) == []
+
+
+def inspected(world, on: dt.date) -> Accomplishment:
+    """A programme inspection done on that day, entered now."""
+    requirement = requirement_raise(
+        draft=RequirementDraft(
+            operator=world.operator,
+            title="Look at the keel",
+            requirement_class="programme",
+            area="keel",
+            criteria="no crack",
+            method="detailed_visual",
+            effective_on=FIRST - dt.timedelta(days=90),
+            limits=(LimitEntry("threshold", "10,100 FC", base="new"),),
+            aircraft=(world.aircraft,),
+            source_document=document(world),
+        ),
+        actor=world.engineer,
+        at=NOW,
+    )
+    return accomplishment_record(
+        subject=requirement.subjects.get(),
+        done_on=on,
+        counters=Counters(604_000, 10_080, 10_080),
+        result="no_finding",
+        proof=program(world.certifier),
+        actor=None,
+        at=NOW,
+        today=TODAY,
+    ).row
+
+
+def document(world) -> Document:
+    with Writing(actor=None, action="document_record", at=NOW) as w:
+        return document_get_or_create(
+            w, operator=world.operator, kind="programme", reference="AMP-1"
+        )
+
+
+def test_an_inspection_counts_from_the_day_it_was_done(world, policy):
+    assert dt.timedelta(days=31) == TODAY - FIRST
+    row = inspected(world, FIRST)
+    assert counted(world) == [row.subject.requirement.number]
+
+
+def test_an_inspection_from_before_our_records_is_not_late(world, policy):
+    inspected(world, FIRST - dt.timedelta(days=30))
     assert counted(world) == []
 
 
