@@ -11,6 +11,7 @@ from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from typing import Any
 
+from fleet.canonical import digest
 from fleet.selectors.history import FOLLOWS_FROM_PLACE
 from fleet.selectors.in_words import (
     NOTHING,
@@ -21,8 +22,17 @@ from fleet.selectors.in_words import (
     value_words,
 )
 from repairs.measurements import DIMENSIONS
-from repairs.models import Disposition, Finding, MeasuredValue
+from repairs.models import (
+    Disposition,
+    Finding,
+    MeasuredValue,
+    Repair,
+    Substantiation,
+)
 from repairs.selectors.signatures import ROWS_OF, SUBJECT_COLUMN, Subject
+
+Worded = Disposition | Repair | Finding | Substantiation
+"""What is told line by line; an evaluation is told by its results and its note."""
 
 TITLES = {
     "record": "Record",
@@ -153,6 +163,13 @@ class _Reader:
         if row["uncertainty"] is not None:
             told += f" ± {self.words(None, quantity, row['uncertainty'])}"
         return label, f"{told}, entered as {row['entered']}" if row["entered"] else told
+
+
+def to_sign(subject: Worded, content: str) -> dict[str, Any]:
+    """What `fleet/_to_sign.html` shows: the words, the exact text, and its digest."""
+    unit = subject.aircraft.variant.aircraft_type.entry_unit
+    parts = content_in_words(subject, content, unit)
+    return {"parts": parts, "content": content, "digest": digest(content)}
 
 
 def content_in_words(subject: Subject, content: str, length_unit: str) -> list[Part]:

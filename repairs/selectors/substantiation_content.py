@@ -11,13 +11,13 @@ from typing import Any
 
 from django.db.models import QuerySet
 
-from fleet.amounts import amount_write
 from fleet.canonical import plain
-from fleet.due import Counter
+from fleet.selectors.in_words import NOTHING, Table, name_words, value_words
 from repairs.models import (
     Substantiation,
     SubstantiationCase,
     SubstantiationDocument,
+    SubstantiationEffect,
     SubstantiationNeighbour,
 )
 
@@ -27,7 +27,6 @@ SAID_IN_WORDS = frozenset(
 NOT_COMPARED = frozenset(
     ("revision", "revision_reason", "replaces_id", "entered_at", "entered_by")
 )
-UNSTATED = "—"
 ROW_KEYS = {
     "neighbours": ("neighbour",),
     "cases": ("kind", "number"),
@@ -35,6 +34,12 @@ ROW_KEYS = {
     "documents": ("document", "page"),
 }
 """What a row is about, by which two revisions are held side by side."""
+TABLES: dict[str, Table] = {
+    "neighbours": SubstantiationNeighbour,
+    "cases": SubstantiationCase,
+    "effects": SubstantiationEffect,
+    "documents": SubstantiationDocument,
+}
 
 
 def substantiation_content(row: Substantiation) -> dict[str, Any]:
@@ -143,7 +148,11 @@ def differences(earlier: Substantiation, later: Substantiation) -> list[Differen
     """What the later revision changed, added and left out."""
     one, two = substantiation_content(earlier), substantiation_content(later)
     found = [
-        Difference(words_of(name), shown(name, value), shown(name, two["record"][name]))
+        Difference(
+            name_words(name, Substantiation),
+            value_words(Substantiation, name, value),
+            value_words(Substantiation, name, two["record"][name]),
+        )
         for name, value in one["record"].items()
         if name not in NOT_COMPARED and value != two["record"][name]
     ]
@@ -165,33 +174,14 @@ def _rows_compared(part: str, one: list[Any], two: list[Any]) -> list[Difference
 def _told(part: str, rows: list[Any]) -> dict[str, str]:
     if part == "findings":
         return dict.fromkeys(rows, "covered")
-    keys = ROW_KEYS[part]
+    keys, table = ROW_KEYS[part], TABLES[part]
     told = {}
     for row in rows:
         rest = [
-            shown(name, value)
+            value_words(table, name, value)
             for name, value in row.items()
             if name not in keys and not name.endswith(("digest", "sha256"))
         ]
-        name = " ".join(shown("kind", row[key]) for key in keys if row[key])
-        told[name] = ", ".join(words for words in rest if words != UNSTATED)
+        name = " ".join(value_words(table, key, row[key]) for key in keys if row[key])
+        told[name] = ", ".join(words for words in rest if words != NOTHING)
     return told
-
-
-def words_of(name: str) -> str:
-    return name.removesuffix("_mm").replace("_", " ")
-
-
-def shown(name: str, value: Any) -> str:
-    """A value of the content as a reader reads it."""
-    if value in (None, ""):
-        return UNSTATED
-    if name.endswith("_minutes"):
-        return amount_write(Counter.MINUTES, value)
-    if name.endswith("_cycles"):
-        return amount_write(Counter.CYCLES, value)
-    if name == "gap_mm":
-        return f"{float.fromhex(value):.1f} mm"
-    if isinstance(value, str) and value.startswith(("0x", "-0x")):
-        return f"{float.fromhex(value):g}"
-    return str(value).replace("_", " ") if name in ("answer", "kind") else str(value)

@@ -27,7 +27,7 @@ from repairs.models import (
 )
 from repairs.selectors.evaluation_shown import evaluation_shown
 from repairs.selectors.signatures import Subject, approvals_verified, content_of
-from repairs.selectors.signed_words import content_in_words
+from repairs.selectors.signed_words import to_sign
 from repairs.services.approvals import Signed, aircraft_of, approval_sign
 from repairs.services.evaluations import method_versions
 from repairs.services.substantiation_signing import MEANINGS as SUBSTANTIATION_MEANINGS
@@ -75,20 +75,17 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
     return render(request, "repairs/approval_new.html", context)
 
 
-def _to_read(subject: Subject, content: str) -> dict[str, Any]:
+def _to_read(subject: Any, content: str) -> dict[str, Any]:
     """What is signed: in words, an evaluation by its results and note; then exactly."""
-    aircraft = aircraft_of(subject)
     read: dict[str, Any] = {
         "subject": subject,
-        "aircraft": aircraft,
-        "content": content,
-        "digest": digest(content),
+        "aircraft": aircraft_of(subject),
         "approvals": approvals_verified(subject),
     }
     if isinstance(subject, Evaluation):
-        return read | {"shown": evaluation_shown(subject, method_versions())}
-    unit = aircraft.variant.aircraft_type.entry_unit
-    return read | {"parts": content_in_words(subject, content, unit)}
+        shown = evaluation_shown(subject, method_versions())
+        return read | {"content": content, "digest": digest(content), "shown": shown}
+    return read | to_sign(subject, content)
 
 
 def _sign(request: Request, subject: Subject, form: SignForm, proof: Proof) -> Approval:

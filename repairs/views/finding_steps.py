@@ -33,6 +33,8 @@ from repairs.models import Finding, FindingQuestion
 from repairs.selectors.choices import people_at
 from repairs.selectors.findings import earlier_findings, finding_whole
 from repairs.selectors.report_triggers import reports_undecided
+from repairs.selectors.signatures import content_of
+from repairs.selectors.signed_words import to_sign
 from repairs.services.assessing import (
     finding_assess,
     finding_close,
@@ -137,7 +139,8 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
         )
 
     send = partial(sent_signed, request)
-    return _page(request, row, [form], save, "Assess", "Assessed", send=send)
+    read = to_sign(row, content_of(row))
+    return _page(request, row, [form], save, "Assess", "Assessed", send=send, read=read)
 
 
 @require_http_methods(METHODS)
@@ -170,7 +173,8 @@ def finding_close_page(request: Request, pk: int) -> HttpResponse:
         )
 
     send = partial(sent_signed, request)
-    return _page(request, row, [form], save, "Close", "Closed", send=send)
+    read = to_sign(row, content_of(row))
+    return _page(request, row, [form], save, "Close", "Closed", send=send, read=read)
 
 
 @require_http_methods(METHODS)
@@ -290,6 +294,7 @@ def _page(
     *,
     send: Callable[..., Any] = sent,
     placed: Placed | None = None,
+    read: dict[str, Any] | None = None,
     adds: bool = False,
 ) -> HttpResponse:
     """Save and go back to the finding, or the page with what is in the way."""
@@ -305,5 +310,6 @@ def _page(
         "heading": heading,
         "action": action,
         "placed": placed,
+        **(read or {}),
     }
     return render(request, "repairs/finding_form.html", context)

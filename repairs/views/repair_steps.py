@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from functools import partial
+from typing import Any
 
 from django.contrib import messages
 from django.core.exceptions import ValidationError
@@ -30,6 +31,8 @@ from repairs.models import Approval, Repair
 from repairs.selectors.choices import people_at
 from repairs.selectors.repair_inspections import open_rejections, steps_open
 from repairs.selectors.repairs import repair_whole
+from repairs.selectors.signatures import content_of
+from repairs.selectors.signed_words import to_sign
 from repairs.services.photographs import Photo, photographs_add
 from repairs.services.repair_category import NewCategory, repair_reclassify
 from repairs.services.repair_ends import repair_cancel, repair_remove
@@ -135,7 +138,8 @@ def repair_inspect_page(request: Request, pk: int) -> HttpResponse:
 
     if sent_signed(request, form, save, about=[row]):
         return _saved(request, row)
-    return _form(request, row, [form], "Inspection")
+    read = to_sign(row, content_of(row))
+    return _form(request, row, [form], "Inspection", read)
 
 
 @require_http_methods(METHODS)
@@ -214,7 +218,11 @@ def _saved(request: Request, row: Repair) -> HttpResponse:
 
 
 def _form(
-    request: Request, row: Repair, forms: list[Form], heading: str
+    request: Request,
+    row: Repair,
+    forms: list[Form],
+    heading: str,
+    read: dict[str, Any] | None = None,
 ) -> HttpResponse:
-    context = {"repair": row, "forms": forms, "heading": heading}
+    context = {"repair": row, "forms": forms, "heading": heading, **(read or {})}
     return render(request, "repairs/repair_form.html", context)

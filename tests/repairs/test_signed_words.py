@@ -20,7 +20,7 @@ from repairs.selectors.signed_words import LEFT_OUT, TITLES, content_in_words
 from tests.factories import FIXTURES, NOW, TODAY
 from tests.folder_rows import folders_make
 from tests.record_rows import found
-from tests.repair_rows import record
+from tests.repair_rows import plan, record
 from tests.repairs.test_dispositions import decide
 from tests.repairs.test_evaluations import cracked
 
@@ -186,3 +186,19 @@ def test_more_rows_cost_no_more_queries(world, django_assert_max_num_queries, wh
     with django_assert_max_num_queries(12) as after:
         content_in_words(subject, json.dumps(grown), "in")
     assert len(after) == len(before)
+
+
+@pytest.mark.parametrize(
+    ("address", "made"),
+    [
+        ("finding_assess", found),
+        ("finding_close", found),
+        ("repair_inspect", plan),
+    ],
+)
+def test_a_record_is_read_above_each_form_that_signs_it(client, world, address, made):
+    subject = made(world)
+    client.force_login(world.engineer)
+    page = client.get(reverse(address, args=[subject.pk])).content.decode()
+    assert exact_text(page) == content_of(subject)
+    assert page.index("<details>") < page.index('name="password"')

@@ -233,7 +233,8 @@ def test_a_signed_one_offers_a_revision_and_shows_what_it_changed(engineer, fold
     columns = FOLDER | {"category": "c", "prepared_by": folder.prepared_by_id}
     post(engineer, "substantiation_edit", later.pk, **columns)
     page = text_of(engineer, "substantiation", later.pk)
-    assert "Changed since S-0001" in page
+    changed = page[page.index("Changed since S-0001") :].partition("</section>")[0]
+    assert "C, time-limited" in changed
     assert "category after the letter" in page
     assert "a later revision is" in text_of(engineer, "substantiation", folder.pk)
 

@@ -94,6 +94,16 @@ def test_a_folder_covers_a_finding_or_belongs_to_a_repair(folders):
         folders.draft(findings=[])
 
 
+def test_one_without_finding_and_repair_is_not_signed_as_prepared(folders, by):
+    """14 CFR 26.41 asks for the evaluation of the repair and of the structure that it
+    affects; here is neither."""
+    folder = folders.ready()
+    substantiation_row_withdraw(row=folder.finding_rows.get(), **by)
+    assert "covers no finding and no repair uses it" in refused(
+        folders, folder, "prepared"
+    )
+
+
 def test_everything_that_stands_against_a_draft_is_said_at_once(folders, world):
     entry = FolderEntry(
         "No limits said",
