@@ -72,9 +72,7 @@ urlpatterns = [
     path("late/", late_entries.late_list, name="late_list"),
     path("reports/", reports.report_list, name="report_list"),
     path("reports/<int:pk>/", reports.report, name="report"),
-    path(
-        "reports/<int:pk>/decide/", reports.report_decide_page, name="report_decide"
-    ),
+    path("reports/<int:pk>/decide/", reports.report_decide_page, name="report_decide"),
     path("reports/<int:pk>/send/", reports.report_send_page, name="report_send"),
     path(
         "reports/<int:pk>/supplement/",
