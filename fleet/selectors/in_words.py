@@ -37,6 +37,7 @@ NAMES = {
     "bl_mm": "butt line",
     "clad_mm": "cladding",
     "cluster_count": "number of damages",
+    "covers": "hides it from sight",
     "counters_ahead": "counters ahead of usage",
     "data_due_on": "damage-tolerance data due on",
     "element": "structural item",
@@ -64,7 +65,10 @@ NAMES = {
     "safe_life_part": "safe-life part",
     "scale": "minor or major",
     "scale_reason": "why minor or major",
+    "stage_reached": "approval stage reached",
     "substantiation.aircraft": "serial number of the aircraft",
+    "substantiationcase.kind": "strength or life",
+    "touches": "what it touches",
     "weight_change_g": "change of weight",
     "wl_mm": "water line",
     "worked_out": "ratio as worked out on the spot",
@@ -81,12 +85,13 @@ ENDS = {
     "_mpa": "",
     "_g": "",
     "_n_per_mm": "",
+    "_entered": " as written",
     "_minutes": " in flight hours",
     "_cycles": " in flight cycles",
     "_landings": " in landings",
     "_pressurisations": " in pressurisation cycles",
 }
-"""Ends of a column's name that are a unit or a key, and what a reader is told."""
+"""Ends of a column's name, and what a reader is told instead."""
 
 UNITS = {"_mm2": "mm2", "_mpa": "mpa", "_n_per_mm": "n_per_mm"}
 COUNTERS = {
