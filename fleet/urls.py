@@ -23,6 +23,11 @@ urlpatterns = [
     path(
         "sign-in/code/", login_not_required(sessions.sign_in_code), name="sign_in_code"
     ),
+    path(
+        "sign-in/new-password/<int:pk>/<str:token>/",
+        login_not_required(sessions.password_new),
+        name="password_new",
+    ),
     path("sign-out/", sessions.sign_out, name="sign_out"),
     path("account/", account.account, name="account"),
     path("account/password/", account.password, name="password"),
@@ -31,6 +36,9 @@ urlpatterns = [
         "people/roles/<int:pk>/second-factor/",
         account.second_factor_lost,
         name="second_factor_reset",
+    ),
+    path(
+        "people/roles/<int:pk>/password/", account.password_lost, name="password_reset"
     ),
     path(
         "people/roles/<int:pk>/let-in/", account.sign_in_unlock, name="sign_in_unlock"

@@ -92,10 +92,12 @@ def of_type(**more: str) -> Keys:
 PAGES: dict[str, Page] = {
     "sign_in": Page(PUBLIC),
     "sign_in_code": Page(PUBLIC),
+    "password_new": Page(PUBLIC),
     "account": Page(),
     "password": Page(FORM),
     "second_factor": Page(FORM),
     "second_factor_reset": Page(FORM, "people_change", key("membership")),
+    "password_reset": Page(FORM, "people_change", key("membership")),
     "sign_in_unlock": Page(FORM, "people_change", key("membership")),
     "sign_out": Page(SEND),
     "overview": Page(),

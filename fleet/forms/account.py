@@ -23,8 +23,8 @@ class CodeForm(forms.Form):
     code = code_field()
 
 
-class PasswordChangeForm(IdentityForm):
-    """A new password, typed twice; one's own comes first."""
+class NewPasswordForm(forms.Form):
+    """A new password, typed twice."""
 
     new = forms.CharField(
         label="new password",
@@ -37,18 +37,14 @@ class PasswordChangeForm(IdentityForm):
         strip=False,
         widget=forms.PasswordInput(attrs={"autocomplete": "new-password"}),
     )
-    field_order = ("password", "code", "new", "again")
 
     def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
-        super().__init__(*args, user=user, **kwargs)
+        super().__init__(*args, **kwargs)
         self.user = user
-        self.order_fields(self.field_order)
 
     def clean_new(self) -> str:
         new: str = self.cleaned_data["new"]
         validate_password(new, self.user)
-        if new == self.cleaned_data.get("password"):
-            raise forms.ValidationError(AS_BEFORE)
         return new
 
     def clean_again(self) -> str:
@@ -58,6 +54,23 @@ class PasswordChangeForm(IdentityForm):
         return again
 
 
+class PasswordChangeForm(NewPasswordForm, IdentityForm):
+    """The same for one's own login; the password that one has comes first."""
+
+    field_order = ("password", "code", "new", "again")
+
+    def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
+        IdentityForm.__init__(self, *args, user=user, **kwargs)
+        self.user = user
+        self.order_fields(self.field_order)
+
+    def clean_new(self) -> str:
+        new = super().clean_new()
+        if new == self.cleaned_data.get("password"):
+            raise forms.ValidationError(AS_BEFORE)
+        return new
+
+
 class BeginForm(forms.Form):
     """One's password, before a key is shown."""
 
@@ -65,7 +78,7 @@ class BeginForm(forms.Form):
 
 
 class ResetForm(forms.Form):
-    """Why a second factor is taken off for somebody."""
+    """Why a second factor or a password is taken off for somebody."""
 
     reason = forms.CharField(
         widget=forms.Textarea(attrs={"rows": 3}),

@@ -185,6 +185,8 @@ AUTH_PASSWORD_VALIDATORS = [
         "NumericPasswordValidator",
     )
 ]
+LINK_HOURS = 4  # how long the link to a new password holds
+PASSWORD_RESET_TIMEOUT = LINK_HOURS * 3600
 LOGIN_URL = "sign_in"
 LOGIN_REDIRECT_URL = "overview"
 LOGOUT_REDIRECT_URL = "sign_in"

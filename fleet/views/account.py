@@ -5,10 +5,13 @@ from __future__ import annotations
 from base64 import b32encode
 
 import segno
+from django.conf import settings
 from django.contrib import messages
 from django.contrib.auth import update_session_auth_hash
 from django.http import HttpResponse
 from django.shortcuts import redirect, render
+from django.urls import reverse
+from django.views.decorators.cache import never_cache
 from django.views.decorators.debug import sensitive_post_parameters
 from django.views.decorators.http import require_http_methods, require_safe
 
@@ -23,7 +26,7 @@ from fleet.selectors.people import (
     signs_without_code,
 )
 from fleet.services.attempts import attempts_forget
-from fleet.services.passwords import password_change
+from fleet.services.passwords import password_change, password_reset
 from fleet.services.second_factor import (
     second_factor_begin,
     second_factor_confirm,
@@ -152,6 +155,36 @@ def second_factor_lost(request: Request, pk: int) -> HttpResponse:
     title = f"Take off {row.user}'s second factor"
     context = {"form": form, "title": title, "action": "Take it off"}
     return render(request, "fleet/people_form.html", context)
+
+
+@never_cache
+@require_http_methods(METHODS)
+def password_lost(request: Request, pk: int) -> HttpResponse:
+    """The administrator hands over a link; whoever forgot the password chooses one."""
+    row = _member(request, pk)
+    user, form = row.user, ResetForm(request.POST or None)
+
+    def save() -> str:
+        return password_reset(
+            user=user,
+            operator=row.operator,
+            **form.cleaned_data,
+            actor=request.user,
+            at=now(),
+        )
+
+    if token := sent(form, save):
+        attempts_forget(user.get_username())
+        link = request.build_absolute_uri(
+            reverse("password_new", args=[user.pk, token])
+        )
+        context = {"link": link, "user_named": user, "hours": settings.LINK_HOURS}
+        page = render(request, "fleet/password_link.html", context)
+        page["Content-Location"] = reverse("people")
+        return page
+    title = f"A new password for {user}"
+    context = {"form": form, "title": title, "action": "Make the link"}
+    return render(request, "fleet/password_reset.html", context)
 
 
 @require_http_methods(METHODS)

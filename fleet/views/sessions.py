@@ -19,18 +19,29 @@ from django.views.decorators.debug import sensitive_post_parameters
 from django.views.decorators.http import require_http_methods
 
 from fleet.clock import now, today
-from fleet.forms.account import CodeForm
+from fleet.forms.account import CodeForm, NewPasswordForm
 from fleet.models import User
 from fleet.selectors.people import signs_without_code
 from fleet.services.attempts import attempt_failed, is_locked, locked_until
-from fleet.services.passwords import password_renew
+from fleet.services.passwords import (
+    LINK_OVER,
+    password_link_user,
+    password_renew,
+    password_set,
+)
 from fleet.services.second_factor import code_accept
+from fleet.views.sending import sent
 
 BACKEND = "django.contrib.auth.backends.ModelBackend"
 PENDING = "pending"
 PENDING_LASTS = dt.timedelta(minutes=5)
 METHODS = ["GET", "HEAD", "POST"]
 TOO_LATE = "Sign in again: the code was not given within five minutes."
+SIGN_OUT_FIRST = (
+    "You are signed in as {user}. The link is for whoever forgot a password: sign out "
+    "first."
+)
+CHOSEN = "The new password holds; sign in with it."
 ADVICE = (
     "You sign records with the password alone. Set up a second factor on your account: "
     "the link with your roles above."
@@ -85,6 +96,28 @@ def sign_in_code(request: HttpRequest) -> HttpResponse:
             form.add_error(None, error)
     context = {"form": form, "next": _next(request)}
     return render(request, "fleet/sign_in_code.html", context)
+
+
+@sensitive_post_parameters()
+@never_cache
+@require_http_methods(METHODS)
+def password_new(request: HttpRequest, pk: int, token: str) -> HttpResponse:
+    """Whoever was handed the link chooses a password, once, and signs in with it."""
+    user = password_link_user(pk=pk, token=token)
+    if request.user.is_authenticated or user is None:
+        why = LINK_OVER if user is None else SIGN_OUT_FIRST.format(user=request.user)
+        context = {"why": why}
+        return render(request, "fleet/password_link_over.html", context, status=410)
+    form = NewPasswordForm(request.POST or None, user=user)
+
+    def save() -> None:
+        new = form.cleaned_data["new"]
+        password_set(user=user, token=token, password=new, at=now())
+
+    if sent(form, save):
+        messages.success(request, CHOSEN)
+        return redirect("sign_in")
+    return render(request, "fleet/password_new.html", {"form": form, "named": user})
 
 
 def asked_for(request: HttpRequest) -> str:

@@ -31,6 +31,7 @@ ONLY_ADD = frozenset(
         "finding_measure",
         "finding_photographs",
         "finding_report",
+        "password_reset",
         "repair_photographs",
         "second_factor_reset",
         "sign_in_unlock",

@@ -5,21 +5,18 @@ The password comes from FRAMEBAY_PASSWORD, or is asked for twice.
 
 from __future__ import annotations
 
-import os
-from getpass import getpass
 from typing import Any
 
-from django.contrib.auth.password_validation import validate_password
 from django.core.exceptions import ValidationError
 from django.core.management.base import BaseCommand, CommandError
 
 from fleet.clock import now, today
+from fleet.management.passwords import typed_password
 from fleet.models import Operator, Role, User
 from fleet.services.people import person_add
 
 NO_OPERATOR = "There is no operator “{code}”; known: {known}. Add it by operator_add."
 TAKEN = "The user name “{name}” is taken; choose another."
-DIFFERENT = "The two passwords differ; nothing was recorded."
 
 
 class Command(BaseCommand):
@@ -47,7 +44,7 @@ class Command(BaseCommand):
                 organisation=operator.organisation,
                 name=options["person"] or username,
                 username=username,
-                password=_password(username),
+                password=typed_password(User(username=username)),
                 role=options["role"],
                 began_on=today(),
                 at=now(),
@@ -55,14 +52,3 @@ class Command(BaseCommand):
         except ValidationError as error:
             raise CommandError(" ".join(error.messages)) from error
         self.stdout.write(f"{username} may sign in to {operator} as {options['role']}.")
-
-
-def _password(username: str) -> str:
-    """Long enough and not a common one, wherever it comes from."""
-    password = os.environ.get("FRAMEBAY_PASSWORD")
-    if password is None:
-        password = getpass("Password: ")
-        if getpass("The same again: ") != password:
-            raise CommandError(DIFFERENT)
-    validate_password(password, User(username=username))
-    return password
