@@ -7,6 +7,7 @@ Keys of other records are looked up together, one query a table.
 from __future__ import annotations
 
 import datetime as dt
+import re
 from collections.abc import Iterable, Mapping
 from functools import cache
 from typing import Any
@@ -22,6 +23,8 @@ Table = type[models.Model]
 Keys = Mapping[tuple[Table, Any], str]
 
 NOTHING = "—"
+STORED = re.compile(r"[a-z]+(_[a-z]+)+")
+"""A stored word that its column has no labels for."""
 NO_KEYS: Keys = {}
 NOT_THERE = "no longer there"
 NAMES = {
@@ -47,6 +50,8 @@ NAMES = {
     "found_on": "first found on",
     "geometry": "geometry revision",
     "inspection_required": "independent inspection required",
+    "last_clean_cycles": "flight cycles at that inspection",
+    "last_clean_method": "method of that inspection",
     "last_clean_on": "last inspected without a finding on",
     "limit_cycles": "deferral limit in flight cycles",
     "limit_landings": "deferral limit in landings",
@@ -135,7 +140,7 @@ def value_words(
         at = dt.datetime.fromisoformat(value)
         return f"{at:%Y-%m-%d %H:%M} UTC"
     if isinstance(value, str) and not value.startswith(("0x", "-0x")):
-        return value
+        return value.replace("_", " ") if STORED.fullmatch(value) else value
     return _number_words(column, value, length_unit)
 
 

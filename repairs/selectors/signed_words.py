@@ -162,7 +162,8 @@ class _Reader:
         told = self.words(None, quantity, row["value"])
         if row["uncertainty"] is not None:
             told += f" ± {self.words(None, quantity, row['uncertainty'])}"
-        return label, f"{told}, entered as {row['entered']}" if row["entered"] else told
+        typed = row["entered"]
+        return label, told if typed in ("", told) else f"{told}, typed as {typed}"
 
 
 def to_sign(subject: Worded, content: str) -> dict[str, Any]:

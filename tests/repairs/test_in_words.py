@@ -61,6 +61,8 @@ def test_a_column_is_named_without_key_and_unit(column, words):
         (Disposition, "kind", "accept_with_inspection", "accept with inspection"),
         (Measurement, "stage", "as_found", "as found"),
         (Finding, "criticality", "principal", "PSE"),
+        (Measurement, "method", "detailed_visual", "detailed visual"),
+        (Measurement, "instrument", "UT_gauge 7", "UT_gauge 7"),
         (Repair, "legacy", True, "yes"),
         (Repair, "released_on", "2024-12-06", "2024-12-06"),
         (Repair, "entered_at", "2025-01-01T09:00:00.000000+00:00",
