@@ -49,7 +49,8 @@ from tests.together.threads import at_once
 
 pytestmark = pytest.mark.django_db
 
-ROUNDS = 20
+ROUNDS, FEW = 20, 5
+"""The numbers and the key of a form, on which the rest builds, are raced more often."""
 TOLD = CHANGED.split("}")[1].split(".")[0].strip()
 
 
@@ -176,7 +177,7 @@ def test_two_revisions_of_one_policy_at_once(world, browsers):
 def test_two_people_locate_one_finding_anew_at_once(world, browsers):
     finding = found(world)
     address = f"/findings/{finding.pk}/place/"
-    for n in range(ROUNDS):
+    for n in range(FEW):
         forms = [
             opened() | {"place_entered": f"STA 640+{n + 1}, {inch} in below S-7R"}
             for inch in (3, 5)
@@ -191,7 +192,7 @@ def test_two_people_locate_one_finding_anew_at_once(world, browsers):
 def test_two_people_install_one_serial_at_once(world, browsers, configuration):
     part = _part(world)
     address = f"/safe-life/{part.pk}/install/"
-    for n in range(ROUNDS):
+    for n in range(FEW):
         forms = [
             opened() | _installing(world, configuration, position, n)
             for position in ("MLG LH", "MLG RH")
@@ -212,7 +213,7 @@ def test_two_people_install_one_serial_at_once(world, browsers, configuration):
 
 def test_two_serials_go_on_one_position_at_once(world, browsers, configuration):
     """Each serial is free; the position takes one, and the other reads which."""
-    for n in range(ROUNDS):
+    for n in range(FEW):
         parts = [_part(world), _part(world)]
         form = _installing(world, configuration, f"NLG {n}", n)
         addresses = [f"/safe-life/{part.pk}/install/" for part in parts]
@@ -224,7 +225,7 @@ def test_two_serials_go_on_one_position_at_once(world, browsers, configuration):
 
 def test_two_people_correct_one_usage_day_at_once(world, browsers):
     row = world.aircraft.usage.latest("day")
-    for n in range(ROUNDS):
+    for n in range(FEW):
         address = f"/aircraft/{world.aircraft.pk}/usage/{row.pk}/correct/"
         forms = [
             opened()
@@ -248,7 +249,7 @@ def test_two_people_decide_on_one_finding_at_once(world, browsers):
         "crew_informed_on": str(TODAY),
     }
     page: dict[str, str] = {}
-    for n in range(ROUNDS):
+    for n in range(FEW):
         finding = assessed(world, place_entered=_apart(n))
         address = f"/findings/{finding.pk}/disposition/"
         page = page or form_on(browsers["certifier"][0], address)
@@ -263,8 +264,8 @@ def test_two_people_decide_on_one_finding_at_once(world, browsers):
 
 
 def test_two_people_sign_one_decision_at_once(world, browsers):
-    for n in range(ROUNDS):
-        finding = assessed(world, place_entered=_apart(ROUNDS + n))
+    for n in range(FEW):
+        finding = assessed(world, place_entered=_apart(FEW + n))
         decision = disposition_decide(
             entry=DispositionEntry(
                 aircraft=world.aircraft,
@@ -310,7 +311,7 @@ def test_two_people_record_one_inspection_at_once(world, browsers):
     subject = requirement.subjects.get()
     address = f"/requirements/{requirement.pk}/done/{subject.pk}/"
     page = form_on(browsers["certifier"][0], address) | {"result": "no_finding"}
-    for n in range(ROUNDS):
+    for n in range(FEW):
         forms = [
             signed(page | opened() | {"evidence": said}) for said in ("one", "other")
         ]
