@@ -351,7 +351,7 @@ class Accomplishment(AtCounters, Entered):
         ]
 
     def __str__(self) -> str:
-        return f"{self.result} {self.done_on}"
+        return f"{self.get_result_display()} {self.done_on}"
 
 
 class ZoneInspected(AtCounters, Entered):
