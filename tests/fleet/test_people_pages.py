@@ -204,7 +204,7 @@ def test_the_history_page_costs_the_same_for_more_entries(client, operator):
         for n in range(20):
             offered(operator, key=f"key_{n}", operator=operator)
 
-    assert_same_queries(client, "/history/", grow, ceiling=9)
+    assert_same_queries(client, "/history/", grow, ceiling=10)
 
 
 def test_the_history_of_another_operator_is_not_shown(client, operator):
