@@ -12,13 +12,13 @@ from fleet.canonical import digest
 from fleet.due import Counters
 from fleet.selectors.verify import problems
 from repairs.measured import Typed
-from repairs.models import Approval, Disposition, DuePoint, Evaluation
+from repairs.models import Approval, DuePoint, Evaluation
 from repairs.selectors.signatures import approval_agrees, content_of
 from repairs.services.approvals import approval_sign
-from repairs.services.disposition_entry import DispositionEntry, Reviewed
-from repairs.services.dispositions import disposition_decide
+from repairs.services.disposition_entry import Reviewed
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
 from tests.factories import NOW, authorise, program
+from tests.finding_rows import decide
 from tests.record_rows import (
     CRACK,
     FOUND,
@@ -29,25 +29,6 @@ from tests.record_rows import (
 )
 
 pytestmark = pytest.mark.django_db
-AT = Counters(604_000, 10_080, 10_080)
-
-
-def decide(world, *findings, kind="accept", by=None, **changes) -> Disposition:
-    entry = {
-        "aircraft": world.aircraft,
-        "findings": findings or (assessed(world),),
-        "kind": kind,
-        "basis": MANUAL,
-        "reason": "Within the manual's limits.",
-        "decided_on": FOUND,
-        "at": AT,
-    }
-    return disposition_decide(
-        entry=DispositionEntry(**(entry | changes)),
-        proof=program(by or world.assessor),
-        actor=world.engineer,
-        at=NOW,
-    )
 
 
 def inspection(world) -> RequirementDraft:

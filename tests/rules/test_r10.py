@@ -16,17 +16,16 @@ from fleet.due import Bucket, Counter, Counters, Standing, due_status
 from fleet.models import Policy
 from repairs.models import DuePoint
 from repairs.selectors.due_items import due_of
-from repairs.services.disposition_entry import DispositionEntry
-from repairs.services.dispositions import disposition_decide
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
 from reports.due_list import DueQuery, due_list
 from tests.factories import NOW, program
+from tests.finding_rows import decide
 from tests.folder_rows import folders_make
 from tests.record_rows import HOLDER, assessed
 
 pytestmark = pytest.mark.django_db
-RELEASED = dt.date(2025, 1, 31)
+DECIDED, RELEASED = dt.date(2024, 12, 24), dt.date(2025, 1, 31)
 SOURCE = {"temporary_limit_source": "ARD-RDA-0077 p. 3"}
 
 
@@ -177,21 +176,7 @@ def test_damage_that_stays_has_its_clock_on_the_folder_from_the_decision(
         temporary_limit=Counters(cycles=300),
         **SOURCE,
     )
-    disposition_decide(
-        entry=DispositionEntry(
-            aircraft=world.aircraft,
-            findings=(finding,),
-            kind="accept",
-            basis=HOLDER,
-            reason="as the folder substantiates",
-            decided_on=dt.date(2024, 12, 24),
-            at=Counters(604_000, 10_080, 10_080),
-            substantiation=folder,
-        ),
-        proof=program(world.assessor),
-        actor=world.engineer,
-        at=NOW,
-    )
+    decide(world, finding, basis=HOLDER, decided_on=DECIDED, substantiation=folder)
     point = clock()
     assert (point.substantiation, point.due_cycles) == (folder, 10_380)
     rows = due_list(DueQuery(dt.date(2025, 1, 2), within_days=365)).rows
@@ -203,21 +188,7 @@ def test_damage_that_stays_has_its_clock_on_the_folder_from_the_decision(
 def test_once_it_is_repaired_the_clock_of_the_damage_is_closed(folders, world):
     finding = assessed(world)
     folder = stage_1(folders, findings=[finding])
-    disposition_decide(
-        entry=DispositionEntry(
-            aircraft=world.aircraft,
-            findings=(finding,),
-            kind="accept",
-            basis=HOLDER,
-            reason="as the folder substantiates",
-            decided_on=dt.date(2024, 12, 24),
-            at=Counters(604_000, 10_080, 10_080),
-            substantiation=folder,
-        ),
-        proof=program(world.assessor),
-        actor=world.engineer,
-        at=NOW,
-    )
+    decide(world, finding, basis=HOLDER, decided_on=DECIDED, substantiation=folder)
     own = clock()
     repair = released(world, category="a", findings=(Answered(finding, True, "yes"),))
     own.refresh_from_db()

@@ -37,14 +37,13 @@ from fleet.services.part_records import (
 from fleet.services.parts import part_remove
 from fleet.services.sending import CHANGED, KEY_FIELD, SHOWN_FIELD
 from repairs.models import Finding
-from repairs.services.disposition_entry import DispositionEntry
-from repairs.services.dispositions import disposition_decide
 from repairs.services.findings import FindingEntry, finding_record
 from repairs.services.inspections import requirement_raise
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
-from tests.factories import BEGAN, NOW, TODAY, program, signed
+from tests.factories import BEGAN, NOW, TODAY, signed
+from tests.finding_rows import decide
 from tests.forms import form_in, form_on
-from tests.record_rows import DENT, FOUND, MANUAL, assessed, found
+from tests.record_rows import DENT, FOUND, assessed, found
 from tests.together.threads import at_once
 
 pytestmark = pytest.mark.django_db
@@ -266,20 +265,7 @@ def test_two_people_decide_on_one_finding_at_once(world, browsers):
 def test_two_people_sign_one_decision_at_once(world, browsers):
     for n in range(FEW):
         finding = assessed(world, place_entered=_apart(FEW + n))
-        decision = disposition_decide(
-            entry=DispositionEntry(
-                aircraft=world.aircraft,
-                findings=(finding,),
-                kind="accept",
-                basis=MANUAL,
-                reason="Within the manual's limits.",
-                decided_on=FOUND,
-                at=Counters(604_000, 10_080, 10_080),
-            ),
-            proof=program(world.assessor),
-            actor=world.engineer,
-            at=NOW,
-        )
+        decision = decide(world, finding)
         address = f"/dispositions/{decision.pk}/sign/"
         page = form_on(browsers["signatory"][0], address)
         forms = [
