@@ -61,10 +61,12 @@ def _attachments(settings, folder):
 
 @pytest.fixture(scope="module")
 def each(django_db_setup, django_db_blocker, folder) -> Iterator[OneOfEach]:
-    """The records, once for all addresses; nothing of them stays."""
+    """The records, once for all addresses; nothing of them stays. Sessions lie beside
+    the database, where the end of a test does not take back that they are in use."""
     contained = override_settings(
         PASSWORD_HASHERS=["django.contrib.auth.hashers.MD5PasswordHasher"],
         ATTACHMENTS=folder,
+        SESSION_ENGINE="django.contrib.sessions.backends.cache",
     )
     with contained, django_db_blocker.unblock(), transaction.atomic():
         yield one_of_each_make()
