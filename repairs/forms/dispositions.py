@@ -11,6 +11,7 @@ from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.forms.signing import SignatureForm
 from fleet.models import Document
+from fleet.units import measure_write
 from repairs.forms.fields import ACCEPTED_FILES, CountersForm, DataForm, Several, choose
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
@@ -46,7 +47,9 @@ SCALES = [("undecided", "undecided"), ("minor", "minor"), ("major", "major")]
 class DispositionForm(SignatureForm, CountersForm, DataForm):
     """What is decided, on which data, and until when, by who signs it."""
 
-    kind = forms.ChoiceField(label="decision", choices=DispositionKind.choices)
+    kind = forms.ChoiceField(
+        label="decision", choices=[("", "choose"), *DispositionKind.choices]
+    )
     also = Several(
         Finding.objects.none(), label="also for", required=False,
         help_text="Other findings of this aircraft the same decision answers.",
@@ -90,7 +93,7 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
 
     def __init__(
         self, *args: Any, choices: dict[str, Any], today: Any, near: Sequence[Near],
-        **kwargs: Any,
+        unit: str, **kwargs: Any,
     ) -> None:  # fmt: skip
         super().__init__(*args, **kwargs)
         for name, rows in choices.items():
@@ -100,7 +103,7 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
         self.today, self.near = today, near
         for number, one in enumerate(near):
             self.fields[f"near_{number}"] = forms.ChoiceField(
-                label=_near_label(one), choices=REVIEW, required=False
+                label=_near_label(one, unit), choices=REVIEW, required=False
             )
             self.fields[f"why_{number}"] = forms.CharField(label="why", required=False)
 
@@ -185,5 +188,6 @@ class SignForm(SignatureForm):
         self.fields["meaning"].choices = meanings  # type: ignore[attr-defined]
 
 
-def _near_label(one: Near) -> str:
-    return f"{one.item} {one.item.place_text}, {one.distance_mm:.0f} mm away"
+def _near_label(one: Near, unit: str) -> str:
+    gap = measure_write(one.distance_mm, unit, digits=1 if unit == "in" else 0)
+    return f"{one.item} {one.item.place_text}, {gap} away"

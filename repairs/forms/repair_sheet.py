@@ -28,6 +28,16 @@ class RepairSheet:
         raised: list[Form] = [self.raised] if self.raised else []
         return [*self.answered, *self.lies, *raised]
 
+    @property
+    def answering(self) -> list[AnsweredForm]:
+        """Those of the findings that the repair is said to answer."""
+        return [one for one in self.answered if one["answers"].value()]
+
+    @property
+    def further(self) -> list[AnsweredForm]:
+        """The other findings of the aircraft that it could answer."""
+        return [one for one in self.answered if not one["answers"].value()]
+
     def is_valid(self) -> bool:
         """Whether every part but the repair's own is in order; all are judged."""
         wrong = [part for part in self.parts if not part.is_valid()]

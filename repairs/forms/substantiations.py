@@ -268,7 +268,9 @@ class FolderDocumentForm(DataForm):
 class NeighbourForm(forms.Form):
     """The answer for one neighbour: small damages can act together."""
 
-    answer = forms.ChoiceField(choices=_words(SubstantiationNeighbour, "answer"))
+    answer = forms.ChoiceField(
+        choices=[("", "choose"), *_words(SubstantiationNeighbour, "answer")]
+    )
     reason = forms.CharField(label="why", widget=LONG)
     on = DayField(label="looked at on")
 

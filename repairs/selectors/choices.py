@@ -107,11 +107,12 @@ def repair_choices(
 def findings_to_answer(
     aircraft: Aircraft | None, states: Sequence[str], also: Sequence[int] = ()
 ) -> list[Finding]:
-    """Open findings a repair may answer; and those it is recorded for."""
+    """Open findings a repair may answer; those it is recorded for come first."""
     if aircraft is None:
         return []
     wanted = Q(state__in=states) | Q(pk__in=also)
-    return list(Finding.objects.filter(wanted, aircraft=aircraft).order_by("pk"))
+    rows = Finding.objects.filter(wanted, aircraft=aircraft).order_by("pk")
+    return sorted(rows, key=lambda one: one.pk not in also)
 
 
 def covered_keys(asked: int | None, folder: int | None) -> list[int]:

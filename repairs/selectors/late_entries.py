@@ -37,13 +37,13 @@ class Late:
 
 
 def late_words(
-    operator: Operator, released_on: dt.date | None, entered_at: dt.datetime
+    operator: Operator, released_on: dt.date | None, entered_on: dt.date
 ) -> str:
     """The warning of a release that was entered late; empty for one in time."""
     if released_on is None:
         return ""
-    days = (entered_at.date() - released_on).days
-    row = policy(operator, DAYS, entered_at.date())
+    days = (entered_on - released_on).days
+    row = policy(operator, DAYS, entered_on)
     if row is None:
         said = NO_POLICY.format(days=days, released_on=released_on, key=DAYS)
         return said if days > 0 else ""
@@ -54,13 +54,13 @@ def late_words(
     )
 
 
-def repair_late_words(repair: Repair) -> str:
+def repair_late_words(repair: Repair, *, as_of: dt.date) -> str:
     """A repair from before our records was released before it could be entered."""
     if repair.legacy:
         return ""
     signed = repair.approvals.filter(meaning="released").aggregate(at=Min("signed_at"))
     entered = signed["at"] or repair.entered_at
-    return late_words(repair.operator, repair.released_on, entered)
+    return late_words(repair.operator, repair.released_on, min(entered.date(), as_of))
 
 
 def accomplishments_late(
@@ -74,7 +74,7 @@ def accomplishments_late(
         one.pk
         for one in rows
         if one.replaces_id is None
-        and (one.entered_at.date() - one.done_on).days > row.value
+        and (min(one.entered_at.date(), as_of) - one.done_on).days > row.value
     ]
     return set(_in_our_time(Accomplishment.objects.filter(pk__in=late)))
 
@@ -100,7 +100,8 @@ def late_entries(user: User, *, as_of: dt.date) -> list[Late]:
     late = [
         Late(what, aircraft, page, on, days, f"{days - allowed[pk]:,} d too late")
         for pk, what, aircraft, page, on, entered in rows
-        if pk in allowed and (days := (entered.date() - on).days) > allowed[pk]
+        if pk in allowed
+        and (days := (min(entered.date(), as_of) - on).days) > allowed[pk]
     ]
     return sorted(late, key=lambda one: (one.released_on, one.what), reverse=True)
 

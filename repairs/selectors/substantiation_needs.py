@@ -63,8 +63,8 @@ NOT_ANSWERED = "Not reviewed yet: {items}."
 SCALE_NEEDED = "Say whether it is minor or major."
 SCALE_REASON_NEEDED = "Say why it is {scale}."
 CATEGORY_NEEDED = (
-    "Give the repair category: {items} is PSE, FCS or pressurised, or nobody has said "
-    "that it is secondary."
+    "Give the repair category: it covers what is PSE, FCS or pressurised, or what "
+    "nobody has said to be secondary ({items})."
 )
 STATIC_CASE_NEEDED = "Add the load case of static ultimate strength."
 EFFECTS_NEEDED = "A major one answers every effect; not answered: {effects}."

@@ -54,6 +54,7 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
         choices=decision_choices(row, DECIDABLE),
         today=today(),
         near=near,
+        unit=row.aircraft.variant.aircraft_type.entry_unit,
         initial=_initial(request, row),
     )
     raised = RaisedForm(request.POST or None, initial={"area": row.place_text})
@@ -98,6 +99,7 @@ def disposition(request: Request, pk: int) -> HttpResponse:
         "later": Disposition.objects.filter(replaces=row).first(),
         "approvals": approvals_verified(row),
         "may_sign": may(request.user, "approval_sign", row.aircraft.operator_id),
+        "unit": row.aircraft.variant.aircraft_type.entry_unit,
         "history": history_of(row),
     }
     return render(request, "repairs/disposition.html", context)
@@ -108,7 +110,7 @@ def _initial(request: Request, row: Finding) -> dict[str, Any]:
     flown = standing_on(row.aircraft, today()).at
     current = row.disposition_rows.order_by("-pk").first()
     return {
-        "kind": "rectify" if is_critical_crack(row) else "accept",
+        "kind": "rectify" if is_critical_crack(row) else "",
         "decided_on": today(),
         "at_minutes": flown.minutes,
         "at_cycles": flown.cycles,

@@ -89,6 +89,7 @@ def finding_measure(request: Request, pk: int) -> HttpResponse:
         people=people_at([row.aircraft.operator]),
         today=today(),
         initial={
+            "stage": "repeat" if row.measurements.exists() else "as_found",
             "measured_on": today(),
             "measured_by": request.user.person_id,
             "at_minutes": flown.minutes,

@@ -74,7 +74,7 @@ def _around(request: Request, row: Repair) -> dict[str, Any]:
         "applies": approval_applies(row),
         "file": repair_files([row])[row.pk],
         "under_way": row.state in UNDER_WAY,
-        "late": repair_late_words(row),
+        "late": repair_late_words(row, as_of=today()),
         "map": item_map_svg(row, user=request.user),
         "near": neighbours(row, user=request.user),
         "evaluations": [(one, state_of(one)) for one in evaluations_current(row)],

@@ -268,6 +268,15 @@ def test_measuring_again_adds_a_measurement(recorder, world):
     assert "+15.24 mm" in page  # 3 in - 2.4 in
 
 
+def test_the_first_measuring_is_as_found_and_the_next_a_repeat(recorder, world):
+    bare, measured = found(world, typed={}), found(world)
+    asked = [
+        filled(recorder.get(reverse("finding_measure", args=[one.pk])))["stage"]
+        for one in (bare, measured)
+    ]
+    assert asked == ["as_found", "repeat"]
+
+
 def test_assessing_through_the_form(client, world):
     finding = found(world)
     client.force_login(world.engineer)

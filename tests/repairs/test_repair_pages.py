@@ -78,8 +78,18 @@ def decision(client, finding, **changes):
         "document_reference": "SRM 53-10-12",
         "document_page": "p. 101",
         "reason": "within the manual's limits",
+        "kind": said.get("kind") or "accept",
     }
     return client.post(url, signed({**said, **changes}))
+
+
+def test_no_decision_is_chosen_beforehand_but_to_rectify_a_crack(engineer, world):
+    dent, crack = assessed(world), assessed(world, damage_type="crack", typed=CRACK)
+    asked = [
+        engineer.get(reverse("disposition_new", args=[one.pk])).context["form"]["kind"]
+        for one in (dent, crack)
+    ]
+    assert [one.value() for one in asked] == ["", "rectify"]
 
 
 def test_a_decision_through_the_form(engineer, world):

@@ -46,31 +46,39 @@ def counted(world) -> list[str]:
 
 def test_a_release_entered_on_the_thirtieth_day_is_in_time(world, policy):
     repair = released(world, 30)
-    assert repair_late_words(repair) == ""
+    assert repair_late_words(repair, as_of=TODAY) == ""
     assert counted(world) == []
 
 
 def test_a_release_entered_later_is_accepted_marked_and_counted(world, policy):
     repair = released(world, 31)
     assert repair.state == "embodied"
-    assert "Entered 31 days after the release" in repair_late_words(repair)
-    assert "M.A.305(a) allows 30 days" in repair_late_words(repair)
+    assert "Entered 31 days after the release" in repair_late_words(repair, as_of=TODAY)
+    assert "M.A.305(a) allows 30 days" in repair_late_words(repair, as_of=TODAY)
     assert counted(world) == [repair.number]
+
+
+def test_a_demonstration_counts_to_the_day_it_takes_as_today(world, policy):
+    repair = released(world, 31)
+    assert repair_late_words(repair, as_of=repair.released_on) == ""
+    assert late_entries(world.engineer, as_of=repair.released_on) == []
 
 
 def test_the_number_of_days_is_the_policys(world):
     clock("late_entry_days", 10, "days")
     repair = released(world, 11)
-    assert "allows 10 days" in repair_late_words(repair)
+    assert "allows 10 days" in repair_late_words(repair, as_of=TODAY)
 
 
 def test_without_a_number_on_record_the_days_are_still_said(world):
-    assert "no number of days is recorded" in repair_late_words(released(world, 12))
+    assert "no number of days is recorded" in repair_late_words(
+        released(world, 12), as_of=TODAY
+    )
 
 
 def test_a_repair_from_before_our_records_is_not_late(world, policy):
     repair = released(world, 3_000, legacy=True, evidence="seen")
-    assert repair_late_words(repair) == ""
+    assert repair_late_words(repair, as_of=TODAY) == ""
     assert counted(world) == []
 
 
