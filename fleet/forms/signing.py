@@ -11,7 +11,9 @@ from fleet.services.signing import NO_PERSON
 
 SIGNATURE = ("password", "code")
 SIGNS_AS = "You sign as {person}, under {under}."
-UNDER = "{number} ({scope}, until {until})"
+UNDER = "{number} ({scope}, {until})"
+UNTIL = "until {day}"
+NO_END = "no end stated"
 
 
 class CodeInput(forms.TextInput):
@@ -70,7 +72,7 @@ def signs_as(user: User) -> str:
         UNDER.format(
             number=row.number,
             scope=row.get_scope_display(),
-            until=row.valid_to or "open",
+            until=UNTIL.format(day=row.valid_to) if row.valid_to else NO_END,
         )
         for row in user.person.authorisations.all()
     ]

@@ -19,7 +19,7 @@ ASSESSORS = (AuthorisationScope.ASSESS, AuthorisationScope.CERTIFY)
 CERTIFIERS = (AuthorisationScope.CERTIFY,)
 
 NO_AUTHORISATION = (
-    "{person} held no authorisation at {operator} to {scopes} on {day}{detail}. "
+    "{person} held no authorisation ({scopes}) at {operator} on {day}{detail}. "
     "Choose an authorised person or the day of the decision."
 )
 EXPIRED = "; {number} was valid to {valid_to}"

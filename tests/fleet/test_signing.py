@@ -117,7 +117,7 @@ class TestForm:
         assert said == "You sign as Robin Engineer, under no authorisation."
         granted = authorise(engineer.person, operator, "assess")
         said = SignatureForm(user=engineer)["password"].help_text
-        assert f"{granted.number} (assess structural damage, until open)" in said
+        assert f"{granted.number} (assess structural damage, no end stated)" in said
 
     def test_neither_password_nor_code_is_sent_back(self, with_device):
         form = SignatureForm(

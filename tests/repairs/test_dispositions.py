@@ -226,7 +226,7 @@ def test_who_decided_does_not_approve(world):
 
 
 def test_a_signature_needs_its_scope(world):
-    with pytest.raises(ValidationError, match="to approve design data"):
+    with pytest.raises(ValidationError, match="approve design data"):
         sign(world, decide(world), person=world.certifier)
 
 
