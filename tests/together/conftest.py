@@ -20,7 +20,7 @@ from tests.record_rows import World, world_make
 QUICK = ["django.contrib.auth.hashers.MD5PasswordHasher"]
 
 
-@pytest.fixture(scope="package")
+@pytest.fixture(scope="module")
 def shared_database(
     django_db_setup, django_db_blocker, tmp_path_factory
 ) -> Iterator[None]:
@@ -79,7 +79,7 @@ class _database:
             cursor.execute(f'DROP DATABASE "{self.name}" WITH (FORCE)')
 
 
-@pytest.fixture(scope="package")
+@pytest.fixture(scope="module")
 def world(shared_database) -> World:
     with override_settings(PASSWORD_HASHERS=QUICK):
         return world_make()
