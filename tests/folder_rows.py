@@ -70,7 +70,7 @@ class Folders:
             "scale": "major",
             "scale_reason": "alters a principal structural element",
             "category": "b",
-            "data_due_on": dt.date(2025, 11, 1),
+            "data_due_on": dt.date(2026, 1, 31),
         }
         return substantiation_draft(
             entry=FolderEntry(**(said | changes)),

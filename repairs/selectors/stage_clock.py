@@ -1,8 +1,9 @@
 """The clock of an approval's next stage: until when, and how that came about.
 
 Until stage 2 it is the operator's policy counted from release, or the temporary limit
-that stage 1 approved; until stage 3 the threshold that stage 2 approved, which is a
-hard limit meanwhile; after stage 3 there is none (AMC 20-20A appendix 3 annex 1).
+that stage 1 approved, and the schedule that stage 1 approved where its day is earlier;
+until stage 3 the threshold that stage 2 approved, which is a hard limit meanwhile;
+after stage 3 there is none (AMC 20-20A appendix 3 annex 1).
 """
 
 from __future__ import annotations
@@ -27,6 +28,7 @@ NO_THRESHOLD = (
 )
 WITHIN_MONTHS = "stage 2 within {months} months of {start} ({source})"
 BEFORE_LIMIT = "stage 2 before the approved temporary limit of {limit} from {start}"
+BY_SCHEDULE = "{words}; schedule for the data of {folder}: {day}, the earlier counts"
 BEFORE_THRESHOLD = (
     "operating limitation: stage 3 before the approved threshold of {limit} from "
     "{start}"
@@ -85,6 +87,22 @@ class Clock:
     basis: str
 
 
+@dataclass(frozen=True, slots=True)
+class Schedule:
+    """The day by which the data are due, as the folder's stage 1 approved it."""
+
+    folder: str
+    on: dt.date
+
+    def brought_forward(self, clock: Clock) -> Clock:
+        """Both said; the earlier counts. A clock without a day cannot be compared."""
+        if clock.due.on is None:
+            return clock
+        told = {"folder": self.folder, "day": self.on.isoformat()}
+        basis = BY_SCHEDULE.format(words=clock.basis, **told)
+        return Clock(replace(clock.due, on=min(clock.due.on, self.on)), basis)
+
+
 def clock_of(
     operator: Operator,
     start: Start,
@@ -121,13 +139,16 @@ def folder_clock(folder: Substantiation, start: Start) -> Clock | None:
     if reached == 3:
         return None
     one, two = approved_revision(folder, 1), approved_revision(folder, 2)
-    return clock_of(
+    clock = clock_of(
         folder.operator,
         start,
         reached,
         _limited(one, "temporary_limit"),
         _limited(two, "threshold"),
     )
+    if reached == 1 and one is not None and one.data_due_on is not None:
+        return Schedule(folder.number, one.data_due_on).brought_forward(clock)
+    return clock
 
 
 def _limited(row: Substantiation | None, name: str) -> Limited:

@@ -3,6 +3,7 @@
 AMC 20-20A appendix 3 annex 1: damage-tolerance data are approved not later than twelve
 months after return to service, unless a temporary limit, substantiated by sufficient
 fatigue and damage-tolerance data, was approved at stage 1; then before that limit.
+Stage 1 contains the schedule for submitting the data; twelve months are the latest.
 """
 
 from __future__ import annotations
@@ -128,6 +129,58 @@ def test_hours_and_a_date_may_limit_as_well_and_the_first_counts(folders, world)
     assert (point.due_cycles, point.due_minutes) == (22_200, 1_320_000)
     assert point.due_on == dt.date(2025, 12, 1)
     assert point.combine == "first"
+
+
+@pytest.mark.parametrize(
+    ("scheduled", "due"),
+    [
+        (dt.date(2025, 11, 1), dt.date(2025, 11, 1)),
+        (dt.date(2026, 1, 31), dt.date(2026, 1, 31)),
+        (dt.date(2026, 3, 1), dt.date(2026, 1, 31)),
+    ],
+)
+def test_the_approved_schedule_counts_where_it_is_earlier_than_the_months(
+    folders, world, scheduled, due
+):
+    """AMC 20-20A appendix 3 annex 1: stage 1 is approved with the schedule for the
+    data, and they are approved not later than twelve months after the release."""
+    released(world, stage_1(folders, data_due_on=scheduled))
+    assert clock().due_on == due
+    assert "12 months" in clock().basis
+    assert f"schedule for the data of S-0001: {scheduled}" in clock().basis
+
+
+def test_a_schedule_that_nobody_approved_moves_nothing(folders, world):
+    """The schedule is part of what stage 1 approves (AMC 20-20A app. 3 annex 1)."""
+    released(world, folders.ready(scale="minor", data_due_on=dt.date(2025, 11, 1)))
+    assert clock().due_on == dt.date(2026, 1, 31)
+    assert "schedule" not in clock().basis
+
+
+def test_a_limit_to_a_day_gives_way_to_an_earlier_schedule(folders, world):
+    folder = stage_1(
+        folders,
+        temporary_limit=Counters(cycles=1_200),
+        temporary_limit_on=dt.date(2025, 12, 1),
+        data_due_on=dt.date(2025, 11, 1),
+        **SOURCE,
+    )
+    released(world, folder)
+    assert (clock().due_cycles, clock().due_on) == (22_200, dt.date(2025, 11, 1))
+    assert "temporary limit of 1,200 FC" in clock().basis
+
+
+def test_a_limit_in_cycles_alone_stands_beside_no_schedule(folders, world):
+    """Cycles and a day do not compare; the limit is what was approved to fly on."""
+    folder = stage_1(
+        folders,
+        temporary_limit=Counters(cycles=1_200),
+        data_due_on=dt.date(2025, 11, 1),
+        **SOURCE,
+    )
+    released(world, folder)
+    assert (clock().due_cycles, clock().due_on) == (22_200, None)
+    assert "schedule" not in clock().basis
 
 
 def test_counters_unknown_at_release_make_the_limit_due_at_once(folders, world):
