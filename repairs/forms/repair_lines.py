@@ -14,50 +14,66 @@ from repairs.models import RepairStep
 from repairs.selectors.repair_fitted import material_named
 from repairs.services.repair_entry import Fastener, Layer, Required, Step
 
-LAYERS_HELP = "One a line: material; thickness; batch. As: 2024-T3 clad; 0.063 in; B-1."
+LAYER_CELLS = "material; thickness; batch"
+LAYER_EXAMPLE = "2024-T3 clad; 0.063 in; B-1"
+REQUIRED_CELLS = "material; thickness; page"
+REQUIRED_EXAMPLE = "2024-T3 clad; 0.063 in; fig. 202"
+FASTENER_CELLS = "fastener; diameter; pitch; edge distance; rows; count"
+FASTENER_EXAMPLE = "solid rivet; 5/32 in; 0.8 in; -; 3; 48"
+LAYERS_HELP = f"One a line: {LAYER_CELLS}. As: {LAYER_EXAMPLE}."
 REQUIRED_HELP = (
     "What the approved data ask for, one a line in the order of the layers: material "
     "with its temper; thickness; page."
 )
-FASTENERS_HELP = (
-    "One a line: fastener; diameter; pitch; edge distance; rows; count. "
-    "A hyphen where it is not known."
-)
+FASTENERS_HELP = f"One a line: {FASTENER_CELLS}. A hyphen where it is not known."
 STEPS_HELP = "If it is done in several parts, one a line: part; option of the data."
 ANSWERS_HELP = (
     "Where fitted and required differ, one a line: layer number; reason; document with "
     "its page."
 )
 BLANK = ("", "-")
+NO_SEMICOLON = (
+    "“{line}” has no semicolon. Expected: {cells}, with semicolons between and a "
+    "hyphen where it is not known; as: {example}."
+)
 NOT_WHOLE = "“{text}” is not a whole number."
 NO_LAYER = "“{text}” is not the number of a required layer; there are {count}."
 
 
 class LinesField(forms.CharField):
-    """Several rows of cells; its value is a list of lists."""
+    """Several rows of cells; its value is a list of lists.
 
-    def __init__(self, **kwargs: Any) -> None:
+    With `cells`, the words for them, a row of one cell is refused: another separator
+    was typed.
+    """
+
+    def __init__(self, *, cells: str = "", example: str = "", **kwargs: Any) -> None:
         kwargs.setdefault("required", False)
+        self.cells, self.example = cells, example
         super().__init__(widget=forms.Textarea(attrs={"rows": 3}), **kwargs)
 
     def to_python(self, value: Any) -> Any:
         text = super().to_python(value) or ""
-        return [
-            [cell.strip() for cell in line.split(";")]
-            for line in text.splitlines()
-            if line.strip()
+        lines = [line.strip() for line in text.splitlines() if line.strip()]
+        wrong = [
+            NO_SEMICOLON.format(line=line, cells=self.cells, example=self.example)
+            for line in lines
+            if self.cells and ";" not in line
         ]
+        if wrong:
+            raise forms.ValidationError(wrong)
+        return [[cell.strip() for cell in line.split(";")] for line in lines]
 
 
 def layer_of(cells: Sequence[str], unit: str) -> Layer:
     material, thickness, batch = (*cells, "", "")[:3]
-    size = known_size(thickness, unit)
+    size, thickness = known_size(thickness, unit), _stated(thickness)
     return Layer(material, thickness, size, material_named(material), batch)
 
 
 def required_of(cells: Sequence[str], unit: str) -> Required:
     material, thickness, page = (*cells, "", "")[:3]
-    size = known_size(thickness, unit)
+    size, thickness = known_size(thickness, unit), _stated(thickness)
     return Required(material, thickness, size, material_named(material), page)
 
 
@@ -120,6 +136,10 @@ def known_size(text: str, unit: str) -> float | None:
         return length_read(text, unit=unit)
     except UnitError as error:
         raise forms.ValidationError(str(error)) from error
+
+
+def _stated(text: str) -> str:
+    return "" if text in BLANK else text
 
 
 def _whole(text: str) -> int:

@@ -22,8 +22,14 @@ from repairs.forms.findings import FROM_LOCATION, not_in_future
 from repairs.forms.groups import Group, group
 from repairs.forms.repair_lines import (
     ANSWERS_HELP,
+    FASTENER_CELLS,
+    FASTENER_EXAMPLE,
     FASTENERS_HELP,
+    LAYER_CELLS,
+    LAYER_EXAMPLE,
     LAYERS_HELP,
+    REQUIRED_CELLS,
+    REQUIRED_EXAMPLE,
     REQUIRED_HELP,
     STEPS_HELP,
     LinesField,
@@ -98,7 +104,10 @@ class PlanForm(forms.Form):
         required=False,
         help_text="On the damage and repair chart, and where it is marked outside.",
     )
-    required = LinesField(label="layers required", help_text=REQUIRED_HELP)
+    required = LinesField(
+        label="layers required", help_text=REQUIRED_HELP,
+        cells=REQUIRED_CELLS, example=REQUIRED_EXAMPLE,
+    )  # fmt: skip
     steps = LinesField(help_text=STEPS_HELP)
     category = forms.ChoiceField(choices=RepairCategory.choices, initial="pending")
     category_reason = forms.CharField(
@@ -198,12 +207,17 @@ class PlanForm(forms.Form):
 class RepairForm(SignatureForm, CountersForm, PhotoForm, PlanForm):
     """What was done, with which data, at which release."""
 
-    layers = LinesField(label="layers fitted", help_text=LAYERS_HELP)
+    layers = LinesField(
+        label="layers fitted", help_text=LAYERS_HELP,
+        cells=LAYER_CELLS, example=LAYER_EXAMPLE,
+    )  # fmt: skip
     answers = LinesField(label="differences answered", help_text=ANSWERS_HELP)
     answered_by = forms.ModelChoiceField(
         Person.objects.none(), label="who answers them", required=False
     )
-    fasteners = LinesField(help_text=FASTENERS_HELP)
+    fasteners = LinesField(
+        help_text=FASTENERS_HELP, cells=FASTENER_CELLS, example=FASTENER_EXAMPLE
+    )
     sealant = forms.CharField(required=False)
     protection = forms.CharField(
         required=False, help_text="Primer, paint, corrosion inhibitor."

@@ -45,5 +45,7 @@ def planned_answers(repair: Repair | None) -> dict[int, RepairFinding]:
 
 def required_lines(rows: Iterable[RepairRequired]) -> str:
     """Required layers as they are typed."""
-    lines = [(row.material_entered, row.thickness_entered, row.page) for row in rows]
+    lines = [
+        (row.material_entered, row.thickness_entered or "-", row.page) for row in rows
+    ]
     return "\n".join("; ".join(cells).rstrip("; ") for cells in lines)

@@ -9,6 +9,7 @@ import pytest
 from django.urls import reverse
 
 from fleet.due import Counters
+from repairs.forms.repair_lines import NO_SEMICOLON
 from repairs.models import Disposition, DuePoint, Finding, Repair
 from repairs.selectors.repair_status_cells import HEADER
 from repairs.services.repair_entry import Answered, Data, RepairEntry
@@ -221,6 +222,26 @@ def test_a_repair_that_is_refused_says_why_and_keeps_what_was_typed(engineer, wo
     assert "recorded with its replacement limit" in page
     assert "left as it was" in page
     assert not Repair.objects.exists()
+
+
+@pytest.mark.parametrize(
+    ("name", "line"),
+    [
+        ("layers", "doubler, 2024-T3 clad, 1.8"),
+        ("required", "2024-T3 clad, 0.063 in, fig. 202"),
+        ("fasteners", "solid rivet, 5/32 in, 0.8 in"),
+    ],
+)
+def test_a_line_with_another_separator_is_refused_and_kept(engineer, name, line):
+    """Trade practice: a thickness that nobody can compare was not stated."""
+    page = engineer.post(reverse("repair_new"), {name: line, "step": "save"})
+    (problem,) = page.context["form"].errors[name]
+    field = page.context["form"].fields[name]
+    assert problem == NO_SEMICOLON.format(
+        line=line, cells=field.cells, example=field.example
+    )
+    assert page.context["form"][name].value() == line
+    assert field.clean(field.example)[0][0] in ("2024-T3 clad", "solid rivet")
 
 
 def test_repairs_hiding_damage_are_found_by_the_filter(engineer, world):
