@@ -10,8 +10,8 @@ from zoneinfo import ZoneInfo
 from django import forms
 
 from fleet.forms.fields import DayField
-from repairs.forms.findings import not_in_future
 from repairs.selectors.report_rules import FollowUp
+from repairs.services.reports import AHEAD
 
 LONG = forms.Textarea(attrs={"rows": 18})
 SHOWN = [("", "open, the overdue first"), ("all", "all")]
@@ -30,11 +30,22 @@ class TimeOfDayField(forms.TimeField):
 class MomentForm(forms.Form):
     """A day and a time of it, in the time zone of the operator."""
 
+    DAY_AND_TIME: tuple[str, str]
+
     def __init__(
-        self, *args: Any, zone: ZoneInfo, today: dt.date, **kwargs: Any
+        self, *args: Any, zone: ZoneInfo, until: dt.datetime, **kwargs: Any
     ) -> None:
         super().__init__(*args, **kwargs)
-        self.zone, self.today = zone, today
+        self.zone, self.until = zone, until
+
+    def clean(self) -> dict[str, Any]:
+        data = super().clean() or self.cleaned_data
+        day, time = self.DAY_AND_TIME
+        if day in data and time in data:
+            said = self.moment(day, time).astimezone(dt.UTC)
+            if said > self.until:
+                self.add_error(day, AHEAD.format(moment=said, now=self.until))
+        return data
 
     def moment(self, day: str, time: str) -> dt.datetime:
         data = self.cleaned_data
@@ -57,6 +68,7 @@ class OpenReportForm(forms.Form):
 class DecideReportForm(MomentForm):
     """The answer, and from when the clock runs."""
 
+    DAY_AND_TIME = ("detected_on", "detected_time")
     reportable = forms.ChoiceField(
         choices=[("", "choose"), ("yes", "yes"), ("no", "no")], label="is it reportable"
     )
@@ -71,13 +83,11 @@ class DecideReportForm(MomentForm):
     )
     detected_time = TimeOfDayField(label="at, local time", required=False)
 
-    def clean_detected_on(self) -> Any:
-        return not_in_future(self.cleaned_data["detected_on"], self.today)
-
 
 class SendReportForm(MomentForm):
     """What was sent, when, to whom; the text is kept as it is here."""
 
+    DAY_AND_TIME = ("sent_on", "sent_time")
     sent_on = DayField(label="sent on")
     sent_time = TimeOfDayField(label="at, local time")
     reference = forms.CharField(

@@ -41,7 +41,10 @@ DETECTED_BEFORE = (
     "Detected {detected}, before {subject} was found on {day}; give the moment at "
     "which it was seen to be reportable."
 )
-DETECTED_AHEAD = "{moment} lies ahead of now."
+AHEAD = (
+    "{moment:%Y-%m-%d %H:%M} UTC lies ahead of now, {now:%Y-%m-%d %H:%M} UTC; give a "
+    "time that is past."
+)
 SENT_BEFORE = "Sent before it was detected on {detected}."
 REFERENCE_NEEDED = "Give the reference under which it was sent."
 RECIPIENTS_NEEDED = "Say to whom it was sent: authority, design approval holder, owner."
@@ -278,7 +281,7 @@ def _clock(
         )
         raise ValidationError({"detected_on": text})
     if detected_at > w.at:
-        text = DETECTED_AHEAD.format(moment=f"{detected_at:%Y-%m-%d %H:%M} UTC")
+        text = AHEAD.format(moment=detected_at.astimezone(dt.UTC), now=w.at)
         raise ValidationError({"detected_on": text})
     asked = asked_by(row.operator, row.regime, detected_at)
     return {
@@ -297,9 +300,8 @@ def _complete(report: OccurrenceReport, sending: Sending, at: dt.datetime) -> No
         wrong["recipients"] = RECIPIENTS_NEEDED
     if not sending.content.strip():
         wrong["content"] = CONTENT_NEEDED
-    moment = f"{sending.sent_at:%Y-%m-%d %H:%M} UTC"
     if sending.sent_at > at:
-        wrong["sent_on"] = DETECTED_AHEAD.format(moment=moment)
+        wrong["sent_on"] = AHEAD.format(moment=sending.sent_at, now=at)
     if sending.sent_at < report.detected_at:
         detected = f"{report.detected_at:%Y-%m-%d %H:%M} UTC"
         wrong["sent_on"] = SENT_BEFORE.format(detected=detected)

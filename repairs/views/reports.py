@@ -109,7 +109,7 @@ def report_decide_page(request: Request, pk: int) -> HttpResponse:
     zone, _ = zone_of(row.operator)
     detected = row.detected_at.astimezone(zone)
     form = DecideReportForm(
-        request.POST or None, zone=zone, today=today(),
+        request.POST or None, zone=zone, until=moment(),
         initial={"detected_on": detected.date(), "detected_time": detected.time()},
     )  # fmt: skip
 
@@ -133,7 +133,7 @@ def report_send_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "report_send")
     draft = report_draft(row)
     form = SendReportForm(
-        request.POST or None, zone=zone_of(row.operator)[0], today=today(),
+        request.POST or None, zone=zone_of(row.operator)[0], until=moment(),
         initial={"sent_on": today(), "content": draft.text},
     )  # fmt: skip
 
@@ -152,7 +152,7 @@ def report_supplement_page(request: Request, pk: int) -> HttpResponse:
     row = _row(request, pk, "report_send")
     (line,) = report_lines([row], moment=moment())
     form = SupplementForm(
-        request.POST or None, zone=zone_of(row.operator)[0], today=today(),
+        request.POST or None, zone=zone_of(row.operator)[0], until=moment(),
         waiting=line.waiting, initial={"sent_on": today()},
     )  # fmt: skip
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import csv
+import datetime as dt
 import io
 
 import pytest
@@ -56,8 +57,8 @@ def decide(client, report, **changes):
 
 
 SENT = {
-    "sent_on": "2024-12-21",
-    "sent_time": "08:30",
+    "sent_on": "2024-12-20",
+    "sent_time": "18:30",
     "reference": "OR-1",
     "recipients": "the authority",
     "content": "Crack at STA 630.\r\n\r\nProblem text:\r\nIt grew.",
@@ -73,7 +74,7 @@ def test_it_is_answered_sent_supplemented_and_closed_through_its_pages(
     assert "Problem text:" in text
     assert send(engineer, "report_send", report.pk, **SENT).status_code == 302
     report.refresh_from_db()
-    assert (report.state, f"{report.sent_at:%H:%M}") == ("sent", "08:30")
+    assert (report.state, f"{report.sent_at:%H:%M}") == ("sent", "18:30")
     shown = page(engineer, "report", report.pk)
     assert digest(report.content) in shown
     assert "preliminary analysis by <b>2025-01-19</b>" in shown
@@ -85,6 +86,24 @@ def test_it_is_answered_sent_supplemented_and_closed_through_its_pages(
     send(engineer, "report_close", report.pk, reason="analysis sent")
     report.refresh_from_db()
     assert report.state == "closed"
+
+
+def test_a_report_sent_later_than_now_is_refused_with_both_times(
+    engineer, report, monkeypatch
+):
+    """Trade practice: what has not gone out yet was not sent."""
+    now = dt.datetime(2025, 1, 1, 14, 29, tzinfo=dt.UTC)
+    monkeypatch.setattr("repairs.views.reports.moment", lambda: now)
+    decide(engineer, report)
+    late = SENT | {"sent_on": "2025-01-01", "sent_time": "15:10"}
+    for changes, accepted in ((late, False), (late | {"sent_time": "14:29"}, True)):
+        response = send(engineer, "report_send", report.pk, **changes)
+        report.refresh_from_db()
+        assert (report.state == "sent") is accepted
+        if not accepted:
+            text = response.content.decode()
+            assert "2025-01-01 15:10 UTC lies ahead of now, 2025-01-01 14:29" in text
+            assert 'value="15:10"' in text
 
 
 def test_the_countdown_stands_on_the_page_of_the_finding(engineer, report):
