@@ -1,7 +1,9 @@
 """The text to be signed, in words: the record's lines, then the rows that belong to it.
 
-What is read here is the canonical text itself, so nothing is shown that is not signed.
-What only keeps records apart is left to the exact text that stands below.
+What is read here is the canonical text itself, so nothing is shown that is not signed,
+but for the findings of a folder: their numbers are signed, and beside them stands what
+is recorded of each, which later measurements may change. What only keeps records apart
+is left to the exact text that stands below.
 """
 
 from __future__ import annotations
@@ -29,6 +31,7 @@ from repairs.models import (
     Repair,
     Substantiation,
 )
+from repairs.selectors.findings import size_words
 from repairs.selectors.signatures import ROWS_OF, SUBJECT_COLUMN, Subject
 
 Worded = Disposition | Repair | Finding | Substantiation
@@ -69,6 +72,8 @@ READ_FIRST = (
     "place_text",
     "place_entered",
 )
+FINDINGS_NOW = "Findings covered, as recorded now"
+FINDINGS_HEAD = ("finding", "damage type", "location", "last measured", "criticality")
 READ_LAST = ("entered_by_id", "entered_by", "entered_at", "operator_id", "operator")
 
 
@@ -170,7 +175,28 @@ def to_sign(subject: Worded, content: str) -> dict[str, Any]:
     """What `fleet/_to_sign.html` shows: the words, the exact text, and its digest."""
     unit = subject.aircraft.variant.aircraft_type.entry_unit
     parts = content_in_words(subject, content, unit)
+    if isinstance(subject, Substantiation):
+        parts = [told for one in parts for told in _beside(one, subject)]
     return {"parts": parts, "content": content, "digest": digest(content)}
+
+
+def _beside(part: Part, folder: Substantiation) -> list[Part]:
+    """After the numbers that are signed, what is recorded of each finding now."""
+    if part.title != TITLES["findings"]:
+        return [part]
+    rows = folder.finding_rows.filter(withdrawn=False).select_related("finding")
+    measured = rows.prefetch_related("finding__measurements__values")
+    told = [
+        (
+            one.number,
+            one.get_damage_type_display(),
+            one.place_text or one.place_entered,
+            size_words(one.measurements.all()),
+            one.get_criticality_display(),
+        )
+        for one in sorted((row.finding for row in measured), key=str)
+    ]
+    return [part, Part(FINDINGS_NOW, head=FINDINGS_HEAD, rows=told)]
 
 
 def content_in_words(subject: Subject, content: str, length_unit: str) -> list[Part]:

@@ -148,6 +148,36 @@ def test_a_repair_is_signed_in_the_trades_words(client, world):
     assert "PSE" in words
 
 
+def test_a_folder_is_signed_with_its_effects_and_what_is_known_of_its_findings(
+    client, world
+):
+    """Worded as entered: the effects answered, and of each finding its damage, place,
+    last measured size and criticality (trade practice for a damage report)."""
+    folder, page = page_of(client, world, "substantiation")
+    words = page[: page.index("<details>")]
+    (row,) = folder.finding_rows.all()
+    length = row.finding.measurements.last().values.get(quantity="length_mm")
+    covered = words[words.index("Findings covered, as recorded now") :]
+    covered = html.unescape(covered.partition("</section>")[0])
+    for told in (
+        row.finding.number,
+        row.finding.get_damage_type_display(),
+        row.finding.place_text,
+        length.entered,
+        row.finding.get_criticality_display(),
+    ):
+        assert f"{told}" in covered, told
+    effects = words[words.index("<h2>Effects") :].partition("</section>")[0]
+    signed = json.loads(exact_text(page))["effects"]
+    assert len(signed) == folder.effects.count() == effects.count("<tr><td>")
+    for one in folder.effects.all():
+        assert one.get_touches_display() in effects
+        assert one.get_answer_display() in effects
+        assert html.escape(one.note) in effects
+        said = {"touches": one.touches, "answer": one.answer, "note": one.note}
+        assert said in signed
+
+
 def test_what_an_evaluation_signs_is_shown_by_its_results_and_note(client, world):
     _, page = page_of(client, world, "evaluation")
     words = page[: page.index("<details>")]

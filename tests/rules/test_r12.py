@@ -132,7 +132,8 @@ ALTERED = {
     "a case withdrawn": (SubstantiationCase._meta.db_table, "withdrawn = true"),
     "an answer": (SubstantiationNeighbour._meta.db_table, "answer = 'interacts'"),
     "a gap": (SubstantiationNeighbour._meta.db_table, "gap_mm = 1"),
-    "an effect": ("repairs_substantiationeffect", "note = 'changed'"),
+    "an effect": ("repairs_substantiationeffect", "answer = 'unknown'"),
+    "what an effect is": ("repairs_substantiationeffect", "note = 'changed'"),
     "a page": (SubstantiationDocument._meta.db_table, "page = 'p. 9'"),
     "a finding": ("repairs_substantiationfinding", "withdrawn = true"),
 }
