@@ -49,6 +49,7 @@ from repairs.models import (
     Substantiation,
     Surface,
 )
+from repairs.selectors.substantiation_stages import stage_of_named
 from repairs.services.repair_entry import (
     Data,
     Fastener,
@@ -64,6 +65,11 @@ STAGES = [
     ("2", "stage 2"),
     ("3", "stage 3"),
 ]
+NO_STAGE = {"not_applicable": "none"}
+STAGE_DIFFERS = (
+    "{folder} has reached: {reached}; here it says: {said}. Choose {reached}, or name "
+    "another substantiation."
+)
 EVIDENCE = [
     ("not_applicable", "not applicable"),
     ("seen", "seen"),
@@ -165,6 +171,10 @@ class PlanForm(forms.Form):
                 said = f"{UNIT_WORDS[unit]} unless you write another unit."
                 field.help_text = f"{field.help_text} {said}".strip()
         self.unit, self.today = unit, today
+        self.folders = choices["substantiation"]
+        named = self.initial.get("substantiation")
+        if stage := stage_of_named(self.folders, named):
+            self.initial["stage_reached"] = stage
 
     def groups(self) -> list[Group]:
         """The fields in the order they are asked."""
@@ -178,6 +188,19 @@ class PlanForm(forms.Form):
 
     def clean_inspection_required(self) -> bool | None:
         return {"yes": True, "no": False}.get(self.cleaned_data["inspection_required"])
+
+    def clean(self) -> dict[str, Any]:
+        """The stage stated is the one that the folder has reached."""
+        data = super().clean() or self.cleaned_data
+        folder, said = data.get("substantiation"), data.get("stage_reached")
+        reached = stage_of_named(self.folders, folder)
+        if folder and said and NO_STAGE.get(said, said) != reached:
+            words = dict(STAGES)
+            text = STAGE_DIFFERS.format(
+                folder=folder, reached=words[reached], said=words[said]
+            )
+            self.add_error("stage_reached", text)
+        return data
 
     def approval(self) -> Data | None:
         data = self.cleaned_data

@@ -53,6 +53,16 @@ def stage_reached(row: Substantiation) -> int:
     return max((STAGE_OF.get(one, 0) for one in meanings), default=0)
 
 
+def stage_of_named(rows: QuerySet[Substantiation], key: object) -> str:
+    """The stage of the folder a form names, as a repair states it; empty: none named.
+
+    One that is not among the rows offered is not told of.
+    """
+    text = str(getattr(key, "pk", key) or "")
+    row = rows.filter(pk=int(text)).first() if text.isdecimal() else None
+    return str(stage_reached(row) or "none") if row is not None else ""
+
+
 def approved_revision(row: Substantiation, stage: int) -> Substantiation | None:
     """The latest revision by which that very stage was approved; one query."""
     rows = revisions_of(row).filter(approvals__meaning__in=BY_STAGE[stage])

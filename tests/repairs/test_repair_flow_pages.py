@@ -11,12 +11,14 @@ from django.urls import reverse
 from fleet.drawing.sheet import Sheet
 from fleet.drawing.structure_map import MapRepair, StructureMap, structure_map_svg
 from fleet.services.applicability import document_applicability_record
+from repairs.forms.repairs import STAGE_DIFFERS
 from repairs.models import Repair
 from repairs.repair_file import ITEMS
 from repairs.selectors.maps import repairs_of
 from repairs.selectors.repairs import repairs_listed
 from repairs.services.repair_entry import Answered, Layer, Required, Step
 from tests.factories import NOW, PASSWORD, authorise
+from tests.folder_rows import folders_make
 from tests.queries import assert_same_queries
 from tests.record_rows import assessed
 from tests.repair_rows import PLACE, RELEASED, embody, inspection, plan, record
@@ -93,6 +95,23 @@ def test_a_repair_is_planned_from_a_finding_and_then_released(engineer, world):
     finding.refresh_from_db()
     assert (repair.state, finding.state) == ("embodied", "rectified")
     assert repair.approvals.count() == 0  # another released it, on paper
+
+
+def test_the_stage_starts_from_the_folder_and_may_not_contradict_it(engineer, world):
+    """AMC 20-20A appendix 3 annex 1: the stages are approvals, not statements."""
+    folders = folders_make(world)
+    folder = folders.approve(folders.ready(), "stage_1")
+    url = reverse("repair_plan")
+    asked = {"aircraft": world.aircraft.pk, "substantiation": folder.pk}
+    form = engineer.get(url, asked).context["form"]
+    assert form["stage_reached"].value() == "1"
+    said = filled(form) | {"stage_reached": "not_applicable", "step": "save"}
+    (problem,) = engineer.post(url, said).context["form"].errors["stage_reached"]
+    assert problem == STAGE_DIFFERS.format(
+        folder=folder, reached="stage 1", said="not applicable"
+    )
+    said["stage_reached"] = "1"
+    assert "stage_reached" not in engineer.post(url, said).context["form"].errors
 
 
 def test_who_released_it_signs_the_release(client, world):
