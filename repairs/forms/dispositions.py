@@ -31,6 +31,8 @@ from repairs.services.finding_guards import KEEPS_DAMAGE
 
 REVIEW_FIRST = "Say whether {item} interacts; small damages can act together."
 WHY = "Say why, in a few words."
+NO_DOCUMENT = "none: this signature"
+NAME_DOCUMENT = "choose: a stage names its document"
 REVIEW = [("", "not reviewed"), ("no", "does not interact"), ("yes", "interacts")]
 DATA = (
     "document_kind", "document_reference", "document_revision", "document_page",
@@ -169,7 +171,7 @@ class SignForm(SignatureForm):
     statement = forms.CharField(required=False)
     document_kind = forms.ChoiceField(
         label="approval document", required=False,
-        choices=[("", "none: this signature"), *Document.Kind.choices],
+        choices=[("", NO_DOCUMENT), *Document.Kind.choices],
     )  # fmt: skip
     document_number = forms.CharField(required=False, label="its number")
     document_issuer = forms.CharField(required=False, label="its issuer")
@@ -182,10 +184,14 @@ class SignForm(SignatureForm):
     shown_digest = forms.CharField(widget=forms.HiddenInput)
 
     def __init__(
-        self, *args: Any, meanings: list[tuple[str, str]], **kwargs: Any
-    ) -> None:
+        self, *args: Any, meanings: list[tuple[str, str]], by_document: bool,
+        **kwargs: Any,
+    ) -> None:  # fmt: skip
         super().__init__(*args, **kwargs)
         self.fields["meaning"].choices = meanings  # type: ignore[attr-defined]
+        if by_document:
+            kinds = [("", NAME_DOCUMENT), *Document.Kind.choices]
+            self.fields["document_kind"].choices = kinds  # type: ignore[attr-defined]
 
 
 def _near_label(one: Near, unit: str) -> str:

@@ -234,6 +234,13 @@ def folder_shown(row: Substantiation, *, day: dt.date) -> FolderShown:
     )
 
 
+def folder_meaning_next(row: Substantiation) -> Meaning | None:
+    """What the revision is signed as next, as its page says it; one query."""
+    whole = with_standing(Substantiation.objects.filter(pk=row.pk)).get()
+    reached: int = whole.reached  # type: ignore[attr-defined]
+    return _next_meaning(revision_state(whole), reached)
+
+
 def _next_meaning(state: str, reached: int) -> Meaning | None:
     """What this revision is signed as next; None after the last stage."""
     if state == DRAFT:

@@ -26,8 +26,10 @@ from repairs.models import (
     Substantiation,
 )
 from repairs.selectors.evaluation_shown import evaluation_shown
+from repairs.selectors.next_meaning import meaning_next
 from repairs.selectors.signatures import Subject, approvals_verified, content_of
 from repairs.selectors.signed_words import to_sign
+from repairs.selectors.substantiation_stages import STAGE_OF
 from repairs.services.approvals import Signed, aircraft_of, approval_sign
 from repairs.services.evaluations import method_versions
 from repairs.services.substantiation_signing import MEANINGS as SUBSTANTIATION_MEANINGS
@@ -58,13 +60,7 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
     subject: Any = visible_or_404(rows, request.user, pk=pk)
     require(request.user, "approval_sign", aircraft_of(subject).operator_id)
     content = content_of(subject)
-    form = SignForm(
-        request.POST or None,
-        request.FILES or None,
-        meanings=[(one.value, one.label) for one in MEANINGS[what]],
-        user=request.user,
-        initial={"shown_digest": digest(content)},
-    )
+    form = _form(request, what, subject, digest(content))
     about = [subject, subject.approvals.all()]
     save = partial(_sign, request, subject, form)
     if made := sent_signed(request, form, save, about=about):
@@ -73,6 +69,19 @@ def approval_new(request: Request, what: str, pk: int) -> HttpResponse:
         return redirect(what, pk)
     context = {"what": what, "form": form, **_to_read(subject, content)}
     return render(request, "repairs/approval_new.html", context)
+
+
+def _form(request: Request, what: str, subject: Any, shown: str) -> SignForm:
+    """It starts at the meaning that comes next; a folder's stage asks its document."""
+    following = meaning_next(subject, MEANINGS[what])
+    return SignForm(
+        request.POST or None,
+        request.FILES or None,
+        meanings=[(one.value, one.label) for one in MEANINGS[what]],
+        by_document=isinstance(subject, Substantiation) and following in STAGE_OF,
+        user=request.user,
+        initial={"shown_digest": shown, "meaning": following},
+    )
 
 
 def _to_read(subject: Any, content: str) -> dict[str, Any]:

@@ -17,7 +17,8 @@ from fleet.canonical import digest
 from fleet.services.materials import demo_values_load
 from repairs.selectors.signatures import content_of
 from repairs.selectors.signed_words import LEFT_OUT, TITLES, content_in_words
-from tests.factories import FIXTURES, NOW, TODAY
+from repairs.services.approvals import approval_sign
+from tests.factories import FIXTURES, NOW, TODAY, program
 from tests.folder_rows import folders_make
 from tests.record_rows import found
 from tests.repair_rows import plan, record
@@ -83,6 +84,23 @@ def test_the_words_come_first_then_the_exact_text_then_the_form(client, world, w
     _, page = page_of(client, world, what)
     words = page.index("Calculation note" if what == "evaluation" else "Not stated:")
     assert words < page.index("<details>") < page.index('name="meaning"')
+
+
+def test_the_form_proposes_what_nobody_has_signed_and_no_rejection(client, world):
+    """An evaluation is checked, then approved (trade practice: two people)."""
+    evaluation, page = page_of(client, world, "evaluation")
+    assert 'value="checked" selected' in page
+    approval_sign(
+        subject=evaluation,
+        meaning="checked",
+        proof=program(world.approver),
+        shown_digest=digest(content_of(evaluation)),
+        on=TODAY,
+        actor=world.users["signatory"],
+        at=NOW,
+    )
+    page = client.get(reverse("evaluation_sign", args=[evaluation.pk]))
+    assert 'value="approved" selected' in page.content.decode()
 
 
 def values(content) -> list[tuple[str, object]]:

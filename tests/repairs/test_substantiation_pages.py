@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 import pytest
 from django.core.files.uploadedfile import SimpleUploadedFile
 from django.urls import reverse
@@ -183,6 +185,7 @@ def test_three_people_sign_it_with_their_passwords(client, folders, world):
         client.force_login(user)
         address = reverse("substantiation_sign", args=[folder.pk])
         shown = client.get(address)
+        assert f'value="{meaning}" selected' in shown.content.decode()
         said = {
             "meaning": meaning,
             "shown_digest": shown.context["digest"],
@@ -198,6 +201,30 @@ def test_three_people_sign_it_with_their_passwords(client, folders, world):
     assert "approved, stage 1" in page
     assert "agrees with what was signed" in page
     assert "ARD-RDA-0077" in page
+
+
+@pytest.mark.parametrize(
+    ("signed", "proposed", "none_offered"),
+    [
+        ((), "prepared", True),
+        (("prepared",), "checked", True),
+        (("prepared", "checked"), "stage_1", False),
+        (("prepared", "checked", "stage_1"), "stage_2", False),
+    ],
+)
+def test_the_form_starts_at_the_meaning_that_comes_next(
+    client, folders, world, signed, proposed, none_offered
+):
+    """An approval of a stage is given by a document (AMC 20-20A appendix 3 annex 1);
+    to prepare and to check needs none."""
+    folder = folders.ready(scale="minor")
+    for meaning in signed:
+        folders.sign(folder, meaning)
+    client.force_login(world.users["signatory"])
+    page = text_of(client, "substantiation_sign", folder.pk)
+    assert re.findall(r'value="(\w+)" selected', page) == [proposed]
+    assert ("none: this signature" in page) == none_offered
+    assert ("choose: a stage names its document" in page) != none_offered
 
 
 def test_the_sign_page_says_what_is_missing_and_keeps_the_statement(
