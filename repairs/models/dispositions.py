@@ -98,6 +98,11 @@ class Disposition(AtCounters, Entered):
     def __str__(self) -> str:
         return self.number
 
+    @property
+    def revised(self) -> str:
+        """Its number with the revision, as "D-0644 rev 1"."""
+        return f"{self.number} rev {self.revision}" if self.revision else self.number
+
 
 class DispositionFinding(models.Model):
     """A finding that a disposition answers. Append-only."""

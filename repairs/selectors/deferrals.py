@@ -10,6 +10,7 @@ from fleet.amounts import amount_write, counters_write
 from fleet.due import COUNTED, Counters
 from repairs.models import (
     Disposition,
+    DispositionFinding,
     DispositionKind,
     Finding,
     FindingLink,
@@ -103,6 +104,14 @@ def deferrals_of(records: Iterable[Finding]) -> list[Disposition]:
         "basis_document", "decided_by", "authorisation", "replaced_by"
     )
     return list(shown.order_by("decided_on", "pk").distinct())
+
+
+def answered_with(row: DispositionFinding, finding: Finding) -> list[Finding]:
+    """The other findings that this deferral of a finding holds to this day."""
+    rows = Finding.objects.filter(
+        disposition_rows__disposition=row.disposition_id, state=FindingState.DEFERRED
+    )
+    return list(rows.exclude(pk=finding.pk).order_by("pk"))
 
 
 def chain_of(findings: Iterable[Finding]) -> Chain:

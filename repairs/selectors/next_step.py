@@ -8,7 +8,7 @@ from django.urls import reverse
 
 from fleet.access import may
 from fleet.models import User
-from repairs.models import Finding, FindingState
+from repairs.models import Disposition, DispositionKind, Finding, FindingState
 
 S = FindingState
 
@@ -30,6 +30,21 @@ def next_step(finding: Finding, problems: list[str], user: User) -> Step | None:
     if name == "repair_new":
         address += f"?aircraft={finding.aircraft_id}&finding={finding.pk}"
     return Step(address, words)
+
+
+def deferral_to_extend(row: Disposition, user: User) -> Step | None:
+    """Where a deferral that runs is extended; None when it is over or replaced."""
+    if row.kind != DispositionKind.DEFER or hasattr(row, "replaced_by"):
+        return None
+    rows = row.finding_rows.filter(finding__state=S.DEFERRED).order_by("finding")
+    key = rows.values_list("finding", flat=True).first()
+    if key is None or not may(user, "disposition_decide", row.aircraft.operator_id):
+        return None
+    return _extend(key)
+
+
+def _extend(key: int) -> Step:
+    return Step(f"{reverse('disposition_new', args=[key])}?kind=defer", "Extend")
 
 
 def further_steps(finding: Finding, user: User) -> list[Step]:
@@ -59,6 +74,9 @@ def further_steps(finding: Finding, user: User) -> list[Step]:
         for name, words, action, possible in offered
         if possible and may(user, action, finding.aircraft.operator_id)
     ]
+    may_decide = may(user, "disposition_decide", finding.aircraft.operator_id)
+    if finding.state == S.DEFERRED and may_decide:
+        steps.insert(0, _extend(finding.pk))
     may_draft = may(user, "substantiation_draft", finding.aircraft.operator_id)
     if open_to_change and may_draft:
         address = f"{reverse('substantiation_new')}?finding={finding.pk}"

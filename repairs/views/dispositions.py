@@ -23,9 +23,10 @@ from repairs.forms.groups import group
 from repairs.forms.raised import RaisedForm
 from repairs.models import Disposition, Finding
 from repairs.selectors.choices import decision_choices
-from repairs.selectors.deferrals import chain_of
+from repairs.selectors.deferrals import answered_with, chain_of
 from repairs.selectors.findings import disposition_whole, finding_whole
 from repairs.selectors.neighbours import neighbours
+from repairs.selectors.next_step import deferral_to_extend
 from repairs.selectors.report_triggers import is_critical_crack
 from repairs.selectors.signatures import approvals_verified
 from repairs.services.disposition_entry import DispositionEntry
@@ -63,7 +64,7 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
     if raised.is_valid() and (
         made := sent_signed(request, form, save, about=[row, *also])
     ):
-        messages.success(request, DECIDED.format(number=made))
+        messages.success(request, DECIDED.format(number=made.revised))
         return redirect("disposition", made.pk)
     context = {
         "finding": row,
@@ -98,6 +99,7 @@ def disposition(request: Request, pk: int) -> HttpResponse:
         "repairs": row.repairs.all(),
         "later": Disposition.objects.filter(replaces=row).first(),
         "approvals": approvals_verified(row),
+        "extends": deferral_to_extend(row, request.user),
         "may_sign": may(request.user, "approval_sign", row.aircraft.operator_id),
         "unit": row.aircraft.variant.aircraft_type.entry_unit,
         "history": history_of(row),
@@ -106,11 +108,16 @@ def disposition(request: Request, pk: int) -> HttpResponse:
 
 
 def _initial(request: Request, row: Finding) -> dict[str, Any]:
-    """A crack in PSE or FCS starts as: rectify before further flight."""
+    """A crack in PSE or FCS starts as: rectify before further flight.
+
+    An address may ask for another decision; extending takes all that was deferred.
+    """
     flown = standing_on(row.aircraft, today()).at
     current = row.disposition_rows.order_by("-pk").first()
+    kind = request.GET.get("kind") or ("rectify" if is_critical_crack(row) else "")
     return {
-        "kind": "rectify" if is_critical_crack(row) else "",
+        "kind": kind,
+        "also": answered_with(current, row) if kind == "defer" and current else [],
         "decided_on": today(),
         "at_minutes": flown.minutes,
         "at_cycles": flown.cycles,

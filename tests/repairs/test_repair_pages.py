@@ -15,6 +15,7 @@ from repairs.selectors.repair_status_cells import HEADER
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
 from tests.factories import NOW, PASSWORD, program, signed
+from tests.finding_rows import defer
 from tests.queries import assert_same_queries
 from tests.record_rows import CRACK, FOUND, assessed, found
 
@@ -116,6 +117,38 @@ def test_a_refused_decision_keeps_what_was_typed(engineer, world):
     assert "approval document of a design approval holder" in page
     assert "within the manual&#x27;s limits" in page
     assert not Disposition.objects.exists()
+
+
+def test_a_running_deferral_is_extended_for_all_it_holds(client, world):
+    """Trade practice: a deferral is extended by what replaces it, under its number."""
+    one, two = assessed(world), assessed(world)
+    row = defer(world, one, two)
+    client.force_login(world.users["certifier"])
+    url = f"{reverse('disposition_new', args=[one.pk])}?kind=defer"
+    for name, pk in (("disposition", row.pk), ("finding", one.pk)):
+        page = client.get(reverse(name, args=[pk])).content.decode()
+        assert f'href="{url}">Extend</a>' in page
+    context = client.get(url).context
+    form = context["form"]
+    assert (form["kind"].value(), form["replaces"].value()) == ("defer", row.pk)
+    assert form["also"].value() == [two.pk]
+    said = filled(form, context["raised"]) | {
+        "also": [two.pk],
+        "near_0": "no",
+        "why_0": "one decision answers both",
+        "document_reference": "SRM 53-10-12",
+        "document_page": "p. 101",
+        "reason": "to the next check",
+        "limit_cycles": "10400",
+        "crew_informed_on": "2025-01-01",
+    }
+    response = client.post(url, signed(said), follow=True)
+    text = response.content.decode()
+    assert f"{row.number} rev 1 is recorded" in text
+    crumb = text.partition('class="crumb"')[2].partition("<h1>")[0]
+    assert [row.number in crumb for row in (one, two)] == [True, True]
+    earlier = client.get(reverse("disposition", args=[row.pk])).content.decode()
+    assert "Extend</a>" not in earlier
 
 
 def test_a_neighbour_is_reviewed_before_damage_is_left(engineer, world):
