@@ -141,7 +141,7 @@ def finding_assess_page(request: Request, pk: int) -> HttpResponse:
 
     send = partial(sent_signed, request)
     read = to_sign(row, content_of(row))
-    return _page(request, row, [form], save, "Assess", "Assessed", send=send, read=read)
+    return _page(request, row, [form], save, "Assess", "Assess", send=send, read=read)
 
 
 @require_http_methods(METHODS)
@@ -175,7 +175,7 @@ def finding_close_page(request: Request, pk: int) -> HttpResponse:
 
     send = partial(sent_signed, request)
     read = to_sign(row, content_of(row))
-    return _page(request, row, [form], save, "Close", "Closed", send=send, read=read)
+    return _page(request, row, [form], save, "Close", "Close", send=send, read=read)
 
 
 @require_http_methods(METHODS)
