@@ -68,7 +68,7 @@ def _stage_1(loaded: Loaded, repair: Repair) -> Substantiation:
             scale_reason="longer than the published doubler, otherwise as published",
             category="pending",
             category_reason="damage-tolerance data awaited",
-            data_due_on=dt.date(2025, 1, 1),
+            data_due_on=dt.date(2025, 2, 1),
         ),
         aircraft=repair.aircraft,
         findings=[],
