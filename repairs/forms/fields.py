@@ -80,7 +80,8 @@ class Several(forms.ModelMultipleChoiceField):
     def label_from_instance(self, obj: Any) -> str:
         if isinstance(obj, Finding):
             what = obj.get_damage_type_display()
-            return f"{obj} {what}, {obj.place_text or obj.place_entered}"
+            place = obj.place_text or obj.place_entered
+            return f"{obj} {what}, {place}, {obj.get_state_display()}"
         if isinstance(obj, Repair):
             return f"{obj} {obj.get_kind_display()}, {obj.place_text}"
         if isinstance(obj, Evaluation):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import datetime as dt
+from collections.abc import Sequence
 from typing import Any
 
 from django import forms
@@ -39,6 +40,7 @@ KINDS = [
     ("fatigue", "fatigue and damage tolerance"),
 ]
 NOTHING_ANSWERED = "Answer at least one of the effects."
+FURTHER = "Further findings of the aircraft: {count}"
 FROM_RELEASE = "Counted from the release."
 LONG = forms.Textarea(attrs={"rows": 2})
 
@@ -142,15 +144,45 @@ class NewFolderForm(FolderForm):
     """A new folder: also the findings it covers, and the repair it is of."""
 
     findings = Several(Finding.objects.none(), label="findings covered", required=False)
+    further = Several(Finding.objects.none(), label="covered too", required=False)
     repair = forms.ModelChoiceField(
         Repair.objects.none(), required=False, empty_label="none yet",
         label="is the folder of",
     )  # fmt: skip
 
-    def __init__(self, *args: Any, findings: Any, repairs: Any, **kwargs: Any) -> None:
+    def __init__(
+        self, *args: Any, findings: Any, first: Sequence[int], repairs: Any,
+        **kwargs: Any,
+    ) -> None:  # fmt: skip
         super().__init__(*args, **kwargs)
-        choose(self, "findings", findings)
+        for name in ("findings", "further"):
+            choose(self, name, findings)
         choose(self, "repair", repairs)
+        self._part(first)
+
+    def _part(self, first: Sequence[int]) -> None:
+        """Those to show first, in their order; either list takes any finding."""
+        shown: Any = self.fields["findings"]
+        rest: Any = self.fields["further"]
+        told = {value.value: (value, label) for value, label in shown.choices}
+        shown.widget.choices = [told.pop(key) for key in first if key in told]
+        rest.widget.choices = list(told.values())
+        if not rest.widget.choices:
+            del self.fields["further"]
+
+    def groups(self) -> list[Group]:
+        """The findings further off are folded away."""
+        one, *others = super().groups()
+        further: Any = self.fields.get("further")
+        if further is None:
+            return [one, *others]
+        legend = FURTHER.format(count=len(further.widget.choices))
+        return [one, group(self, legend, ("further",), True), *others]
+
+    def covered(self) -> list[Finding]:
+        """The findings ticked in either list."""
+        data = self.cleaned_data
+        return list(dict.fromkeys([*data["findings"], *data.get("further", ())]))
 
 
 class ReviseForm(forms.Form):

@@ -2,15 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+import datetime as dt
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
 from django.db.models import Q, QuerySet
 
 from fleet.models import Aircraft, AuthorisationScope, Person
-from repairs.models import ASIDE_STATES, Evaluation, Finding, Repair, Substantiation
+from fleet.selectors.people import policy
+from repairs.models import (
+    ASIDE_STATES,
+    Evaluation,
+    Finding,
+    FindingState,
+    Repair,
+    Substantiation,
+)
 from repairs.selectors.choices import signers_at
+from repairs.selectors.review_reach import REVIEW_REACH, within_reach
 
 PREPARERS = (
     AuthorisationScope.ASSESS,
@@ -28,6 +38,31 @@ def findings_to_cover(aircraft: Aircraft) -> QuerySet[Finding]:
     """Findings of the aircraft that stand, the newest first."""
     rows = Finding.objects.filter(aircraft=aircraft).exclude(state__in=ASIDE_STATES)
     return rows.order_by("-found_on", "-pk")
+
+
+def findings_nearby(
+    findings: QuerySet[Finding], start: Sequence[int], day: dt.date
+) -> list[int]:
+    """Keys of those to show first: where the folder starts, then what is open near it.
+
+    Near is within the operator's reach for the review; a folder that starts at no
+    finding shows first all that are open.
+    """
+    if not start:
+        rows = findings.exclude(state=FindingState.CLOSED)
+        return list(rows.values_list("pk", flat=True))
+    related = ("section", "geometry", "aircraft__variant", "aircraft__operator")
+    origins = list(findings.filter(pk__in=start).select_related(*related))
+    keys = [one.pk for one in origins]
+    if not origins:
+        return keys
+    reach = policy(origins[0].aircraft.operator, REVIEW_REACH, day)
+    near = (one.item for one in within_reach(origins, reach.value if reach else None))
+    return keys + [
+        one.pk
+        for one in near
+        if isinstance(one, Finding) and one.state != FindingState.CLOSED
+    ]
 
 
 def repairs_without_folder(aircraft: Aircraft) -> QuerySet[Repair]:

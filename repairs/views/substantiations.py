@@ -36,6 +36,8 @@ from repairs.models import Substantiation
 from repairs.selectors.choices import aircraft_chosen, aircraft_of
 from repairs.selectors.signatures import approvals_verified
 from repairs.selectors.substantiation_choices import (
+    NewFolder,
+    findings_nearby,
     findings_to_cover,
     new_folder_of,
     preparers_at,
@@ -103,13 +105,7 @@ def substantiation_new(request: Request) -> HttpResponse:
     if aircraft is None:
         context: dict[str, Any] = {"choices": choices}
         return render(request, "repairs/substantiation_new.html", context)
-    form = NewFolderForm(
-        request.POST or None,
-        people=preparers_at(aircraft),
-        findings=findings_to_cover(aircraft),
-        repairs=repairs_without_folder(aircraft),
-        initial=start.initial | {"prepared_by": request.user.person_id},
-    )
+    form = _new_form(request, aircraft, start)
     if made := sent(form, partial(_draft, request, aircraft, form)):
         messages.success(request, DRAFTED.format(number=made))
         return redirect("substantiation", made.pk)
@@ -117,11 +113,23 @@ def substantiation_new(request: Request) -> HttpResponse:
     return render(request, "repairs/substantiation_new.html", context)
 
 
+def _new_form(request: Request, aircraft: Aircraft, start: NewFolder) -> NewFolderForm:
+    findings = findings_to_cover(aircraft)
+    return NewFolderForm(
+        request.POST or None,
+        people=preparers_at(aircraft),
+        findings=findings,
+        first=findings_nearby(findings, start.initial.get("findings", ()), today()),
+        repairs=repairs_without_folder(aircraft),
+        initial=start.initial | {"prepared_by": request.user.person_id},
+    )
+
+
 def _draft(request: Request, aircraft: Aircraft, form: NewFolderForm) -> Substantiation:
     return substantiation_draft(
         entry=form.entry(),
         aircraft=aircraft,
-        findings=form.cleaned_data["findings"],
+        findings=form.covered(),
         repair=form.cleaned_data["repair"],
         actor=request.user,
         at=now(),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import html
 import re
 
 import pytest
@@ -68,6 +69,41 @@ def test_a_folder_is_drafted_from_its_finding_and_named_on_it(engineer, folders,
     assert reverse("substantiation", args=[folder.pk]) in text_of(
         engineer, "finding", finding.pk
     )
+
+
+def test_what_is_open_nearby_is_offered_first_and_the_rest_folded(
+    engineer, folders, world
+):
+    """Damages near one another are judged together (14 CFR 26.41: the repair and the
+    structure it affects); the reach of the policy is 508 mm, 20 in."""
+    finding = assessed(world)
+    near = found(world, place_entered=NEAR)
+    far = found(world, place_entered="STA 900, S-7R")
+    address = f"{reverse('substantiation_new')}?finding={finding.pk}"
+    page = engineer.get(address).content.decode()
+    first, _, folded = page.partition("Further findings of the aircraft: 1")
+    ticked = [f'name="findings" value="{one.pk}"' for one in (finding, near)]
+    assert 0 < first.index(ticked[0]) < first.index(ticked[1])
+    assert f'name="further" value="{far.pk}"' in folded
+    assert "<details><summary>" in first[-30:]
+    place = html.escape(near.place_text)
+    assert f"{near} {near.get_damage_type_display()}, {place}, reported" in first
+    said = FOLDER | {"findings": [finding.pk], "further": [far.pk]}
+    refused = engineer.post(address, said).content.decode()
+    assert "<details open><summary>Further findings" in refused
+    engineer.post(address, said | {"prepared_by": world.assessor.pk})
+    covered = Substantiation.objects.get().finding_rows.values_list("finding")
+    assert {key for (key,) in covered} == {finding.pk, far.pk}
+
+
+def test_a_closed_finding_nearby_is_folded_away(engineer, folders, world):
+    """Closed means that no damage remains (this programme's own word)."""
+    finding, closed = assessed(world), found(world, place_entered=NEAR)
+    type(closed).objects.filter(pk=closed.pk).update(state="closed")
+    address = f"{reverse('substantiation_new')}?finding={finding.pk}"
+    page = engineer.get(address).content.decode()
+    assert f'name="further" value="{closed.pk}"' in page
+    assert f'name="findings" value="{closed.pk}"' not in page
 
 
 def test_a_folder_is_drafted_from_a_repair_and_becomes_its_folder(
