@@ -191,7 +191,7 @@ def _beside(part: Part, folder: Substantiation) -> list[Part]:
             one.number,
             one.get_damage_type_display(),
             one.place_text or one.place_entered,
-            size_words(one.measurements.all()),
+            size_words(list(one.measurements.all())),
             one.get_criticality_display(),
         )
         for one in sorted((row.finding for row in measured), key=str)
