@@ -15,6 +15,7 @@ from fleet.units import measure_write
 from repairs.forms.fields import ACCEPTED_FILES, CountersForm, DataForm, Several, choose
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
+from repairs.forms.told import DecisionChoice
 from repairs.models import (
     Disposition,
     DispositionKind,
@@ -88,7 +89,7 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
         Substantiation.objects.none(), required=False,
         help_text="The folder that covers the finding; its stage clock starts here.",
     )  # fmt: skip
-    replaces = forms.ModelChoiceField(
+    replaces = DecisionChoice(
         Disposition.objects.none(), required=False, label="replaces",
         help_text="An earlier decision, such as the deferral this one extends.",
     )  # fmt: skip

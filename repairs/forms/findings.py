@@ -11,6 +11,7 @@ from fleet.forms.fields import CounterField, DayField
 from fleet.forms.signing import SignatureForm
 from fleet.models import Aircraft, Criticality, Person
 from repairs.forms.fields import CountersForm, DataForm, PhotoForm, choose
+from repairs.forms.told import EventChoice
 from repairs.models import (
     Cause,
     DamageType,
@@ -68,7 +69,7 @@ class FindingForm(CountersForm, PhotoForm):
         label="found during", choices=Occasion.choices, initial=Occasion.OTHER
     )
     task_reference = forms.CharField(label="task card or work order", required=False)
-    event = forms.ModelChoiceField(
+    event = EventChoice(
         Event.objects.none(), required=False, help_text="When it follows an event."
     )
     detection_method = forms.ChoiceField(

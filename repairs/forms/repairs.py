@@ -39,6 +39,7 @@ from repairs.forms.repair_lines import (
     required_of,
     step_of,
 )
+from repairs.forms.told import DecisionChoice, HolderChoice
 from repairs.models import (
     ApprovalBasis,
     Disposition,
@@ -130,7 +131,7 @@ class PlanForm(forms.Form):
     substantiation = forms.ModelChoiceField(
         Substantiation.objects.none(), required=False
     )
-    disposition = forms.ModelChoiceField(Disposition.objects.none(), required=False)
+    disposition = DecisionChoice(Disposition.objects.none(), required=False)
     inspection_required = forms.ChoiceField(
         label="independent inspection", choices=REQUIRED_OR_NOT, required=False
     )
@@ -267,17 +268,19 @@ class RepairForm(SignatureForm, CountersForm, PhotoForm, PlanForm):
         required=False,
         help_text="Or the form on which a major repair was reported.",
     )
-    released_by = forms.ModelChoiceField(
+    released_by = HolderChoice(
         Person.objects.none(), label="released by", required=False,
-        help_text="Yourself signs it here; another's release is recorded from its "
-        "paper, by its reference.",
+        help_text="Among those who hold or held a certifying authorisation. Yourself "
+        "signs it here; another's release is recorded from its paper, by its "
+        "reference.",
     )  # fmt: skip
     performed_by = forms.ModelChoiceField(
         Person.objects.none(), label="performed by", required=False
     )
-    inspected_by = forms.ModelChoiceField(
+    inspected_by = HolderChoice(
         Person.objects.none(), label="inspected by", required=False,
-        help_text="Someone other than who performed it.",
+        help_text="Someone other than who performed it, among those who hold or held "
+        "an inspection authorisation.",
     )  # fmt: skip
     organisation = forms.ModelChoiceField(Organisation.objects.none(), required=False)
     legacy = forms.BooleanField(

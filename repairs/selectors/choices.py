@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any
 
-from django.db.models import Q, QuerySet
+from django.db.models import Prefetch, Q, QuerySet
 
 from fleet.models import (
     Aircraft,
+    Authorisation,
     AuthorisationScope,
     Operator,
     Organisation,
@@ -25,6 +26,7 @@ from repairs.models import (
     RequirementState,
     Substantiation,
 )
+from repairs.selectors.repair_inspections import INSPECTION_LINE
 
 
 def aircraft_of(operators: Sequence[Operator]) -> QuerySet[Aircraft]:
@@ -55,6 +57,22 @@ def signers_at(
     ).distinct()
 
 
+def holders_at(
+    operators: Sequence[Operator], scopes: Sequence[AuthorisationScope]
+) -> QuerySet[Person]:
+    """The same of several operators, each person with what is `held` of it."""
+    granted = Authorisation.objects.filter(operator__in=operators, scope__in=scopes)
+    held = Prefetch("authorisations", granted, to_attr="held")
+    people = Person.objects.filter(authorisations__in=granted)
+    return people.distinct().prefetch_related(held)
+
+
+def decisions_told(rows: QuerySet[Disposition]) -> QuerySet[Disposition]:
+    """Decisions that none replaced, with the findings that their words name."""
+    rows = rows.filter(replaced_by__isnull=True)
+    return rows.prefetch_related("finding_rows__finding")
+
+
 def decision_choices(
     finding: Finding, states: Sequence[str]
 ) -> dict[str, QuerySet[Any]]:
@@ -74,8 +92,8 @@ def decision_choices(
             subjects__applies="yes",
             state=RequirementState.EFFECTIVE,
         ).distinct(),
-        "replaces": Disposition.objects.filter(
-            finding_rows__finding=finding, replaced_by__isnull=True
+        "replaces": decisions_told(
+            Disposition.objects.filter(finding_rows__finding=finding)
         ),
     }
 
@@ -85,19 +103,18 @@ def repair_choices(
 ) -> dict[str, QuerySet[Any]]:
     """What a repair on an aircraft may name; nothing before the aircraft is chosen."""
     people = people_at(operators)
+    keepers = [aircraft.operator] if aircraft is not None else operators
     on_aircraft = {"aircraft": aircraft}
     return {
         "supersedes": Repair.objects.filter(**on_aircraft, state=RepairState.EMBODIED),
-        "disposition": Disposition.objects.filter(
-            **on_aircraft, replaced_by__isnull=True
-        ),
+        "disposition": decisions_told(Disposition.objects.filter(**on_aircraft)),
         "substantiation": Substantiation.objects.filter(
             **on_aircraft, replaced_by__isnull=True
         ),
         "performed_by": people,
         "answered_by": people,
-        "inspected_by": people,
-        "released_by": people,
+        "inspected_by": holders_at(keepers, INSPECTION_LINE),
+        "released_by": holders_at(keepers, (AuthorisationScope.CERTIFY,)),
         "organisation": Organisation.objects.filter(
             Q(operator__in=operators) | Q(operator__isnull=True)
         ),
@@ -129,6 +146,7 @@ def covered_keys(asked: int | None, folder: int | None) -> list[int]:
     return list(rows.distinct().values_list("pk", flat=True))
 
 
-def events_of(user: User) -> QuerySet[Event]:
-    """Events a finding may follow."""
-    return Event.objects.visible_to(user).distinct().select_related("aircraft")
+def events_of(user: User, aircraft: Aircraft | None) -> QuerySet[Event]:
+    """Events a finding may follow: the aircraft's, all before it is chosen."""
+    rows = Event.objects.visible_to(user).distinct().select_related("aircraft")
+    return rows.filter(aircraft=aircraft) if aircraft is not None else rows

@@ -107,7 +107,7 @@ def page_of(request: Request, said: QueryDict, *, bound: bool) -> EntryPage:
     options: dict[str, Any] = {
         "aircraft": choices,
         "people": people_at(operators),
-        "events": events_of(request.user),
+        "events": events_of(request.user, aircraft),
         "today": today(),
     }
     damage_type = said.get("damage_type", "")

@@ -13,7 +13,8 @@ from PIL import Image
 
 from fleet.models import Aircraft, AircraftPeriod
 from repairs.models import Finding, Measurement
-from tests.factories import NOW, authorise, signed
+from tests.factories import NOW, aircraft_make, authorise, signed
+from tests.placed_rows import event_make
 from tests.queries import assert_same_queries
 from tests.record_rows import FOUND, assessed, found
 
@@ -408,3 +409,13 @@ def test_the_present_operator_acts_on_damage_of_an_earlier_period(client, world)
     assert client.post(url, signed(said)).status_code == 302
     finding.refresh_from_db()
     assert (finding.state, finding.operator) == ("assessed", world.operator)
+
+
+def test_an_event_is_told_in_words_and_is_the_aircrafts_own(recorder, world):
+    """Trade practice: a finding follows an event of its own aircraft."""
+    other = aircraft_make(world.operator, world.variant, "Q7-AAB")
+    own, _ = event_make(world.aircraft), event_make(other)
+    url = reverse("finding_new")
+    page = recorder.get(url, {"aircraft": world.aircraft.pk}).context["page"]
+    (told,) = [str(label) for _, label in page.form.fields["event"].choices][1:]
+    assert told == f"{own.number} hail, Q7-AAA, {own.happened_on}"

@@ -14,7 +14,7 @@ from repairs.models import Disposition, DuePoint, Finding, Repair
 from repairs.selectors.repair_status_cells import HEADER
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
-from tests.factories import NOW, PASSWORD, program, signed
+from tests.factories import NOW, PASSWORD, authorise, program, signed
 from tests.finding_rows import defer
 from tests.queries import assert_same_queries
 from tests.record_rows import CRACK, FOUND, assessed, found
@@ -275,6 +275,24 @@ def test_a_line_with_another_separator_is_refused_and_kept(engineer, name, line)
     )
     assert page.context["form"][name].value() == line
     assert field.clean(field.example)[0][0] in ("2024-T3 clad", "solid rivet")
+
+
+def test_choices_of_a_repair_say_what_they_are_and_who_holds_what(engineer, world):
+    """Trade practice: certifying staff are known by number and validity."""
+    row = defer(world, assessed(world))
+    inspector = world.users["recorder"].person
+    authorise(inspector, world.operator, "inspect")
+    held = world.certifier.authorisations.get(scope="certify")
+    url = reverse("repair_new")
+    form = engineer.get(url, {"aircraft": world.aircraft.pk}).context["form"]
+    told = {
+        name: [str(label) for _, label in form.fields[name].choices][1:]
+        for name in ("disposition", "released_by", "inspected_by")
+    }
+    assert told["disposition"] == [f"{row.number} defer, F-0001 dent, {row.decided_on}"]
+    (releaser,) = told["released_by"]
+    assert releaser.startswith(f"{world.certifier}, {held.number} ({held.valid_from}")
+    assert [one.split(",")[0] for one in told["inspected_by"]] == [inspector.name]
 
 
 def test_repairs_hiding_damage_are_found_by_the_filter(engineer, world):
