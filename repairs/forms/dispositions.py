@@ -12,7 +12,15 @@ from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.forms.signing import SignatureForm
 from fleet.models import Document
 from fleet.units import measure_write
-from repairs.forms.fields import ACCEPTED_FILES, CountersForm, DataForm, Several, choose
+from repairs.forms.fields import (
+    ACCEPTED_FILES,
+    FURTHER,
+    CountersForm,
+    DataForm,
+    Several,
+    choose,
+    part,
+)
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
 from repairs.forms.told import DecisionChoice
@@ -57,6 +65,7 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
         Finding.objects.none(), label="also for", required=False,
         help_text="Other findings of this aircraft the same decision answers.",
     )  # fmt: skip
+    further = Several(Finding.objects.none(), label="and for", required=False)
     reason = forms.CharField(widget=forms.Textarea(attrs={"rows": 3}))
     decided_on = DayField(label="decided on")
     limit_minutes = HoursField(label="deferral limit, flight hours", required=False)
@@ -103,6 +112,7 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
             choose(self, name, rows)
             if not rows.exists():
                 del self.fields[name]
+        self._part_also(near)
         self.today, self.near = today, near
         for number, one in enumerate(near):
             self.fields[f"near_{number}"] = forms.ChoiceField(
@@ -110,15 +120,37 @@ class DispositionForm(SignatureForm, CountersForm, DataForm):
             )
             self.fields[f"why_{number}"] = forms.CharField(label="why", required=False)
 
+    def _part_also(self, near: Sequence[Near]) -> None:
+        """First those deferred with it and those near; either list may be missing."""
+        if "also" not in self.fields:
+            return
+        given = [one.pk for one in self.initial.get("also", ())]
+        keys = [one.item.pk for one in near if not one.is_repair]
+        part(self, "also", "further", list(dict.fromkeys([*given, *keys])))
+        if not self.fields["also"].widget.choices:
+            del self.fields["also"]
+
+    def answered_too(self) -> list[Finding]:
+        """The other findings ticked, in either list."""
+        data = self.cleaned_data
+        ticked = [*data.get("also", ()), *data.get("further", ())]
+        return list(dict.fromkeys(ticked))
+
     def groups(self) -> list[Group]:
         """The fields in the order they are asked."""
+        rest: Any = self.fields.get("further")
+        further = FURTHER.format(count=len(rest.widget.choices) if rest else 0)
+        others = (
+            group(self, "Other findings it answers", ("also",)),
+            group(self, further, ("further",), True),
+        )
         near = [n for n in self.fields if n.startswith(("near_", "why_"))]
         return [
             group(self, "Decision", ("kind", "reason", "decided_on")),
             group(self, "Data it rests on", DATA),
             group(self, "Deferral limit", LIMITS),
             *([group(self, "Neighbours reviewed", near)] if near else []),
-            group(self, "Other findings it answers", ("also",), True),
+            *(one for one in others if one.fields),
             group(self, "Counters that day", COUNTERS, True),
             group(self, "Minor or major, repair category", SCALE, True),
         ]

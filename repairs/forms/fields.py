@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 from django import forms
@@ -24,6 +25,7 @@ PHOTO_ROLES = [
     ("sketch", "sketch"),
     ("evidence", "evidence"),
 ]
+FURTHER = "Further findings of the aircraft: {count}"
 ACCEPTED_FILES = "image/jpeg,image/png,image/webp,image/tiff,application/pdf"
 
 
@@ -120,6 +122,20 @@ class PhotoForm(forms.Form):
     photographs = FilesField(help_text="JPEG, PNG, WebP, TIFF or PDF.")
     role = forms.ChoiceField(label="what they show", choices=PHOTO_ROLES)
     caption = forms.CharField(required=False)
+
+
+def part(form: forms.Form, near: str, further: str, first: Sequence[int]) -> None:
+    """Two lists of the same rows: those to show first, in their order, and the rest.
+
+    Either takes any of the rows; a rest of none is left out.
+    """
+    shown: Any = form.fields[near]
+    rest: Any = form.fields[further]
+    told = {value.value: (value, label) for value, label in shown.choices}
+    shown.widget.choices = [told.pop(key) for key in first if key in told]
+    rest.widget.choices = list(told.values())
+    if not rest.widget.choices:
+        del form.fields[further]
 
 
 def choose(form: forms.Form, name: str, rows: Any) -> None:

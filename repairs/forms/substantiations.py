@@ -11,7 +11,14 @@ from django import forms
 from fleet.due import Counters
 from fleet.forms.fields import CounterField, DayField, HoursField
 from fleet.models import Person
-from repairs.forms.fields import ACCEPTED_FILES, DataForm, Several, choose
+from repairs.forms.fields import (
+    ACCEPTED_FILES,
+    FURTHER,
+    DataForm,
+    Several,
+    choose,
+    part,
+)
 from repairs.forms.findings import not_in_future
 from repairs.forms.groups import Group, group
 from repairs.inspections_text import NONE, PARTS, inspections_said, inspections_text
@@ -40,7 +47,6 @@ KINDS = [
     ("fatigue", "fatigue and damage tolerance"),
 ]
 NOTHING_ANSWERED = "Answer at least one of the effects."
-FURTHER = "Further findings of the aircraft: {count}"
 FROM_RELEASE = "Counted from the release."
 LONG = forms.Textarea(attrs={"rows": 2})
 
@@ -158,17 +164,7 @@ class NewFolderForm(FolderForm):
         for name in ("findings", "further"):
             choose(self, name, findings)
         choose(self, "repair", repairs)
-        self._part(first)
-
-    def _part(self, first: Sequence[int]) -> None:
-        """Those to show first, in their order; either list takes any finding."""
-        shown: Any = self.fields["findings"]
-        rest: Any = self.fields["further"]
-        told = {value.value: (value, label) for value, label in shown.choices}
-        shown.widget.choices = [told.pop(key) for key in first if key in told]
-        rest.widget.choices = list(told.values())
-        if not rest.widget.choices:
-            del self.fields["further"]
+        part(self, "findings", "further", first)
 
     def groups(self) -> list[Group]:
         """The findings further off are folded away."""

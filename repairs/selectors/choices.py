@@ -80,6 +80,7 @@ def decision_choices(
     others = Finding.objects.filter(aircraft=finding.aircraft_id, state__in=states)
     return {
         "also": others.exclude(pk=finding.pk),
+        "further": others.exclude(pk=finding.pk),
         "evaluations": finding.evaluations.filter(replaced_by__isnull=True),
         "limit_checks": finding.limit_checks.all(),
         "substantiation": Substantiation.objects.filter(

@@ -59,7 +59,7 @@ def disposition_new(request: Request, pk: int) -> HttpResponse:
         initial=_initial(request, row),
     )
     raised = RaisedForm(request.POST or None, initial={"area": row.place_text})
-    also = form.cleaned_data.get("also", ()) if form.is_valid() else ()
+    also = form.answered_too() if form.is_valid() else ()
     save = partial(_decide, request, row, form, raised)
     if raised.is_valid() and (
         made := sent_signed(request, form, save, about=[row, *also])
@@ -138,7 +138,7 @@ def _decide(
     return disposition_decide(
         entry=DispositionEntry(
             aircraft=row.aircraft,
-            findings=[row, *data.get("also", ())],
+            findings=[row, *form.answered_too()],
             kind=data["kind"],
             basis=form.basis(),
             at=form.counters(),

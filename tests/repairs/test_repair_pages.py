@@ -151,6 +151,25 @@ def test_a_running_deferral_is_extended_for_all_it_holds(client, world):
     assert "Extend</a>" not in earlier
 
 
+def test_findings_near_are_offered_first_and_the_rest_is_folded(engineer, world):
+    """Trade practice: one decision answers damage that lies together."""
+    one, near = assessed(world), assessed(world)
+    far = assessed(world, place_entered="STA 900, S-20L")
+    url = reverse("disposition_new", args=[one.pk])
+    context = engineer.get(url).context
+    lists = {
+        name: [value.value for value, _ in context["form"].fields[name].widget.choices]
+        for name in ("also", "further")
+    }
+    assert lists == {"also": [near.pk], "further": [far.pk]}
+    folded = {group.legend: group.folded for group in context["groups"]}
+    assert folded["Further findings of the aircraft: 1"] is True
+    said = {"further": [far.pk], "near_0": "no", "why_0": "an old report"}
+    assert decision(engineer, one, **said).status_code == 302
+    answered = Disposition.objects.get().finding_rows.all()
+    assert {row.finding for row in answered} == {one, far}
+
+
 def test_a_neighbour_is_reviewed_before_damage_is_left(engineer, world):
     found(world)
     finding = assessed(world)
