@@ -77,7 +77,7 @@ def test_another_scope_than_approving_design_data_approves_nothing(
     folders, world, checked, person, scope
 ):
     authorise(person, world.operator, scope)
-    with pytest.raises(ValidationError, match="no authorisation at Northmere Air to"):
+    with pytest.raises(ValidationError, match=r"no authorisation \(.*\) at Northmere"):
         folders.sign(checked, "stage_1", person)
 
 
@@ -86,7 +86,7 @@ def test_an_authorisation_at_another_operator_signs_nothing_here(
 ):
     elsewhere = world.outsider.memberships.get().operator
     authorise(person, elsewhere, "approve")
-    with pytest.raises(ValidationError, match="no authorisation at Northmere Air to"):
+    with pytest.raises(ValidationError, match=r"no authorisation \(.*\) at Northmere"):
         folders.sign(checked, "stage_1", person)
     assert not checked.approvals.filter(meaning="stage_1").exists()
 
