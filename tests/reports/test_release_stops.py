@@ -263,7 +263,7 @@ class TestCommand:
     @pytest.mark.parametrize(
         ("options", "says"),
         [
-            ({"mark": "Q7-XXX"}, "registrations are: Q7-AAA"),
+            ({"mark": "Q7-NOT"}, "registrations are: Q7-AAA"),
             ({"as_of": "31.1.2025"}, "write it as 2025-01-31"),
             ({"flights": 0}, "give at least 1"),
         ],
