@@ -21,7 +21,9 @@ BEYOND = "beyond recorded limit {limit}"
 CRITICAL = "a crack in structure that is {criticality}"
 MAJOR = "{number} calls it major"
 CORRODED = "level {level} corrosion"
-TO_ASK_FROM = 2
+LEVEL_TO_ASK = 2
+"""Lowest corrosion level that asks: AD 90-25-07 wants level 2 told to the design approval
+holder, level 3 to the authority as well."""
 UNDECIDED = "to_assess"
 
 
@@ -105,6 +107,6 @@ def _corroded(finding: Finding) -> Iterable[str]:
     if finding.damage_type != "corrosion":
         return []
     level = level_now(finding)
-    if level is None or level.level < TO_ASK_FROM:
+    if level is None or level.level < LEVEL_TO_ASK:
         return []
     return [CORRODED.format(level=level.level)]

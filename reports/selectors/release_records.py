@@ -40,6 +40,7 @@ from repairs.models import (
 from repairs.selectors.hidden import with_hiding
 from repairs.selectors.neighbours import findings_shown
 from repairs.selectors.repair_inspections import INSPECTION_LINE
+from repairs.selectors.report_triggers import LEVEL_TO_ASK, UNDECIDED
 
 APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
@@ -47,8 +48,7 @@ IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
 STANDING = (RepairState.PLANNED, RepairState.IN_WORK, RepairState.EMBODIED)
 STAYS = (FindingState.ACCEPTED, FindingState.DEFERRED)
 STAGED = ("1", "2", "3")
-AWAITED = ("to_assess", "reportable")
-LEVEL_TO_REPORT = 2
+AWAITED = (UNDECIDED, "reportable")
 
 
 @dataclass(frozen=True)
@@ -146,7 +146,7 @@ def _findings(aircraft: Aircraft, as_of: date) -> Iterable[Finding]:
         Prefetch(
             "corrosion_levels",
             CorrosionLevel.objects.filter(
-                replaced_by__isnull=True, level__gte=LEVEL_TO_REPORT
+                replaced_by__isnull=True, level__gte=LEVEL_TO_ASK
             ),
         ),
         "reports",
@@ -337,7 +337,7 @@ def _reports(aircraft: Aircraft) -> Iterable[Line]:
         state__in=AWAITED,
     ).select_related("finding", "event")
     for row in rows.exclude(finding__state__in=ASIDE_STATES):
-        cause = "report_undecided" if row.state == "to_assess" else "report_unsent"
+        cause = "report_undecided" if row.state == UNDECIDED else "report_unsent"
         due = f", due {row.due_at:%Y-%m-%d %H:%M} UTC" if row.due_at else ""
         finding = row.finding
         address = ("finding", finding.pk) if finding else ("aircraft", aircraft.pk)
