@@ -22,8 +22,8 @@ CRITICAL = "a crack in structure that is {criticality}"
 MAJOR = "{number} calls it major"
 CORRODED = "level {level} corrosion"
 LEVEL_TO_ASK = 2
-"""Lowest corrosion level that asks: AD 90-25-07 wants level 2 told to the design approval
-holder, level 3 to the authority as well."""
+"""Lowest corrosion level that asks: AD 90-25-07 wants level 2 told to the design
+approval holder, level 3 to the authority as well."""
 UNDECIDED = "to_assess"
 
 
