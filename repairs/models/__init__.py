@@ -1,6 +1,7 @@
 """The tables of what happened to the structure, by subject."""
 
 from repairs.models.approvals import (
+    APPROVING,
     Approval,
     Meaning,
     OccurrenceReport,
@@ -85,6 +86,7 @@ from repairs.models.substantiations import (
 from repairs.models.surveys import Survey, SurveyItem
 
 __all__ = [
+    "APPROVING",
     "ASIDE_STATES",
     "OPEN_STATES",
     "Accomplishment",

@@ -33,6 +33,9 @@ class Meaning(models.TextChoices):
     REJECTED = "rejected", "rejected"
 
 
+APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
+
+
 class Approval(Entered):
     """A named person's signature under the exact content shown. Append-only."""
 

@@ -12,6 +12,7 @@ from fleet.digests import row_digest
 from fleet.models import AircraftType, DetectableSize
 from fleet.models.structure import Panel
 from repairs.models import (
+    APPROVING,
     Approval,
     Evaluation,
     EvaluationInput,
@@ -23,7 +24,6 @@ from repairs.models import (
 
 Row = TypeVar("Row", Finding, Repair)
 
-APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 UNCHECKED, CHECKED, APPROVED, SUPERSEDED = (
     "unchecked",
     "checked",

@@ -25,6 +25,7 @@ from fleet.services.documents import attachment_store
 from fleet.services.history import Writing
 from fleet.services.signing import Proof
 from repairs.models import (
+    APPROVING,
     Accomplishment,
     Approval,
     Disposition,
@@ -60,7 +61,6 @@ SCOPES: dict[str, tuple[AuthorisationScope, ...]] = {
     Meaning.RELEASED: (AuthorisationScope.CERTIFY,),
     Meaning.DEFERRED: (AuthorisationScope.CERTIFY,),
 }  # fmt: skip
-APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 JUDGING = (Meaning.CHECKED, *APPROVING)
 JUDGED_ELSEWHERE = (Finding, Accomplishment, Substantiation)
 """Not judged by a second signature, or by rules of their own."""

@@ -16,6 +16,7 @@ from fleet.due import Counters
 from fleet.models import Aircraft, Criticality, Document
 from fleet.selectors.applicability import applies_to
 from repairs.models import (
+    APPROVING,
     ASIDE_STATES,
     Approval,
     CorrosionLevel,
@@ -42,7 +43,6 @@ from repairs.selectors.neighbours import findings_shown
 from repairs.selectors.repair_inspections import INSPECTION_LINE
 from repairs.selectors.report_triggers import LEVEL_TO_ASK, UNDECIDED
 
-APPROVING = (Meaning.APPROVED, Meaning.STAGE_1, Meaning.STAGE_2, Meaning.STAGE_3)
 HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
 IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
 STANDING = (RepairState.PLANNED, RepairState.IN_WORK, RepairState.EMBODIED)
