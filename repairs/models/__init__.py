@@ -13,6 +13,8 @@ from repairs.models.columns import (
     Surface,
 )
 from repairs.models.dispositions import (
+    HOLDER_DOCUMENTS,
+    IN_LIMITS,
     Disposition,
     DispositionBasis,
     DispositionFinding,
@@ -88,6 +90,8 @@ from repairs.models.surveys import Survey, SurveyItem
 __all__ = [
     "APPROVING",
     "ASIDE_STATES",
+    "HOLDER_DOCUMENTS",
+    "IN_LIMITS",
     "OPEN_STATES",
     "Accomplishment",
     "Answer",

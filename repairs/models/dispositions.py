@@ -24,6 +24,11 @@ class DispositionKind(models.TextChoices):
     NOT_DAMAGE = "not_damage", "not damage"
 
 
+HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
+IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
+"""A page of these is the in-limits reference."""
+
+
 class Disposition(AtCounters, Entered):
     """One decision on one or more findings, with its basis and its maker."""
 

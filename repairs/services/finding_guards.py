@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING
 from fleet.models import AuthorisationScope
 from repairs.measurements import missing
 from repairs.models import (
+    HOLDER_DOCUMENTS,
     Cause,
     DispositionKind,
     Finding,
@@ -37,7 +38,6 @@ DECIDABLE = (S.ASSESSED, S.ACCEPTED, S.DEFERRED, S.TO_RECTIFY)
 RECTIFIABLE = (*DECIDABLE, S.RECTIFIED)
 SETS_RIGHT = (K.RECTIFY, K.REPLACE)
 KEEPS_DAMAGE = (K.ACCEPT, K.ACCEPT_WITH_INSPECTION, K.DEFER)
-HOLDER_DOCUMENTS = ("letter", "design_approval")
 
 OUT_OF_TURN = "{number} is {state}; it is {word} only while {wanted}."
 CLOSED_STAYS = (

@@ -17,6 +17,7 @@ from fleet.models import AuthorisationScope, Criticality, Document, Operator
 from fleet.selectors.applicability import document_refusals
 from repairs.fitted import differences
 from repairs.models import (
+    IN_LIMITS,
     Finding,
     Repair,
     RepairCategory,
@@ -33,7 +34,6 @@ from repairs.services.repair_entry import RECTIFIABLE, RepairEntry
 from repairs.services.repair_rows import plies
 
 INSPECTORS = (AuthorisationScope.INSPECT, AuthorisationScope.NDT)
-IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
 """Published repairs, whose page says within which limits they hold."""
 BEFORE_COMPLETE = ("none", "1", "2")
 LAYERED = (

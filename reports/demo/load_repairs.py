@@ -13,6 +13,7 @@ from fleet.services.documents import document_get_or_create
 from fleet.services.history import Writing
 from fleet.services.signing import Proof
 from fleet.units import measure_read
+from repairs.models import HOLDER_DOCUMENTS
 from repairs.services.accomplishments import (
     accomplishment_record,
     subject_not_applicable,
@@ -46,7 +47,6 @@ from reports.demo.records import (
 )
 from reports.demo.timeline import Rank, Step
 
-HOLDER_DOCUMENTS = ("letter", "design_approval")
 UNVERIFIED_DAYS = 120
 """Requirements younger than this still wait for their second keying."""
 

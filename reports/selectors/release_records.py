@@ -13,11 +13,13 @@ from django.db.models import Prefetch, Q
 
 from fleet.amounts import counters_write
 from fleet.due import Counters
-from fleet.models import Aircraft, Criticality, Document
+from fleet.models import Aircraft, Criticality
 from fleet.selectors.applicability import applies_to
 from repairs.models import (
     APPROVING,
     ASIDE_STATES,
+    HOLDER_DOCUMENTS,
+    IN_LIMITS,
     Approval,
     CorrosionLevel,
     Disposition,
@@ -43,8 +45,6 @@ from repairs.selectors.neighbours import findings_shown
 from repairs.selectors.repair_inspections import INSPECTION_LINE
 from repairs.selectors.report_triggers import LEVEL_TO_ASK, UNDECIDED
 
-HOLDER_DOCUMENTS = (Document.Kind.LETTER, Document.Kind.DESIGN_APPROVAL)
-IN_LIMITS = (Document.Kind.REPAIR_MANUAL, Document.Kind.MAINTENANCE_DATA)
 STANDING = (RepairState.PLANNED, RepairState.IN_WORK, RepairState.EMBODIED)
 STAYS = (FindingState.ACCEPTED, FindingState.DEFERRED)
 STAGED = ("1", "2", "3")
