@@ -10,16 +10,16 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import asdict, dataclass
 
-from repairs.analysis import loads
-from repairs.analysis.crack_growth import WalkerLaw
 from repairs.analysis.errors import (
     UNKNOWN_INPUT,
     WRONG_KIND,
     WRONG_UNIT,
     InputError,
 )
-from repairs.analysis.scatter import FatiguePolicy
-from repairs.analysis.stress_life import StressLifeFamily
+from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.loads import shell as loads
+from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.surroundings import Surroundings
 from repairs.analysis.types import Grade, MissingInput, Sourced, Stated
 

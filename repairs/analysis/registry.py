@@ -5,9 +5,9 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
-from repairs.analysis import blend_out, hole, skin_crack
 from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
+from repairs.analysis.methods import blend_out, hole, skin_crack
 from repairs.analysis.note import Note
 from repairs.analysis.types import Applicability, Outcome, Result, Use
 

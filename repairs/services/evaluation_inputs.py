@@ -28,9 +28,9 @@ from fleet.models import (
 from fleet.selectors.counters import aircraft_standing
 from fleet.selectors.people import policy
 from fleet.selectors.validity import validity_limits
-from repairs.analysis import scatter
 from repairs.analysis.inputs import SPECS, Value
-from repairs.analysis.intervals import SINCE_NEW
+from repairs.analysis.inspection.intervals import SINCE_NEW
+from repairs.analysis.scatter import factors as scatter
 from repairs.analysis.types import Grade, Sourced, Stated, Use
 from repairs.models import MeasuredValue, Measurement, Repair
 from repairs.selectors.edges import earlier_depth_mm

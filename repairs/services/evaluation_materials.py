@@ -7,9 +7,9 @@ from collections.abc import Iterable, Iterator
 
 from fleet.models import AdoptedValue, Material, MaterialProperty, Operator
 from fleet.models.materials import Grade as RecordedGrade
-from repairs.analysis.crack_growth import WalkerLaw
+from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.inputs import TOUGHNESS_UNIT, Value
-from repairs.analysis.stress_life import StressLifeCurve, StressLifeFamily
+from repairs.analysis.stress_life.curves import StressLifeCurve, StressLifeFamily
 from repairs.analysis.types import KSI, Grade, Reference, Sourced
 
 TOUGHNESS = "fracture_toughness_mpa_root_mm"

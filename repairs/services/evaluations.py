@@ -33,11 +33,11 @@ from fleet.models import FatiguePolicy as PolicyRow
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import number_next
-from repairs.analysis.crack_growth import WalkerLaw
+from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.registry import METHODS, NO_METHOD, Method, evaluate, methods_for
-from repairs.analysis.scatter import FatiguePolicy
-from repairs.analysis.stress_life import StressLifeFamily
+from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.types import Outcome, Result, Sourced, Stated, Use
 from repairs.evaluation_text import number_text
 from repairs.models import (

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from repairs.analysis.crack_growth import WalkerLaw
+from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.inputs import TOUGHNESS_UNIT, Inputs, Value
-from repairs.analysis.scatter import FatiguePolicy
-from repairs.analysis.stress_life import StressLifeCurve, StressLifeFamily
+from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.stress_life.curves import StressLifeCurve, StressLifeFamily
 from repairs.analysis.surroundings import Obstacle, Surroundings
 from repairs.analysis.types import (
     KSI,

@@ -8,9 +8,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import bulging as bl
-from repairs.analysis import stress_intensity as si
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.intensity import bulging as bl
+from repairs.analysis.intensity import through as si
 from repairs.analysis.types import (
     INCH,
     KSI,

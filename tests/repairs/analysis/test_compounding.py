@@ -6,11 +6,11 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import crack_row as cr
-from repairs.analysis import hole_intensity as hi
-from repairs.analysis import stress_intensity as si
-from repairs.analysis.compounding import Boundary, compound
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.intensity import holes as hi
+from repairs.analysis.intensity import rows as cr
+from repairs.analysis.intensity import through as si
+from repairs.analysis.intensity.compounding import Boundary, compound
 from repairs.analysis.types import EdgeLength, HalfLength
 
 

@@ -8,9 +8,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import corner_crack as cc
 from repairs.analysis.errors import OutOfRangeError
-from repairs.analysis.part_through import PartThrough, corner_crack_at_hole
+from repairs.analysis.intensity import corner as cc
+from repairs.analysis.intensity.part_through import PartThrough, corner_crack_at_hole
 
 QUARTER_CIRCLE = 2.464  # 1 + 1.464
 

@@ -13,14 +13,14 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
 
-from repairs.analysis import crack_growth as cg
 from repairs.analysis.errors import AnalysisError
-from repairs.analysis.part_through import (
+from repairs.analysis.growth import laws as cg
+from repairs.analysis.intensity.part_through import (
     CORNER_ANGLES,
     PartThrough,
     corner_crack_at_hole,
 )
-from repairs.analysis.stress_intensity import centre_crack_secant
+from repairs.analysis.intensity.through import centre_crack_secant
 from repairs.analysis.types import (
     INCH,
     ROOT_1000,

@@ -9,9 +9,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import crack_row as cr
-from repairs.analysis import stress_intensity as si
 from repairs.analysis.errors import OutOfRangeError
+from repairs.analysis.intensity import rows as cr
+from repairs.analysis.intensity import through as si
 from repairs.analysis.types import EdgeLength, HalfLength
 
 

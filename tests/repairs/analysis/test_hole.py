@@ -8,7 +8,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from repairs.analysis.hole import hole_kt
+from repairs.analysis.methods.hole import hole_kt
 from repairs.analysis.registry import evaluate
 from repairs.analysis.surroundings import Obstacle, ObstacleKind
 from repairs.analysis.types import KSI, Outcome, Use

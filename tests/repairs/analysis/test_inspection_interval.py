@@ -6,7 +6,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis.inspection_interval import (
+from repairs.analysis.inspection.flaws import (
     Cap,
     FlawKind,
     FlawLocation,

@@ -16,10 +16,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.stats import CensoredData, lognorm, weibull_min
 
-from repairs.analysis import life_estimates as le
-from repairs.analysis import tolerance
 from repairs.analysis.errors import AnalysisError, InputError, OutOfRangeError
-from repairs.analysis.life_estimates import LifeModel, Lives
+from repairs.analysis.scatter import estimates as le
+from repairs.analysis.scatter import tolerance
+from repairs.analysis.scatter.estimates import LifeModel, Lives
 
 FANS = Lives(
     (450, 1150, 1150, 1600, 2070, 2070, 2080, 3100, 3450, 4600, 6100, 8750),

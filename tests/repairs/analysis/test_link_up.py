@@ -8,10 +8,10 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import link_up as lu
-from repairs.analysis import residual_strength as rs
-from repairs.analysis import stress_intensity as si
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.intensity import through as si
+from repairs.analysis.strength import link_up as lu
+from repairs.analysis.strength import residual as rs
 from repairs.analysis.types import INCH, EdgeLength, GrossStress, HalfLength
 
 

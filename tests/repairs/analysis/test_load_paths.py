@@ -6,8 +6,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import load_paths as lp
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.strength import load_paths as lp
 from repairs.analysis.types import Grade, Sourced
 
 NONE = Sourced(1.0, "-", "static", Grade.RECORDED)

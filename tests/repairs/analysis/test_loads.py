@@ -7,8 +7,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import loads
 from repairs.analysis.errors import OutOfRangeError
+from repairs.analysis.loads import shell as loads
 from repairs.analysis.types import INCH, KSI, GrossStress
 
 PSI = KSI / 1000

@@ -14,9 +14,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.special import ellipe
 
-from repairs.analysis.corner_crack import corner_crack
 from repairs.analysis.errors import OutOfRangeError
-from repairs.analysis.part_through import (
+from repairs.analysis.intensity.corner import corner_crack
+from repairs.analysis.intensity.part_through import (
     PartThrough,
     corner_crack_at_hole,
     shape_factor,

@@ -9,9 +9,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.optimize import brentq
 
-from repairs.analysis import r_curve as rc
-from repairs.analysis import stress_intensity as si
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.intensity import through as si
+from repairs.analysis.strength import r_curve as rc
 from repairs.analysis.types import Grade, HalfLength, Reference
 
 INVENTED = Reference("an invented test report", Grade.RECORDED)

@@ -7,29 +7,26 @@ import re
 
 import pytest
 
-from repairs.analysis import (
-    bulging,
-    compounding,
-    corner_crack,
-    crack_row,
-    hole_intensity,
-    life_estimates,
-    link_up,
-    load_paths,
-    loads,
-    part_through,
-    r_curve,
-    residual_strength,
-    scatter,
-    stiffened_sheet,
-    stiffened_strength,
-    stress_intensity,
-    tolerance,
-    toughness,
-)
 from repairs.analysis.errors import InputError
 from repairs.analysis.inputs import SPECS, Inputs
+from repairs.analysis.intensity import (
+    bulging,
+    compounding,
+    part_through,
+    stiffened_sheet,
+)
+from repairs.analysis.intensity import corner as corner_crack
+from repairs.analysis.intensity import holes as hole_intensity
+from repairs.analysis.intensity import rows as crack_row
+from repairs.analysis.intensity import through as stress_intensity
+from repairs.analysis.loads import shell as loads
 from repairs.analysis.registry import METHODS, evaluate, method_named, methods_for
+from repairs.analysis.scatter import estimates as life_estimates
+from repairs.analysis.scatter import factors as scatter
+from repairs.analysis.scatter import tolerance
+from repairs.analysis.strength import link_up, load_paths, r_curve, toughness
+from repairs.analysis.strength import residual as residual_strength
+from repairs.analysis.strength import stiffened as stiffened_strength
 from repairs.analysis.types import Grade, Outcome, Sourced, Stated, Use
 
 

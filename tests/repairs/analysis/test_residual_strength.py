@@ -8,8 +8,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import residual_strength as rs
 from repairs.analysis.errors import AnalysisError
+from repairs.analysis.strength import residual as rs
 from repairs.analysis.types import GrossStress, HalfLength
 
 

@@ -10,8 +10,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.stats import norm
 
-from repairs.analysis import scatter
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.scatter import factors as scatter
 from repairs.analysis.types import Grade, Sourced
 
 Z_999 = NormalDist().inv_cdf(0.999)

@@ -15,9 +15,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import quad
 
-from repairs.analysis import stiffened_sheet as ss
 from repairs.analysis.errors import OutOfRangeError
-from repairs.analysis.stiffened_sheet import CrackCentre, StiffenedSheet
+from repairs.analysis.intensity import stiffened_sheet as ss
+from repairs.analysis.intensity.stiffened_sheet import CrackCentre, StiffenedSheet
 from repairs.analysis.types import INCH, KSI, HalfLength
 
 MODULUS = 10_500 * KSI

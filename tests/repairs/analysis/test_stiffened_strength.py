@@ -12,14 +12,14 @@ from functools import lru_cache
 
 import pytest
 
-from repairs.analysis import stiffened_strength as sp
 from repairs.analysis.errors import AnalysisError
-from repairs.analysis.stiffened_sheet import (
+from repairs.analysis.intensity.stiffened_sheet import (
     CrackCentre,
     StiffenedCrack,
     StiffenedSheet,
     stiffened_crack,
 )
+from repairs.analysis.strength import stiffened as sp
 from repairs.analysis.types import INCH, KSI, GrossStress, HalfLength
 
 PITCH, THICKNESS = 10.0, 0.063

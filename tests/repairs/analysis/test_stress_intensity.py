@@ -14,9 +14,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.integrate import quad
 
-from repairs.analysis import hole_intensity as hi
-from repairs.analysis import stress_intensity as si
 from repairs.analysis.errors import OutOfRangeError
+from repairs.analysis.intensity import holes as hi
+from repairs.analysis.intensity import through as si
 from repairs.analysis.types import (
     INCH,
     KSI,

@@ -13,7 +13,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from repairs.analysis.errors import AnalysisError, OutOfRangeError
-from repairs.analysis.stress_life import StressLifeCurve, StressLifeFamily
+from repairs.analysis.stress_life.curves import StressLifeCurve, StressLifeFamily
 from repairs.analysis.types import KSI, Grade, NetStress
 
 ROWS = {

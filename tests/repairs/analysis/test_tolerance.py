@@ -11,9 +11,9 @@ from hypothesis import strategies as st
 from scipy.integrate import quad
 from scipy.stats import chi, norm
 
-from repairs.analysis import scatter
-from repairs.analysis import tolerance as tl
 from repairs.analysis.errors import OutOfRangeError
+from repairs.analysis.scatter import factors as scatter
+from repairs.analysis.scatter import tolerance as tl
 
 # CMH-17-1G, k_B and k_A, as reproduced in a public statistics package.
 CMH_17 = {

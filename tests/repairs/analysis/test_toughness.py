@@ -6,8 +6,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from repairs.analysis import toughness as to
 from repairs.analysis.errors import InputError, OutOfRangeError
+from repairs.analysis.strength import toughness as to
 from repairs.analysis.types import Grade, GrossStress, Sourced
 
 

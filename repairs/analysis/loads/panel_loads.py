@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from repairs.analysis import loads
-from repairs.analysis.crack_growth import StressCycle
+from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.loads import LoadCase, Requirement
+from repairs.analysis.loads import shell as loads
+from repairs.analysis.loads.shell import LoadCase, Requirement
 from repairs.analysis.note import Note
 from repairs.analysis.types import GrossStress, Sourced
 

@@ -25,16 +25,16 @@ import numpy as np
 from scipy.optimize import minimize_scalar
 
 from repairs.analysis.errors import AnalysisError, within
-from repairs.analysis.residual_strength import (
-    Strength,
-    fracture_strength,
-    weakest,
-)
-from repairs.analysis.stiffened_sheet import (
+from repairs.analysis.intensity.stiffened_sheet import (
     CrackCentre,
     StiffenedCrack,
     StiffenedSheet,
     stiffened_crack,
+)
+from repairs.analysis.strength.residual import (
+    Strength,
+    fracture_strength,
+    weakest,
 )
 from repairs.analysis.types import Grade, GrossStress, HalfLength, Reference
 

@@ -21,7 +21,7 @@ import math
 from dataclasses import dataclass
 
 from repairs.analysis.errors import UNKNOWN_FORM, InputError, within
-from repairs.analysis.residual_strength import (
+from repairs.analysis.strength.residual import (
     FRACTURE,
     NET_SECTION,
     Strength,

@@ -18,7 +18,7 @@ from dataclasses import dataclass
 from scipy.special import ellipe, ellipk
 
 from repairs.analysis.errors import within
-from repairs.analysis.hole_intensity import hole_double
+from repairs.analysis.intensity.holes import hole_double
 from repairs.analysis.types import EdgeLength, Grade, HalfLength, Reference
 
 ENDLESS_ROW = Reference(

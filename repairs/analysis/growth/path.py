@@ -11,8 +11,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from repairs.analysis import intervals
-from repairs.analysis.crack_growth import (
+from repairs.analysis.growth.laws import (
     SEPARABLE,
     WalkerLaw,
     critical_length,
@@ -20,10 +19,11 @@ from repairs.analysis.crack_growth import (
     growth_history,
 )
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.loads import Requirement
+from repairs.analysis.inspection import intervals
+from repairs.analysis.loads.panel_loads import PanelLoads
+from repairs.analysis.loads.shell import Requirement
 from repairs.analysis.note import Note
-from repairs.analysis.panel_loads import PanelLoads
-from repairs.analysis.residual_strength import Strength
+from repairs.analysis.strength.residual import Strength
 from repairs.analysis.types import (
     ROOT_1000,
     Curve,

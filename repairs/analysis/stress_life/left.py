@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from repairs.analysis import intervals
-from repairs.analysis.crack_growth import StressCycle
 from repairs.analysis.errors import within
+from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
+from repairs.analysis.inspection import intervals
 from repairs.analysis.note import Note
-from repairs.analysis.stress_life import NO_FINITE_LIFE, StressLifeCurve
+from repairs.analysis.stress_life.curves import NO_FINITE_LIFE, StressLifeCurve
 from repairs.analysis.types import (
     Grade,
     Interval,

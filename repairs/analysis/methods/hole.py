@@ -13,18 +13,9 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 
-from repairs.analysis import applicability as apply
-from repairs.analysis import fatigue, intervals, panel_loads
-from repairs.analysis import hole_intensity as hi
-from repairs.analysis import residual_strength as rs
-from repairs.analysis import stress_intensity as si
-from repairs.analysis.bulging import (
-    BULGING_HANDBOOK,
-    bulging_handbook,
-    shell_parameter,
-)
-from repairs.analysis.crack_growth import WalkerLaw, grow_part_through
-from repairs.analysis.crack_path import (
+from repairs.analysis.errors import within
+from repairs.analysis.growth.laws import WalkerLaw, grow_part_through
+from repairs.analysis.growth.path import (
     CrackPath,
     Start,
     curves,
@@ -34,17 +25,28 @@ from repairs.analysis.crack_path import (
     with_margins,
     write_law,
 )
-from repairs.analysis.errors import within
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection_interval import FlawKind, FlawLocation, rogue_flaw
-from repairs.analysis.note import Note
-from repairs.analysis.panel_loads import PanelLoads
-from repairs.analysis.part_through import (
+from repairs.analysis.inspection import intervals
+from repairs.analysis.inspection.flaws import FlawKind, FlawLocation, rogue_flaw
+from repairs.analysis.intensity import holes as hi
+from repairs.analysis.intensity import through as si
+from repairs.analysis.intensity.bulging import (
+    BULGING_HANDBOOK,
+    bulging_handbook,
+    shell_parameter,
+)
+from repairs.analysis.intensity.part_through import (
     CORNER_ANGLES,
     CORNER_AT_HOLE,
     PartThrough,
     corner_crack_at_hole,
 )
+from repairs.analysis.loads import panel_loads
+from repairs.analysis.loads.panel_loads import PanelLoads
+from repairs.analysis.methods import applicability as apply
+from repairs.analysis.note import Note
+from repairs.analysis.strength import residual as rs
+from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import (
     ROOT_1000,

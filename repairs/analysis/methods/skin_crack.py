@@ -15,9 +15,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from repairs.analysis import applicability as apply
-from repairs.analysis import intervals, panel_loads
-from repairs.analysis.crack_path import (
+from repairs.analysis.growth.path import (
     curves,
     grow,
     repeat_after,
@@ -25,9 +23,12 @@ from repairs.analysis.crack_path import (
     with_margins,
 )
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection_interval import FlawLocation, rogue_flaw
+from repairs.analysis.inspection import intervals
+from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
+from repairs.analysis.loads import panel_loads
+from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods.sheet import flaw_start, sheet_of, write_strength
 from repairs.analysis.note import Note
-from repairs.analysis.sheet import flaw_start, sheet_of, write_strength
 from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import Applicability, FullLength, Result, Use, half
 

@@ -16,8 +16,8 @@ import math
 from dataclasses import dataclass
 
 from repairs.analysis.errors import within
-from repairs.analysis.hole_intensity import newman_g2
-from repairs.analysis.stress_intensity import secant
+from repairs.analysis.intensity.holes import newman_g2
+from repairs.analysis.intensity.through import secant
 from repairs.analysis.types import Grade, Reference
 
 CORNER_AT_HOLE = Reference(

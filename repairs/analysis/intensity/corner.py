@@ -15,8 +15,13 @@ from __future__ import annotations
 import math
 
 from repairs.analysis.errors import within
-from repairs.analysis.hole_intensity import newman_g2
-from repairs.analysis.part_through import PartThrough, hole_width, shah, shape_factor
+from repairs.analysis.intensity.holes import newman_g2
+from repairs.analysis.intensity.part_through import (
+    PartThrough,
+    hole_width,
+    shah,
+    shape_factor,
+)
 from repairs.analysis.types import Grade, Reference
 
 CORNER_IN_PLATE = Reference(

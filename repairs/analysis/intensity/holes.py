@@ -15,7 +15,7 @@ from __future__ import annotations
 import math
 
 from repairs.analysis.errors import within
-from repairs.analysis.stress_intensity import secant
+from repairs.analysis.intensity.through import secant
 from repairs.analysis.types import EdgeLength, Grade, Reference
 
 HOLE_SINGLE = Reference(

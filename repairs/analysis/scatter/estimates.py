@@ -24,7 +24,7 @@ from scipy.special import log_ndtr
 from scipy.stats import chi2
 
 from repairs.analysis.errors import AnalysisError, InputError, within
-from repairs.analysis.scatter import quantile
+from repairs.analysis.scatter.factors import quantile
 
 Array = NDArray[np.float64]
 TOO_FEW = (

@@ -6,7 +6,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.inspection_interval import Cap, capped, whole_cycles
+from repairs.analysis.inspection.flaws import Cap, capped, whole_cycles
 from repairs.analysis.note import Note
 from repairs.analysis.types import Interval, Life, MissingInput
 

@@ -15,22 +15,24 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass, replace
 
-from repairs.analysis import applicability as apply
-from repairs.analysis import fatigue, intervals, panel_loads
-from repairs.analysis import residual_strength as rs
-from repairs.analysis.crack_path import curves, grow, repeat_after, with_margins
 from repairs.analysis.errors import within
+from repairs.analysis.growth.path import curves, grow, repeat_after, with_margins
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection_interval import (
+from repairs.analysis.inspection import intervals
+from repairs.analysis.inspection.flaws import (
     AssumedFlaw,
     FlawKind,
     FlawLocation,
     rogue_flaw,
 )
+from repairs.analysis.loads import panel_loads
+from repairs.analysis.loads.panel_loads import PanelLoads
+from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods.sheet import flaw_start, sheet_of
+from repairs.analysis.methods.skin_crack import clearance, shell_tests
 from repairs.analysis.note import Note
-from repairs.analysis.panel_loads import PanelLoads
-from repairs.analysis.sheet import flaw_start, sheet_of
-from repairs.analysis.skin_crack import clearance, shell_tests
+from repairs.analysis.strength import residual as rs
+from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import (
     Applicability,

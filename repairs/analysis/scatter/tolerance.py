@@ -20,7 +20,7 @@ from statistics import mean, stdev
 from scipy.stats import nct
 
 from repairs.analysis.errors import within
-from repairs.analysis.scatter import quantile
+from repairs.analysis.scatter.factors import quantile
 from repairs.analysis.types import Grade, Reference
 
 TOLERANCE = Reference(

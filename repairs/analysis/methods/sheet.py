@@ -4,26 +4,26 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from repairs.analysis import residual_strength as rs
-from repairs.analysis import stress_intensity as si
-from repairs.analysis.bulging import (
+from repairs.analysis.growth.laws import WalkerLaw, grow_part_through
+from repairs.analysis.growth.path import CrackPath, Start, write_law
+from repairs.analysis.inputs import Inputs
+from repairs.analysis.inspection.flaws import AssumedFlaw, FlawKind
+from repairs.analysis.intensity import through as si
+from repairs.analysis.intensity.bulging import (
     BULGING_HANDBOOK,
     bulging_handbook,
     shell_parameter,
 )
-from repairs.analysis.crack_growth import WalkerLaw, grow_part_through
-from repairs.analysis.crack_path import CrackPath, Start, write_law
-from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection_interval import AssumedFlaw, FlawKind
-from repairs.analysis.note import Note
-from repairs.analysis.panel_loads import PanelLoads
-from repairs.analysis.part_through import (
+from repairs.analysis.intensity.part_through import (
     ANGLES,
     SURFACE_ANGLES,
     SURFACE_CRACK,
     PartThrough,
     surface_crack,
 )
+from repairs.analysis.loads.panel_loads import PanelLoads
+from repairs.analysis.note import Note
+from repairs.analysis.strength import residual as rs
 from repairs.analysis.types import ROOT_1000, GrossStress, HalfLength
 
 LONGEST_SHELL_PARAMETER = 5.0 * (1 - 1e-9)
