@@ -13,6 +13,14 @@ __all__ = ["open_data_wheel"]
 NOW = dt.datetime(2025, 1, 1, 9, 0, tzinfo=dt.UTC)
 
 
+def pytest_addoption(parser: pytest.Parser) -> None:
+    parser.addoption(
+        "--record-outside",
+        action="store_true",
+        help="Write fixtures/outside_checks.json from this run.",
+    )
+
+
 @pytest.fixture(autouse=True)
 def _quick_and_contained(tmp_path, settings):
     """Passwords hash fast, files stay in the test's own folder."""
