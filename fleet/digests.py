@@ -13,8 +13,8 @@ from django.db import models
 from fleet.canonical import canonical, digest, plain
 from fleet.models import HistoryEntry, HistoryItem
 
-# The history cannot record itself; a record number is checked by its uniqueness, and a
-# sent form only points at the entry it made.
+# The history cannot record itself; a record number is checked by its uniqueness, a sent
+# form only points at the entry it made, and a worker's hold on its share is no record.
 NOT_RECORDED = frozenset(
     {
         "fleet_historyhead",
@@ -23,6 +23,7 @@ NOT_RECORDED = frozenset(
         "fleet_historyseal",
         "fleet_recordnumber",
         "fleet_sentform",
+        "repairs_recalculationpart",
     }
 )
 # The framework writes it at sign-in, outside any service.

@@ -51,7 +51,8 @@ from repairs.services.accomplishments import accomplishment_record
 from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
 from repairs.services.evaluation_inputs import Choice
-from repairs.services.evaluations import default_use, evaluation_make
+from repairs.services.evaluation_prepare import default_use
+from repairs.services.evaluations import evaluation_make
 from repairs.services.inspections import requirement_raise
 from repairs.services.repair_entry import Data, RepairEntry, Step
 from repairs.services.repairs import repair_plan, repair_record

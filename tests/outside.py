@@ -90,7 +90,8 @@ def difference() -> str:
         for row in json.loads(FILE.read_text())
     }
     for key in filed.keys() ^ KEPT.keys():
-        return f"{' / '.join(key)} is only in {'the file' if key in filed else 'the run'}"
+        where = "the file" if key in filed else "the run"
+        return f"{' / '.join(key)} is only in {where}"
     for key, check in KEPT.items():
         row = filed[key]
         same = row | {"computed": 0} == asdict(check) | {"computed": 0}

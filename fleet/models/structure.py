@@ -33,6 +33,17 @@ def map_mm() -> Measure:
     return Measure(low=-MM_HIGH, high=MM_HIGH)
 
 
+class LoadKind(models.TextChoices):
+    """What a panel mainly carries; it chooses the checks. Empty: not stated."""
+
+    TENSION = "tension", "tension"
+    COMPRESSION = "compression", "compression"
+    SHEAR = "shear", "shear"
+    BENDING = "bending", "bending"
+    TORSION = "torsion", "torsion"
+    PRESSURE = "pressure", "pressure"
+
+
 class AircraftType(models.Model):
     """A type with its cabin pressures; the units are those people write in."""
 
@@ -314,6 +325,7 @@ class Panel(Extent):
         -5_000, 5_000, help_text="1 g, along the section."
     )
     ultimate_load_n_per_mm = optional_measure(0, 1e6)
+    load_kind = Word(choices=LoadKind, blank=True, default="")
     load_source = text()
     criticality = Word(choices=Criticality)
     criticality_source = text()

@@ -12,7 +12,8 @@ class Note:
     cannot be used without the result saying so.
     """
 
-    def __init__(self) -> None:
+    def __init__(self, first: int = 1) -> None:
+        self._first = first
         self._lines: list[NoteLine] = []
         self._barred: list[str] = []
         self._warnings: list[str] = []
@@ -59,7 +60,7 @@ class Note:
     ) -> None:
         """Write down a value for comparison, on which the result does not rest."""
         self._append(symbol, formula, substitution, value, unit, reference)
-        self._beside.add(len(self._lines))
+        self._beside.add(self._lines[-1].number)
 
     def text(self, statement: str) -> None:
         """Write down an assumption or a finding that has no number."""
@@ -74,7 +75,7 @@ class Note:
 
     @property
     def lines(self) -> tuple[NoteLine, ...]:
-        """All lines so far, numbered from 1."""
+        """All lines so far, numbered from the first."""
         return tuple(self._lines)
 
     @property
@@ -119,7 +120,7 @@ class Note:
     ) -> None:
         self._lines.append(
             NoteLine(
-                number=len(self._lines) + 1,
+                number=self._first + len(self._lines),
                 symbol=symbol,
                 formula=formula,
                 substitution=substitution,

@@ -1,9 +1,9 @@
-"""The methods this program has: id, version, what each is for, and how it is run."""
+"""The methods there are, how one is run, and which damage asks which of them."""
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass, replace
+from typing import Protocol
 
 from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
@@ -21,7 +21,7 @@ UNAPPROVED = "Unapproved calculation."
 
 @dataclass(frozen=True, slots=True)
 class Method:
-    """One published calculation, its version, and what it may be asked.
+    """One published calculation, its version, and what it assumes.
 
     The version goes up whenever the same inputs could give another result.
     """
@@ -29,14 +29,46 @@ class Method:
     id: str
     version: int
     title: str
-    damage_types: tuple[str, ...]
-    uses: tuple[Use, ...]
-    required: Callable[[Inputs, Use], tuple[str, ...]]
-    tests: Callable[[Inputs, Use], tuple[Applicability, ...]]
-    compute: Callable[[Inputs, Use, Note, Result], Result]
+    module: Calculation
+    assumptions: tuple[str, ...] = ()
 
 
-BOTH = (Use.FOUND_DAMAGE, Use.NO_KNOWN_CRACK)
+class Calculation(Protocol):
+    """What a module of `repairs.analysis.methods` offers."""
+
+    def required(self, inputs: Inputs, use: Use) -> tuple[str, ...]:
+        """Return the inputs that must be there."""
+
+    def tests(self, inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
+        """Test on the record whether the method applies."""
+
+    def compute(self, inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
+        """Calculate; tests have passed and nothing required is missing."""
+
+
+@dataclass(frozen=True, slots=True)
+class Coverage:
+    """Which damage, or which repair, asks which methods.
+
+    Every group must be answered; inside a group the methods stand in order of
+    preference. `when` narrows by words of the record: a word that is not recorded does
+    not narrow.
+    """
+
+    damage: tuple[str, ...]
+    groups: tuple[tuple[str, ...], ...]
+    when: tuple[tuple[str, tuple[str, ...]], ...] = ()
+    repairs: tuple[str, ...] = ()
+
+    def holds(self, inputs: Inputs) -> bool:
+        """Return whether the record asks for these methods."""
+        repair, damage = inputs.word("repair_kind"), inputs.word("damage_type")
+        asked = repair in self.repairs if repair else damage in self.damage
+        return asked and all(
+            inputs.word(name) in (None, "unknown", *words) for name, words in self.when
+        )
+
+
 METHODS: dict[str, Method] = {
     method.id: method
     for method in (
@@ -44,34 +76,35 @@ METHODS: dict[str, Method] = {
             "pressurised-skin-longitudinal-crack",
             1,
             "Longitudinal through crack in pressurised skin",
-            ("crack",),
-            BOTH,
-            skin_crack.required,
-            skin_crack.tests,
-            skin_crack.compute,
+            skin_crack,
         ),
-        Method(
-            "corrosion-blend-out",
-            1,
-            "Corrosion blended out",
-            ("corrosion", "scratch", "gouge", "nick", "wear"),
-            BOTH,
-            blend_out.required,
-            blend_out.tests,
-            blend_out.compute,
-        ),
-        Method(
-            "open-or-trimmed-hole",
-            1,
-            "Open or trimmed hole",
-            ("hole",),
-            BOTH,
-            hole.required,
-            hole.tests,
-            hole.compute,
-        ),
+        Method("corrosion-blend-out", 1, "Corrosion blended out", blend_out),
+        Method("open-or-trimmed-hole", 1, "Open or trimmed hole", hole),
     )
 }
+
+COVERAGE_KEY = "coverage"
+COVERAGE_VERSION = 1
+"""Goes up whenever a damage asks for other methods than before."""
+AWAY_FROM_EDGES = ("skin", "scratch", "dent", "corrosion_pit", "weld", "other")
+COVERAGE: tuple[Coverage, ...] = (
+    Coverage(
+        ("crack",),
+        (("pressurised-skin-longitudinal-crack",),),
+        (("crack_origin", AWAY_FROM_EDGES),),
+    ),
+    Coverage(
+        ("crack",),
+        (("open-or-trimmed-hole",),),
+        (("crack_origin", ("fastener_hole",)),),
+    ),
+    Coverage(("hole",), (("open-or-trimmed-hole",),)),
+    Coverage(
+        ("corrosion", "scratch", "gouge", "nick", "wear"),
+        (("corrosion-blend-out",),),
+        repairs=("blend",),
+    ),
+)
 
 
 def method_named(name: str) -> Method:
@@ -81,19 +114,21 @@ def method_named(name: str) -> Method:
     return METHODS[name]
 
 
-def methods_for(damage_type: str) -> tuple[Method, ...]:
-    """Return the methods that take a damage type, in order of preference."""
-    return tuple(m for m in METHODS.values() if damage_type in m.damage_types)
+def groups_for(inputs: Inputs) -> tuple[tuple[str, ...], ...]:
+    """Return the groups of methods that a record asks for, each once, in order."""
+    groups = [g for row in COVERAGE if row.holds(inputs) for g in row.groups]
+    return tuple(dict.fromkeys(groups))
 
 
-def evaluate(name: str, use: Use, inputs: Inputs) -> Result:
+def evaluate(name: str, use: Use, inputs: Inputs, *, first_line: int = 1) -> Result:
     """Run a method: tests, then inputs, then numbers. The outcome is one of three.
 
     A failed test ends in *not covered* with the test, its value and its limit; a
     missing input in *missing input* with where to enter it; neither gives a number.
+    Lines of the note are numbered from `first_line`.
     """
     method = method_named(name)
-    tests = method.tests(inputs, use)
+    tests = method.module.tests(inputs, use)
     draft = Result(
         method.id,
         method.version,
@@ -101,6 +136,7 @@ def evaluate(name: str, use: Use, inputs: Inputs) -> Result:
         use,
         Outcome.COMPUTED,
         applicability=tests,
+        assumptions=method.assumptions,
     )
     failed = [test for test in tests if test.met is False]
     if failed:
@@ -113,7 +149,7 @@ def evaluate(name: str, use: Use, inputs: Inputs) -> Result:
                 for t in failed
             ),
         )
-    missing = inputs.missing(method.required(inputs, use))
+    missing = inputs.missing(method.module.required(inputs, use))
     unknown = [test for test in tests if test.met is None]
     if missing or unknown:
         return replace(
@@ -125,14 +161,16 @@ def evaluate(name: str, use: Use, inputs: Inputs) -> Result:
                 *(f"Test not answered: {t.test}, {t.value}." for t in unknown),
             ),
         )
-    return _computed(method, use, inputs, draft)
+    return _computed(method, use, inputs, draft, Note(first_line))
 
 
-def _computed(method: Method, use: Use, inputs: Inputs, draft: Result) -> Result:
+def _computed(
+    method: Method, use: Use, inputs: Inputs, draft: Result, note: Note
+) -> Result:
     """Compute; outside a solution's range the outcome is *not covered*."""
-    note = Note()
+    note.text(f"{method.title}, version {method.version}")
     try:
-        result = method.compute(inputs, use, note, draft)
+        result = method.module.compute(inputs, use, note, draft)
     except OutOfRangeError as refusal:
         return replace(
             draft,

@@ -167,6 +167,22 @@ class Interval:
 
 
 @dataclass(frozen=True, slots=True)
+class Margin:
+    """What one mechanism bears beside what one case asks [MPa]; None = not checked."""
+
+    method: str
+    mechanism: str
+    case: str
+    strength: float
+    required: float | None
+
+    @property
+    def value(self) -> float | None:
+        """Strength over required, minus one [-]."""
+        return None if self.required is None else self.strength / self.required - 1
+
+
+@dataclass(frozen=True, slots=True)
 class Mark:
     """A horizontal line or a named point on a curve."""
 
@@ -234,6 +250,8 @@ class Result:
     scatter_factor: float | None = None
     threshold: Interval | None = None
     repeat: Interval | None = None
+    margins: tuple[Margin, ...] = ()
+    assumptions: tuple[str, ...] = ()
     source_from_memory: bool = False
     barred: tuple[str, ...] = field(default=())
 

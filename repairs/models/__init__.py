@@ -65,6 +65,11 @@ from repairs.models.limits import (
     LimitRule,
     RecordedLimit,
 )
+from repairs.models.recalculations import (
+    Recalculation,
+    RecalculationItem,
+    RecalculationPart,
+)
 from repairs.models.repairs import (
     ApprovalBasis,
     Repair,
@@ -76,6 +81,7 @@ from repairs.models.repairs import (
     RepairStep,
     RepairType,
 )
+from repairs.models.stated import StatedInput
 from repairs.models.substantiations import (
     Answer,
     Substantiation,
@@ -131,6 +137,9 @@ __all__ = [
     "OccurrenceReport",
     "Outcome",
     "Photograph",
+    "Recalculation",
+    "RecalculationItem",
+    "RecalculationPart",
     "RecordedLimit",
     "Repair",
     "RepairCategory",
@@ -145,6 +154,7 @@ __all__ = [
     "RequirementLimit",
     "RequirementState",
     "RequirementSubject",
+    "StatedInput",
     "Substantiation",
     "SubstantiationCase",
     "SubstantiationDocument",

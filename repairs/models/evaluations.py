@@ -65,6 +65,7 @@ class Evaluation(Entered):
     governing = text(help_text="Which mode or requirement governs.")
     method = text(help_text="Empty: no method for this damage.")
     method_version = Count(low=0, high=10_000)
+    methods = text(help_text="Every method asked with its version, as |id@version|.")
     schema_version = Count(low=1, high=1_000)
     inputs = models.TextField(help_text="Canonical JSON.")
     outputs = models.TextField(help_text="Canonical JSON.")
@@ -182,6 +183,13 @@ class EvaluationInput(models.Model):
     policy = models.ForeignKey(
         Policy, on_delete=models.PROTECT, null=True, blank=True, related_name="+"
     )
+    stated_input = models.ForeignKey(
+        "repairs.StatedInput",
+        on_delete=models.PROTECT,
+        null=True,
+        blank=True,
+        related_name="+",
+    )
     used_digest = models.TextField()
     objects = ScopedQuerySet.as_manager()
     operator_paths = (
@@ -207,6 +215,7 @@ class EvaluationInput(models.Model):
                 "detectable_size",
                 "adopted_value",
                 "policy",
+                "stated_input",
             ),
         ]
 

@@ -20,6 +20,7 @@ from repairs.models import (
     Meaning,
     Measurement,
     Repair,
+    StatedInput,
 )
 
 Row = TypeVar("Row", Finding, Repair)
@@ -40,11 +41,13 @@ REPLACED_ROWS = (
     "adopted_value",
     "policy",
     "panel_on_aircraft",
+    "stated_input",
 )
-METHOD_CHANGED = "the method is now version {now}, this was version {then}"
+METHOD_CHANGED = "{name} is now version {now}, this was version {then}"
 PANEL_CHANGED = "panel {panel} is not the same in the geometry in force"
 ROW_REPLACED = "{what} has been replaced by a later one"
 MEASURED_SINCE = "the finding was measured again"
+STATED_SINCE = "an input was stated since"
 
 
 def evaluation_rows() -> QuerySet[Evaluation]:
@@ -142,11 +145,13 @@ def evaluations_stale(
     """Those whose method or whose read rows have since changed."""
     newer_method = Q()
     for method, version in versions.items():
-        newer_method |= Q(method=method) & ~Q(method_version=version)
+        asked = Q(methods__contains=f"|{method}@")
+        newer_method |= asked & ~Q(methods__contains=f"|{method}@{version}|")
     return rows.filter(
         newer_method
         | Exists(_changed_inputs().filter(evaluation=OuterRef("pk")))
         | Exists(_measured_again())
+        | Exists(_stated_since())
     )
 
 
@@ -175,12 +180,22 @@ def _measured_again() -> QuerySet[Measurement]:
     )
 
 
+def _stated_since() -> QuerySet[StatedInput]:
+    """Inputs first stated for the evaluated subject after the evaluation."""
+    return StatedInput.objects.filter(
+        Q(finding=OuterRef("finding")) | Q(repair=OuterRef("repair")),
+        replaces__isnull=True,
+        entered_at__gt=OuterRef("entered_at"),
+    )
+
+
 def stale_reasons(evaluation: Evaluation, versions: Mapping[str, int]) -> list[str]:
     """Why an evaluation is stale, in words; empty when it is not."""
     reasons = []
-    now = versions.get(evaluation.method)
-    if now is not None and now != evaluation.method_version:
-        reasons.append(METHOD_CHANGED.format(now=now, then=evaluation.method_version))
+    for method, then in methods_asked(evaluation):
+        now = versions.get(method)
+        if now is not None and now != then:
+            reasons.append(METHOD_CHANGED.format(name=method, now=now, then=then))
     for row in _changed_inputs().filter(evaluation=evaluation):
         used = next(
             name for name in ("panel", *REPLACED_ROWS) if getattr(row, f"{name}_id")
@@ -194,7 +209,15 @@ def stale_reasons(evaluation: Evaluation, versions: Mapping[str, int]) -> list[s
     again = Evaluation.objects.filter(Exists(_measured_again()), pk=evaluation.pk)
     if again.exists():
         reasons.append(MEASURED_SINCE)
+    if Evaluation.objects.filter(Exists(_stated_since()), pk=evaluation.pk).exists():
+        reasons.append(STATED_SINCE)
     return reasons
+
+
+def methods_asked(evaluation: Evaluation) -> list[tuple[str, int]]:
+    """Every method that was asked, with its version then."""
+    pairs = (part.split("@") for part in evaluation.methods.split("|") if part)
+    return [(name, int(version)) for name, version in pairs]
 
 
 @dataclass(frozen=True, slots=True)

@@ -32,9 +32,10 @@ from repairs.analysis.inputs import SPECS, Value
 from repairs.analysis.inspection.intervals import SINCE_NEW
 from repairs.analysis.scatter import factors as scatter
 from repairs.analysis.types import Grade, Sourced, Stated, Use
-from repairs.models import MeasuredValue, Measurement, Repair
+from repairs.models import MeasuredValue, Measurement, Repair, StatedInput
 from repairs.selectors.edges import earlier_depth_mm
 from repairs.selectors.latest import Latest
+from repairs.selectors.stated import stated_inputs, stated_source
 from repairs.services.evaluation_materials import (
     STRENGTHS,
     adopted_number,
@@ -75,6 +76,7 @@ POLICIES = {
 LARGEST_INTERVAL = "largest_interval_{criticality}"
 """Policy key of the operator's largest interval of a class, in flight cycles."""
 
+AT_A_HOLE = "fastener_hole"
 BLEND = "blend"
 """Where the type's file states the flaw that is assumed to remain."""
 
@@ -84,17 +86,39 @@ LENGTHS = {
     "hole_diameter": "hole_diameter_mm",
     "edge_distance": "edge_distance_mm",
     "strip_width": "strip_width_mm",
+    "crack_depth": "depth_mm",
+    "ligament": "ligament_mm",
+    "stop_hole_diameter": "stop_hole_diameter_mm",
+    "damage_length": "length_mm",
+    "damage_width": "width_mm",
+    "damage_depth": "depth_mm",
+    "root_radius": "root_radius_mm",
+    "fastener_distance": "fastener_distance_mm",
+    "damage_edge_distance": "edge_distance_mm",
     "remaining_thickness": "remaining_thickness_mm",
     "blend_length": "blend_length_mm",
 }
 UNCERTAINTIES = {
     "crack_length_uncertainty": "length_mm",
     "edge_crack_uncertainty": "edge_crack_length_mm",
+    "damage_depth_uncertainty": "depth_mm",
     "gauge_uncertainty": "remaining_thickness_mm",
 }
+COUNTS = {"crack_count": "crack_count"}
 WORDS = {
     "crack_direction": "direction",
     "crack_origin": "origin",
+    "crack_through": "through",
+    "stop_drilled": "stop_drilled",
+    "damage_direction": "direction",
+    "nick_at": "at",
+    "through_clad": "through_clad",
+    "creased": "creased",
+    "dent_cracked": "cracked",
+    "dent_over": "over",
+    "fasteners_pulled": "fasteners_pulled",
+    "material_removed": "material_removed",
+    "corrosion_type": "corrosion_type",
     "damage_removed": "damage_removed",
     "hole_load": "hole_load",
     "both_sides": "both_sides",
@@ -112,6 +136,7 @@ UsedRow = (
     | DetectableSize
     | AdoptedValue
     | Policy
+    | StatedInput
 )
 
 
@@ -156,20 +181,33 @@ class Gathered:
             self.put(name, Stated(value, source), *rows)
 
 
+def subject_words(subject: Subject, measured: Latest) -> dict[str, Value]:
+    """What the subject itself says: damage or repair, item hit, cracks at a hole."""
+    damage = measured.finding.damage_type if measured.finding else ""
+    words = {
+        "damage_type": damage,
+        "repair_kind": subject.kind if isinstance(subject, Repair) else "",
+        "element": subject.element,
+        "crack_origin": measured.word("origin") if damage == "crack" else "",
+        "hole_cracked": "yes" if _cracked_hole(damage, measured) else "no",
+    }
+    return {name: Stated(word, str(subject)) for name, word in words.items() if word}
+
+
+def _cracked_hole(damage: str, measured: Latest) -> bool:
+    """Whether a crack is known to start at a hole."""
+    if damage == "crack":
+        return measured.word("origin") == AT_A_HOLE
+    return damage == "hole" and measured.word("radiating_cracks") == "yes"
+
+
 def gather(
-    subject: Subject,
-    measured: Latest,
-    choice: Choice,
-    *,
-    as_of: dt.date,
-    cracked_hole: bool,
+    subject: Subject, measured: Latest, choice: Choice, *, as_of: dt.date
 ) -> Gathered:
     """Everything the record says that any method may ask for."""
-    found = Gathered()
+    found = Gathered(subject_words(subject, measured))
     operator = subject.operator
     _measurements(found, subject, measured)
-    found.word("hole_cracked", "yes" if cracked_hole else "no", str(subject))
-    found.word("element", subject.element, str(subject))
     skin = skin_under(subject)
     if skin is not None:
         _skin(found, subject, skin, operator)
@@ -191,12 +229,28 @@ def gather(
     )
     if around is not None:
         found.put("surroundings", around)
+    _stated(found, subject)
     return found
+
+
+def _stated(found: Gathered, subject: Subject) -> None:
+    """What an engineer states for this place; it goes before what the type says."""
+    for row in stated_inputs(subject):
+        spec, source = SPECS.get(row.name), stated_source(row)
+        if spec is None or not spec.may_be_stated:
+            continue
+        if row.word:
+            found.put(row.name, Stated(row.word, source), row)
+        elif row.value is not None:
+            found.number(row.name, row.value, source, row)
 
 
 def _measurements(found: Gathered, subject: Subject, measured: Latest) -> None:
     values = measured.values
     for name, quantity in LENGTHS.items():
+        if row := values.get(quantity):
+            found.number(name, row.value, _where(row), row.measurement)
+    for name, quantity in COUNTS.items():
         if row := values.get(quantity):
             found.number(name, row.value, _where(row), row.measurement)
     for name, quantity in UNCERTAINTIES.items():
@@ -260,11 +314,14 @@ def _skin(found: Gathered, subject: Subject, skin: Skin, operator: Operator) -> 
     rows: tuple[UsedRow, ...] = (panel, *((fitted,) if fitted else ()))
     source = f"panel {panel.label}: {panel.source}"
     found.word("pressurised", "yes" if panel.pressurised else "no", source, panel)
+    found.word("load_kind", panel.load_kind, panel.load_source or source, panel)
     found.number("thickness", skin.thickness_mm, skin.thickness_source, *rows)
     found.number("radius", panel.radius_mm, source, panel)
     found.number("panel_length", skin.length_across_crack_mm, source, panel)
     loads = panel.load_source or source
     found.number("ultimate_running_load", panel.ultimate_load_n_per_mm, loads, panel)
+    found.number("limit_longitudinal_stress", panel.limit_stress_mpa, loads, panel)
+    found.number("mean_longitudinal_stress", panel.mean_stress_mpa, loads, panel)
     if not panel.pressurised and panel.section.wrap_mm is None:
         found.number("limit_flight_stress", panel.limit_stress_mpa, loads, panel)
     _cycle(found, panel)

@@ -30,13 +30,15 @@ from repairs.selectors.evaluations import (
 from repairs.selectors.signatures import approvals_verified
 from repairs.selectors.substantiations import folders_citing
 from repairs.services.evaluation_place import Subject
-from repairs.services.evaluations import (
+from repairs.services.evaluation_prepare import (
     choice_from,
     default_use,
-    evaluation_make,
     evaluation_prepare,
-    evaluation_remake,
     input_lines,
+)
+from repairs.services.evaluations import (
+    evaluation_make,
+    evaluation_remake,
     method_versions,
 )
 

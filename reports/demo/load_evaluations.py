@@ -11,7 +11,8 @@ from fleet.models import DetectableSize
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from repairs.models import Finding, Use
-from repairs.services.evaluations import choice_from, evaluation_write
+from repairs.services.evaluation_prepare import choice_from
+from repairs.services.evaluations import evaluation_write
 from reports.demo.fleet import DEMO_TODAY
 from reports.demo.load_base import Loaded
 from reports.demo.records import Scenario

@@ -13,7 +13,8 @@ from fleet.models import AircraftType, UsageRecord, User
 from fleet.selectors.structure import geometry_of
 from fleet.selectors.verify import problems
 from repairs.models import Evaluation, Finding
-from repairs.services.evaluations import choice_of, evaluation_prepare
+from repairs.services.evaluation_prepare import evaluation_prepare
+from repairs.services.evaluations import choice_of
 from reports.due_list import DueQuery, due_list
 
 TODAY = dt.date(2025, 1, 1)

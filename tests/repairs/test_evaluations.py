@@ -32,8 +32,8 @@ from repairs.selectors.evaluations import (
     stale_reasons,
 )
 from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_prepare import default_use
 from repairs.services.evaluations import (
-    default_use,
     evaluation_data,
     evaluation_make,
     evaluation_remake,

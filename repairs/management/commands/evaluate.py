@@ -21,7 +21,8 @@ from repairs.selectors.evaluations import (
     subjects_numbered,
 )
 from repairs.services.evaluation_place import Subject
-from repairs.services.evaluations import choice_from, evaluation_make, method_versions
+from repairs.services.evaluation_prepare import choice_from
+from repairs.services.evaluations import evaluation_make, method_versions
 
 NOT_FOUND = "There is no finding or repair “{number}”{where}; numbers read F-0001."
 SEVERAL = "“{number}” is held by several operators ({held}); name one: --operator CODE."

@@ -2,31 +2,23 @@
 
 from __future__ import annotations
 
+import importlib
 import inspect
+import pkgutil
 import re
 
 import pytest
 
+import repairs.analysis
 from repairs.analysis.errors import InputError
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.intensity import (
-    bulging,
-    compounding,
-    part_through,
-    stiffened_sheet,
+from repairs.analysis.registry import (
+    COVERAGE,
+    METHODS,
+    evaluate,
+    groups_for,
+    method_named,
 )
-from repairs.analysis.intensity import corner as corner_crack
-from repairs.analysis.intensity import holes as hole_intensity
-from repairs.analysis.intensity import rows as crack_row
-from repairs.analysis.intensity import through as stress_intensity
-from repairs.analysis.loads import shell as loads
-from repairs.analysis.registry import METHODS, evaluate, method_named, methods_for
-from repairs.analysis.scatter import estimates as life_estimates
-from repairs.analysis.scatter import factors as scatter
-from repairs.analysis.scatter import tolerance
-from repairs.analysis.strength import link_up, load_paths, r_curve, toughness
-from repairs.analysis.strength import residual as residual_strength
-from repairs.analysis.strength import stiffened as stiffened_strength
 from repairs.analysis.types import Grade, Outcome, Sourced, Stated, Use
 
 
@@ -36,7 +28,9 @@ def test_nothing_recorded_is_incomplete_and_never_a_number(method, use):
     result = evaluate(method.id, use, Inputs({}))
     assert result.outcome is Outcome.MISSING_INPUT
     assert {m.name for m in result.missing} == {
-        name for name in method.required(Inputs({}), use) if SPECS[name].default is None
+        name
+        for name in method.module.required(Inputs({}), use)
+        if SPECS[name].default is None
     }
     assert all(m.where for m in result.missing)
     assert result.residual_strength_mpa is None
@@ -82,41 +76,36 @@ def test_an_input_nobody_knows_or_in_another_unit_is_refused():
 def test_an_unknown_method_is_refused_with_the_ids_there_are():
     with pytest.raises(InputError, match="corrosion-blend-out"):
         method_named("feeling")
-    assert methods_for("dent") == ()
 
 
+def test_every_method_is_asked_by_some_damage_and_every_one_asked_exists():
+    asked = {name for row in COVERAGE for group in row.groups for name in group}
+    assert asked == set(METHODS)
+
+
+def test_a_damage_without_a_method_asks_none():
+    assert groups_for(Inputs({"damage_type": Stated("delamination", "F-0001")})) == ()
+
+
+MODULES = [
+    importlib.import_module(found.name)
+    for found in pkgutil.walk_packages(
+        repairs.analysis.__path__, f"{repairs.analysis.__name__}."
+    )
+]
 FORMULAS = [
     function
-    for module in (
-        bulging,
-        compounding,
-        corner_crack,
-        crack_row,
-        hole_intensity,
-        life_estimates,
-        link_up,
-        load_paths,
-        loads,
-        part_through,
-        r_curve,
-        residual_strength,
-        scatter,
-        stiffened_sheet,
-        stiffened_strength,
-        stress_intensity,
-        tolerance,
-        toughness,
-    )
-    for name, function in inspect.getmembers(module, inspect.isfunction)
+    for module in MODULES
+    for _, function in inspect.getmembers(module, inspect.isfunction)
     if function.__module__ == module.__name__
-    and "Parameters" in (function.__doc__ or "")
+    and "References" in (function.__doc__ or "")
 ]
 
 
 @pytest.mark.parametrize("function", FORMULAS, ids=lambda f: f.__name__)
 def test_a_formula_states_units_range_and_source(function):
     text = function.__doc__
-    for heading in ("Returns", "Notes", "References"):
+    for heading in ("Parameters", "Returns", "Notes"):
         assert heading in text, f"{function.__name__} lacks {heading}"
     assert re.search(r"[Rr]ange", text), f"{function.__name__} states no range"
     parameters = text.split("Parameters")[1].split("Returns")[0]

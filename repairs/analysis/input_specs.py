@@ -1,0 +1,271 @@
+"""What methods may ask for: name, title, kind, unit, and where each is entered.
+
+The few values with a default are published factors and a company rule; they carry
+their source and can be replaced by an adopted value of the same name.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from enum import StrEnum
+
+from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.loads import shell as loads
+from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.stress_life.curves import StressLifeFamily
+from repairs.analysis.surroundings import Surroundings
+from repairs.analysis.types import Grade, Sourced, Stated
+
+TOUGHNESS_UNIT = "MPa*sqrt(mm)"
+CLEARANCE_RULE = Sourced(
+    3.0,
+    "-",
+    "company rule of this program, not published: edge disturbances of a thin shell "
+    "have died out after about 3 sqrt(R t)",
+    Grade.RECORDED,
+)
+
+
+class Where(StrEnum):
+    """Where an input is entered; what is *stated* an engineer enters with its source.
+
+    A panel's number may be stated for one place too, and then goes before the type's.
+    """
+
+    TYPE = "on the aircraft type"
+    PANEL = (
+        "on the panel, in the type's geometry or as a panel on this aircraft, "
+        "or as a stated input"
+    )
+    STATED = "as a stated input of the finding or repair, with its document"
+    MEASURE = "in a measurement of the finding"
+    MATERIAL = "on the panel's material, or as an adopted value"
+    FINDING = "on the finding"
+    ADOPTED = "as an adopted value"
+    STRESS_LIFE = "as a fatigue policy of the aircraft type named stress_life"
+    THRESHOLD = "as a fatigue policy of the aircraft type named growth_threshold"
+    REPEAT = "as a fatigue policy of the aircraft type named growth_repeat"
+    DETECTABLE = "as a detectable size of the aircraft type, for the method chosen"
+    FLAW = "as an adopted value; else the published flaw of the location is used"
+    COUNTERS = "in the finding's counters or the aircraft's usage"
+    SKIN_COUNTERS = (
+        "in the finding's counters, less those at the fit of a replaced panel"
+    )
+    VALIDITY = "on the variant or the aircraft"
+    OPERATOR = "as a policy of the operator"
+    EARLIER = "on the earlier repairs here"
+    GEOMETRY = "by placing the finding on a published geometry"
+    EVALUATION = "by the evaluation"
+    ASKED = "when the evaluation is made"
+
+
+@dataclass(frozen=True, slots=True)
+class InputSpec:
+    """One input: what it is called, what it is, its unit and where it is entered.
+
+    `words` are the answers a stated word may have; empty: any that the record gives.
+    """
+
+    name: str
+    title: str
+    kind: type
+    unit: str
+    where: Where
+    default: Sourced | None = None
+    words: tuple[str, ...] = ()
+
+    @property
+    def may_be_stated(self) -> bool:
+        """Whether an engineer may state it for one finding or repair."""
+        return self.where in (Where.PANEL, Where.STATED)
+
+
+YES_NO = ("yes", "no")
+_WORDS: dict[Where, tuple[tuple[str, str], ...]] = {
+    Where.FINDING: (
+        ("damage_type", "damage type"),
+        ("element", "structural item"),
+        ("repair_kind", "kind of repair"),
+    ),
+    Where.PANEL: (
+        ("pressurised", "panel is pressurised"),
+        ("clad", "panel is clad"),
+    ),
+    Where.MEASURE: (
+        ("crack_direction", "direction of the crack"),
+        ("crack_origin", "where the crack starts"),
+        ("crack_through", "crack is through the thickness"),
+        ("damage_direction", "direction of the damage"),
+        ("damage_removed", "all damage removed"),
+        ("hole_load", "whether a fastener loads the hole"),
+        ("hole_cracked", "whether cracks start at the hole"),
+        ("both_sides", "cracks on both sides of the hole"),
+        ("stop_drilled", "crack is stop-drilled"),
+        ("nick_at", "nick lies at an edge or a hole"),
+        ("through_clad", "damage is through the cladding"),
+        ("creased", "dent is creased"),
+        ("dent_cracked", "dent is cracked, by a non-destructive test"),
+        ("dent_over", "what the dent lies over"),
+        ("fasteners_pulled", "fasteners pulled or loose"),
+        ("material_removed", "material removed"),
+        ("corrosion_type", "type of corrosion"),
+    ),
+    Where.EVALUATION: (("life_base", "what life counts from"),),
+    Where.ASKED: (("life_used_reason", "why life already used is not counted"),),
+}
+_STATED_WORDS: tuple[tuple[str, str, tuple[str, ...]], ...] = (
+    (
+        "load_kind",
+        "kind of load the structure carries",
+        ("tension", "compression", "shear", "bending", "torsion", "pressure"),
+    ),
+    ("centre_stiffener", "stiffener at the middle of the crack",
+     ("mid_bay", "intact_stiffener", "broken_stiffener")),
+    ("member_failed", "member has failed", YES_NO),
+    ("below_last_term", "cycles below the last term of a stress-life curve",
+     ("none_counts", "slope_continued", "slope_doubled")),
+    ("retardation", "retardation shown beside the life",
+     ("none", "wheeler", "willenborg")),
+)  # fmt: skip
+_NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
+    Where.MEASURE: (
+        ("crack_length", "crack length, tip to tip", "mm"),
+        ("crack_length_uncertainty", "its uncertainty", "mm"),
+        ("crack_depth", "crack depth, where it is not through", "mm"),
+        ("edge_crack_length", "crack length from the edge of the hole", "mm"),
+        ("edge_crack_uncertainty", "its uncertainty", "mm"),
+        ("crack_count", "number of cracks", "-"),
+        ("ligament", "distance to the next hole or crack", "mm"),
+        ("hole_diameter", "hole diameter after trimming", "mm"),
+        ("edge_distance", "hole centre to nearest free edge", "mm"),
+        ("strip_width", "width of the strip with the hole or edge", "mm"),
+        ("stop_hole_diameter", "diameter of the stop hole", "mm"),
+        ("damage_length", "length of the damage", "mm"),
+        ("damage_width", "width of the damage", "mm"),
+        ("damage_depth", "greatest depth of the damage", "mm"),
+        ("damage_depth_uncertainty", "its uncertainty", "mm"),
+        ("root_radius", "root radius", "mm"),
+        ("fastener_distance", "distance to nearest fastener", "mm"),
+        ("damage_edge_distance", "distance to nearest edge", "mm"),
+        ("remaining_thickness", "smallest thickness left", "mm"),
+        ("gauge_uncertainty", "uncertainty of the gauge", "mm"),
+        ("blend_length", "full length of the blend", "mm"),
+        ("blend_depth", "depth of this blend", "mm"),
+    ),
+    Where.EARLIER: (
+        ("earlier_depth", "depth of earlier blends at the location", "mm"),
+    ),
+    Where.PANEL: (
+        ("thickness", "skin thickness before the damage", "mm"),
+        ("clad_thickness", "cladding of one side", "mm"),
+        ("radius", "shell radius", "mm"),
+        ("panel_length", "panel length along the crack", "mm"),
+        ("ultimate_running_load", "recorded ultimate running load", "N/mm"),
+        ("limit_flight_stress", "stress across the crack from limit flight loads",
+         "MPa"),
+        ("limit_longitudinal_stress", "limit stress along the section", "MPa"),
+        ("mean_longitudinal_stress", "1 g stress along the section", "MPa"),
+        ("cycle_max_stress", "largest stress of a flight", "MPa"),
+        ("cycle_ratio", "stress ratio of a flight's cycle", "-"),
+        ("frame_area", "section area of a frame", "mm2"),
+        ("frame_pitch", "frame pitch", "mm"),
+        ("stringer_area", "section area of a stringer", "mm2"),
+        ("stringer_pitch", "stringer pitch", "mm"),
+    ),
+    Where.STATED: (
+        ("load_transfer", "share of the strip's load that the fastener takes", "-"),
+        ("hole_pitch", "pitch of the row of holes", "mm"),
+        ("fastener_pitch", "fastener pitch along a stiffener", "mm"),
+        ("fastener_diameter", "fastener diameter", "mm"),
+        ("fastener_flexibility", "flexibility of one fastener", "mm/N"),
+        ("fastener_strength", "shear strength of one fastener", "N"),
+        ("stiffener_strength", "strength of the stiffener's material", "MPa"),
+        ("stiffener_modulus", "modulus of the stiffener", "MPa"),
+        ("member_area", "section area of the member", "mm2"),
+        ("member_lost_area", "area lost by the damage", "mm2"),
+        ("member_inertia", "second moment of area, damaged", "mm4"),
+        ("member_extreme_fibre", "distance to the extreme fibre, damaged", "mm"),
+        ("member_length", "free length of the member", "mm"),
+        ("member_fixity", "end fixity coefficient", "-"),
+        ("member_width", "width of the flange or web that is damaged", "mm"),
+        ("member_thickness", "thickness of the flange or web", "mm"),
+        ("member_limit_force", "limit axial force, tension positive", "N"),
+        ("member_limit_moment", "limit bending moment", "N*mm"),
+        ("member_limit_shear", "limit shear force", "N"),
+        ("member_crippling", "crippling strength of the section", "MPa"),
+        ("wheeler_exponent", "Wheeler's exponent, fitted", "-"),
+        ("shut_off_ratio", "overload ratio that stops the crack", "-"),
+    ),
+    Where.MATERIAL: (
+        ("yield_strength", "tension yield strength Fty", "MPa"),
+        ("tension_strength", "tension ultimate strength Ftu", "MPa"),
+        ("compression_yield", "compression yield strength Fcy", "MPa"),
+        ("shear_strength", "shear ultimate strength Fsu", "MPa"),
+        ("modulus", "modulus of elasticity E", "MPa"),
+        ("poisson", "Poisson's ratio", "-"),
+        ("toughness", "fracture toughness Kc", TOUGHNESS_UNIT),
+        ("growth_threshold", "growth threshold at R = 0", TOUGHNESS_UNIT),
+    ),
+    Where.DETECTABLE: (
+        ("detectable_length", "detectable size with the hidden part", "mm"),
+    ),
+    Where.FLAW: (("assumed_flaw", "depth of the flaw assumed to remain", "mm"),),
+    Where.TYPE: (
+        ("normal_pressure", "normal operating differential", "MPa"),
+        ("external_pressure", "external aerodynamic pressure", "MPa"),
+        ("relief_pressure", "relief-valve differential", "MPa"),
+        ("ceiling", "maximum operating altitude", "ft"),
+    ),
+    Where.COUNTERS: (
+        ("accumulated_cycles", "flight cycles accumulated", "cycles"),
+    ),
+    Where.SKIN_COUNTERS: (
+        ("skin_cycles", "flight cycles this skin has flown", "cycles"),
+    ),
+    Where.VALIDITY: (("validity_cycles", "limit of validity", "cycles"),),
+    Where.OPERATOR: (
+        ("class_maximum", "operator's largest interval of this class", "cycles"),
+    ),
+    Where.ADOPTED: (
+        ("clad_life_factor", "life of bare over life of clad", "-"),
+        ("clearance_multiple", "clearance from edges in sqrt(R t)", "-"),
+        ("residual_pressure_factor", "residual, pressure alone", "-"),
+        ("ultimate_factor", "ultimate over limit load", "-"),
+        ("proof_factor", "relief valve alone", "-"),
+    ),
+}  # fmt: skip
+_DEFAULTS = {
+    "clearance_multiple": CLEARANCE_RULE,
+    "residual_pressure_factor": loads.RESIDUAL_PRESSURE_FACTOR,
+    "ultimate_factor": loads.ULTIMATE_FACTOR,
+}
+_OTHERS: tuple[InputSpec, ...] = (
+    InputSpec("surroundings", "what lies round the location", Surroundings, "",
+              Where.GEOMETRY),
+    InputSpec("growth_law", "crack growth law", WalkerLaw, "", Where.MATERIAL),
+    InputSpec("second_growth_law", "second growth law", WalkerLaw, "", Where.MATERIAL),
+    InputSpec("stress_life", "stress-life curves", StressLifeFamily, "",
+              Where.MATERIAL),
+    InputSpec("stress_life_policy", "scatter factor on mean stress-life",
+              FatiguePolicy, "", Where.STRESS_LIFE),
+    InputSpec("growth_policy", "factor on growth life to a threshold", FatiguePolicy,
+              "", Where.THRESHOLD),
+    InputSpec("repeat_policy", "factor on growth life to a repeat interval",
+              FatiguePolicy, "", Where.REPEAT),
+)  # fmt: skip
+
+
+def _specs() -> Iterable[InputSpec]:
+    for where, pairs in _WORDS.items():
+        for name, title in pairs:
+            yield InputSpec(name, title, Stated, "", where)
+    for name, title, words in _STATED_WORDS:
+        yield InputSpec(name, title, Stated, "", Where.STATED, words=words)
+    for where, rows in _NUMBERS.items():
+        for name, title, unit in rows:
+            yield InputSpec(name, title, Sourced, unit, where, _DEFAULTS.get(name))
+    yield from _OTHERS
+
+
+SPECS: dict[str, InputSpec] = {spec.name: spec for spec in _specs()}

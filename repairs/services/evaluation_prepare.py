@@ -1,0 +1,155 @@
+"""A calculation made from the record as it stands, and not kept."""
+
+from __future__ import annotations
+
+import datetime as dt
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+from django.core.exceptions import ValidationError
+
+from fleet.models import DetectableSize
+from repairs.analysis.assessment import Assessment, Part, assess
+from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.inputs import SPECS, Inputs, Value
+from repairs.analysis.registry import METHODS, groups_for
+from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.stress_life.curves import StressLifeFamily
+from repairs.analysis.types import Result, Sourced, Stated, Use
+from repairs.evaluation_text import number_text
+from repairs.models import Finding
+from repairs.selectors.latest import Latest, measured_of
+from repairs.services.evaluation_inputs import Choice, Gathered, gather, subject_words
+from repairs.services.evaluation_place import Subject
+
+OTHER_TYPE = (
+    "{size} is a detectable size of another aircraft type; choose one of {type}."
+)
+KNOWN_BY_REWORK = "damage_removed"
+
+
+@dataclass(frozen=True, slots=True)
+class Prepared:
+    """A calculation made and not yet kept."""
+
+    assessment: Assessment
+    inputs: Inputs
+    gathered: Gathered
+
+    @property
+    def result(self) -> Result:
+        """What follows from all methods asked."""
+        return self.assessment.result
+
+
+def default_use(subject: Subject) -> Use:
+    """What a subject is evaluated for unless someone chooses otherwise.
+
+    Damage that is still there is found damage; a repair, or damage all removed, is
+    structure without known crack.
+    """
+    if not isinstance(subject, Finding):
+        return Use.NO_KNOWN_CRACK
+    gone = measured_of(subject).word(KNOWN_BY_REWORK) == "yes"
+    return Use.NO_KNOWN_CRACK if gone else Use.FOUND_DAMAGE
+
+
+def choice_from(
+    subject: Subject,
+    *,
+    use: str | None = None,
+    detectable: DetectableSize | None = None,
+    life_used_reason: str = "",
+) -> Choice:
+    """A choice as a form or a command gives it; the use follows from the subject."""
+    wanted = Use(use) if use else default_use(subject)
+    return Choice(wanted, detectable, life_used_reason)
+
+
+def evaluation_prepare(
+    *,
+    subject: Subject,
+    choice: Choice,
+    as_of: dt.date,
+    instead: Mapping[str, Value] | None = None,
+) -> Prepared:
+    """Calculate from the record as it stands, and keep nothing.
+
+    `instead` puts values in the place of recorded ones: what if.
+    """
+    size = choice.detectable
+    made = subject.aircraft.variant.aircraft_type
+    if size is not None and size.aircraft_type_id != made.pk:
+        raise ValidationError(OTHER_TYPE.format(size=size, type=made))
+    measured = measured_of(subject)
+    found = Gathered()
+    if _asks(subject, measured):
+        found = gather(subject, measured, choice, as_of=as_of)
+    inputs = Inputs(found.values | dict(instead or {}))
+    return Prepared(assess(choice.use, inputs), inputs, found)
+
+
+def _asks(subject: Subject, measured: Latest) -> bool:
+    """Whether any method is for this damage or repair."""
+    if measured.finding is None:
+        return False
+    return bool(groups_for(Inputs(subject_words(subject, measured))))
+
+
+@dataclass(frozen=True, slots=True)
+class InputLine:
+    """One input that a calculation would use, or would need and does not find."""
+
+    name: str
+    title: str
+    value: str
+    source: str
+    grade: str
+    missing: bool = False
+
+
+def input_lines(prepared: Prepared) -> list[InputLine]:
+    """What the methods that apply need, in their order, then what else they may use."""
+    names: dict[str, None] = {}
+    use = prepared.result.use
+    for answer in prepared.assessment.answers:
+        if answer.part is not Part.NOT_APPLICABLE:
+            module = METHODS[answer.result.method].module
+            names |= dict.fromkeys(module.required(prepared.inputs, use))
+    if not names:
+        return []
+    found = prepared.inputs.values
+    names |= {
+        name: None
+        for name, spec in SPECS.items()
+        if name in found and spec.kind is not Stated
+    }
+    return [_input_line(name, found.get(name, SPECS[name].default)) for name in names]
+
+
+def _input_line(name: str, value: Value | None) -> InputLine:
+    spec = SPECS[name]
+    if value is None:
+        where = f"enter it {spec.where}"
+        return InputLine(name, spec.title, "missing", where, "", missing=True)
+    shown, source, grade = _said(value)
+    return InputLine(name, spec.title, shown, source, grade)
+
+
+def _said(value: Value) -> tuple[str, str, str]:
+    """A value, its source and its grade as text."""
+    if isinstance(value, Sourced):
+        number = f"{number_text(value.value)} {value.unit}".strip(" -")
+        return number, value.source, value.grade.value
+    if isinstance(value, Stated):
+        return value.value.replace("_", " "), value.source, ""
+    if isinstance(value, WalkerLaw):
+        return "Walker", value.reference.source, value.reference.grade.value
+    if isinstance(value, FatiguePolicy):
+        factor = value.factor
+        return f"{factor.value:g}", factor.source, factor.grade.value
+    if isinstance(value, StressLifeFamily):
+        factors = ", ".join(f"{curve.kt:g}" for curve in value.curves)
+        first = value.curves[0]
+        return f"Kt {factors}", first.source, first.grade.value
+    return value.bay_label, value.source, ""
