@@ -1,31 +1,26 @@
-r"""Crack growth under constant amplitude: Paris and Walker, integrated exactly.
+r"""Growth laws: how far a crack grows in one cycle of a range of K.
 
-With :math:`\Delta K = F(a)\,\Delta S\sqrt{\pi a}` and a constant stress cycle the
-equation is separable,
-
-.. math:: N = \int_{a_0}^{a_1} \frac{da}{da/dN(a)}
-
-and the integral is evaluated by adaptive quadrature in ln a, which meets the closed
-forms to 1e-6. Stepping cycle by cycle always lags the crack and is not used. No
-retardation and no threshold: both lengthen life.
+Paris, Walker, Forman, and a threshold as a stored option. Laws on an effective range
+(closure) stand in `closure`. Every law gives one rate and arrays of rates; those whose
+rate is a power of the range times a function of R are `PowerLaw` and may be summed over
+a flight.
 
 References
 ----------
-.. [1] Paris and Erdogan; Walker; both as in Dowling, Mechanical Behavior of Materials.
+.. [1] Paris and Erdogan; Walker; Forman, Kearney and Engle; all as in Dowling,
+   Mechanical Behavior of Materials.
 """
 
 from __future__ import annotations
 
-import itertools
 import math
-from collections.abc import Callable
 from dataclasses import dataclass
+from typing import Protocol
 
 import numpy as np
-from scipy.integrate import quad, solve_ivp
-from scipy.optimize import brentq
+from numpy.typing import NDArray
 
-from repairs.analysis.errors import AnalysisError, within
+from repairs.analysis.errors import AnalysisError, OutOfRangeError, within
 from repairs.analysis.types import (
     INCH,
     KSI_ROOT_INCH,
@@ -34,12 +29,50 @@ from repairs.analysis.types import (
     Reference,
 )
 
-SEPARABLE = "N = ∫ da / (da/dN)"
-BACKWARDS = "Growth is asked from {low:.4g} to {high:.4g} mm; the end must be larger."
-CURVE_POINTS = 60
+Floats = NDArray[np.float64]
+"""Array of numbers."""
 
-Factor = Callable[[float], float]
-"""F(a): dimensionless factor at a crack length [mm]."""
+FAST_FRACTURE = (
+    "ΔK is {delta_k:.4g}, at or above (1 − R) Kc = {end:.4g} MPa√mm: Forman's law has "
+    "no rate there. End the growth at a shorter crack."
+)
+SHORT_FOR_THRESHOLD = (
+    "A threshold holds for long cracks only: growth starts at {start:.4g} mm, the law "
+    "is recorded for cracks from {longer:.4g} mm. Leave the threshold out."
+)
+VARIABLE_AMPLITUDE = (
+    "A threshold holds under constant amplitude only; here the cycles differ. Leave "
+    "the threshold out."
+)
+
+
+class GrowthLaw(Protocol):
+    """Growth rate of a range of K and a stress ratio, with the constants' source."""
+
+    @property
+    def reference(self) -> Reference:
+        """Source of the constants."""
+
+    def rate(self, delta_k: float, ratio: float) -> float:
+        """Return da/dN [mm/cycle] of the full range of K [MPa*sqrt(mm)] and R."""
+
+    def rates(self, delta_k: Floats, ratio: Floats) -> Floats:
+        """Return da/dN [mm/cycle] of arrays of ranges and stress ratios."""
+
+
+class PowerLaw(GrowthLaw, Protocol):
+    r"""A law :math:`da/dN = C\,[u(R)\,\Delta K]^m`."""
+
+    @property
+    def coefficient(self) -> float:
+        """C [mm/cycle per (MPa*sqrt(mm))^m]."""
+
+    @property
+    def exponent(self) -> float:
+        """m [-]."""
+
+    def shares(self, ratio: Floats) -> Floats:
+        """Return u(R), the share of the range that counts [-]."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -55,7 +88,7 @@ class WalkerLaw:
     exponent
         m [-].
     gamma
-        Walker's exponent [-]; 1 makes it Paris' law at any R.
+        Walker's exponent [-]; 1 makes it Paris' law at any R >= 0.
     reference
         Source of the constants.
     remark
@@ -107,6 +140,193 @@ class WalkerLaw:
             self.coefficient * (delta_k / (1 - ratio) ** power) ** self.exponent
         )
 
+    def rates(self, delta_k: Floats, ratio: Floats) -> Floats:
+        """Return da/dN of arrays, as `rate`."""
+        driven: Floats = delta_k * self.shares(ratio)
+        return self.coefficient * driven**self.exponent
+
+    def shares(self, ratio: Floats) -> Floats:
+        """Return 1/(1 - R)^(1 - gamma), and 1/(1 - R) for R < 0 [-]."""
+        ratios_within(ratio, -10, 0.999, "Walker")
+        power = np.where(ratio >= 0, 1 - self.gamma, 1.0)
+        share: Floats = (1 - ratio) ** -power
+        return share
+
+
+@dataclass(frozen=True, slots=True)
+class FormanLaw:
+    r"""Growth law :math:`da/dN = C\,\Delta K^m/[(1-R)K_c - \Delta K]` for R >= 0.
+
+    For R < 0 only the tension part counts: :math:`K_{max}` as range, at R = 0.
+
+    Parameters
+    ----------
+    coefficient
+        C [mm/cycle per (MPa*sqrt(mm))^(m-1)].
+    exponent
+        m [-].
+    toughness
+        Kc of the fit [MPa*sqrt(mm)]: a constant of this law for the sheet it was
+        fitted on, not a fracture toughness.
+    reference
+        Source of the constants.
+    remark
+        Sheet, direction, range of the data, as recorded.
+    """
+
+    coefficient: float
+    exponent: float
+    toughness: float
+    reference: Reference
+    remark: str = ""
+
+    @classmethod
+    def from_mpa_root_metre(
+        cls, c: float, m: float, kc: float, reference: Reference, remark: str = ""
+    ) -> FormanLaw:
+        """Make the law from C in mm/cycle per (MPa*sqrt(m))^(m-1), Kc in MPa*sqrt(m).
+
+        One power of K less than in Paris' law, for the denominator has the unit of K.
+        """
+        return cls(c / ROOT_1000 ** (m - 1), m, kc * ROOT_1000, reference, remark)
+
+    @classmethod
+    def from_ksi_root_inch(
+        cls, c: float, m: float, kc: float, reference: Reference, remark: str = ""
+    ) -> FormanLaw:
+        """Make the law from C in in/cycle per (ksi*sqrt(in))^(m-1), Kc ksi*sqrt(in)."""
+        made = c * INCH / KSI_ROOT_INCH ** (m - 1)
+        return cls(made, m, kc * KSI_ROOT_INCH, reference, remark)
+
+    def rate(self, delta_k: float, ratio: float) -> float:
+        """Return da/dN.
+
+        Parameters
+        ----------
+        delta_k
+            Full range of K, compression included [MPa*sqrt(mm)].
+        ratio
+            Stress ratio R [-].
+
+        Returns
+        -------
+        float
+            Growth rate [mm/cycle].
+
+        Notes
+        -----
+        Range R < 1 and Kmax below the Kc of the fit, else refused.
+        """
+        return float(self.rates(np.array([delta_k]), np.array([ratio]))[0])
+
+    def rates(self, delta_k: Floats, ratio: Floats) -> Floats:
+        """Return da/dN of arrays, as `rate`."""
+        ratios_within(ratio, -10, 0.999, "Forman")
+        counted: Floats = delta_k / np.where(ratio < 0, 1 - ratio, 1.0)
+        end: Floats = (1 - np.maximum(ratio, 0)) * self.toughness
+        worst = int(np.argmax(counted / end))
+        if not counted.flat[worst] < end.flat[worst]:
+            raise OutOfRangeError(
+                FAST_FRACTURE.format(delta_k=counted.flat[worst], end=end.flat[worst])
+            )
+        return self.coefficient * counted**self.exponent / (end - counted)
+
+
+@dataclass(frozen=True, slots=True)
+class Threshold:
+    r"""Range of K without growth, :math:`\Delta K_{th}(R) = \Delta K_{th0}(1-R)^g`.
+
+    `at_zero` in MPa*sqrt(mm); `longer_than` is the crack length from which a crack
+    counts as long [mm]. A record, never a default.
+    """
+
+    at_zero: float
+    power: float
+    longer_than: float
+    reference: Reference
+
+    def at(self, ratio: float) -> float:
+        """Return the threshold at a stress ratio R < 1 [MPa*sqrt(mm)]."""
+        within("Stress ratio R", ratio, -10, 0.999, "threshold")
+        return float(self.at_zero * (1 - ratio) ** self.power)
+
+
+@dataclass(frozen=True, slots=True)
+class ThresholdLaw:
+    """A law that gives no growth at or below a threshold.
+
+    For long cracks under constant amplitude only; what sums over unlike cycles, grows a
+    part-through flaw or starts at a shorter crack refuses it. A retarded crack, or one
+    of the size of an assumed flaw, grows below it.
+    """
+
+    law: GrowthLaw
+    threshold: Threshold
+
+    @property
+    def reference(self) -> Reference:
+        """Source of the law's constants."""
+        return self.law.reference
+
+    def rate(self, delta_k: float, ratio: float) -> float:
+        """Return da/dN [mm/cycle], 0 at or below the threshold."""
+        if delta_k <= self.threshold.at(ratio):
+            return 0.0
+        return self.law.rate(delta_k, ratio)
+
+    def rates(self, delta_k: Floats, ratio: Floats) -> Floats:
+        """Return da/dN of arrays, as `rate`."""
+        ends = self.threshold.at_zero * (1 - ratio) ** self.threshold.power
+        return np.where(delta_k <= ends, 0.0, self.law.rates(delta_k, ratio))
+
+
+def ratios_within(ratio: Floats, low: float, high: float, why: str) -> None:
+    """Refuse stress ratios outside a law's range."""
+    if ratio.size:
+        within("Stress ratio R", float(ratio.min()), low, high, why)
+        within("Stress ratio R", float(ratio.max()), low, high, why)
+
+
+def refuse_threshold(law: GrowthLaw, message: str) -> None:
+    """Refuse a law with a threshold where a threshold does not hold."""
+    if isinstance(law, ThresholdLaw):
+        raise AnalysisError(message)
+
+
+def refuse_short(law: GrowthLaw, start: float) -> None:
+    """Refuse a threshold for a crack shorter than its data are for."""
+    if isinstance(law, ThresholdLaw) and start < law.threshold.longer_than:
+        raise OutOfRangeError(
+            SHORT_FOR_THRESHOLD.format(start=start, longer=law.threshold.longer_than)
+        )
+
+
+def el_haddad_length(threshold: float, endurance_range: float) -> float:
+    r"""Return the length below which a crack is short, :math:`(\Delta K_{th}/\Delta
+    S_e)^2/\pi`.
+
+    Parameters
+    ----------
+    threshold
+        Threshold range of long cracks [MPa*sqrt(mm)].
+    endurance_range
+        Range of stress an uncracked piece endures [MPa].
+
+    Returns
+    -------
+    float
+        Length a0 [mm].
+
+    Notes
+    -----
+    Range F = 1. Cracks of several a0 begin to grow as long ones do.
+
+    References
+    ----------
+    .. [1] El Haddad, Smith and Topper, 1979.
+    """
+    return (threshold / endurance_range) ** 2 / math.pi
+
 
 @dataclass(frozen=True, slots=True)
 class StressCycle:
@@ -124,201 +344,3 @@ class StressCycle:
 def delta_k(factor: float, cycle: StressCycle, length: float) -> float:
     """Return the range of K at a crack length [MPa*sqrt(mm)]."""
     return factor * cycle.span * math.sqrt(math.pi * length)
-
-
-def paris_cycles(
-    law: WalkerLaw, factor: float, cycle: StressCycle, start: float, end: float
-) -> float:
-    r"""Return the closed-form life for a constant factor F (used as a check).
-
-    .. math:: N = \frac{a_1^{1-m/2} - a_0^{1-m/2}}{C(F\,\Delta S\sqrt\pi)^m(1-m/2)}
-
-    Parameters
-    ----------
-    law
-        Growth law.
-    factor
-        Constant F [-].
-    cycle
-        Stress cycle [MPa].
-    start, end
-        Crack lengths a_0, a_1 [mm].
-
-    Returns
-    -------
-    float
-        Life [cycles].
-
-    Notes
-    -----
-    Range m != 2 and m = 2 (logarithmic form).
-
-    References
-    ----------
-    .. [1] Paris' law integrated; elementary.
-    """
-    rate = law.rate(delta_k(factor, cycle, 1.0), cycle.ratio)
-    power = 1 - law.exponent / 2
-    if power == 0:
-        return math.log(end / start) / rate
-    return float((end**power - start**power) / (rate * power))
-
-
-def growth_cycles(
-    law: WalkerLaw, factor: Factor, cycle: StressCycle, start: float, end: float
-) -> float:
-    """Return cycles from one crack length to another by quadrature.
-
-    Parameters
-    ----------
-    law
-        Growth law.
-    factor
-        F(a) [-].
-    cycle
-        Stress cycle [MPa].
-    start, end
-        Crack lengths [mm].
-
-    Returns
-    -------
-    float
-        Life [cycles].
-
-    Notes
-    -----
-    Range 0 < start <= end, inside the range of `factor`. Relative error below 1e-8.
-
-    References
-    ----------
-    .. [1] See the module.
-    """
-    if not 0 < start <= end:
-        raise AnalysisError(BACKWARDS.format(low=start, high=end))
-
-    def slowness(log_length: float) -> float:
-        a = math.exp(log_length)
-        return a / law.rate(delta_k(factor(a), cycle, a), cycle.ratio)
-
-    value, _ = quad(
-        slowness, math.log(start), math.log(end), epsabs=0, epsrel=1e-9, limit=200
-    )
-    return float(value)
-
-
-def growth_history(
-    law: WalkerLaw, factor: Factor, cycle: StressCycle, start: float, end: float
-) -> tuple[tuple[float, float], ...]:
-    """Return (cycles, length) from `start` to `end`, equally spaced in ln a.
-
-    Parameters
-    ----------
-    law, factor, cycle, start, end
-        As `growth_cycles` [mm, MPa].
-
-    Returns
-    -------
-    tuple of (float, float)
-        Cycles from `start` and crack length [cycles, mm].
-
-    Notes
-    -----
-    Range as `growth_cycles`.
-    """
-    lengths = [float(a) for a in np.geomspace(start, end, CURVE_POINTS)]
-    lengths[0], lengths[-1] = start, end  # geomspace rounds its ends
-    total, points = 0.0, [(0.0, start)]
-    for before, after in itertools.pairwise(lengths):
-        total += growth_cycles(law, factor, cycle, before, after)
-        points.append((total, after))
-    return tuple(points)
-
-
-@dataclass(frozen=True, slots=True)
-class TwoAxisGrowth:
-    """How a part-through crack grew: cycles, final depth and length [mm]."""
-
-    cycles: float
-    depth: float
-    length: float
-
-
-def grow_part_through(
-    law: WalkerLaw,
-    factors: Callable[[float, float], tuple[float, float]],
-    cycle: StressCycle,
-    start: tuple[float, float],
-    thickness: float,
-) -> TwoAxisGrowth:
-    """Grow depth a and length c together until the crack is through.
-
-    Parameters
-    ----------
-    law
-        Growth law.
-    factors
-        (a, c) -> factors on S sqrt(pi a) at the length tip and at the depth tip [-].
-    cycle
-        Stress cycle [MPa].
-    start
-        Depth a and length c [mm].
-    thickness
-        Plate thickness; growth ends when a reaches it [mm].
-
-    Returns
-    -------
-    TwoAxisGrowth
-        Cycles to break through, and the lengths there.
-
-    Notes
-    -----
-    Range of the factors. Relative tolerance 1e-8 in ln N; integrated on depth, so
-    that the end is exact.
-
-    References
-    ----------
-    .. [1] USAF Damage Tolerant Design Handbook, 11.3: two-point growth.
-    """
-
-    def slopes(depth: float, state: np.ndarray) -> list[float]:
-        at_length, at_depth = factors(depth, float(state[0]))
-        along = law.rate(delta_k(at_length, cycle, depth), cycle.ratio)
-        inward = law.rate(delta_k(at_depth, cycle, depth), cycle.ratio)
-        return [along / inward, 1 / inward]
-
-    depth, length = start
-    solved = solve_ivp(slopes, (depth, thickness), [length, 0.0], rtol=1e-8, atol=1e-9)
-    if not solved.success:
-        raise AnalysisError(f"Growth through the thickness failed: {solved.message}")
-    return TwoAxisGrowth(float(solved.y[1, -1]), thickness, float(solved.y[0, -1]))
-
-
-def critical_length(
-    strength: Callable[[float], float], required: float, low: float, high: float
-) -> float | None:
-    """Return the crack length where strength falls to what is required.
-
-    Parameters
-    ----------
-    strength
-        Residual strength of a crack length [MPa], falling with length.
-    required
-        Required stress [MPa].
-    low, high
-        Lengths to search between [mm].
-
-    Returns
-    -------
-    float or None
-        Length [mm]; `low` if strength is lost there already, None if it is still
-        enough at `high`.
-
-    Notes
-    -----
-    Range of `strength`.
-    """
-    if strength(low) <= required:
-        return low
-    if strength(high) > required:
-        return None
-    return float(brentq(lambda a: strength(a) - required, low, high, xtol=1e-9))

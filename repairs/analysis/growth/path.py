@@ -7,16 +7,18 @@ follows from a path is the same for every geometry and stands here once.
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
-from repairs.analysis.growth.laws import (
+from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.separable import (
     SEPARABLE,
-    WalkerLaw,
+    GrowthTable,
     critical_length,
     growth_cycles,
     growth_history,
+    history_of,
 )
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection import intervals
@@ -29,6 +31,7 @@ from repairs.analysis.types import (
     Curve,
     Interval,
     Life,
+    Margin,
     Mark,
     Result,
     UltimateKept,
@@ -57,6 +60,9 @@ class CrackPath:
     largest: float
     end_of_method: str
     section: str = "gross"
+    _tables: dict[WalkerLaw, GrowthTable] = field(
+        init=False, default_factory=dict, compare=False, repr=False
+    )
 
     def lost_at(self, requirement: Requirement, start: float) -> float | None:
         """Return the length where a requirement is lost, None if not in range."""
@@ -69,7 +75,28 @@ class CrackPath:
 
     def cycles(self, start: float, end: float, law: WalkerLaw | None = None) -> float:
         """Return cycles of growth from one length to another."""
-        return growth_cycles(law or self.law, self.factor, self.loads.cycle, start, end)
+        law = law or self.law
+        if start == end:
+            return 0.0
+        if not start <= end <= self.largest:
+            return growth_cycles(law, self.factor, self.loads.cycle, start, end)
+        return self._table(start, law).life(start, end)
+
+    def history(self, start: float, end: float) -> tuple[tuple[float, float], ...]:
+        """Return (cycles, length) from one length to another."""
+        if end > self.largest:
+            cycle = self.loads.cycle
+            return growth_history(self.law, self.factor, cycle, start, end)
+        return history_of(self._table(start, self.law), start, end)
+
+    def _table(self, low: float, law: WalkerLaw) -> GrowthTable:
+        """Return the growth table from `low` on, made once for all lives of it."""
+        kept = self._tables.get(law)
+        if kept is None or kept.low > low:
+            cycle = self.loads.cycle
+            kept = GrowthTable(law, self.factor, cycle, low, self.largest)
+            self._tables[law] = kept
+        return kept
 
 
 @dataclass(frozen=True, slots=True)
@@ -168,7 +195,22 @@ def with_margins(
         ultimate_case=ultimate_case,
         margin_ultimate=margins[1],
         ultimate_kept=ultimate_kept(margins[1], found.ultimate.not_checked),
+        margins=(*draft.margins, *margin_table(found, strength, draft.title)),
         cases_not_checked=found.not_checked,
+    )
+
+
+def margin_table(
+    found: PanelLoads, strength: Strength, method: str
+) -> tuple[Margin, ...]:
+    """Return every mechanism beside every case, those not checked included."""
+    mechanisms = strength.each or ((strength.governing, strength.stress),)
+    return tuple(
+        Margin(method, what, f"{requirement.name}: {case.title}", stress, case.stress)
+        for requirement in (found.residual, found.ultimate)
+        for case in requirement.cases
+        for what, stress in mechanisms
+        if stress is not None
     )
 
 
@@ -227,7 +269,7 @@ def curves(path: CrackPath, start: float, base: str) -> tuple[Curve, ...]:
     both = (path.loads.ultimate, path.loads.residual)
     lost = [(r.name, path.lost_at(r, start)) for r in both]
     end = max(start * 1.0001, lost[-1][1] or stop)
-    history = growth_history(path.law, path.factor, path.loads.cycle, start, end)
+    history = path.history(start, end)
     now = path.strength(start).stress
     return (
         Curve(

@@ -14,7 +14,7 @@ from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 from repairs.analysis.errors import within
-from repairs.analysis.growth.laws import WalkerLaw, grow_part_through
+from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.growth.path import (
     CrackPath,
     Start,
@@ -25,6 +25,7 @@ from repairs.analysis.growth.path import (
     with_margins,
     write_law,
 )
+from repairs.analysis.growth.two_directions import grow_part_through
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection import intervals
 from repairs.analysis.inspection.flaws import FlawKind, FlawLocation, rogue_flaw

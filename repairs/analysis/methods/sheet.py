@@ -4,8 +4,9 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from repairs.analysis.growth.laws import WalkerLaw, grow_part_through
+from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.growth.path import CrackPath, Start, write_law
+from repairs.analysis.growth.two_directions import grow_part_through
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection.flaws import AssumedFlaw, FlawKind
 from repairs.analysis.intensity import through as si

@@ -15,6 +15,8 @@ from scipy.integrate import solve_ivp
 
 from repairs.analysis.errors import AnalysisError
 from repairs.analysis.growth import laws as cg
+from repairs.analysis.growth import separable as gs
+from repairs.analysis.growth import two_directions as td
 from repairs.analysis.intensity.part_through import (
     CORNER_ANGLES,
     PartThrough,
@@ -51,9 +53,9 @@ def cycle(stress: float, ratio: float = 0.0) -> cg.StressCycle:
 )
 def test_paris_lives_from_1_to_10_mm(c, m, life):
     law = paris(c, m)
-    closed = cg.paris_cycles(law, 1.0, cycle(100), 1.0, 10.0)
+    closed = gs.paris_cycles(law, 1.0, cycle(100), 1.0, 10.0)
     assert closed == pytest.approx(life, abs=1)
-    numeric = cg.growth_cycles(law, lambda a: 1.0, cycle(100), 1.0, 10.0)
+    numeric = gs.growth_cycles(law, lambda a: 1.0, cycle(100), 1.0, 10.0)
     assert numeric == pytest.approx(closed, rel=1e-8)
 
 
@@ -87,13 +89,13 @@ def test_dowling_constants_in_us_units_are_those_the_book_prints():
     ],
 )
 def test_walker_lives_at_constant_factor(law, factor, stress, ratio, start, end, life):
-    found = cg.growth_cycles(law, lambda a: factor, cycle(stress, ratio), start, end)
+    found = gs.growth_cycles(law, lambda a: factor, cycle(stress, ratio), start, end)
     assert found == pytest.approx(life, rel=1e-5)
 
 
 @pytest.mark.parametrize(("start", "life"), [(5, 78_776), (12.7, 27_235), (25, 8_789)])
 def test_centre_crack_in_a_200_mm_sheet(start, life):
-    found = cg.growth_cycles(
+    found = gs.growth_cycles(
         AL2024,
         lambda a: centre_crack_secant(HalfLength(a), 200.0),
         cycle(80, 0.1),
@@ -109,7 +111,7 @@ def test_quadrature_agrees_with_a_step_integrator(start, growth, stress, ratio):
     end = min(start * growth, 60.0)
     shape = lambda a: centre_crack_secant(HalfLength(a), 200.0)  # noqa: E731
     load = cycle(stress, ratio)
-    found = cg.growth_cycles(AL2024, shape, load, start, end)
+    found = gs.growth_cycles(AL2024, shape, load, start, end)
 
     def slowness(a: float, n: list[float]) -> list[float]:
         return [1 / AL2024.rate(cg.delta_k(shape(a), load, a), ratio)]
@@ -121,9 +123,9 @@ def test_quadrature_agrees_with_a_step_integrator(start, growth, stress, ratio):
 @given(st.floats(1, 20), st.floats(1.01, 5), st.floats(20, 150))
 def test_more_stress_or_a_longer_start_never_lengthens_life(start, growth, stress):
     end = start * growth
-    base = cg.growth_cycles(AL2024, lambda a: 1.0, cycle(stress), start, end)
-    more = cg.growth_cycles(AL2024, lambda a: 1.0, cycle(stress * 1.1), start, end)
-    later = cg.growth_cycles(
+    base = gs.growth_cycles(AL2024, lambda a: 1.0, cycle(stress), start, end)
+    more = gs.growth_cycles(AL2024, lambda a: 1.0, cycle(stress * 1.1), start, end)
+    later = gs.growth_cycles(
         AL2024, lambda a: 1.0, cycle(stress), (start + end) / 2, end
     )
     assert more < base
@@ -133,18 +135,18 @@ def test_more_stress_or_a_longer_start_never_lengthens_life(start, growth, stres
 
 def test_history_ends_at_the_life():
     shape = lambda a: 1.0  # noqa: E731
-    points = cg.growth_history(AL2024, shape, cycle(80), 3.0, 40.0)
-    whole = cg.growth_cycles(AL2024, shape, cycle(80), 3.0, 40.0)
+    points = gs.growth_history(AL2024, shape, cycle(80), 3.0, 40.0)
+    whole = gs.growth_cycles(AL2024, shape, cycle(80), 3.0, 40.0)
     assert points[0] == (0.0, 3.0)
     assert points[-1] == pytest.approx((whole, 40.0), rel=1e-7)
 
 
 def test_equal_factors_grow_a_part_through_crack_as_one_length():
     # With one factor at both tips depth and length share the closed form.
-    found = cg.grow_part_through(
+    found = td.grow_part_through(
         AL2024, lambda a, c: (0.7, 0.7), cycle(90), (1.0, 2.0), 3.0
     )
-    closed = cg.paris_cycles(AL2024, 0.7, cycle(90), 1.0, 3.0)
+    closed = gs.paris_cycles(AL2024, 0.7, cycle(90), 1.0, 3.0)
     assert found.cycles == pytest.approx(closed, rel=1e-6)
     assert found.length == pytest.approx(4.0, rel=1e-6)
 
@@ -156,7 +158,7 @@ def test_a_corner_crack_breaks_through_and_outlives_a_through_crack():
             corner_crack_at_hole(crack, 2.4, 100, angle) for angle in CORNER_ANGLES
         )
 
-    found = cg.grow_part_through(AL2024, factors, cycle(80), (1.27, 1.27), 2.0)
+    found = td.grow_part_through(AL2024, factors, cycle(80), (1.27, 1.27), 2.0)
     assert found.depth == 2.0
     assert 1.27 < found.length < 4.0
     assert 1_000 < found.cycles < 1_000_000
@@ -166,12 +168,12 @@ def test_critical_length_meets_the_closed_form():
     toughness, required = 3000.0, 100.0
     strength = lambda a: toughness / math.sqrt(math.pi * a)  # noqa: E731
     exact = (toughness / required) ** 2 / math.pi
-    found = cg.critical_length(strength, required, 1.0, 1000.0)
+    found = gs.critical_length(strength, required, 1.0, 1000.0)
     assert found == pytest.approx(exact, rel=1e-9)
-    assert cg.critical_length(strength, required, 400.0, 1000.0) == 400.0
-    assert cg.critical_length(strength, 1.0, 1.0, 1000.0) is None
+    assert gs.critical_length(strength, required, 400.0, 1000.0) == 400.0
+    assert gs.critical_length(strength, 1.0, 1.0, 1000.0) is None
 
 
 def test_growth_backwards_is_refused():
     with pytest.raises(AnalysisError, match="end must be larger"):
-        cg.growth_cycles(AL2024, lambda a: 1.0, cycle(80), 2 * INCH, INCH)
+        gs.growth_cycles(AL2024, lambda a: 1.0, cycle(80), 2 * INCH, INCH)
