@@ -1,0 +1,138 @@
+"""Inspections marked along a growth curve, and the risk that is left."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from repairs.analysis.errors import AnalysisError, within
+from repairs.analysis.inspection.plan import (
+    Found,
+    Growth,
+    Look,
+    Phase,
+    look_times,
+    pod_at,
+    together,
+)
+
+NO_ONE_ROW = (
+    "A random phase is no one row of inspections. Draw the worst phase or the schedule."
+)
+CAUTIONS = (
+    "Looks at one crack are not independent: the same eyes, access and wrong place "
+    "repeat. The share never inspected is where that enters; it is no better than its "
+    "source.",
+    "A detection curve from trials with prepared flaws is not the curve of a ramp at "
+    "night.",
+    "The size found nine times in ten is not a size above which all is found.",
+    "The chance that there is a crack is an input; without fleet data an opinion.",
+    "A small probability does not approve anything: the damage-tolerance requirement "
+    "stands by itself.",
+)
+"""Printed with every risk."""
+
+
+@dataclass(frozen=True, slots=True)
+class InspectionMark:
+    """One inspection on the growth curve, for drawing.
+
+    `size` is that of the growth [mm], `seen` what the method sees of it [mm]; `pod`
+    holds the chance that it is done; `cumulative` is the chance found by then, by all.
+    """
+
+    title: str
+    cycles: float
+    size: float
+    seen: float
+    pod: float
+    cumulative: float
+
+
+@dataclass(frozen=True, slots=True)
+class Risk:
+    """Chance that a crack is there and becomes critical unfound, with its cautions."""
+
+    probability: float
+    cautions: tuple[str, ...] = CAUTIONS
+
+
+def inspection_marks(
+    growth: Growth, looks: tuple[Look, ...], phase: Phase
+) -> tuple[InspectionMark, ...]:
+    """Return the inspections along the middle growth curve, in order of cycles.
+
+    Parameters
+    ----------
+    growth, looks
+        As `plan.detect`.
+    phase
+        Worst phase or schedule.
+
+    Returns
+    -------
+    tuple of InspectionMark
+        Sizes [mm], chances [-]; empty where no look comes before the critical size.
+
+    Notes
+    -----
+    Range of `plan.detect`; without scatter of life.
+
+    References
+    ----------
+    .. [1] See `plan.CUMULATIVE`.
+    """
+    if phase is Phase.RANDOM:
+        raise AnalysisError(NO_ONE_ROW)
+    rows: list[tuple[float, int, float]] = []
+    for which, look in enumerate(looks):
+        times = look_times(growth, look, phase)[:, 0]
+        pods = pod_at(growth, look, times)
+        rows += [
+            (float(t), which, float(p))
+            for t, p in zip(times, pods, strict=True)
+            if t > 0
+        ]
+    missed = [1.0] * len(looks)
+    marks = []
+    for cycles, which, pod in sorted(rows):
+        missed[which] *= 1 - pod
+        marks.append(
+            InspectionMark(
+                looks[which].title,
+                cycles,
+                float(np.interp(cycles, growth.cycles, growth.size)),
+                float(np.interp(cycles, growth.cycles, looks[which].seen)),
+                pod,
+                1 - together(looks, missed),
+            )
+        )
+    return tuple(marks)
+
+
+def risk(crack_present: float, found: Found) -> Risk:
+    r"""Return :math:`P_f = P(crack)\,(1 - P_{det})`, mean over phase and scatter.
+
+    Parameters
+    ----------
+    crack_present
+        Chance that the crack is there at all, from fleet data or stated [-].
+    found
+        How the plan does.
+
+    Returns
+    -------
+    Risk
+        Probability [-] with its cautions.
+
+    Notes
+    -----
+    Range 0 to 1. Of this crack in one aircraft, over one growth to critical.
+
+    References
+    ----------
+    .. [1] Product of two probabilities, independent as assumed.
+    """
+    within("Chance that the crack is there", crack_present, 0, 1, "a probability")
+    return Risk(crack_present * found.missed)
