@@ -1,6 +1,7 @@
 """Text with a unit to a canonical value and back: "0.25 in", '12"', "1234:30".
 
-Canonical units are mm, mm2, MPa, N/mm and whole minutes. Factors are exact: they
+Canonical units are mm, mm2, mm4, N, N mm, N/mm, MPa, mm/N, MPa root mm and whole
+minutes. Factors are exact, but for the root of a length, which has 28 figures: they
 follow from 1 in = 25.4 mm, 1 lb = 0.45359237 kg and standard gravity 9.80665 m/s2
 (international yard and pound agreement, 1959; 3rd CGPM, 1901).
 """
@@ -33,6 +34,24 @@ FACTORS: dict[str, dict[str, Decimal]] = {
         "n_per_mm": Decimal(1),
         "lbf_per_in": _POUND_FORCE_N / _INCH_MM,
     },
+    "force": {
+        "n": Decimal(1),
+        "kn": Decimal(1000),
+        "lbf": _POUND_FORCE_N,
+        "kip": _POUND_FORCE_N * 1000,
+    },
+    "moment": {
+        "n_mm": Decimal(1),
+        "n_m": Decimal(1000),
+        "lbf_in": _POUND_FORCE_N * _INCH_MM,
+    },
+    "inertia": {"mm4": Decimal(1), "in4": _INCH_MM**4},
+    "flexibility": {"mm_per_n": Decimal(1), "in_per_lbf": _INCH_MM / _POUND_FORCE_N},
+    "toughness": {
+        "mpa_root_mm": Decimal(1),
+        "mpa_root_m": Decimal(1000).sqrt(),
+        "ksi_root_in": _PSI_MPA * 1000 * _INCH_MM.sqrt(),
+    },
 }
 """Canonical units of one of each unit, by quantity; the only table of factors."""
 
@@ -43,15 +62,29 @@ _WORDS = {
     "mms": "mm", "centimetre": "cm", "centimetres": "cm", "metre": "m",
     "metres": "m", "n/mm2": "mpa", "lb/in2": "psi", "lbf/in2": "psi",
     "n/mm": "n_per_mm", "lbf/in": "lbf_per_in", "lb/in": "lbf_per_in",
-    "mm²": "mm2", "in²": "in2", "sqin": "in2",
+    "mm²": "mm2", "in²": "in2", "sqin": "in2", "mm⁴": "mm4", "in⁴": "in4",
+    "newton": "n", "newtons": "n", "lb": "lbf", "lbs": "lbf", "kips": "kip",
+    "nmm": "n_mm", "n·mm": "n_mm", "n*mm": "n_mm", "nm": "n_m", "n·m": "n_m",
+    "n*m": "n_m", "lbfin": "lbf_in", "lbf·in": "lbf_in", "lbf*in": "lbf_in",
+    "lbin": "lbf_in", "inlb": "lbf_in", "in-lb": "lbf_in", "in·lb": "lbf_in",
+    "in-lbf": "lbf_in", "mm/n": "mm_per_n", "in/lbf": "in_per_lbf",
+    "in/lb": "in_per_lbf", "mpa√mm": "mpa_root_mm", "mpa*sqrt(mm)": "mpa_root_mm",
+    "mpa√m": "mpa_root_m", "mpa*sqrt(m)": "mpa_root_m", "ksi√in": "ksi_root_in",
+    "ksi*sqrt(in)": "ksi_root_in",
 }  # fmt: skip
 
 _SIGNS = {"n_per_mm": "N/mm", "lbf_per_in": "lbf/in", "mpa": "MPa", "kpa": "kPa",
-          "mm2": "mm²", "in2": "in²"}  # fmt: skip
+          "mm2": "mm²", "in2": "in²", "mm4": "mm⁴", "in4": "in⁴", "n": "N", "kn": "kN",
+          "n_mm": "N·mm", "n_m": "N·m", "lbf_in": "lbf·in", "mm_per_n": "mm/N",
+          "in_per_lbf": "in/lbf", "mpa_root_mm": "MPa√mm", "mpa_root_m": "MPa√m",
+          "ksi_root_in": "ksi√in"}  # fmt: skip
 
 _DIGITS = {
     "mm": 2, "cm": 3, "m": 4, "in": 3, "ft": 4, "mm2": 1, "in2": 4, "mpa": 1,
-    "kpa": 1, "psi": 2, "ksi": 2, "n_per_mm": 1, "lbf_per_in": 0,
+    "kpa": 1, "psi": 2, "ksi": 2, "n_per_mm": 1, "lbf_per_in": 0, "n": 0, "kn": 2,
+    "lbf": 0, "kip": 2, "n_mm": 0, "n_m": 1, "lbf_in": 0, "mm4": 0, "in4": 4,
+    "mm_per_n": 8, "in_per_lbf": 10, "mpa_root_mm": 0, "mpa_root_m": 1,
+    "ksi_root_in": 1,
 }  # fmt: skip
 
 _THOUSANDS = re.compile(r"[1-9]\d{0,2}(,\d{3})+(\.\d+)?")
@@ -73,6 +106,11 @@ _EXAMPLES = {
     "area": "0.35 in2 or 225.8 mm2",
     "stress": "8.2 psi or 345 MPa",
     "running_load": "1200 lbf/in or 210 N/mm",
+    "force": "1250 lbf or 5560 N",
+    "moment": "900 lbf in or 101.7 N m",
+    "inertia": "0.12 in4 or 50000 mm4",
+    "flexibility": "0.00002 mm/N",
+    "toughness": "110 MPa√m or 100 ksi√in",
 }
 
 
@@ -132,7 +170,7 @@ def measure_read(
     if parts is None:
         raise UnitError(NOT_A_NUMBER.format(text=text.strip()))
     number, word = number_read(parts[1]), parts[2]
-    offers = " or ".join(_sign(name) for name in FACTORS[quantity])
+    offers = " or ".join(unit_sign(name) for name in FACTORS[quantity])
     found = unit_known(word, quantity) if word else unit
     if found is None:
         if word:
@@ -144,7 +182,9 @@ def measure_read(
                     offers=offers,
                 )
             )
-        offers = " or ".join(f"{parts[1]} {_sign(name)}" for name in FACTORS[quantity])
+        offers = " or ".join(
+            f"{parts[1]} {unit_sign(name)}" for name in FACTORS[quantity]
+        )
         raise UnitError(UNIT_MISSING.format(text=text.strip(), offers=offers))
     return float(number * FACTORS[quantity][found])
 
@@ -181,7 +221,7 @@ def number_write(value: float, digits: int) -> str:
 def measure_write(value: float, unit: str, *, digits: int | None = None) -> str:
     """A canonical value for a reader: "0.25 in", "6.35 mm", "8.2 psi"."""
     places = _DIGITS[unit] if digits is None else digits
-    return f"{number_write(in_unit(value, unit), places)} {_sign(unit)}"
+    return f"{number_write(in_unit(value, unit), places)} {unit_sign(unit)}"
 
 
 def hours_read(text: str) -> int:
@@ -209,5 +249,6 @@ def hours_write(minutes: int) -> str:
     return f"{sign}{hours:,}:{rest:02d}"
 
 
-def _sign(unit: str) -> str:
+def unit_sign(unit: str) -> str:
+    """The unit as it is printed: "n_per_mm" is "N/mm"."""
     return _SIGNS.get(unit, unit)

@@ -153,6 +153,25 @@ def test_negative_time_is_written_with_a_minus_sign() -> None:
     assert hours_write(-90) == "−1:30"
 
 
+@pytest.mark.parametrize(
+    ("text", "quantity", "value"),
+    [
+        ("1 lbf", "force", 4.4482216152605),  # NIST SP 811 (2008), appendix B.8
+        ("2.5 kip", "force", 11120.55403815125),
+        ("1 lbf in", "moment", 112.984829),  # the same: 1.129848 E-01 N m
+        ("1 in-lb", "moment", 112.984829),
+        ("1.5 N m", "moment", 1500.0),
+        ("1 in4", "inertia", 416231.4256),  # the same: 4.162314 E-07 m4
+        ("1 ksi√in", "toughness", 34.7485),  # 1.098843 MPa root m, root 1000 mm
+        ("100 MPa√m", "toughness", 3162.27766),
+        ("0.00002 mm/N", "flexibility", 2e-5),
+        ("350 N/mm", "running_load", 350.0),
+    ],
+)
+def test_loads_sections_and_toughness_are_read(text, quantity, value) -> None:
+    assert measure_read(text, quantity) == pytest.approx(value, rel=1e-6)
+
+
 @given(
     st.sampled_from([u for units in FACTORS.values() for u in units]),
     st.decimals(min_value="0.001", max_value="99999", places=3),
