@@ -7,8 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from repairs.analysis.errors import AnalysisError, within
-from repairs.analysis.inspection.plan import (
-    Found,
+from repairs.analysis.inspection.looks import (
     Growth,
     Look,
     Phase,
@@ -16,6 +15,7 @@ from repairs.analysis.inspection.plan import (
     pod_at,
     together,
 )
+from repairs.analysis.inspection.plan import Found
 
 NO_ONE_ROW = (
     "A random phase is no one row of inspections. Draw the worst phase or the schedule."
@@ -87,17 +87,17 @@ def inspection_marks(
         raise AnalysisError(NO_ONE_ROW)
     rows: list[tuple[float, int, float]] = []
     for which, look in enumerate(looks):
-        times = look_times(growth, look, phase)[:, 0]
+        times = look_times(growth, look, phase, np.ones(1))[:, 0, 0]
         pods = pod_at(growth, look, times)
         rows += [
             (float(t), which, float(p))
             for t, p in zip(times, pods, strict=True)
-            if t > 0
+            if 0 < t < growth.life
         ]
-    missed = [1.0] * len(looks)
+    missed = [np.ones(1) for _ in looks]
     marks = []
     for cycles, which, pod in sorted(rows):
-        missed[which] *= 1 - pod
+        missed[which] = missed[which] * (1 - pod)
         marks.append(
             InspectionMark(
                 looks[which].title,
@@ -105,7 +105,7 @@ def inspection_marks(
                 float(np.interp(cycles, growth.cycles, growth.size)),
                 float(np.interp(cycles, growth.cycles, looks[which].seen)),
                 pod,
-                1 - together(looks, missed),
+                1 - float(together(looks, missed)[0]),
             )
         )
     return tuple(marks)
