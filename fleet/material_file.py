@@ -36,6 +36,15 @@ _K_UNITS: dict[str, tuple[Decimal, Decimal]] = {
 }
 """Unit of a growth law: mm in its length, MPa*sqrt(mm) in its stress intensity."""
 
+LAWS: dict[str, tuple[str, ...]] = {
+    "walker": ("m", "gamma"),
+    "forman": ("m", "kc"),
+    "paris": ("m",),
+}
+"""Growth laws and what each has beside its coefficient and rank."""
+MEANINGS = ("plane_strain", "apparent", "at_instability", "growth_fit")
+"""What crack and load a toughness was worked out from; the last is no toughness."""
+HELD_FLAT = ("yes", "no", "not stated")
 SEEN = ("print", "quoted", "memory")
 BASES = ("a", "b", "s", "typical")
 
@@ -130,6 +139,7 @@ class _Reader:
             *(self._property(p, where) for p in table.get("properties", [])),
             *(e for c in table.get("curves", []) for e in self._curve(c, where)),
             *(e for g in table.get("growth", []) for e in self._growth(g, where)),
+            *(e for t in table.get("toughness", []) for e in self._tough(t, where)),
         ]
         keys = [(e.quantity, e.direction, e.basis, e.thickness_min_mm) for e in entries]
         for key in sorted({str(k[0]) for k in keys if keys.count(k) > 1}):
@@ -189,23 +199,69 @@ class _Reader:
         for key, ending in names.items():
             value = self._number(table, key, where)
             yield self._fit(f"stress_life_kt{kt:g}_{ending}", value, table, where)
+        for ending, value in self._known(table, where).items():
+            yield self._fit(f"stress_life_kt{kt:g}_{ending}", value, table, where)
+
+    def _known(self, table: dict[str, Any], where: str) -> dict[str, float]:
+        """What is known of the tests behind a curve; nothing where it is left out."""
+        known: dict[str, float] = {}
+        if "standard_error" in table:
+            known["standard_error"] = self._number(table, "standard_error", where)
+        if "thickness_in" in table:
+            inches = self._number(table, "thickness_in", where)
+            known["thickness_mm"] = inches * float(_INCH_MM)
+        if "ratios" in table:
+            pair = table["ratios"]
+            if not isinstance(pair, list) or len(pair) != 2:
+                self.problems.append(
+                    NOT_A_NUMBER.format(where=where, key="ratios", value=pair)
+                )
+            else:
+                ends = dict(zip(("ratio_min", "ratio_max"), pair, strict=True))
+                known |= {end: self._number(ends, end, where) for end in ends}
+        return known
 
     def _growth(self, table: dict[str, Any], where: str) -> Iterator[PropertyEntry]:
         """A law with C converted: walker_faa_c_mm_mpa_root_mm, _m, _gamma, _rank."""
         key = self._text(table, "key", where)
         where = f"{where}, growth law {key}"
+        law = self._one_of({"law": "walker"} | table, "law", tuple(LAWS), where)
         unit = self._one_of(table, "unit", tuple(_K_UNITS), where)
         length, k_size = _K_UNITS.get(unit, (Decimal(1), Decimal(1)))
-        c, m = (self._number(table, name, where) for name in ("c", "m"))
-        converted = c * float(length) / float(k_size) ** m
         numbers = {
-            "c_mm_mpa_root_mm": converted,
-            "m": m,
-            "gamma": self._number(table, "gamma", where),
-            "rank": self._number(table, "rank", where),
+            name: self._number(table, name, where)
+            for name in ("c", *LAWS.get(law, ()), "rank")
         }
+        power = numbers.get("m", 0.0)
+        if "kc" in numbers:
+            power -= 1  # c dK^m / (... kc - dK)
+            numbers["kc_mpa_root_mm"] = numbers.pop("kc") * float(k_size)
+        converted = numbers.pop("c") * float(length) / float(k_size) ** power
+        numbers["c_mm_mpa_root_mm"] = converted
         for ending, value in numbers.items():
-            yield self._fit(f"walker_{key}_{ending}", value, table, where)
+            yield self._fit(f"{law}_{key}_{ending}", value, table, where)
+
+    def _tough(self, table: dict[str, Any], where: str) -> Iterator[PropertyEntry]:
+        """A typical toughness with what it was measured on; its meaning names it."""
+        meaning = self._one_of(table, "meaning", MEANINGS, where)
+        where = f"{where}, toughness {meaning}"
+        held = self._one_of(table, "held_flat", HELD_FLAT, where)
+        unit = self._one_of(table, "unit", tuple(UNITS), where)
+        ending, factor = UNITS.get(unit, ("", Decimal(1)))
+        value = Decimal(str(self._number(table, "value", where))) * factor
+        low, high = self._thickness(table, where)
+        source = self._text(table, "source", where)
+        numbers = {f"toughness_{meaning}{ending}": float(value)}
+        if "width_in" in table:
+            inches = self._number(table, "width_in", where)
+            width = inches * float(_INCH_MM)
+            numbers[f"toughness_{meaning}_panel_width_mm"] = width
+        for quantity, number in numbers.items():
+            yield PropertyEntry(
+                quantity, number, "typical", str(table.get("direction", "")), low, high,
+                f"{source}; kept from buckling: {held}",
+                self._one_of(table, "seen", SEEN, where),
+            )  # fmt: skip
 
     def _fit(
         self, quantity: str, value: float, table: dict[str, Any], where: str

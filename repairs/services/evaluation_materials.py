@@ -21,7 +21,11 @@ STRENGTHS = {
 BASES = ("a", "s", "b")
 """A-basis before B-basis: a single load path is assumed until someone shows else."""
 
-_CURVE = re.compile(r"stress_life_kt([\d.]+)_(a1|a2|a3|a4_ksi|a4_mpa)")
+_CURVE = re.compile(
+    r"stress_life_kt([\d.]+)_"
+    r"(a1|a2|a3|a4_ksi|a4_mpa|standard_error|thickness_mm|ratio_min|ratio_max)"
+)
+_COEFFICIENTS = {"a1", "a2", "a3"}
 _LAW = re.compile(r"walker_([a-z0-9]+)_(c_mm_mpa_root_mm|m|gamma|rank)")
 
 Used = Material | AdoptedValue
@@ -157,7 +161,11 @@ def _curves(rows: Iterable[MaterialProperty]) -> list[StressLifeCurve]:
     for row in rows:
         if match := _CURVE.fullmatch(row.quantity):
             found.setdefault(float(match[1]), {})[match[2]] = row
-    return [_curve(kt, row) for kt, row in sorted(found.items()) if len(row) == 4]
+    return [_curve(kt, row) for kt, row in sorted(found.items()) if _whole(row)]
+
+
+def _whole(row: dict[str, MaterialProperty]) -> bool:
+    return row.keys() >= _COEFFICIENTS and bool(row.keys() & {"a4_ksi", "a4_mpa"})
 
 
 def _curve(kt: float, row: dict[str, MaterialProperty]) -> StressLifeCurve:
@@ -172,4 +180,16 @@ def _curve(kt: float, row: dict[str, MaterialProperty]) -> StressLifeCurve:
         KSI if in_ksi else 1.0,
         last.source,
         grade_of(last.seen),
+        _known(row, "standard_error"),
+        _ratios(row),
+        _known(row, "thickness_mm"),
     )
+
+
+def _known(row: dict[str, MaterialProperty], name: str) -> float | None:
+    return row[name].value if name in row else None
+
+
+def _ratios(row: dict[str, MaterialProperty]) -> tuple[float, float] | None:
+    low, high = _known(row, "ratio_min"), _known(row, "ratio_max")
+    return None if low is None or high is None else (low, high)

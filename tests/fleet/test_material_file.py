@@ -16,6 +16,36 @@ basis = "a"
 source = "{source}"
 seen = "print"
 """
+CURVE = """[[materials.curves]]
+kt = 1.0
+a1 = 10.0
+a2 = 3.0
+a3 = 0.5
+a4 = 0.0
+stress_unit = "ksi"
+{more}
+source = "s"
+seen = "print"
+"""
+LAW = """[[materials.growth]]
+key = "x"
+law = "{law}"
+rank = 1
+c = 1e-8
+m = 3.0
+unit = "mm/cycle, MPa sqrt(m)"
+source = "s"
+seen = "print"
+"""
+TOUGH = """[[materials.toughness]]
+meaning = "{meaning}"
+value = 30.0
+unit = "ksi sqrt(in)"
+width_in = 16.0
+held_flat = "{held}"
+source = "s"
+seen = "print"
+"""
 
 
 @pytest.fixture(scope="module")
@@ -72,12 +102,70 @@ def test_curve_coefficients_stay_as_printed(shipped):
     assert printed == [11.1, 3.97, 0.56, 15.8]
 
 
-def test_toughness_is_only_an_adopted_demo_value(shipped):
+def test_a_toughness_that_is_used_is_only_an_adopted_demo_value(shipped):
+    # What is recorded beside it holds for one sheet or for a fit, and is never used by
+    # itself: its quantity is another and its basis is typical.
     for material in shipped.materials:
-        assert not [p for p in material.properties if "toughness" in p.quantity]
+        rows = [p for p in material.properties if "toughness" in p.quantity]
+        assert not [p for p in rows if p.quantity.startswith("fracture_toughness")]
+        assert {p.basis for p in rows} <= {"typical"}
+        assert all("kept from buckling: " in p.source for p in rows)
     (toughness,) = shipped.adopted
     assert toughness.value == pytest.approx(100 * 1000**0.5)
     assert "invented" in toughness.document
+
+
+def test_what_is_known_of_the_tests_behind_a_curve_is_kept(shipped):
+    rows = values(shipped, "bare sheet")
+    assert rows["stress_life_kt1_standard_error", "fit", 0.0].value == 0.38
+    assert rows["stress_life_kt2_thickness_mm", "fit", 0.0].value == pytest.approx(
+        0.090 * 25.4
+    )
+    assert ("stress_life_kt4_standard_error", "fit", 0.0) not in rows
+
+
+def test_tested_ratios_are_read_as_a_pair():
+    curve = CURVE.format(more="ratios = [-1, 0.5]")
+    (entry,) = materials_from_toml(HEAD + curve).materials
+    ratios = {p.quantity: p.value for p in entry.properties if "ratio" in p.quantity}
+    assert ratios == {
+        "stress_life_kt1_ratio_min": -1,
+        "stress_life_kt1_ratio_max": 0.5,
+    }
+
+
+def test_a_forman_law_keeps_its_rate_in_other_units(shipped):
+    # 2024-T3, dK 20 MPa sqrt(m), R 0: 6.410e-4 mm/cycle, computed independently from
+    # the constants as printed.
+    rows = values(shipped, "bare sheet")
+    c, m, kc = (
+        rows[f"forman_dowling_{name}", "fit", 0.0].value
+        for name in ("c_mm_mpa_root_mm", "m", "kc_mpa_root_mm")
+    )
+    delta = 20 * 1000**0.5
+    assert c * delta**m / (kc - delta) == pytest.approx(6.410e-4, rel=3e-4)
+
+
+def test_a_paris_law_keeps_its_rate_in_other_units(shipped):
+    # AC 33.14-1: 9.25e-13 m/cycle at 1 MPa sqrt(m).
+    rows = values(shipped, "disk", "Ti-6Al-4V", "generic")
+    c, m = (
+        rows[f"paris_ac3314_{name}", "fit", 0.0].value
+        for name in ("c_mm_mpa_root_mm", "m")
+    )
+    assert c * 1000 ** (m / 2) == pytest.approx(9.25e-10, rel=1e-9)
+
+
+def test_forms_and_finishes_are_materials_of_their_own(shipped):
+    keys = [(m.name, m.temper, m.form) for m in shipped.materials]
+    assert len(keys) == len(set(keys))
+    smooth = {
+        m.form
+        for m in shipped.materials
+        if (m.name, m.temper) == ("7075", "T6")
+        and any(p.quantity == "stress_life_kt1_a1" for p in m.properties)
+    }
+    assert smooth == {"bare sheet", "various wrought products"}
 
 
 def test_every_number_has_a_source_and_how_it_was_read(shipped):
@@ -86,6 +174,17 @@ def test_every_number_has_a_source_and_how_it_was_read(shipped):
             assert row.source
             assert row.seen in ("print", "quoted", "memory")
             assert ("from memory" in row.source) == (row.seen == "memory")
+
+
+def test_a_toughness_carries_the_width_of_its_panel():
+    text = HEAD + TOUGH.format(meaning="apparent", held="yes")
+    (entry,) = materials_from_toml(text).materials
+    found = {p.quantity: p for p in entry.properties}
+    # 30 ksi sqrt(in) = 30 x 1.0988435 MPa sqrt(m), of the conversion table.
+    toughness = found["toughness_apparent_mpa_root_mm"]
+    assert toughness.value == pytest.approx(30 * 1.0988435 * 1000**0.5, rel=1e-7)
+    assert toughness.source == "s; kept from buckling: yes"
+    assert found["toughness_apparent_panel_width_mm"].value == pytest.approx(406.4)
 
 
 @pytest.mark.parametrize(
@@ -98,6 +197,11 @@ def test_every_number_has_a_source_and_how_it_was_read(shipped):
         (HEAD + ROW.format(value=1, unit="ksi", source=" "), "source is missing"),
         (HEAD + 2 * ROW.format(value=1, unit="ksi", source="s"), "given twice"),
         (HEAD + ROW.format(value="nan", unit="ksi", source="s"), "number is expected"),
+        (HEAD + CURVE.format(more="ratios = [-1]"), "ratios reads"),
+        (HEAD + LAW.format(law="hart"), "write one of walker, forman, paris"),
+        (HEAD + LAW.format(law="forman"), "kc reads"),
+        (HEAD + TOUGH.format(meaning="good", held="no"), "write one of plane_strain"),
+        (HEAD + TOUGH.format(meaning="apparent", held="?"), "write one of yes, no"),
     ],
 )
 def test_what_is_wrong_is_said(text, said):

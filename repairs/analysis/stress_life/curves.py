@@ -10,6 +10,9 @@ between the two bracketing curves only. Where curves cross the lower holds, so t
 higher Kt is never the longer life. At or below the last term there is no finite life
 on the curve, which is not unlimited life.
 
+A curve is the median of one product form and finish: two smooth curves of one alloy
+differ by two decades, so a family is of one form, and bare is not clad.
+
 References
 ----------
 .. [1] MIL-HDBK-5J, section 9.3.4 (form) and the figure named by each curve.
@@ -20,6 +23,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+import numpy as np
+from numpy.typing import NDArray
 from scipy.optimize import brentq
 
 from repairs.analysis.errors import AnalysisError, within
@@ -29,6 +34,12 @@ NO_FINITE_LIFE = "no finite life on this curve; not unlimited life"
 EMPTY_FAMILY = "A stress-life family needs at least one curve, each with its own Kt."
 LONGEST_LOG_LIFE = 30.0
 """Bracket of the inversion: there a curve has reached its last term to 1e-6."""
+HALVINGS = 52
+"""Of that bracket, for many cycles at once: log life to 1e-14."""
+RATIO_OF_CURVE = "the stress ratios tested on the curve Kt {kt:g}, {source}"
+OTHER_CURVE = "Choose a curve tested at this stress ratio."
+
+Array = NDArray[np.float64]
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,6 +56,13 @@ class StressLifeCurve:
         Size of the printed stress unit [MPa]; 6.894757 for ksi.
     source, grade
         Figure or table, and how it was read.
+    standard_error
+        Of log10 N about the curve [-]; lots and laboratories are in it, so it is no
+        scatter of one batch. None = not known.
+    ratios
+        Smallest and largest stress ratio tested [-]; None = not known.
+    thickness
+        Of the specimens [mm]; None = not known.
     """
 
     kt: float
@@ -55,10 +73,13 @@ class StressLifeCurve:
     stress_unit_mpa: float
     source: str
     grade: Grade
+    standard_error: float | None = None
+    ratios: tuple[float, float] | None = None
+    thickness: float | None = None
 
     def equivalent(self, max_stress: NetStress, ratio: float) -> float:
         """Return Seq in the printed stress unit."""
-        _stress_ratio(ratio)
+        self.check_ratio(ratio)
         return float(max_stress / self.stress_unit_mpa * (1 - ratio) ** self.a3)
 
     def cycles(self, max_stress: NetStress, ratio: float) -> float | None:
@@ -70,14 +91,37 @@ class StressLifeCurve:
 
     def max_stress(self, log_life: float, ratio: float) -> NetStress:
         """Return Smax [MPa] that gives a life of 10**log_life cycles."""
-        _stress_ratio(ratio)
+        self.check_ratio(ratio)
         excess = 10 ** ((self.a1 - log_life) / self.a2)
         printed = (excess + self.a4) / (1 - ratio) ** self.a3
         return NetStress(printed * self.stress_unit_mpa)
 
+    def check_ratio(self, ratio: float) -> None:
+        """Refuse a stress ratio outside those tested, where they are known."""
+        within("Stress ratio R", ratio, -10, 0.999, "R = Smin/Smax of a tension cycle")
+        if self.ratios is not None:
+            what = RATIO_OF_CURVE.format(kt=self.kt, source=self.source)
+            within("Stress ratio R", ratio, *self.ratios, what, OTHER_CURVE)
 
-def _stress_ratio(ratio: float) -> None:
-    within("Stress ratio R", ratio, -10, 0.999, "R = Smin/Smax of a tension cycle")
+    def lives(self, maximum: Array, ratio: Array) -> Array:
+        """Return cycles to failure of many cycles, inf at or below the last term."""
+        self._check_ratios(ratio)
+        excess = maximum / self.stress_unit_mpa * (1 - ratio) ** self.a3 - self.a4
+        found = np.full(maximum.shape, np.inf)
+        above = excess > 0
+        found[above] = 10 ** (self.a1 - self.a2 * np.log10(excess[above]))
+        return found
+
+    def maxima(self, log_life: Array | float, ratio: Array) -> Array:
+        """Return Smax [MPa] of many cycles at lives of 10**log_life."""
+        self._check_ratios(ratio)
+        excess = 10 ** ((self.a1 - np.asarray(log_life)) / self.a2)
+        printed = (excess + self.a4) / (1 - ratio) ** self.a3
+        return np.asarray(printed * self.stress_unit_mpa, dtype=np.float64)
+
+    def _check_ratios(self, ratio: Array) -> None:
+        for extreme in (float(np.min(ratio)), float(np.max(ratio))):
+            self.check_ratio(extreme)
 
 
 @dataclass(frozen=True, slots=True)
@@ -170,8 +214,8 @@ class StressLifeFamily:
 
         Notes
         -----
-        Range: the Kt of the recorded curves. The tested range of R and N is not
-        recorded with the curves; the user is told so.
+        Range: the Kt of the recorded curves, and the stress ratios tested where they
+        are known.
         """
         within("Largest stress, MPa", max_stress, 0, 1e4, "a tension cycle")
 
@@ -184,3 +228,68 @@ class StressLifeFamily:
             return 1.0
         root = brentq(excess, 0.0, LONGEST_LOG_LIFE, xtol=1e-12, rtol=1e-12)
         return float(10**root)
+
+    def lives(self, kt: float, maximum: Array, ratio: Array) -> Array:
+        """Return mean cycles to failure of many cycles at once.
+
+        Parameters
+        ----------
+        kt
+            Stress-concentration factor on net stress [-].
+        maximum
+            Largest stresses on the net section [MPa], above zero, shape (n,).
+        ratio
+            Stress ratios R [-], shape (n,).
+
+        Returns
+        -------
+        ndarray
+            Lives [cycles], shape (n,); inf means `NO_FINITE_LIFE`.
+
+        Notes
+        -----
+        Range of `cycles`; the same rule, solved by halving where Kt lies between two
+        curves.
+        """
+        below, above = self.bracket(kt)
+        if below is above:
+            alike = [c.lives(maximum, ratio) for c in self.curves if c.kt <= kt]
+            return np.asarray(np.maximum(np.min(alike, axis=0), 1.0))
+        short, long = np.zeros(maximum.shape), np.full(maximum.shape, LONGEST_LOG_LIFE)
+        never = self.maxima(kt, LONGEST_LOG_LIFE, ratio) >= maximum
+        for _ in range(HALVINGS):
+            middle = (short + long) / 2
+            survives = self.maxima(kt, middle, ratio) >= maximum
+            short = np.where(survives, middle, short)
+            long = np.where(survives, long, middle)
+        return np.where(never, np.inf, 10**short)
+
+    def maxima(self, kt: float, log_life: Array | float, ratio: Array) -> Array:
+        """Return Smax [MPa] of many cycles at lives of 10**log_life, by ln S on ln Kt.
+
+        Parameters
+        ----------
+        kt
+            Stress-concentration factor on net stress [-].
+        log_life
+            log10 of the lives [cycles], shape (n,) or one for all.
+        ratio
+            Stress ratios R [-], shape (n,).
+
+        Returns
+        -------
+        ndarray
+            Largest stresses on the net section [MPa], shape (n,).
+
+        Notes
+        -----
+        Range of `max_stress`.
+        """
+        below, above = self.bracket(kt)
+        blunter = [c.maxima(log_life, ratio) for c in self.curves if c.kt <= below.kt]
+        low = np.min(blunter, axis=0)
+        if below is above:
+            return np.asarray(low, dtype=np.float64)
+        high = np.minimum(low, above.maxima(log_life, ratio))
+        share = math.log(kt / below.kt) / math.log(above.kt / below.kt)
+        return np.asarray(low * (high / low) ** share, dtype=np.float64)

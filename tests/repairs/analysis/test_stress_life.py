@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 
+import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -15,6 +16,7 @@ from hypothesis import strategies as st
 from repairs.analysis.errors import AnalysisError, OutOfRangeError
 from repairs.analysis.stress_life.curves import StressLifeCurve, StressLifeFamily
 from repairs.analysis.types import KSI, Grade, NetStress
+from tests.outside import outside
 
 ROWS = {
     1.0: (11.1, 3.97, 0.56, 15.8),
@@ -38,15 +40,41 @@ def ksi(stress: float) -> NetStress:
 
 
 def test_the_published_validation_value():
-    # A public validation table prints log N = 5.6063 at 40 ksi, R 0, Kt 1.
-    found = curve(1.0).cycles(ksi(40), 0)
-    assert math.log10(found) == pytest.approx(5.6063, abs=5e-5)
+    outside(
+        "Stress-life curve 2024-T3 sheet, Kt 1: log10 of the life",
+        source="validation table of a public fatigue course, hand calculation of "
+        "MIL-HDBK-5J figure 3.2.3.1.8(e)",
+        given="S_max 40 ksi, R 0",
+        published=5.6063,
+        computed=math.log10(curve(1.0).cycles(ksi(40), 0)),
+        absolute=5e-5,
+    )
 
 
 def test_the_published_notch_effect():
-    # A public text states a factor of 33 between Kt 1 and Kt 2 at 30 ksi, R 0.1.
-    ratio = curve(1.0).cycles(ksi(30), 0.1) / curve(2.0).cycles(ksi(30), 0.1)
-    assert ratio == pytest.approx(33, abs=0.5)
+    outside(
+        "Stress-life curves 2024-T3 sheet: life at Kt 1 over life at Kt 2",
+        source="text of a public fatigue course: “a factor of 33”",
+        given="S_max 30 ksi net, R 0.1",
+        published=33,
+        computed=curve(1.0).cycles(ksi(30), 0.1) / curve(2.0).cycles(ksi(30), 0.1),
+        absolute=0.5,
+    )
+
+
+def test_two_smooth_curves_of_one_alloy_differ_by_two_decades():
+    # 7075-T6 at 30 ksi, R 0.1: sheet 2.6e6, other wrought products 3.1e8, recomputed
+    # independently; the second row is from memory.
+    sheet = StressLifeCurve(1.0, 14.86, 5.80, 0.49, 0, KSI, "sheet", Grade.QUOTED)
+    other = StressLifeCurve(1.0, 18.21, 7.73, 0.62, 10.0, KSI, "other", Grade.MEMORY)
+    assert sheet.cycles(ksi(30), 0.1) == pytest.approx(2.6e6, rel=0.02)
+    assert other.cycles(ksi(30), 0.1) == pytest.approx(3.1e8, rel=0.02)
+
+
+def test_stress_of_another_alloy_at_a_million_cycles():
+    # 6061-T6, N 1e6, R -1: 20.055 ksi, recomputed independently.
+    alloy = StressLifeCurve(1.0, 20.68, 9.84, 0.63, 0, KSI, "6061-T6", Grade.QUOTED)
+    assert alloy.max_stress(6, -1) / KSI == pytest.approx(20.055, abs=5e-4)
 
 
 @pytest.mark.parametrize(
@@ -123,3 +151,68 @@ def test_outside_the_recorded_curves_it_refuses():
             FAMILY.cycles(kt, ksi(30), 0)
     with pytest.raises(AnalysisError, match="at least one"):
         StressLifeFamily("2024-T3", "sheet", False, ())
+
+
+LEFT_OUT = [
+    (2.0, (1.5, 4.0), (1.00, 1.09)),
+    (4.0, (2.0, 5.0), (0.84, 1.06)),
+    (1.5, (1.0, 2.0), (0.85, 0.99)),
+    (2.0, (1.0, 4.0), (0.92, 1.06)),
+]
+
+
+@pytest.mark.parametrize(("kt", "neighbours", "ratios"), LEFT_OUT)
+def test_a_curve_left_out_is_found_again_between_its_neighbours(kt, neighbours, ratios):
+    # Stress at equal life over that of the curve left out, at R 0, 0.1, -1, 0.5 and
+    # 1e4, 1e5, 1e6 cycles; the ends of the ranges computed independently.
+    pair = StressLifeFamily("2024-T3", "sheet", False, tuple(map(curve, neighbours)))
+    points = [(n, r) for n in (4, 5, 6) for r in (0, 0.1, -1, 0.5)]
+    found = [pair.max_stress(kt, n, r) / curve(kt).max_stress(n, r) for n, r in points]
+    assert (min(found), max(found)) == pytest.approx(ratios, abs=0.006)
+    assert all(0.8 < ratio < 1.15 for ratio in found)
+
+
+def test_stress_linear_in_kt_is_the_worse_rule():
+    # Kt 2 from 1 and 4: up to 40 % too much stress; the logarithms stay within 8 %.
+    points = [(n, r) for n in (4, 5, 6) for r in (0, 0.1, -1, 0.5)]
+    straight = [
+        (2 * curve(1.0).max_stress(n, r) + curve(4.0).max_stress(n, r))
+        / 3
+        / curve(2.0).max_stress(n, r)
+        for n, r in points
+    ]
+    assert (min(straight), max(straight)) == pytest.approx((1.17, 1.40), abs=0.006)
+
+
+@given(
+    st.floats(1.0, 5.0),
+    st.lists(st.tuples(st.floats(5, 45), st.floats(-1, 0.6)), min_size=1, max_size=8),
+)
+def test_many_cycles_at_once_live_as_each_alone(kt, cycles):
+    maximum, ratio = (np.array(column) for column in zip(*cycles, strict=True))
+    found = FAMILY.lives(kt, maximum * KSI, ratio)
+    for life, stress, at in zip(found, maximum, ratio, strict=True):
+        alone = FAMILY.cycles(kt, ksi(stress), at)
+        if alone is None or alone > 1e25:
+            assert life > 1e25
+        else:
+            assert life == pytest.approx(alone, rel=1e-6)
+
+
+def test_a_stress_ratio_outside_those_tested_is_refused_by_name():
+    tested = StressLifeCurve(
+        1.0, *ROWS[1.0], KSI, "figure (e)", Grade.QUOTED, ratios=(-1.0, 0.5)
+    )
+    assert tested.cycles(ksi(40), 0.5) is not None
+    with pytest.raises(OutOfRangeError, match=r"tested on the curve Kt 1, figure \(e"):
+        tested.cycles(ksi(40), 0.6)
+    with pytest.raises(OutOfRangeError, match="tested on the curve"):
+        tested.lives(np.array([100.0, 100.0]), np.array([0.0, 0.6]))
+    with pytest.raises(OutOfRangeError, match="Stress ratio"):
+        curve(1.0).cycles(ksi(40), 1.0)
+
+
+@given(st.floats(4.3, 6.5), st.floats(-1, 0.6))
+def test_handbook_curves_are_ordered_by_kt_below_yield(log_life, ratio):
+    stresses = [curve(kt).max_stress(log_life, ratio) for kt in ROWS]
+    assert stresses == sorted(stresses, reverse=True)
