@@ -251,20 +251,67 @@ def policy_of_scatter(
     )
 
 
+def life_factor_of_error(error: float, survival: float) -> float:
+    r"""Return how far a survival lies below the median, :math:`10^{s z_p}`.
+
+    Parameters
+    ----------
+    error
+        Standard error of log10 life about a curve, or a known deviation, s [-].
+    survival
+        p [-].
+
+    Returns
+    -------
+    float
+        Median life over the life that a share p survives [-].
+
+    Notes
+    -----
+    Range s > 0. A handbook curve's error holds lots and laboratories: the factor is
+    shown beside a scatter factor and is never multiplied with it.
+
+    References
+    ----------
+    .. [1] Normal distribution of log life.
+    """
+    within("Standard deviation of log life", error, 1e-6, 2, "log10 cycles")
+    return float(10 ** (error * quantile(survival)))
+
+
 def _fixed(
-    value: float, source: str, what: Multiplied, tests: int | None = None
+    value: float,
+    source: str,
+    what: Multiplied,
+    tests: int | None = None,
+    severity: bool | None = None,
+    grade: Grade = Grade.QUOTED,
 ) -> FatiguePolicy:
-    return FatiguePolicy(Sourced(value, "-", source, Grade.QUOTED), what, tests=tests)
+    return FatiguePolicy(
+        Sourced(value, "-", source, grade),
+        what,
+        tests=tests,
+        severity_inside=severity,
+    )
 
 
-_SMALL = "FAA AC 23-13A, {place}, as quoted in a public engineering code"
+_SMALL = (
+    "FAA AC 23-13A, {place}, as quoted in a public engineering code; its flight "
+    "spectra carry 1.5 deviations of severity themselves, so average usage is not "
+    "covered"
+)
+_HARMONISED = "before harmonisation, {who}; JAR NPA 25C-271 comment document"
+_MILITARY = "DEF STAN 00-970, {how} usage, one test; from memory, unverified"
 PUBLISHED_FACTORS: dict[str, FatiguePolicy] = {
     "AC 23-13A, analysis": _fixed(
-        8.0, _SMALL.format(place="paragraph 2-26"), Multiplied.ANALYSIS_MEDIAN
+        8.0,
+        _SMALL.format(place="paragraph 2-26"),
+        Multiplied.ANALYSIS_MEDIAN,
+        severity=False,
     ),
     **{
         f"AC 23-13A, full-scale tests: {tests}": _fixed(
-            value, _SMALL.format(place="Table 2"), Multiplied.TEST_MEAN, tests
+            value, _SMALL.format(place="Table 2"), Multiplied.TEST_MEAN, tests, False
         )
         for tests, value in ((1, 4.96), (2, 4.0), (3, 3.7), (4, 3.54))
     },
@@ -273,8 +320,26 @@ PUBLISHED_FACTORS: dict[str, FatiguePolicy] = {
         "FAA AC 25.571-1D, before its adjustments, as quoted in a public code",
         Multiplied.TEST_MEAN,
     ),
-}
-"""Fixed factors of published guidance, to be chosen by name; none is a default."""
+    "FAA practice on test life before harmonisation": _fixed(
+        3.0, _HARMONISED.format(who="FAA"), Multiplied.TEST_MEAN
+    ),
+    "JAA practice on test life before harmonisation": _fixed(
+        5.0, _HARMONISED.format(who="JAA"), Multiplied.TEST_MEAN
+    ),
+    "DEF STAN 00-970, monitored": _fixed(
+        10 / 3, _MILITARY.format(how="monitored"), Multiplied.TEST_MEAN, 1,
+        grade=Grade.MEMORY,
+    ),
+    "DEF STAN 00-970, not monitored": _fixed(
+        5.0, _MILITARY.format(how="unmonitored"), Multiplied.TEST_MEAN, 1,
+        grade=Grade.MEMORY,
+    ),
+}  # fmt: skip
+"""Fixed factors of published guidance, to be chosen by name; none is a default.
+
+`severity_inside` is False where the guidance puts severity into its spectra: with a
+spectrum of average usage such a factor is too small. None = the quotation is silent.
+"""
 
 
 def published_factor(name: str) -> FatiguePolicy:

@@ -1,4 +1,7 @@
-"""What blended and drilled skin share: stress-life left, and which life governs."""
+"""What blended and drilled skin share: stress-life left, and which life governs.
+
+Here for one constant cycle per flight; `spectrum` has it for a flight's counted cycles.
+"""
 
 from __future__ import annotations
 
@@ -9,7 +12,12 @@ from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection import intervals
 from repairs.analysis.note import Note
-from repairs.analysis.stress_life.curves import NO_FINITE_LIFE, StressLifeCurve
+from repairs.analysis.stress_life.curves import (
+    NO_FINITE_LIFE,
+    StressLifeCurve,
+    StressLifeFamily,
+)
+from repairs.analysis.stress_life.policies import write_made_factors
 from repairs.analysis.types import (
     Grade,
     Interval,
@@ -25,6 +33,10 @@ CLAD_ON_BARE = (
 RANGE_NOT_RECORDED = (
     "The tested range of stress ratio and life is not recorded with the stress-life "
     "curves."
+)
+ERROR_HELD = (
+    "The curve's standard error holds lots and laboratories and is no scatter of one "
+    "batch; it is not stacked on the scatter factor."
 )
 NOT_UNLIMITED = "Stress-life: {words}."
 LIFE_USED_UP = "The life before the damage was already used up on this curve."
@@ -66,18 +78,8 @@ def stress_life_left(
     """
     family = inputs.family()
     assert family is not None, "evaluate() has checked that stress_life is there"
-    limit = inputs.number("yield_strength").value
-    within(
-        "Largest stress on the net section, MPa",
-        after.maximum,
-        0,
-        limit,
-        "stress-life curves end at yield",
-        "Another method is needed.",
-    )
-    note.warn(RANGE_NOT_RECORDED)
-    for curve in dict.fromkeys((*family.bracket(kt), *family.bracket(1.0))):
-        _write_curve(note, curve)
+    check_below_yield(inputs, after.maximum)
+    write_curves(note, family, kt)
     new = family.cycles(kt, NetStress(after.maximum), after.ratio)
     old = family.cycles(1.0, NetStress(before.maximum), before.ratio)
     _write_life(note, "N_after", f"Kt {kt:.3f}, ln S on ln Kt", after, new)
@@ -85,10 +87,8 @@ def stress_life_left(
     if new is None:
         note.warn(NOT_UNLIMITED.format(words=NO_FINITE_LIFE))
         return StressLife(None, NO_FINITE_LIFE)
-    new = _clad(inputs, note, new)
-    share = _used(inputs, note, old)
-    if share >= 1:
-        note.warn(LIFE_USED_UP)
+    new = less_clad(inputs, note, new)
+    share = share_used(inputs, note, old)
     left = max(0.0, 1 - share) * new
     note.step(
         "N_left",
@@ -97,26 +97,61 @@ def stress_life_left(
         left,
         "cycles",
     )
-    note.step(
-        "",
-        "band of the interpolated life",
-        f"{left / LIFE_BAND:,.0f} to {left * LIFE_BAND:,.0f} cycles",
-        None,
-        "",
-        BAND,
-    )
+    write_band(note, left, "cycles")
     return StressLife(left, "")
 
 
+def check_below_yield(inputs: Inputs, maximum: float) -> None:
+    """Refuse a largest stress on the net section above yield: curves end there."""
+    within(
+        "Largest stress on the net section, MPa",
+        maximum,
+        0,
+        inputs.number("yield_strength").value,
+        "stress-life curves end at yield",
+        "Another method is needed.",
+    )
+
+
+def write_curves(note: Note, family: StressLifeFamily, kt: float) -> None:
+    """Write down the curves used at a Kt and at Kt 1, and what is not known of them."""
+    used = dict.fromkeys((*family.bracket(kt), *family.bracket(1.0)))
+    if any(curve.ratios is None for curve in used):
+        note.warn(RANGE_NOT_RECORDED)
+    for curve in used:
+        _write_curve(note, curve)
+    if any(curve.standard_error is not None for curve in used):
+        note.text(ERROR_HELD)
+
+
 def _write_curve(note: Note, curve: StressLifeCurve) -> None:
+    known = [
+        f"stress in units of {curve.stress_unit_mpa:.6g} MPa",
+        *([f"specimens {curve.thickness:.2f} mm thick"] if curve.thickness else []),
+        *(["R {:g} to {:g} tested".format(*curve.ratios)] if curve.ratios else []),
+    ]
+    if curve.standard_error is not None:
+        known.append(f"standard error of log N {curve.standard_error:g}")
     note.step(
         f"curve, Kt {curve.kt:g}",
         "log N = A₁ − A₂ log(S_eq − A₄), S_eq = S_max (1 − R)^A₃",
-        f"A₁ {curve.a1:g}, A₂ {curve.a2:g}, A₃ {curve.a3:g}, A₄ {curve.a4:g}; stress "
-        f"in units of {curve.stress_unit_mpa:.6g} MPa",
+        f"A₁ {curve.a1:g}, A₂ {curve.a2:g}, A₃ {curve.a3:g}, A₄ {curve.a4:g}; "
+        + ", ".join(known),
         None,
         "",
         Reference(curve.source, curve.grade),
+    )
+
+
+def write_band(note: Note, left: float, unit: str) -> None:
+    """Write the factor-3 band of an interpolated life beside it."""
+    note.step(
+        "",
+        "band of the interpolated life",
+        f"{left / LIFE_BAND:,.0f} to {left * LIFE_BAND:,.0f} {unit}",
+        None,
+        "",
+        BAND,
     )
 
 
@@ -133,7 +168,7 @@ def _write_life(
     )
 
 
-def _clad(inputs: Inputs, note: Note, cycles: float) -> float:
+def less_clad(inputs: Inputs, note: Note, cycles: float) -> float:
     """Apply a sourced factor for cladding, or bar the result from approval."""
     family = inputs.family()
     if inputs.word("clad") != "yes" or (family is not None and family.clad):
@@ -146,7 +181,7 @@ def _clad(inputs: Inputs, note: Note, cycles: float) -> float:
     return cycles / divisor
 
 
-def _used(inputs: Inputs, note: Note, before: float | None) -> float:
+def share_used(inputs: Inputs, note: Note, before: float | None) -> float:
     """Return the share of life used, n / N_before; none where N is not finite."""
     reason = inputs.word("life_used_reason")
     if reason:
@@ -155,7 +190,10 @@ def _used(inputs: Inputs, note: Note, before: float | None) -> float:
     flown = note.given(
         "n", "flight cycles this skin has flown", inputs.number("skin_cycles")
     )
-    return 0.0 if before is None else flown / before
+    share = 0.0 if before is None else flown / before
+    if share >= 1:
+        note.warn(LIFE_USED_UP)
+    return share
 
 
 @dataclass(frozen=True, slots=True)
@@ -196,6 +234,7 @@ def governing_life(
     lived = intervals.over_factor(
         inputs, note, left.remaining, "stress_life_policy", "threshold"
     )
+    write_made_factors(note, inputs.policy("stress_life_policy"))
     if grown.cycles is None or lived.cycles is None:
         note.warn(BOTH_NEEDED)
         shorter, factored = min(
