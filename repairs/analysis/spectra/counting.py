@@ -232,14 +232,15 @@ def without_small(
 def treated(sequence: LoadSequence, treatment: Treatment) -> LoadSequence:
     """Return the sequence clipped first, then without its small ranges, as chosen.
 
-    The starts of flights are kept only where nothing is removed.
+    What is clipped or left out joins its neighbours, so that turning points remain; the
+    starts of flights are then no longer known.
     """
-    points = sequence.stresses
+    points, starts = sequence.stresses, sequence.starts
     if treatment.clip_above is not None or treatment.clip_below is not None:
-        points = np.clip(points, treatment.clip_below, treatment.clip_above)
-    starts = sequence.starts
+        points = reversals(np.clip(points, treatment.clip_below, treatment.clip_above))
     if treatment.omit_below_range:
         points = without_small(points, treatment.omit_below_range, treatment.residue)
+    if len(points) != len(sequence.stresses):
         starts = None
     return LoadSequence(points, sequence.flights, sequence.repeats, starts)
 

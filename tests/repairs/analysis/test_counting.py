@@ -26,7 +26,10 @@ EXAMPLE = [-2, 1, -3, 5, -1, 3, -4, 4, -2]
 ONCE = Residue.HALVES
 AGAIN = Residue.REPEATING
 HISTORIES = st.lists(
-    st.integers(-50, 50).map(float) | st.floats(-500, 500), min_size=2, max_size=80
+    st.integers(-50, 50).map(float)
+    | st.floats(-500, 500).map(lambda stress: round(stress, 6)),
+    min_size=2,
+    max_size=80,
 )
 
 
