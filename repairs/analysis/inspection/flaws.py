@@ -5,8 +5,8 @@ method's row: there is no default of either. Cycles are rounded down.
 
 References
 ----------
-.. [1] JSSG-2006, Table XXX, as reproduced in the USAF Damage Tolerant Design Handbook,
-   1.3.4.1.
+.. [1] JSSG-2006, Tables XXX and XXXII, as reproduced in the USAF Damage Tolerant Design
+   Handbook, 1.3.4.1 and 1.3.7.2.
 """
 
 from __future__ import annotations
@@ -23,6 +23,18 @@ ROGUE_FLAW = Reference(
     "1.3.4.1",
     Grade.QUOTED,
 )
+CONTINUING_FLAW = Reference(
+    "JSSG-2006 A3.12.1 and A3.12.2, as reproduced in the USAF Damage Tolerant Design "
+    "Handbook, 1.3.4.0 and 1.3.7.2.2",
+    Grade.QUOTED,
+)
+IN_SERVICE_FLAW = Reference(
+    "JSSG-2006 Table XXXII, as quoted in the USAF Damage Tolerant Design Handbook, "
+    "1.3.7.2.3",
+    Grade.QUOTED,
+)
+UNCOVERED = 0.25 * INCH
+"""Uncovered length assumed after a depot penetrant or ultrasonic inspection [mm]."""
 NO_CAP = ""
 
 
@@ -88,6 +100,64 @@ def rogue_flaw(location: FlawLocation, thickness: float) -> AssumedFlaw:
     if thickness <= 0.125 * INCH:
         return AssumedFlaw(FlawKind.THROUGH, 0.25 * INCH, thickness, ROGUE_FLAW)
     return AssumedFlaw(FlawKind.SURFACE, 0.25 * INCH, 0.125 * INCH, ROGUE_FLAW)
+
+
+def continuing_flaw(thickness: float) -> AssumedFlaw:
+    """Return the flaw assumed at every other hole, of typical quality.
+
+    Parameters
+    ----------
+    thickness
+        Thickness [mm].
+
+    Returns
+    -------
+    AssumedFlaw
+        Corner crack of 0.005 in radius [mm].
+
+    Notes
+    -----
+    Range t >= 0.005 in. Where the primary flaw ends in another hole or has failed its
+    element, growth goes on from here; the two act together.
+
+    References
+    ----------
+    .. [1] See `CONTINUING_FLAW`.
+    """
+    radius = 0.005 * INCH
+    within("Thickness, mm", thickness, radius, 1e3, "a corner crack of 0.005 in in it")
+    return AssumedFlaw(FlawKind.CORNER, radius, radius, CONTINUING_FLAW)
+
+
+def in_service_flaw(thickness: float, covered: float) -> AssumedFlaw:
+    """Return the flaw assumed to be left by a depot penetrant or ultrasonic inspection.
+
+    Parameters
+    ----------
+    thickness
+        Thickness [mm].
+    covered
+        Part of the crack under head, doubler or fairing [mm]; 0 = none, stated.
+
+    Returns
+    -------
+    AssumedFlaw
+        Through crack, covered part and 0.25 in beyond it [mm].
+
+    Notes
+    -----
+    Range t > 0, covered >= 0. The least size to be assumed with that inspection; for
+    other methods, or visual, it is not this.
+
+    References
+    ----------
+    .. [1] See `IN_SERVICE_FLAW`.
+    """
+    within("Thickness, mm", thickness, 1e-6, 1e3, "a thickness")
+    within("Covered length, mm", covered, 0, 1e3, "a length")
+    return AssumedFlaw(
+        FlawKind.THROUGH, covered + UNCOVERED, thickness, IN_SERVICE_FLAW
+    )
 
 
 @dataclass(frozen=True, slots=True)

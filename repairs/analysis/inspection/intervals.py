@@ -1,14 +1,27 @@
-"""From a growth life to lives, threshold and repeat, with factors, caps and words."""
+"""From a growth life to lives, threshold and repeat, with factors, caps and words.
+
+A threshold runs from an assumed flaw to the critical size, a repeat from the detectable
+to the critical size; neither ever starts at a crack that was found. Each has one base,
+and two bases are never compared: what counts since new, since a release and from the
+last accomplishment stay apart.
+
+References
+----------
+.. [1] Structures Bulletin EN-SB-12-003 (2012), page 1: inspections at one half of the
+   growth time of an assumed flaw to critical.
+"""
 
 from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
 
+from repairs.analysis.errors import InputError, within
 from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.inspection.flaws import Cap, capped, whole_cycles
 from repairs.analysis.note import Note
-from repairs.analysis.types import Interval, Life, MissingInput
+from repairs.analysis.scatter.factors import FatiguePolicy, Multiplied
+from repairs.analysis.types import Grade, Interval, Life, MissingInput, Sourced
 
 SINCE_NEW = "since new"
 FROM_FINDING = "from finding"
@@ -27,9 +40,32 @@ SEVERITY_OUTSIDE = (
     "The {what} does not contain the severity of the spectrum: average usage is "
     "assumed."
 )
+NEVER_FROM_A_CRACK = (
+    "No interval counts from a crack that was found. Repair it, or show its life as "
+    "that of known damage."
+)
+BASES_DIFFER = (
+    "Intervals {bases} are not comparable. Keep each with its own base, or convert "
+    "them by the counters at each base."
+)
 FOUND_DAMAGE_LIFE = (
     "Life of known damage: not an inspection interval and no leave to fly with it."
 )
+
+
+def _guidance(factor: float, source: str, grade: Grade) -> FatiguePolicy:
+    return FatiguePolicy(Sourced(factor, "-", source, grade), Multiplied.GROWTH)
+
+
+_HANDBOOK = "JSSG-2006 Table XXXIII, as in the USAF Damage Tolerant Design Handbook, "
+PUBLISHED_GROWTH_FACTORS: dict[str, FatiguePolicy] = {
+    "one half of the growth to critical": _guidance(
+        2.0, "Structures Bulletin EN-SB-12-003 (2012), page 1", Grade.PRINT
+    ),
+    "depot inspection": _guidance(2.0, _HANDBOOK + "1.3.7.2.10", Grade.QUOTED),
+    "walk-around visual": _guidance(5.0, _HANDBOOK + "1.3.7.2.10", Grade.QUOTED),
+}
+"""Divisors of growth life in military guidance, by name; none is a default."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,7 +136,12 @@ def caps(inputs: Inputs, note: Note, base: str) -> tuple[Cap, ...]:
 def interval(
     inputs: Inputs, note: Note, cycles: float | None, base: str, symbol: str
 ) -> Interval | None:
-    """Cut an interval down to its caps, and write both numbers down."""
+    """Cut an interval down to its caps, and write both numbers down.
+
+    Refuses a base in a found crack.
+    """
+    if base == FROM_FINDING:
+        raise InputError(NEVER_FROM_A_CRACK)
     if cycles is None:
         return None
     found = capped(cycles, base, caps(inputs, note, base))
@@ -114,6 +155,52 @@ def interval(
     if found.cycles is None:
         note.warn(NOTHING_LEFT.format(cap=found.cap.capitalize()))
     return found
+
+
+def detectable_size(visible: Sourced, covered: Sourced) -> Sourced:
+    """Return the length a crack has when its visible part is detectable [mm].
+
+    Parameters
+    ----------
+    visible
+        Size the method finds beyond head, doubler or fairing [mm].
+    covered
+        Part of the crack under them, from where the growth counts [mm]; 0 is stated.
+
+    Returns
+    -------
+    Sourced
+        Their sum, with both sources and the worse grade.
+
+    Notes
+    -----
+    Range visible > 0, covered >= 0. A repair can hide the crack: its doubler covers.
+
+    References
+    ----------
+    .. [1] Geometry.
+    """
+    within("Detectable size, mm", visible.value, 1e-6, 1e4, "a length")
+    within("Covered length, mm", covered.value, 0, 1e4, "a length")
+    grades = {visible.grade, covered.grade}
+    grade = Grade.MEMORY if Grade.MEMORY in grades else visible.grade
+    return Sourced(
+        visible.value + covered.value,
+        "mm",
+        f"{visible.source}; covered part: {covered.source}",
+        grade,
+    )
+
+
+def shortest(intervals: tuple[Interval, ...]) -> Interval:
+    """Return the shortest of intervals with one base; refuse to compare two bases.
+
+    One without cycles, where a cap left nothing, is the shortest.
+    """
+    bases = sorted({interval.base for interval in intervals})
+    if len(bases) != 1:
+        raise InputError(BASES_DIFFER.format(bases=" and ".join(bases) or "of no kind"))
+    return min(intervals, key=lambda one: -1 if one.cycles is None else one.cycles)
 
 
 def repeat_interval(
