@@ -76,11 +76,22 @@ def panel_loads(inputs: Inputs, note: Note) -> PanelLoads:
         found = _shell(inputs, note)
     else:
         found = _recorded(inputs, note)
-    _write(found, note)
+    write_requirements(found, note)
     return found
 
 
-def _shell(inputs: Inputs, note: Note) -> PanelLoads:
+@dataclass(frozen=True, slots=True)
+class ShellInputs:
+    """Pressures, geometry and factors of a pressurised skin, as read."""
+
+    pressures: loads.CabinPressures
+    radius: float
+    thickness: float
+    factors: loads.LoadFactors
+
+
+def read_shell(inputs: Inputs, note: Note) -> ShellInputs:
+    """Write down and return what the loads of a pressurised skin are made of."""
     normal = note.given(
         "Δp", "normal operating differential", inputs.number("normal_pressure")
     )
@@ -103,15 +114,22 @@ def _shell(inputs: Inputs, note: Note) -> PanelLoads:
         ),
         note.given("k_proof", "factor of relief valve alone", _proof(inputs)),
     )
+    pressures = loads.CabinPressures(normal, external, relief)
+    return ShellInputs(pressures, radius, thickness, factors)
+
+
+def _shell(inputs: Inputs, note: Note) -> PanelLoads:
+    read = read_shell(inputs, note)
+    pressures, radius, thickness = read.pressures, read.radius, read.thickness
+    normal, external = pressures.normal, pressures.external
     given = inputs.maybe("limit_flight_stress")
     flight = (
         GrossStress(note.given("σ_fl", "hoop stress from limit flight loads", given))
         if given
         else None
     )
-    pressures = loads.CabinPressures(normal, external, relief)
     residual, ultimate = loads.shell_requirements(
-        pressures, radius, thickness, factors, flight
+        pressures, radius, thickness, read.factors, flight
     )
     top = loads.hoop_stress(normal + external, radius, thickness)
     note.step(
@@ -174,7 +192,7 @@ def _with_running_load(
     return Requirement(ultimate.name, (*ultimate.cases, case))
 
 
-def _write(found: PanelLoads, note: Note) -> None:
+def write_requirements(found: PanelLoads, note: Note) -> None:
     """Write the governing stresses down and say what was not checked."""
     for symbol, requirement in (("σ_res", found.residual), ("σ_ult", found.ultimate)):
         stress, case = requirement.governing

@@ -7,6 +7,7 @@ checked, never taken as zero.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from repairs.analysis.errors import within
@@ -24,15 +25,15 @@ RESIDUAL_PRESSURE_FACTOR = Sourced(
 ULTIMATE_FACTOR = Sourced(
     1.5,
     "-",
-    "Ultimate loads are limit loads times 1.5: 14 CFR 25.303, as in the text of "
-    "23.2230(b)",
-    Grade.QUOTED,
+    "14 CFR 25.303 at amendment 25-23, factor of safety on limit loads; read in its "
+    "text of 2020",
+    Grade.PRINT,
 )
 PROOF_FACTOR_TO_45000_FT = Sourced(
     1.33,
     "-",
     "14 CFR 25.365(d), relief valve setting with other loads omitted, read in a copy "
-    "of an earlier amendment",
+    "of an earlier amendment; the same words in 23.365(d) and 23.2225(c)(3)",
     Grade.QUOTED,
 )
 PROOF_FACTOR_ABOVE_45000_FT = Sourced(
@@ -212,6 +213,7 @@ def shell_requirements(
     thickness: float,
     factors: LoadFactors,
     flight: GrossStress | None,
+    across: Callable[[float, float, float], GrossStress] = hoop_stress,
 ) -> tuple[Requirement, Requirement]:
     """Return the residual and the static ultimate requirement of a pressurised skin.
 
@@ -226,6 +228,8 @@ def shell_requirements(
     flight
         Gross stress across the crack or section from limit flight loads alone [MPa];
         None = not recorded, so the two cases with flight loads are not checked.
+    across
+        Stress of the pressure in that direction: `hoop_stress` or `axial_stress`.
 
     Returns
     -------
@@ -234,14 +238,15 @@ def shell_requirements(
 
     Notes
     -----
-    Range of `hoop_stress`.
+    Range of `hoop_stress`. The factor 1.0 on the first residual case is meant: its
+    loads are taken as ultimate already.
 
     References
     ----------
     .. [1] 14 CFR 25.571(b), 25.365(d), 25.303; see the factors of this module.
     """
-    normal = hoop_stress(pressures.normal + pressures.external, radius, thickness)
-    relief = hoop_stress(pressures.relief, radius, thickness)
+    normal = across(pressures.normal + pressures.external, radius, thickness)
+    relief = across(pressures.relief, radius, thickness)
 
     def combined(stress: float, factor: float) -> GrossStress | None:
         return None if flight is None else GrossStress(factor * (stress + flight))
