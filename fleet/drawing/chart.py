@@ -11,12 +11,12 @@ from dataclasses import dataclass, field
 from functools import cached_property
 
 from fleet.drawing import svg
+from fleet.drawing.axis import Axis, log_axis, nice_axis
 from fleet.drawing.svg import Box, Label
 
 WIDTH, HEIGHT = 560.0, 270.0
 TOP, RIGHT, BOTTOM = 14.0, 544.0, 228.0
 LINE = 13.0
-_ROUND_STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 
 NOT_A_NUMBER = (
     "Chart “{title}”: {where} holds {value}, which cannot be drawn; "
@@ -48,48 +48,20 @@ class Level:
 
 
 @dataclass(frozen=True)
+class Upright:
+    """A dashed upright line, as an inspection; one of a row may carry the label."""
+
+    value: float
+    label: str = ""
+
+
+@dataclass(frozen=True)
 class Point:
     """A marked point, as the size found today."""
 
     x: float
     y: float
     label: str
-
-
-@dataclass(frozen=True)
-class Axis:
-    """Ends and ticks of one axis."""
-
-    low: float
-    high: float
-    ticks: tuple[float, ...]
-
-    def label(self, tick: float) -> str:
-        """The tick's figures, all ticks with the same decimals."""
-        step = self.ticks[1] - self.ticks[0]
-        decimals = max(0, -math.floor(math.log10(step) + 1e-9))
-        if decimals and abs(step * 10**decimals % 1) > 1e-6:
-            decimals += 1
-        return f"{tick:,.{decimals}f}"
-
-
-def nice_axis(low: float, high: float, *, intervals: int = 5) -> Axis:
-    """An axis over the values with round ticks (steps of 1, 2, 2.5 or 5).
-
-    It starts at zero when the values are positive and the lowest is less than half
-    the highest, so that a curve's height can be read as a proportion.
-    """
-    if 0 <= low < 0.5 * high:
-        low = 0.0
-    if high <= low:
-        room = abs(low) * 0.1 or 1.0
-        low, high = low - room, high + room
-    rough = (high - low) / intervals
-    power = 10.0 ** math.floor(math.log10(rough))
-    step = next(s for s in _ROUND_STEPS if s * power >= rough * (1 - 1e-9)) * power
-    first, last = math.floor(low / step + 1e-9), math.ceil(high / step - 1e-9)
-    ticks = tuple(index * step for index in range(first, last + 1))
-    return Axis(low=ticks[0], high=ticks[-1], ticks=ticks)
 
 
 @dataclass(frozen=True)
@@ -102,6 +74,8 @@ class Chart:
     series: Sequence[Series]
     levels: Sequence[Level] = ()
     point: Point | None = None
+    uprights: Sequence[Upright] = ()
+    x_log: bool = False
     description: str = field(default="")
 
     def __post_init__(self) -> None:
@@ -133,12 +107,17 @@ class Chart:
         if self.point is not None:
             yield "the marked point", self.point.x
             yield "the marked point", self.point.y
+        for upright in self.uprights:
+            yield f"upright “{upright.label}”", upright.value
 
     @cached_property
     def x_axis(self) -> Axis:
         """The axis over every curve and the marked point."""
         values = [x for series in self.series for x in series.x]
+        values += [upright.value for upright in self.uprights]
         values += [self.point.x] if self.point else []
+        if self.x_log:
+            return log_axis(min(values), max(values))
         return nice_axis(min(values), max(values))
 
     @cached_property
@@ -176,11 +155,10 @@ class Chart:
 
     def at(self, x: float, y: float) -> tuple[float, float]:
         """Where a value lies on the drawing."""
-        across = (x - self.x_axis.low) / (self.x_axis.high - self.x_axis.low)
-        up = (y - self.y_axis.low) / (self.y_axis.high - self.y_axis.low)
+        across = self.x_axis.share(x)
         return (
             self.plot.left + across * (RIGHT - self.plot.left),
-            BOTTOM - up * (BOTTOM - TOP),
+            BOTTOM - self.y_axis.share(y) * (BOTTOM - TOP),
         )
 
     @cached_property
@@ -195,7 +173,13 @@ class Chart:
 def chart_svg(chart: Chart) -> str:
     """The chart as one SVG element."""
     return svg.root(
-        [*_grid(chart), *_levels(chart), *_curves(chart), *_labels(chart)],
+        [
+            *_grid(chart),
+            *_levels(chart),
+            *_uprights(chart),
+            *_curves(chart),
+            *_labels(chart),
+        ],
         size=(WIDTH, HEIGHT),
         class_="chart",
         title=chart.title,
@@ -216,6 +200,7 @@ def _summary(chart: Chart) -> str:
         words.append(
             f"{chart.point.label}: {chart.point.y:,.4g} at {chart.point.x:,.4g}."
         )
+    words += [f"{one.label}: at {one.value:,.4g}." for one in chart.uprights]
     return " ".join(words)
 
 
@@ -267,6 +252,12 @@ def _levels(chart: Chart) -> Iterator[str]:
         yield svg.tag("line", class_=class_, x1=chart.plot.left, x2=RIGHT, y1=y, y2=y)
 
 
+def _uprights(chart: Chart) -> Iterator[str]:
+    for upright in chart.uprights:
+        x, _ = chart.at(upright.value, chart.y_axis.low)
+        yield svg.tag("line", class_="up", x1=x, x2=x, y1=TOP, y2=BOTTOM)
+
+
 def _curves(chart: Chart) -> Iterator[str]:
     for number, curve in enumerate(chart.curves, start=1):
         yield svg.tag("path", class_=f"c{min(number, 3)}", d=svg.path(curve))
@@ -285,6 +276,10 @@ def _labels(chart: Chart) -> Iterator[str]:
     for level in chart.levels:
         _, y = chart.at(chart.x_axis.low, level.value)
         yield _placed(chart, _along(level.label, chart.plot, y), taken, "label")
+    for upright in chart.uprights:
+        if upright.label:
+            x, _ = chart.at(upright.value, chart.y_axis.low)
+            yield _placed(chart, _upright_label(upright.label, x), taken, "label")
     if len(chart.series) > 1:
         for series, curve in zip(chart.series, chart.curves, strict=True):
             places = [
@@ -341,4 +336,14 @@ def _along(words: str, plot: Box, y: float) -> list[Label]:
         Label(words, x, y + down, anchor)
         for x, anchor in (*ends, *steps)
         for down in (-5.0, 13.0)
+    ]
+
+
+def _upright_label(words: str, x: float) -> list[Label]:
+    """Places beside an upright line, at its top first."""
+    heights = [TOP + 10 + share * (BOTTOM - TOP - 16) for share in (0, 0.2, 0.4, 1)]
+    return [
+        Label(words, x + across, y, anchor)
+        for y in heights
+        for across, anchor in ((4.0, "start"), (-4.0, "end"))
     ]
