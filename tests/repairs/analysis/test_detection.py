@@ -19,6 +19,7 @@ from scipy.stats import beta, binom, binomtest, norm
 from repairs.analysis.errors import AnalysisError, InputError, OutOfRangeError
 from repairs.analysis.inspection import detection as dt
 from repairs.analysis.inspection import hit_miss as hm
+from repairs.analysis.inspection.published_sizes import PUBLISHED_SIZES, published_for
 from repairs.analysis.types import Grade
 from tests.outside import outside
 
@@ -299,3 +300,40 @@ def test_a_curve_without_source_or_range_is_refused():
         dt.log_odds(-2, -3, STUDY)
     with pytest.raises(OutOfRangeError, match="Hits"):
         dt.demonstrated(30, 29, 0.95)
+
+
+@pytest.mark.parametrize(
+    ("technique", "where", "published", "unit", "route"),
+    [
+        (dt.Technique.ULTRASONIC, "depot, accessible, through crack", 6.35, "mm",
+         "quoted"),
+        (dt.Technique.PENETRANT,
+         "post-emulsifiable, general procedure of an air force", 3.0, "mm", "print"),
+        (dt.Technique.MAGNETIC_PARTICLE,
+         "wet fluorescent, continuous, general procedure of an air force", 2.0, "mm",
+         "print"),
+    ],
+)  # fmt: skip
+def test_published_sizes_are_those_read(technique, where, published, unit, route):
+    row = next(row for row in published_for(technique) if row.where == where)
+    outside(
+        "Published detectable size, for hints only",
+        source=row.reference.source,
+        given=f"{technique}, {where}",
+        published=published,
+        computed=row.length,
+        unit=unit,
+        rel=1e-9,
+        route=route,
+    )
+
+
+def test_what_is_remembered_says_so_and_comes_last():
+    for technique in dt.Technique:
+        grades = [row.reference.grade for row in published_for(technique)]
+        memory = [grade is Grade.MEMORY for grade in grades]
+        assert memory == sorted(memory)
+    standard = [row for row in PUBLISHED_SIZES if "5009" in row.reference.source]
+    assert {row.reference.grade for row in standard} == {Grade.MEMORY}
+    assert len(standard) == 14
+    assert published_for(dt.Technique.RADIOGRAPHIC) == ()
