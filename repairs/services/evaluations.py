@@ -159,7 +159,7 @@ def _row(
     result = prepared.result
     texts = {
         "inputs": canonical(prepared.inputs.as_data()),
-        "outputs": canonical(_outputs(prepared.assessment)),
+        "outputs": canonical(outputs_of(prepared.assessment)),
         "applicability": canonical([asdict(test) for test in result.applicability]),
         "note": canonical([asdict(line) for line in result.note]),
         "libraries": canonical(_libraries()),
@@ -211,7 +211,7 @@ def _numbers(result: Result) -> dict[str, object]:
     }
 
 
-def _outputs(assessment: Assessment) -> dict[str, object]:
+def outputs_of(assessment: Assessment) -> dict[str, object]:
     """All the result says but note and tests, which have texts of their own, and what
     each method asked said for itself."""
     result = assessment.result
