@@ -19,6 +19,7 @@ from repairs.views import (
     late_entries,
     life_limits,
     maps,
+    recalculations,
     repair_entry,
     repair_steps,
     repairs,
@@ -226,6 +227,17 @@ urlpatterns = [
         "substantiations/<int:pk>/<str:what>/<int:row_pk>/withdraw/",
         substantiation_rows.substantiation_withdraw,
         name="substantiation_withdraw",
+    ),
+    path(
+        "recalculations/", recalculations.recalculation_list, name="recalculation_list"
+    ),
+    path(
+        "recalculations/<int:pk>/", recalculations.recalculation, name="recalculation"
+    ),
+    path(
+        "recalculations/<int:pk>/work/",
+        recalculations.recalculation_work_here,
+        name="recalculation_work_here",
     ),
     path("evaluations/", evaluation_list.evaluation_list, name="evaluation_list"),
     path("evaluations/<int:pk>/", evaluations.evaluation, name="evaluation"),

@@ -41,6 +41,7 @@ from repairs.models import (
     InspectionRequirement,
     OccurrenceReport,
     Photograph,
+    Recalculation,
     Repair,
     RequirementSubject,
     Substantiation,
@@ -54,6 +55,7 @@ from repairs.services.evaluation_inputs import Choice
 from repairs.services.evaluation_prepare import default_use
 from repairs.services.evaluations import evaluation_make
 from repairs.services.inspections import requirement_raise
+from repairs.services.recalculations import recalculation_start
 from repairs.services.repair_entry import Data, RepairEntry, Step
 from repairs.services.repairs import repair_plan, repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
@@ -97,6 +99,7 @@ class OneOfEach:
     question: FindingQuestion
     crack: Finding
     evaluation: Evaluation
+    recalculation: Recalculation
     corroded: Finding
     report: OccurrenceReport
     disposition: Disposition
@@ -139,6 +142,7 @@ def one_of_each_make() -> OneOfEach:
         corroded=found(world, damage_type="corrosion", typed=()),
         report=crack.reports.get(),
         evaluation=_evaluation(world, crack),
+        recalculation=_recalculation(world),
         disposition=_disposition(world, decided),
         repair=_repair(world),
         planned=_planned(world),
@@ -208,6 +212,16 @@ def _evaluation(world: World, crack: Finding) -> Evaluation:
     return evaluation_make(
         subject=crack,
         choice=Choice(default_use(crack)),
+        as_of=TODAY,
+        actor=world.engineer,
+        at=NOW,
+    )
+
+
+def _recalculation(world: World) -> Recalculation:
+    return recalculation_start(
+        operator=world.operator,
+        stale_only=False,
         as_of=TODAY,
         actor=world.engineer,
         at=NOW,

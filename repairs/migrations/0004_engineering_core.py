@@ -357,6 +357,13 @@ class Migration(migrations.Migration):
                             ),
                         ),
                         (
+                            "unchanged",
+                            models.BooleanField(
+                                default=False,
+                                help_text="Made again it gives the very same; none was kept.",
+                            ),
+                        ),
+                        (
                             "error",
                             models.TextField(
                                 blank=True,
@@ -374,15 +381,25 @@ class Migration(migrations.Migration):
                             ),
                             models.CheckConstraint(
                                 condition=models.Q(
-                                    models.Q(("after__isnull", False), ("error", "")),
+                                    models.Q(
+                                        ("after__isnull", False),
+                                        ("error", ""),
+                                        ("unchanged", False),
+                                    ),
                                     models.Q(
                                         ("after__isnull", True),
+                                        ("error", ""),
+                                        ("unchanged", True),
+                                    ),
+                                    models.Q(
+                                        ("after__isnull", True),
+                                        ("unchanged", False),
                                         models.Q(("error", ""), _negated=True),
                                     ),
                                     _connector="OR",
                                 ),
                                 name="repairs_recalculationitem_made_or_not",
-                                violation_error_message="Either an evaluation was made again, or the item says why not.",
+                                violation_error_message="An evaluation was made again, or the item says why not.",
                             ),
                         ],
                         "indexes": [],

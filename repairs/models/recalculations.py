@@ -69,7 +69,7 @@ class RecalculationPart(models.Model):
 
 
 class RecalculationItem(models.Model):
-    """One evaluation made again, or why it could not be. Append-only."""
+    """One evaluation made again, found the same, or why neither. Append-only."""
 
     run = models.ForeignKey(
         Recalculation, on_delete=models.PROTECT, related_name="items"
@@ -81,6 +81,9 @@ class RecalculationItem(models.Model):
         null=True,
         blank=True,
         related_name="recalculated",
+    )
+    unchanged = models.BooleanField(
+        default=False, help_text="Made again it gives the very same; none was kept."
     )
     error = text(help_text="Why it could not be made again.")
     objects = ScopedQuerySet.as_manager()
@@ -94,10 +97,12 @@ class RecalculationItem(models.Model):
             check(
                 "repairs_recalculationitem",
                 "made_or_not",
-                Q(after__isnull=False, error="") | Q(after__isnull=True) & ~Q(error=""),
-                "Either an evaluation was made again, or the item says why not.",
+                Q(after__isnull=False, unchanged=False, error="")
+                | Q(after__isnull=True, unchanged=True, error="")
+                | Q(after__isnull=True, unchanged=False) & ~Q(error=""),
+                "An evaluation was made again, or the item says why not.",
             ),
         ]
 
     def __str__(self) -> str:
-        return f"{self.before} → {self.after or self.error}"
+        return f"{self.before} → {self.after or self.error or 'the same'}"

@@ -9,6 +9,7 @@ from __future__ import annotations
 import datetime as dt
 import json
 import platform
+from collections.abc import Sequence
 from dataclasses import asdict
 from typing import Any
 
@@ -32,7 +33,7 @@ from fleet.models import (
 from fleet.models import FatiguePolicy as PolicyRow
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
-from fleet.services.numbers import number_next
+from fleet.services.numbers import numbers_next
 from repairs.analysis.assessment import Answer, Assessment
 from repairs.analysis.registry import COVERAGE_KEY, COVERAGE_VERSION, METHODS
 from repairs.analysis.types import Outcome, Result, Use
@@ -96,9 +97,24 @@ def evaluation_write(
     """Inside a writing: the evaluation with a row for each record it was read from."""
     w.locked(type(subject).objects.all(), pk=subject.pk)
     prepared = evaluation_prepare(subject=subject, choice=choice, as_of=as_of)
-    number = number_next(w, operator=subject.operator, kind="E")
     before = evaluation_current(subject, choice.use)
-    row = w.create(_row(subject, number, before, prepared))
+    return evaluations_keep(w, [(subject, before, prepared)])[0]
+
+
+def evaluations_keep(
+    w: Writing, made: Sequence[tuple[Subject, Evaluation | None, Prepared]]
+) -> list[Evaluation]:
+    """Inside a writing: calculations of one operator kept, each in place of another."""
+    if not made:
+        return []
+    operator = made[0][0].operator
+    numbers = numbers_next(w, operator=operator, kind="E", count=len(made))
+    rows = w.create_many(
+        [
+            _row(subject, number, before, prepared)
+            for number, (subject, before, prepared) in zip(numbers, made, strict=True)
+        ]
+    )
     w.create_many(
         [
             EvaluationInput(
@@ -107,10 +123,23 @@ def evaluation_write(
                 used_digest=_digest_of(used),
                 **{_INPUT_COLUMN[type(used)]: used},
             )
+            for row, (_, _, prepared) in zip(rows, made, strict=True)
             for position, used in enumerate(used_rows(prepared.gathered), start=1)
         ]
     )
-    return row
+    return rows
+
+
+def gives_the_same(evaluation: Evaluation, prepared: Prepared) -> bool:
+    """Whether a calculation made again says, to the bit, what the kept one says."""
+    again = _texts(prepared)
+    same = all(getattr(evaluation, name) == text for name, text in again.items())
+    used = [_digest_of(row) for row in used_rows(prepared.gathered)]
+    return (
+        same
+        and evaluation.methods == prepared.assessment.versions
+        and used == list(evaluation.input_rows.values_list("used_digest", flat=True))
+    )
 
 
 def evaluation_remake(
@@ -156,14 +185,7 @@ def _digest_of(row: UsedRow) -> str:
 def _row(
     subject: Subject, number: str, before: Evaluation | None, prepared: Prepared
 ) -> Evaluation:
-    result = prepared.result
-    texts = {
-        "inputs": canonical(prepared.inputs.as_data()),
-        "outputs": canonical(outputs_of(prepared.assessment)),
-        "applicability": canonical([asdict(test) for test in result.applicability]),
-        "note": canonical([asdict(line) for line in result.note]),
-        "libraries": canonical(_libraries()),
-    }
+    result, texts = prepared.result, _texts(prepared)
     held = "finding" if isinstance(subject, Finding) else "repair"
     return Evaluation(
         operator=subject.operator,
@@ -184,6 +206,18 @@ def _row(
         **texts,
         **(_numbers(result) if result.outcome is Outcome.COMPUTED else {}),
     )
+
+
+def _texts(prepared: Prepared) -> dict[str, str]:
+    """The frozen texts of an evaluation."""
+    result = prepared.result
+    return {
+        "inputs": canonical(prepared.inputs.as_data()),
+        "outputs": canonical(outputs_of(prepared.assessment)),
+        "applicability": canonical([asdict(test) for test in result.applicability]),
+        "note": canonical([asdict(line) for line in result.note]),
+        "libraries": canonical(_libraries()),
+    }
 
 
 def _numbers(result: Result) -> dict[str, object]:
