@@ -45,9 +45,9 @@ AT_ONE = Sourced(
     Grade.QUOTED,
 )
 NOT_HALF = (
-    "Failure at D = {value:g} is a convention, not a chance of one half: with a "
-    "ground-air-ground cycle tests have failed at sums well below 1, and the order of "
-    "the cycles does not count here."
+    "Failure at D = {value:g} is a convention, not a chance of one half: public texts "
+    "give sums of 0.33 to 3 at failure, less than 1 above all with a ground-air-ground "
+    "cycle; the order of the cycles does not count here."
 )
 SHAPES = (
     "Cycles of a flight need largest stress, ratio and count of one length, at least "

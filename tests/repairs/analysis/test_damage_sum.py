@@ -10,7 +10,7 @@ import math
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from repairs.analysis.errors import InputError, OutOfRangeError
@@ -163,6 +163,7 @@ def test_a_continued_curve_is_never_longer(kt, stress, ratio, option, life):
     assert np.all(np.isfinite(found))
 
 
+@settings(max_examples=30)
 @given(
     st.lists(
         st.tuples(st.floats(5, 45), st.floats(-1, 0.7), st.floats(0, 100)),

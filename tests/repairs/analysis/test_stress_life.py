@@ -10,7 +10,7 @@ import math
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from repairs.analysis.errors import AnalysisError, OutOfRangeError
@@ -184,6 +184,7 @@ def test_stress_linear_in_kt_is_the_worse_rule():
     assert (min(straight), max(straight)) == pytest.approx((1.17, 1.40), abs=0.006)
 
 
+@settings(max_examples=30)
 @given(
     st.floats(1.0, 5.0),
     st.lists(st.tuples(st.floats(5, 45), st.floats(-1, 0.6)), min_size=1, max_size=8),
