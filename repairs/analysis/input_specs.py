@@ -175,6 +175,7 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
     ),
     Where.STATED: (
         ("load_transfer", "share of the strip's load that the fastener takes", "-"),
+        ("bearing_strength", "bearing ultimate strength Fbru at this e/D", "MPa"),
         ("hole_pitch", "pitch of the row of holes", "mm"),
         ("fastener_pitch", "fastener pitch along a stiffener", "mm"),
         ("fastener_diameter", "fastener diameter", "mm"),

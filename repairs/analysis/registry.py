@@ -7,7 +7,7 @@ from typing import Protocol
 
 from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.methods import blend_out, hole, skin_crack
+from repairs.analysis.methods import blend_out, hole, loaded_hole, skin_crack
 from repairs.analysis.note import Note
 from repairs.analysis.types import Applicability, Outcome, Result, Use
 
@@ -79,7 +79,8 @@ METHODS: dict[str, Method] = {
             skin_crack,
         ),
         Method("corrosion-blend-out", 1, "Corrosion blended out", blend_out),
-        Method("open-or-trimmed-hole", 1, "Open or trimmed hole", hole),
+        Method("open-or-trimmed-hole", 2, "Open or trimmed hole", hole),
+        Method("loaded-fastener-hole", 1, "Loaded fastener hole", loaded_hole),
     )
 }
 
@@ -95,10 +96,10 @@ COVERAGE: tuple[Coverage, ...] = (
     ),
     Coverage(
         ("crack",),
-        (("open-or-trimmed-hole",),),
+        (("open-or-trimmed-hole", "loaded-fastener-hole"),),
         (("crack_origin", ("fastener_hole",)),),
     ),
-    Coverage(("hole",), (("open-or-trimmed-hole",),)),
+    Coverage(("hole",), (("open-or-trimmed-hole", "loaded-fastener-hole"),)),
     Coverage(
         ("corrosion", "scratch", "gouge", "nick", "wear"),
         (("corrosion-blend-out",),),

@@ -42,6 +42,7 @@ from repairs.services.evaluations import (
 from repairs.services.measuring import Measuring, measurement_record
 from repairs.services.repair_entry import Answered, Data, RepairEntry
 from repairs.services.repairs import repair_record
+from repairs.services.stated import Document, input_state
 from tests.factories import FIXTURES, NOW, TODAY, program
 from tests.record_rows import FOUND, World, assessed, found, world_make
 
@@ -175,7 +176,7 @@ def test_near_a_window_no_method_applies(world):
     assert [t for t in tests if t["met"] is False]
 
 
-def test_a_crack_at_a_lap_joint_hole_is_refused(world):
+def test_a_lap_joint_hole_crack_is_refused_until_its_load_transfer_is_stated(world):
     finding = cracked(
         world,
         place_entered="STA 630, S-12R",
@@ -183,16 +184,36 @@ def test_a_crack_at_a_lap_joint_hole_is_refused(world):
             Typed("length_mm", "0.30 ± 0.02 in"),
             Typed("direction", "longitudinal"),
             Typed("origin", "fastener_hole"),
+            Typed("through", "yes"),
+            Typed("crack_count", "1"),
             Typed("edge_crack_length_mm", "0.10 ± 0.02 in"),
             Typed("hole_diameter_mm", "0.19 in"),
+            Typed("edge_distance_mm", "0.5 in"),
+            Typed("strip_width_mm", "1.0 in"),
             Typed("hole_load", "loaded"),
             Typed("both_sides", "no"),
         ),
     )
     row = evaluated(world, finding)
-    assert row.method == "open-or-trimmed-hole"
-    assert row.outcome == "not_covered"
-    assert "bearing load" in json.loads(row.outputs)["warnings"][0]
+    assert row.method == "loaded-fastener-hole"
+    assert row.outcome == "missing_input"
+    assert row.residual_strength_mpa is None
+    missing = {m["name"]: m for m in json.loads(row.outputs)["missing"]}
+    assert set(missing) == {"load_transfer"}
+    assert "stated input" in missing["load_transfer"]["where"]
+    input_state(
+        subject=finding,
+        name="load_transfer",
+        entered="0.35",
+        document=Document("JOINT-REPORT-7", "12", "A"),
+        actor=world.engineer,
+        at=LATER,
+        on=TODAY,
+    )
+    row = evaluated(world, finding)
+    assert row.outcome == "computed", json.loads(row.outputs)["warnings"]
+    assert row.life_base == "from finding"
+    assert "Bearing" in row.barred_reason
 
 
 def test_a_dent_has_no_method(world):

@@ -222,11 +222,19 @@ def ultimate_kept(margin: float, not_checked: tuple[str, ...]) -> UltimateKept:
 
 
 def with_found_lives(
-    inputs: Inputs, note: Note, path: CrackPath, length: float, draft: Result
+    inputs: Inputs,
+    note: Note,
+    path: CrackPath,
+    length: float,
+    draft: Result,
+    cycles_before: float = 0.0,
 ) -> Result:
-    """Fill lives to where ultimate and residual are lost; never an interval."""
+    """Fill lives to where ultimate and residual are lost; never an interval.
+
+    `cycles_before` are those until the crack is through at `length` [cycles].
+    """
     note.warn(intervals.FOUND_DAMAGE_LIFE)
-    start = Start(length)
+    start = Start(length, cycles_before)
     lives: list[Life] = []
     for requirement in (path.loads.ultimate, path.loads.residual):
         grown = grow(inputs, note, path, start, requirement)

@@ -8,10 +8,18 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from repairs.analysis.methods.hole import hole_kt
 from repairs.analysis.registry import evaluate
+from repairs.analysis.stress_life.severity import hole_kt
 from repairs.analysis.surroundings import Obstacle, ObstacleKind
-from repairs.analysis.types import KSI, Outcome, Use
+from repairs.analysis.types import (
+    INCH,
+    KSI,
+    KSI_ROOT_INCH,
+    ROOT_1000,
+    Outcome,
+    Use,
+)
+from tests.outside import outside
 from tests.repairs.analysis.cases import (
     CURVES,
     FTU,
@@ -31,6 +39,7 @@ HOOP = 8.5 * PSI * RADIUS / THICKNESS
 CRACKED = {
     "hole_cracked": said("yes"),
     "both_sides": said("no"),
+    "crack_direction": said("longitudinal"),
     "edge_crack_length": recorded(5.0, "mm"),
     "edge_crack_uncertainty": recorded(1.0, "mm"),
 }
@@ -91,18 +100,97 @@ def test_a_known_crack_without_its_size_is_incomplete():
         "edge_crack_length",
         "edge_crack_uncertainty",
         "both_sides",
+        "crack_direction",
     }
 
 
-def test_cracks_on_both_sides_are_not_covered():
-    result = hole(Use.FOUND_DAMAGE, **{**CRACKED, "both_sides": said("yes")})
+def found(**changes):
+    return hole(Use.FOUND_DAMAGE, **{**CRACKED, **changes})
+
+
+def test_a_known_crack_needs_no_stress_life():
+    lacking = dict.fromkeys(("stress_life", "skin_cycles", "life_base", "clad"))
+    assert found(**lacking).outcome is Outcome.COMPUTED
+
+
+def test_two_cracks_are_weaker_and_shorter_lived_than_one():
+    one, two = found(), found(both_sides=said("yes"))
+    assert two.outcome is Outcome.COMPUTED
+    assert two.residual_strength_mpa < one.residual_strength_mpa
+    assert two.life_cycles < one.life_cycles
+    assert two.threshold is two.repeat is None
+
+
+@pytest.mark.parametrize(
+    ("both", "published", "tolerance"),
+    [("yes", 7.63, 0.025), ("no", 7.47, 0.0007)],
+    ids=["two", "one"],
+)
+def test_k_at_the_hole_is_that_of_the_published_worksheet(both, published, tolerance):
+    # Two cracks: the worksheet's rational fit; Newman's polynomial is used here.
+    inch = {"hole_diameter": 0.375, "strip_width": 5.0, "edge_distance": 2.5,
+            "thickness": 0.125, "edge_crack_length": 0.08}  # fmt: skip
+    flat = {name: recorded(value * INCH, "mm") for name, value in inch.items()}
+    result = found(
+        **flat,
+        pressurised=said("no"),
+        both_sides=said(both),
+        edge_crack_uncertainty=recorded(0.0, "mm"),
+        limit_flight_stress=recorded(8 * KSI, "MPa"),
+        cycle_max_stress=recorded(8 * KSI, "MPa"),
+        cycle_ratio=recorded(0.0, "-"),
+    )
+    k = next(line.value for line in result.note if line.symbol == "K_max")
+    outside(
+        "Cracks at an open hole, whole method",
+        source="Public university worksheet on cracks at a hole",
+        given=f"D 0.375, W 5, t 0.125, c 0.08 in, 8 ksi, cracks on both sides: {both}",
+        published=published,
+        computed=k * ROOT_1000 / KSI_ROOT_INCH,
+        unit="ksi√in",
+        rel=tolerance,
+    )
+
+
+def test_only_a_longitudinal_crack_is_pulled_by_pressure_alone():
+    result = found(crack_direction=said("circumferential"))
     assert result.outcome is Outcome.NOT_COVERED
+    assert result.governing == "direction of the crack"
 
 
-def test_a_loaded_hole_is_refused_because_its_bearing_load_is_not_recorded():
+def test_a_corner_crack_lives_longer_than_a_through_crack_of_its_length():
+    sizes = {
+        "edge_crack_length": recorded(1.2, "mm"),
+        "crack_depth": recorded(0.6, "mm"),
+        "damage_depth_uncertainty": recorded(0.1, "mm"),
+    }
+    corner = found(**sizes, crack_through=said("no"), thickness=recorded(3.2, "mm"))
+    through = found(**sizes, crack_through=said("yes"), thickness=recorded(3.2, "mm"))
+    assert any(line.symbol == "N_bt" for line in corner.note)
+    assert corner.life_cycles > through.life_cycles
+    assert corner.residual_strength_mpa == through.residual_strength_mpa
+
+
+def test_a_corner_crack_without_its_depth_is_incomplete():
+    result = found(crack_through=said("no"))
+    assert "crack_depth" in [m.name for m in result.missing]
+
+
+def test_a_corner_flaw_outside_its_solution_is_grown_as_through():
+    wide = found(
+        crack_through=said("no"),
+        edge_crack_length=recorded(6.0, "mm"),
+        crack_depth=recorded(0.5, "mm"),
+        damage_depth_uncertainty=recorded(0.0, "mm"),
+    )
+    assert wide.outcome is Outcome.COMPUTED
+    assert any("as a through crack" in w for w in wide.warnings)
+
+
+def test_a_loaded_hole_is_another_method():
     result = hole(hole_load=said("loaded"))
     assert result.outcome is Outcome.NOT_COVERED
-    assert "bearing load" in result.warnings[0]
+    assert "load of a fastener" in result.warnings[0]
     assert result.life_cycles is None
 
 
