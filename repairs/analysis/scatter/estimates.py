@@ -3,7 +3,8 @@ r"""Lives estimated from failures and suspensions: lognormal and two-parameter W
 Both are of one family: with y = ln t, :math:`y = \mu + \sigma z`, z normal (lognormal
 life) or smallest extreme value (Weibull, :math:`\eta = e^\mu`,
 :math:`\beta = 1/\sigma`). Maximum likelihood; a suspension (an item taken out, or still
-flying, uncracked) counts by its survival, and leaving it out shortens the life found.
+flying, uncracked) counts by its survival, and leaving it out shortens the life found. A
+crack found at an inspection counts by the chance that it began since the one before.
 
 References
 ----------
@@ -15,46 +16,39 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from enum import StrEnum
 
 import numpy as np
-from numpy.typing import NDArray
 from scipy.optimize import brentq, minimize, minimize_scalar
-from scipy.special import log_ndtr
 from scipy.stats import chi2
 
-from repairs.analysis.errors import AnalysisError, InputError, within
+from repairs.analysis.errors import AnalysisError, within
 from repairs.analysis.scatter.factors import quantile
+from repairs.analysis.scatter.likelihood import (
+    Array,
+    LifeModel,
+    Lives,
+    log_likelihood,
+    log_survival,
+    slopes,
+)
 
-Array = NDArray[np.float64]
+__all__ = [
+    "LifeEstimate",
+    "LifeModel",
+    "Lives",
+    "fit",
+    "known_shape_lower",
+    "lower_life",
+    "normal_lower_life",
+]
+
 TOO_FEW = (
     "{failures} failures are too few to fit two parameters; at least 3, not all alike, "
     "are needed. With a shape known beforehand use the bound for a known shape."
 )
-NOT_A_LIFE = "A life reads {life!r}; a positive finite number is expected."
 NOT_FITTED = "The likelihood has no maximum that could be found: {message}"
 SPREAD = math.log(1e4)
 """Widest search about the estimate, in ln of life."""
-
-
-class LifeModel(StrEnum):
-    """The distribution of lives."""
-
-    LOGNORMAL = "lognormal"
-    WEIBULL = "weibull"
-
-
-@dataclass(frozen=True, slots=True)
-class Lives:
-    """Lives at failure, and lives of items suspended without failure; one unit."""
-
-    failures: tuple[float, ...]
-    suspensions: tuple[float, ...] = ()
-
-    def __post_init__(self) -> None:
-        for life in (*self.failures, *self.suspensions):
-            if not (math.isfinite(life) and life > 0):
-                raise InputError(NOT_A_LIFE.format(life=life))
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,7 +94,7 @@ class LifeEstimate:
     def survival(self, life: float) -> float:
         """Return the share of items that survives a life [-]."""
         z = np.array([(math.log(life) - self.location) / self.scale])
-        return math.exp(float(_log_survival(self.model, z)[0]))
+        return math.exp(float(log_survival(self.model, z)[0]))
 
 
 def fit(lives: Lives, model: LifeModel) -> LifeEstimate:
@@ -109,7 +103,7 @@ def fit(lives: Lives, model: LifeModel) -> LifeEstimate:
     Parameters
     ----------
     lives
-        Failures and suspensions [cycles, or any one unit].
+        Failures, suspensions, between two looks [cycles, or any one unit].
     model
         Lognormal or Weibull.
 
@@ -120,40 +114,42 @@ def fit(lives: Lives, model: LifeModel) -> LifeEstimate:
 
     Notes
     -----
-    Range: at least 3 failures, not all alike. Maximum likelihood is biased in small
-    samples: Weibull's shape comes out high, by about 1.4/n for n failures without
-    suspensions.
+    Range: at least 3 failures or cracks found, not all alike. Maximum likelihood is
+    biased in small samples: Weibull's shape comes out high, by about 1.4/n for n
+    failures without suspensions.
 
     References
     ----------
     .. [1] See the module.
     """
-    count = len(lives.failures)
-    if count < 3 or len(set(lives.failures)) < 2:
-        raise AnalysisError(TOO_FEW.format(failures=count))
-    failed = np.log(np.array(lives.failures))
-    start = np.array([failed.mean(), math.log(failed.std())])
+    middles = [math.sqrt(max(low, high / 4) * high) for low, high in lives.between]
+    known = [*lives.failures, *middles]
+    if len(known) < 3 or len({*lives.failures, *lives.between}) < 2:
+        raise AnalysisError(TOO_FEW.format(failures=len(known)))
+    failed = np.log(np.array(known))
+    start = np.array([failed.mean(), math.log(max(float(failed.std()), 0.1))])
 
     def against(x: Array) -> tuple[float, Array]:
-        slope, _ = _slopes(lives, model, x)
-        return -_likelihood(lives, model, float(x[0]), math.exp(x[1])), -slope
+        slope, _ = slopes(lives, model, x)
+        return -log_likelihood(lives, model, float(x[0]), math.exp(x[1])), -slope
 
     def curvature(x: Array) -> Array:
-        return -_slopes(lives, model, x)[1]
+        return -slopes(lives, model, x)[1]
 
     found = minimize(
         against, start, jac=True, hess=curvature, method="trust-exact", tol=1e-10
     )
     location, scale = float(found.x[0]), math.exp(float(found.x[1]))
-    slope, curve = _slopes(lives, model, found.x)
-    if not float(np.abs(slope).max()) < 1e-6 * count:
+    slope, curve = slopes(lives, model, found.x)
+    if not float(np.abs(slope).max()) < 1e-6 * len(known):
         raise AnalysisError(NOT_FITTED.format(message=found.message))
     (a, b), (c, d) = np.linalg.inv(-curve)
     return LifeEstimate(
         model,
         location,
         scale,
-        _likelihood(lives, model, location, scale) - float(failed.sum()),
+        log_likelihood(lives, model, location, scale)
+        - float(np.log(np.array(lives.failures)).sum()),
         ((float(a), float(b)), (float(c), float(d))),
         lives,
     )
@@ -192,12 +188,12 @@ def lower_life(estimate: LifeEstimate, survival: float, confidence: float) -> fl
     allowed = float(chi2.ppf(2 * confidence - 1, 1)) / 2
     standard = _standard(estimate.model, survival)
     lives, model = estimate.lives, estimate.model
-    best = _likelihood(lives, model, estimate.location, estimate.scale)
+    best = log_likelihood(lives, model, estimate.location, estimate.scale)
 
     def shortfall(log_life: float) -> float:
         def at(log_scale: float) -> float:
             scale = math.exp(log_scale)
-            return -_likelihood(lives, model, log_life - scale * standard, scale)
+            return -log_likelihood(lives, model, log_life - scale * standard, scale)
 
         centre = math.log(estimate.scale)
         found = minimize_scalar(
@@ -248,7 +244,8 @@ def known_shape_lower(lives: Lives, shape: float, confidence: float) -> float:
     Parameters
     ----------
     lives
-        Failures (r of them, none is allowed) and suspensions.
+        Failures (r of them, none is allowed) and suspensions; a crack found between two
+        looks counts as a failure at the first, which is safe.
     shape
         Weibull's beta, from earlier failures of such parts [-].
     confidence
@@ -269,11 +266,13 @@ def known_shape_lower(lives: Lives, shape: float, confidence: float) -> float:
     """
     within("Weibull shape", shape, 0.5, 20, "lives of structure")
     within("Confidence", confidence, 0.501, 0.9999, "a lower bound")
-    every = np.array((*lives.failures, *lives.suspensions))
+    first = (low for low, _ in lives.between)
+    every = np.array((*lives.failures, *lives.suspensions, *first))
+    failed = len(lives.failures) + len(lives.between)
     if every.size == 0:
         raise AnalysisError(TOO_FEW.format(failures=0))
     total = float((every**shape).sum())
-    bound = float(chi2.ppf(confidence, 2 * len(lives.failures) + 2))
+    bound = float(chi2.ppf(confidence, 2 * failed + 2))
     return float((2 * total / bound) ** (1 / shape))
 
 
@@ -283,47 +282,3 @@ def _standard(model: LifeModel, survival: float) -> float:
     if model is LifeModel.LOGNORMAL:
         return -quantile(survival)
     return math.log(-math.log(survival))
-
-
-def _log_survival(model: LifeModel, z: Array) -> Array:
-    if model is LifeModel.LOGNORMAL:
-        return np.asarray(log_ndtr(-z), dtype=np.float64)
-    return -np.exp(z)
-
-
-def _standardised(lives: Lives, location: float, scale: float) -> tuple[Array, Array]:
-    failed = np.log(np.array(lives.failures))
-    suspended = np.log(np.array(lives.suspensions, dtype=np.float64))
-    return (failed - location) / scale, (suspended - location) / scale
-
-
-def _likelihood(lives: Lives, model: LifeModel, location: float, scale: float) -> float:
-    """Return the log-likelihood of ln life."""
-    f, s = _standardised(lives, location, scale)
-    if model is LifeModel.LOGNORMAL:
-        density = -(f**2) / 2 - math.log(2 * math.pi) / 2
-    else:
-        density = f - np.exp(f)
-    total = float(density.sum()) - f.size * math.log(scale)
-    return total + float(_log_survival(model, s).sum())
-
-
-def _slopes(lives: Lives, model: LifeModel, x: Array) -> tuple[Array, Array]:
-    """Return first and second derivatives of the log-likelihood by (mu, ln sigma)."""
-    scale = math.exp(x[1])
-    f, s = _standardised(lives, x[0], scale)
-    if model is LifeModel.LOGNORMAL:
-        hazard = np.exp(-(s**2) / 2 - math.log(2 * math.pi) / 2 - log_ndtr(-s))
-        first = np.concatenate([-f, -hazard])
-        second = np.concatenate([-np.ones_like(f), -hazard * (hazard - s)])
-    else:
-        first = np.concatenate([1 - np.exp(f), -np.exp(s)])
-        second = np.concatenate([-np.exp(f), -np.exp(s)])
-    z = np.concatenate([f, s])
-    slope = np.array([-first.sum() / scale, -f.size - (first * z).sum()])
-    mixed = (second * z + first).sum() / scale
-    curve = [
-        [second.sum() / scale**2, mixed],
-        [mixed, (second * z**2 + first * z).sum()],
-    ]
-    return slope, np.array(curve)
