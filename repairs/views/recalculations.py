@@ -13,7 +13,12 @@ from django.views.decorators.http import (
     require_safe,
 )
 
-from fleet.access import may_somewhere, require, visible_or_404
+from fleet.access import (
+    may_somewhere,
+    require,
+    require_somewhere,
+    visible_or_404,
+)
 from fleet.clock import now, today
 from fleet.tables import csv_response
 from fleet.views.aircraft import FORM_METHODS
@@ -43,6 +48,8 @@ HERE = dt.timedelta(seconds=5)
 @require_http_methods(FORM_METHODS)
 def recalculation_list(request: Request) -> HttpResponse:
     """What is stale, the runs there were, and a form to start one."""
+    if request.method == "POST":
+        require_somewhere(request.user, ACTION)
     form = RecalculationForm(request.POST or None, user=request.user)
 
     def start() -> Recalculation:
