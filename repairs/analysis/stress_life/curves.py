@@ -20,7 +20,9 @@ References
 
 from __future__ import annotations
 
+import functools
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -34,8 +36,9 @@ NO_FINITE_LIFE = "no finite life on this curve; not unlimited life"
 EMPTY_FAMILY = "A stress-life family needs at least one curve, each with its own Kt."
 LONGEST_LOG_LIFE = 30.0
 """Bracket of the inversion: there a curve has reached its last term to 1e-6."""
-HALVINGS = 52
-"""Of that bracket, for many cycles at once: log life to 1e-14."""
+HALVINGS = 44
+"""Of that bracket, for many cycles at once: log life to 2e-12."""
+LN_10 = math.log(10)
 RATIO_OF_CURVE = "the stress ratios tested on the curve Kt {kt:g}, {source}"
 OTHER_CURVE = "Choose a curve tested at this stress ratio."
 
@@ -112,12 +115,15 @@ class StressLifeCurve:
         found[above] = 10 ** (self.a1 - self.a2 * np.log10(excess[above]))
         return found
 
-    def maxima(self, log_life: Array | float, ratio: Array) -> Array:
-        """Return Smax [MPa] of many cycles at lives of 10**log_life."""
+    def scale(self, ratio: Array) -> Array:
+        """Return Smax [MPa] of one printed unit of Seq, for many stress ratios."""
         self._check_ratios(ratio)
-        excess = 10 ** ((self.a1 - np.asarray(log_life)) / self.a2)
-        printed = (excess + self.a4) / (1 - ratio) ** self.a3
-        return np.asarray(printed * self.stress_unit_mpa, dtype=np.float64)
+        return np.asarray(self.stress_unit_mpa * (1 - ratio) ** -self.a3)
+
+    def maxima(self, log_life: Array | float, scale: Array) -> Array:
+        """Return Smax [MPa] at lives of 10**log_life; `scale` of the stress ratios."""
+        excess = np.exp((self.a1 - np.asarray(log_life)) * (LN_10 / self.a2))
+        return np.asarray((excess + self.a4) * scale)
 
     def _check_ratios(self, ratio: Array) -> None:
         for extreme in (float(np.min(ratio)), float(np.max(ratio))):
@@ -255,11 +261,12 @@ class StressLifeFamily:
         if below is above:
             alike = [c.lives(maximum, ratio) for c in self.curves if c.kt <= kt]
             return np.asarray(np.maximum(np.min(alike, axis=0), 1.0))
+        stress = self._between(kt, ratio)
         short, long = np.zeros(maximum.shape), np.full(maximum.shape, LONGEST_LOG_LIFE)
-        never = self.maxima(kt, LONGEST_LOG_LIFE, ratio) >= maximum
+        never = stress(LONGEST_LOG_LIFE) >= maximum
         for _ in range(HALVINGS):
             middle = (short + long) / 2
-            survives = self.maxima(kt, middle, ratio) >= maximum
+            survives = stress(middle) >= maximum
             short = np.where(survives, middle, short)
             long = np.where(survives, long, middle)
         return np.where(never, np.inf, 10**short)
@@ -285,11 +292,21 @@ class StressLifeFamily:
         -----
         Range of `max_stress`.
         """
+        return self._between(kt, ratio)(log_life)
+
+    def _between(self, kt: float, ratio: Array) -> Callable[[Array | float], Array]:
+        """Return Smax [MPa] of many cycles as a function of log life."""
         below, above = self.bracket(kt)
-        blunter = [c.maxima(log_life, ratio) for c in self.curves if c.kt <= below.kt]
-        low = np.min(blunter, axis=0)
-        if below is above:
-            return np.asarray(low, dtype=np.float64)
-        high = np.minimum(low, above.maxima(log_life, ratio))
-        share = math.log(kt / below.kt) / math.log(above.kt / below.kt)
-        return np.asarray(low * (high / low) ** share, dtype=np.float64)
+        blunter = [(c, c.scale(ratio)) for c in self.curves if c.kt <= below.kt]
+        scale = above.scale(ratio)
+
+        def stress(log_life: Array | float) -> Array:
+            each = (curve.maxima(log_life, own) for curve, own in blunter)
+            low = functools.reduce(np.minimum, each)
+            if below is above:
+                return low
+            high = np.minimum(low, above.maxima(log_life, scale))
+            share = math.log(kt / below.kt) / math.log(above.kt / below.kt)
+            return np.asarray(low * (high / low) ** share)
+
+        return stress
