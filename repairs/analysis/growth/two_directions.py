@@ -45,6 +45,9 @@ FLAW_BELOW_THRESHOLD = (
     "A threshold is for long cracks: a part-through flaw grows without one. Leave the "
     "threshold out."
 )
+NO_FLAW = (
+    "The path has no part-through factors. A through crack's life is `growth_cycles`."
+)
 THROUGH_POINTS = 60
 FIRST_STEP = 1e-9
 """First step in ln a, on the start's own slope: factors may jump a little at a/c = 1,
@@ -207,19 +210,30 @@ def grow_part_through(
 class FlawPath:
     """A flaw's whole path: part-through factors, then the through crack's F(c).
 
-    `thickness` and the last length `end` in mm.
+    `thickness` and the last length `end` in mm. No part-through factors: a through
+    crack from the start.
     """
 
-    part: TwoFactors
+    part: TwoFactors | None
     through: Factor
     thickness: float
     end: float
 
+    def part_intensities(self, length: float, depth: float) -> tuple[float, float]:
+        """Return K over S of the length and the depth tip [sqrt(mm)]."""
+        assert self.part is not None, "a path that begins part-through"
+        at_length, at_depth = self.part(depth, length)
+        root = math.sqrt(math.pi * depth)
+        return at_length * root, at_depth * root
+
+    def through_intensity(self, length: float, depth: float = 0.0) -> tuple[float]:
+        """Return K over S of the through crack [sqrt(mm)]."""
+        return (self.through(length) * math.sqrt(math.pi * length),)
+
     def jump(self, length: float) -> tuple[float, float]:
         """Return K over S of the surface tip before and after break-through."""
-        before, _ = self.part(self.thickness, length)
-        after = self.through(length) * math.sqrt(math.pi * length)
-        return before * math.sqrt(math.pi * self.thickness), after
+        before, _ = self.part_intensities(length, self.thickness)
+        return before, self.through_intensity(length)[0]
 
 
 def grow_to_end(
@@ -251,6 +265,8 @@ def grow_to_end(
     ----------
     .. [1] USAF Damage Tolerant Design Handbook, 11.3: two-point growth.
     """
+    if path.part is None:
+        raise AnalysisError(NO_FLAW)
     grown = grow_part_through(law, path.part, cycle, start, path.thickness)
     through = GrowthTable(law, path.through, cycle, grown.length, path.end)
     lengths = np.geomspace(grown.length, path.end, THROUGH_POINTS)

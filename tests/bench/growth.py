@@ -1,0 +1,234 @@
+"""Crack growth: cycle by cycle beside C, per flight beside cycle by cycle, many lives.
+
+`python -m tests.bench.growth`; needs a C compiler, no database. Every ratio is of one
+run on one machine; times are the best of several.
+"""
+
+from __future__ import annotations
+
+import ctypes
+import subprocess
+import sys
+import tempfile
+import time
+from collections.abc import Callable
+from pathlib import Path
+
+import numpy as np
+
+from repairs.analysis.growth import blocks, by_cycle, retardation
+from repairs.analysis.growth import separable as gs
+from repairs.analysis.growth import two_directions as td
+from repairs.analysis.growth.laws import StressCycle, WalkerLaw
+from repairs.analysis.growth.plastic_zone import StressState
+from repairs.analysis.intensity.holes import hole_single
+from repairs.analysis.intensity.through import centre_crack_secant
+from repairs.analysis.types import (
+    ROOT_1000,
+    EdgeLength,
+    Grade,
+    GrossStress,
+    HalfLength,
+    Reference,
+)
+
+SOURCE = Path(__file__).parent / "kernels" / "growth.c"
+INVENTED = Reference("invented for the measurement", Grade.RECORDED)
+LAW = WalkerLaw.from_ksi_root_inch(1.67e-9, 3.273, 0.618, INVENTED)
+THICKNESS, RADIUS, WIDTH, LAST = 6.35, 3.175, 500.0, 60.0
+FLAW = (1.27, 1.27)
+MEAN_STRESS = 50.0
+LEVELS = (1.6, 1.5, 1.3, 1.15, 0.995, 0.84, 0.685, 0.53, 0.375, 0.222)
+PER_BLOCK = (1, 2, 5, 18, 52, 152, 800, 4_170, 34_800, 358_665)
+FLIGHTS, SEED = 4_000, 20261201
+FINDINGS = 10_000
+RUNS = 3
+NEW_PROCESS = (
+    "import time; t = time.perf_counter(); "
+    "from tests.bench import growth; s = time.perf_counter(); "
+    "growth.first_run(); print(s - t, time.perf_counter() - s)"
+)
+
+
+def synthetic_block() -> blocks.CycleBlock:
+    """The wing's gust cycles and one ground cycle a flight, in one seeded order."""
+    levels = np.repeat(LEVELS, PER_BLOCK)
+    draw = np.random.default_rng(SEED)
+    peaks, valleys = draw.permutation(levels), draw.permutation(levels)
+    maximum, minimum = MEAN_STRESS * (1 + peaks), MEAN_STRESS * (1 - valleys)
+    ground = np.linspace(0, len(levels) - 1, FLIGHTS, dtype=int)
+    minimum[ground] = -0.5 * MEAN_STRESS
+    return blocks.CycleBlock(maximum, minimum / maximum, FLIGHTS)
+
+
+def path() -> td.FlawPath:
+    """A corner crack at an open hole, then a through crack to `LAST` mm."""
+    return td.FlawPath(
+        td.corner_at_hole(THICKNESS, RADIUS, WIDTH / 2),
+        lambda c: hole_single(EdgeLength(c), 2 * RADIUS, WIDTH),
+        THICKNESS,
+        LAST,
+    )
+
+
+def models() -> dict[str, retardation.Retardation | None]:
+    return {
+        "no retardation": None,
+        "Wheeler": retardation.Wheeler(1.43, 320.0, StressState.PLANE_STRESS, INVENTED),
+        "Willenborg": retardation.Willenborg(
+            3 * ROOT_1000, 2.5, 320.0, StressState.PLANE_STRESS, INVENTED
+        ),
+    }
+
+
+def compiled_c(folder: Path) -> retardation.March:
+    """The same loop in C, called as the program calls its own."""
+    library = folder / "growth.so"
+    command = ["cc", "-O2", "-shared", "-fPIC", str(SOURCE), "-o", str(library), "-lm"]
+    subprocess.run(command, check=True)
+    function = ctypes.CDLL(str(library)).march
+    function.restype = ctypes.c_int64
+    function.argtypes = [ctypes.c_void_p] * 7 + [ctypes.c_int64] * 4
+
+    def march(*given: object) -> int:
+        arrays, numbers = given[:7], given[7:]
+        pointers = (array.ctypes.data for array in arrays)  # type: ignore[attr-defined]
+        return int(function(*pointers, *numbers, len(arrays[0])))  # type: ignore[arg-type]
+
+    return march
+
+
+def run_with(
+    march: retardation.March,
+    block: blocks.CycleBlock,
+    model: retardation.Retardation | None,
+) -> tuple[by_cycle.SequenceGrowth, float, float]:
+    """One life: the growth, seconds of the whole, seconds inside the loop."""
+    inside = 0.0
+
+    def timed(*given: object) -> int:
+        nonlocal inside
+        began = time.perf_counter()
+        reason = march(*given)
+        inside += time.perf_counter() - began
+        return int(reason)
+
+    following = by_cycle.Following(10**7)
+    began = time.perf_counter()
+    run = by_cycle._Run(LAW, block, path(), following, model, timed)
+    grown = run.grown(FLAW)
+    return grown, time.perf_counter() - began, inside
+
+
+def best(job: Callable[[], float], runs: int = RUNS) -> float:
+    return min(job() for _ in range(runs))
+
+
+def timed(job: Callable[[], object]) -> float:
+    began = time.perf_counter()
+    job()
+    return time.perf_counter() - began
+
+
+def first_run() -> None:
+    """The first life of a process, over one flight's cycles."""
+    block = blocks.CycleBlock(np.full(100, 100.0), np.zeros(100), 1)
+    by_cycle.life_by_cycle(LAW, block, path(), FLAW, by_cycle.Following(1))
+
+
+def against_c(block: blocks.CycleBlock) -> float:
+    """Print each model beside C; return seconds of a life without retardation."""
+    ours = retardation.compiled_march()
+    plain = 0.0
+    with tempfile.TemporaryDirectory() as folder:
+        theirs = compiled_c(Path(folder))
+        for name, model in models().items():
+            mine = [run_with(ours, block, model) for _ in range(RUNS)]
+            their = [run_with(theirs, block, model) for _ in range(RUNS)]
+            grown, reference = mine[0][0], their[0][0]
+            assert (grown.cycles, grown.end) == (reference.cycles, reference.end)
+            whole, loop = min(r[1] for r in mine), min(r[2] for r in mine)
+            in_c = min(r[2] for r in their)
+            plain = plain or whole
+            print(
+                f"{name:<16}{grown.cycles:>11,} cycles{grown.flights:>9,} flights "
+                f"{whole:>7.3f} s whole, loop {loop:.3f} s, in C {in_c:.3f} s: "
+                f"{loop / in_c:.2f} times C"
+            )
+    return plain
+
+
+def per_flight(block: blocks.CycleBlock, by_cycles: float) -> None:
+    """Print the per-flight form beside the loop."""
+    life = by_cycle.life_by_cycle(
+        LAW, block, path(), FLAW, by_cycle.Following(10**7)
+    ).unretarded
+    flights = life.cycles / block.cycles * block.flights
+    table = blocks.CycleTable.of(block)
+    once = best(lambda: timed(lambda: blocks.CycleTable.of(block)))
+
+    def separable() -> td.ToEnd:
+        cycle = blocks.equivalent_cycle(LAW, table)
+        return td.grow_to_end(LAW, path(), cycle, FLAW)
+
+    took = best(lambda: timed(separable), 10)
+    apart = separable().cycles / flights - 1
+    print(
+        f"per flight      {separable().cycles:>11,.1f} flights, {100 * apart:+.4f} % "
+        f"from the loop, {1000 * took:.2f} ms: {by_cycles / took:.0f} times faster "
+        f"(counting the block once a spectrum: {1000 * once:.0f} ms)"
+    )
+
+
+def many_lives() -> None:
+    """Print lives of many findings of one panel family."""
+    draw = np.random.default_rng(SEED)
+    starts = draw.uniform(3.0, 40.0, FINDINGS)
+    ends = np.full(FINDINGS, 60.0)
+    cycle = StressCycle(GrossStress(80.0), 0.1)
+
+    def factor(a: float) -> float:
+        return centre_crack_secant(HalfLength(a), 400.0)
+
+    def lives() -> np.ndarray:
+        return gs.GrowthTable(LAW, factor, cycle, 3.0, 60.0).lives(starts, ends)
+
+    took = best(lambda: timed(lives), 10)
+    one = timed(lambda: gs.growth_cycles(LAW, factor, cycle, 3.0, 60.0))
+    print(
+        f"{FINDINGS:,} findings  {1000 * took:.2f} ms, the table included; one life "
+        f"alone {1000 * one:.2f} ms"
+    )
+
+
+def first_calls() -> None:
+    """Print what the first life costs in a process, not compiled yet and compiled."""
+    for state, cache in (("not compiled yet", True), ("compiled before", False)):
+        with tempfile.TemporaryDirectory() as folder:
+            command = [sys.executable, "-c", NEW_PROCESS]
+            environment = {"NUMBA_CACHE_DIR": folder, "PATH": "/usr/bin:/bin"}
+            if not cache:
+                subprocess.run(
+                    command, env=environment, check=True, capture_output=True
+                )
+            done = subprocess.run(
+                command, env=environment, check=True, capture_output=True, text=True
+            )
+        imports, call = map(float, done.stdout.split())
+        print(
+            f"first life      {call:.2f} s, {state} (import of the program's part "
+            f"{imports:.2f} s, without numba)"
+        )
+
+
+def main() -> None:
+    block = synthetic_block()
+    print(f"{block.cycles:,} cycles and {block.flights:,} flights a block")
+    plain = against_c(block)
+    per_flight(block, plain)
+    many_lives()
+    first_calls()
+
+
+if __name__ == "__main__":
+    main()
