@@ -37,9 +37,9 @@ HIT_MISS = Reference(
     Grade.DERIVED,
 )
 ENOUGH_HIT_MISS = 60
-"""Flaws below which a hit/miss curve is not stable."""
+"""Flaws below which a hit/miss curve is not stable; MIL-HDBK-1823A, from memory, too."""
 ENOUGH_HIT_MISS_SOURCE = Reference(
-    "MIL-HDBK-1823A, as quoted in ENIQ report 41 (EUR 24429 EN, 2010), section 5.1",
+    "ENIQ report on sample size and hit/miss curves (Annis and Gandossi), figure 23",
     Grade.QUOTED,
 )
 ENOUGH_SIGNAL = 40

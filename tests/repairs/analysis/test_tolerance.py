@@ -14,6 +14,7 @@ from scipy.stats import chi, norm
 from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.scatter import factors as scatter
 from repairs.analysis.scatter import tolerance as tl
+from tests.outside import outside
 
 # CMH-17-1G, k_B and k_A, as reproduced in a public statistics package.
 CMH_17 = {
@@ -31,15 +32,31 @@ CMH_17 = {
 
 @pytest.mark.parametrize("tests", list(CMH_17))
 def test_a_and_b_basis_factors_of_the_handbook(tests):
-    b, a = CMH_17[tests]
-    assert tl.tolerance_factor(tests, *tl.B_BASIS) == pytest.approx(b, abs=2e-3)
-    assert tl.tolerance_factor(tests, *tl.A_BASIS) == pytest.approx(a, abs=2e-3)
+    for basis, rule, published in zip(
+        "BA", (tl.B_BASIS, tl.A_BASIS), CMH_17[tests], strict=True
+    ):
+        outside(
+            "One-sided normal tolerance factor",
+            source="CMH-17-1G, tables of k_B and k_A, as in a public package's tests",
+            given=f"{basis}-basis, {tests} tests",
+            published=published,
+            computed=tl.tolerance_factor(tests, *rule),
+            absolute=2e-3,
+            route="quoted",
+        )
 
 
 def test_fifty_measurements_of_the_public_example():
     # A public calculator program, checked there against a printed table (2.065).
-    found = tl.tolerance_factor(50, 0.95, 0.95)
-    assert found == pytest.approx(2.064993399768, rel=1e-7)
+    outside(
+        "One-sided normal tolerance factor",
+        source="A public calculator program, checked there against a printed table",
+        given="95 % above with 95 % confidence, 50 tests",
+        published=2.064993399768,
+        computed=tl.tolerance_factor(50, 0.95, 0.95),
+        rel=1e-7,
+        route="quoted",
+    )
 
 
 @pytest.mark.parametrize("tests", [3, 7, 20])
