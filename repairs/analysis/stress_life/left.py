@@ -17,6 +17,11 @@ from repairs.analysis.stress_life.curves import (
     StressLifeCurve,
     StressLifeFamily,
 )
+from repairs.analysis.stress_life.mean_stress import (
+    MEAN_STRESS,
+    Strengths,
+    compared,
+)
 from repairs.analysis.stress_life.policies import write_made_factors
 from repairs.analysis.types import (
     Grade,
@@ -84,6 +89,7 @@ def stress_life_left(
     old = family.cycles(1.0, NetStress(before.maximum), before.ratio)
     _write_life(note, "N_after", f"Kt {kt:.3f}, ln S on ln Kt", after, new)
     _write_life(note, "N_before", "Kt 1, undamaged section", before, old)
+    write_compared(inputs, note, kt, after)
     if new is None:
         note.warn(NOT_UNLIMITED.format(words=NO_FINITE_LIFE))
         return StressLife(None, NO_FINITE_LIFE)
@@ -140,6 +146,32 @@ def _write_curve(note: Note, curve: StressLifeCurve) -> None:
         None,
         "",
         Reference(curve.source, curve.grade),
+    )
+
+
+def write_compared(inputs: Inputs, note: Note, kt: float, cycle: StressCycle) -> None:
+    """Write what a cycle is worth by the mean-stress forms, for comparison only."""
+    family = inputs.family()
+    assert family is not None, "evaluate() has checked that stress_life is there"
+    below, _ = family.bracket(kt)
+    amplitude = cycle.maximum * (1 - cycle.ratio) / 2
+    strengths = Strengths(
+        inputs.number("tension_strength").value,
+        inputs.number("yield_strength").value,
+        gamma=below.a3,
+    )
+    found = compared(amplitude, cycle.maximum - amplitude, strengths)
+    worth = ", ".join(
+        f"{name} {value:.1f}" for name, value in found.items() if value is not None
+    )
+    note.step(
+        "",
+        "fully reversed amplitude of the same life, for comparison only",
+        f"S_max {cycle.maximum:.1f} MPa, R {cycle.ratio:.3g}: {worth} MPa; Walker with "
+        f"A₃ {below.a3:g} of the curve",
+        None,
+        "",
+        MEAN_STRESS,
     )
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.note import Note
 from repairs.analysis.stress_life.curves import NO_FINITE_LIFE
@@ -23,9 +24,10 @@ from repairs.analysis.stress_life.left import (
     less_clad,
     share_used,
     write_band,
+    write_compared,
     write_curves,
 )
-from repairs.analysis.types import Sourced
+from repairs.analysis.types import GrossStress, Sourced
 
 NOT_CHOSEN = (
     "What cycles at or below the last term of the curve count is not chosen: none "
@@ -94,6 +96,11 @@ def spectrum_life_left(
     old = damage_sum(family, 1.0, before, choice, failure)
     _write_sum(note, "after", f"Kt {kt:.3f}, ln S on ln Kt", after, new)
     _write_sum(note, "before", "Kt 1, undamaged section", before, old)
+    for row in new.largest(1):
+        most = StressCycle(
+            GrossStress(float(after.maximum[row])), float(after.ratio[row])
+        )
+        write_compared(inputs, note, kt, most)
     if new.uncounted:
         every = float(after.count.sum())
         note.warn(UNCOUNTED.format(count=new.uncounted, all=every))

@@ -96,6 +96,16 @@ def test_the_note_shows_the_cycles_that_do_most_and_the_sum():
     )
 
 
+def test_other_mean_stress_forms_stand_beside_and_change_nothing():
+    _, note = left()
+    (shown,) = [line for line in note.lines if "for comparison only" in line.formula]
+    # The cycle that does most: 16 ksi from zero, amplitude and mean 55.16 MPa; Goodman
+    # 55.16 / (1 - 55.16 / 420.58) = 63.5 MPa, by hand.
+    assert "Goodman 63.5" in shown.substitution
+    assert "Smith-Watson-Topper 78.0" in shown.substitution
+    assert shown.value is None
+
+
 def test_above_yield_it_is_refused():
     hot = NetCycles.of_maximum([FTY * 1.01], [0.0], [1])
     with pytest.raises(OutOfRangeError, match="end at yield"):
