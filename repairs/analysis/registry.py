@@ -7,7 +7,7 @@ from typing import Protocol
 
 from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.methods import blend_out, hole, loaded_hole, skin_crack
+from repairs.analysis.methods import blend_out, hole, hole_row, loaded_hole, skin_crack
 from repairs.analysis.note import Note
 from repairs.analysis.types import Applicability, Outcome, Result, Use
 
@@ -81,6 +81,7 @@ METHODS: dict[str, Method] = {
         Method("corrosion-blend-out", 1, "Corrosion blended out", blend_out),
         Method("open-or-trimmed-hole", 2, "Open or trimmed hole", hole),
         Method("loaded-fastener-hole", 1, "Loaded fastener hole", loaded_hole),
+        Method("row-of-cracked-holes", 1, "Row of cracked holes", hole_row),
     )
 }
 
@@ -96,7 +97,10 @@ COVERAGE: tuple[Coverage, ...] = (
     ),
     Coverage(
         ("crack",),
-        (("open-or-trimmed-hole", "loaded-fastener-hole"),),
+        (
+            ("open-or-trimmed-hole", "loaded-fastener-hole"),
+            ("row-of-cracked-holes",),
+        ),
         (("crack_origin", ("fastener_hole",)),),
     ),
     Coverage(("hole",), (("open-or-trimmed-hole", "loaded-fastener-hole"),)),

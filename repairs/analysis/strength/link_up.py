@@ -139,10 +139,15 @@ def swift_link_up(
     .. [1] See `SWIFT`.
     """
     within("Plastic zone over Irwin's radius", zone, 1, 2.5, "published zones")
+    touching = _touching(ligament, yield_stress) / math.sqrt(zone)
+    return GrossStress(min(touching, yield_stress))
+
+
+def _touching(ligament: Ligament, yield_stress: float) -> float:
+    """Return Swift's stress, which may lie above yield [MPa]."""
     lead, other = ligament.lead, ligament.other
     drive = lead.half_length * lead.factor**2 + other.c_edge * other.factor**2
-    touching = yield_stress * math.sqrt(2 * ligament.length / (zone * drive))
-    return GrossStress(min(touching, yield_stress))
+    return yield_stress * math.sqrt(2 * ligament.length / drive)
 
 
 @dataclass(frozen=True, slots=True)
@@ -191,7 +196,7 @@ def corrected_link_up(
     Returns
     -------
     GrossStress
-        Stress [MPa].
+        Stress [MPa]; not above yield.
 
     Notes
     -----
@@ -208,7 +213,7 @@ def corrected_link_up(
     divisor = CORRECTIONS[correction].divisor(ligament.length)
     if divisor < 1:
         raise InputError(WOULD_RAISE.format(ligament=ligament.length, name=correction))
-    return GrossStress(swift_link_up(ligament, yield_stress) / divisor)
+    return GrossStress(min(_touching(ligament, yield_stress) / divisor, yield_stress))
 
 
 def multiple_site_strength(

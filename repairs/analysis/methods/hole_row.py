@@ -1,0 +1,235 @@
+r"""A row of cracked holes: lead crack, ligament and section, whichever gives way first.
+
+.. math:: S = \min\Bigl(\frac{K_c}{F\sqrt{\pi c}},\;
+          S_y\sqrt{\frac{2L}{a\beta_a^2 + l\beta_l^2}},\;
+          S_y\,\frac{p - D - 2c}{p}\Bigr)
+
+Every hole counts as cracked on both sides to the largest size, in a row without end:
+a bound from above on what several cracks, or an unknown number of them, can do. L is
+from tip to tip. Once a crack is longer than the pitch it is the lead crack.
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+from repairs.analysis.growth.path import (
+    CrackPath,
+    Start,
+    curves,
+    grow,
+    repeat_after,
+    with_found_lives,
+    with_margins,
+)
+from repairs.analysis.inputs import SPECS, Inputs
+from repairs.analysis.inspection import intervals
+from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
+from repairs.analysis.intensity.loaded_hole import CrackedHole
+from repairs.analysis.intensity.rows import HOLE_ROW
+from repairs.analysis.loads import panel_loads
+from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods.hole_geometry import hole_in_sheet, write_strength
+from repairs.analysis.methods.loaded_hole import with_bearing, without_bearing
+from repairs.analysis.methods.row_geometry import (
+    LeadRow,
+    Row,
+    correction_for,
+    write_lead,
+    write_link_up,
+)
+from repairs.analysis.note import Note
+from repairs.analysis.types import Applicability, Result, Use
+
+COUNT_UNKNOWN = (
+    "Number of cracks not recorded: every hole of the row is taken as cracked on both "
+    "sides to the largest size, a row without end."
+)
+COUNT_KNOWN = (
+    "{count:.0f} cracks recorded: each is taken as large as the largest, on both sides "
+    "of its hole, in a row without end."
+)
+FLAW_EVERYWHERE = (
+    "Sister rows: the assumed flaw is taken at every hole, through the thickness and "
+    "on both sides."
+)
+COUNTED = ("life_base", "accumulated_cycles")
+GEOMETRY = (
+    "element",
+    "pressurised",
+    "hole_load",
+    "surroundings",
+    "thickness",
+    "hole_diameter",
+    "hole_pitch",
+    "toughness",
+    "growth_law",
+    "yield_strength",
+)
+LEAD_INPUTS = ("crack_length_uncertainty", "panel_length", "ligament")
+
+
+def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
+    """Return the inputs this method needs.
+
+    Either the pitch, for the bound, or a count of one, for which there is no row.
+    """
+    count = () if "hole_pitch" in inputs else ("crack_count",)
+    loaded = ("load_transfer", "edge_distance")
+    pin = loaded if inputs.word("hole_load") == "loaded" else ()
+    direction = ("crack_direction",) if inputs.word("pressurised") == "yes" else ()
+    sizes = COUNTED
+    if use is Use.FOUND_DAMAGE:
+        lead = LEAD_INPUTS if is_lead(inputs, use) else ()
+        sizes = ("edge_crack_length", "edge_crack_uncertainty", *lead)
+    loads = panel_loads.needed(inputs)
+    return tuple(dict.fromkeys((*GEOMETRY, *count, *pin, *direction, *loads, *sizes)))
+
+
+def is_lead(inputs: Inputs, use: Use) -> bool:
+    """Return whether the crack found is longer than the pitch."""
+    length, pitch = inputs.maybe("crack_length"), inputs.maybe("hole_pitch")
+    known = use is Use.FOUND_DAMAGE and length is not None and pitch is not None
+    return bool(known and length and pitch and length.value > pitch.value)
+
+
+def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
+    """Run the applicability tests on what the record says."""
+    del use
+    diameter, pitch = inputs.maybe("hole_diameter"), inputs.maybe("hole_pitch")
+    share = diameter.value / pitch.value if diameter and pitch else None
+    direction = apply.word_is(
+        inputs, "crack_direction", "direction of the crack", "longitudinal"
+    )
+    return (
+        apply.word_is(inputs, "element", "structural item", "skin"),
+        _several(inputs),
+        _load_known(inputs),
+        apply.at_most("hole diameter over pitch", share, 0.5, ""),
+        *((direction,) if inputs.word("pressurised") == "yes" else ()),
+    )
+
+
+def _several(inputs: Inputs) -> Applicability:
+    count = inputs.maybe("crack_count")
+    test, wanted = "number of cracks in the row", "at least 2, or not known"
+    if count is None:
+        known = True if "hole_pitch" in inputs else None
+        return Applicability(test, apply.NOT_RECORDED, wanted, known)
+    return Applicability(test, f"{count.value:.0f}", wanted, count.value >= 2)
+
+
+def _load_known(inputs: Inputs) -> Applicability:
+    word = inputs.word("hole_load")
+    known = True if word in ("open", "loaded") else None
+    return Applicability(
+        SPECS["hole_load"].title, word or apply.NOT_RECORDED, "open or loaded", known
+    )
+
+
+def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
+    """Evaluate the row; the tests have passed."""
+    found = panel_loads.panel_loads(inputs, note)
+    row = _read(inputs, note)
+    if use is Use.NO_KNOWN_CRACK:
+        path = row.path(found, inputs)
+        return _checked(inputs, row, _assumed(inputs, note, row, path, draft))
+    measured = note.given(
+        "c", "largest crack from its hole edge", inputs.number("edge_crack_length")
+    )
+    more = note.given("u", "its uncertainty", inputs.number("edge_crack_uncertainty"))
+    c = measured + more
+    if is_lead(inputs, use):
+        return _lead(inputs, note, row, c, found, draft)
+    ligament = inputs.maybe("ligament")
+    if ligament is not None:
+        note.given("L", "ligament from tip to tip, as measured", ligament)
+        row = replace(row, measured_at=c, measured=ligament.value)
+    path = row.path(found, inputs)
+    strength = write_strength(row.hole, path, note, c)
+    write_link_up(row, note, c)
+    known = with_margins(found, note, strength, draft)
+    return _checked(inputs, row, with_found_lives(inputs, note, path, c, known))
+
+
+def _read(inputs: Inputs, note: Note) -> Row:
+    """Write the row's data down and return it."""
+    count = inputs.maybe("crack_count")
+    words = COUNT_KNOWN.format(count=count.value) if count else COUNT_UNKNOWN
+    note.warn(words)
+    diameter = note.given("D", "hole diameter", inputs.number("hole_diameter"))
+    pitch = note.given("p", SPECS["hole_pitch"].title, inputs.number("hole_pitch"))
+    transfer = 0.0
+    if inputs.word("hole_load") == "loaded":
+        transfer = note.given(
+            "λ", SPECS["load_transfer"].title, inputs.number("load_transfer")
+        )
+    at = CrackedHole(diameter, pitch, 2, transfer, pitch)
+    hole = hole_in_sheet(inputs, note, at)
+    if transfer:
+        hole = with_bearing(inputs, note, hole)
+    note.step("F", "row as strips one pitch wide", "", None, "", HOLE_ROW)
+    return Row(hole, correction_for(inputs, note))
+
+
+def _checked(inputs: Inputs, row: Row, done: Result) -> Result:
+    hole = row.hole
+    open_ = hole.at.bearing and not hole.bearing_strength
+    return without_bearing(inputs, done) if open_ else done
+
+
+def _lead(
+    inputs: Inputs,
+    note: Note,
+    row: Row,
+    c: float,
+    found: panel_loads.PanelLoads,
+    draft: Result,
+) -> Result:
+    """Fill strength and lives of a lead crack longer than the pitch."""
+    length = note.given("2a", "lead crack, tip to tip", inputs.number("crack_length"))
+    more = note.given("u", "its uncertainty", inputs.number("crack_length_uncertainty"))
+    ligament = note.given(
+        "L", "ligament from tip to tip, as measured", inputs.number("ligament")
+    )
+    width = note.given(
+        "W", "panel length along the crack", inputs.number("panel_length")
+    )
+    a = (length + more) / 2
+    lead = LeadRow(row, width, a, c, ligament)
+    path = lead.path(found, inputs)
+    strength = write_lead(lead, path, note, a)
+    known = with_margins(found, note, strength, draft)
+    return _checked(inputs, row, with_found_lives(inputs, note, path, a, known))
+
+
+def _assumed(
+    inputs: Inputs, note: Note, row: Row, path: CrackPath, draft: Result
+) -> Result:
+    """Fill threshold and repeat from the flaw assumed at every hole of a row."""
+    flaw = rogue_flaw(FlawLocation.HOLE, row.hole.thickness)
+    note.step("c₀", f"assumed {flaw.kind} flaw", "", flaw.length, "mm", flaw.reference)
+    note.warn(FLAW_EVERYWHERE)
+    start = Start(flaw.length)
+    strength = write_strength(row.hole, path, note, start.length)
+    write_link_up(row, note, start.length)
+    draft = with_margins(path.loads, note, strength, draft)
+    grown = grow(inputs, note, path, start, path.loads.residual)
+    base = inputs.word("life_base") or ""
+    factored = intervals.over_factor(
+        inputs, note, grown.cycles, "growth_policy", "threshold"
+    )
+    title = "growth of the flaw assumed at every hole"
+    life = intervals.life(title, grown.cycles, base, grown.remark)
+    return replace(
+        draft,
+        lives=(life,),
+        life_cycles=life.cycles,
+        life_base=base,
+        life_after_factor_cycles=factored.whole,
+        scatter_factor=factored.factor,
+        threshold=intervals.interval(inputs, note, factored.cycles, base, "N_thr"),
+        repeat=repeat_after(inputs, note, path, grown.end),
+        missing=intervals.still_missing(inputs),
+        curves=curves(path, start.length, base),
+    )
