@@ -6,9 +6,9 @@ holds the starting point of the history, else as one. Ranges left at the end are
 cycles. A repeating history starts and ends at its maximum instead; then every range Y
 is one whole cycle and nothing is left.
 
-Points are reduced to reversals first; small ranges are left out before counting, never
-after. The loops run in Python for short histories and compiled for long ones, from one
-source; the compiler is imported only there.
+Only reversals count; small ranges are left out before counting, never after. The loops
+run in Python for short histories and compiled for long ones, from one source; the
+compiler is imported only there.
 
 References
 ----------
@@ -42,8 +42,9 @@ E1049_REPEATING = Reference(
     "ASTM E1049-85, simplified rainflow counting for repeating histories, Table X1.4",
     Grade.PRINT,
 )
-COMPILED_FROM = 2_000
-"""Points from which the compiled loops are worth their import."""
+COMPILED_FROM = 10_000
+"""Points from which loops run compiled: fewer take Python some 4 ms, while the first
+compiled call of a process takes half a second (`tests/bench/counting.py`)."""
 NO_CLASSES = "Classes of ranges reads {read}; a whole number of at least 1 is expected."
 
 
@@ -69,12 +70,15 @@ class CountedCycles:
     @property
     def ranges(self) -> Floats:
         """Largest less smallest stress, shape (n,) [MPa]."""
-        return np.abs(self.first - self.second)
+        between = self.first - self.second
+        return np.abs(between, out=between)
 
     @property
     def means(self) -> Floats:
         """Mean stress, shape (n,) [MPa]."""
-        return 0.5 * (self.first + self.second)
+        total = self.first + self.second
+        total *= 0.5
+        return total
 
     @property
     def maxima(self) -> Floats:
@@ -187,7 +191,7 @@ def rainflow(stresses: Sequence[float] | Floats, residue: Residue) -> CountedCyc
     .. [1] ASTM E1049-85, 5.4.4 and the simplified method for repeating histories.
     """
     repeating = residue is Residue.REPEATING
-    points = from_maximum(stresses) if repeating else reversals(stresses)
+    points = from_maximum(stresses) if repeating else stresses_of(stresses)
     first, second, counts, _ = _run(closed_cycles, points, 4, repeating)
     return CountedCycles(first, second, counts, residue)
 

@@ -36,13 +36,22 @@ def closed_cycles(
     held: MutableSequence[float],
     repeating: bool,
 ) -> int:
-    """Fill in the cycles of reversals in the order they close; return how many.
+    """Fill in the cycles of a history in the order they close; return how many.
 
-    `held` takes the points that no cycle has used up yet.
+    `held` takes the points that no cycle has used up yet. A point further the same way
+    takes the place of the one before: what that one closed is closed all the same.
     """
+    held[0] = last = points[0]
     found = top = 0
+    rising = falling = False
     for value in points:
-        held[top] = value
+        if value == last:
+            continue
+        up = value > last
+        if (up and not rising) or (not up and not falling):
+            top += 1
+        rising, falling = up, not up
+        held[top] = last = value
         while top >= 2:
             older, newer = held[top - 2], held[top - 1]
             if abs(value - newer) < abs(newer - older):
@@ -58,8 +67,7 @@ def closed_cycles(
                 top -= 2
             held[top] = value
             found += 1
-        top += 1
-    for left in range(top - 1):
+    for left in range(top):
         first[found] = held[left]
         second[found] = held[left + 1]
         counts[found] = 0.5
