@@ -22,10 +22,7 @@ from repairs.analysis.types import GrossStress
 
 Whole = NDArray[np.int64]
 
-NOT_TURNING = (
-    "Point {number} of the sequence is no turning point; peaks and valleys in turn are "
-    "expected."
-)
+NO_CYCLES = "All points of the sequence are the same stress: it has no cycle."
 NO_FLIGHTS = "A block has {read} flights and {cycles} cycles; at least one is expected."
 NOT_CYCLES = "A block's cycles must be finite, with R below 1; cycle {number} is not."
 NO_TENSION = "No cycle of the block pulls: a crack does not grow under it."
@@ -33,7 +30,11 @@ NOT_A_POWER = (
     "Forman's law depends on the level of K: no one cycle stands for a flight. Grow "
     "the crack cycle by cycle."
 )
-RISES = "each rise from a valley to the next peak is one cycle"
+RISES = (
+    "Each rise from a valley to the next peak is one cycle, of the flight its valley "
+    "is in; points between are passed over, and the last valley of a block rises to "
+    "its first peak."
+)
 
 
 @dataclass(frozen=True, eq=False)
@@ -72,25 +73,26 @@ class CycleBlock:
     def from_turning_points(
         cls, points: Floats, flights: int, starts: Whole | None = None
     ) -> CycleBlock:
-        """Make a repeated block from turning points [MPa]; see `RISES`.
+        """Make a repeated block from stresses in the order flown [MPa]; see `RISES`.
 
         `starts` is the index of each flight's first point. A cycle whose peak does not
         pull is kept and does no growth.
         """
-        steps = np.diff(points, append=points[0])
-        wrong = np.flatnonzero(steps[:-1] * steps[1:] >= 0)
-        wrong = wrong[wrong < len(points) - 2]
-        if wrong.size:
-            raise InputError(NOT_TURNING.format(number=int(wrong[0]) + 2))
-        valleys = np.flatnonzero(steps > 0)
-        tops = np.roll(points, -1)[valleys]
+        found = np.flatnonzero(points != np.roll(points, 1))
+        turned = points[found]
+        turns = (np.roll(turned, -1) - turned) * (turned - np.roll(turned, 1)) < 0
+        found, turned = found[turns], turned[turns]
+        if not found.size:
+            raise InputError(NO_CYCLES)
+        tops = np.roll(turned, -1)
+        rising = tops > turned
+        valleys, tops = turned[rising], tops[rising]
         maximum = np.where(tops > 0, tops, 0.0)
-        ratio = np.divide(
-            points[valleys], tops, out=np.zeros_like(tops), where=tops > 0
-        )
+        ratio = np.divide(valleys, tops, out=np.zeros_like(tops), where=tops > 0)
         ends = None
         if starts is not None:
-            ends = np.searchsorted(valleys, np.append(starts[1:], len(points)))
+            following = np.append(starts[1:], len(points))
+            ends = np.searchsorted(found[rising], following)
         return cls(maximum, ratio, flights, ends)
 
     @property

@@ -24,9 +24,11 @@ from repairs.analysis.growth.retardation import Retardation, Willenborg
 from repairs.analysis.growth.two_directions import BreakThrough, FlawPath, History
 
 REFRESH = 0.01
-"""Growth of a length after which factors are taken anew: 5e-5 on the rate."""
-NUDGE = 1e-6
-"""Share of a length over which a slope is taken."""
+"""Growth of a length after which factors are taken anew, and over which their slopes
+are taken: 1e-4 on the rate. A shorter slope would see the small jump that factors may
+have at a/c = 1."""
+PAUSE = 100_000
+"""Cycles, in whole blocks, after which it is seen whether the crack stands still."""
 NO_RATIO = (
     "The generalised Willenborg model works through the stress ratio: it needs a law "
     "of Walker or Forman."
@@ -165,6 +167,7 @@ class _Run:
         self.state = np.zeros(kernel.FIRST_MEMORY + 2 * kernel.MEMORY)
         blocks = math.ceil(following.flights / block.flights)
         self.most = blocks * block.cycles
+        self.pause = block.cycles * math.ceil(PAUSE / block.cycles)
 
     def grown(self, start: tuple[float, float]) -> SequenceGrowth:
         """Run until the crack ends."""
@@ -204,7 +207,7 @@ class _Run:
     def _stage(self, intensities: Intensities, tips: int) -> int:
         """Run one stage and return why it ended.
 
-        The loop pauses once a block, to see a crack that stands still.
+        The loop pauses after some blocks, to see a crack that stands still.
         """
         if self.state[kernel.LENGTH] >= self.path.end:
             return kernel.AT_END
@@ -227,7 +230,7 @@ class _Run:
                 self.constants,
                 self.model,
                 tips,
-                min(self.most, int(self.place[1]) + self.block.cycles),
+                min(self.most, int(self.place[1]) + self.pause),
             )
             self._keep()
         return reason
@@ -253,14 +256,14 @@ def _renew(local: Floats, intensities: Intensities, state: Floats) -> None:
     """Take the factors anew at the crack as it is."""
     length, depth = float(state[kernel.LENGTH]), float(state[kernel.DEPTH])
     here = intensities(length, depth)
-    along, inward = NUDGE * length, NUDGE * depth
-    by_length = _beside(intensities, (length - along, depth), (length + along, depth))
-    by_depth = _beside(intensities, (length, depth - inward), (length, depth + inward))
+    along, inward = REFRESH * length, REFRESH * depth
+    by_length = _beside(intensities, (length + along, depth), (length - along, depth))
+    by_depth = _beside(intensities, (length, depth + inward), (length, depth - inward))
     local[: kernel.FIRST_TIP] = (
         length,
         depth,
-        length * (1 + REFRESH),
-        depth * (1 + REFRESH),
+        length + along,
+        depth + inward,
     )
     for tip, value in enumerate(here):
         at = kernel.FIRST_TIP + 3 * tip
@@ -270,10 +273,10 @@ def _renew(local: Floats, intensities: Intensities, state: Floats) -> None:
 
 
 def _beside(
-    intensities: Intensities, below: tuple[float, float], above: tuple[float, float]
+    intensities: Intensities, ahead: tuple[float, float], behind: tuple[float, float]
 ) -> tuple[tuple[float, ...], int]:
-    """Return intensities beside a crack and the side, inside the factors' range."""
+    """Return intensities ahead of a crack and 1, or behind it and -1, inside range."""
     try:
-        return intensities(*below), -1
+        return intensities(*ahead), 1
     except OutOfRangeError:
-        return intensities(*above), 1
+        return intensities(*behind), -1
