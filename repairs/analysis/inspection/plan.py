@@ -18,7 +18,7 @@ chance do better. With a threshold there is a look there and none before.
 
 References
 ----------
-.. [1] Product of misses: USAF Damage Tolerant Design Handbook, 3.1; the rest is exact.
+.. [1] Product of misses; exact under what it assumes, see `CUMULATIVE`.
 """
 
 from __future__ import annotations
@@ -41,7 +41,7 @@ from repairs.analysis.inspection.looks import (
     pod_at,
     together,
 )
-from repairs.analysis.types import Grade, Reference
+from repairs.analysis.types import Grade, Reference, Sourced
 
 Array = NDArray[np.float64]
 CUMULATIVE = Reference(
@@ -72,6 +72,14 @@ class Found:
     worst: float
     scheduled: float
     stated: tuple[str, ...]
+
+    def at(self, phase: Phase) -> float:
+        """Return the chance of detection in a phase [-]."""
+        return {
+            Phase.RANDOM: self.mean,
+            Phase.WORST: self.worst,
+            Phase.SCHEDULE: self.scheduled,
+        }[phase]
 
     @property
     def missed(self) -> float:
@@ -191,8 +199,8 @@ def longest_interval(
 def stated(growth: Growth, looks: tuple[Look, ...]) -> tuple[str, ...]:
     """Return the sentences a chance of detection must be read with."""
     said = [
-        f"{look.title}: done where it should be with chance {look.done:g} each time; "
-        f"in a share {look.never:g} of cases at no repeat."
+        f"{look.title}: done where it should be with chance {look.done.value:g} each "
+        f"time; in a share {look.never.value:g} of cases at no repeat."
         for look in looks
     ]
     if growth.log_deviation is None:
@@ -214,11 +222,12 @@ def _with_interval(
     return chance(growth, (*looks[:vary], look, *looks[vary + 1 :]), phase)
 
 
-def _lives(log_deviation: float | None) -> Array:
+def _lives(log_deviation: Sourced | None) -> Array:
     """Return equally likely factors on life."""
     if log_deviation is None:
         return np.ones(1)
-    return 10 ** (log_deviation * ndtri((np.arange(POINTS) + 0.5) / POINTS))
+    share = (np.arange(POINTS) + 0.5) / POINTS
+    return np.asarray(10 ** (log_deviation.value * ndtri(share)))
 
 
 def _missed(

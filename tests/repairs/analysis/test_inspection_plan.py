@@ -24,7 +24,8 @@ from repairs.analysis.inspection.detection import (
     log_normal,
 )
 from repairs.analysis.inspection.looks import Phase
-from repairs.analysis.types import Grade
+from repairs.analysis.note import Note
+from repairs.analysis.types import Grade, Sourced
 from tests.outside import outside
 
 STUDY = Study(
@@ -42,12 +43,19 @@ CYCLES = np.linspace(0, LIFE, 2001)
 SIZE = 1.27 * np.exp(RATE * CYCLES)
 """1.27 mm to 25 mm in 20 000 cycles, exponential; a50 3 mm, s 0.5 (all invented)."""
 SURE = lk.Growth(CYCLES, SIZE, "since new", None)
-SCATTERED = replace(SURE, log_deviation=0.1)
+
+
+def recorded(value: float) -> Sourced:
+    return Sourced(value, "-", "an invented record", Grade.RECORDED)
+
+
+SCATTERED = replace(SURE, log_deviation=recorded(0.1))
 
 
 def look(interval, a50=3.0, deviation=0.5, **changes):
     curve = log_normal(math.log(a50), deviation, STUDY)
     words = {"threshold": None, "done": 1.0, "never": 0.0, **changes}
+    words |= {name: recorded(words[name]) for name in ("done", "never")}
     return lk.Look(f"eddy current, {a50:g} mm", curve, SIZE, interval, **words)
 
 
@@ -80,7 +88,7 @@ def simulated(rng, intervals, a50s, done, never, log_deviation, trials=200_000):
 )
 def test_the_mean_is_that_of_a_simulation(intervals, a50s, done, never, deviation):
     rng = np.random.default_rng(11)
-    growth = replace(SURE, log_deviation=deviation or None)
+    growth = replace(SURE, log_deviation=recorded(deviation) if deviation else None)
     looks = tuple(
         look(i, a, done=d, never=q)
         for i, a, d, q in zip(intervals, a50s, done, never, strict=True)
@@ -140,7 +148,9 @@ def test_three_looks_of_known_probability(pods, cumulative):
     # Second route, by hand: 1 - 0.3^3 and 1 - 0.5 x 0.2 x 0.05.
     seen = np.exp(norm.ppf([0.01, *pods, 0.96]))
     growth = lk.Growth(np.arange(5.0), np.arange(1.0, 6.0), "since new", None)
-    one = lk.Look("look", log_normal(0.0, 1.0, STUDY), seen, 1, 1, 1.0, 0.0)
+    one = lk.Look(
+        "look", log_normal(0.0, 1.0, STUDY), seen, 1, 1, recorded(1), recorded(0)
+    )
     outside(
         "Cumulative probability of detection, independent looks",
         source="1 - product of (1 - POD)",
@@ -198,7 +208,7 @@ def test_a_cover_hides_the_first_of_the_crack():
 def test_longer_intervals_and_worse_methods_never_find_more(
     interval, more, a50, threshold, deviation
 ):
-    growth = replace(SURE, log_deviation=deviation)
+    growth = SCATTERED if deviation else SURE
     words = {"threshold": threshold, "done": 0.9, "never": 0.01}
     base = pl.detect(growth, (look(interval, a50, **words),))
     longer = pl.detect(growth, (look(int(interval * more), a50, **words),))
@@ -263,6 +273,27 @@ def test_marks_follow_the_growth_and_end_at_the_chance_of_the_plan():
         mk.inspection_marks(SURE, (eddy,), Phase.RANDOM)
 
 
+def test_the_growth_curve_is_drawn_with_its_inspections():
+    curve = mk.inspection_curve(SURE, (look(5_000),), Phase.SCHEDULE)
+    assert [mark.x for mark in curve.marks] == [5_000, 10_000, 15_000]
+    assert curve.marks[0].label.startswith("eddy current, 3 mm: POD 0.41")
+    assert curve.points[-1] == (LIFE, pytest.approx(25.0))
+
+
+def test_the_note_tells_what_a_chance_rests_on():
+    note = Note()
+    remembered = replace(STUDY, source="a handbook", grade=Grade.MEMORY)
+    sure = replace(look(5_000), curve=log_normal(math.log(3), 0.5, remembered))
+    found = mk.write_plan(note, SCATTERED, (sure, look(2_000, 12.0, never=0.02)))
+    values = {line.symbol: line.value for line in note.lines}
+    assert values["P_det"] == found.mean
+    assert values["P_worst"] == found.worst <= found.mean
+    assert values["P_miss"] == pytest.approx(1 - found.mean)
+    assert values["q"] == 0.02
+    assert any("always in the right place" in line for line in note.warnings)
+    assert note.source_from_memory
+
+
 def test_risk_carries_its_cautions():
     found = pl.detect(SURE, (look(5_000, never=0.05),))
     left = mk.risk(0.02, found)
@@ -303,7 +334,7 @@ def test_what_is_no_plan_is_refused():
     with pytest.raises(OutOfRangeError, match="Interval"):
         look(0)
     with pytest.raises(TypeError, match="done"):
-        lk.Look("x", look(1).curve, SIZE, 5_000, None, never=0.0)  # type: ignore[call-arg]
+        lk.Look("x", look(1).curve, SIZE, 5_000, None, never=recorded(0))  # type: ignore[call-arg]
 
 
 def test_sizes_beyond_those_tried_are_said():
