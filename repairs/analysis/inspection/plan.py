@@ -58,6 +58,8 @@ NOT_FALLING = (
     "Ask for the mean or the worst phase."
 )
 NO_LOOKS = "A plan without an inspection finds nothing. Name at least one."
+MANY_LOOKS = 500
+"""Looks in a life from which on single ones no longer matter."""
 TABLE = 4_001
 """Points of a life at which the chance of each look is tabulated."""
 SHIFTS = ((math.sqrt(5) - 1) / 2, *(math.sqrt(p) for p in (2, 3, 7, 11, 13, 17, 19)))
@@ -122,7 +124,8 @@ def chance(growth: Growth, looks: tuple[Look, ...], phase: Phase) -> float:
     within("Looks of different kinds", len(looks), 1, len(SHIFTS), "a real plan")
     for look in looks:
         checked(growth, look)
-    factors = _lives(growth.log_deviation)
+    most = max(growth.life / look.interval for look in looks)
+    factors = _lives(growth.log_deviation, most)
     missed = [
         _missed(growth, look, phase, factors, shift)
         for look, shift in zip(looks, SHIFTS, strict=False)
@@ -222,11 +225,12 @@ def _with_interval(
     return chance(growth, (*looks[:vary], look, *looks[vary + 1 :]), phase)
 
 
-def _lives(log_deviation: Sourced | None) -> Array:
-    """Return equally likely factors on life."""
+def _lives(log_deviation: Sourced | None, most_looks: float) -> Array:
+    """Return equally likely factors on life; fewer where looks are many."""
     if log_deviation is None:
         return np.ones(1)
-    share = (np.arange(POINTS) + 0.5) / POINTS
+    count = POINTS if most_looks <= MANY_LOOKS else POINTS // 10
+    share = (np.arange(count) + 0.5) / count
     return np.asarray(10 ** (log_deviation.value * ndtri(share)))
 
 

@@ -343,6 +343,15 @@ def test_sizes_beyond_those_tried_are_said():
     assert any("beyond 10 mm" in line for line in pl.detect(SURE, (one,)).stated)
 
 
+def test_a_look_a_day_is_no_burden_and_needs_no_phase():
+    daily = look(5, 40.0, done=0.5, never=0.1)
+    begin = time.perf_counter()
+    found = pl.detect(SCATTERED, (daily,))
+    assert time.perf_counter() - begin < 3
+    assert found.worst == pytest.approx(found.mean, rel=0.02)
+    assert found.scheduled == pytest.approx(found.mean, rel=0.02)
+
+
 def test_a_plan_is_quick_enough_to_draw():
     looks = (look(1_500, 12.0), look(5_000))
     pl.detect(SCATTERED, looks)
