@@ -154,6 +154,22 @@ def test_the_covariance_covers_repeated_trials():
     assert np.mean(bounds >= truth.a90) == pytest.approx(0.95, abs=0.04)
 
 
+def test_with_few_flaws_the_bound_is_on_the_safe_side():
+    rng = np.random.default_rng(5)
+    truth = dt.log_odds(-2.0, 3.0, STUDY)
+    sizes = tuple(np.geomspace(0.4, 10, 60))
+    above = []
+    for _ in range(300):
+        hits = tuple(bool(h) for h in rng.random(60) < truth.fitted(sizes))
+        try:
+            fit = hm.fit_hit_miss(hm.HitMiss(sizes, hits), dt.Link.LOGISTIC)
+        except AnalysisError:  # hits and misses that do not overlap
+            continue
+        above.append(hm.size_bound(fit, 0.9, 0.95) >= truth.a90)
+    assert len(above) > 290
+    assert np.mean(above) > 0.95
+
+
 @pytest.mark.parametrize(
     ("curve", "a90", "size", "pod"),
     [
