@@ -32,6 +32,7 @@ ROLES_FOR: dict[str, frozenset[str]] = {
         "report_identity_read": (ENGINEER, CERTIFIER, MANAGER, ADMIN),
         "disposition_decide": (ENGINEER, CERTIFIER, SIGNATORY),
         "evaluation_make": (ENGINEER, SIGNATORY),
+        "checks_read": (ENGINEER, SIGNATORY, AUDITOR),
         "approval_sign": (ENGINEER, SIGNATORY),
         "substantiation_draft": (ENGINEER, SIGNATORY),
         "repair_record": (RECORDER, ENGINEER, CERTIFIER),

@@ -44,6 +44,7 @@ from repairs.models import (
     Recalculation,
     Repair,
     RequirementSubject,
+    StatedInput,
     Substantiation,
     Survey,
     SurveyItem,
@@ -59,6 +60,8 @@ from repairs.services.recalculations import recalculation_start
 from repairs.services.repair_entry import Data, RepairEntry, Step
 from repairs.services.repairs import repair_plan, repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from repairs.services.stated import Document as FromPage
+from repairs.services.stated import input_state
 from repairs.services.survey_entry import SurveyEntry
 from repairs.services.surveys import survey_item_record, survey_open
 from repairs.sheet_lines import SheetLine
@@ -117,6 +120,7 @@ class OneOfEach:
     membership: Membership
     adopted: AdoptedValue
     folder: Substantiation
+    stated: StatedInput
 
 
 def one_of_each_make() -> OneOfEach:
@@ -157,6 +161,7 @@ def one_of_each_make() -> OneOfEach:
         membership=world.users["recorder"].memberships.get(),
         adopted=_adopted(world),
         folder=_folder(world, finding),
+        stated=_stated(world, crack),
     )
 
 
@@ -362,6 +367,18 @@ def _part(world: World) -> SafeLifePart:
         serial="S0001",
         manufactured_on=BEGAN,
         release_reference="release certificate 1",
+    )
+
+
+def _stated(world: World, crack: Finding) -> StatedInput:
+    return input_state(
+        subject=crack,
+        name="hole_pitch",
+        entered="0.8 in ± 0.02 in",
+        document=FromPage("ARD-STR-53-17", "sheet 2"),
+        actor=world.engineer,
+        at=NOW,
+        on=TODAY,
     )
 
 

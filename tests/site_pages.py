@@ -16,6 +16,7 @@ from fleet.access import ROLES_FOR
 from fleet.models import Role
 from tests.one_of_each import OneOfEach
 
+WHAT_IF = "?use=found_damage&if_crack_length=30+mm&sensitivity=1"
 READ, FORM, SEND, PUBLIC = "read", "form", "send", "public"
 Keys = Callable[[OneOfEach], dict[str, Any]]
 
@@ -78,6 +79,10 @@ def neighbour(each: OneOfEach) -> dict[str, Any]:
 def folder_row(each: OneOfEach) -> dict[str, Any]:
     row = each.folder.cases.get()
     return {"pk": each.folder.pk, "what": "case", "row_pk": row.pk}
+
+
+def stating(what: str) -> Keys:
+    return lambda each: {"pk": getattr(each, what).pk, "name": "hole_pitch"}
 
 
 def flown(each: OneOfEach) -> dict[str, Any]:
@@ -161,13 +166,18 @@ PAGES: dict[str, Page] = {
     ),
     "requirement_verify": Page(FORM, "accomplishment_record", subject),
     "attachment": Page(keys=key("attachment"), looks=False),
-    "evaluation_new": Page(FORM, "evaluation_make", key("crack")),
+    "evaluation_new": Page(FORM, "evaluation_make", key("crack"), query=WHAT_IF),
     "evaluation_new_repair": Page(FORM, "evaluation_make", key("repair")),
     "evaluation_list": Page(),
     "recalculation_list": Page(sends="evaluation_make"),
     "recalculation": Page(keys=key("recalculation")),
     "recalculation_work_here": Page(SEND, "evaluation_make", key("recalculation")),
     "evaluation": Page(keys=key("evaluation")),
+    "evaluation_note": Page(keys=key("evaluation")),
+    "input_state": Page(FORM, "evaluation_make", stating("crack")),
+    "input_state_repair": Page(FORM, "evaluation_make", stating("repair")),
+    "input_take_back": Page(FORM, "evaluation_make", key("stated")),
+    "checks": Page(action="checks_read"),
     "evaluation_again": Page(SEND, "evaluation_make", key("evaluation")),
     "disposition_new": Page(FORM, "disposition_decide", key("finding")),
     "disposition": Page(keys=key("disposition")),

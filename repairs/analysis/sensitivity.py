@@ -156,7 +156,7 @@ def _again(use: Use, inputs: Inputs, name: str, change: float) -> Answers:
     assert value is not None, "only what is given is moved"
     try:
         return _answers(use, Inputs(inputs.values | {name: _moved(value, change)}))
-    except AnalysisError as refusal:
+    except (AnalysisError, ArithmeticError) as refusal:
         return Answers(why_none=str(refusal))
 
 

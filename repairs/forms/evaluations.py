@@ -1,7 +1,8 @@
-"""What an engineer chooses when asking for an evaluation."""
+"""What an engineer chooses when asking for an evaluation, and asks what if."""
 
 from __future__ import annotations
 
+from collections.abc import Iterable, Mapping
 from typing import Any
 
 from django import forms
@@ -9,6 +10,11 @@ from django.db.models import QuerySet
 
 from fleet.models import DetectableSize
 from repairs.models.evaluations import Use
+from repairs.services.evaluation_prepare import NUMBER, WORD, InputLine
+from repairs.services.evaluation_what_if import what_if_read
+
+AS_RECORDED = "as recorded"
+PREFIX = "if_"
 
 
 class SizeField(forms.ModelChoiceField):
@@ -45,3 +51,57 @@ class EvaluationForm(forms.Form):
     ) -> None:
         super().__init__(*args, **kwargs)
         self.fields["detectable"].queryset = sizes  # type: ignore[attr-defined]
+
+
+class WhatIfForm(forms.Form):
+    """Numbers and words to calculate with in place of the recorded ones.
+
+    A field left empty is as recorded. A bare number is in the unit beside it.
+    """
+
+    def __init__(
+        self, *args: Any, lines: Iterable[InputLine], given: Mapping[str, Any]
+    ) -> None:
+        super().__init__(*args)
+        self.given = given
+        for line in lines:
+            field = _field(line)
+            if field is not None:
+                self.fields[f"{PREFIX}{line.name}"] = field
+
+    def clean(self) -> dict[str, Any]:
+        """`instead` are the values read; what cannot be read stays as typed."""
+        data: dict[str, Any] = super().clean() or {}
+        texts = {key.removeprefix(PREFIX): text for key, text in data.items() if text}
+        instead, wrong = what_if_read(texts, self.given)
+        for name, why in wrong.items():
+            self.add_error(f"{PREFIX}{name}", why)
+        return {"instead": instead}
+
+    def of(self, name: str) -> Any:
+        """The field of an input, None where it cannot be changed."""
+        key = f"{PREFIX}{name}"
+        return self[key] if key in self.fields else None
+
+    @property
+    def asks(self) -> bool:
+        """Whether anything was typed."""
+        return any(str(self.data.get(key, "")).strip() for key in self.fields)
+
+
+def _field(line: InputLine) -> forms.Field | None:
+    label = f"{line.title}, what if"
+    if line.form == NUMBER:
+        unit = f" {line.unit}" if line.unit else ""
+        widget = forms.TextInput(
+            attrs={"size": 9, "aria-label": f"{label}{',' * bool(unit)}{unit}"}
+        )
+        return forms.CharField(required=False, label=label, widget=widget)
+    if line.form == WORD:
+        choices = [("", AS_RECORDED)]
+        choices += [(word, word.replace("_", " ")) for word in line.words]
+        choice = forms.Select(attrs={"aria-label": label})
+        return forms.ChoiceField(
+            required=False, label=label, choices=choices, widget=choice
+        )
+    return None

@@ -7,8 +7,10 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from fleet.drawing.chart import Chart, Level, Point, Series, chart_svg
-from repairs.evaluation_text import number_text, value_text
+from repairs.evaluation_charts import charts_of
+from repairs.evaluation_figures import Answer, TestRow, answer_of, test_row
+from repairs.evaluation_text import value_text
+from repairs.input_text import input_write
 from repairs.models import Evaluation, Finding, Repair
 from repairs.selectors.evaluations import (
     APPROVED,
@@ -59,6 +61,7 @@ def evaluation_json(evaluation: Evaluation) -> dict[str, Any]:
         "subject": str(subject_of(evaluation)),
         "use": evaluation.use,
         "outcome": evaluation.outcome,
+        "governing": evaluation.governing,
         "method": evaluation.method,
         "version": evaluation.method_version,
         "title": outputs["title"],
@@ -71,6 +74,10 @@ def evaluation_json(evaluation: Evaluation) -> dict[str, Any]:
         "threshold": outputs["threshold"],
         "repeat": outputs["repeat"],
         "missing": outputs["missing"],
+        "margins": outputs["margins"],
+        "cases_not_checked": outputs["cases_not_checked"],
+        "assumptions": outputs["assumptions"],
+        "asked": outputs["asked"],
         "applicability": json.loads(evaluation.applicability),
         "warnings": outputs["warnings"],
         "curves": outputs["curves"],
@@ -79,15 +86,6 @@ def evaluation_json(evaluation: Evaluation) -> dict[str, Any]:
         "libraries": json.loads(evaluation.libraries),
         "content_digest": evaluation.content_digest,
     }
-
-
-@dataclass(frozen=True, slots=True)
-class Figure:
-    """One line of the results: what, the number as text, and what it is of."""
-
-    title: str
-    value: str
-    remark: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -105,14 +103,13 @@ class NoteRow:
 
 
 @dataclass(frozen=True, slots=True)
-class TestRow:
-    """One applicability test in words."""
+class GivenRow:
+    """One input that a stored calculation was given."""
 
-    met: str
-    failed: bool
-    test: str
+    title: str
     value: str
-    limit: str
+    source: str
+    grade: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -125,105 +122,45 @@ class Shown:
     state: str
     approved: bool
     stale: list[str]
-    warnings: list[str]
-    barred: list[str]
-    figures: list[Figure]
+    answer: Answer
     tests: list[TestRow]
-    missing: list[dict[str, str]]
     charts: list[tuple[str, str]]
     note: list[NoteRow]
+    given: list[GivenRow]
     inputs: list[InputRow]
     libraries: str
     digest: list[str]
 
 
-def evaluation_shown(evaluation: Evaluation, versions: Mapping[str, int]) -> Shown:
-    """The page of an evaluation; a handful of queries."""
+def evaluation_shown(
+    evaluation: Evaluation, versions: Mapping[str, int], titles: Mapping[str, str]
+) -> Shown:
+    """The page of an evaluation; a handful of queries.
+
+    `titles` names the inputs there are, by the name they are stored under.
+    """
     data = evaluation_json(evaluation)
-    barred = data["barred"]
+    answer = answer_of(data)
     return Shown(
         evaluation=evaluation,
         subject=subject_of(evaluation),
-        title=data["title"] or "No method for this damage",
+        title=answer.title,
         state=data["state"],
         approved=not data["unapproved"],
         stale=stale_reasons(evaluation, versions),
-        warnings=[w for w in data["warnings"][1:] if w not in barred]
-        if evaluation.outcome == "computed"
-        else data["warnings"],
-        barred=barred,
-        figures=_figures(data),
-        tests=[_test(test) for test in data["applicability"]],
-        missing=data["missing"],
-        charts=[(c["title"], chart_of(c)) for c in data["curves"]],
+        answer=answer,
+        tests=[test_row(test) for test in data["applicability"]],
+        charts=charts_of(data),
         note=[_note_row(line) for line in data["note"]],
+        given=[
+            _given(titles.get(name, name), value)
+            for name, value in data["inputs"].items()
+        ],
         inputs=input_rows(evaluation),
         libraries=", ".join(f"{k} {v}" for k, v in sorted(data["libraries"].items())),
         digest=[
             evaluation.content_digest[start : start + 16] for start in range(0, 64, 16)
         ],
-    )
-
-
-def _figures(data: dict[str, Any]) -> list[Figure]:
-    """Results in the order they are read; nothing for what is not computed."""
-    if data["outcome"] != "computed":
-        return []
-    found = [
-        _figure("Residual strength", data["residual_strength_mpa"], "MPa", "gross"),
-        _figure("Required, residual", data["required_residual_mpa"], "MPa",
-                data["residual_case"]),
-        _figure("Margin", data["margin_residual"], "", "residual", signed=True),
-        _figure("Static ultimate", data["ultimate_mpa"], "MPa", data["ultimate_case"]),
-        _figure("Margin", data["margin_ultimate"], "", "ultimate", signed=True),
-        Figure("Ultimate strength kept", data["ultimate_kept"].replace("_", " "), ""),
-        *(_life(life) for life in data["lives"]),
-    ]  # fmt: skip
-    if data["scatter_factor"] is not None:
-        after = data["life_after_factor_cycles"]
-        found.append(
-            _figure("Life after factor", after, "FC",
-                    f"factor {data['scatter_factor']:g}, {data['life_base']}")
-        )  # fmt: skip
-    if data["use"] == "no_known_crack":
-        found += [
-            _interval("Threshold", data["threshold"]),
-            _interval("Repeat interval", data["repeat"]),
-        ]
-    return found
-
-
-def _figure(
-    title: str, value: float | None, unit: str, remark: str, *, signed: bool = False
-) -> Figure:
-    text = number_text(value)
-    if signed and value is not None:
-        text = f"{value:+.2f}".replace("-", "−")
-    return Figure(title, f"{text} {unit}".strip(), remark)
-
-
-def _life(life: dict[str, Any]) -> Figure:
-    remark = ", ".join(part for part in (life["base"], life["remark"]) if part)
-    return _figure(f"Life, {life['title']}", life["cycles"], "FC", remark)
-
-
-def _interval(title: str, interval: dict[str, Any] | None) -> Figure:
-    if interval is None:
-        return Figure(title, "none", "needs an engineer: see the warnings")
-    remark = interval["base"]
-    if interval["cap"]:
-        remark += f"; calculated {interval['uncapped']:,}, cut to {interval['cap']}"
-    return _figure(title, interval["cycles"], "FC", remark)
-
-
-def _test(test: dict[str, Any]) -> TestRow:
-    words = {True: "met", False: "not met", None: "not known"}
-    return TestRow(
-        words[test["met"]],
-        test["met"] is False,
-        test["test"],
-        test["value"],
-        test["limit"],
     )
 
 
@@ -236,35 +173,27 @@ def _note_row(line: dict[str, Any]) -> NoteRow:
     )  # fmt: skip
 
 
-def chart_of(curve: dict[str, Any]) -> str:
-    """A stored curve as SVG; cycles are drawn in thousands once they are many."""
-    scale, unit = 1.0, curve["x_unit"]
-    if unit == "cycles":
-        unit = ""
-        if curve["points"][-1][0] >= 10_000:
-            scale, unit = 1000.0, "thousands"
-    levels = [mark for mark in curve["marks"] if mark["x"] is None]
-    named = [mark for mark in curve["marks"] if mark["x"] is not None]
-    x_label = f"{curve['x_label']}, {unit}" if unit else curve["x_label"]
-    return chart_svg(
-        Chart(
-            title=curve["title"],
-            x_label=x_label,
-            y_label=f"{curve['y_label']}, {curve['y_unit']}",
-            series=[
-                Series(
-                    curve["title"],
-                    [point[0] / scale for point in curve["points"]],
-                    [point[1] for point in curve["points"]],
-                )
-            ],
-            levels=[
-                Level(mark["y"], f"{mark['label']} {number_text(mark['y'])} "
-                      f"{curve['y_unit']}", soft=number == 0)
-                for number, mark in enumerate(levels)
-            ],
-            point=Point(named[0]["x"] / scale, named[0]["y"], named[0]["label"])
-            if named
-            else None,
+def _given(title: str, value: dict[str, Any]) -> GivenRow:
+    """A stored input as text; the long ones by what tells them apart."""
+    kind, words = value["kind"], ""
+    origin = value
+    if kind == "Sourced":
+        words = input_write(value["value"], value["unit"])
+    elif kind == "Stated":
+        words = value["value"].replace("_", " ")
+    elif kind == "WalkerLaw":
+        origin = value["reference"]
+        words = (
+            f"C {value['coefficient']:.4g}, m {value['exponent']:g}, "
+            f"γ {value['gamma']:g}"
         )
-    )  # fmt: skip
+    elif kind == "FatiguePolicy":
+        origin = value["factor"]
+        words = f"factor {origin['value']:g} on {value['multiplies']}"
+    elif kind == "StressLifeFamily":
+        origin = value["curves"][0]
+        words = "Kt " + ", ".join(f"{curve['kt']:g}" for curve in value["curves"])
+    elif kind == "Surroundings":
+        words = value["bay_label"] or "on the geometry"
+    grade = origin.get("grade", "")
+    return GivenRow(title, words, origin.get("source", ""), grade)

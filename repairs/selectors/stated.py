@@ -15,6 +15,12 @@ def stated_inputs(subject: Finding | Repair) -> QuerySet[StatedInput]:
     return rows.exclude(taken_back).select_related("person", "spectrum")
 
 
+def stated_rows(subject: Finding | Repair, name: str) -> QuerySet[StatedInput]:
+    """All that was stated of one input, also what was replaced or taken back."""
+    held = "finding" if isinstance(subject, Finding) else "repair"
+    return StatedInput.objects.filter(**{held: subject}, name=name)
+
+
 def stated_source(row: StatedInput) -> str:
     """Who stated it when, and from which page of which document."""
     where = ", ".join(

@@ -9,14 +9,17 @@ from dataclasses import dataclass
 from django.core.exceptions import ValidationError
 
 from fleet.models import DetectableSize
+from fleet.selectors.kept import fleet_rows_kept
+from fleet.services.chain import stream_end
 from repairs.analysis.assessment import Assessment, Part, assess
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.input_specs import Where
 from repairs.analysis.inputs import SPECS, Inputs, Value
 from repairs.analysis.registry import METHODS, groups_for
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.stress_life.curves import StressLifeFamily
+from repairs.analysis.surroundings import Surroundings
 from repairs.analysis.types import Result, Sourced, Stated, Use
-from repairs.evaluation_text import number_text
+from repairs.input_text import input_number, unit_shown
 from repairs.models import Finding
 from repairs.selectors.latest import Latest, measured_of
 from repairs.services.evaluation_inputs import Choice, Gathered, gather, subject_words
@@ -84,7 +87,8 @@ def evaluation_prepare(
     measured = measured_of(subject)
     found = Gathered()
     if _asks(subject, measured):
-        found = gather(subject, measured, choice, as_of=as_of)
+        with fleet_rows_kept(stream_end("fleet")):
+            found = gather(subject, measured, choice, as_of=as_of)
     inputs = Inputs(found.values | dict(instead or {}))
     return Prepared(assess(choice.use, inputs), inputs, found)
 
@@ -96,26 +100,44 @@ def _asks(subject: Subject, measured: Latest) -> bool:
     return bool(groups_for(Inputs(subject_words(subject, measured))))
 
 
+NUMBER, WORD, OTHER = "number", "word", "other"
+
+
 @dataclass(frozen=True, slots=True)
 class InputLine:
-    """One input that a calculation would use, or would need and does not find."""
+    """One input that a calculation would use, or would need and does not find.
+
+    `form` says how a what-if may change it: a number, one of `words`, or not at all.
+    """
 
     name: str
     title: str
     value: str
+    unit: str
     source: str
     grade: str
+    where: Where
+    form: str
+    words: tuple[str, ...]
+    may_be_stated: bool
     missing: bool = False
 
 
+def input_titles() -> dict[str, str]:
+    """What every input is called, by its name."""
+    return {name: spec.title for name, spec in SPECS.items()}
+
+
 def input_lines(prepared: Prepared) -> list[InputLine]:
-    """What the methods that apply need, in their order, then what else they may use."""
+    """What is missing, then what the methods that apply need, then what else they may
+    use, each in its order."""
     names: dict[str, None] = {}
     use = prepared.result.use
     for answer in prepared.assessment.answers:
         if answer.part is not Part.NOT_APPLICABLE:
             module = METHODS[answer.result.method].module
             names |= dict.fromkeys(module.required(prepared.inputs, use))
+            names |= dict.fromkeys(item.name for item in answer.result.missing)
     if not names:
         return []
     found = prepared.inputs.values
@@ -124,27 +146,37 @@ def input_lines(prepared: Prepared) -> list[InputLine]:
         for name, spec in SPECS.items()
         if name in found and spec.kind is not Stated
     }
-    return [_input_line(name, found.get(name, SPECS[name].default)) for name in names]
+    lines = [_input_line(name, found.get(name, SPECS[name].default)) for name in names]
+    return sorted(lines, key=lambda line: not line.missing)
 
 
 def _input_line(name: str, value: Value | None) -> InputLine:
     spec = SPECS[name]
-    if value is None:
-        where = f"enter it {spec.where}"
-        return InputLine(name, spec.title, "missing", where, "", missing=True)
-    shown, source, grade = _said(value)
-    return InputLine(name, spec.title, shown, source, grade)
+    form = WORD if spec.kind is Stated and spec.words else OTHER
+    if spec.kind in (Sourced, FatiguePolicy):
+        form = NUMBER
+    shown, source, grade = ("", "", "") if value is None else said(value)
+    return InputLine(
+        name,
+        spec.title,
+        shown,
+        unit_shown(spec.unit),
+        source,
+        grade,
+        spec.where,
+        form,
+        spec.words,
+        spec.may_be_stated and form != OTHER,
+        missing=value is None,
+    )
 
 
-def _said(value: Value) -> tuple[str, str, str]:
-    """A value, its source and its grade as text."""
+def said(value: Value) -> tuple[str, str, str]:
+    """A value without its unit, its source and its grade as text."""
     if isinstance(value, Sourced):
-        number = f"{number_text(value.value)} {value.unit}".strip(" -")
-        return number, value.source, value.grade.value
+        return input_number(value.value, value.unit), value.source, value.grade.value
     if isinstance(value, Stated):
         return value.value.replace("_", " "), value.source, ""
-    if isinstance(value, WalkerLaw):
-        return "Walker", value.reference.source, value.reference.grade.value
     if isinstance(value, FatiguePolicy):
         factor = value.factor
         return f"{factor.value:g}", factor.source, factor.grade.value
@@ -152,4 +184,7 @@ def _said(value: Value) -> tuple[str, str, str]:
         factors = ", ".join(f"{curve.kt:g}" for curve in value.curves)
         first = value.curves[0]
         return f"Kt {factors}", first.source, first.grade.value
-    return value.bay_label, value.source, ""
+    if isinstance(value, Surroundings):
+        return value.bay_label, value.source, ""
+    law = value.reference
+    return type(value).__name__.removesuffix("Law"), law.source, law.grade.value

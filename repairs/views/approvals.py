@@ -31,6 +31,7 @@ from repairs.selectors.signatures import Subject, approvals_verified, content_of
 from repairs.selectors.signed_words import to_sign
 from repairs.selectors.substantiation_stages import STAGE_OF
 from repairs.services.approvals import Signed, aircraft_of, approval_sign
+from repairs.services.evaluation_prepare import input_titles
 from repairs.services.evaluations import method_versions
 from repairs.services.substantiation_signing import MEANINGS as SUBSTANTIATION_MEANINGS
 
@@ -92,7 +93,7 @@ def _to_read(subject: Any, content: str) -> dict[str, Any]:
         "approvals": approvals_verified(subject),
     }
     if isinstance(subject, Evaluation):
-        shown = evaluation_shown(subject, method_versions())
+        shown = evaluation_shown(subject, method_versions(), input_titles())
         return read | {"content": content, "digest": digest(content), "shown": shown}
     return read | to_sign(subject, content)
 

@@ -24,25 +24,21 @@ from repairs.selectors.evaluation_shown import evaluation_shown
 from repairs.selectors.evaluations import (
     detectable_sizes,
     evaluation_rows,
-    evaluations_current,
     subject_rows,
 )
 from repairs.selectors.signatures import approvals_verified
 from repairs.selectors.substantiations import folders_citing
 from repairs.services.evaluation_place import Subject
-from repairs.services.evaluation_prepare import (
-    choice_from,
-    default_use,
-    evaluation_prepare,
-    input_lines,
-)
+from repairs.services.evaluation_prepare import choice_from, input_titles
 from repairs.services.evaluations import (
     evaluation_make,
     evaluation_remake,
     method_versions,
 )
+from repairs.views.evaluate import evaluate_context, kept_choice
 
 ACTION = "evaluation_make"
+ON_PAPER = ("prepared", "checked", "approved")
 
 
 @require_http_methods(FORM_METHODS)
@@ -62,8 +58,9 @@ def evaluation_new_repair(request: Request, pk: int) -> HttpResponse:
 def _new(request: Request, subject: Subject) -> HttpResponse:
     require(request.user, ACTION, subject.aircraft.operator_id)
     sizes = detectable_sizes(subject.aircraft.variant.aircraft_type)
-    first = {"use": default_use(subject).value}
-    form = EvaluationForm(request.POST or None, sizes=sizes, initial=first)
+    form = EvaluationForm(
+        request.POST or None, sizes=sizes, initial=kept_choice(request, subject)
+    )
 
     def make() -> Evaluation:
         choice = choice_from(subject, **form.cleaned_data)
@@ -73,16 +70,7 @@ def _new(request: Request, subject: Subject) -> HttpResponse:
 
     if made := sent(form, make, about=[subject]):
         return redirect("evaluation", pk=made.pk)
-    prepared = evaluation_prepare(
-        subject=subject, choice=choice_from(subject), as_of=today()
-    )
-    context = {
-        "subject": subject,
-        "form": form,
-        "prepared": prepared,
-        "inputs": input_lines(prepared),
-        "current": evaluations_current(subject),
-    }
+    context = evaluate_context(request, subject) | {"form": form}
     return render(request, "repairs/evaluation_new.html", context)
 
 
@@ -91,7 +79,7 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
     """Results, tests, curves and the calculation note of one evaluation."""
     row = visible_or_404(evaluation_rows(), request.user, pk=pk)
     context = {
-        "shown": evaluation_shown(row, method_versions()),
+        "shown": evaluation_shown(row, method_versions(), input_titles()),
         "approvals": approvals_verified(row),
         "folders": folders_citing(row),
         "history": history_of(row),
@@ -100,6 +88,18 @@ def evaluation(request: Request, pk: int) -> HttpResponse:
         "may_raise": may(request.user, "requirement_raise", row.operator_id),
     }
     return render(request, "repairs/evaluation.html", context)
+
+
+@require_safe
+def evaluation_note(request: Request, pk: int) -> HttpResponse:
+    """The calculation note as a document to print, sign and file."""
+    row = visible_or_404(evaluation_rows(), request.user, pk=pk)
+    context = {
+        "shown": evaluation_shown(row, method_versions(), input_titles()),
+        "approvals": approvals_verified(row),
+        "paper": ON_PAPER,
+    }
+    return render(request, "repairs/evaluation_note.html", context)
 
 
 @require_POST

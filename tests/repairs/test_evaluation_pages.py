@@ -137,7 +137,7 @@ def test_what_is_not_covered_shows_no_number(client, world):
 def test_the_form_shows_what_will_be_used_before_it_is_made(client, world, finding):
     client.force_login(world.engineer)
     text = client.get(address("evaluation_new", finding.pk)).content.decode()
-    assert "What will be used" in text
+    assert "as the record stands; change a number to see what if" in text
     assert "crack length, tip to tip" in text
     assert "panel UPPER SIDE R" in text
     assert "penetrant, open skin: 6.35 mm" in text
