@@ -8,13 +8,16 @@ from typing import Any
 from repairs.analysis.errors import InputError
 from repairs.analysis.spectra.cycles import ConstantCycle, PressureCycle
 from repairs.analysis.spectra.exceedance import ExceedanceTable
+from repairs.analysis.spectra.per_flight import FlightCycles, cycles_of
 from repairs.analysis.spectra.plain import Kind
 from repairs.analysis.spectra.sequence import UserSequence
 from repairs.analysis.spectra.wing_sequence import WingSequence
 
 UNKNOWN_KIND = "A spectrum is of kind {read!r}. Use one of: {known}."
 
-Spectrum = ConstantCycle | PressureCycle | WingSequence | UserSequence | ExceedanceTable
+StressSpectrum = ConstantCycle | WingSequence | UserSequence | ExceedanceTable
+"""Kinds that state stress themselves."""
+Spectrum = StressSpectrum | PressureCycle
 
 
 def spectrum_from(data: Mapping[str, Any]) -> Spectrum:
@@ -40,3 +43,11 @@ def spectrum_from(data: Mapping[str, Any]) -> Spectrum:
             return ExceedanceTable.from_data(data)
         case read:
             raise InputError(UNKNOWN_KIND.format(read=read, known=", ".join(Kind)))
+
+
+def flight_of(spectrum: StressSpectrum) -> FlightCycles:
+    """Return the cycles of a flight of a spectrum, treated and counted as it states.
+
+    A block of the wing sequence takes tens of milliseconds: done once a spectrum.
+    """
+    return cycles_of(spectrum.sequence(), spectrum.treatment)

@@ -15,7 +15,7 @@ import numpy as np
 
 from repairs.analysis.errors import InputError, within
 from repairs.analysis.spectra.plain import NO_KEY, Content, Kind
-from repairs.analysis.spectra.sequence import LoadSequence
+from repairs.analysis.spectra.sequence import LoadSequence, Residue, Treatment
 from repairs.analysis.types import GrossStress
 
 ONE_STRESS = (
@@ -59,6 +59,16 @@ class ConstantCycle:
         if self.stated_by is StatedBy.MAXIMUM:
             return GrossStress(self.stress)
         return GrossStress(self.stress / (1 - self.ratio))
+
+    @property
+    def treatment(self) -> Treatment:
+        """Nothing is left to choose: the cycle comes again and is whole."""
+        return Treatment(Residue.REPEATING)
+
+    @property
+    def warnings(self) -> tuple[str, ...]:
+        """Nothing was chosen that must be said."""
+        return ()
 
     def sequence(self) -> LoadSequence:
         """Return the cycle as a block of one flight."""

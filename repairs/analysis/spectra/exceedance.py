@@ -48,6 +48,10 @@ TOO_RARE = (
     "Less than half an occurrence in {flights} flights at {levels} MPa: these levels "
     "are not in the sequence. Longer blocks hold them."
 )
+AT_THEIR_LEVELS = (
+    "The table counts occurrences, which stand at their own levels: say counted_at = "
+    "{level}, not {read}."
+)
 NOTHING_FLOWN = "The table gives no whole occurrence in {flights} flights."
 
 
@@ -144,6 +148,10 @@ class ExceedanceTable:
     def occurrences(self) -> Occurrences:
         r"""Return how often each increment occurs, :math:`n_i = E_i - E_{i+1}`."""
         if self.counts is Counts.OCCURRENCES:
+            if self.counted_at is not CountedAt.LEVEL:
+                raise InputError(
+                    AT_THEIR_LEVELS.format(level=CountedAt.LEVEL, read=self.counted_at)
+                )
             return Occurrences(self.levels, self.numbers)
         pairs = itertools.pairwise(self.numbers)
         for (before, read), level in zip(pairs, self.levels[1:], strict=True):

@@ -183,7 +183,7 @@ def gust_increment(
 
     References
     ----------
-    .. [1] 14 CFR 25.335(d)(1) and 23.341(c); the form is Pratt's, NACA TR 1206.
+    .. [1] 14 CFR 25.335(d)(1) and 23.341(c); the form is Pratt's, NACA TN 2964, 1953.
     """
     within("Gust velocity, ft/s", gust_fps_eas, -200, 200, "derived gust velocities")
     within("Airspeed, kt EAS", speed_kt_eas, 1, 800, "equivalent airspeed")

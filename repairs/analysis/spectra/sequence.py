@@ -197,6 +197,11 @@ class UserSequence:
         if not self.repeats and self.treatment.residue is Residue.REPEATING:
             raise InputError(ONE_OFF_REPEATED)
 
+    @property
+    def warnings(self) -> tuple[str, ...]:
+        """What must be said with every result of these choices."""
+        return self.treatment.warnings(repeats=self.repeats)
+
     def sequence(self) -> LoadSequence:
         """Return the points as they were given; `counting.treated` treats them."""
         return LoadSequence(np.array(self.points), self.flights, self.repeats)

@@ -37,7 +37,13 @@ import numpy as np
 from repairs.analysis.errors import InputError, within
 from repairs.analysis.spectra.drawn import Keys, flown
 from repairs.analysis.spectra.plain import Content, Kind
-from repairs.analysis.spectra.sequence import Floats, LoadSequence, Residue, Whole
+from repairs.analysis.spectra.sequence import (
+    Floats,
+    LoadSequence,
+    Residue,
+    Treatment,
+    Whole,
+)
 from repairs.analysis.types import Grade, Reference, Sourced
 
 WING_LOWER_SURFACE = "wing_lower_surface"
@@ -177,9 +183,9 @@ class WingSequence:
             )
 
     @property
-    def residue(self) -> Residue:
-        """A block that comes again, so only whole cycles are counted."""
-        return Residue.REPEATING
+    def treatment(self) -> Treatment:
+        """A block that comes again; its gusts are cut and left out by level."""
+        return Treatment(Residue.REPEATING)
 
     @property
     def warnings(self) -> tuple[str, ...]:
@@ -253,7 +259,7 @@ class WingSequence:
             "halves": str(self.halves),
             "truncate_above": self.truncate_above,
             "omit_below": self.omit_below,
-            "residue": str(self.residue),
+            "residue": str(self.treatment.residue),
         }
 
     @classmethod

@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 
 from repairs.analysis.errors import InputError, OutOfRangeError
 from repairs.analysis.spectra import sequence, table_text
-from repairs.analysis.spectra.content import spectrum_from
+from repairs.analysis.spectra.content import flight_of, spectrum_from
 from repairs.analysis.spectra.cycles import ConstantCycle, PressureCycle, StatedBy
 from repairs.analysis.spectra.exceedance import CountedAt, Counts, ExceedanceTable
 from repairs.analysis.spectra.sequence import (
@@ -77,6 +77,30 @@ def test_blank_is_not_zero(spectrum):
                     continue
                 with pytest.raises(InputError, match=key):
                     spectrum_from(data | {key: blank})
+
+
+@pytest.mark.parametrize("spectrum", [s for s in SPECTRA if s != SPECTRA[2]])
+def test_every_kind_that_states_stress_gives_a_flight(spectrum):
+    flight = flight_of(spectrum)
+    assert flight.maxima.min() > 0
+    assert flight.per_flight.min() > 0
+    assert len(flight.maxima) == len(flight.ratios) == len(flight.per_flight)
+    assert all(isinstance(warning, str) for warning in spectrum.warnings)
+
+
+def test_a_constant_cycle_comes_once_a_flight():
+    flight = flight_of(ConstantCycle(StatedBy.RANGE, 80.0, -0.5))
+    assert flight.maxima.tolist() == pytest.approx([80 / 1.5])
+    assert flight.ratios.tolist() == pytest.approx([-0.5])
+    assert flight.per_flight.tolist() == [1.0]
+
+
+def test_choices_of_a_user_sequence_are_told():
+    clipped = SPECTRA[5]
+    assert len(clipped.warnings) == 2
+    block = UserSequence((0.0, 80.0), 1, True, Treatment(Residue.HALVES))
+    assert block.warnings == (sequence.HALVES_OF_BLOCK,)
+    assert SPECTRA[4].warnings == ()
 
 
 def test_rows_of_the_first_schema_are_constant_cycles():

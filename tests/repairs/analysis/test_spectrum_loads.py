@@ -38,7 +38,9 @@ def test_exceedances_are_not_occurrences():
     found = table().occurrences()
     assert found.increments == (20, 30, 40)
     assert found.counts == (880, 111, 9)
-    read_wrongly = table(counts=Counts.OCCURRENCES).occurrences()
+    read_wrongly = table(
+        counts=Counts.OCCURRENCES, counted_at=CountedAt.LEVEL
+    ).occurrences()
     assert sum(read_wrongly.counts) == 1129
 
 
@@ -129,6 +131,7 @@ def test_levels_too_rare_for_the_block_are_told():
         ({"numbers": (1000.0, 120.0, -9.0, -10.0)}, "finite count"),
         ({"numbers": (1000.0, 120.0, math.nan, 0.0)}, "finite count"),
         ({"flights": 0}, "whole number"),
+        ({"counts": Counts.OCCURRENCES}, "counted_at = level, not upper_edge"),
         ({"seed": "7"}, "seed"),
     ],
 )

@@ -130,6 +130,17 @@ def test_in_the_severest_flight_the_lowest_gust_lies_under_the_ground_stress():
     assert cycles.ranges.max() / 70 == pytest.approx(2.6 + 0.6)
 
 
+@pytest.mark.parametrize("flight_type", "CDEFGHIJ")
+def test_gusts_and_ground_counted_apart_lose_the_largest_range(flight_type):
+    gusts = wing.FLIGHT_TYPES[flight_type][1]
+    highest = max(
+        level for level, number in zip(wing.LEVELS, gusts, strict=True) if number
+    )
+    apart = max(2 * highest, 1.5)  # a gust alone, or the ground to the mean
+    whole = counting.counted(made().flight(flight_type), AGAIN).ranges.max() / 70
+    assert whole > apart + 0.19
+
+
 def test_shares_of_level_to_the_fifth_power():
     weights = np.array(TOTALS) * np.array(wing.LEVELS) ** 5
     shares = 100 * weights / weights.sum()
