@@ -9,12 +9,14 @@ from django_otp.plugins.otp_static.models import StaticToken
 from django_otp.plugins.otp_totp.models import TOTPDevice
 
 from fleet.models import Authorisation, Operator, Person, Policy, Role, User
+from fleet.selectors.kept import of_the_fleet
 
 SECOND_FACTOR = "second_factor_required"
 """Policy: above zero, signatories and certifying staff sign with a second factor."""
 SIGNING_ROLES = (Role.SIGNATORY, Role.CERTIFIER)
 
 
+@of_the_fleet
 def policy(operator: Operator, key: str, as_of: dt.date) -> Policy | None:
     """The policy row in force: the operator's own before the one for its regime."""
     rows = Policy.objects.filter(

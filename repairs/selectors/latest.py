@@ -34,6 +34,6 @@ def _latest_values(finding: Finding) -> dict[str, MeasuredValue]:
         measurement__finding=finding,
         measurement__replaced_by__isnull=True,
         status="known",
-    ).select_related("measurement")
+    ).select_related("measurement").order_by("pk")
     ordered = sorted(rows, key=lambda row: (row.measurement.number, row.pk))
     return {row.quantity: row for row in ordered}

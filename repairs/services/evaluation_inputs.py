@@ -16,6 +16,7 @@ from django.db import models
 from fleet.location.geometry import geometry_from_toml
 from fleet.models import (
     AdoptedValue,
+    AircraftType,
     DetectableSize,
     FatiguePolicy,
     Material,
@@ -26,6 +27,7 @@ from fleet.models import (
     Spectrum,
 )
 from fleet.selectors.counters import aircraft_standing
+from fleet.selectors.kept import of_the_fleet
 from fleet.selectors.people import policy
 from fleet.selectors.validity import validity_limits
 from repairs.analysis.inputs import SPECS, Value
@@ -38,6 +40,7 @@ from repairs.selectors.latest import Latest
 from repairs.selectors.stated import stated_inputs, stated_source
 from repairs.services.evaluation_materials import (
     STRENGTHS,
+    Given,
     adopted_number,
     adopted_values,
     grade_of,
@@ -212,7 +215,7 @@ def gather(
     if skin is not None:
         _skin(found, subject, skin, operator)
     _pressures(found, subject)
-    for name, row in adopted_values(operator, None).items():
+    for name, row in _adopted(operator).items():
         if name in ADOPTABLE:
             found.put(name, adopted_number(row, SPECS[name].unit), row)
     _policies(found, subject, operator, as_of)
@@ -328,8 +331,15 @@ def _skin(found: Gathered, subject: Subject, skin: Skin, operator: Operator) -> 
     material = fitted.material if fitted and fitted.material else panel.material
     _clad(found, panel, fitted, material)
     if material is not None and skin.thickness_mm is not None:
-        for name, value, used in material_inputs(material, operator, skin.thickness_mm):
+        for name, value, used in _of_material(material, operator, skin.thickness_mm):
             found.put(name, value, material, used)
+
+
+@of_the_fleet
+def _of_material(
+    material: Material, operator: Operator, thickness_mm: float
+) -> list[Given]:
+    return list(material_inputs(material, operator, thickness_mm))
 
 
 def _cycle(found: Gathered, panel: Panel) -> None:
@@ -374,9 +384,7 @@ def _policies(
     found: Gathered, subject: Subject, operator: Operator, as_of: dt.date
 ) -> None:
     made = subject.aircraft.variant.aircraft_type
-    rows = {
-        row.name: row for row in made.fatigue_policies.filter(replaced_by__isnull=True)
-    }
+    rows = _policy_rows(made)
     for name, key in POLICIES.items():
         if row := rows.get(key):
             found.put(name, _policy(row), row)
@@ -386,6 +394,18 @@ def _policies(
     if largest is not None:
         source = f"operator's largest interval of the class ({largest.source})"
         found.number("class_maximum", float(largest.value), source, largest)
+
+
+@of_the_fleet
+def _policy_rows(made: AircraftType) -> dict[str, FatiguePolicy]:
+    held = made.fatigue_policies.filter(replaced_by__isnull=True).order_by("pk")
+    return {row.name: row for row in held}
+
+
+@of_the_fleet
+def _adopted(operator: Operator) -> dict[str, AdoptedValue]:
+    """Adopted values that are no property of a material."""
+    return adopted_values(operator, None)
 
 
 def _policy(row: FatiguePolicy) -> scatter.FatiguePolicy:

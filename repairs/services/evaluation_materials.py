@@ -44,7 +44,7 @@ def material_inputs(
 
     An adopted value goes before the recorded one.
     """
-    rows = list(material.properties.all())
+    rows = list(material.properties.order_by("pk"))
     adopted = adopted_values(operator, material)
     for name, (quantity, unit) in STRENGTHS.items():
         if quantity in adopted:
@@ -153,7 +153,7 @@ def _curves_of(
     ).last()
     if bare is None or bare.pk == material.pk:
         return material, []
-    return bare, _curves(bare.properties.all())
+    return bare, _curves(bare.properties.order_by("pk"))
 
 
 def _curves(rows: Iterable[MaterialProperty]) -> list[StressLifeCurve]:

@@ -165,7 +165,10 @@ class _Again:
 
 
 def _settle(
-    part: RecalculationPart, batch: list[int], actor: User | None, at: dt.datetime
+    part: RecalculationPart,
+    batch: list[int],
+    actor: User | None,
+    at: dt.datetime,
 ) -> int:
     """Calculate a batch, then keep it in one writing; how many there were.
 
