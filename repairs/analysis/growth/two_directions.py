@@ -48,7 +48,7 @@ FLAW_BELOW_THRESHOLD = (
 NO_FLAW = (
     "The path has no part-through factors. A through crack's life is `growth_cycles`."
 )
-THROUGH_POINTS = 60
+PART_POINTS, THROUGH_POINTS = 30, 60
 FIRST_STEP = 1e-9
 """First step in ln a, on the start's own slope: factors may jump a little at a/c = 1,
 where a flaw often starts, and the integrator would look for the jump."""
@@ -168,6 +168,18 @@ def grow_part_through(
     ----------
     .. [1] USAF Damage Tolerant Design Handbook, 11.3: two-point growth.
     """
+    return _grown(law, factors, cycle, start, thickness)
+
+
+def _grown(
+    law: GrowthLaw,
+    factors: TwoFactors,
+    cycle: StressCycle,
+    start: tuple[float, float],
+    thickness: float,
+    points: int = 0,
+) -> TwoAxisGrowth:
+    """Grow a flaw until it is through; `points` of history, or the steps taken."""
     refuse_threshold(law, FLAW_BELOW_THRESHOLD)
 
     def slopes(log_depth: float, state: Floats) -> tuple[float, float]:
@@ -190,6 +202,7 @@ def grow_part_through(
         (length + (after - begin) * more, (after - begin) * passed),
         method="DOP853",
         first_step=min(EARLY_STEP, end - after) or None,
+        t_eval=np.linspace(after, end, points) if points else None,
         rtol=1e-8,
         atol=1e-12,
     )
@@ -267,7 +280,7 @@ def grow_to_end(
     """
     if path.part is None:
         raise AnalysisError(NO_FLAW)
-    grown = grow_part_through(law, path.part, cycle, start, path.thickness)
+    grown = _grown(law, path.part, cycle, start, path.thickness, PART_POINTS)
     through = GrowthTable(law, path.through, cycle, grown.length, path.end)
     lengths = np.geomspace(grown.length, path.end, THROUGH_POINTS)
     lengths[0], lengths[-1] = grown.length, path.end  # geomspace rounds its ends

@@ -143,6 +143,18 @@ def test_history_runs_through_break_through_without_a_step():
     assert np.all(np.diff(history.length) > 0)
     assert np.all(np.diff(history.depth) >= 0)
     assert (history.depth[-1], history.length[-1]) == (6.0, 40.0)
+    # Points of the part-through stage lie on the growth from the start to them.
+    middle = len(history.depth) // 6
+    again = td.grow_part_through(
+        LAW,
+        HOLE,
+        CYCLE,
+        (float(history.depth[middle]), float(history.length[middle])),
+        6.0,
+    )
+    part = td.grow_part_through(LAW, HOLE, CYCLE, (1.27, 1.27), 6.0)
+    assert history.cycles[middle] + again.cycles == pytest.approx(part.cycles, rel=1e-6)
+    assert again.length == pytest.approx(part.length, rel=1e-6)
 
 
 def test_a_crack_of_the_flaws_depth_grows_as_a_wide_surface_crack_should():
