@@ -70,7 +70,7 @@ def loads_across(
 
     Notes
     -----
-    A diagonal crack has no method here and is refused.
+    Range of the two; a diagonal crack has no method here and is refused.
 
     References
     ----------

@@ -197,7 +197,7 @@ def bending_coefficient(edges: Edges) -> float:
 
     Notes
     -----
-    Long web, pure bending, neutral axis in the middle.
+    Range: long web, pure bending, neutral axis in the middle.
 
     References
     ----------

@@ -105,14 +105,14 @@ def basis_allowed(basis: str, *, single_load_path: bool) -> Applicability:
     Parameters
     ----------
     basis
-        A (99 % with 95 %), B (90 % with 95 %) or S (specified minimum).
+        A (99 % with 95 %), B (90 % with 95 %) or S (specified minimum) [-].
     single_load_path
         Whether failure of this member loses the component.
 
     Returns
     -------
     Applicability
-        B for a single load path is not met; S is not stated by the rule (None).
+        B for a single load path is not met; S is not stated by the rule (None) [-].
 
     Notes
     -----

@@ -200,7 +200,8 @@ def largest_crippling(family: Family, yield_stress: float) -> float:
 
     Notes
     -----
-    From memory: a result that rests on it is barred from approval.
+    Range: the families listed. From memory: a result that rests on it is barred from
+    approval.
 
     References
     ----------

@@ -93,7 +93,7 @@ def member_checks(kind: LoadKind, inputs: Inputs, note: Note) -> tuple[Check, ..
     Returns
     -------
     tuple of Check
-        At limit and at ultimate; see `governing`.
+        At limit and at ultimate [MPa]; see `governing`.
 
     Notes
     -----

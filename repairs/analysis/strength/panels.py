@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from repairs.analysis.errors import within
 from repairs.analysis.strength import buckling, columns, interaction
 from repairs.analysis.strength.checks import Check, Demand, Level, MemberMaterial
 from repairs.analysis.strength.load_kinds import Mechanism
@@ -91,6 +92,52 @@ def shear_checks(
             stress,
             web_buckling_stress(web, material),
             buckling.SHEAR_K,
+        ),
+    )
+
+
+def tension_checks(
+    web: Web, material: MemberMaterial, demand: Demand, hole_width: float
+) -> tuple[Check, ...]:
+    """Return the static checks of a panel in tension along its length, uncracked.
+
+    Parameters
+    ----------
+    web, material, demand
+        Geometry [mm], strengths [MPa], force over the width [N].
+    hole_width
+        Sum of hole diameters in the worst row [mm].
+
+    Returns
+    -------
+    tuple of Check
+        Net section at ultimate, yield at limit.
+
+    Notes
+    -----
+    Range holes below 90 % of the width. A crack, or a hole that may crack, has methods
+    of its own.
+
+    References
+    ----------
+    .. [1] Load over the net section.
+    """
+    lost = within("Holes over width", hole_width / web.depth, 0, 0.9, "a net section")
+    net = web.depth * web.thickness * (1 - lost)
+    return (
+        Check(
+            Mechanism.NET_SECTION,
+            Level.ULTIMATE,
+            demand.ultimate / net,
+            material.tension_ultimate,
+            material.reference,
+        ),
+        Check(
+            Mechanism.TENSION_YIELD,
+            Level.LIMIT,
+            demand.limit / net,
+            material.tension_yield,
+            material.reference,
         ),
     )
 

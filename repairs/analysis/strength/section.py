@@ -227,7 +227,7 @@ def fibre_stress(
 
     Notes
     -----
-    Elastic. Local buckling is not in it.
+    Range: elastic. Local buckling is not in it.
 
     References
     ----------

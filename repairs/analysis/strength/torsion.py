@@ -60,7 +60,7 @@ def closed_torsion(torque: float, enclosed: float, walls: tuple[Wall, ...]) -> T
     Returns
     -------
     Twist
-        At the thinnest wall.
+        At the thinnest wall [MPa], [mm^4].
 
     Notes
     -----
@@ -90,7 +90,7 @@ def open_torsion(torque: float, walls: tuple[Wall, ...]) -> Twist:
     Returns
     -------
     Twist
-        At the thickest wall.
+        At the thickest wall [MPa], [mm^4].
 
     Notes
     -----
