@@ -23,6 +23,10 @@ NO_TENSION = (
     "The largest stress of the flight is {largest:.4g} MPa; a cycle needs tension "
     "somewhere in flight. No crack is opened by this flight."
 )
+NO_STRESS = (
+    "A flight needs a stress on the ground and one in flight. The hoop stress of a "
+    "parked aircraft is 0: enter it."
+)
 FOOT = 0.3048
 """Metres in one foot, exact."""
 GRAVITY, GAS = 9.80665, 287.05287
@@ -54,8 +58,10 @@ def ground_air_ground(ground: Iterable[float], flight: Iterable[float]) -> Stres
     ----------
     .. [1] The largest range of a repeating flight by rainflow counting.
     """
-    flown = tuple(flight)
-    smallest, largest = min(*ground, *flown), max(flown)
+    parked, flown = tuple(ground), tuple(flight)
+    if not parked or not flown:
+        raise InputError(NO_STRESS)
+    smallest, largest = min(parked + flown), max(flown)
     if not largest > 0:
         raise InputError(NO_TENSION.format(largest=largest))
     return StressCycle(GrossStress(largest), smallest / largest)

@@ -34,8 +34,6 @@ INTER_RIVET = Reference(
     "Sheet between rivets as a wide column, elementary; fixity is an input",
     Grade.DERIVED,
 )
-ELASTIC_SHARE = 0.7
-"""Share of compression yield above which the tangent modulus is needed [-]."""
 
 
 def _fixity(value: float, source: str) -> Sourced:
@@ -227,8 +225,8 @@ def inter_rivet_stress(
     Returns
     -------
     float
-        Stress [MPa], never above F_cy. Above 0.7 F_cy with the tangent modulus; without
-        n by Johnson's parabola from half of F_cy.
+        Stress [MPa], never above F_cy: with the tangent modulus, which matters above
+        about 0.7 F_cy; without n by Johnson's parabola from half of F_cy.
 
     Notes
     -----
@@ -249,6 +247,4 @@ def inter_rivet_stress(
     )
     if shape is None:
         return johnson(elastic, yield_stress)
-    if elastic <= ELASTIC_SHARE * yield_stress:
-        return elastic
     return tangent_stress(elastic, modulus, yield_stress, shape)

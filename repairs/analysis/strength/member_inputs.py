@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import math
 
-from repairs.analysis.errors import InputError
+from repairs.analysis.errors import InputError, within
 from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.note import Note
 from repairs.analysis.strength import buckling, columns
@@ -135,6 +135,19 @@ def _loads(inputs: Inputs, note: Note, symbol: str, name: str) -> tuple[float, f
     return limit, factor * limit
 
 
+def _force(inputs: Inputs, note: Note, sign: int) -> tuple[float, float]:
+    kind = LoadKind.TENSION if sign > 0 else LoadKind.COMPRESSION
+    within(
+        f"Limit force along its load kind, {kind}, N",
+        sign * inputs.number("member_limit_force").value,
+        1e-9,
+        1e12,
+        "tension is positive",
+        "Correct the sign of the force or the load kind.",
+    )
+    return _loads(inputs, note, "P_lim", "member_limit_force")
+
+
 def _left(inputs: Inputs, note: Note) -> float:
     area = _read(inputs, note, "A", "member_area")
     lost = _read(inputs, note, "ΔA", "member_lost_area")
@@ -150,7 +163,7 @@ def _origin(value: Sourced) -> Reference:
 
 
 def _tension(inputs: Inputs, note: Note) -> tuple[Check, ...]:
-    limit, ultimate = _loads(inputs, note, "P_lim", "member_limit_force")
+    limit, ultimate = _force(inputs, note, 1)
     area = _left(inputs, note)
     note.warn(HELD)
     return (
@@ -172,7 +185,7 @@ def _tension(inputs: Inputs, note: Note) -> tuple[Check, ...]:
 
 
 def _compression(inputs: Inputs, note: Note) -> tuple[Check, ...]:
-    limit, ultimate = _loads(inputs, note, "P_lim", "member_limit_force")
+    limit, ultimate = _force(inputs, note, -1)
     area = _left(inputs, note)
     inertia = _read(inputs, note, "I", "member_inertia")
     length = _read(inputs, note, "L", "member_length")

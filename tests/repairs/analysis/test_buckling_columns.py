@@ -197,6 +197,7 @@ def test_thinner_sheet_or_wider_pitch_buckles_sooner(thickness, pitch, share):
     assert stress(thickness * share, pitch) < stress(thickness, pitch)
     assert stress(thickness, pitch / share) < stress(thickness, pitch)
     assert stress(thickness, pitch, 12.0) <= 280
+    assert stress(thickness * share, pitch, 12.0) <= stress(thickness, pitch, 12.0)
 
 
 def test_published_fixities_disagree_and_are_kept_apart():

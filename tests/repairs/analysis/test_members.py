@@ -354,6 +354,8 @@ RECORD = {
 def test_a_members_record_gives_checks_of_its_kind(kind):
     note = Note()
     only = {name: RECORD[name] for name in member_inputs.needed(kind)}
+    if kind is LoadKind.TENSION:
+        only["member_limit_force"] = recorded(20_000, "N")
     found = member_inputs.member_checks(kind, inputs(only), note)
     table = set(load_kinds.checks_for(Structure.MEMBER, kind))
     assert {c.mechanism for c in found} <= table
@@ -388,9 +390,11 @@ def test_a_members_record_that_cannot_be():
         )
     with pytest.raises(InputError, match="Lost area"):
         member_inputs.member_checks(
-            LoadKind.TENSION,
+            LoadKind.COMPRESSION,
             inputs(RECORD, member_lost_area=recorded(200, "mm2")),
             Note(),
         )
+    with pytest.raises(OutOfRangeError, match="sign of the force"):
+        member_inputs.member_checks(LoadKind.TENSION, inputs(RECORD), Note())
     with pytest.raises(InputError, match="no method on recorded numbers"):
         member_inputs.needed(LoadKind.TORSION)

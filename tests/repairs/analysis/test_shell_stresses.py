@@ -241,6 +241,8 @@ def test_one_cycle_from_ground_to_air():
     assert (pressure.maximum, pressure.ratio) == (68.0, 0.0)
     with pytest.raises(InputError, match="needs tension"):
         flight_cycle.ground_air_ground((0.0,), (-5.0, 0.0))
+    with pytest.raises(InputError, match="on the ground"):
+        flight_cycle.ground_air_ground((), (68.0,))
 
 
 @given(st.floats(0, 50), st.floats(1, 50))
