@@ -16,7 +16,7 @@ from pathlib import Path
 
 import numpy as np
 
-from repairs.analysis.growth import blocks, by_cycle, retardation
+from repairs.analysis.growth import blocks, by_cycle, loop, retardation
 from repairs.analysis.growth import separable as gs
 from repairs.analysis.growth import two_directions as td
 from repairs.analysis.growth.laws import StressCycle, WalkerLaw
@@ -46,7 +46,7 @@ FLAW = (1.27, 1.27)
 MEAN_STRESS = 50.0
 SEED = 20261201
 FINDINGS = 10_000
-RUNS = 3
+RUNS = 5
 NEW_PROCESS = (
     "import time; t = time.perf_counter(); "
     "from tests.bench import growth; s = time.perf_counter(); "
@@ -90,7 +90,7 @@ def models() -> dict[str, retardation.Retardation | None]:
     }
 
 
-def compiled_c(folder: Path) -> retardation.March:
+def compiled_c(folder: Path) -> loop.March:
     """The same loop in C, called as the program calls its own."""
     library = folder / "growth.so"
     command = ["cc", "-O2", "-shared", "-fPIC", str(SOURCE), "-o", str(library), "-lm"]
@@ -108,7 +108,7 @@ def compiled_c(folder: Path) -> retardation.March:
 
 
 def run_with(
-    march: retardation.March,
+    march: loop.March,
     block: blocks.CycleBlock,
     model: retardation.Retardation | None,
 ) -> tuple[by_cycle.SequenceGrowth, float, float]:
@@ -147,7 +147,7 @@ def first_run() -> None:
 
 def against_c(block: blocks.CycleBlock) -> float:
     """Print each model beside C; return seconds of a life without retardation."""
-    ours = retardation.compiled_march()
+    ours = loop.compiled_march()
     plain = 0.0
     with tempfile.TemporaryDirectory() as folder:
         theirs = compiled_c(Path(folder))
@@ -158,13 +158,13 @@ def against_c(block: blocks.CycleBlock) -> float:
                 their.append(run_with(theirs, block, model))
             grown, reference = mine[0][0], their[0][0]
             assert (grown.cycles, grown.end) == (reference.cycles, reference.end)
-            whole, loop = min(r[1] for r in mine), min(r[2] for r in mine)
+            whole, ours_in = min(r[1] for r in mine), min(r[2] for r in mine)
             in_c = min(r[2] for r in their)
             plain = plain or whole
             print(
                 f"{name:<16}{grown.cycles:>11,} cycles{grown.flights:>9,} flights "
-                f"{whole:>7.3f} s whole, loop {loop:.3f} s, in C {in_c:.3f} s: "
-                f"{loop / in_c:.2f} times C"
+                f"{whole:>7.3f} s whole, loop {ours_in:.3f} s, in C {in_c:.3f} s: "
+                f"{ours_in / in_c:.2f} times C"
             )
     return plain
 

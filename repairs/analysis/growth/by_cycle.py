@@ -16,7 +16,7 @@ from enum import StrEnum
 import numpy as np
 
 from repairs.analysis.errors import AnalysisError, OutOfRangeError, within
-from repairs.analysis.growth import retardation as kernel
+from repairs.analysis.growth import loop
 from repairs.analysis.growth.blocks import CycleBlock, driven_ranges
 from repairs.analysis.growth.closure import ElberLaw, NewmanLaw
 from repairs.analysis.growth.laws import Floats, FormanLaw, GrowthLaw, WalkerLaw
@@ -53,7 +53,7 @@ class End(StrEnum):
     ARRESTED = "the crack does not grow under this sequence"
 
 
-ENDS = {kernel.AT_END: End.REACHED, kernel.FRACTURE: End.FRACTURE}
+ENDS = {loop.AT_END: End.REACHED, loop.FRACTURE: End.FRACTURE}
 
 
 @dataclass(frozen=True, slots=True)
@@ -150,36 +150,36 @@ class _Run:
         path: FlawPath,
         following: Following,
         model: Retardation | None,
-        march: kernel.March | None = None,
+        march: loop.March | None = None,
     ) -> None:
         within("Flights to follow", following.flights, 1, 1e9, "a whole number")
         self.block, self.path = block, path
-        self.march = march or kernel.compiled_march()
+        self.march = march or loop.compiled_march()
         self.driven = driven_ranges(law, block.maximum, block.ratio)
         self.maximum = np.ascontiguousarray(block.maximum, dtype=np.float64)
         self.span = self.maximum * (1 - block.ratio)
         self.constants = _constants(law, path, following)
-        self.model = model.fill(self.constants) if model else kernel.NONE
+        self.model = model.fill(self.constants) if model else loop.NONE
         if isinstance(model, Willenborg) and not isinstance(law, WalkerLaw | FormanLaw):
             raise OutOfRangeError(NO_RATIO)
         self.place = np.zeros(2, dtype=np.int64)
         self.points: list[tuple[int, float, float]] = []
-        self.state = np.zeros(kernel.FIRST_MEMORY + 2 * kernel.MEMORY)
+        self.state = np.zeros(loop.FIRST_MEMORY + 2 * loop.MEMORY)
         blocks = math.ceil(following.flights / block.flights)
         self.most = blocks * block.cycles
         self.pause = block.cycles * math.ceil(PAUSE / block.cycles)
 
     def grown(self, start: tuple[float, float]) -> SequenceGrowth:
         """Run until the crack ends."""
-        self.state[kernel.DEPTH], self.state[kernel.LENGTH] = start
+        self.state[loop.DEPTH], self.state[loop.LENGTH] = start
         self._keep()
         through: BreakThrough | None = None
-        reason = kernel.THROUGH
+        reason = loop.THROUGH
         if self.path.part is not None and start[0] < self.path.thickness:
             reason = self._stage(self.path.part_intensities, 2)
-            if reason == kernel.THROUGH:
+            if reason == loop.THROUGH:
                 through = self._broken_through()
-        if reason == kernel.THROUGH:
+        if reason == loop.THROUGH:
             reason = self._stage(self.path.through_intensity, 1)
         cycles, length, _ = self.points[-1]
         return SequenceGrowth(
@@ -196,12 +196,12 @@ class _Run:
 
     def _keep(self) -> None:
         """Keep the crack as it stands for the history."""
-        length, depth = self.state[kernel.LENGTH], self.state[kernel.DEPTH]
+        length, depth = self.state[loop.LENGTH], self.state[loop.DEPTH]
         self.points.append((int(self.place[1]), float(length), float(depth)))
 
     def _broken_through(self) -> BreakThrough:
         cycles, length, _ = self.points[-1]
-        self.state[kernel.DEPTH] = self.path.thickness
+        self.state[loop.DEPTH] = self.path.thickness
         return BreakThrough(cycles, length, *self.path.jump(length))
 
     def _stage(self, intensities: Intensities, tips: int) -> int:
@@ -209,12 +209,12 @@ class _Run:
 
         The loop pauses after some blocks, to see a crack that stands still.
         """
-        if self.state[kernel.LENGTH] >= self.path.end:
-            return kernel.AT_END
-        reason, before = kernel.OUTGROWN, self.state.copy()
-        local = np.zeros(kernel.FIRST_TIP + 3 * tips)
-        while reason in (kernel.OUTGROWN, kernel.PAUSED):
-            if reason == kernel.OUTGROWN:
+        if self.state[loop.LENGTH] >= self.path.end:
+            return loop.AT_END
+        reason, before = loop.OUTGROWN, self.state.copy()
+        local = np.zeros(loop.FIRST_TIP + 3 * tips)
+        while reason in (loop.OUTGROWN, loop.PAUSED):
+            if reason == loop.OUTGROWN:
                 _renew(local, intensities, self.state)
             elif self.place[1] >= self.most or np.array_equal(before, self.state):
                 break
@@ -240,33 +240,33 @@ def _constants(law: GrowthLaw, path: FlawPath, following: Following) -> Floats:
     """Return what the loop needs of law, path and end."""
     if not isinstance(law, FOLLOWED):
         raise AnalysisError(NOT_FOLLOWED.format(law=type(law).__name__))
-    constants = np.zeros(kernel.LAST + 1)
-    constants[kernel.C] = law.coefficient
-    constants[kernel.M] = law.exponent
-    constants[kernel.GAMMA] = law.gamma if isinstance(law, WalkerLaw) else 1.0
+    constants = np.zeros(loop.LAST + 1)
+    constants[loop.C] = law.coefficient
+    constants[loop.M] = law.exponent
+    constants[loop.GAMMA] = law.gamma if isinstance(law, WalkerLaw) else 1.0
     if isinstance(law, FormanLaw):
-        constants[kernel.FORMAN_END] = law.toughness
-    constants[kernel.TOUGHNESS] = following.toughness or math.inf
-    constants[kernel.THICKNESS] = path.thickness
-    constants[kernel.LAST] = path.end
+        constants[loop.FORMAN_END] = law.toughness
+    constants[loop.TOUGHNESS] = following.toughness or math.inf
+    constants[loop.THICKNESS] = path.thickness
+    constants[loop.LAST] = path.end
     return constants
 
 
 def _renew(local: Floats, intensities: Intensities, state: Floats) -> None:
     """Take the factors anew at the crack as it is."""
-    length, depth = float(state[kernel.LENGTH]), float(state[kernel.DEPTH])
+    length, depth = float(state[loop.LENGTH]), float(state[loop.DEPTH])
     here = intensities(length, depth)
     along, inward = REFRESH * length, REFRESH * depth
     by_length = _beside(intensities, (length + along, depth), (length - along, depth))
     by_depth = _beside(intensities, (length, depth + inward), (length, depth - inward))
-    local[: kernel.FIRST_TIP] = (
+    local[: loop.FIRST_TIP] = (
         length,
         depth,
         length + along,
         depth + inward,
     )
     for tip, value in enumerate(here):
-        at = kernel.FIRST_TIP + 3 * tip
+        at = loop.FIRST_TIP + 3 * tip
         local[at] = value
         local[at + 1] = by_length[1] * (by_length[0][tip] - value) / along
         local[at + 2] = by_depth[1] * (by_depth[0][tip] - value) / inward

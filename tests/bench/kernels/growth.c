@@ -1,4 +1,4 @@
-/* The loop of repairs/analysis/growth/retardation.py, for comparison of speed.
+/* The loop of repairs/analysis/growth/loop.py, for comparison of speed.
 
    cc -O2 -shared -fPIC growth.c -o growth.so -lm */
 

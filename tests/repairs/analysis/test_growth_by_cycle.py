@@ -17,7 +17,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from repairs.analysis.errors import AnalysisError, InputError, OutOfRangeError
-from repairs.analysis.growth import blocks, by_cycle, retardation
+from repairs.analysis.growth import blocks, by_cycle, loop, retardation
 from repairs.analysis.growth import two_directions as td
 from repairs.analysis.growth.closure import ElberLaw, NewmanLaw
 from repairs.analysis.growth.laws import (
@@ -150,9 +150,9 @@ def test_the_overload_grows_whole_and_retards_from_the_next_cycle():
     k = 1.22 * math.sqrt(math.pi * 0.4226) * KSI_ROOT_INCH
     zone = irwin_radius(27 * k, 68 * KSI, StressState.PLANE_STRESS)
     assert zone / INCH == pytest.approx(0.0496, abs=1e-4)
-    constants = np.zeros(retardation.LAST + 1)
-    constants[[retardation.C, retardation.M]] = USAF_LAW.coefficient, 3.5
-    constants[retardation.TOUGHNESS] = math.inf
+    constants = np.zeros(loop.LAST + 1)
+    constants[[loop.C, loop.M]] = USAF_LAW.coefficient, 3.5
+    constants[loop.TOUGHNESS] = math.inf
     model = USAF_WHEELER.fill(constants)
     state = np.zeros(3)
     per_ksi, share = k / KSI, 0.8 / 0.8**0.4
@@ -160,12 +160,10 @@ def test_the_overload_grows_whole_and_retards_from_the_next_cycle():
     whole = USAF_LAW.rate(27 * 0.8 * k, 0.2)
     large = (27 * KSI, 27 * 0.8 * KSI, 27 * share * KSI)
     small = (18 * KSI, 18 * 0.8 * KSI, 18 * share * KSI)
-    grown = retardation.tip_growth(per_ksi, large, length, state, 0, model, constants)
+    grown = loop.tip_growth(per_ksi, large, length, state, 0, model, constants)
     assert grown == pytest.approx(whole, rel=1e-9)
-    at_once = retardation.tip_growth(per_ksi, small, length, state, 0, model, constants)
-    after = retardation.tip_growth(
-        per_ksi, small, length + grown, state, 0, model, constants
-    )
+    at_once = loop.tip_growth(per_ksi, small, length, state, 0, model, constants)
+    after = loop.tip_growth(per_ksi, small, length + grown, state, 0, model, constants)
     base = USAF_LAW.rate(18 * 0.8 * k, 0.2)
     assert at_once / base == pytest.approx(0.3136, abs=1e-3)
     assert after / base == pytest.approx(0.3146, abs=1e-3)
@@ -173,11 +171,9 @@ def test_the_overload_grows_whole_and_retards_from_the_next_cycle():
 
 
 def test_wheelers_share():
-    assert retardation.wheeler_share(0.05, 0.10, 1.43) == pytest.approx(
-        0.3711, abs=5e-5
-    )
-    assert retardation.wheeler_share(0.11, 0.10, 1.43) == 1
-    assert retardation.wheeler_share(0.05, 0.10, 0) == 1
+    assert loop.wheeler_share(0.05, 0.10, 1.43) == pytest.approx(0.3711, abs=5e-5)
+    assert loop.wheeler_share(0.11, 0.10, 1.43) == 1
+    assert loop.wheeler_share(0.05, 0.10, 0) == 1
 
 
 def test_wheeler_without_exponent_retards_nothing():
@@ -193,7 +189,7 @@ def test_wheeler_without_exponent_retards_nothing():
 
 def test_willenborgs_reduction():
     # Kmax 20, R 0.1, Kol 30, Δa/rp 0.3, Kth 3, shut-off 2.3.
-    taken = retardation.willenborg_reduction(20, 30, 0.3, 3, 2.3)
+    taken = loop.willenborg_reduction(20, 30, 0.3, 3, 2.3)
     peak, valley = 20 - taken, 2 - taken
     assert 30 * math.sqrt(0.7) - 20 == pytest.approx(5.0998, abs=1e-4)
     assert (peak, valley) == (
@@ -201,8 +197,8 @@ def test_willenborgs_reduction():
         pytest.approx(-1.334, abs=1e-3),
     )
     assert valley / peak == pytest.approx(-0.0801, abs=1e-4)
-    assert retardation.willenborg_reduction(20, 20, 0.3, 3, 2.3) == 0
-    assert retardation.willenborg_reduction(2, 30, 0.3, 3, 2.3) == 0
+    assert loop.willenborg_reduction(20, 20, 0.3, 3, 2.3) == 0
+    assert loop.willenborg_reduction(2, 30, 0.3, 3, 2.3) == 0
 
 
 def test_an_overload_of_the_shut_off_ratio_stops_the_crack():
@@ -282,7 +278,7 @@ def test_plain_python_and_machine_code_agree(law, model):
     block = mixed_block(150.0, flights=1)
     runs = [
         by_cycle._Run(law, block, PATH, by_cycle.Following(40), model, march)
-        for march in (retardation.march, None)
+        for march in (loop.march, None)
     ]
     plain, compiled = (run.grown(FLAW) for run in runs)
     assert plain.cycles == compiled.cycles
