@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.loads import shell as loads
+from repairs.analysis.loads import stiffened_shell as stiffened
 from repairs.analysis.loads.shell import LoadCase, Requirement
 from repairs.analysis.note import Note
 from repairs.analysis.types import GrossStress, Sourced
@@ -140,11 +141,48 @@ def _shell(inputs: Inputs, note: Note) -> PanelLoads:
         "MPa",
         loads.SHELL,
     )
+    _beside_frames(inputs, note, read)
     note.warn(ONE_DIRECTION)
     return PanelLoads(
         residual,
         _with_running_load(inputs, note, ultimate, thickness),
         StressCycle(top, 0.0),
+    )
+
+
+def _beside_frames(inputs: Inputs, note: Note, read: ShellInputs) -> None:
+    """Write what shear-tied frames would relieve, for comparison; none is taken."""
+    names = ("frame_area", "frame_pitch", "stringer_area", "stringer_pitch", "poisson")
+    given = [inputs.maybe(name) for name in names]
+    numbers = [item.value for item in given if item is not None]
+    if len(numbers) < len(names):
+        return
+    frame_area, frame_pitch, stringer_area, stringer_pitch, poisson = numbers
+    frames = stiffened.Frames(frame_area, frame_pitch, stiffened.Attachment.SHEAR_TIED)
+    stringers = stiffened.Stringers(stringer_area, stringer_pitch)
+    pressure = read.pressures.normal + read.pressures.external
+    mean = stiffened.smeared_stresses(
+        pressure, read.radius, read.thickness, frames, stringers, poisson
+    )
+    bay = stiffened.hoop_between_frames(
+        pressure, read.radius, read.thickness, frames, poisson, mean.axial
+    )
+    where = f"frames {frame_area:.1f} mm² every {frame_pitch:.0f} mm"
+    note.beside(
+        "σ_mean",
+        "mean hoop stress of the bay if its frames are shear-tied; not for mid-bay",
+        where,
+        mean.mean_hoop,
+        "MPa",
+        stiffened.SMEARED,
+    )
+    note.beside(
+        "σ_mid",
+        "hoop stress at mid-bay if its frames are shear-tied",
+        where,
+        bay.mid_bay,
+        "MPa",
+        stiffened.BETWEEN_FRAMES,
     )
 
 

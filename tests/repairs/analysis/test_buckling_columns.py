@@ -136,7 +136,7 @@ def test_the_tangent_modulus_by_differences_of_the_curve(stress):
 
 def test_two_points_of_a_handbook_curve_give_a_handbook_yield():
     # 7050-T7451, E_c 10.6 Msi: E_t 10.3 at 45.7 and 9.25 at 51.2 ksi (MIL-HDBK-5J
-    # curve, quoted in a public note) fix n and F_cy; its own yield is about 64 ksi.
+    # curve, quoted in a public note) fix n and F_cy; from memory it yields at 64 ksi.
     shape = 1 + math.log((10.6 / 9.25 - 1) / (10.6 / 10.3 - 1)) / math.log(51.2 / 45.7)
     bend = (10.6 / 10.3 - 1) / (0.002 * shape * 10_600 * 45.7 ** (shape - 1))
     yield_ = bend ** (-1 / shape)

@@ -170,3 +170,23 @@ def test_more_bending_asks_for_more_strength(limit, more):
 def test_a_spectrum_below_one_g_is_refused():
     with pytest.raises(OutOfRangeError, match="Largest over 1 g"):
         longitudinal.SpectrumReach(recorded(-0.3, "-"), recorded(0.9, "-"))
+
+
+def test_frames_on_the_record_are_shown_beside_and_relieve_nothing():
+    framed = inputs(
+        SHELL,
+        frame_area=recorded(225.8, "mm2"),
+        frame_pitch=recorded(508.0, "mm"),
+        stringer_area=recorded(129.0, "mm2"),
+        stringer_pitch=recorded(200.0, "mm"),
+        poisson=recorded(0.33, "-"),
+    )
+    note, bare = Note(), Note()
+    assert panel_loads.panel_loads(framed, note) == panel_loads.panel_loads(
+        inputs(SHELL), bare
+    )
+    beside = {line.symbol: line.value for line in note.lines}
+    whole = 8.5 * PSI * 1422.4 / 1.4
+    assert beside["σ_mean"] < 0.85 * whole
+    assert beside["σ_mid"] == pytest.approx(whole, rel=0.01)
+    assert len(note.lines) == len(bare.lines) + 2
