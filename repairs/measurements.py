@@ -134,6 +134,7 @@ DIMENSIONS: dict[str, tuple[Dimension, ...]] = {
         _length("strip_width", "width of the strip with the hole or edge"),
         _count("layers", "layers cracked"),
         _word("stop_drilled", "stop-drilled"),
+        _length("stop_hole_diameter", "diameter of the stop hole"),
         _word("confirmed", "confirmed by a non-destructive test"),
     ),
     "corrosion": (

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 from enum import StrEnum
 
 from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.inspection.known import Detection
 from repairs.analysis.loads import shell as loads
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.stress_life.curves import StressLifeFamily
@@ -87,6 +88,7 @@ _WORDS: dict[Where, tuple[tuple[str, str], ...]] = {
         ("damage_type", "damage type"),
         ("element", "structural item"),
         ("repair_kind", "kind of repair"),
+        ("criticality", "PSE, FCS or secondary"),
     ),
     Where.PANEL: (
         ("pressurised", "panel is pressurised"),
@@ -123,6 +125,8 @@ _STATED_WORDS: tuple[tuple[str, str, tuple[str, ...]], ...] = (
     ("centre_stiffener", "stiffener at the middle of the crack",
      ("mid_bay", "intact_stiffener", "broken_stiffener")),
     ("member_failed", "member has failed", YES_NO),
+    ("member_holes", "fastener holes in the damaged flange or web", YES_NO),
+    ("member_of_panel_material", "member is of the skin panel's material", YES_NO),
     ("below_last_term", "cycles below the last term of a stress-life curve",
      ("none_counts", "slope_continued", "slope_doubled")),
     ("retardation", "retardation shown beside the life",
@@ -161,11 +165,16 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("clad_thickness", "cladding of one side", "mm"),
         ("radius", "shell radius", "mm"),
         ("panel_length", "panel length along the crack", "mm"),
+        ("panel_width", "panel width across the section", "mm"),
         ("ultimate_running_load", "recorded ultimate running load", "N/mm"),
         ("limit_flight_stress", "stress across the crack from limit flight loads",
          "MPa"),
         ("limit_longitudinal_stress", "limit stress along the section", "MPa"),
         ("mean_longitudinal_stress", "1 g stress along the section", "MPa"),
+        ("limit_shear_stress", "limit shear stress of the skin", "MPa"),
+        ("mean_shear_stress", "1 g shear stress of the skin", "MPa"),
+        ("flight_smallest_share", "smallest stress of a flight over 1 g", "-"),
+        ("flight_largest_share", "largest stress of a flight over 1 g", "-"),
         ("cycle_max_stress", "largest stress of a flight", "MPa"),
         ("cycle_ratio", "stress ratio of a flight's cycle", "-"),
         ("frame_area", "section area of a frame", "mm2"),
@@ -177,6 +186,8 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("load_transfer", "share of the strip's load that the fastener takes", "-"),
         ("bearing_strength", "bearing ultimate strength Fbru at this e/D", "MPa"),
         ("hole_pitch", "pitch of the row of holes", "mm"),
+        ("corner_stress_ratio", "stress at the cut-out corner over the panel's", "-"),
+        ("stiffened_bulging", "bulging factor on K between stiffeners", "-"),
         ("fastener_pitch", "fastener pitch along a stiffener", "mm"),
         ("fastener_diameter", "fastener diameter", "mm"),
         ("fastener_flexibility", "flexibility of one fastener", "mm/N"),
@@ -195,6 +206,18 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("member_limit_moment", "limit bending moment", "N*mm"),
         ("member_limit_shear", "limit shear force", "N"),
         ("member_crippling", "crippling strength of the section", "MPa"),
+        ("member_yield", "tension yield strength of the member", "MPa"),
+        ("member_ultimate", "tension ultimate strength of the member", "MPa"),
+        ("member_compression_yield", "compression yield strength of the member",
+         "MPa"),
+        ("member_shear_strength", "shear ultimate strength of the member", "MPa"),
+        ("member_modulus", "modulus of elasticity of the member", "MPa"),
+        ("member_poisson", "Poisson's ratio of the member", "-"),
+        ("member_toughness", "fracture toughness of the member", TOUGHNESS_UNIT),
+        ("neighbour_count", "members that take over from a failed one, 1 or 2", "-"),
+        ("neighbour_strength", "strength of each of them", "N"),
+        ("neighbour_limit_force", "limit force each of them carries already", "N"),
+        ("dynamic_factor", "factor on the load as a member fails", "-"),
         ("wheeler_exponent", "Wheeler's exponent, fitted", "-"),
         ("shut_off_ratio", "overload ratio that stops the crack", "-"),
     ),
@@ -227,6 +250,7 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
     Where.VALIDITY: (("validity_cycles", "limit of validity", "cycles"),),
     Where.OPERATOR: (
         ("class_maximum", "operator's largest interval of this class", "cycles"),
+        ("detection_target", "chance of detection asked of a plan", "-"),
     ),
     Where.ADOPTED: (
         ("clad_life_factor", "life of bare over life of clad", "-"),
@@ -252,6 +276,8 @@ _OTHERS: tuple[InputSpec, ...] = (
               FatiguePolicy, "", Where.STRESS_LIFE),
     InputSpec("growth_policy", "factor on growth life to a threshold", FatiguePolicy,
               "", Where.THRESHOLD),
+    InputSpec("detection", "detection curve of the method", Detection, "",
+              Where.DETECTABLE),
     InputSpec("repeat_policy", "factor on growth life to a repeat interval",
               FatiguePolicy, "", Where.REPEAT),
 )  # fmt: skip

@@ -64,6 +64,13 @@ class Surroundings:
         found = [(self._distance(o), o.label) for o in self.obstacles if o.kind is kind]
         return min(found, default=None)
 
+    def nearest_to_middle(self) -> tuple[float, str] | None:
+        """Return distance [mm] of the middle from the nearest obstacle of any kind."""
+        found = [
+            (math.hypot(*self._gaps(o)), f"{o.kind} {o.label}") for o in self.obstacles
+        ]
+        return min(found, default=None)
+
     def frame_room(self) -> float | None:
         """Return how far the nearer tip is from its frame [mm]; below 0 = beyond it."""
         if self.bay is None:

@@ -48,7 +48,9 @@ RESIDUAL, ULTIMATE = "residual", "static ultimate"
 class CrackPath:
     """A through crack that grows: lengths are those the factor is defined on [mm].
 
-    `scale` turns such a length into the one people measure: 2 for a half-length.
+    `scale` turns such a length into the one people measure: 2 for a half-length. Below
+    `smallest` the factor is not known and nothing is drawn; at `kinks` its slope or
+    curvature jumps.
     """
 
     symbol: str
@@ -60,6 +62,8 @@ class CrackPath:
     largest: float
     end_of_method: str
     section: str = "gross"
+    smallest: float = 0.0
+    kinks: tuple[float, ...] = ()
     _tables: dict[WalkerLaw, GrowthTable] = field(
         init=False, default_factory=dict, compare=False, repr=False
     )
@@ -94,7 +98,7 @@ class CrackPath:
         kept = self._tables.get(law)
         if kept is None or kept.low > low:
             cycle = self.loads.cycle
-            kept = GrowthTable(law, self.factor, cycle, low, self.largest)
+            kept = GrowthTable(law, self.factor, cycle, low, self.largest, self.kinks)
             self._tables[law] = kept
         return kept
 
@@ -273,7 +277,8 @@ def repeat_after(
 def curves(path: CrackPath, start: float, base: str) -> tuple[Curve, ...]:
     """Return residual strength on crack length, and crack length on cycles."""
     stop = max(path.largest, start * 1.0001)
-    lengths = [float(a) for a in np.linspace(start / 2, stop, CURVE_POINTS)]
+    first = max(start / 2, min(start, path.smallest))
+    lengths = [float(a) for a in np.linspace(first, stop, CURVE_POINTS)]
     both = (path.loads.ultimate, path.loads.residual)
     lost = [(r.name, path.lost_at(r, start)) for r in both]
     end = max(start * 1.0001, lost[-1][1] or stop)

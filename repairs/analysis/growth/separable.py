@@ -92,6 +92,8 @@ class GrowthTable:
         Stress cycle [MPa], or the equivalent cycle of a flight.
     low, high
         Crack lengths the table spans [mm].
+    kinks
+        Lengths where the factor's slope or curvature jumps [mm]: panels begin there.
 
     Notes
     -----
@@ -105,12 +107,14 @@ class GrowthTable:
         cycle: StressCycle,
         low: float,
         high: float,
+        kinks: tuple[float, ...] = (),
     ) -> None:
         if not 0 < low <= high < math.inf:
             raise AnalysisError(BACKWARDS.format(low=low, high=high))
         refuse_short(law, low)
         self.low, self.high = low, high
         self._law, self._factor, self._cycle = law, factor, cycle
+        self._kinks = [math.log(k) for k in kinks if low < k < high]
         panels = list(self._panels(math.log(low), math.log(high)))
         self._edges = np.array([begin for begin, _, _ in panels] + [math.log(high)])
         self._half = np.diff(self._edges) / 2
@@ -123,7 +127,7 @@ class GrowthTable:
     ) -> Iterator[tuple[float, float, Floats]]:
         """Give begin, end and series of each panel, halved until it is smooth."""
         count = max(1, math.ceil((end - begin) / WIDEST))
-        edges = np.linspace(begin, end, count + 1)
+        edges = sorted({*np.linspace(begin, end, count + 1), *self._kinks})
         waiting = [(float(a), float(b)) for a, b in itertools.pairwise(edges)]
         while waiting:
             left, right = waiting.pop(0)

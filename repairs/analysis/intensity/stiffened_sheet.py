@@ -168,14 +168,65 @@ def stiffened_crack(
     """
     reach = half_length / sheet.pitch
     within("Half-length over stiffener pitch", reach, 0.02, 2.2, "the model")
-    places = _places(sheet, half_length, centre)
-    forces = _forces(sheet, places, half_length, centre)
-    tip = _force_intensity(sheet, places, np.array([half_length]))[0]
-    factor = 1 + float(tip @ forces) / math.sqrt(math.pi * half_length)
-    rows = forces.reshape(places.stiffeners, -1)
-    per_stress = sheet.stiffener_area * sheet.stiffener_modulus / sheet.modulus
-    loads = 1 + np.cumsum(rows[:, ::-1], axis=1) / per_stress
-    return StiffenedCrack(factor, float(loads.max()), float(np.abs(forces).max()))
+    return GrowingCrack(sheet, half_length, centre).grown_to(half_length)
+
+
+class GrowingCrack:
+    """The equations of a panel for a crack that grows up to a longest half-length.
+
+    Parameters
+    ----------
+    sheet
+        Sheet, stiffeners and fasteners.
+    longest
+        Half-length the model is made large enough for [mm].
+    centre
+        Mid-bay, or at a stiffener, intact or broken.
+    """
+
+    def __init__(
+        self, sheet: StiffenedSheet, longest: HalfLength, centre: CrackCentre
+    ) -> None:
+        self._sheet, self._centre = sheet, centre
+        self._places = _places(sheet, longest, centre)
+        self._uncracked = _uncracked(sheet, self._places)
+        self._crack = np.zeros_like(self._uncracked)
+        self._remote = np.zeros(self._places.x.size)
+        self._length = 0.0
+
+    def grown_to(self, half_length: HalfLength) -> StiffenedCrack:
+        """Return F and loads at a half-length no less than the one before [mm]."""
+        crack, remote = _crack_compliance(
+            self._sheet, self._places, half_length, self._length
+        )
+        self._crack += crack
+        self._remote += remote
+        self._length = half_length
+        forces = self._forces()
+        sheet, places = self._sheet, self._places
+        tip = _force_intensity(sheet, places, np.array([half_length]))[0]
+        factor = 1 + float(tip @ forces) / math.sqrt(math.pi * half_length)
+        rows = forces.reshape(places.stiffeners, -1)
+        per_stress = sheet.stiffener_area * sheet.stiffener_modulus / sheet.modulus
+        loads = 1 + np.cumsum(rows[:, ::-1], axis=1) / per_stress
+        return StiffenedCrack(factor, float(loads.max()), float(np.abs(forces).max()))
+
+    def _forces(self) -> Array:
+        """Solve for fastener forces per unit sheet stress [mm2], closing the crack > 0.
+
+        The broken stiffener may slide as a whole, and carries nothing at the crack.
+        """
+        system = self._uncracked - self._crack
+        if self._centre is not CrackCentre.BROKEN_STIFFENER:
+            return np.asarray(np.linalg.solve(system, self._remote), dtype=np.float64)
+        axis = self._places.on_axis
+        bordered = np.block(
+            [[system, -axis[:, None]], [axis[None, :], np.zeros((1, 1))]]
+        )
+        far = self._sheet.stiffener_area * self._sheet.stiffener_modulus
+        right = np.append(self._remote, -far / self._sheet.modulus)
+        solved = np.linalg.solve(bordered, right)
+        return np.asarray(solved[: axis.size], dtype=np.float64)
 
 
 def _places(
@@ -190,29 +241,15 @@ def _places(
     return _Fasteners(np.repeat(x, rows), np.tile(y, stiffeners), stiffeners)
 
 
-def _forces(
-    sheet: StiffenedSheet,
-    places: _Fasteners,
-    half_length: HalfLength,
-    centre: CrackCentre,
-) -> Array:
-    """Solve for fastener forces per unit sheet stress [mm2], towards the crack > 0."""
-    crack, remote = _crack_compliance(sheet, places, half_length)
+def _uncracked(sheet: StiffenedSheet, places: _Fasteners) -> Array:
+    """Return how sheet, stiffeners and fasteners give, the crack still shut [mm/N]."""
     stretch = sheet.stiffener_area * sheet.stiffener_modulus
     same = places.x[:, None] == places.x[None, :]
     shorter = np.minimum(places.y[:, None], places.y[None, :])
-    pull = np.where(same, shorter / stretch, 0.0)
-    size = places.x.size
-    system = _kelvin_compliance(sheet, places) - crack - pull
-    system -= sheet.flexibility * np.eye(size)
-    if centre is not CrackCentre.BROKEN_STIFFENER:
-        return np.asarray(np.linalg.solve(system, remote), dtype=np.float64)
-    # The broken one may slide as a whole, and carries nothing at the crack.
-    axis = places.on_axis
-    bordered = np.block([[system, -axis[:, None]], [axis[None, :], np.zeros((1, 1))]])
-    right = np.append(remote, -stretch / sheet.modulus)
-    solved = np.linalg.solve(bordered, right)
-    return np.asarray(solved[:size], dtype=np.float64)
+    system = _kelvin_compliance(sheet, places)
+    system -= np.where(same, shorter / stretch, 0.0)
+    system -= sheet.flexibility * np.eye(places.x.size)
+    return system
 
 
 def _force_intensity(
@@ -234,11 +271,17 @@ def _force_intensity(
 
 
 def _crack_compliance(
-    sheet: StiffenedSheet, places: _Fasteners, half_length: HalfLength
+    sheet: StiffenedSheet,
+    places: _Fasteners,
+    half_length: HalfLength,
+    begin: float = 0.0,
 ) -> tuple[Array, Array]:
-    """Return displacement towards the crack for unit forces, and for unit stress."""
-    inside = sorted({float(x) for x in places.x if 0 < x < half_length})
-    ends = np.array([0.0, *inside, half_length])
+    """Return displacement towards the crack for unit forces, and for unit stress.
+
+    That of the crack's growth from half-length `begin` on.
+    """
+    inside = sorted({float(x) for x in places.x if begin < x < half_length})
+    ends = np.array([begin, *inside, half_length])
     spans = np.diff(ends)[:, None]
     lengths = (ends[:-1, None] + spans * (_NODES + 1) / 2).ravel()
     weights = (spans * _WEIGHTS / 2).ravel()
@@ -246,8 +289,8 @@ def _crack_compliance(
     scale = 4 * sheet.thickness / sheet.modulus / places.images
     remote = np.sqrt(math.pi * lengths)
     return (
-        scale[:, None] * np.einsum("ai,aj,a->ij", each, each, weights),
-        scale * np.einsum("ai,a,a->i", each, remote, weights),
+        scale[:, None] * (each.T @ (each * weights[:, None])),
+        scale * (each.T @ (remote * weights)),
     )
 
 

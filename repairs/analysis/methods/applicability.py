@@ -27,12 +27,42 @@ def word_is_not(inputs: Inputs, name: str, test: str, barred: str) -> Applicabil
     return Applicability(test, value.replace("_", " "), limit, value != barred)
 
 
+def word_among(
+    inputs: Inputs, name: str, test: str, allowed: tuple[str, ...]
+) -> Applicability:
+    """Test that a stated word is one of those allowed; 'unknown' is not recorded."""
+    value = inputs.word(name)
+    limit = " or ".join(word.replace("_", " ") for word in allowed)
+    if value is None or value == "unknown":
+        return Applicability(test, value or NOT_RECORDED, limit, None)
+    return Applicability(test, value.replace("_", " "), limit, value in allowed)
+
+
+def word_outside(
+    inputs: Inputs, name: str, test: str, barred: tuple[str, ...]
+) -> Applicability:
+    """Test that a stated word is none of those barred; 'unknown' is not recorded."""
+    value = inputs.word(name)
+    limit = "not " + " or ".join(word.replace("_", " ") for word in barred)
+    if value is None or value == "unknown":
+        return Applicability(test, value or NOT_RECORDED, limit, None)
+    return Applicability(test, value.replace("_", " "), limit, value not in barred)
+
+
 def at_least(test: str, value: float | None, limit: float, unit: str) -> Applicability:
     """Test that a number is not below a limit."""
     wanted = f"at least {limit:.4g} {unit}".rstrip()
     if value is None:
         return Applicability(test, NOT_RECORDED, wanted, None)
     return Applicability(test, f"{value:.4g} {unit}".rstrip(), wanted, value >= limit)
+
+
+def above(test: str, value: float | None, limit: float, unit: str) -> Applicability:
+    """Test that a number is above a limit."""
+    wanted = f"above {limit:.4g} {unit}".rstrip()
+    if value is None:
+        return Applicability(test, NOT_RECORDED, wanted, None)
+    return Applicability(test, f"{value:.4g} {unit}".rstrip(), wanted, value > limit)
 
 
 def at_most(test: str, value: float | None, limit: float, unit: str) -> Applicability:

@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.growth.path import CrackPath, Start, write_law
-from repairs.analysis.growth.two_directions import grow_part_through
-from repairs.analysis.inputs import Inputs
+from repairs.analysis.growth.two_directions import TwoFactors, grow_part_through
+from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.inspection.flaws import AssumedFlaw, FlawKind
 from repairs.analysis.intensity import through as si
 from repairs.analysis.intensity.bulging import (
@@ -31,11 +32,24 @@ LONGEST_SHELL_PARAMETER = 5.0 * (1 - 1e-9)
 WIDEST_SECANT = 0.35 * (1 - 1e-9)
 """Ends of both ranges, just inside: rounding must not step over them."""
 NO_RELIEF = "Plain sheet: no relief by frames, tear straps or stringers."
+DEPTH_INPUTS = ("crack_depth", "damage_depth_uncertainty")
+TAKEN_AS_THROUGH = "A crack without a measured depth is taken as through."
+STRENGTH_AS_THROUGH = (
+    "Strength is that of a through crack of the length measured on the surface: lower "
+    "than its own."
+)
+FLAW_AS_THROUGH = (
+    "The part-through crack is taken as through at once: it leaves the range of the "
+    "surface-crack solution, or would not stand once through. Shortens the life."
+)
 
 
 @dataclass(frozen=True)
 class Sheet:
-    """A skin with a centre crack of half-length a [mm]; no radius = flat."""
+    """A skin with a centre crack of half-length a [mm]; no radius = flat.
+
+    `skew` raises K for a crack whose direction to the stress is not known [-].
+    """
 
     radius: float | None
     thickness: float
@@ -43,6 +57,7 @@ class Sheet:
     yield_strength: float
     toughness: float
     law: WalkerLaw
+    skew: float = 1.0
 
     def bulging(self, a: float) -> float:
         """Return the bulging factor [-], 1 for a flat sheet."""
@@ -52,8 +67,9 @@ class Sheet:
         return bulging_handbook(parameter)
 
     def factor(self, a: float) -> float:
-        """Return bulging times width factor [-]."""
-        return self.bulging(a) * si.centre_crack_secant(HalfLength(a), self.width)
+        """Return bulging times width factor, times that of a skew crack [-]."""
+        width = si.centre_crack_secant(HalfLength(a), self.width)
+        return self.bulging(a) * width * self.skew
 
     def candidates(self, a: float) -> dict[str, GrossStress | None]:
         """Return every strength that may govern, on gross stress [MPa]."""
@@ -73,14 +89,21 @@ class Sheet:
         inputs: Inputs,
         keep: float | None,
         section: str = "gross",
+        reach: tuple[float, str] | None = None,
     ) -> CrackPath:
-        """Return the path of a crack here, as far as every part of it is valid."""
+        """Return the path of a crack here, as far as every part of it is valid.
+
+        `reach` is where the surroundings end it [mm]; without one, a crack along the
+        section is followed to its frames and obstacles.
+        """
         ends = [(WIDEST_SECANT * self.width, "the range of the width correction")]
         if self.radius is not None:
-            reach = LONGEST_SHELL_PARAMETER * (self.radius * self.thickness) ** 0.5
-            ends.append((reach, "the range of the bulging factor"))
+            longest = LONGEST_SHELL_PARAMETER * (self.radius * self.thickness) ** 0.5
+            ends.append((longest, "the range of the bulging factor"))
         around = inputs.surroundings()
-        if around is not None and keep is not None:
+        if reach is not None:
+            ends.append(reach)
+        elif around is not None and keep is not None:
             ends.append(around.largest_half_length(keep))
         largest, end = min(ends)
         return CrackPath(
@@ -96,11 +119,21 @@ class Sheet:
         )
 
 
-def sheet_of(inputs: Inputs, note: Note, thickness: float) -> Sheet:
-    """Write the sheet's data down; `thickness` is what carries load."""
-    width = note.given(
-        "W", "panel length along the crack", inputs.number("panel_length")
-    )
+def sheet_of(
+    inputs: Inputs,
+    note: Note,
+    thickness: float,
+    *,
+    width_from: str = "panel_length",
+    curved: bool = True,
+    stiffened: bool = False,
+) -> Sheet:
+    """Write the sheet's data down; `thickness` is what carries load.
+
+    `width_from` names the panel's size along the crack; a crack that does not bulge is
+    not `curved`.
+    """
+    width = note.given("W", SPECS[width_from].title, inputs.number(width_from))
     strength = note.given(
         "F_ty", "tension yield strength", inputs.number("yield_strength")
     )
@@ -108,8 +141,10 @@ def sheet_of(inputs: Inputs, note: Note, thickness: float) -> Sheet:
     law = inputs.law()
     assert law is not None, "evaluate() has checked that growth_law is there"
     write_law(note, law)
-    note.text(NO_RELIEF)
-    radius = inputs.maybe("radius") if inputs.word("pressurised") == "yes" else None
+    if not stiffened:
+        note.text(NO_RELIEF)
+    bulges = curved and inputs.word("pressurised") == "yes"
+    radius = inputs.maybe("radius") if bulges else None
     return Sheet(
         radius.value if radius else None, thickness, width, strength, toughness, law
     )
@@ -144,19 +179,22 @@ def write_strength(sheet: Sheet, path: CrackPath, note: Note, a: float) -> rs.St
         "-",
         si.SECANT,
     )
-    top = path.loads.cycle.maximum
+    top, factor = path.loads.cycle.maximum, sheet.factor(a)
+    skew, product = "", f"{bulging:.4f} · {width:.4f}"
+    if sheet.skew != 1:
+        skew, product = " F_s", f"{product} · {sheet.skew:.4f}"
     note.step(
         "K_max",
-        "σ F_b F_w √(π a)",
-        f"{top:.2f} · {bulging:.4f} · {width:.4f} · √(π · {a:.2f})",
-        si.intensity(bulging * width, top, a) / ROOT_1000,
+        f"σ F_b F_w{skew} √(π a)",
+        f"{top:.2f} · {product} · √(π · {a:.2f})",
+        si.intensity(factor, top, a) / ROOT_1000,
         "MPa√m",
     )
     found = sheet.candidates(a)
     note.step(
         "S_fr",
-        "K_c / (F_b F_w √(π a))",
-        f"{sheet.toughness:.0f} / ({bulging * width:.4f} √(π · {a:.2f}))",
+        f"K_c / (F_b F_w{skew} √(π a))",
+        f"{sheet.toughness:.0f} / ({factor:.4f} √(π · {a:.2f}))",
         found[rs.FRACTURE],
         "MPa",
     )
@@ -200,24 +238,81 @@ def flaw_start(sheet: Sheet, path: CrackPath, note: Note, flaw: AssumedFlaw) -> 
     )
     if flaw.kind is FlawKind.THROUGH:
         return Start(half)
+    return surface_start(sheet, path, note, flaw.depth, half)
+
+
+def found_start(
+    inputs: Inputs, sheet: Sheet, path: CrackPath, note: Note, half: float
+) -> Start:
+    """Return the through crack a measured one is, or becomes if its depth is known."""
+    if not depth_counts(inputs):
+        if inputs.word("crack_through") != "yes":
+            note.text(TAKEN_AS_THROUGH)
+        return Start(half)
+    deep = note.given("a_d", "crack depth", inputs.number(DEPTH_INPUTS[0]))
+    deep += note.given("u", "its uncertainty", inputs.number(DEPTH_INPUTS[1]))
+    if deep >= sheet.thickness:
+        return Start(half)
+    note.text(STRENGTH_AS_THROUGH)
+    return surface_start(sheet, path, note, deep, half)
+
+
+def depth_counts(inputs: Inputs) -> bool:
+    """Return whether a depth was measured of a crack that is not through."""
+    return "crack_depth" in inputs and inputs.word("crack_through") != "yes"
+
+
+def surface_factors(sheet: Sheet) -> TwoFactors:
+    """Return factors at the surface and the deepest point of a surface crack."""
 
     def factors(depth: float, length: float) -> tuple[float, float]:
         crack = PartThrough(depth, length, sheet.thickness)
         at_surface, deepest = (
-            surface_crack(crack, sheet.width / 2, angle) for angle in SURFACE_ANGLES
+            sheet.skew * surface_crack(crack, sheet.width / 2, angle)
+            for angle in SURFACE_ANGLES
         )
         return at_surface, deepest
 
-    grown = grow_part_through(
-        sheet.law, factors, path.loads.cycle, (flaw.depth, half), sheet.thickness
-    )
+    return factors
+
+
+def surface_start(
+    sheet: Sheet, path: CrackPath, note: Note, depth: float, half: float
+) -> Start:
+    """Grow a surface crack through the thickness, or take it as through at once.
+
+    As through where the solution ends, and where a through crack of the length it
+    breaks through with would not bear what is required.
+    """
+    try:
+        grown = grow_part_through(
+            sheet.law,
+            surface_factors(sheet),
+            path.loads.cycle,
+            (depth, half),
+            sheet.thickness,
+        )
+    except OutOfRangeError:
+        note.warn(FLAW_AS_THROUGH)
+        return Start(half)
+    if not stands(path, grown.length):
+        note.warn(FLAW_AS_THROUGH)
+        return Start(half)
     note.step("F", "surface crack at 10° and 90°", "", None, "-", SURFACE_CRACK)
     note.step(
         "N_bt",
         "cycles until the surface crack is through",
-        f"a {flaw.depth:.2f} to {sheet.thickness:.2f} mm",
+        f"a {depth:.2f} to {sheet.thickness:.2f} mm",
         grown.cycles,
         "cycles",
         ANGLES,
     )
     return Start(grown.length, grown.cycles)
+
+
+def stands(path: CrackPath, length: float) -> bool:
+    """Return whether a through crack is in range and bears both requirements."""
+    if length >= path.largest:
+        return False
+    needed = (path.loads.residual, path.loads.ultimate)
+    return path.strength(length).stress > max(r.governing[0] for r in needed)

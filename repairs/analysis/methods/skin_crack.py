@@ -13,46 +13,33 @@ than to where that ceases to hold.
 
 from __future__ import annotations
 
-from dataclasses import replace
-
-from repairs.analysis.growth.path import (
-    curves,
-    grow,
-    repeat_after,
-    with_found_lives,
-    with_margins,
-)
+from repairs.analysis.growth.path import CrackPath
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection import intervals
-from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
 from repairs.analysis.loads import panel_loads
 from repairs.analysis.methods import applicability as apply
-from repairs.analysis.methods.sheet import flaw_start, sheet_of, write_strength
+from repairs.analysis.methods.crack_case import (
+    SKIN_INPUTS,
+    away_from_edges,
+    crack_needed,
+    evaluated,
+    in_sheet,
+)
+from repairs.analysis.methods.sheet import Sheet, sheet_of
 from repairs.analysis.note import Note
 from repairs.analysis.surroundings import ObstacleKind
-from repairs.analysis.types import Applicability, FullLength, Result, Use, half
+from repairs.analysis.types import Applicability, Result, Use
 
 REQUIRED: tuple[str, ...] = (
-    "element",
-    "pressurised",
+    *SKIN_INPUTS,
     "crack_direction",
-    "crack_origin",
-    "surroundings",
-    "thickness",
     "panel_length",
     *panel_loads.PRESSURE_INPUTS,
-    "yield_strength",
-    "toughness",
-    "growth_law",
 )
-MEASURED = ("crack_length", "crack_length_uncertainty")
-COUNTED = ("accumulated_cycles", "life_base")
 
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs for a use."""
-    del inputs
-    return REQUIRED + (MEASURED if use is Use.FOUND_DAMAGE else COUNTED)
+    return REQUIRED + crack_needed(inputs, use)
 
 
 def clearance(inputs: Inputs) -> float | None:
@@ -64,16 +51,29 @@ def clearance(inputs: Inputs) -> float | None:
     return float(multiple * (radius.value * thickness.value) ** 0.5)
 
 
-def shell_tests(inputs: Inputs) -> tuple[Applicability, ...]:
-    """Test the distances and the shape a plain-shell crack solution needs."""
-    around, keep = inputs.surroundings(), clearance(inputs)
-    rule = f"{inputs.number('clearance_multiple').value:g} sqrt(R t)"
+def clearance_rule(inputs: Inputs) -> str:
+    """Return the rule behind the clearance, as it is shown."""
+    return f"{inputs.number('clearance_multiple').value:g} sqrt(R t)"
+
+
+def thin_shell(inputs: Inputs) -> Applicability:
+    """Test that the shell is thin."""
     radius, thickness = inputs.maybe("radius"), inputs.maybe("thickness")
     slender = radius.value / thickness.value if radius and thickness else None
+    return apply.at_least("thin shell, radius over thickness", slender, 20, "")
+
+
+def shell_tests(inputs: Inputs) -> tuple[Applicability, ...]:
+    """Test the distances and the shape a plain-shell crack solution needs."""
+    around, keep, rule = (
+        inputs.surroundings(),
+        clearance(inputs),
+        clearance_rule(inputs),
+    )
     return (
         *(apply.clear_of(around, kind, keep, rule) for kind in ObstacleKind),
         apply.inside_one_bay(around),
-        apply.at_least("thin shell, radius over thickness", slender, 20, ""),
+        thin_shell(inputs),
     )
 
 
@@ -86,50 +86,20 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
         apply.word_is(
             inputs, "crack_direction", "direction of the crack", "longitudinal"
         ),
-        apply.word_is_not(
-            inputs, "crack_origin", "where the crack starts", "fastener_hole"
-        ),
+        away_from_edges(inputs),
         *shell_tests(inputs),
     )
 
 
-def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
-    """Evaluate the crack, or skin without known crack; the tests have passed."""
+def prepared(inputs: Inputs, note: Note) -> tuple[Sheet, CrackPath]:
+    """Write loads and sheet down; return the sheet and the path of a crack in it."""
     found = panel_loads.panel_loads(inputs, note)
     note.given("c_min", "clearance in √(R t)", inputs.number("clearance_multiple"))
     sheet = sheet_of(inputs, note, inputs.number("thickness").value)
-    path = sheet.path(found, inputs, clearance(inputs))
-    if use is Use.FOUND_DAMAGE:
-        measured = note.given("2a", "measured length", inputs.number("crack_length"))
-        more = note.given(
-            "u", "its uncertainty", inputs.number("crack_length_uncertainty")
-        )
-        a = half(FullLength(measured + more))
-        note.step("a", "(2a + u) / 2", f"({measured:.2f} + {more:.2f}) / 2", a, "mm")
-        strength = write_strength(sheet, path, note, a)
-        known = with_margins(found, note, strength, draft)
-        return with_found_lives(inputs, note, path, a, known)
-    flaw = rogue_flaw(FlawLocation.ELSEWHERE, sheet.thickness)
-    start = flaw_start(sheet, path, note, flaw)
-    strength = write_strength(sheet, path, note, start.length)
-    draft = with_margins(found, note, strength, draft)
-    grown = grow(inputs, note, path, start, found.residual)
-    base = inputs.word("life_base") or ""
-    factored = intervals.over_factor(
-        inputs, note, grown.cycles, "growth_policy", "threshold"
-    )
-    threshold = intervals.interval(inputs, note, factored.cycles, base, "N_thr")
-    title = "from the assumed flaw until residual strength is lost"
-    life = intervals.life(title, grown.cycles, base, grown.remark)
-    return replace(
-        draft,
-        lives=(life,),
-        life_cycles=life.cycles,
-        life_base=base,
-        life_after_factor_cycles=factored.whole,
-        scatter_factor=factored.factor,
-        threshold=threshold,
-        repeat=repeat_after(inputs, note, path, grown.end),
-        missing=intervals.still_missing(inputs),
-        curves=curves(path, start.length, base),
-    )
+    return sheet, sheet.path(found, inputs, clearance(inputs))
+
+
+def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
+    """Evaluate the crack, or skin without known crack; the tests have passed."""
+    sheet, path = prepared(inputs, note)
+    return evaluated(inputs, use, note, draft, in_sheet(inputs, note, sheet, path))

@@ -1,0 +1,156 @@
+"""A skin with stiffeners and a crack: factor, strength, path, arrest."""
+
+from __future__ import annotations
+
+import math
+from bisect import bisect_right
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+
+from repairs.analysis.errors import AnalysisError
+from repairs.analysis.growth.path import CrackPath
+from repairs.analysis.intensity import through as si
+from repairs.analysis.intensity.stiffened_sheet import (
+    CrackCentre,
+    StiffenedCrack,
+    StiffenedSheet,
+)
+from repairs.analysis.intensity.stiffened_table import (
+    LONGEST,
+    StiffenedTable,
+)
+from repairs.analysis.loads.panel_loads import PanelLoads
+from repairs.analysis.methods.sheet import (
+    LONGEST_SHELL_PARAMETER,
+    WIDEST_SECANT,
+    Sheet,
+)
+from repairs.analysis.strength import residual as rs
+from repairs.analysis.strength import stiffened as sp
+from repairs.analysis.strength.stiffened import Arrest, StiffenedPanel
+from repairs.analysis.types import GrossStress, HalfLength
+
+TRIALS = 80
+"""Lengths at which the least strength on the way is looked for."""
+
+
+@dataclass(frozen=True)
+class StiffenedSkin:
+    """A skin with its stiffeners, their table, and a crack of half-length a [mm]."""
+
+    sheet: Sheet
+    panel: StiffenedPanel
+    stiffened: StiffenedSheet
+    centre: CrackCentre
+    table: StiffenedTable
+    stated_bulging: float | None
+
+    def bulging(self, a: float) -> float:
+        """Return the bulging factor: stated, or that of a plain shell [-]."""
+        if self.stated_bulging is not None:
+            return self.stated_bulging
+        return self.sheet.bulging(a)
+
+    def alone(self, a: float) -> StiffenedCrack:
+        """Return the effect of the stiffeners; none on a crack too short for the table.
+
+        Whole stiffeners only lower K, so that F = 1 bounds it; a broken one does not.
+        """
+        broken = self.centre is CrackCentre.BROKEN_STIFFENER
+        if not broken and a < self.table.lengths[0]:
+            return StiffenedCrack(1.0, 1.0, 0.0)
+        return self.table.at(HalfLength(a))
+
+    def effect(self, a: HalfLength) -> StiffenedCrack:
+        """Return the effect of the stiffeners with bulging and width on K."""
+        found = self.alone(a)
+        width = si.centre_crack_secant(a, self.sheet.width)
+        factor = found.factor * self.bulging(a) * width
+        return StiffenedCrack(factor, found.stiffener, found.fastener_area)
+
+    def factor(self, a: float) -> float:
+        """Return F [-]."""
+        return self.effect(HalfLength(a)).factor
+
+    def strength(self, a: float) -> rs.Strength:
+        """Return the strength at a half-length, and which element governs."""
+        half = HalfLength(a)
+        panel = dict(sp.panel_strength(self.panel, self.effect(half), half).each)
+        skin = self.sheet
+        panel[rs.NET_SECTION] = rs.net_section_yield(
+            skin.yield_strength, 2 * a, skin.width
+        )
+        panel[rs.SHORT_CRACK] = rs.short_crack_line(
+            skin.toughness, skin.yield_strength, half, skin.width
+        )
+        return rs.weakest(panel)
+
+    def least_from(self, start: float, end: float) -> Callable[[float], rs.Strength]:
+        """Return the least strength met on the way from a start: no arrest counts."""
+        lengths = [float(a) for a in np.linspace(start, end, TRIALS)]
+        least: list[rs.Strength] = []
+        for a in lengths:
+            here = self.strength(a)
+            low = min(least[-1], here, key=_stress) if least else here
+            least.append(low)
+
+        def strength(a: float) -> rs.Strength:
+            here = self.strength(a)
+            before = bisect_right(lengths, a) - 1
+            if before < 0 or here.stress <= least[before].stress:
+                return here
+            return least[before]
+
+        return strength
+
+    def ends(self) -> list[tuple[float, str]]:
+        """Return where each part of the solution ends [mm]."""
+        found = [
+            (
+                LONGEST * (1 - 1e-9) * self.stiffened.pitch,
+                "the stiffened panel's table",
+            ),
+            (WIDEST_SECANT * self.sheet.width, "the range of the width correction"),
+        ]
+        if self.stated_bulging is None and self.sheet.radius is not None:
+            root = math.sqrt(self.sheet.radius * self.sheet.thickness)
+            found.append(
+                (LONGEST_SHELL_PARAMETER * root, "the range of the bulging factor")
+            )
+        return found
+
+    def path(
+        self, loads: PanelLoads, start: float, reach: float, what: str
+    ) -> CrackPath:
+        """Return the path of a crack from a start, as far as all of it is valid."""
+        largest, end = min([*self.ends(), (reach, what)])
+        return CrackPath(
+            "2a",
+            2.0,
+            self.factor,
+            self.least_from(start, max(start, largest)),
+            loads,
+            self.sheet.law,
+            largest,
+            end,
+            smallest=self.table.lengths[0],
+            kinks=self.table.lengths,
+        )
+
+    def arrest(self, start: float) -> Arrest | None:
+        """Return what stops a skin fracture at the next stiffener, None if nothing."""
+        near, far = (0.25, 0.75) if self.centre is CrackCentre.MID_BAY else (0.5, 1.2)
+        pitch = self.stiffened.pitch
+        low, high = max(start, near * pitch), far * pitch
+        if low >= (near + far) / 2 * pitch or high > min(self.ends())[0]:
+            return None
+        try:
+            return sp.arrest(self.panel, self.effect, HalfLength(low), HalfLength(high))
+        except AnalysisError:
+            return None
+
+
+def _stress(strength: rs.Strength) -> GrossStress:
+    return strength.stress
