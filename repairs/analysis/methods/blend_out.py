@@ -301,5 +301,5 @@ def _with_growth(
         threshold=chosen.threshold,
         repeat=repeat,
         missing=intervals.still_missing(inputs),
-        curves=curves(path, start.length, base),
+        curves=(*curves(path, start.length, base), *left.curves),
     )

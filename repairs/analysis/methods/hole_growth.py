@@ -168,5 +168,5 @@ def with_assumed_flaw(
         threshold=chosen.threshold,
         repeat=None if known else repeat_after(inputs, note, path, grown.end),
         missing=intervals.still_missing(inputs),
-        curves=curves(path, start.length, base),
+        curves=(*curves(path, start.length, base), *left.curves),
     )

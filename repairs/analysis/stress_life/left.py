@@ -7,6 +7,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+import numpy as np
+
 from repairs.analysis.errors import within
 from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
@@ -24,9 +26,11 @@ from repairs.analysis.stress_life.mean_stress import (
 )
 from repairs.analysis.stress_life.policies import write_made_factors
 from repairs.analysis.types import (
+    Curve,
     Grade,
     Interval,
     Life,
+    Mark,
     NetStress,
     Reference,
 )
@@ -51,6 +55,8 @@ BOTH_NEEDED = (
     "scatter factor: no threshold; needs an engineer."
 )
 LIFE_BAND = 3.0
+DRAWN_POWERS = tuple(float(power) for power in np.linspace(3, 8, 41))
+"""Powers of ten of the lives that are drawn [-]."""
 BAND = Reference(
     "leave-one-out test of ln S on ln Kt on the 2024-T3 curves: life within a factor 3",
     Grade.RECORDED,
@@ -61,10 +67,14 @@ INPUTS = ("stress_life", "skin_cycles", "clad", "tension_strength", "yield_stren
 
 @dataclass(frozen=True, slots=True)
 class StressLife:
-    """Mean stress-life left, None where the curve gives no finite life."""
+    """Mean stress-life left, None where the curve gives no finite life.
+
+    `curves` has the stress-life curve with this cycle's point on it.
+    """
 
     remaining: float | None
     remark: str
+    curves: tuple[Curve, ...] = ()
 
 
 def stress_life_left(
@@ -90,9 +100,10 @@ def stress_life_left(
     _write_life(note, "N_after", f"Kt {kt:.3f}, ln S on ln Kt", after, new)
     _write_life(note, "N_before", "Kt 1, undamaged section", before, old)
     write_compared(inputs, note, kt, after)
+    drawn = (stress_life_curve(family, kt, after, new),)
     if new is None:
         note.warn(NOT_UNLIMITED.format(words=NO_FINITE_LIFE))
-        return StressLife(None, NO_FINITE_LIFE)
+        return StressLife(None, NO_FINITE_LIFE, drawn)
     new = less_clad(inputs, note, new)
     share = share_used(inputs, note, old)
     left = max(0.0, 1 - share) * new
@@ -104,7 +115,30 @@ def stress_life_left(
         "cycles",
     )
     write_band(note, left, "cycles")
-    return StressLife(left, "")
+    return StressLife(left, "", drawn)
+
+
+def stress_life_curve(
+    family: StressLifeFamily, kt: float, cycle: StressCycle, cycles: float | None
+) -> Curve:
+    """Return the curve at a Kt and stress ratio, with the life of one cycle on it.
+
+    A cycle without a finite life is a level below the curve, not a point on it.
+    """
+    point = Mark(f"{cycle.maximum:.1f} MPa", cycle.maximum, cycles)
+    return Curve(
+        "stress_life",
+        "Stress-life",
+        f"mean cycles to failure, Kt {kt:.2f}, R {cycle.ratio:g}",
+        "cycles",
+        "largest stress on the net section",
+        "MPa",
+        tuple(
+            (float(10**power), float(family.max_stress(kt, power, cycle.ratio)))
+            for power in DRAWN_POWERS
+        ),
+        (point,),
+    )
 
 
 def check_below_yield(inputs: Inputs, maximum: float) -> None:

@@ -137,6 +137,20 @@ def test_life_already_used_counts():
     assert any("D-7" in w for w in waived.warnings)
 
 
+def test_the_stress_life_curve_is_drawn_with_the_cycle_on_it():
+    curve = next(c for c in blended(**HIGH).curves if c.key == "stress_life")
+    (point,) = curve.marks
+    lives, stresses = zip(*curve.points, strict=True)
+    assert list(stresses) == sorted(stresses, reverse=True)
+    below = max(s for n, s in curve.points if n >= point.x)
+    above = min(s for n, s in curve.points if n <= point.x)
+    assert below <= point.y <= above
+    endless = next(c for c in blended().curves if c.key == "stress_life")
+    assert endless.marks[0].x is None
+    assert endless.marks[0].y < endless.points[-1][1]
+    assert lives[0] == 1e3
+
+
 def test_life_used_up_leaves_none():
     result = blended(**{**HIGH, "skin_cycles": recorded(9e9, "cycles")})
     left = next(li for li in result.lives if "stress" in li.title)
