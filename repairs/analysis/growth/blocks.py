@@ -18,7 +18,7 @@ from repairs.analysis.growth.laws import (
     WalkerLaw,
     refuse_threshold,
 )
-from repairs.analysis.types import GrossStress
+from repairs.analysis.types import Grade, GrossStress, Reference
 
 Whole = NDArray[np.int64]
 
@@ -29,6 +29,11 @@ NO_TENSION = "No cycle of the block pulls: a crack does not grow under it."
 NOT_A_POWER = (
     "Forman's law depends on the level of K: no one cycle stands for a flight. Grow "
     "the crack cycle by cycle."
+)
+EQUIVALENT = Reference(
+    "Equivalent cycle of a repeated block: the sum of its growth under a power law; "
+    "exact while the crack grows little in a block",
+    Grade.DERIVED,
 )
 RISES = (
     "Each rise from a valley to the next peak is one cycle, of the flight its valley "
@@ -170,7 +175,7 @@ def equivalent_cycle(law: GrowthLaw, table: CycleTable) -> StressCycle:
 
     References
     ----------
-    .. [1] Exact for a power law while the crack grows little in a block.
+    .. [1] See `EQUIVALENT`.
     """
     driven = driven_ranges(law, table.maximum, table.ratio)
     if not isinstance(law, WalkerLaw | ElberLaw | NewmanLaw):

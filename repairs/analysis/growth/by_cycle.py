@@ -63,7 +63,7 @@ class Following:
     Parameters
     ----------
     flights
-        Flights after which it is followed no further.
+        Flights after which it is followed no further, rounded up to whole blocks.
     toughness
         K at which it fractures [MPa*sqrt(mm)]; None = the path's end alone ends it.
     retardation

@@ -30,8 +30,9 @@ WHEELER = Reference(
     "Wheeler, in the USAF Damage Tolerant Design Handbook, 5.2.1.2", Grade.PRINT
 )
 WILLENBORG = Reference(
-    "Gallagher and Hughes, generalised Willenborg model; from memory, unverified",
-    Grade.MEMORY,
+    "Gallagher and Hughes, generalised Willenborg model, in public university notes on "
+    "damage tolerance",
+    Grade.QUOTED,
 )
 NONE, BY_WHEELER, BY_WILLENBORG = 0, 1, 2
 OUTGROWN, THROUGH, AT_END, FRACTURE, PAUSED = 0, 1, 2, 3, 4

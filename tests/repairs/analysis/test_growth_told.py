@@ -53,7 +53,7 @@ def test_a_retarded_life_stands_beside_with_its_evidence_and_cautions(model):
     assert "twelve sheets of the test" in beside.substitution
     assert beside.source == model.reference.source
     assert retardation.BESIDE in note.warnings
-    # Beside: a model from memory does not bar the life that does not rest on it.
+    # The life does not rest on the model, whatever the grade of its source.
     assert not note.source_from_memory
     life_line = next(line for line in note.lines if line.symbol == "N")
     assert life_line.value == life.unretarded.flights
