@@ -17,7 +17,7 @@ from repairs.models import Approval, Evaluation, Finding, Repair, Substantiation
 from repairs.selectors.signatures import content_of
 from repairs.selectors.substantiation_needs import TOUCHES
 from repairs.services.approvals import Signed, approval_sign
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_prepare import default_use
 from repairs.services.evaluations import evaluation_make
 from repairs.services.substantiation_entry import (

@@ -52,7 +52,7 @@ from repairs.models import (
 from repairs.services.accomplishments import accomplishment_record
 from repairs.services.disposition_entry import DispositionEntry
 from repairs.services.dispositions import disposition_decide
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_prepare import default_use
 from repairs.services.evaluations import evaluation_make
 from repairs.services.inspections import requirement_raise

@@ -17,7 +17,7 @@ from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.sensitivity import SPREAD_OF
 from repairs.analysis.types import Grade, Sourced, Stated
 from repairs.input_text import input_read
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluation_prepare import Prepared, evaluation_prepare
 from repairs.services.evaluations import outputs_of

@@ -45,7 +45,8 @@ from repairs.models import (
     StatedInput,
 )
 from repairs.selectors.evaluations import evaluation_current
-from repairs.services.evaluation_inputs import Choice, UsedRow, used_rows
+from repairs.services.evaluation_gathered import Choice, UsedRow
+from repairs.services.evaluation_inputs import used_rows
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluation_prepare import Prepared, evaluation_prepare
 

@@ -10,7 +10,7 @@ from django.urls import reverse
 from fleet.services.materials import demo_values_load
 from repairs.measured import Typed
 from repairs.models import Evaluation, Finding
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluations import Use, evaluation_make
 from tests.factories import FIXTURES, NOW, TODAY
 from tests.record_rows import World, found, world_make

@@ -31,7 +31,7 @@ from repairs.selectors.evaluations import (
     input_rows,
     stale_reasons,
 )
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_prepare import default_use
 from repairs.services.evaluations import (
     evaluation_data,

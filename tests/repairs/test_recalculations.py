@@ -22,7 +22,7 @@ from repairs.selectors.recalculations import (
     run_progress,
 )
 from repairs.services import recalculations
-from repairs.services.evaluation_inputs import Choice
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluations import evaluation_make
 from repairs.services.recalculations import (
     HOLD,
