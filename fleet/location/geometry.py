@@ -25,6 +25,7 @@ from fleet.location.parts import (
 from fleet.location.sections import Section
 from fleet.location.typegeometry import (
     DetectableSize,
+    Detection,
     FatiguePolicy,
     Pressures,
     RogueFlaw,
@@ -36,6 +37,7 @@ __all__ = [
     "Box",
     "Cutout",
     "DetectableSize",
+    "Detection",
     "FatiguePolicy",
     "Frame",
     "GeometryFileError",

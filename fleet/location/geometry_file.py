@@ -18,6 +18,7 @@ from fleet.location.sections import Section
 from fleet.location.table import Table
 from fleet.location.typegeometry import (
     DetectableSize,
+    Detection,
     FatiguePolicy,
     Pressures,
     RogueFlaw,
@@ -269,11 +270,35 @@ def _detectable(top: Table) -> tuple[DetectableSize, ...]:
             size_mm=t.measure("size", above=0.0),
             hidden_mm=t.measure("hidden", least=0.0),
             source=t.text("source"),
+            detection=_detection(t),
         )
         if t.done():
             found.append(size)
     _unique(top, "detectable size", [f"{d.method}, {d.detail}" for d in found])
     return tuple(found)
+
+
+def _detection(size: Table) -> Detection | None:
+    t = size.table("detection", optional=True)
+    if t is None:
+        return None
+    found = Detection(
+        link=t.choice("link", ("normal", "logistic")),
+        half_found_mm=t.measure("half_found", above=0.0),
+        deviation=t.number("deviation") or 0.0,
+        smallest_mm=t.measure("smallest", above=0.0),
+        largest_mm=t.measure("largest", above=0.0),
+        flaws=t.whole("flaws", least=1) or 0,
+        done=t.number("done") or 0.0,
+        never=t.number("never") or 0.0,
+    )
+    if not found.deviation > 0:
+        t.wrong("“deviation” is the spread of ln length; it is above 0.")
+    if not found.smallest_mm < found.largest_mm:
+        t.wrong("“smallest” is not below “largest”, the lengths that were tried.")
+    if not (0 <= found.done <= 1 and 0 <= found.never <= 1):
+        t.wrong("“done” and “never” are shares from 0 to 1.")
+    return found if t.done() else None
 
 
 def _rogue(top: Table) -> tuple[RogueFlaw, ...]:

@@ -48,6 +48,20 @@ class FatiguePolicy:
 
 
 @dataclass(frozen=True)
+class Detection:
+    """Chance of finding a visible length, what it was tried on, how surely it is used."""
+
+    link: str
+    half_found_mm: float
+    deviation: float
+    smallest_mm: float
+    largest_mm: float
+    flaws: int
+    done: float
+    never: float
+
+
+@dataclass(frozen=True)
 class DetectableSize:
     """The crack length an inspection method finds, and the part that is hidden."""
 
@@ -56,6 +70,7 @@ class DetectableSize:
     size_mm: float
     hidden_mm: float
     source: str
+    detection: Detection | None = None
 
 
 @dataclass(frozen=True)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from django.db import models
 from django.db.models import F, Q
 
-from fleet.constraints import check, has_text, unique
+from fleet.constraints import all_or_none, check, has_text, unique
 from fleet.fields import Count, Measure, Word, optional_measure, text
 from fleet.models.columns import Entered
 from fleet.models.people import Operator, Person
@@ -207,8 +207,24 @@ class FatiguePolicy(models.Model):
         return f"{self.name}: factor {self.factor:g}"
 
 
+DETECTION = (
+    "half_found_mm",
+    "curve_deviation",
+    "smallest_tried_mm",
+    "largest_tried_mm",
+    "flaws_tried",
+    "done_share",
+    "never_share",
+)
+"""A detection curve, with what it was tried on and how surely it is used."""
+
+
 class DetectableSize(models.Model):
-    """What an inspection method finds, and what hides part of it."""
+    """What an inspection method finds, and what hides part of it.
+
+    Where the chance of finding other lengths is known, it is a curve over visible
+    length, as MIL-HDBK-1823A draws it.
+    """
 
     aircraft_type = models.ForeignKey(
         "fleet.AircraftType", on_delete=models.PROTECT, related_name="detectable_sizes"
@@ -221,6 +237,20 @@ class DetectableSize(models.Model):
     length_mm = Measure(low=0.001, high=10_000, help_text="Visible length.")
     hidden_mm = Measure(
         low=0, high=10_000, help_text="Part hidden by head, doubler or fairing."
+    )
+    curve_link = Word(words=("normal", "logistic"), blank=True, default="")
+    half_found_mm = optional_measure(
+        0.001, 10_000, help_text="Visible length found half the time."
+    )
+    curve_deviation = optional_measure(1e-4, 10, help_text="Of ln length.")
+    smallest_tried_mm = optional_measure(0.001, 10_000)
+    largest_tried_mm = optional_measure(0.001, 10_000)
+    flaws_tried = Count(low=1, high=100_000, null=True, blank=True)
+    done_share = optional_measure(
+        0, 1, help_text="Chance that the inspection is done there, each time."
+    )
+    never_share = optional_measure(
+        0, 1, help_text="Share of cases in which it is never done there."
     )
     source = models.TextField()
     grade = Word(choices=Grade)
@@ -236,6 +266,7 @@ class DetectableSize(models.Model):
         ordering = ["aircraft_type", "method", "detail", "revision"]
         constraints = [
             has_text("fleet_detectablesize", "source"),
+            all_or_none("fleet_detectablesize", "curve_whole", *DETECTION),
             unique(
                 "fleet_detectablesize",
                 "once",

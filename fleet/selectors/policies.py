@@ -12,6 +12,7 @@ from fleet.models import Operator, Policy
 
 RULES = {
     "backup_hours": "the last backup is no older than",
+    "detection_target_percent": "a plan finds the crack, in the worst phase, in",
     "fitted_thickness_percent": "a thickness fitted may differ by",
     "largest_interval_fatigue_critical": "inspections of FCS repeat at most every",
     "largest_interval_principal": "inspections of PSE repeat at most every",

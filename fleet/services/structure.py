@@ -11,6 +11,7 @@ from django.db import models
 from fleet.canonical import digest
 from fleet.location import READER_VERSION, LocationRefused, Place
 from fleet.location.geometry import (
+    Detection,
     GeometryFileError,
     TypeGeometry,
     geometry_from_toml,
@@ -27,6 +28,7 @@ from fleet.models import (
     Variant,
     Zone,
 )
+from fleet.models.materials import DETECTION
 from fleet.selectors.structure import NO_GEOMETRY, geometry_in_force
 from fleet.services.history import Writing
 from fleet.services.structure_rows import lines_create, openings_create, panel_row
@@ -268,8 +270,26 @@ def _policies(w: Writing, aircraft_type: AircraftType, geometry: TypeGeometry) -
             hidden_mm=size.hidden_mm,
             source=size.source,
             grade="adopted",
+            **_curve(size.detection),
         )
-        _revise(w, new, rows.last(), "length_mm", "hidden_mm", "source")
+        columns = ("length_mm", "hidden_mm", "source", "curve_link", *DETECTION)
+        _revise(w, new, rows.last(), *columns)
+
+
+def _curve(detection: Detection | None) -> dict[str, Any]:
+    """Columns of a detection curve; none where the file has none."""
+    if detection is None:
+        return {}
+    return {
+        "curve_link": detection.link,
+        "half_found_mm": detection.half_found_mm,
+        "curve_deviation": detection.deviation,
+        "smallest_tried_mm": detection.smallest_mm,
+        "largest_tried_mm": detection.largest_mm,
+        "flaws_tried": detection.flaws,
+        "done_share": detection.done,
+        "never_share": detection.never,
+    }
 
 
 def _revise(

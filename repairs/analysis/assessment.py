@@ -14,6 +14,8 @@ from dataclasses import dataclass, replace
 from enum import StrEnum
 
 from repairs.analysis.inputs import Inputs
+from repairs.analysis.inspection.known import with_plan
+from repairs.analysis.note import Note
 from repairs.analysis.registry import (
     COVERAGE_KEY,
     COVERAGE_VERSION,
@@ -21,16 +23,20 @@ from repairs.analysis.registry import (
     evaluate,
     groups_for,
 )
+from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.types import (
     Interval,
     Outcome,
     Result,
+    Sourced,
     UltimateKept,
     Use,
 )
 
 UNANSWERED = "{title} is not answered: {why}"
 STANDS_IN = "{title} stands in for {better}, which lacks: {lacking}."
+NAMED = 4
+"""How many of the inputs that a method lacks a sentence names."""
 LESSER = "{what} is that of {title}."
 
 
@@ -70,7 +76,34 @@ def assess(use: Use, inputs: Inputs) -> Assessment:
     answers: list[Answer] = []
     for group in groups_for(inputs):
         answers += _group(tuple(group), use, inputs, _lines(answers))
-    return Assessment(tuple(answers), _whole(use, answers))
+    return Assessment(tuple(answers), _planned(inputs, _whole(use, answers)))
+
+
+def _planned(inputs: Inputs, result: Result) -> Result:
+    """Judge the plan a result proposes, where the chance of detection is recorded."""
+    detection = inputs.detection()
+    if detection is None or result.use is Use.FOUND_DAMAGE:
+        return result
+    note = Note(result.note[-1].number + 1 if result.note else 1)
+    policy = inputs.policy("repeat_policy")
+    target = inputs.maybe("detection_target")
+    judged = with_plan(result, detection, scatter_of(policy), target, note)
+    if judged is result:
+        return result
+    return replace(
+        judged,
+        note=(*result.note, *note.lines),
+        warnings=(*result.warnings, *note.warnings),
+        source_from_memory=result.source_from_memory or note.source_from_memory,
+        barred=(*result.barred, *note.barred),
+    )
+
+
+def scatter_of(policy: FatiguePolicy | None) -> Sourced | None:
+    """Scatter of the growth life, where the type's policy states it."""
+    if policy is None or policy.log_deviation is None:
+        return None
+    return replace(policy.factor, value=policy.log_deviation)
 
 
 def _lines(answers: list[Answer]) -> int:
@@ -113,7 +146,9 @@ def _standing_in(result: Result, lacking: list[Result]) -> Result:
 
 def _lacking(result: Result) -> str:
     unknown = [test.test for test in result.applicability if test.met is None]
-    return ", ".join([*(item.title for item in result.missing), *unknown])
+    names = list(dict.fromkeys([*(item.title for item in result.missing), *unknown]))
+    more = len(names) - NAMED
+    return ", ".join(names[:NAMED]) + (f" and {more} more" if more > 0 else "")
 
 
 def _whole(use: Use, answers: list[Answer]) -> Result:
@@ -123,7 +158,7 @@ def _whole(use: Use, answers: list[Answer]) -> Result:
     if computed:
         return _lesser(computed, open_)
     if open_:
-        return open_[0]
+        return min(open_, key=lambda result: len(result.missing))
     nothing = Result("", 0, "", use, Outcome.NOT_COVERED)
     if not answers:
         return replace(nothing, warnings=(NO_METHOD,))

@@ -16,6 +16,7 @@ from repairs.analysis.errors import (
 )
 from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.input_specs import SPECS, TOUGHNESS_UNIT, InputSpec
+from repairs.analysis.inspection.known import Detection
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.surroundings import Surroundings
@@ -23,7 +24,15 @@ from repairs.analysis.types import MissingInput, Sourced, Stated
 
 __all__ = ["SPECS", "TOUGHNESS_UNIT", "InputSpec", "Inputs", "Value"]
 
-Value = Sourced | Stated | StressLifeFamily | WalkerLaw | FatiguePolicy | Surroundings
+Value = (
+    Sourced
+    | Stated
+    | StressLifeFamily
+    | WalkerLaw
+    | FatiguePolicy
+    | Surroundings
+    | Detection
+)
 
 
 class Inputs:
@@ -87,6 +96,11 @@ class Inputs:
         """Return a fatigue policy, or None."""
         value = self._values.get(name)
         return value if isinstance(value, FatiguePolicy) else None
+
+    def detection(self) -> Detection | None:
+        """Return the detection curve of the method chosen, or None."""
+        value = self._values.get("detection")
+        return value if isinstance(value, Detection) else None
 
     def surroundings(self) -> Surroundings | None:
         """Return what lies round the location, or None."""

@@ -183,6 +183,19 @@ class Margin:
 
 
 @dataclass(frozen=True, slots=True)
+class Plan:
+    """Chance that the proposed threshold and repeat find the crack [-]: mean over
+    phase, worst phase, as scheduled; the target and the longest repeat that meets it.
+    """
+
+    mean: float
+    worst: float
+    scheduled: float
+    target: float | None
+    longest: int | None
+
+
+@dataclass(frozen=True, slots=True)
 class Mark:
     """A horizontal line or a named point on a curve."""
 
@@ -250,6 +263,7 @@ class Result:
     scatter_factor: float | None = None
     threshold: Interval | None = None
     repeat: Interval | None = None
+    plan: Plan | None = None
     margins: tuple[Margin, ...] = ()
     assumptions: tuple[str, ...] = ()
     source_from_memory: bool = False

@@ -30,10 +30,14 @@ def measured_of(subject: Finding | Repair) -> Latest:
 
 def _latest_values(finding: Finding) -> dict[str, MeasuredValue]:
     """What was last measured of each dimension; one query."""
-    rows = MeasuredValue.objects.filter(
-        measurement__finding=finding,
-        measurement__replaced_by__isnull=True,
-        status="known",
-    ).select_related("measurement").order_by("pk")
+    rows = (
+        MeasuredValue.objects.filter(
+            measurement__finding=finding,
+            measurement__replaced_by__isnull=True,
+            status="known",
+        )
+        .select_related("measurement")
+        .order_by("pk")
+    )
     ordered = sorted(rows, key=lambda row: (row.measurement.number, row.pk))
     return {row.quantity: row for row in ordered}
