@@ -7,7 +7,18 @@ from typing import Protocol
 
 from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.methods import blend_out, hole, hole_row, loaded_hole, skin_crack
+from repairs.analysis.methods import (
+    blend_out,
+    hole,
+    hole_row,
+    loaded_hole,
+    member_crack,
+    member_failed,
+    member_hole,
+    member_section,
+    skin_crack,
+)
+from repairs.analysis.methods.member_common import MEMBERS
 from repairs.analysis.note import Note
 from repairs.analysis.types import Applicability, Outcome, Result, Use
 
@@ -82,6 +93,10 @@ METHODS: dict[str, Method] = {
         Method("open-or-trimmed-hole", 2, "Open or trimmed hole", hole),
         Method("loaded-fastener-hole", 1, "Loaded fastener hole", loaded_hole),
         Method("row-of-cracked-holes", 1, "Row of cracked holes", hole_row),
+        Method("failed-member", 1, "Failed member", member_failed),
+        Method("damaged-member-section", 1, "Section left of a member", member_section),
+        Method("cracked-member-flange", 1, "Crack in a member's flange", member_crack),
+        Method("cracked-member-hole", 1, "Fastener hole in a member", member_hole),
     )
 }
 
@@ -89,11 +104,12 @@ COVERAGE_KEY = "coverage"
 COVERAGE_VERSION = 1
 """Goes up whenever a damage asks for other methods than before."""
 AWAY_FROM_EDGES = ("skin", "scratch", "dent", "corrosion_pit", "weld", "other")
+OF_SKIN = ("element", ("skin",))
 COVERAGE: tuple[Coverage, ...] = (
     Coverage(
         ("crack",),
         (("pressurised-skin-longitudinal-crack",),),
-        (("crack_origin", AWAY_FROM_EDGES),),
+        (OF_SKIN, ("crack_origin", AWAY_FROM_EDGES)),
     ),
     Coverage(
         ("crack",),
@@ -101,12 +117,27 @@ COVERAGE: tuple[Coverage, ...] = (
             ("open-or-trimmed-hole", "loaded-fastener-hole"),
             ("row-of-cracked-holes",),
         ),
-        (("crack_origin", ("fastener_hole",)),),
+        (OF_SKIN, ("crack_origin", ("fastener_hole",))),
     ),
-    Coverage(("hole",), (("open-or-trimmed-hole", "loaded-fastener-hole"),)),
+    Coverage(
+        ("hole",),
+        (("open-or-trimmed-hole", "loaded-fastener-hole"),),
+        (OF_SKIN,),
+    ),
     Coverage(
         ("corrosion", "scratch", "gouge", "nick", "wear"),
         (("corrosion-blend-out",),),
+        (OF_SKIN,),
+        repairs=("blend",),
+    ),
+    Coverage(
+        ("crack", "hole", "corrosion", "scratch", "gouge", "nick", "wear"),
+        (
+            ("failed-member", "damaged-member-section"),
+            ("cracked-member-flange",),
+            ("cracked-member-hole",),
+        ),
+        (("element", MEMBERS),),
         repairs=("blend",),
     ),
 )

@@ -6,7 +6,7 @@ In a row of holes whose pitch is stated the strip is one pitch wide.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.growth.path import CrackPath, write_law
@@ -185,8 +185,8 @@ def read_hole(
     return hole_in_sheet(inputs, note, at)
 
 
-def hole_in_sheet(inputs: Inputs, note: Note, at: CrackedHole) -> Hole:
-    """Write the sheet's data down and return the hole in it."""
+def flat_hole(inputs: Inputs, note: Note, at: CrackedHole, thickness: float) -> Hole:
+    """Write the material down and return the hole in a flat strip."""
     law = inputs.law()
     assert law is not None, "evaluate() has checked the growth law"
     strength = note.given(
@@ -194,17 +194,17 @@ def hole_in_sheet(inputs: Inputs, note: Note, at: CrackedHole) -> Hole:
     )
     toughness = note.toughness(inputs.number("toughness"))
     write_law(note, law)
+    return Hole(at, thickness, None, strength, toughness, law)
+
+
+def hole_in_sheet(inputs: Inputs, note: Note, at: CrackedHole) -> Hole:
+    """Write the sheet's data down and return the hole in it, bulging if pressurised."""
+    flat = flat_hole(inputs, note, at, inputs.number("thickness").value)
     radius = inputs.maybe("radius") if inputs.word("pressurised") == "yes" else None
-    if radius:
-        note.text(BULGING_WITH_HOLE)
-    return Hole(
-        at,
-        inputs.number("thickness").value,
-        radius.value if radius else None,
-        strength,
-        toughness,
-        law,
-    )
+    if radius is None:
+        return flat
+    note.text(BULGING_WITH_HOLE)
+    return replace(flat, radius=radius.value)
 
 
 def write_strength(hole: Hole, path: CrackPath, note: Note, c: float) -> rs.Strength:

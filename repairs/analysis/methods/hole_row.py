@@ -104,7 +104,9 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     return (
         apply.word_is(inputs, "element", "structural item", "skin"),
         _several(inputs),
-        _load_known(inputs),
+        apply.word_among(
+            inputs, "hole_load", SPECS["hole_load"].title, ("open", "loaded")
+        ),
         apply.at_most("hole diameter over pitch", share, 0.5, ""),
         *((direction,) if inputs.word("pressurised") == "yes" else ()),
     )
@@ -117,14 +119,6 @@ def _several(inputs: Inputs) -> Applicability:
         known = True if "hole_pitch" in inputs else None
         return Applicability(test, apply.NOT_RECORDED, wanted, known)
     return Applicability(test, f"{count.value:.0f}", wanted, count.value >= 2)
-
-
-def _load_known(inputs: Inputs) -> Applicability:
-    word = inputs.word("hole_load")
-    known = True if word in ("open", "loaded") else None
-    return Applicability(
-        SPECS["hole_load"].title, word or apply.NOT_RECORDED, "open or loaded", known
-    )
 
 
 def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
