@@ -12,6 +12,7 @@ Curve = Mapping[str, Any]
 RESIDUAL, GROWTH, STRESS_LIFE = "residual_strength", "growth", "stress_life"
 MANY_CYCLES = 10_000
 MOST_INSPECTIONS = 40
+WHAT_IF = "what if:"
 THRESHOLD_WORDS = "first inspection"
 
 
@@ -64,7 +65,6 @@ def chart_of(
     by_powers = curve["key"] == STRESS_LIFE
     scale, unit = _scale(curve, by_powers=by_powers)
     x_label = f"{curve['x_label']}, {unit}" if unit else curve["x_label"]
-    levels = [mark for mark in curve["marks"] if mark["x"] is None]
     named = [mark for mark in curve["marks"] if mark["x"] is not None]
     return chart_svg(
         Chart(
@@ -72,14 +72,7 @@ def chart_of(
             x_label=x_label,
             y_label=f"{curve['y_label']}, {curve['y_unit']}",
             series=list(_series(curve, other, scale)),
-            levels=[
-                Level(
-                    mark["y"],
-                    f"{mark['label']} {number_text(mark['y'])} {curve['y_unit']}",
-                    soft=number == 0,
-                )
-                for number, mark in enumerate(levels)
-            ],
+            levels=[*_levels(curve), *_levels(other, WHAT_IF, besides=curve)],
             point=Point(named[0]["x"] / scale, named[0]["y"], named[0]["label"])
             if named
             else None,
@@ -87,6 +80,18 @@ def chart_of(
             x_log=by_powers,
         )
     )
+
+
+def _levels(
+    curve: Curve | None, prefix: str = "", besides: Curve | None = None
+) -> Iterator[Level]:
+    """Reference lines, the first dashed; of a second curve those that differ."""
+    lines = [mark for mark in curve["marks"] if mark["x"] is None] if curve else []
+    known = {mark["y"] for mark in besides["marks"]} if besides else set()
+    for number, mark in enumerate(lines):
+        if mark["y"] not in known:
+            words = f"{mark['label']} {number_text(mark['y'])} {curve['y_unit']}"  # type: ignore[index]
+            yield Level(mark["y"], f"{prefix} {words}".strip(), soft=number == 0)
 
 
 def _scale(curve: Curve, *, by_powers: bool) -> tuple[float, str]:

@@ -229,10 +229,12 @@ def _why(row: Data) -> str:
         return f"{first['test']}: {first['value']}; required {first['limit']}"
     lacking = [item["title"] for item in row["missing"]]
     lacking += [t["test"] for t in row["applicability"] if t["met"] is None]
-    if lacking:
-        return "not recorded: " + ", ".join(lacking)
+    more = "not recorded: " + ", ".join(dict.fromkeys(lacking)) if lacking else ""
     if row["outcome"] == COMPUTED:
-        return row["governing"] if row["part"] == "answers" else BESIDE_COMPUTED
+        first = row["governing"] if row["part"] == "answers" else BESIDE_COMPUTED
+        return "; ".join(part for part in (first, more) if part)
+    if more:
+        return more
     return row["warnings"][0] if row["warnings"] else ""
 
 

@@ -15,7 +15,7 @@ from fleet.drawing import svg
 from fleet.drawing.svg import Label
 
 WIDTH, RIGHT = 560.0, 500.0
-HEAD, ROW, FOOT, BAR = 30.0, 24.0, 10.0, 8.0
+HEAD, ROW, FOOT, BAR = 30.0, 30.0, 8.0, 9.0
 GAP, NARROWEST, WIDEST = 8.0, 120.0, 210.0
 VALUE_ROOM = 62.0
 NO_ANSWER = "no answer"
@@ -25,9 +25,10 @@ NOT_A_NUMBER = "Bars “{title}”: {label} reads {value}, which cannot be drawn
 
 @dataclass(frozen=True, slots=True)
 class Bar:
-    """One input: the answer when it is less and when it is more; None is no answer."""
+    """One input, how far it is moved, and the answers less and more; None is none."""
 
     label: str
+    step: str
     less: float | None
     more: float | None
     less_words: str = NO_ANSWER
@@ -99,9 +100,8 @@ def bars_svg(bars: Bars) -> str:
 def _summary(bars: Bars) -> str:
     words = [f"Base {bars.base_words}."]
     for row in bars.rows:
-        words.append(
-            f"{row.label}: {row.less_words} when less, {row.more_words} when more."
-        )
+        ends = f"{row.less_words} when less, {row.more_words} when more."
+        words.append(f"{row.label} {row.step}: {ends}")
     return " ".join(words)
 
 
@@ -116,12 +116,13 @@ def _base(bars: Bars) -> Iterator[str]:
 
 def _row(bars: Bars, number: int) -> Iterator[str]:
     row, top = bars.rows[number], HEAD + ROW * number
-    yield Label(_cut(row.label), 2.0, top + ROW / 2 + 1).drawn("axis")
+    yield Label(_cut(row.label), 2.0, top + 9).drawn("axis")
+    yield Label(row.step, 2.0, top + 21).drawn("tick")
     if number:
         yield svg.tag("line", class_="grid", x1=0, x2=WIDTH, y1=top - 3, y2=top - 3)
     sides = (
-        (row.less, row.less_words, "less", 0.0),
-        (row.more, row.more_words, "more", BAR),
+        (row.less, row.less_words, "less", 1.0),
+        (row.more, row.more_words, "more", 2.0 + BAR),
     )
     for value, words, class_, down in sides:
         if value is None:

@@ -28,6 +28,8 @@ SPREAD_OF = {
 """Measured numbers whose uncertainty is an input of its own."""
 WHOLE = frozenset({"crack_count", "hole_count"})
 """Counted things, of which there is no tenth."""
+BY_RULE = frozenset({"residual_pressure_factor", "ultimate_factor", "proof_factor"})
+"""Fixed by a rule, so not uncertain."""
 LAW_CONSTANT = "C of the {title}"
 
 
@@ -119,7 +121,7 @@ def _numbers(inputs: Inputs) -> Iterator[tuple[str, Value]]:
     spread_names = set(SPREAD_OF.values())
     for name, spec in SPECS.items():
         value = values.get(name, spec.default)
-        if name in spread_names or name in WHOLE:
+        if name in spread_names | WHOLE | BY_RULE:
             continue
         if isinstance(value, Sourced | FatiguePolicy | WalkerLaw):
             yield name, value

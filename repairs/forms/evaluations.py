@@ -30,6 +30,7 @@ class EvaluationForm(forms.Form):
     """Use, inspection method and, for rework, why life already used is not counted."""
 
     use = forms.ChoiceField(
+        label="use",
         choices=Use.choices,
         help_text="Known damage gets a life, never an inspection interval.",
     )

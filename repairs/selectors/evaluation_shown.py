@@ -154,7 +154,7 @@ def evaluation_shown(
         note=[_note_row(line) for line in data["note"]],
         given=[
             _given(titles.get(name, name), value)
-            for name, value in data["inputs"].items()
+            for name, value in _in_order(data["inputs"], titles)
         ],
         inputs=input_rows(evaluation),
         libraries=", ".join(f"{k} {v}" for k, v in sorted(data["libraries"].items())),
@@ -162,6 +162,14 @@ def evaluation_shown(
             evaluation.content_digest[start : start + 16] for start in range(0, 64, 16)
         ],
     )
+
+
+def _in_order(
+    inputs: Mapping[str, Any], titles: Mapping[str, str]
+) -> list[tuple[str, Any]]:
+    """Stored inputs in the order of the titles, others behind them."""
+    order = {name: place for place, name in enumerate(titles)}
+    return sorted(inputs.items(), key=lambda item: order.get(item[0], len(order)))
 
 
 def _note_row(line: dict[str, Any]) -> NoteRow:

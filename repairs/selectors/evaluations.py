@@ -181,10 +181,9 @@ def _measured_again() -> QuerySet[Measurement]:
 
 
 def _stated_since() -> QuerySet[StatedInput]:
-    """Inputs first stated for the evaluated subject after the evaluation."""
+    """Inputs stated for the evaluated subject after the evaluation."""
     return StatedInput.objects.filter(
         Q(finding=OuterRef("finding")) | Q(repair=OuterRef("repair")),
-        replaces__isnull=True,
         entered_at__gt=OuterRef("entered_at"),
     )
 

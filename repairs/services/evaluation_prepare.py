@@ -14,6 +14,7 @@ from fleet.services.chain import stream_end
 from repairs.analysis.assessment import Assessment, Part, assess
 from repairs.analysis.input_specs import Where
 from repairs.analysis.inputs import SPECS, Inputs, Value
+from repairs.analysis.inspection.known import Detection
 from repairs.analysis.registry import METHODS, groups_for
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.stress_life.curves import StressLifeFamily
@@ -22,7 +23,9 @@ from repairs.analysis.types import Result, Sourced, Stated, Use
 from repairs.input_text import input_number, unit_shown
 from repairs.models import Finding
 from repairs.selectors.latest import Latest, measured_of
-from repairs.services.evaluation_inputs import Choice, Gathered, gather, subject_words
+from repairs.services.evaluation_gathered import Choice, Gathered
+from repairs.services.evaluation_inputs import gather
+from repairs.services.evaluation_measured import subject_words
 from repairs.services.evaluation_place import Subject
 
 OTHER_TYPE = (
@@ -100,6 +103,11 @@ def _asks(subject: Subject, measured: Latest) -> bool:
     return bool(groups_for(Inputs(subject_words(subject, measured))))
 
 
+MISSING, NEEDED, ALSO = (
+    "missing",
+    "needed by the methods",
+    "also on record, used where a method asks",
+)
 NUMBER, WORD, OTHER = "number", "word", "other"
 
 
@@ -121,6 +129,12 @@ class InputLine:
     words: tuple[str, ...]
     may_be_stated: bool
     missing: bool = False
+    needed: bool = True
+
+    @property
+    def group(self) -> str:
+        """Which part of the list it stands in."""
+        return MISSING if self.missing else NEEDED if self.needed else ALSO
 
 
 def input_titles() -> dict[str, str]:
@@ -140,17 +154,20 @@ def input_lines(prepared: Prepared) -> list[InputLine]:
             names |= dict.fromkeys(item.name for item in answer.result.missing)
     if not names:
         return []
-    found = prepared.inputs.values
+    needed, found = set(names), prepared.inputs.values
     names |= {
         name: None
         for name, spec in SPECS.items()
         if name in found and spec.kind is not Stated
     }
-    lines = [_input_line(name, found.get(name, SPECS[name].default)) for name in names]
+    lines = [
+        _input_line(name, found.get(name, SPECS[name].default), needed=name in needed)
+        for name in names
+    ]
     return sorted(lines, key=lambda line: not line.missing)
 
 
-def _input_line(name: str, value: Value | None) -> InputLine:
+def _input_line(name: str, value: Value | None, *, needed: bool) -> InputLine:
     spec = SPECS[name]
     form = WORD if spec.kind is Stated and spec.words else OTHER
     if spec.kind in (Sourced, FatiguePolicy):
@@ -168,6 +185,7 @@ def _input_line(name: str, value: Value | None) -> InputLine:
         spec.words,
         spec.may_be_stated and form != OTHER,
         missing=value is None,
+        needed=needed,
     )
 
 
@@ -186,5 +204,8 @@ def said(value: Value) -> tuple[str, str, str]:
         return f"Kt {factors}", first.source, first.grade.value
     if isinstance(value, Surroundings):
         return value.bay_label, value.source, ""
+    if isinstance(value, Detection):
+        study = value.curve.study
+        return f"half found at {value.curve.a50:.3g} mm", study.source, study.grade
     law = value.reference
     return type(value).__name__.removesuffix("Law"), law.source, law.grade.value

@@ -80,9 +80,10 @@ def _drawn(
     found: Sensitivity, name: str, title: str, words: Callable[[float | None], str]
 ) -> str:
     base = getattr(found.base, name)
-    rows = [
+    bars = [
         Bar(
-            f"{row.title} {_step(row)}",
+            row.title,
+            _step(row),
             getattr(row.less, name),
             getattr(row.more, name),
             _end(row.less, name, words),
@@ -90,7 +91,9 @@ def _drawn(
         )
         for row in found.ranked(name)[:MOST_BARS]
     ]
-    return bars_svg(Bars(title, base, f"{title} {words(base)}", rows))
+    told = words(base)
+    seen = [bar for bar in bars if {bar.less_words, bar.more_words} != {told}]
+    return bars_svg(Bars(title, base, f"{title} {told}", seen or bars[:1]))
 
 
 def _end(answers: Answers, name: str, words: Callable[[float | None], str]) -> str:

@@ -19,6 +19,7 @@ from fleet.services.history import Writing
 from fleet.units import UnitError
 from repairs.analysis.input_specs import InputSpec
 from repairs.analysis.inputs import SPECS
+from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.types import Sourced, Stated
 from repairs.input_text import Bounds, Read, input_read, input_write
 from repairs.models import Finding, StatedInput
@@ -36,6 +37,7 @@ GONE = "This no longer holds: it was replaced or taken back before."
 NO_REASON = "Say why it is taken back."
 
 POSITIVE, NOT_BELOW_ZERO = Bounds(0, strict=True), Bounds(0)
+FACTOR = Bounds(1, 100)
 SIGNED_UNITS = frozenset({"MPa", "N", "N*mm"})
 MAY_BE_NOUGHT = ("uncertainty", "_depth", "_distance")
 BOUNDS: dict[str, Bounds] = {
@@ -80,6 +82,8 @@ def spec_of(name: str) -> InputSpec:
 
 def bounds_of(spec: InputSpec) -> Bounds:
     """What a number may be."""
+    if spec.kind is FatiguePolicy:
+        return FACTOR
     if spec.name in BOUNDS:
         return BOUNDS[spec.name]
     if spec.unit in SIGNED_UNITS:

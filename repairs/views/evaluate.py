@@ -14,8 +14,12 @@ from repairs.evaluation_figures import answer_of, compared, figures_of
 from repairs.forms.evaluations import EvaluationForm, WhatIfForm
 from repairs.models import Evaluation
 from repairs.selectors.evaluation_shown import evaluation_json
-from repairs.selectors.evaluations import detectable_sizes, evaluations_current
-from repairs.services.evaluation_inputs import Choice
+from repairs.selectors.evaluations import (
+    detectable_sizes,
+    evaluation_current,
+    evaluations_current,
+)
+from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluation_prepare import (
     InputLine,
@@ -27,6 +31,7 @@ from repairs.services.evaluation_prepare import (
 )
 from repairs.services.evaluation_sensitivity import moves_of
 from repairs.services.evaluation_what_if import prepared_data, what_if
+from repairs.services.evaluations import choice_of
 from repairs.services.stated import stated_lines
 from repairs.views.evaluation_links import entry_link, state_address
 
@@ -45,16 +50,27 @@ class Line:
 
 
 def choice_form(request: Request, subject: Subject) -> EvaluationForm:
-    """What is asked for, from the address; else what the subject suggests."""
+    """What is asked for, from the address; else what the evaluation in force was
+    asked, or what the subject suggests."""
     sizes = detectable_sizes(subject.aircraft.variant.aircraft_type)
-    first = {"use": default_use(subject).value}
+    use = default_use(subject)
+    stored = evaluation_current(subject, use.value)
+    choice = choice_of(stored) if stored else Choice(use)
+    first = {
+        "use": choice.use.value,
+        "detectable": choice.detectable,
+        "life_used_reason": choice.life_used_reason,
+    }
     given = request.GET if "use" in request.GET else None
     return EvaluationForm(given, sizes=sizes, initial=first)
 
 
 def kept_choice(request: Request, subject: Subject) -> dict[str, Any]:
     """What the form that keeps begins with: what was asked for."""
-    ask = choice_form(request, subject)
+    return _asked(choice_form(request, subject))
+
+
+def _asked(ask: EvaluationForm) -> dict[str, Any]:
     if ask.is_bound and ask.is_valid():
         return ask.cleaned_data
     return dict(ask.initial)
@@ -63,8 +79,7 @@ def kept_choice(request: Request, subject: Subject) -> dict[str, Any]:
 def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
     """Everything the page shows but the form that keeps."""
     ask = choice_form(request, subject)
-    given = ask.cleaned_data if ask.is_bound and ask.is_valid() else {}
-    choice = choice_from(subject, **given)
+    choice = choice_from(subject, **_asked(ask))
     prepared = evaluation_prepare(subject=subject, choice=choice, as_of=today())
     lines = input_lines(prepared)
     form = WhatIfForm(request.GET or None, lines=lines, given=prepared.inputs.values)
