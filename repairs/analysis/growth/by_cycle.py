@@ -21,7 +21,12 @@ from repairs.analysis.growth.blocks import CycleBlock, driven_ranges
 from repairs.analysis.growth.closure import ElberLaw, NewmanLaw
 from repairs.analysis.growth.laws import Floats, FormanLaw, GrowthLaw, WalkerLaw
 from repairs.analysis.growth.retardation import Retardation, Willenborg
-from repairs.analysis.growth.two_directions import BreakThrough, FlawPath, History
+from repairs.analysis.growth.two_directions import (
+    NO_FLAW,
+    BreakThrough,
+    FlawPath,
+    History,
+)
 
 REFRESH = 0.01
 """Growth of a length after which factors are taken anew, and over which their slopes
@@ -171,11 +176,16 @@ class _Run:
 
     def grown(self, start: tuple[float, float]) -> SequenceGrowth:
         """Run until the crack ends."""
+        depth, length = start
+        within("Depth over thickness", depth / self.path.thickness, 1e-9, 1, "a flaw")
+        within("Crack length, mm", length, 1e-9, 1e6, "a crack")
+        if self.path.part is None and depth < self.path.thickness:
+            raise AnalysisError(NO_FLAW)
         self.state[loop.DEPTH], self.state[loop.LENGTH] = start
         self._keep()
         through: BreakThrough | None = None
         reason = loop.THROUGH
-        if self.path.part is not None and start[0] < self.path.thickness:
+        if depth < self.path.thickness:
             reason = self._stage(self.path.part_intensities, 2)
             if reason == loop.THROUGH:
                 through = self._broken_through()

@@ -255,5 +255,9 @@ def compiled_march() -> March:
 
     for part in (wheeler_share, willenborg_reduction, tip_growth):
         register_jitable(part)
-    made: Any = numba.njit(cache=True)(march)
+    made: Any
+    try:
+        made = numba.njit(cache=True)(march)
+    except RuntimeError:  # nowhere to write: compiled for this process alone
+        made = numba.njit(march)
     return made  # type: ignore[no-any-return]

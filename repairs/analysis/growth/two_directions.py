@@ -46,7 +46,8 @@ FLAW_BELOW_THRESHOLD = (
     "threshold out."
 )
 NO_FLAW = (
-    "The path has no part-through factors. A through crack's life is `growth_cycles`."
+    "The crack begins part-through, the path has no factors for that. Begin with a "
+    "depth of the thickness, or give the factors."
 )
 PART_POINTS, THROUGH_POINTS = 30, 60
 FIRST_STEP = 1e-9

@@ -317,6 +317,20 @@ def test_nothing_imports_numba_until_a_sequence_is_run():
     subprocess.run([sys.executable, "-c", code], check=True, env={**os.environ})
 
 
+def test_the_loop_is_compiled_where_nothing_can_be_kept(monkeypatch):
+    import numba
+
+    kept = numba.njit
+
+    def njit(*functions, cache=False):
+        if cache:
+            raise RuntimeError("no locator available")
+        return kept(*functions)
+
+    monkeypatch.setattr(numba, "njit", njit)
+    assert callable(loop.compiled_march.__wrapped__())
+
+
 # How it ends
 
 
@@ -388,6 +402,17 @@ def test_what_does_not_hold_cycle_by_cycle_is_refused():
         by_cycle.life_by_cycle(held, mixed_block(), PATH, FLAW, following)
     with pytest.raises(OutOfRangeError, match="works through the stress ratio"):
         by_cycle.life_by_cycle(LAWS[2], mixed_block(), PATH, FLAW, following)
+    plain = by_cycle.Following(10)
+    for start, words in (
+        ((math.nan, 1.27), "Depth over thickness"),
+        ((3.1, 1.27), "Depth over thickness"),
+        ((1.27, math.nan), "Crack length"),
+    ):
+        with pytest.raises(OutOfRangeError, match=words):
+            by_cycle.life_by_cycle(LAW, mixed_block(), PATH, start, plain)
+    bare = td.FlawPath(None, through_hole, 3.0, 30.0)
+    with pytest.raises(AnalysisError, match="no factors for that"):
+        by_cycle.life_by_cycle(LAW, mixed_block(), bare, FLAW, plain)
     with pytest.raises(OutOfRangeError, match="Shut-off overload ratio"):
         retardation.Willenborg(1.0, 1.0, 320.0, StressState.PLANE_STRESS, TEST)
     with pytest.raises(OutOfRangeError, match="Wheeler's exponent"):

@@ -197,5 +197,5 @@ def test_what_does_not_hold_is_refused():
     with pytest.raises(OutOfRangeError, match="Depth over length"):
         td.grow_part_through(LAW, HOLE, CYCLE, (0.5, 5.0), 6.0)
     bare = td.FlawPath(None, through_hole, 6.0, 40.0)
-    with pytest.raises(AnalysisError, match="no part-through factors"):
+    with pytest.raises(AnalysisError, match="no factors for that"):
         td.grow_to_end(LAW, bare, CYCLE, (1.27, 1.27))
