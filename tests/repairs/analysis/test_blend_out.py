@@ -10,8 +10,8 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from repairs.analysis.errors import OutOfRangeError
-from repairs.analysis.methods.blend_out import notch_factor
 from repairs.analysis.registry import evaluate
+from repairs.analysis.stress_life.notches import notch_factor
 from repairs.analysis.types import KSI, Grade, Outcome, Sourced, Use
 from tests.repairs.analysis.cases import (
     BLEND,
