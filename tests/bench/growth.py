@@ -23,6 +23,8 @@ from repairs.analysis.growth.laws import StressCycle, WalkerLaw
 from repairs.analysis.growth.plastic_zone import StressState
 from repairs.analysis.intensity.holes import hole_single
 from repairs.analysis.intensity.through import centre_crack_secant
+from repairs.analysis.spectra.counting import counted
+from repairs.analysis.spectra.sequence import Residue, Treatment
 from repairs.analysis.spectra.wing_sequence import (
     GROUND_RATIO,
     WING_LOWER_SURFACE,
@@ -55,7 +57,7 @@ NEW_PROCESS = (
 
 
 def wing_block() -> blocks.CycleBlock:
-    """The standard wing sequence, a cycle for each rise of it."""
+    """The standard wing sequence, its cycles as counting closes them."""
     flown = WingSequence(
         MEAN_STRESS,
         GROUND_RATIO,
@@ -65,9 +67,8 @@ def wing_block() -> blocks.CycleBlock:
         omit_below=None,
         place=WING_LOWER_SURFACE,
     ).sequence()
-    return blocks.CycleBlock.from_turning_points(
-        flown.stresses, flown.flights, flown.starts
-    )
+    found = counted(flown, Treatment(Residue.REPEATING))
+    return blocks.CycleBlock.from_counted(found.maxima, found.minima, flown.flights)
 
 
 def path() -> td.FlawPath:

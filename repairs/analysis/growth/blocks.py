@@ -38,7 +38,12 @@ EQUIVALENT = Reference(
 RISES = (
     "Each rise from a valley to the next peak is one cycle, of the flight its valley "
     "is in; points between are passed over, and the last valley of a block rises to "
-    "its first peak."
+    "its first peak. Larger ranges that counting pairs are missing: the life comes out "
+    "longer."
+)
+CLOSED = (
+    "Cycles are those that rainflow counting closes over the whole block, each where "
+    "it closes."
 )
 
 
@@ -56,12 +61,15 @@ class CycleBlock:
         Flights in the block.
     ends
         Cycles done at the end of each flight; None = not known, shared out evenly.
+    counting
+        How the cycles were made from stresses flown, in words.
     """
 
     maximum: Floats
     ratio: Floats
     flights: int
     ends: Whole | None = None
+    counting: str = ""
 
     def __post_init__(self) -> None:
         if self.flights < 1 or not self.maximum.size:
@@ -92,13 +100,19 @@ class CycleBlock:
         tops = np.roll(turned, -1)
         rising = tops > turned
         valleys, tops = turned[rising], tops[rising]
-        maximum = np.where(tops > 0, tops, 0.0)
-        ratio = np.divide(valleys, tops, out=np.zeros_like(tops), where=tops > 0)
         ends = None
         if starts is not None:
             following = np.append(starts[1:], len(points))
             ends = np.searchsorted(found[rising], following)
-        return cls(maximum, ratio, flights, ends)
+        return cls(*_pulling(tops, valleys), flights, ends, RISES)
+
+    @classmethod
+    def from_counted(cls, maxima: Floats, minima: Floats, flights: int) -> CycleBlock:
+        """Make a repeated block from counted cycles in the order they close [MPa].
+
+        See `CLOSED`. As long as the per-flight form of the same count.
+        """
+        return cls(*_pulling(maxima, minima), flights, None, CLOSED)
 
     @property
     def cycles(self) -> int:
@@ -112,6 +126,12 @@ class CycleBlock:
             return blocks * self.flights + rest * self.flights // self.cycles
         done = int(np.searchsorted(self.ends, rest, side="right")) if rest else 0
         return blocks * self.flights + done
+
+
+def _pulling(tops: Floats, valleys: Floats) -> tuple[Floats, Floats]:
+    """Return maximum and ratio of cycles; one that does not pull as 0 and 0."""
+    ratio = np.divide(valleys, tops, out=np.zeros_like(tops), where=tops > 0)
+    return np.where(tops > 0, tops, 0.0), ratio
 
 
 def driven_ranges(law: GrowthLaw, maximum: Floats, ratio: Floats) -> Floats:

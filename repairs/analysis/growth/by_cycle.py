@@ -99,6 +99,7 @@ class SequenceLife:
     unretarded: SequenceGrowth
     retarded: SequenceGrowth | None
     cautions: tuple[str, ...]
+    counting: str
 
 
 def life_by_cycle(
@@ -140,9 +141,9 @@ def life_by_cycle(
     model = following.retardation
     plain = _Run(law, block, path, following, None).grown(start)
     if model is None:
-        return SequenceLife(plain, None, ())
+        return SequenceLife(plain, None, (), block.counting)
     retarded = _Run(law, block, path, following, model).grown(start)
-    return SequenceLife(plain, retarded, model.cautions)
+    return SequenceLife(plain, retarded, model.cautions, block.counting)
 
 
 class _Run:

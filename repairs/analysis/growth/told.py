@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from repairs.analysis.growth.blocks import RISES, CycleBlock
+from repairs.analysis.growth.blocks import CycleBlock
 from repairs.analysis.growth.by_cycle import Following, SequenceGrowth, SequenceLife
 from repairs.analysis.growth.two_directions import BREAK_THROUGH_RULE, History
 from repairs.analysis.note import Note
@@ -17,7 +17,8 @@ def write_sequence_life(note: Note, life: SequenceLife, following: Following) ->
     The result rests on the life without retardation alone.
     """
     plain = life.unretarded
-    note.text(RISES)
+    if life.counting:
+        note.text(life.counting)
     if plain.break_through is not None:
         note.text(BREAK_THROUGH_RULE)
         note.step(

@@ -17,6 +17,8 @@ from repairs.analysis.growth.laws import (
     ThresholdLaw,
     WalkerLaw,
 )
+from repairs.analysis.spectra.counting import rainflow
+from repairs.analysis.spectra.sequence import Residue
 from repairs.analysis.types import ROOT_1000, Grade, Reference
 
 TEST = Reference("record of the test", Grade.RECORDED)
@@ -54,6 +56,23 @@ def test_cycles_that_do_not_pull_are_kept_and_grow_nothing():
     assert block.maximum.tolist() == [0, 90]
     driven = blocks.driven_ranges(LAW, block.maximum, block.ratio)
     assert driven.tolist() == [0, 90]
+
+
+def test_counted_cycles_hold_the_great_cycle_that_rises_miss():
+    # Two flights of small cycles on 60 MPa from 0: counting pairs 0 with the largest.
+    flight = [0.0, 70.0, 50.0, 80.0, 50.0, 70.0]
+    points = np.array([*flight, *flight])
+    rises = blocks.CycleBlock.from_turning_points(points, 2)
+    found = rainflow(points, Residue.REPEATING)
+    closed = blocks.CycleBlock.from_counted(found.maxima, found.minima, 2)
+    assert (rises.counting, closed.counting) == (blocks.RISES, blocks.CLOSED)
+    assert sorted(closed.maximum * (1 - closed.ratio)) == [20, 20, 20, 20, 80, 80]
+    assert sorted(rises.maximum * (1 - rises.ratio)) == [20, 20, 30, 30, 70, 70]
+    by_rises, by_count = (
+        blocks.equivalent_cycle(LAW, blocks.CycleTable.of(block)).maximum
+        for block in (rises, closed)
+    )
+    assert by_count > by_rises
 
 
 def test_blocks_that_are_none_are_refused():
