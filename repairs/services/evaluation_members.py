@@ -10,6 +10,7 @@ from collections.abc import Iterable, MutableMapping
 
 from repairs.analysis.input_specs import Where
 from repairs.analysis.inputs import SPECS, Value
+from repairs.analysis.methods.member_common import OWN, SAME_MATERIAL
 from repairs.analysis.types import Sourced, Stated
 from repairs.models.columns import Element
 
@@ -19,6 +20,7 @@ OF_PANEL = frozenset(
         "load_kind",
         "cycle_max_stress",
         "cycle_ratio",
+        "spectrum",
         "limit_flight_stress",
         "ultimate_running_load",
         "thickness",
@@ -26,17 +28,6 @@ OF_PANEL = frozenset(
         "clad_thickness",
     }
 )
-OWN = {
-    "member_yield": "yield_strength",
-    "member_ultimate": "tension_strength",
-    "member_compression_yield": "compression_yield",
-    "member_shear_strength": "shear_strength",
-    "member_modulus": "modulus",
-    "member_poisson": "poisson",
-    "member_toughness": "toughness",
-}
-"""A member's own numbers, and the input of the methods each of them is."""
-SAME_MATERIAL = "member_of_panel_material"
 
 
 def without_panel(

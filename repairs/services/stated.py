@@ -52,6 +52,14 @@ BOUNDS: dict[str, Bounds] = {
     "stiffener_strength": POSITIVE,
     "stiffener_modulus": POSITIVE,
     "member_crippling": POSITIVE,
+    "member_yield": POSITIVE,
+    "member_ultimate": POSITIVE,
+    "member_compression_yield": POSITIVE,
+    "member_shear_strength": POSITIVE,
+    "member_modulus": POSITIVE,
+    "neighbour_count": Bounds(1, 2),
+    "neighbour_strength": POSITIVE,
+    "dynamic_factor": Bounds(1, 2),
 }
 """What differs from the rule: stresses, forces and moments have a sign, sizes none."""
 

@@ -27,6 +27,7 @@ from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
 from repairs.analysis.intensity import through as si
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods import member_stress
+from repairs.analysis.methods.member_common import own_needed
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.types import (
@@ -60,7 +61,8 @@ FLAW_AT_EDGE = (
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs."""
     sizes = SISTER if use is Use.NO_KNOWN_CRACK else MEASURED
-    return (*COMMON, *member_stress.needed(inputs), *sizes)
+    names = (*COMMON, *member_stress.needed(inputs), *sizes)
+    return own_needed(inputs, names)
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:

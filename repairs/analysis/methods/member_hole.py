@@ -19,6 +19,7 @@ from repairs.analysis.methods.hole_geometry import (
 )
 from repairs.analysis.methods.hole_growth import with_assumed_flaw, with_known_crack
 from repairs.analysis.methods.loaded_hole import with_bearing, without_bearing
+from repairs.analysis.methods.member_common import own_needed
 from repairs.analysis.note import Note
 from repairs.analysis.stress_life.left import StressLife
 from repairs.analysis.types import Applicability, Result, Use
@@ -47,7 +48,8 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     else:
         depth = CORNER_INPUTS if inputs.word("crack_through") == "no" else ()
         sizes = ("crack_origin", "hole_cracked", *CRACK_INPUTS, *depth)
-    return (*COMMON, *pin, *member_stress.needed(inputs), *sizes)
+    names = (*COMMON, *pin, *member_stress.needed(inputs), *sizes)
+    return own_needed(inputs, names)
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:

@@ -13,7 +13,7 @@ from dataclasses import replace
 from repairs.analysis.growth.path import ultimate_kept
 from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.methods import applicability as apply
-from repairs.analysis.methods.member_common import is_member, warn_static
+from repairs.analysis.methods.member_common import is_member, own_needed, warn_static
 from repairs.analysis.note import Note
 from repairs.analysis.strength.checks import Check, Level, governing
 from repairs.analysis.strength.load_kinds import LoadKind, Structure, checks_for
@@ -30,7 +30,7 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     del use
     kind = inputs.word("load_kind")
     loads = needed(LoadKind(kind)) if kind in NEEDED else ()
-    return ("element", "load_kind", *loads)
+    return own_needed(inputs, ("element", "load_kind", *loads))
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
