@@ -9,6 +9,9 @@ from repairs.analysis.errors import UNKNOWN_METHOD, InputError, OutOfRangeError
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.methods import (
     blend_out,
+    circumferential_crack,
+    edge_crack,
+    flat_crack,
     hole,
     hole_row,
     loaded_hole,
@@ -16,7 +19,10 @@ from repairs.analysis.methods import (
     member_failed,
     member_hole,
     member_section,
+    skew_crack,
     skin_crack,
+    stiffened_crack,
+    stop_drilled,
 )
 from repairs.analysis.methods.member_common import MEMBERS
 from repairs.analysis.note import Note
@@ -27,6 +33,7 @@ NEEDS_ENGINEER = (
 )
 NO_METHOD = "No method of this program covers this damage. Needs an engineer."
 NEEDS_INPUT = "Incomplete: {title} is not recorded; enter it {where}."
+STIFFENERS_WHOLE = "Stiffeners that cross the crack are whole: look at them."
 UNAPPROVED = "Unapproved calculation."
 
 
@@ -85,10 +92,45 @@ METHODS: dict[str, Method] = {
     for method in (
         Method(
             "pressurised-skin-longitudinal-crack",
-            1,
+            2,
             "Longitudinal through crack in pressurised skin",
             skin_crack,
         ),
+        Method(
+            "pressurised-skin-circumferential-crack",
+            1,
+            "Circumferential through crack in pressurised skin",
+            circumferential_crack,
+            (STIFFENERS_WHOLE,),
+        ),
+        Method(
+            "pressurised-skin-skew-crack",
+            1,
+            "Diagonal crack or one of unknown direction in pressurised skin",
+            skew_crack,
+            (STIFFENERS_WHOLE,),
+        ),
+        Method(
+            "unpressurised-skin-crack",
+            1,
+            "Through crack in unpressurised skin",
+            flat_crack,
+            (STIFFENERS_WHOLE,),
+        ),
+        Method(
+            "stiffened-skin-crack",
+            1,
+            "Crack in stiffened skin, between or across stiffeners",
+            stiffened_crack,
+            (
+                "The crack lies evenly about mid-bay or about a stiffener, as stated.",
+                "Equal stiffeners with one row of fasteners each, all sound but the "
+                "one stated as broken; no cracks at holes ahead of the tips.",
+                "Stiffeners themselves do not crack while the skin crack grows.",
+            ),
+        ),
+        Method("edge-crack", 1, "Crack from an edge", edge_crack),
+        Method("stop-drilled-crack", 1, "Stop-drilled crack", stop_drilled),
         Method("corrosion-blend-out", 1, "Corrosion blended out", blend_out),
         Method("open-or-trimmed-hole", 2, "Open or trimmed hole", hole),
         Method("loaded-fastener-hole", 1, "Loaded fastener hole", loaded_hole),
@@ -101,15 +143,42 @@ METHODS: dict[str, Method] = {
 }
 
 COVERAGE_KEY = "coverage"
-COVERAGE_VERSION = 1
+COVERAGE_VERSION = 2
 """Goes up whenever a damage asks for other methods than before."""
+PLAIN_ITEMS = ("skin", "fairing", "other")
 AWAY_FROM_EDGES = ("skin", "scratch", "dent", "corrosion_pit", "weld", "other")
 OF_SKIN = ("element", ("skin",))
 COVERAGE: tuple[Coverage, ...] = (
     Coverage(
         ("crack",),
-        (("pressurised-skin-longitudinal-crack",),),
-        (OF_SKIN, ("crack_origin", AWAY_FROM_EDGES)),
+        (
+            (
+                "stop-drilled-crack",
+                "stiffened-skin-crack",
+                "pressurised-skin-longitudinal-crack",
+                "pressurised-skin-circumferential-crack",
+                "pressurised-skin-skew-crack",
+            ),
+        ),
+        (
+            ("element", PLAIN_ITEMS),
+            ("crack_origin", AWAY_FROM_EDGES),
+            ("pressurised", ("yes",)),
+        ),
+    ),
+    Coverage(
+        ("crack",),
+        (("stop-drilled-crack", "stiffened-skin-crack", "unpressurised-skin-crack"),),
+        (
+            ("element", PLAIN_ITEMS),
+            ("crack_origin", AWAY_FROM_EDGES),
+            ("pressurised", ("no",)),
+        ),
+    ),
+    Coverage(
+        ("crack",),
+        (("edge-crack",),),
+        (("element", PLAIN_ITEMS), ("crack_origin", ("edge", "cut_out_corner"))),
     ),
     Coverage(
         ("crack",),
