@@ -11,7 +11,7 @@ from repairs.evaluation_text import number_text
 Curve = Mapping[str, Any]
 RESIDUAL, GROWTH, STRESS_LIFE = "residual_strength", "growth", "stress_life"
 MANY_CYCLES = 10_000
-MOST_INSPECTIONS = 40
+MOST_INSPECTIONS = 25
 WHAT_IF = "what if:"
 THRESHOLD_WORDS = "first inspection"
 

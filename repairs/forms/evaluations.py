@@ -95,7 +95,11 @@ def _field(line: InputLine) -> forms.Field | None:
     if line.form == NUMBER:
         unit = f" {line.unit}" if line.unit else ""
         widget = forms.TextInput(
-            attrs={"size": 9, "aria-label": f"{label}{',' * bool(unit)}{unit}"}
+            attrs={
+                "size": 9,
+                "placeholder": " ",
+                "aria-label": f"{label}{',' * bool(unit)}{unit}",
+            }
         )
         return forms.CharField(required=False, label=label, widget=widget)
     if line.form == WORD:

@@ -104,14 +104,28 @@ def _row(row: dict[str, Any]) -> CheckRow:
         row["method"],
         row["source"],
         row["given"],
-        number_text(row["published"]),
-        number_text(row["computed"]),
+        _signed(row["published"]),
+        _signed(row["computed"]),
         row["unit"].strip("-"),
         difference_text(row["published"], row["computed"]),
-        row["tolerance"],
+        allowed_text(row["tolerance"]),
         ROUTES.get(row["route"], row["route"]),
         row["route"] == MEMORY,
     )
+
+
+def _signed(value: float) -> str:
+    return number_text(value).replace("-", "−")
+
+
+def allowed_text(tolerance: str) -> str:
+    """How far a value may be off; less than any printed figure is rounding."""
+    share = tolerance.endswith("%")
+    try:
+        size = float(tolerance.strip("± %"))
+    except ValueError:
+        return tolerance
+    return "rounding" if size < (1e-3 if share else 1e-6) else tolerance
 
 
 def difference_text(published: float, computed: float) -> str:

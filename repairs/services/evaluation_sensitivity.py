@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -14,6 +15,8 @@ from repairs.models import StatedInput
 from repairs.services.evaluation_prepare import Prepared
 
 MOST_BARS = 12
+SHORTEST_BAR = 0.01
+"""Share of the longest bar below which an input is in the table only."""
 TENTH = "±10 %"
 
 
@@ -89,11 +92,21 @@ def _drawn(
             _end(row.less, name, words),
             _end(row.more, name, words),
         )
-        for row in found.ranked(name)[:MOST_BARS]
+        for row in _worth_a_bar(found, name)
     ]
-    told = words(base)
-    seen = [bar for bar in bars if {bar.less_words, bar.more_words} != {told}]
-    return bars_svg(Bars(title, base, f"{title} {told}", seen or bars[:1]))
+    return bars_svg(Bars(title, base, f"{title} {words(base)}", bars))
+
+
+def _worth_a_bar(found: Sensitivity, name: str) -> list[Moved]:
+    """The farthest, without those whose bar could not be seen beside the longest."""
+    ranked = found.ranked(name)[:MOST_BARS]
+    reaches = [row.reach(found.base, name) for row in ranked]
+    longest = max((reach for reach in reaches if reach < math.inf), default=0.0)
+    return [
+        row
+        for row, reach in zip(ranked, reaches, strict=True)
+        if reach >= SHORTEST_BAR * longest
+    ]
 
 
 def _end(answers: Answers, name: str, words: Callable[[float | None], str]) -> str:

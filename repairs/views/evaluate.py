@@ -4,13 +4,13 @@ what would follow from other numbers. Only its form that is posted keeps anythin
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from fleet.clock import today
 from fleet.views.requests import Request
 from repairs.evaluation_charts import charts_of
-from repairs.evaluation_figures import answer_of, compared, figures_of
+from repairs.evaluation_figures import Answer, answer_of, compared, figures_of
 from repairs.forms.evaluations import EvaluationForm, WhatIfForm
 from repairs.models import Evaluation
 from repairs.selectors.evaluation_shown import evaluation_json
@@ -87,6 +87,7 @@ def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
     current = evaluations_current(subject)
     stored = next((row for row in current if row.use == choice.use), None)
     data = prepared_data(prepared)
+    answer = answer_of(data)
     return {
         "subject": subject,
         "ask": ask,
@@ -94,9 +95,9 @@ def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
         "use_words": dict(ask.fields["use"].choices)[choice.use.value],  # type: ignore[attr-defined]
         "current": current,
         "prepared": prepared,
-        "answer": answer_of(data),
+        "answer": answer,
         "what_if": form,
-        "other": answer_of(prepared_data(other)) if other else None,
+        "other": _besides(answer, other),
         "refusal": refusal,
         "lines": [_line(subject, form, line) for line in lines],
         "stated": [
@@ -119,6 +120,18 @@ def _other(
         choice=choice,
         as_of=today(),
         instead=form.cleaned_data["instead"],
+    )
+
+
+def _besides(answer: Answer, other: Prepared | None) -> Answer | None:
+    """What the what-if says, with only those warnings that the record has not."""
+    if other is None:
+        return None
+    found, known = answer_of(prepared_data(other)), {*answer.warnings, *answer.barred}
+    return replace(
+        found,
+        warnings=tuple(text for text in found.warnings if text not in known),
+        barred=tuple(text for text in found.barred if text not in known),
     )
 
 
