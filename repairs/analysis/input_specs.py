@@ -14,6 +14,7 @@ from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.inspection.known import Detection
 from repairs.analysis.loads import shell as loads
 from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.surroundings import Surroundings
 from repairs.analysis.types import Grade, Sourced, Stated
@@ -131,6 +132,8 @@ _STATED_WORDS: tuple[tuple[str, str, tuple[str, ...]], ...] = (
      ("none_counts", "slope_continued", "slope_doubled")),
     ("retardation", "retardation shown beside the life",
      ("none", "wheeler", "willenborg")),
+    ("stress_state", "stress state at the crack front, for retardation",
+     ("plane_stress", "plane_strain")),
 )  # fmt: skip
 _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
     Where.MEASURE: (
@@ -220,6 +223,8 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("dynamic_factor", "factor on the load as a member fails", "-"),
         ("wheeler_exponent", "Wheeler's exponent, fitted", "-"),
         ("shut_off_ratio", "overload ratio that stops the crack", "-"),
+        ("below_join_life", "longest life tested, from which a curve is continued",
+         "cycles"),
     ),
     Where.MATERIAL: (
         ("yield_strength", "tension yield strength Fty", "MPa"),
@@ -268,6 +273,7 @@ _DEFAULTS = {
 _OTHERS: tuple[InputSpec, ...] = (
     InputSpec("surroundings", "what lies round the location", Surroundings, "",
               Where.GEOMETRY),
+    InputSpec("spectrum", "load spectrum", RecordedSpectrum, "", Where.PANEL),
     InputSpec("growth_law", "crack growth law", WalkerLaw, "", Where.MATERIAL),
     InputSpec("second_growth_law", "second growth law", WalkerLaw, "", Where.MATERIAL),
     InputSpec("stress_life", "stress-life curves", StressLifeFamily, "",

@@ -18,6 +18,7 @@ from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.input_specs import SPECS, TOUGHNESS_UNIT, InputSpec
 from repairs.analysis.inspection.known import Detection
 from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.surroundings import Surroundings
 from repairs.analysis.types import MissingInput, Sourced, Stated
@@ -32,6 +33,7 @@ Value = (
     | FatiguePolicy
     | Surroundings
     | Detection
+    | RecordedSpectrum
 )
 
 
@@ -102,6 +104,11 @@ class Inputs:
         value = self._values.get("detection")
         return value if isinstance(value, Detection) else None
 
+    def spectrum(self) -> RecordedSpectrum | None:
+        """Return the spectrum that the panel or the place is flown by, or None."""
+        value = self._values.get("spectrum")
+        return value if isinstance(value, RecordedSpectrum) else None
+
     def surroundings(self) -> Surroundings | None:
         """Return what lies round the location, or None."""
         value = self._values.get("surroundings")
@@ -115,6 +122,11 @@ class Inputs:
     def as_data(self) -> dict[str, object]:
         """Return all inputs given as plain data, by name."""
         return {
-            name: {"kind": type(value).__name__, **asdict(value)}
+            name: {"kind": type(value).__name__, **_plain(value)}
             for name, value in sorted(self._values.items())
         }
+
+
+def _plain(value: Value) -> dict[str, object]:
+    """A value's parts; a spectrum gives its digest and choices, not its cycles."""
+    return value.as_data() if isinstance(value, RecordedSpectrum) else asdict(value)

@@ -11,7 +11,10 @@ from dataclasses import dataclass, field, replace
 
 import numpy as np
 
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth import beside
+from repairs.analysis.growth.blocks import EQUIVALENT
+from repairs.analysis.growth.by_cycle import End, SequenceGrowth
+from repairs.analysis.growth.laws import StressCycle, WalkerLaw
 from repairs.analysis.growth.separable import (
     SEPARABLE,
     GrowthTable,
@@ -40,6 +43,8 @@ from repairs.analysis.types import (
 CURVE_POINTS = 60
 BEYOND = "not lost where the method ends, at {what} ({length:.1f} mm)"
 LOST_ALREADY = "lost already at the size evaluated"
+PER_FLIGHT = "per flight"
+RETARDED = "until {name} strength is lost, with retardation"
 OTHER_LAW = "the other recorded growth law, for comparison"
 RESIDUAL, ULTIMATE = "residual", "static ultimate"
 
@@ -77,19 +82,24 @@ class CrackPath:
             max(start, self.largest),
         )
 
+    def growth_cycle(self, law: WalkerLaw | None = None) -> StressCycle:
+        """Return the cycle of a flight that a crack here grows by [MPa]."""
+        return self.loads.flown.growth_cycle(law or self.law)
+
     def cycles(self, start: float, end: float, law: WalkerLaw | None = None) -> float:
         """Return cycles of growth from one length to another."""
         law = law or self.law
         if start == end:
             return 0.0
         if not start <= end <= self.largest:
-            return growth_cycles(law, self.factor, self.loads.cycle, start, end)
+            cycle = self.growth_cycle(law)
+            return growth_cycles(law, self.factor, cycle, start, end)
         return self._table(start, law).life(start, end)
 
     def history(self, start: float, end: float) -> tuple[tuple[float, float], ...]:
         """Return (cycles, length) from one length to another."""
         if end > self.largest:
-            cycle = self.loads.cycle
+            cycle = self.growth_cycle()
             return growth_history(self.law, self.factor, cycle, start, end)
         return history_of(self._table(start, self.law), start, end)
 
@@ -97,7 +107,7 @@ class CrackPath:
         """Return the growth table from `low` on, made once for all lives of it."""
         kept = self._tables.get(law)
         if kept is None or kept.low > low:
-            cycle = self.loads.cycle
+            cycle = self.growth_cycle(law)
             kept = GrowthTable(law, self.factor, cycle, low, self.largest, self.kinks)
             self._tables[law] = kept
         return kept
@@ -118,6 +128,8 @@ class Grown:
     end: float
     cycles: float
     remark: str
+    retarded: SequenceGrowth | None = None
+    """The same with retardation, for comparison."""
 
 
 def write_law(note: Note, law: WalkerLaw) -> None:
@@ -158,7 +170,7 @@ def grow(
         path.scale * end,
         "mm",
     )
-    note.step("N", SEPARABLE, shown, cycles, "cycles")
+    write_growth(note, path, shown, cycles)
     second = inputs.law("second_growth_law")
     if second is not None:
         other = path.cycles(start.length, end, second)
@@ -170,7 +182,24 @@ def grow(
             "cycles",
             second.reference,
         )
-    return Grown(end, cycles, remark)
+    retarded = None
+    if start.length < end and beside.asked(inputs):
+        flown, flights = path.loads.flown, cycles - start.cycles_before
+        through = beside.Through(
+            path.factor, flown, path.law, start.length, end, flights
+        )
+        retarded = beside.grown_beside(inputs, note, through)
+    return Grown(end, cycles, remark, retarded)
+
+
+def write_growth(note: Note, path: CrackPath, shown: str, cycles: float) -> None:
+    """Write a life down: of one cycle a flight, or of a spectrum's flights."""
+    if path.loads.flown.spectrum is None:
+        note.step("N", SEPARABLE, shown, cycles, "cycles")
+        return
+    top = path.growth_cycle().maximum
+    words = f"{shown}; S_eq = {top:.2f} MPa, from zero, once a flight"
+    note.step("N", f"{SEPARABLE}, {PER_FLIGHT}", words, cycles, "flights", EQUIVALENT)
 
 
 def with_margins(
@@ -240,25 +269,37 @@ def with_found_lives(
     note.warn(intervals.FOUND_DAMAGE_LIFE)
     start = Start(length, cycles_before)
     lives: list[Life] = []
+    compared: list[Life] = []
     for requirement in (path.loads.ultimate, path.loads.residual):
         grown = grow(inputs, note, path, start, requirement)
         title = f"until {requirement.name} strength is lost"
         lives.append(
             intervals.life(title, grown.cycles, intervals.FROM_FINDING, grown.remark)
         )
+        if grown.retarded is not None:
+            title = RETARDED.format(name=requirement.name)
+            compared.append(_compared(title, grown.retarded, cycles_before))
     shortest = min(lives, key=lambda item: item.cycles or 0)
     factored = intervals.over_factor(
         inputs, note, shortest.cycles, "growth_policy", "life after factor"
     )
     return replace(
         draft,
-        lives=tuple(lives),
+        lives=(*lives, *compared),
         life_cycles=shortest.cycles,
         life_base=shortest.base,
         life_after_factor_cycles=factored.whole,
         scatter_factor=factored.factor,
         curves=curves(path, length, intervals.FROM_FINDING),
     )
+
+
+def _compared(title: str, retarded: SequenceGrowth, before: float) -> Life:
+    """Return a retarded life, which never governs; none where it was not reached."""
+    reached = retarded.end is End.REACHED
+    remark = beside.NOT_USED if reached else f"{retarded.end}; {beside.NOT_USED}"
+    flights = retarded.flights + before if reached else None
+    return intervals.life(title, flights, intervals.FROM_FINDING, remark)
 
 
 def repeat_after(

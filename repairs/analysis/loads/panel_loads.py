@@ -4,18 +4,30 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from repairs.analysis.errors import InputError
 from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.loads import shell as loads
 from repairs.analysis.loads import stiffened_shell as stiffened
+from repairs.analysis.loads.flown import Flown, write_flight
 from repairs.analysis.loads.shell import LoadCase, Requirement
 from repairs.analysis.note import Note
+from repairs.analysis.spectra.cycles import PressureCycle
 from repairs.analysis.types import GrossStress, Sourced
 
 FEET_45000 = 45_000.0
 RUNNING_LOAD_CASE = "recorded ultimate running load of the panel"
 ONE_DIRECTION = (
     "Hoop direction only: stresses along the section are not part of this method."
+)
+
+NOT_HOOP = (
+    "The panel's spectrum states stress along the section; the hoop cycle comes from "
+    "the cabin's pressure and does not use it."
+)
+NOT_STRESS = (
+    "The spectrum {name} is a pressure cycle, and the panel carries no pressure: "
+    "record one that states its stress."
 )
 
 PRESSURE_INPUTS = (
@@ -25,16 +37,26 @@ PRESSURE_INPUTS = (
     "ceiling",
     "radius",
 )
-CYCLE_INPUTS = ("limit_flight_stress", "cycle_max_stress", "cycle_ratio")
+LIMIT, CYCLE = "limit_flight_stress", ("cycle_max_stress", "cycle_ratio")
 
 
 @dataclass(frozen=True, slots=True)
 class PanelLoads:
-    """Both requirements and the cycle of one flight, on gross stress [MPa]."""
+    """Both requirements and the cycle of one flight, on gross stress [MPa].
+
+    Where a spectrum is recorded `flight` is what it does, and `cycle` goes from its
+    smallest to its largest stress; else the cycle is all there is.
+    """
 
     residual: Requirement
     ultimate: Requirement
     cycle: StressCycle
+    flight: Flown | None = None
+
+    @property
+    def flown(self) -> Flown:
+        """What one flight does: its spectrum, else its one cycle."""
+        return self.flight or Flown(self.cycle)
 
     @property
     def not_checked(self) -> tuple[str, ...]:
@@ -45,7 +67,10 @@ class PanelLoads:
         """Return the same loads as stress on a section of `share` of the whole."""
         cycle = StressCycle(GrossStress(self.cycle.maximum / share), self.cycle.ratio)
         return PanelLoads(
-            _scaled(self.residual, share), _scaled(self.ultimate, share), cycle
+            _scaled(self.residual, share),
+            _scaled(self.ultimate, share),
+            cycle,
+            self.flight and self.flight.times(1 / share),
         )
 
 
@@ -64,7 +89,28 @@ def _scaled(requirement: Requirement, share: float) -> Requirement:
 
 def needed(inputs: Inputs) -> tuple[str, ...]:
     """Return the names of the load inputs this panel needs."""
-    return PRESSURE_INPUTS if inputs.word("pressurised") == "yes" else CYCLE_INPUTS
+    if inputs.word("pressurised") == "yes":
+        return PRESSURE_INPUTS
+    return recorded_needed(inputs)
+
+
+def flight_needed(inputs: Inputs) -> tuple[str, ...]:
+    """Return the names of what says what a flight does: a spectrum, else a cycle."""
+    return ("spectrum",) if inputs.spectrum() else CYCLE
+
+
+def recorded_needed(inputs: Inputs) -> tuple[str, ...]:
+    """Return the names of the inputs that recorded stresses need."""
+    return (LIMIT, *flight_needed(inputs))
+
+
+def largest_stress(inputs: Inputs) -> float | None:
+    """Return the largest stress of a flight as recorded [MPa], None if it is not."""
+    spectrum = inputs.spectrum()
+    if spectrum is not None and spectrum.flight is not None:
+        return float(spectrum.flight.maxima.max())
+    given = inputs.maybe(CYCLE[0])
+    return given.value if given else None
 
 
 def panel_loads(inputs: Inputs, note: Note) -> PanelLoads:
@@ -146,8 +192,37 @@ def _shell(inputs: Inputs, note: Note) -> PanelLoads:
     return PanelLoads(
         residual,
         _with_running_load(inputs, note, ultimate, thickness),
-        StressCycle(top, 0.0),
+        _pressed(inputs, note, read, top),
     )
+
+
+def _pressed(
+    inputs: Inputs, note: Note, read: ShellInputs, top: GrossStress
+) -> StressCycle:
+    """Return the hoop cycle of a flight, of the recorded differential if there is one.
+
+    The external pressure is whole at the largest stress and none at the smallest.
+    """
+    spectrum = inputs.spectrum()
+    if spectrum is None:
+        return StressCycle(top, 0.0)
+    if not isinstance(spectrum.spectrum, PressureCycle):
+        note.warn(NOT_HOOP)
+        return StressCycle(top, 0.0)
+    spectrum.write(note)
+    flown = spectrum.spectrum
+    normal = loads.hoop_stress(read.pressures.normal, read.radius, read.thickness)
+    largest = GrossStress(top - (1 - flown.share) * normal)
+    smallest = flown.ground_share * normal
+    note.step(
+        "σ_max",
+        "σ − (1 − share) Δp R / t",
+        f"{top:.2f} − {1 - flown.share:.3f} · {normal:.2f}; "
+        f"smallest {smallest:.2f} MPa",
+        largest,
+        "MPa",
+    )
+    return StressCycle(largest, smallest / largest)
 
 
 def _beside_frames(inputs: Inputs, note: Note, read: ShellInputs) -> None:
@@ -205,17 +280,29 @@ def _recorded(inputs: Inputs, note: Note) -> PanelLoads:
     factor = note.given(
         "k_ult", "factor of static ultimate", inputs.number("ultimate_factor")
     )
-    top = note.given(
-        "σ_max", "largest stress of a flight", inputs.number("cycle_max_stress")
-    )
-    ratio = note.given("R_σ", "stress ratio of a flight", inputs.number("cycle_ratio"))
+    flown = read_flight(inputs, note)
     thickness = note.given("t", "skin thickness", inputs.number("thickness"))
     residual, ultimate = loads.unpressurised_requirements(flight, factor)
     return PanelLoads(
         residual,
         _with_running_load(inputs, note, ultimate, thickness),
-        StressCycle(GrossStress(top), ratio),
+        flown.cycle,
+        flown,
     )
+
+
+def read_flight(inputs: Inputs, note: Note) -> Flown:
+    """Write down and return what a flight does, from its spectrum or its cycle."""
+    spectrum = inputs.spectrum()
+    if spectrum is not None:
+        if spectrum.flight is None:
+            raise InputError(NOT_STRESS.format(name=spectrum.name))
+        return write_flight(note, spectrum)
+    top = note.given(
+        "σ_max", "largest stress of a flight", inputs.number("cycle_max_stress")
+    )
+    ratio = note.given("R_σ", "stress ratio of a flight", inputs.number("cycle_ratio"))
+    return Flown(StressCycle(GrossStress(top), ratio))
 
 
 def _with_running_load(

@@ -26,7 +26,7 @@ from repairs.analysis.methods.section_left import (
 from repairs.analysis.methods.sheet import flaw_start, sheet_of
 from repairs.analysis.methods.skin_crack import clearance
 from repairs.analysis.note import Note
-from repairs.analysis.stress_life import left as fatigue
+from repairs.analysis.stress_life.flown import flown_life_left
 from repairs.analysis.stress_life.notches import NOTCH, notch_factor
 from repairs.analysis.types import Applicability, Result, Use
 
@@ -91,8 +91,8 @@ def dished(
         "-",
         NOTCH,
     )
-    before = found.on_section(section.before / section.nominal).cycle
-    left = fatigue.stress_life_left(inputs, note, kt, on_left.cycle, before)
+    before = found.on_section(section.before / section.nominal).flown
+    left = flown_life_left(inputs, note, kt, on_left.flown, before)
     sheet = sheet_of(inputs, note, section.left)
     path = sheet.path(on_left, inputs, clearance(inputs), ON_LEFT)
     flaw = rework_lives.assumed_flaw(inputs, section.left)

@@ -20,7 +20,7 @@ from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection.flaws import FlawKind, FlawLocation, rogue_flaw
 from repairs.analysis.intensity import through as si
 from repairs.analysis.loads import panel_loads
-from repairs.analysis.loads.panel_loads import CYCLE_INPUTS, PanelLoads
+from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     COUNTED,
@@ -55,7 +55,6 @@ REQUIRED: tuple[str, ...] = (
     "tension_strength",
     "toughness",
     "growth_law",
-    *CYCLE_INPUTS,
 )
 CORNER = "cut_out_corner"
 CORNER_TEST = "local stress at the corner of the cut-out"
@@ -132,7 +131,8 @@ class Strip:
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs for a use."""
-    return REQUIRED + (COUNTED if use is Use.NO_KNOWN_CRACK else MEASURED)
+    more = COUNTED if use is Use.NO_KNOWN_CRACK else MEASURED
+    return (*REQUIRED, *panel_loads.recorded_needed(inputs), *more)
 
 
 def corner_stated(inputs: Inputs) -> Applicability:

@@ -24,7 +24,7 @@ from repairs.analysis.loads.longitudinal import (
     LONGITUDINAL_INPUTS,
     longitudinal_loads,
 )
-from repairs.analysis.loads.panel_loads import CYCLE_INPUTS, PanelLoads
+from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     REACH_INPUTS,
@@ -68,7 +68,9 @@ def around(inputs: Inputs) -> bool:
 
 def loads_needed(inputs: Inputs) -> tuple[str, ...]:
     """Return the names of the load inputs this crack needs."""
-    return (*LONGITUDINAL_INPUTS, *REACH_INPUTS) if around(inputs) else CYCLE_INPUTS
+    if around(inputs):
+        return (*LONGITUDINAL_INPUTS, *REACH_INPUTS)
+    return panel_loads.recorded_needed(inputs)
 
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
@@ -88,8 +90,7 @@ def opened(inputs: Inputs) -> Applicability:
     """Test that a flight opens the crack at all."""
     if around(inputs):
         return mean_tension(inputs)
-    largest = inputs.maybe("cycle_max_stress")
-    top = largest.value if largest else None
+    top = panel_loads.largest_stress(inputs)
     return apply.above("largest stress of a flight across the crack", top, 0.0, "MPa")
 
 

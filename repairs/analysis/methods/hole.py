@@ -28,6 +28,7 @@ from repairs.analysis.methods.hole_growth import with_assumed_flaw, with_known_c
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.stress_life import left as fatigue
+from repairs.analysis.stress_life.flown import flown_life_left
 from repairs.analysis.stress_life.severity import HOLE_KT, hole_kt
 from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import Applicability, GrossStress, Result, Use
@@ -78,8 +79,8 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
         "-",
         HOLE_KT,
     )
-    net = found.on_section(1 - hole.gone).cycle
-    left = fatigue.stress_life_left(inputs, note, kt, net, found.cycle)
+    net = found.on_section(1 - hole.gone).flown
+    left = flown_life_left(inputs, note, kt, net, found.flown)
     return with_assumed_flaw(inputs, use, note, hole, path, left, draft)
 
 

@@ -95,7 +95,7 @@ def corner_start(
     """
     if depth >= hole.thickness:
         return Start(length)
-    cycle = path.loads.cycle
+    cycle = path.growth_cycle()
     try:
         grown = grow_part_through(
             hole.law, corner_factors(hole), cycle, (depth, length), hole.thickness

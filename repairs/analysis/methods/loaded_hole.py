@@ -31,6 +31,7 @@ from repairs.analysis.methods.hole_geometry import (
 from repairs.analysis.methods.hole_growth import with_assumed_flaw, with_known_crack
 from repairs.analysis.note import Note
 from repairs.analysis.stress_life import left as fatigue
+from repairs.analysis.stress_life.flown import flown_life_left
 from repairs.analysis.stress_life.severity import (
     NO_CREDIT,
     SEVERITY,
@@ -134,7 +135,7 @@ def _stress_life(
 ) -> fatigue.StressLife:
     """Return the stress-life at the hole; outside its curves say so and give none."""
     at = hole.at
-    net = found.on_section(1 - hole.gone).cycle
+    net = found.on_section(1 - hole.gone).flown
     try:
         gross = severity_factor(
             LoadedHole(at.diameter, at.width, hole.thickness, at.strip, at.transfer)
@@ -149,7 +150,7 @@ def _stress_life(
             SEVERITY,
         )
         note.text(NO_CREDIT)
-        return fatigue.stress_life_left(inputs, note, kt, net, found.cycle)
+        return flown_life_left(inputs, note, kt, net, found.flown)
     except OutOfRangeError as refusal:
         words = NO_STRESS_LIFE.format(why=refusal)
         note.warn(words)

@@ -3,9 +3,13 @@
 from __future__ import annotations
 
 from repairs.analysis.errors import within
-from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.loads.panel_loads import PanelLoads, write_requirements
+from repairs.analysis.loads.panel_loads import (
+    PanelLoads,
+    flight_needed,
+    read_flight,
+    write_requirements,
+)
 from repairs.analysis.loads.shell import unpressurised_requirements
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.member_common import is_member
@@ -18,12 +22,12 @@ STRESSED = {
     TENSION: ("member_limit_force", "member_area", "member_lost_area"),
     BENDING: ("member_limit_moment", "member_inertia", "member_extreme_fibre"),
 }
-FLIGHT = ("ultimate_factor", "cycle_max_stress", "cycle_ratio")
 
 
 def needed(inputs: Inputs) -> tuple[str, ...]:
     """Return the inputs the stresses of this load kind need."""
-    return (*STRESSED.get(inputs.word("load_kind") or "", ()), *FLIGHT)
+    stressed = STRESSED.get(inputs.word("load_kind") or "", ())
+    return (*stressed, "ultimate_factor", *flight_needed(inputs))
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
@@ -50,12 +54,9 @@ def member_loads(inputs: Inputs, use: Use, note: Note) -> PanelLoads:
     factor = note.given(
         "k_ult", "factor of static ultimate", inputs.number("ultimate_factor")
     )
-    top = note.given(
-        "σ_max", SPECS["cycle_max_stress"].title, inputs.number("cycle_max_stress")
-    )
-    ratio = note.given("R_σ", SPECS["cycle_ratio"].title, inputs.number("cycle_ratio"))
+    flown = read_flight(inputs, note)
     residual, ultimate = unpressurised_requirements(stress, factor)
-    found = PanelLoads(residual, ultimate, StressCycle(GrossStress(top), ratio))
+    found = PanelLoads(residual, ultimate, flown.cycle, flown)
     write_requirements(found, note)
     return found
 

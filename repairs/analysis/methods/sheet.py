@@ -288,7 +288,7 @@ def surface_start(
         grown = grow_part_through(
             sheet.law,
             surface_factors(sheet),
-            path.loads.cycle,
+            path.growth_cycle(),
             (depth, half),
             sheet.thickness,
         )

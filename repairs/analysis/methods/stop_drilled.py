@@ -33,6 +33,7 @@ from repairs.analysis.methods.crack_case import measured_half
 from repairs.analysis.methods.sheet import Sheet, write_strength
 from repairs.analysis.note import Note
 from repairs.analysis.stress_life import left as fatigue
+from repairs.analysis.stress_life.flown import flown_life_left
 from repairs.analysis.types import (
     Applicability,
     Grade,
@@ -184,9 +185,14 @@ def start_again(
         net,
         "MPa",
     )
-    after = StressCycle(GrossStress(net), cycle.ratio)
+    flown = path.loads.flown
+    after = replace(
+        flown,
+        cycle=StressCycle(GrossStress(net), cycle.ratio),
+        factor=flown.factor * net / cycle.maximum,
+    )
     try:
-        return fatigue.stress_life_left(inputs, note, notch.kt, after, cycle)
+        return flown_life_left(inputs, note, notch.kt, after, flown)
     except OutOfRangeError as refusal:
         words = NO_START_LIFE.format(refusal=refusal)
         note.warn(words)
