@@ -162,15 +162,20 @@ def _whole(use: Use, answers: list[Answer]) -> Result:
     nothing = Result("", 0, "", use, Outcome.NOT_COVERED)
     if not answers:
         return replace(nothing, warnings=(NO_METHOD,))
-    first = answers[0].result
+    nearest = min((answer.result for answer in answers), key=_failed)
     return replace(
-        first,
+        nearest,
         warnings=tuple(
             f"{answer.result.title}: {warning}" if len(answers) > 1 else warning
             for answer in answers
             for warning in answer.result.warnings
         ),
     )
+
+
+def _failed(result: Result) -> int:
+    """How many tests speak against a method: the fewest is the one to explain."""
+    return sum(test.met is False for test in result.applicability)
 
 
 def _lesser(computed: list[Result], open_: list[Result]) -> Result:

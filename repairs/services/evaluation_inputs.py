@@ -31,6 +31,7 @@ from repairs.services.evaluation_measured import (
 from repairs.services.evaluation_members import without_panel
 from repairs.services.evaluation_panel import skin_inputs
 from repairs.services.evaluation_place import Subject, skin_under, surroundings_of
+from repairs.services.evaluation_structure import stiffener_inputs
 from repairs.services.evaluation_type import (
     counters,
     policies,
@@ -82,9 +83,10 @@ def gather(
         if (detection := detection_of(size)) is not None:
             found.put("detection", detection, size)
     remaining_flaw(found, subject)
-    around = surroundings_of(
-        subject, half_along(found), as_found=choice.use is Use.FOUND_DAMAGE
-    )
+    half = half_along(found)
+    stiffener_inputs(found, subject, half)
+    as_found = choice.use is Use.FOUND_DAMAGE
+    around = surroundings_of(subject, half, as_found=as_found)
     if around is not None:
         found.put("surroundings", around)
     stated = _stated(found, subject)

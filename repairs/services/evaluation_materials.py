@@ -7,7 +7,7 @@ from collections.abc import Iterable, Iterator
 
 from fleet.models import AdoptedValue, Material, MaterialProperty, Operator
 from fleet.models.materials import Grade as RecordedGrade
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import FormanLaw, RecordedLaw, WalkerLaw
 from repairs.analysis.inputs import TOUGHNESS_UNIT, Value
 from repairs.analysis.stress_life.curves import StressLifeCurve, StressLifeFamily
 from repairs.analysis.types import KSI, Grade, Reference, Sourced
@@ -16,17 +16,39 @@ TOUGHNESS = "fracture_toughness_mpa_root_mm"
 STRENGTHS = {
     "yield_strength": ("tension_yield_mpa", "MPa"),
     "tension_strength": ("tension_ultimate_mpa", "MPa"),
+    "compression_yield": ("compression_yield_mpa", "MPa"),
+    "shear_strength": ("shear_ultimate_mpa", "MPa"),
+    "modulus": ("elastic_modulus_mpa", "MPa"),
+    "poisson": ("poisson_ratio", "-"),
     "toughness": (TOUGHNESS, TOUGHNESS_UNIT),
+    "growth_threshold": ("growth_threshold_mpa_root_mm", TOUGHNESS_UNIT),
 }
+"""A material's numbers as inputs: the quantity on record, and its unit.
+
+Typical toughness stands on record under names of its own, for it holds for one sheet
+of one thickness and width: none is read here, an engineer adopts one.
+"""
 BASES = ("a", "s", "b")
 """A-basis before B-basis: a single load path is assumed until someone shows else."""
+TYPICAL = ("elastic_modulus_mpa", "poisson_ratio")
+"""What handbooks give as typical only."""
 
 _CURVE = re.compile(
     r"stress_life_kt([\d.]+)_"
     r"(a1|a2|a3|a4_ksi|a4_mpa|standard_error|thickness_mm|ratio_min|ratio_max)"
 )
 _COEFFICIENTS = {"a1", "a2", "a3"}
-_LAW = re.compile(r"walker_([a-z0-9]+)_(c_mm_mpa_root_mm|m|gamma|rank)")
+_LAW = re.compile(
+    r"(walker|forman|paris)_([a-z0-9]+)_"
+    r"(c_mm_mpa_root_mm|m|gamma|kc_mpa_root_mm|rank)"
+)
+_CONSTANTS = {
+    "walker": {"c_mm_mpa_root_mm", "m", "gamma", "rank"},
+    "forman": {"c_mm_mpa_root_mm", "m", "kc_mpa_root_mm", "rank"},
+    "paris": {"c_mm_mpa_root_mm", "m", "rank"},
+}
+"""What each law is made of, in the order of preference: only the first holds at any
+stress ratio up to failure."""
 
 Used = Material | AdoptedValue
 Given = tuple[str, Value, Used]
@@ -54,7 +76,8 @@ def material_inputs(
     for name, law in zip(
         ("growth_law", "second_growth_law"), _laws(rows), strict=False
     ):
-        yield name, law, material
+        if isinstance(law, WalkerLaw):
+            yield name, law, material
     holder, curves = _curves_of(material, rows)
     if curves:
         family = StressLifeFamily(
@@ -101,16 +124,22 @@ def adopted_number(row: AdoptedValue, unit: str) -> Sourced:
 def _strength(
     rows: Iterable[MaterialProperty], quantity: str, thickness_mm: float
 ) -> MaterialProperty | None:
-    """The row of the best basis whose thickness range holds the thickness."""
+    """The row of the best basis whose thickness range holds the thickness.
+
+    Of several grain directions the weakest: which way the sheet lies is not recorded.
+    """
+    bases = (*BASES, "typical") if quantity in TYPICAL else BASES
     fitting = [
         row
         for row in rows
         if row.quantity == quantity
-        and row.basis in BASES
+        and row.basis in bases
         and row.thickness_min_mm <= thickness_mm
         and (row.thickness_max_mm is None or thickness_mm <= row.thickness_max_mm)
     ]
-    return min(fitting, key=lambda row: BASES.index(row.basis), default=None)
+    return min(
+        fitting, key=lambda row: (bases.index(row.basis), row.value), default=None
+    )
 
 
 def _number(row: MaterialProperty, unit: str) -> Sourced:
@@ -120,23 +149,30 @@ def _number(row: MaterialProperty, unit: str) -> Sourced:
     return Sourced(row.value, unit, ", ".join(words), grade_of(row.seen))
 
 
-def _laws(rows: Iterable[MaterialProperty]) -> list[WalkerLaw]:
-    """Growth laws in order of their rank."""
-    found: dict[str, dict[str, MaterialProperty]] = {}
+def _laws(rows: Iterable[MaterialProperty]) -> list[RecordedLaw]:
+    """Growth laws: Walker's, then Forman's, then Paris', each in order of rank."""
+    found: dict[tuple[str, str], dict[str, MaterialProperty]] = {}
     for row in rows:
         if match := _LAW.fullmatch(row.quantity):
-            found.setdefault(match[1], {})[match[2]] = row
-    whole = [law for law in found.values() if len(law) == 4]
-    return [
-        WalkerLaw(
-            law["c_mm_mpa_root_mm"].value,
-            law["m"].value,
-            law["gamma"].value,
-            Reference(law["m"].source, grade_of(law["m"].seen)),
-            law["m"].direction,
-        )
-        for law in sorted(whole, key=lambda law: law["rank"].value)
+            found.setdefault((match[1], match[2]), {})[match[3]] = row
+    kinds = list(_CONSTANTS)
+    whole = [
+        (kinds.index(kind), law["rank"].value, _law(kind, law))
+        for (kind, _), law in found.items()
+        if law.keys() == _CONSTANTS[kind]
     ]
+    return [law for _, _, law in sorted(whole, key=lambda item: item[:2])]
+
+
+def _law(kind: str, law: dict[str, MaterialProperty]) -> RecordedLaw:
+    coefficient, exponent = law["c_mm_mpa_root_mm"].value, law["m"].value
+    reference = Reference(law["m"].source, grade_of(law["m"].seen))
+    remark = law["m"].direction
+    if kind == "forman":
+        end = law["kc_mpa_root_mm"].value
+        return FormanLaw(coefficient, exponent, end, reference, remark)
+    gamma = law["gamma"].value if kind == "walker" else 1.0
+    return WalkerLaw(coefficient, exponent, gamma, reference, remark)
 
 
 def _curves_of(

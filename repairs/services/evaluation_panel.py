@@ -25,6 +25,7 @@ def skin_inputs(
     found.number("thickness", skin.thickness_mm, skin.thickness_source, *rows)
     found.number("radius", panel.radius_mm, source, panel)
     found.number("panel_length", skin.length_across_crack_mm, source, panel)
+    found.number("panel_width", skin.width_mm, source, panel)
     loads = panel.load_source or source
     found.number("ultimate_running_load", panel.ultimate_load_n_per_mm, loads, panel)
     found.number("limit_longitudinal_stress", panel.limit_stress_mpa, loads, panel)

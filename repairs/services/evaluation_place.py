@@ -20,7 +20,7 @@ class Skin:
     """The panel under a location as it is on this aircraft.
 
     `fitted` is the row that says how this tail differs; thickness is the surround's
-    inside one.
+    inside one. A width across is a shell's.
     """
 
     panel: Panel
@@ -28,6 +28,7 @@ class Skin:
     thickness_mm: float | None
     thickness_source: str
     length_across_crack_mm: float | None
+    width_mm: float | None
 
 
 def skin_under(subject: Subject) -> Skin | None:
@@ -37,7 +38,8 @@ def skin_under(subject: Subject) -> Skin | None:
         return None
     fitted = _fitted(subject, panel)
     thickness, source = _thickness(subject, section, panel, fitted)
-    return Skin(panel, fitted, thickness, source, _length(subject, section, panel))
+    length, width = _sizes(subject, section, panel)
+    return Skin(panel, fitted, thickness, source, length, width)
 
 
 def _panel(subject: Subject) -> Panel | None:
@@ -87,15 +89,17 @@ def _thickness(
     return panel.thickness_mm, f"panel {panel.label}: {panel.source}"
 
 
-def _length(subject: Subject, section: SectionGeometry, panel: Panel) -> float | None:
-    """Panel length along the crack: along a shell, across an open surface."""
+def _sizes(
+    subject: Subject, section: SectionGeometry, panel: Panel
+) -> tuple[float, float | None]:
+    """Panel length along the crack and width: along and across a shell, else across."""
     variant = subject.aircraft.variant.code
+    scale = section.scale_at(subject.map_mm or panel.map1_mm)
+    across = (panel.s2_mm - panel.s1_mm) * scale
     if not section.is_shell:
-        scale = section.scale_at(subject.map_mm or panel.map1_mm)
-        return (panel.s2_mm - panel.s1_mm) * scale
-    return true_x(section, panel.map2_mm, variant) - true_x(
-        section, panel.map1_mm, variant
-    )
+        return across, None
+    ends = [true_x(section, at, variant) for at in (panel.map1_mm, panel.map2_mm)]
+    return ends[1] - ends[0], across
 
 
 def middle_s(subject: Subject) -> float:

@@ -232,6 +232,10 @@ class FormanLaw:
         return self.coefficient * counted**self.exponent / (end - counted)
 
 
+RecordedLaw = WalkerLaw | FormanLaw
+"""Laws whose constants a material may have on record; Paris' is Walker's at gamma 1."""
+
+
 @dataclass(frozen=True, slots=True)
 class Threshold:
     r"""Range of K without growth, :math:`\Delta K_{th}(R) = \Delta K_{th0}(1-R)^g`.
