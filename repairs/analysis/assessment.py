@@ -158,19 +158,26 @@ def _whole(use: Use, answers: list[Answer]) -> Result:
     if computed:
         return _lesser(computed, open_)
     if open_:
-        return min(open_, key=lambda result: len(result.missing))
+        return min(open_, key=_open_questions)
     nothing = Result("", 0, "", use, Outcome.NOT_COVERED)
     if not answers:
         return replace(nothing, warnings=(NO_METHOD,))
-    nearest = min((answer.result for answer in answers), key=_failed)
+    fewest = min(_failed(answer.result) for answer in answers)
+    nearest = [a.result for a in answers if _failed(a.result) == fewest]
     return replace(
-        nearest,
+        nearest[0],
         warnings=tuple(
-            f"{answer.result.title}: {warning}" if len(answers) > 1 else warning
-            for answer in answers
-            for warning in answer.result.warnings
+            f"{result.title}: {warning}" if len(nearest) > 1 else warning
+            for result in nearest
+            for warning in result.warnings
         ),
     )
+
+
+def _open_questions(result: Result) -> int:
+    """How much a method lacks: inputs, and tests the record does not answer."""
+    unknown = [test for test in result.applicability if test.met is None]
+    return len(result.missing) + len(unknown)
 
 
 def _failed(result: Result) -> int:
