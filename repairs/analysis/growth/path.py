@@ -11,6 +11,7 @@ from dataclasses import dataclass, field, replace
 
 import numpy as np
 
+from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth import beside
 from repairs.analysis.growth.blocks import EQUIVALENT
 from repairs.analysis.growth.by_cycle import End, SequenceGrowth
@@ -19,8 +20,6 @@ from repairs.analysis.growth.separable import (
     SEPARABLE,
     GrowthTable,
     critical_length,
-    growth_cycles,
-    growth_history,
     history_of,
 )
 from repairs.analysis.inputs import Inputs
@@ -88,29 +87,30 @@ class CrackPath:
 
     def cycles(self, start: float, end: float, law: WalkerLaw | None = None) -> float:
         """Return cycles of growth from one length to another."""
-        law = law or self.law
         if start == end:
             return 0.0
-        if not start <= end <= self.largest:
-            cycle = self.growth_cycle(law)
-            return growth_cycles(law, self.factor, cycle, start, end)
-        return self._table(start, law).life(start, end)
+        return self._table(start, end, law or self.law).life(start, end)
 
     def history(self, start: float, end: float) -> tuple[tuple[float, float], ...]:
         """Return (cycles, length) from one length to another."""
-        if end > self.largest:
-            cycle = self.growth_cycle()
-            return growth_history(self.law, self.factor, cycle, start, end)
-        return history_of(self._table(start, self.law), start, end)
+        return history_of(self._table(start, end, self.law), start, end)
 
-    def _table(self, low: float, law: WalkerLaw) -> GrowthTable:
-        """Return the growth table from `low` on, made once for all lives of it."""
+    def _table(self, low: float, high: float, law: WalkerLaw) -> GrowthTable:
+        """Return a growth table of these lengths, one for all lives where it can be.
+
+        A law may end before the method does, as Forman's: then as far as is asked.
+        """
         kept = self._tables.get(law)
-        if kept is None or kept.low > low:
-            cycle = self.growth_cycle(law)
-            kept = GrowthTable(law, self.factor, cycle, low, self.largest, self.kinks)
-            self._tables[law] = kept
-        return kept
+        if kept is not None and kept.low <= low and high <= kept.high:
+            return kept
+        cycle = self.growth_cycle(law)
+        wide = max(high, self.largest)
+        try:
+            made = GrowthTable(law, self.factor, cycle, low, wide, self.kinks)
+        except OutOfRangeError:
+            made = GrowthTable(law, self.factor, cycle, low, high, self.kinks)
+        self._tables[law] = made
+        return made
 
 
 @dataclass(frozen=True, slots=True)

@@ -210,6 +210,17 @@ def test_a_path_makes_one_table_for_all_lives_of_it():
     assert path.cycles(60, 60) == 0
 
 
+def test_a_path_goes_as_far_as_its_law():
+    # (1 - R) Kc of the fit is reached at 32 mm, the path goes on to 60.
+    early = FormanLaw(FORMAN.coefficient, FORMAN.exponent, 800.0, MEMORY)
+    path = path_of(lambda a: 1.0)
+    found = path.cycles(5, 25, early)
+    assert found == pytest.approx(quadrature(early, path.factor, 5, 25), rel=1e-7)
+    assert path.cycles(10, 20, early) < found
+    with pytest.raises(OutOfRangeError, match="no rate there"):
+        path.cycles(5, 50, early)
+
+
 def test_a_path_keeps_the_tables_of_two_laws_apart():
     path = path_of(lambda a: 1.0)
     other = WalkerLaw(LAW.coefficient * 2, LAW.exponent, LAW.gamma, MEMORY)
