@@ -140,6 +140,7 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("crack_length", "crack length, tip to tip", "mm"),
         ("crack_length_uncertainty", "its uncertainty", "mm"),
         ("crack_depth", "crack depth, where it is not through", "mm"),
+        ("crack_depth_uncertainty", "its uncertainty", "mm"),
         ("edge_crack_length", "crack length from the edge of the hole", "mm"),
         ("edge_crack_uncertainty", "its uncertainty", "mm"),
         ("crack_count", "number of cracks", "-"),

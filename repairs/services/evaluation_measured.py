@@ -31,6 +31,7 @@ LENGTHS = {
 UNCERTAINTIES = {
     "crack_length_uncertainty": "length_mm",
     "edge_crack_uncertainty": "edge_crack_length_mm",
+    "crack_depth_uncertainty": "depth_mm",
     "damage_depth_uncertainty": "depth_mm",
     "gauge_uncertainty": "remaining_thickness_mm",
 }
@@ -66,16 +67,17 @@ def subject_words(subject: Subject, measured: Latest) -> dict[str, Value]:
         "element": subject.element,
         "criticality": subject.criticality,
         "crack_origin": measured.word("origin") if damage == "crack" else "",
-        "hole_cracked": "yes" if _cracked_hole(damage, measured) else "no",
+        "hole_cracked": _cracked_hole(damage, measured),
     }
     return {name: Stated(word, str(subject)) for name, word in words.items() if word}
 
 
-def _cracked_hole(damage: str, measured: Latest) -> bool:
-    """Whether a crack is known to start at a hole."""
-    if damage == "crack":
-        return measured.word("origin") == AT_A_HOLE
-    return damage == "hole" and measured.word("radiating_cracks") == "yes"
+def _cracked_hole(damage: str, measured: Latest) -> str:
+    """Whether cracks start at a hole; blank where nobody looked."""
+    if damage == "hole":
+        return measured.word("radiating_cracks")
+    cracked = damage == "crack" and measured.word("origin") == AT_A_HOLE
+    return "yes" if cracked else "no"
 
 
 def measurements(found: Gathered, subject: Subject, measured: Latest) -> None:

@@ -17,11 +17,11 @@ from repairs.analysis.methods.hole_geometry import (
     BEARING,
     GEOMETRY,
     Hole,
-    crack_needed,
     crack_tests,
     cracked,
     read_hole,
     slender_test,
+    state_needed,
     strip_name,
 )
 from repairs.analysis.methods.hole_growth import with_assumed_flaw, with_known_crack
@@ -34,12 +34,12 @@ from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import Applicability, GrossStress, Result, Use
 
 NET_ULTIMATE = "net section, ultimate"
-UNCRACKED = ("hole_cracked", "life_base", "accumulated_cycles", *fatigue.INPUTS)
+UNCRACKED = ("life_base", "accumulated_cycles", *fatigue.INPUTS)
 
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs; a known crack needs its sizes."""
-    more = crack_needed(inputs) if cracked(inputs, use) else UNCRACKED
+    more = state_needed(inputs, use, UNCRACKED)
     names = (*GEOMETRY, strip_name(inputs), *panel_loads.needed(inputs), *more)
     return tuple(dict.fromkeys(names))
 

@@ -10,7 +10,7 @@ from dataclasses import dataclass, replace
 
 from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.growth.path import CrackPath, write_law
-from repairs.analysis.inputs import Inputs
+from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.intensity import holes as hi
 from repairs.analysis.intensity import through as si
 from repairs.analysis.intensity.bulging import (
@@ -53,12 +53,24 @@ GEOMETRY = (
     "yield_strength",
 )
 CRACK_INPUTS = ("edge_crack_length", "edge_crack_uncertainty", "both_sides")
-CORNER_INPUTS = ("crack_depth", "damage_depth_uncertainty")
+CORNER_INPUTS = ("crack_depth", "crack_depth_uncertainty")
 
 
 def cracked(inputs: Inputs, use: Use) -> bool:
     """Return whether a known crack at the hole is what is evaluated."""
     return use is Use.FOUND_DAMAGE and inputs.word("hole_cracked") == "yes"
+
+
+def state_needed(
+    inputs: Inputs, use: Use, uncracked: tuple[str, ...]
+) -> tuple[str, ...]:
+    """Return what a use needs: of damage found, first whether the hole is cracked."""
+    if use is not Use.FOUND_DAMAGE:
+        return uncracked
+    return (
+        "hole_cracked",
+        *(crack_needed(inputs) if cracked(inputs, use) else uncracked),
+    )
 
 
 def crack_needed(inputs: Inputs) -> tuple[str, ...]:
@@ -88,14 +100,23 @@ def slender_test(inputs: Inputs) -> Applicability:
 
 
 def crack_tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
-    """Test what a known crack must be; pressure pulls across a longitudinal one."""
-    if not cracked(inputs, use) or inputs.word("pressurised") != "yes":
+    """Test what is known of cracks; pressure pulls across a longitudinal one."""
+    if use is not Use.FOUND_DAMAGE:
         return ()
-    return (
-        apply.word_is(
-            inputs, "crack_direction", "direction of the crack", "longitudinal"
-        ),
+    known = apply.word_among(
+        inputs, "hole_cracked", SPECS["hole_cracked"].title, ("yes", "no")
     )
+    if not cracked(inputs, use):
+        return (known,)
+    sides = apply.word_among(
+        inputs, "both_sides", SPECS["both_sides"].title, ("yes", "no")
+    )
+    if inputs.word("pressurised") != "yes":
+        return known, sides
+    along = apply.word_is(
+        inputs, "crack_direction", "direction of the crack", "longitudinal"
+    )
+    return known, sides, along
 
 
 @dataclass(frozen=True)

@@ -58,7 +58,7 @@ def with_known_crack(
         note.text(STRENGTH_AS_THROUGH)
         deep = note.given("a", "crack depth", inputs.number("crack_depth"))
         deep += note.given(
-            "u", "its uncertainty", inputs.number("damage_depth_uncertainty")
+            "u", "its uncertainty", inputs.number("crack_depth_uncertainty")
         )
         start = corner_start(hole, path, note, deep, c)
     else:

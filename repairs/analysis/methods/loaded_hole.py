@@ -21,11 +21,11 @@ from repairs.analysis.methods.hole import UNCRACKED, cracks_of, static
 from repairs.analysis.methods.hole_geometry import (
     GEOMETRY,
     Hole,
-    crack_needed,
     crack_tests,
     cracked,
     read_hole,
     slender_test,
+    state_needed,
     strip_name,
 )
 from repairs.analysis.methods.hole_growth import with_assumed_flaw, with_known_crack
@@ -68,7 +68,7 @@ LAP_BENDING = (
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs; a load transfer is never assumed."""
-    more = crack_needed(inputs) if cracked(inputs, use) else UNCRACKED
+    more = state_needed(inputs, use, UNCRACKED)
     known = (*GEOMETRY, strip_name(inputs), "load_transfer")
     return tuple(dict.fromkeys((*known, *panel_loads.needed(inputs), *more)))
 

@@ -54,7 +54,10 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     """Run the applicability tests on what the record says."""
+    sides: tuple[Applicability, ...] = ()
     if use is Use.FOUND_DAMAGE:
+        title = SPECS["both_sides"].title
+        sides = (apply.word_among(inputs, "both_sides", title, ("yes", "no")),)
         here = apply.word_is(
             inputs, "crack_origin", "where the crack starts", "fastener_hole"
         )
@@ -65,6 +68,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     return (
         *member_stress.tests(inputs, use),
         here,
+        *sides,
         apply.word_among(
             inputs, "hole_load", SPECS["hole_load"].title, ("open", "loaded")
         ),

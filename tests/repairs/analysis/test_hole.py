@@ -108,6 +108,15 @@ def found(**changes):
     return hole(Use.FOUND_DAMAGE, **{**CRACKED, **changes})
 
 
+def test_cracks_nobody_looked_for_are_not_taken_as_none():
+    for word in (None, said("unknown")):
+        result = hole(Use.FOUND_DAMAGE, hole_cracked=word)
+        assert result.outcome is Outcome.MISSING_INPUT
+        assert result.residual_strength_mpa is None
+    assert found(both_sides=said("unknown")).outcome is Outcome.MISSING_INPUT
+    assert hole(hole_cracked=None).outcome is Outcome.COMPUTED
+
+
 def test_a_known_crack_needs_no_stress_life():
     lacking = dict.fromkeys(("stress_life", "skin_cycles", "life_base", "clad"))
     assert found(**lacking).outcome is Outcome.COMPUTED
@@ -162,7 +171,7 @@ def test_a_corner_crack_lives_longer_than_a_through_crack_of_its_length():
     sizes = {
         "edge_crack_length": recorded(1.2, "mm"),
         "crack_depth": recorded(0.6, "mm"),
-        "damage_depth_uncertainty": recorded(0.1, "mm"),
+        "crack_depth_uncertainty": recorded(0.1, "mm"),
     }
     corner = found(**sizes, crack_through=said("no"), thickness=recorded(3.2, "mm"))
     through = found(**sizes, crack_through=said("yes"), thickness=recorded(3.2, "mm"))
@@ -181,7 +190,7 @@ def test_a_corner_flaw_outside_its_solution_is_grown_as_through():
         crack_through=said("no"),
         edge_crack_length=recorded(6.0, "mm"),
         crack_depth=recorded(0.5, "mm"),
-        damage_depth_uncertainty=recorded(0.0, "mm"),
+        crack_depth_uncertainty=recorded(0.0, "mm"),
     )
     assert wide.outcome is Outcome.COMPUTED
     assert any("as a through crack" in w for w in wide.warnings)
