@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator, Mapping, Sequence
 from typing import Any
 
 from fleet.drawing.chart import Chart, Level, Point, Series, Upright, chart_svg
+from repairs.evaluation_figures import INSPECTIONS
 from repairs.evaluation_text import number_text
 
 Curve = Mapping[str, Any]
-RESIDUAL, GROWTH, STRESS_LIFE = "residual_strength", "growth", "stress_life"
+GROWTH, STRESS_LIFE = "growth", "stress_life"
 MANY_CYCLES = 10_000
 MOST_INSPECTIONS = 25
 WHAT_IF = "what if:"
@@ -27,6 +28,8 @@ def charts_of(
     drawn: list[tuple[str, str]] = []
     seen: set[str] = set()
     for curve in data["curves"]:
+        if curve["key"] == INSPECTIONS:
+            continue
         other = None if curve["key"] in seen else others.get(curve["key"])
         seen.add(curve["key"])
         marks = inspections(data, curve) if curve["key"] == GROWTH else []
@@ -34,7 +37,7 @@ def charts_of(
     drawn += [
         (f"{curve['title']}, what if", chart_of(curve))
         for key, curve in others.items()
-        if key not in seen
+        if key not in seen and key != INSPECTIONS
     ]
     return drawn
 
@@ -45,6 +48,9 @@ def inspections(data: Mapping[str, Any], curve: Curve) -> list[Upright]:
     Only of structure without known crack, and only those before the curve ends; when
     there are too many to draw, the first alone, which says how often they repeat.
     """
+    planned = [one for one in data["curves"] if one["key"] == INSPECTIONS]
+    if planned:
+        return _looks(planned[0]["marks"], curve["points"][-1][0])
     threshold, repeat = data["threshold"], data["repeat"]
     if not threshold or threshold["cycles"] is None:
         return []
@@ -56,6 +62,16 @@ def inspections(data: Mapping[str, Any], curve: Curve) -> list[Upright]:
         count = int((end - first) // step)
         found += [Upright(float(first + step * n)) for n in range(1, count + 1)]
     return [mark for mark in found if mark.value <= end]
+
+
+def _looks(marks: Sequence[Mapping[str, Any]], end: float) -> list[Upright]:
+    """The inspections of a plan; when there are too many to draw, the first alone."""
+    cycles = [mark["x"] for mark in marks if mark["x"] <= end]
+    if not cycles:
+        return []
+    words = f"{THRESHOLD_WORDS} {cycles[0]:,.0f}, {len(cycles)} before the end"
+    rest = cycles[1:] if len(cycles) <= MOST_INSPECTIONS else []
+    return [Upright(cycles[0], words), *(Upright(one) for one in rest)]
 
 
 def chart_of(

@@ -13,6 +13,8 @@ from repairs.evaluation_text import UNKNOWN, number_text
 
 Data = Mapping[str, Any]
 COMPUTED = "computed"
+INSPECTIONS = "inspections"
+"""Key of the curve that marks the inspections of a plan."""
 SAME = 5e-5
 """Share below which two printed numbers are the same."""
 NOT_CHECKED = "not checked"
@@ -87,6 +89,15 @@ class IntervalRow:
 
 
 @dataclass(frozen=True, slots=True)
+class LookRow:
+    """One inspection along the growth curve."""
+
+    cycles: str
+    size: str
+    words: str
+
+
+@dataclass(frozen=True, slots=True)
 class Answer:
     """Everything a result says, in the order it is read."""
 
@@ -99,6 +110,8 @@ class Answer:
     margins: tuple[MarginRow, ...]
     lives: tuple[Figure, ...]
     intervals: tuple[IntervalRow, ...]
+    plan: tuple[Figure, ...]
+    looks: tuple[LookRow, ...]
     not_checked: tuple[str, ...]
     assumptions: tuple[str, ...]
     missing: tuple[Data, ...]
@@ -119,6 +132,8 @@ def answer_of(data: Data) -> Answer:
         margins=tuple(_margins(data)) if computed else (),
         lives=tuple(_life(life) for life in data["lives"]) if computed else (),
         intervals=tuple(_intervals(data)) if computed else (),
+        plan=tuple(_plan(data["plan"])) if computed and data["plan"] else (),
+        looks=tuple(_looks(data)) if computed else (),
         not_checked=tuple(data["cases_not_checked"]) if computed else (),
         assumptions=tuple(data["assumptions"]),
         missing=tuple(data["missing"]),
@@ -205,6 +220,29 @@ def _intervals(data: Data) -> Iterator[IntervalRow]:
                 row["cap"] or "none",
                 row["base"],
             )
+
+
+def _plan(plan: Data) -> Iterator[Figure]:
+    """How surely the proposed plan finds the crack before it is critical."""
+    for title, name in (
+        ("Found before critical, mean over the phase", "mean"),
+        ("Found before critical, worst phase", "worst"),
+        ("Found before critical, as scheduled", "scheduled"),
+    ):
+        chance = plan[name]
+        yield Figure(title, f"{chance:.4f}", f"missed {1 - chance:.2g}", chance)
+    if plan["target"] is not None:
+        yield Figure("Asked for", f"{plan['target']:g}", "the operator’s target")
+        longest = plan["longest"]
+        yield _figure("Longest repeat that meets it", longest, "FC", "")
+
+
+def _looks(data: Data) -> Iterator[LookRow]:
+    for curve in data["curves"]:
+        if curve["key"] == INSPECTIONS:
+            for mark in curve["marks"]:
+                cycles, size = number_text(int(mark["x"])), number_text(mark["y"])
+                yield LookRow(cycles, size, mark["label"])
 
 
 def _asked(data: Data) -> Iterator[AskedRow]:

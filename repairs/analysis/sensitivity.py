@@ -13,7 +13,7 @@ from dataclasses import dataclass, replace
 
 from repairs.analysis.assessment import assess
 from repairs.analysis.errors import AnalysisError
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.inputs import SPECS, Inputs, Value
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.types import Outcome, Result, Sourced, Use
@@ -106,7 +106,7 @@ def sensitivity(
             continue
         less, more = (_again(use, inputs, name, change) for change in (-size, size))
         title = SPECS[name].title
-        if isinstance(value, WalkerLaw):
+        if isinstance(value, RecordedLaw):
             title = LAW_CONSTANT.format(title=title)
         unit = value.unit if isinstance(value, Sourced) else "-"
         rows.append(
@@ -123,14 +123,14 @@ def _numbers(inputs: Inputs) -> Iterator[tuple[str, Value]]:
         value = values.get(name, spec.default)
         if name in spread_names | WHOLE | BY_RULE:
             continue
-        if isinstance(value, Sourced | FatiguePolicy | WalkerLaw):
+        if isinstance(value, Sourced | FatiguePolicy | RecordedLaw):
             yield name, value
 
 
 def _number_of(value: Value) -> float:
     if isinstance(value, FatiguePolicy):
         return value.factor.value
-    if isinstance(value, WalkerLaw):
+    if isinstance(value, RecordedLaw):
         return value.coefficient
     assert isinstance(value, Sourced), "only these are moved"
     return value.value
@@ -140,7 +140,7 @@ def _moved(value: Value, change: float) -> Value:
     if isinstance(value, FatiguePolicy):
         factor = value.factor
         return replace(value, factor=replace(factor, value=factor.value + change))
-    if isinstance(value, WalkerLaw):
+    if isinstance(value, RecordedLaw):
         return replace(value, coefficient=value.coefficient + change)
     assert isinstance(value, Sourced), "only these are moved"
     return replace(value, value=value.value + change)

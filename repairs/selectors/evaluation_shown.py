@@ -78,6 +78,7 @@ def evaluation_json(evaluation: Evaluation) -> dict[str, Any]:
         "cases_not_checked": outputs["cases_not_checked"],
         "assumptions": outputs["assumptions"],
         "asked": outputs["asked"],
+        "plan": outputs.get("plan"),
         "applicability": json.loads(evaluation.applicability),
         "warnings": outputs["warnings"],
         "curves": outputs["curves"],
@@ -189,18 +190,22 @@ def _given(title: str, value: dict[str, Any]) -> GivenRow:
         words = input_write(value["value"], value["unit"])
     elif kind == "Stated":
         words = value["value"].replace("_", " ")
-    elif kind == "WalkerLaw":
+    elif kind.endswith("Law"):
         origin = value["reference"]
-        words = (
-            f"C {value['coefficient']:.4g}, m {value['exponent']:g}, "
-            f"γ {value['gamma']:g}"
-        )
+        words = f"{kind[:-3]}, C {value['coefficient']:.4g}, m {value['exponent']:g}"
+        if "gamma" in value:
+            words += f", γ {value['gamma']:g}"
     elif kind == "FatiguePolicy":
         origin = value["factor"]
         words = f"factor {origin['value']:g} on {value['multiplies']}"
     elif kind == "StressLifeFamily":
         origin = value["curves"][0]
         words = "Kt " + ", ".join(f"{curve['kt']:g}" for curve in value["curves"])
+    elif kind == "RecordedSpectrum":
+        words = value["name"]
+    elif kind == "Detection":
+        origin = value["curve"]["study"]
+        words = value["title"]
     elif kind == "Surroundings":
         words = value["bay_label"] or "on the geometry"
     grade = origin.get("grade", "")
