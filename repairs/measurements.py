@@ -123,6 +123,8 @@ DIMENSIONS: dict[str, tuple[Dimension, ...]] = {
               "scratch", "dent", "corrosion pit", "weld", "other", needed=True),
         _word("through", "through the thickness"),
         _length("depth", "depth, where it is not through"),
+        _length("remaining_thickness", "smallest thickness left, where it starts in "
+                "corrosion"),
         _count("crack", "number of cracks"),
         _length("edge_crack_length", "length from the edge of the hole"),
         _length("hole_diameter", "diameter of the hole"),

@@ -29,8 +29,14 @@ from repairs.services.evaluation_measured import (
     subject_words,
 )
 from repairs.services.evaluation_members import without_panel
-from repairs.services.evaluation_panel import skin_inputs
+from repairs.services.evaluation_panel import less_blended, skin_inputs
 from repairs.services.evaluation_place import Subject, skin_under, surroundings_of
+from repairs.services.evaluation_spectrum import (
+    CYCLE,
+    LARGEST,
+    SPECTRUM,
+    spectrum_inputs,
+)
 from repairs.services.evaluation_structure import stiffener_inputs
 from repairs.services.evaluation_type import (
     counters,
@@ -68,6 +74,7 @@ def gather(
     skin = skin_under(subject)
     if skin is not None:
         skin_inputs(found, subject, skin, operator)
+        less_blended(found)
     pressures(found, subject)
     for name, row in _adopted(operator).items():
         if name in ADOPTABLE:
@@ -112,6 +119,11 @@ def _stated(found: Gathered, subject: Subject) -> set[str]:
             found.put(row.name, Stated(row.word, source), row)
         elif row.value is not None:
             found.number(row.name, row.value, source, row)
+        elif row.spectrum is not None:
+            spectrum_inputs(found, row.spectrum, row, stated=source)
+            names.update(CYCLE)
+    if LARGEST in names and SPECTRUM not in names:
+        found.values.pop(SPECTRUM, None)
     return names
 
 

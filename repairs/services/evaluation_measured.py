@@ -8,6 +8,7 @@ from repairs.models import MeasuredValue, Repair
 from repairs.selectors.edges import earlier_depth_mm
 from repairs.selectors.latest import Latest
 from repairs.services.evaluation_gathered import Gathered
+from repairs.services.evaluation_holes import row_inputs
 from repairs.services.evaluation_place import Subject
 
 LENGTHS = {
@@ -55,6 +56,27 @@ WORDS = {
     "both_sides": "both_sides",
 }
 
+OF_CRACKS = frozenset(
+    {
+        "crack_length",
+        "crack_length_uncertainty",
+        "crack_depth",
+        "crack_depth_uncertainty",
+    }
+)
+OF_HOLES = frozenset({"edge_distance", "crack_direction"})
+"""The edge distance of a crack or hole is its hole's, of other damage its own; a hole
+may have cracks too.
+"""
+BY_DAMAGE = OF_CRACKS | {
+    "damage_length",
+    "damage_width",
+    "damage_depth",
+    "damage_depth_uncertainty",
+    "damage_direction",
+    "damage_edge_distance",
+}
+
 AT_A_HOLE = "fastener_hole"
 
 
@@ -81,24 +103,33 @@ def _cracked_hole(damage: str, measured: Latest) -> str:
 
 
 def measurements(found: Gathered, subject: Subject, measured: Latest) -> None:
-    values = measured.values
-    for name, quantity in LENGTHS.items():
-        if row := values.get(quantity):
-            found.number(name, row.value, _where(row), row.measurement)
-    for name, quantity in COUNTS.items():
-        if row := values.get(quantity):
+    """What was measured last of each size that this damage has."""
+    finding, values = measured.finding, measured.values
+    damage = finding.damage_type if finding else ""
+    for name, quantity in (LENGTHS | COUNTS).items():
+        if (row := values.get(quantity)) and _is_of(name, damage):
             found.number(name, row.value, _where(row), row.measurement)
     for name, quantity in UNCERTAINTIES.items():
-        if row := values.get(quantity):
+        if (row := values.get(quantity)) and _is_of(name, damage):
             found.number(name, row.uncertainty, _where(row), row.measurement)
     for name, quantity in WORDS.items():
-        if row := values.get(quantity):
+        if (row := values.get(quantity)) and _is_of(name, damage):
             found.word(name, row.word, _where(row), row.measurement)
     if isinstance(subject, Repair):
         _embodied(found, subject, measured)
-    if measured.finding is not None:
-        depth = earlier_depth_mm(measured.finding)
-        found.number("earlier_depth", depth, "blend-outs recorded at this location")
+    if finding is None:
+        return
+    if damage == "crack" and measured.word("origin") == AT_A_HOLE:
+        row_inputs(found, finding)
+    depth = earlier_depth_mm(finding)
+    found.number("earlier_depth", depth, "blend-outs recorded at this location")
+
+
+def _is_of(name: str, damage: str) -> bool:
+    """Whether an input is a size of this damage: a dent has no crack length."""
+    if name in OF_HOLES:
+        return damage in ("crack", "hole")
+    return (name in OF_CRACKS) == (damage == "crack") or name not in BY_DAMAGE
 
 
 def _embodied(found: Gathered, repair: Repair, measured: Latest) -> None:
@@ -125,7 +156,7 @@ def half_along(found: Gathered) -> float:
     """Half of what the damage measures along the section, uncertainty included."""
     sizes = [
         value.value
-        for name in ("crack_length", "blend_length", "hole_diameter")
+        for name in ("crack_length", "damage_length", "blend_length", "hole_diameter")
         if isinstance(value := found.values.get(name), Sourced)
     ]
     more = found.values.get("crack_length_uncertainty")

@@ -2,16 +2,16 @@
 
 from __future__ import annotations
 
-import json
-
 from fleet.models import Material, Operator, Panel, PanelOnAircraft
 from fleet.selectors.kept import of_the_fleet
+from repairs.analysis.types import Sourced, Stated
 from repairs.services.evaluation_gathered import Gathered, UsedRow
 from repairs.services.evaluation_materials import Given, material_inputs
 from repairs.services.evaluation_place import Skin, Subject
+from repairs.services.evaluation_spectrum import spectrum_inputs
 
-CYCLE_KEYS = ("cycle_max_mpa", "cycle_ratio")
-"""What a panel's spectrum says of one flight."""
+THROUGH = ("crack", "hole")
+"""Damage through the skin, whatever was blended off it before."""
 
 
 def skin_inputs(
@@ -32,7 +32,8 @@ def skin_inputs(
     found.number("mean_longitudinal_stress", panel.mean_stress_mpa, loads, panel)
     if not panel.pressurised and panel.section.wrap_mm is None:
         found.number("limit_flight_stress", panel.limit_stress_mpa, loads, panel)
-    _cycle(found, panel)
+    if panel.spectrum is not None:
+        spectrum_inputs(found, panel.spectrum)
     material = fitted.material if fitted and fitted.material else panel.material
     _clad(found, panel, fitted, material)
     if material is not None and skin.thickness_mm is not None:
@@ -40,22 +41,28 @@ def skin_inputs(
             found.put(name, value, material, used)
 
 
+def less_blended(found: Gathered) -> None:
+    """Take what earlier blends took off the skin that a crack or hole goes through.
+
+    Where the depth of one is not recorded, the thickness is not known either.
+    """
+    damage, thickness = found.values.get("damage_type"), found.values.get("thickness")
+    through = isinstance(damage, Stated) and damage.value in THROUGH
+    if not through or not isinstance(thickness, Sourced):
+        return
+    depth = found.values.get("earlier_depth")
+    if not isinstance(depth, Sourced):
+        del found.values["thickness"]
+    elif depth.value > 0:
+        source = f"{thickness.source}; less {depth.value:.2f} mm: {depth.source}"
+        found.number("thickness", thickness.value - depth.value, source)
+
+
 @of_the_fleet
 def _of_material(
     material: Material, operator: Operator, thickness_mm: float
 ) -> list[Given]:
     return list(material_inputs(material, operator, thickness_mm))
-
-
-def _cycle(found: Gathered, panel: Panel) -> None:
-    """The cycle of a flight from the panel's spectrum, where it states one."""
-    if panel.spectrum is None:
-        return
-    content = json.loads(panel.spectrum.content)
-    top, ratio = (content.get(key) for key in CYCLE_KEYS)
-    source = f"{panel.spectrum}: {panel.spectrum.source}"
-    found.number("cycle_max_stress", top, source, panel.spectrum)
-    found.number("cycle_ratio", ratio, source, panel.spectrum)
 
 
 def _clad(

@@ -7,15 +7,17 @@ import pytest
 from fleet.models import Material, MaterialProperty
 from repairs.analysis.growth.laws import WalkerLaw
 from repairs.analysis.inputs import Value
-from repairs.analysis.types import INCH, KSI, Grade, Sourced, Use
-from repairs.measured import Typed
+from repairs.analysis.types import INCH, KSI, Grade, Sourced, Stated, Use
+from repairs.measured import Hole, Typed
 from repairs.models import Finding, Repair
 from repairs.selectors.latest import measured_of
-from repairs.services.evaluation_gathered import Choice
+from repairs.services.evaluation_gathered import Choice, Gathered
 from repairs.services.evaluation_inputs import gather
 from repairs.services.evaluation_materials import material_inputs
+from repairs.services.evaluation_panel import less_blended
 from repairs.services.evaluation_structure import bays_touched
-from tests.factories import TODAY
+from repairs.services.measuring import Measuring, measurement_record
+from tests.factories import NOW, TODAY
 from tests.record_rows import World, found, world_make
 
 pytestmark = pytest.mark.django_db
@@ -156,3 +158,89 @@ def test_walker_goes_before_paris_whatever_their_ranks(world):
     assert isinstance(second, WalkerLaw)
     assert (first.exponent, first.gamma) == (3.2, 0.6)
     assert (second.exponent, second.gamma) == (3.0, 1.0)
+
+
+# -- measurements --------------------------------------------------------------------
+
+AT_HOLES = (
+    Typed("length_mm", "unknown"),
+    Typed("direction", "longitudinal"),
+    Typed("origin", "fastener hole"),
+    Typed("edge_crack_length_mm", "2.0 ± 0.2 mm"),
+    Typed("hole_diameter_mm", "4.8 mm"),
+)
+
+
+def row_measured(world: World, *holes: Hole) -> Finding:
+    finding = found(world, damage_type="crack", typed=AT_HOLES, element="skin")
+    measurement_record(
+        finding=finding,
+        measuring=Measuring(AT_HOLES, TODAY, holes=holes),
+        actor=world.engineer,
+        at=NOW,
+    )
+    return finding
+
+
+def test_a_row_of_holes_gives_count_largest_crack_pitch_and_ligament(world):
+    finding = row_measured(
+        world,
+        Hole(1, 0.0, 1.5, 4.8, 20.0),
+        Hole(2, 2.5, 3.0, 4.8, 19.0),
+        Hole(3, 0.0, 0.0, 5.0, None),
+    )
+    values = gathered(finding)
+    assert number(values, "crack_count").value == 3
+    assert number(values, "edge_crack_length").value == 3.0
+    assert "hole 2" in number(values, "edge_crack_length").source
+    assert number(values, "hole_diameter").value == 5.0
+    assert number(values, "hole_pitch").value == 19.0
+    # Hole 2 to 3: 19 - 4.9 - 3.0 = 11.1; hole 1 to 2: 20 - 4.8 - 1.5 - 2.5 = 11.2.
+    assert number(values, "ligament").value == pytest.approx(11.1)
+    both = values["both_sides"]
+    assert isinstance(both, Stated)
+    assert both.value == "yes"
+
+
+def test_what_was_not_measured_in_a_row_is_neither_crack_nor_sound_metal(world):
+    finding = row_measured(
+        world, Hole(1, 1.0, None, 4.8, 20.0), Hole(2, None, 0.0, 4.8, None)
+    )
+    values = gathered(finding)
+    assert number(values, "crack_count").value == 1
+    assert number(values, "edge_crack_length").value == 2.0
+    assert "ligament" not in values
+    assert "both_sides" not in values
+
+
+def test_sizes_go_to_the_damage_they_are_of(world):
+    sizes = (Typed("length_mm", "40 mm"), Typed("depth_mm", "0.2 ± 0.05 mm"))
+    scratch = gathered(found(world, damage_type="scratch", typed=sizes))
+    assert number(scratch, "damage_length").value == 40.0
+    assert number(scratch, "damage_depth").value == 0.2
+    assert not {"crack_length", "crack_depth"} & scratch.keys()
+    crack = gathered(cracked(world))
+    assert number(crack, "crack_length").value == pytest.approx(0.94 * INCH)
+    assert not {"damage_length", "damage_direction"} & crack.keys()
+
+
+# -- earlier blends ------------------------------------------------------------------
+
+
+def test_a_crack_in_blended_skin_goes_through_what_is_left():
+    def thickness(**more: Value) -> float | None:
+        found_so_far = Gathered(
+            {"thickness": Sourced(1.4, "mm", "panel", Grade.RECORDED), **more}
+        )
+        less_blended(found_so_far)
+        left = found_so_far.values.get("thickness")
+        return left.value if isinstance(left, Sourced) else None
+
+    crack, dent = Stated("crack", "F-1"), Stated("dent", "F-1")
+    blended, none = (
+        Sourced(depth, "mm", "blend", Grade.RECORDED) for depth in (0.3, 0.0)
+    )
+    assert thickness(damage_type=crack, earlier_depth=none) == 1.4
+    assert thickness(damage_type=crack, earlier_depth=blended) == pytest.approx(1.1)
+    assert thickness(damage_type=dent, earlier_depth=blended) == 1.4
+    assert thickness(damage_type=crack) is None
