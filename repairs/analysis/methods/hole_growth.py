@@ -6,21 +6,15 @@ the flaw that is assumed there, and a repeat.
 
 from __future__ import annotations
 
-from dataclasses import replace
-
 from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth.path import (
     CrackPath,
     Start,
-    curves,
-    grow,
-    repeat_after,
     with_found_lives,
     with_margins,
 )
 from repairs.analysis.growth.two_directions import TwoFactors, grow_part_through
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.inspection import intervals
 from repairs.analysis.inspection.flaws import FlawKind, FlawLocation, rogue_flaw
 from repairs.analysis.intensity.loaded_hole import CORNER_UNDER_PIN, corner_factor
 from repairs.analysis.intensity.part_through import (
@@ -29,6 +23,8 @@ from repairs.analysis.intensity.part_through import (
     PartThrough,
 )
 from repairs.analysis.methods.hole_geometry import Hole, write_strength
+from repairs.analysis.methods.rework_lives import with_lives
+from repairs.analysis.methods.sheet import stands
 from repairs.analysis.note import Note
 from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.types import Result, Use
@@ -37,6 +33,7 @@ AS_THROUGH = (
     "The corner flaw is grown as a through crack: it leaves the range of the corner "
     "solution, or would not stand once through. Shortens the life."
 )
+AT_THE_HOLE = "growth of the flaw assumed at the hole"
 TAKEN_AS_THROUGH = "A crack not said to be part-through is taken as through."
 STRENGTH_AS_THROUGH = (
     "Strength is that of a through crack as long as the corner crack is along the "
@@ -103,7 +100,7 @@ def corner_start(
     except OutOfRangeError:
         note.warn(AS_THROUGH)
         return Start(length)
-    if not _stands(path, grown.length):
+    if not stands(path, grown.length):
         note.warn(AS_THROUGH)
         return Start(length)
     if hole.at.bearing:
@@ -117,14 +114,6 @@ def corner_start(
         CORNER_AT_HOLE,
     )
     return Start(grown.length, grown.cycles)
-
-
-def _stands(path: CrackPath, length: float) -> bool:
-    """Return whether a through crack is in range and bears both requirements."""
-    if length >= path.largest:
-        return False
-    needed = (path.loads.residual, path.loads.ultimate)
-    return path.strength(length).stress > max(r.governing[0] for r in needed)
 
 
 def flaw_start(hole: Hole, path: CrackPath, note: Note) -> Start:
@@ -148,25 +137,4 @@ def with_assumed_flaw(
     """Fill lives, threshold and repeat from stress-life and from an assumed flaw."""
     start = flaw_start(hole, path, note)
     write_strength(hole, path, note, start.length)
-    grown = grow(inputs, note, path, start, path.loads.residual)
-    base = inputs.word("life_base") or ""
-    growth = intervals.life(
-        "growth of the flaw assumed at the hole", grown.cycles, base, grown.remark
-    )
-    known = use is Use.FOUND_DAMAGE
-    chosen = fatigue.governing_life(inputs, note, left, growth, base, propose=not known)
-    lived = intervals.life("mean stress-life left", left.remaining, base, left.remark)
-    if known:
-        note.warn(intervals.FOUND_DAMAGE_LIFE)
-    return replace(
-        draft,
-        lives=(lived, growth),
-        life_cycles=chosen.life.cycles,
-        life_base=base,
-        life_after_factor_cycles=chosen.after_factor,
-        scatter_factor=chosen.factor,
-        threshold=chosen.threshold,
-        repeat=None if known else repeat_after(inputs, note, path, grown.end),
-        missing=intervals.still_missing(inputs),
-        curves=(*curves(path, start.length, base), *left.curves),
-    )
+    return with_lives(inputs, use, note, path, start, left, draft, AT_THE_HOLE)

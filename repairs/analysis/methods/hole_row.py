@@ -13,22 +13,15 @@ from __future__ import annotations
 
 from dataclasses import replace
 
-from repairs.analysis.growth.path import (
-    CrackPath,
-    Start,
-    curves,
-    grow,
-    repeat_after,
-    with_found_lives,
-    with_margins,
-)
+from repairs.analysis.growth.path import Start
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.inspection import intervals
 from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
 from repairs.analysis.intensity.loaded_hole import CrackedHole
 from repairs.analysis.intensity.rows import HOLE_ROW
 from repairs.analysis.loads import panel_loads
+from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods.crack_case import CrackCase, evaluated
 from repairs.analysis.methods.hole_geometry import hole_in_sheet, write_strength
 from repairs.analysis.methods.loaded_hole import with_bearing, without_bearing
 from repairs.analysis.methods.row_geometry import (
@@ -39,6 +32,7 @@ from repairs.analysis.methods.row_geometry import (
     write_link_up,
 )
 from repairs.analysis.note import Note
+from repairs.analysis.strength.residual import Strength
 from repairs.analysis.types import Applicability, Result, Use
 
 COUNT_UNKNOWN = (
@@ -125,25 +119,77 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     """Evaluate the row; the tests have passed."""
     found = panel_loads.panel_loads(inputs, note)
     row = _read(inputs, note)
-    if use is Use.NO_KNOWN_CRACK:
-        path = row.path(found, inputs)
-        return _checked(inputs, row, _assumed(inputs, note, row, path, draft))
+    c = 0.0
+    if use is Use.FOUND_DAMAGE:
+        c = _largest(inputs, note)
+        row = _with_ligament(inputs, note, row, c)
+    if is_lead(inputs, use):
+        case = _lead(inputs, note, row, c, found)
+    else:
+        case = _alike(inputs, note, row, c, found)
+    done = evaluated(inputs, use, note, draft, case)
+    open_ = row.hole.at.bearing and not row.hole.bearing_strength
+    return without_bearing(inputs, done) if open_ else done
+
+
+def _largest(inputs: Inputs, note: Note) -> float:
     measured = note.given(
         "c", "largest crack from its hole edge", inputs.number("edge_crack_length")
     )
     more = note.given("u", "its uncertainty", inputs.number("edge_crack_uncertainty"))
-    c = measured + more
-    if is_lead(inputs, use):
-        return _lead(inputs, note, row, c, found, draft)
+    return measured + more
+
+
+def _with_ligament(inputs: Inputs, note: Note, row: Row, c: float) -> Row:
+    """Return the row with its measured ligament, if there is one."""
     ligament = inputs.maybe("ligament")
-    if ligament is not None:
-        note.given("L", "ligament from tip to tip, as measured", ligament)
-        row = replace(row, measured_at=c, measured=ligament.value)
+    if ligament is None:
+        return row
+    note.given("L", "ligament from tip to tip, as measured", ligament)
+    return replace(row, measured_at=c, measured=ligament.value)
+
+
+def _alike(
+    inputs: Inputs, note: Note, row: Row, c: float, found: PanelLoads
+) -> CrackCase:
+    """Return equal cracks at every hole: those measured, or the assumed flaw."""
     path = row.path(found, inputs)
-    strength = write_strength(row.hole, path, note, c)
-    write_link_up(row, note, c)
-    known = with_margins(found, note, strength, draft)
-    return _checked(inputs, row, with_found_lives(inputs, note, path, c, known))
+
+    def write(length: float) -> Strength:
+        strength = write_strength(row.hole, path, note, length)
+        write_link_up(row, note, length)
+        return strength
+
+    return CrackCase(path, write, lambda: c, Start, lambda: _assumed(note, row))
+
+
+def _assumed(note: Note, row: Row) -> Start:
+    """Return the flaw assumed at every hole of a row."""
+    flaw = rogue_flaw(FlawLocation.HOLE, row.hole.thickness)
+    note.step("c₀", f"assumed {flaw.kind} flaw", "", flaw.length, "mm", flaw.reference)
+    note.warn(FLAW_EVERYWHERE)
+    return Start(flaw.length)
+
+
+def _lead(
+    inputs: Inputs, note: Note, row: Row, c: float, found: PanelLoads
+) -> CrackCase:
+    """Return a lead crack longer than the pitch, with cracks c ahead of it."""
+    length = note.given("2a", "lead crack, tip to tip", inputs.number("crack_length"))
+    more = note.given("u", "its uncertainty", inputs.number("crack_length_uncertainty"))
+    width = note.given(
+        "W", "panel length along the crack", inputs.number("panel_length")
+    )
+    a = (length + more) / 2
+    lead = LeadRow(row, width, a, c, inputs.number("ligament").value)
+    path = lead.path(found, inputs)
+    return CrackCase(
+        path,
+        lambda size: write_lead(lead, path, note, size),
+        lambda: a,
+        Start,
+        lambda: Start(a),
+    )
 
 
 def _read(inputs: Inputs, note: Note) -> Row:
@@ -164,66 +210,3 @@ def _read(inputs: Inputs, note: Note) -> Row:
         hole = with_bearing(inputs, note, hole)
     note.step("F", "row as strips one pitch wide", "", None, "", HOLE_ROW)
     return Row(hole, correction_for(inputs, note))
-
-
-def _checked(inputs: Inputs, row: Row, done: Result) -> Result:
-    hole = row.hole
-    open_ = hole.at.bearing and not hole.bearing_strength
-    return without_bearing(inputs, done) if open_ else done
-
-
-def _lead(
-    inputs: Inputs,
-    note: Note,
-    row: Row,
-    c: float,
-    found: panel_loads.PanelLoads,
-    draft: Result,
-) -> Result:
-    """Fill strength and lives of a lead crack longer than the pitch."""
-    length = note.given("2a", "lead crack, tip to tip", inputs.number("crack_length"))
-    more = note.given("u", "its uncertainty", inputs.number("crack_length_uncertainty"))
-    ligament = note.given(
-        "L", "ligament from tip to tip, as measured", inputs.number("ligament")
-    )
-    width = note.given(
-        "W", "panel length along the crack", inputs.number("panel_length")
-    )
-    a = (length + more) / 2
-    lead = LeadRow(row, width, a, c, ligament)
-    path = lead.path(found, inputs)
-    strength = write_lead(lead, path, note, a)
-    known = with_margins(found, note, strength, draft)
-    return _checked(inputs, row, with_found_lives(inputs, note, path, a, known))
-
-
-def _assumed(
-    inputs: Inputs, note: Note, row: Row, path: CrackPath, draft: Result
-) -> Result:
-    """Fill threshold and repeat from the flaw assumed at every hole of a row."""
-    flaw = rogue_flaw(FlawLocation.HOLE, row.hole.thickness)
-    note.step("c₀", f"assumed {flaw.kind} flaw", "", flaw.length, "mm", flaw.reference)
-    note.warn(FLAW_EVERYWHERE)
-    start = Start(flaw.length)
-    strength = write_strength(row.hole, path, note, start.length)
-    write_link_up(row, note, start.length)
-    draft = with_margins(path.loads, note, strength, draft)
-    grown = grow(inputs, note, path, start, path.loads.residual)
-    base = inputs.word("life_base") or ""
-    factored = intervals.over_factor(
-        inputs, note, grown.cycles, "growth_policy", "threshold"
-    )
-    title = "growth of the flaw assumed at every hole"
-    life = intervals.life(title, grown.cycles, base, grown.remark)
-    return replace(
-        draft,
-        lives=(life,),
-        life_cycles=life.cycles,
-        life_base=base,
-        life_after_factor_cycles=factored.whole,
-        scatter_factor=factored.factor,
-        threshold=intervals.interval(inputs, note, factored.cycles, base, "N_thr"),
-        repeat=repeat_after(inputs, note, path, grown.end),
-        missing=intervals.still_missing(inputs),
-        curves=curves(path, start.length, base),
-    )

@@ -9,24 +9,19 @@ Nothing is counted on the rest of the member taking over.
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 from repairs.analysis.growth.path import (
     CrackPath,
     Start,
-    curves,
-    grow,
-    repeat_after,
-    with_found_lives,
-    with_margins,
     write_law,
 )
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.inspection import intervals
 from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
 from repairs.analysis.intensity import through as si
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods import member_stress
+from repairs.analysis.methods.crack_case import CrackCase, evaluated
 from repairs.analysis.methods.member_common import own_needed
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
@@ -128,11 +123,14 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
         LARGEST_SHARE * flange.width,
         "the range of the edge crack",
     )
-    if use is Use.FOUND_DAMAGE:
-        a = _measured(inputs, note)
-        known = with_margins(loads, note, _write(path, note, a), draft)
-        return with_found_lives(inputs, note, path, a, known)
-    return _assumed(inputs, note, path, draft)
+    case = CrackCase(
+        path,
+        lambda a: _write(path, note, a),
+        lambda: _measured(inputs, note),
+        Start,
+        lambda: _assumed(inputs, note),
+    )
+    return evaluated(inputs, use, note, draft, case)
 
 
 def _measured(inputs: Inputs, note: Note) -> float:
@@ -162,32 +160,11 @@ def _write(path: CrackPath, note: Note, a: float) -> rs.Strength:
     return strength
 
 
-def _assumed(inputs: Inputs, note: Note, path: CrackPath, draft: Result) -> Result:
-    """Fill threshold and repeat from the flaw assumed at the edge."""
+def _assumed(inputs: Inputs, note: Note) -> Start:
+    """Return the flaw assumed at the edge."""
     thickness = note.given(
         "t", SPECS["member_thickness"].title, inputs.number("member_thickness")
     )
     flaw = rogue_flaw(FlawLocation.ELSEWHERE, thickness)
-    start = Start(flaw.length / 2)
-    note.step("a₀", FLAW_AT_EDGE, "", start.length, "mm", flaw.reference)
-    strength = _write(path, note, start.length)
-    draft = with_margins(path.loads, note, strength, draft)
-    grown = grow(inputs, note, path, start, path.loads.residual)
-    base = inputs.word("life_base") or ""
-    factored = intervals.over_factor(
-        inputs, note, grown.cycles, "growth_policy", "threshold"
-    )
-    title = "growth of the flaw assumed at the flange's edge"
-    life = intervals.life(title, grown.cycles, base, grown.remark)
-    return replace(
-        draft,
-        lives=(life,),
-        life_cycles=life.cycles,
-        life_base=base,
-        life_after_factor_cycles=factored.whole,
-        scatter_factor=factored.factor,
-        threshold=intervals.interval(inputs, note, factored.cycles, base, "N_thr"),
-        repeat=repeat_after(inputs, note, path, grown.end),
-        missing=intervals.still_missing(inputs),
-        curves=curves(path, start.length, base),
-    )
+    note.step("a₀", FLAW_AT_EDGE, "", flaw.length / 2, "mm", flaw.reference)
+    return Start(flaw.length / 2)

@@ -27,6 +27,7 @@ from repairs.analysis.note import Note
 from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.types import Interval, Reference, Result, Use
 
+REMAINS = "growth of the flaw assumed to remain"
 INPUTS = (
     "toughness",
     "growth_law",
@@ -58,13 +59,12 @@ def with_lives(
     start: Start,
     left: fatigue.StressLife,
     draft: Result,
+    title: str = REMAINS,
 ) -> Result:
     """Fill lives, threshold and repeat from stress-life and from growth."""
     grown = grow(inputs, note, path, start, path.loads.residual)
     base = inputs.word("life_base") or ""
-    growth = intervals.life(
-        "growth of the flaw assumed to remain", grown.cycles, base, grown.remark
-    )
+    growth = intervals.life(title, grown.cycles, base, grown.remark)
     propose = use is Use.NO_KNOWN_CRACK
     chosen = fatigue.governing_life(inputs, note, left, growth, base, propose=propose)
     lived = intervals.life("mean stress-life left", left.remaining, base, left.remark)
