@@ -48,10 +48,15 @@ def note_line_text(line: Mapping[str, Any]) -> str:
 def evaluation_text(shown: Mapping[str, Any]) -> str:
     """The whole evaluation as text, from the data of its JSON form."""
     lines = [*_head(shown), "", *_results(shown), ""]
+    lines += ["Methods asked", *map(_method, shown["asked"]), ""]
+    if shown["margins"]:
+        lines += ["Margins", *map(_margin, shown["margins"]), ""]
     lines += ["Applicability", *map(_test, shown["applicability"]), ""]
     if shown["missing"]:
         lines += ["Missing", *map(_missing, shown["missing"]), ""]
     lines += ["Warnings", *(f"  ! {text}" for text in shown["warnings"]), ""]
+    if shown["assumptions"]:
+        lines += ["Assumptions", *(f"  {text}" for text in shown["assumptions"]), ""]
     lines += ["Calculation note", *map(note_line_text, shown["note"])]
     return "\n".join(lines) + "\n"
 
@@ -86,6 +91,20 @@ def _results(shown: Mapping[str, Any]) -> Iterable[str]:
         yield f"  {title:<26}{number_text(value):>12}  {unit}".rstrip()
     kept = shown["ultimate_kept"].replace("_", " ")
     yield f"  {'ultimate strength kept':<26}{kept:>12}"
+
+
+def _method(asked: Mapping[str, Any]) -> str:
+    part = asked["part"].replace("_", " ")
+    return f"  {part:<16}{asked['title']}, version {asked['version']}"
+
+
+def _margin(row: Mapping[str, Any]) -> str:
+    """One mechanism in one case; without recorded loads the case is not checked."""
+    words = "not checked"
+    if row["required"]:
+        words = f"{row['strength'] / row['required'] - 1:+.2f}"
+    strength = f"{number_text(row['strength'])} MPa"
+    return f"  {words:<12}{row['mechanism']}, {row['case']}: {strength}"
 
 
 def _test(test: Mapping[str, Any]) -> str:
