@@ -15,6 +15,7 @@ from repairs.analysis.inputs import Inputs
 from repairs.analysis.loads import panel_loads as panels
 from repairs.analysis.loads import shell as loads
 from repairs.analysis.loads.flight_cycle import ground_air_ground
+from repairs.analysis.loads.flown import Flown, ground_level, write_flight
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.note import Note
 from repairs.analysis.types import GrossStress, Sourced
@@ -28,7 +29,23 @@ BENDING_ADDS = (
     "Bending of the section adds to the axial stress of pressure; the hoop stress is "
     "not part of this direction."
 )
-LONGITUDINAL_INPUTS = ("limit_longitudinal_stress", "mean_longitudinal_stress")
+ONE_CYCLE = (
+    "One cycle a flight, from the ground to its largest stress: the cycles between are "
+    "not counted and would shorten the life. Barred from approval until the panel's "
+    "flight-by-flight spectrum is recorded."
+)
+OF_BENDING = (
+    "The spectrum is taken as bending along the section without pressure, which is "
+    "added in flight and not on the ground."
+)
+EVERY_MINIMUM = (
+    "The spectrum does not tell its flights apart: every cycle is taken down to the "
+    "ground's pressure, which shortens the life."
+)
+LIMIT, MEAN = "limit_longitudinal_stress", "mean_longitudinal_stress"
+LONGITUDINAL_INPUTS = (LIMIT, MEAN)
+REACH_INPUTS = ("flight_smallest_share", "flight_largest_share")
+"""How far a flight's stresses reach, over the 1 g stress."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,10 +60,22 @@ class SpectrumReach:
         within("Smallest over 1 g stress", self.smallest.value, -10, 1, "the ground")
 
 
+def states_stress(inputs: Inputs) -> bool:
+    """Return whether a spectrum of stress is recorded for the panel."""
+    spectrum = inputs.spectrum()
+    return spectrum is not None and spectrum.flight is not None
+
+
 def longitudinal_needed(inputs: Inputs) -> tuple[str, ...]:
     """Return the names of the load inputs this direction needs."""
     pressure = panels.PRESSURE_INPUTS if inputs.word("pressurised") == "yes" else ()
-    return LONGITUDINAL_INPUTS + pressure
+    flown = () if states_stress(inputs) else (MEAN,)
+    return (LIMIT, *flown, *pressure)
+
+
+def reach_needed(inputs: Inputs) -> tuple[str, ...]:
+    """Return the names of what says how far a flight reaches, without a spectrum."""
+    return () if states_stress(inputs) else REACH_INPUTS
 
 
 def loads_across(
@@ -92,8 +121,9 @@ def longitudinal_loads(
 
     Residual: axial stress of normal pressure with limit bending, and 1.15 times the
     pressure alone. Ultimate: 1.5 times limit bending with relief pressure, and 1.5
-    times the proof factor on relief pressure. Cycle: from 1 g times the smallest share
-    on the ground, without pressure, to 1 g times the largest share with pressure.
+    times the proof factor on relief pressure. Flight: the panel's spectrum with
+    pressure added in flight; else one cycle, from 1 g times the smallest share on the
+    ground, without pressure, to 1 g times the largest share with pressure.
 
     Parameters
     ----------
@@ -103,7 +133,8 @@ def longitudinal_loads(
     note
         Takes every step.
     reach
-        Smallest and largest of the spectrum over 1 g; None is refused.
+        Smallest and largest of a flight over 1 g; None is refused unless the panel's
+        spectrum is recorded.
 
     Returns
     -------
@@ -118,20 +149,13 @@ def longitudinal_loads(
     ----------
     .. [1] 14 CFR 25.571(b), 25.365(d), 25.303; see `shell`.
     """
-    if reach is None:
+    if reach is None and not states_stress(inputs):
         raise InputError(NEEDS_SPECTRUM)
     limit = note.given(
         "σ_lim,x",
         "limit bending stress along the section, without pressure",
-        inputs.number("limit_longitudinal_stress"),
+        inputs.number(LIMIT),
     )
-    mean = note.given(
-        "σ_1g,x",
-        "1 g bending stress along the section, without pressure",
-        inputs.number("mean_longitudinal_stress"),
-    )
-    low = note.given("r_min", "smallest share of a flight", reach.smallest)
-    high = note.given("r_max", "largest share of a flight", reach.largest)
     flight = GrossStress(limit)
     if inputs.word("pressurised") == "yes":
         read = panels.read_shell(inputs, note)
@@ -152,6 +176,33 @@ def longitudinal_loads(
         )
         residual, ultimate = loads.unpressurised_requirements(flight, factor)
         pressure = GrossStress(0.0)
+    flown = _flown(inputs, note, reach, pressure)
+    note.warn(BENDING_ADDS)
+    found = PanelLoads(residual, ultimate, flown.cycle, flown)
+    panels.write_requirements(found, note)
+    return found
+
+
+def _flown(
+    inputs: Inputs, note: Note, reach: SpectrumReach | None, pressure: GrossStress
+) -> Flown:
+    """Write down and return a flight: its spectrum with pressure, else one cycle."""
+    spectrum = inputs.spectrum()
+    if spectrum is not None and spectrum.flight is not None:
+        note.step(
+            "σ_p", "(Δp + p_ext) R / (2 t)", OF_BENDING, pressure, "MPa", loads.SHELL
+        )
+        if pressure and ground_level(spectrum) is None:
+            note.warn(EVERY_MINIMUM)
+        return write_flight(note, spectrum, pressure)
+    assert reach is not None, "longitudinal_loads() has refused it"
+    mean = note.given(
+        "σ_1g,x",
+        "1 g bending stress along the section, without pressure",
+        inputs.number(MEAN),
+    )
+    low = note.given("r_min", "smallest share of a flight", reach.smallest)
+    high = note.given("r_max", "largest share of a flight", reach.largest)
     cycle = ground_air_ground((low * mean,), (high * mean + pressure,))
     note.step(
         "σ",
@@ -161,7 +212,5 @@ def longitudinal_loads(
         "MPa",
         loads.SHELL,
     )
-    note.warn(BENDING_ADDS)
-    found = PanelLoads(residual, ultimate, cycle)
-    panels.write_requirements(found, note)
-    return found
+    note.warn(ONE_CYCLE, bars=True)
+    return Flown(cycle)

@@ -17,6 +17,7 @@ from repairs.analysis.loads import shell as loads
 from repairs.analysis.loads.longitudinal import (
     LONGITUDINAL_INPUTS,
     NEEDS_SPECTRUM,
+    ONE_CYCLE,
     SpectrumReach,
 )
 from repairs.analysis.loads.panel_loads import PanelLoads, ShellInputs
@@ -106,6 +107,7 @@ def skew_loads(inputs: Inputs, note: Note, reach: SpectrumReach | None) -> SkewL
         "MPa",
         PLANE_STRESS,
     )
+    note.warn(ONE_CYCLE, bars=True)
     panels.write_requirements(found, note)
     return SkewLoads(found, min(p.smallest / p.largest for p in both))
 

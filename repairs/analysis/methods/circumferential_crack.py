@@ -22,11 +22,11 @@ from repairs.analysis.intensity.bulging import (
 from repairs.analysis.loads.longitudinal import (
     longitudinal_loads,
     longitudinal_needed,
+    reach_needed,
 )
 from repairs.analysis.loads.panel_loads import PRESSURE_INPUTS
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
-    REACH_INPUTS,
     SKIN_INPUTS,
     away_from_edges,
     crack_needed,
@@ -57,7 +57,7 @@ NO_BULGING = (
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs for a use."""
-    loads = (*longitudinal_needed(inputs), *REACH_INPUTS)
+    loads = (*longitudinal_needed(inputs), *reach_needed(inputs))
     every = (*REQUIRED, *loads, *crack_needed(inputs, use))
     return tuple(dict.fromkeys(every))
 

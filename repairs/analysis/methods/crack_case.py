@@ -22,7 +22,14 @@ from repairs.analysis.growth.path import (
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection import intervals
 from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
-from repairs.analysis.loads.longitudinal import SpectrumReach
+from repairs.analysis.loads.longitudinal import (
+    REACH_INPUTS as REACH_INPUTS,
+)
+from repairs.analysis.loads.longitudinal import (
+    SpectrumReach,
+    states_stress,
+)
+from repairs.analysis.loads.panel_loads import largest_stress
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.applicability import NONE_HERE, NOT_RECORDED
 from repairs.analysis.methods.sheet import (
@@ -54,8 +61,6 @@ SKIN_INPUTS = (
     "toughness",
     "growth_law",
 )
-REACH_INPUTS = ("flight_smallest_share", "flight_largest_share")
-"""How far a flight's stresses reach, over the 1 g stress."""
 MEASURED = ("crack_length", "crack_length_uncertainty")
 COUNTED = ("accumulated_cycles", "life_base")
 OBSTACLE_TEST = "distance of a tip from any cut-out, joint row or repair edge"
@@ -68,8 +73,10 @@ def crack_needed(inputs: Inputs, use: Use) -> tuple[str, ...]:
     return MEASURED + (DEPTH_INPUTS if depth_counts(inputs) else ())
 
 
-def spectrum_reach(inputs: Inputs) -> SpectrumReach:
-    """Return how far a flight's stresses reach; `required` has made sure of it."""
+def spectrum_reach(inputs: Inputs) -> SpectrumReach | None:
+    """Return how far a flight's stresses reach; None where only a spectrum says it."""
+    if not all(name in inputs for name in REACH_INPUTS):
+        return None
     smallest, largest = (inputs.number(name) for name in REACH_INPUTS)
     return SpectrumReach(smallest, largest)
 
@@ -81,10 +88,13 @@ def away_from_edges(inputs: Inputs) -> Applicability:
 
 
 def mean_tension(inputs: Inputs) -> Applicability:
-    """Test that the 1 g stress along the section opens the crack.
+    """Test that a flight's stress along the section opens the crack.
 
-    Where it presses, the largest stress of a flight is not at its largest share.
+    Where the 1 g stress presses, the largest of a flight is not at its largest share.
     """
+    if states_stress(inputs):
+        top = largest_stress(inputs)
+        return apply.above("largest stress of the spectrum", top, 0.0, "MPa")
     mean = inputs.maybe("mean_longitudinal_stress")
     value = mean.value if mean else None
     return apply.above("1 g stress along the section", value, 0.0, "MPa")

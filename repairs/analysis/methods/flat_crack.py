@@ -23,11 +23,12 @@ from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.longitudinal import (
     LONGITUDINAL_INPUTS,
     longitudinal_loads,
+    longitudinal_needed,
+    reach_needed,
 )
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
-    REACH_INPUTS,
     SKIN_INPUTS,
     away_from_edges,
     crack_needed,
@@ -69,7 +70,7 @@ def around(inputs: Inputs) -> bool:
 def loads_needed(inputs: Inputs) -> tuple[str, ...]:
     """Return the names of the load inputs this crack needs."""
     if around(inputs):
-        return (*LONGITUDINAL_INPUTS, *REACH_INPUTS)
+        return (*longitudinal_needed(inputs), *reach_needed(inputs))
     return panel_loads.recorded_needed(inputs)
 
 

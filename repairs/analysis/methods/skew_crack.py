@@ -14,12 +14,12 @@ from dataclasses import replace
 from repairs.analysis.growth.path import CrackPath
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.intensity.skew import TANGENTIAL, skew_bound
+from repairs.analysis.loads.longitudinal import REACH_INPUTS
 from repairs.analysis.loads.panel_loads import PRESSURE_INPUTS
 from repairs.analysis.loads.skew import SKEW_INPUTS, skew_loads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.circumferential_crack import stiffener_whole
 from repairs.analysis.methods.crack_case import (
-    REACH_INPUTS,
     SKIN_INPUTS,
     away_from_edges,
     crack_needed,

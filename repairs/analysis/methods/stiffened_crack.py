@@ -30,12 +30,12 @@ from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.longitudinal import (
     longitudinal_loads,
     longitudinal_needed,
+    reach_needed,
 )
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods import flat_crack
 from repairs.analysis.methods.crack_case import (
-    REACH_INPUTS,
     SKIN_INPUTS,
     CrackCase,
     away_from_edges,
@@ -103,7 +103,7 @@ def layout(inputs: Inputs) -> Layout:
         needed = flat_crack.loads_needed(inputs)
         return Layout("stringer", "panel_length", needed, curved=False)
     if inputs.word("crack_direction") == "circumferential":
-        needed = (*longitudinal_needed(inputs), *REACH_INPUTS)
+        needed = (*longitudinal_needed(inputs), *reach_needed(inputs))
         return Layout("stringer", "panel_width", needed, curved=False)
     return Layout("frame", "panel_length", panel_loads.PRESSURE_INPUTS, curved=True)
 

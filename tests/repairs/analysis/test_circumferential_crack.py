@@ -2,13 +2,18 @@
 
 from __future__ import annotations
 
+import json
 import math
 
 import pytest
+import rainflow as library
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
 
+from repairs.analysis.loads.flown import Flown, ground_level
+from repairs.analysis.spectra.recorded import RecordedSpectrum
+from repairs.analysis.spectra.wing_sequence import GROUND_RATIO
 from repairs.analysis.surroundings import Obstacle, ObstacleKind
 from repairs.analysis.types import KSI, KSI_ROOT_INCH, Outcome
 from tests.outside import outside
@@ -23,6 +28,7 @@ from tests.repairs.analysis.cases import (
     said,
 )
 from tests.repairs.analysis.crack_cases import ROUND, found, line, unknown
+from tests.repairs.analysis.test_recorded_spectrum import wing
 
 METHOD = "pressurised-skin-circumferential-crack"
 TITLE = "Circumferential through crack in pressurised skin"
@@ -145,6 +151,99 @@ def test_without_known_crack_there_are_threshold_and_repeat():
     result = unknown(METHOD, ROUND)
     assert result.threshold.uncapped == result.lives[0].cycles // 2
     assert result.repeat is not None
+
+
+NO_SHARES = dict.fromkeys(
+    ("mean_longitudinal_stress", "flight_smallest_share", "flight_largest_share")
+)
+
+
+def flown(*flights: tuple[float, ...]) -> RecordedSpectrum:
+    """A recorded sequence of flights, each from its ground stress on [MPa]."""
+    content = {
+        "kind": "sequence",
+        "points_mpa": [point for flight in flights for point in flight],
+        "flights": len(flights),
+        "repeats": True,
+        "residue": "repeating",
+        "clip_above_mpa": None,
+        "clip_below_mpa": None,
+        "omit_below_range_mpa": None,
+    }
+    text = json.dumps(content)
+    return RecordedSpectrum.read("measured", "report of the test", text, text)
+
+
+def along(spectrum: RecordedSpectrum, **changes):
+    return found(METHOD, ROUND, spectrum=spectrum, **{**NO_SHARES, **changes})
+
+
+def test_one_cycle_a_flight_bars_approval_and_a_spectrum_lifts_it():
+    words = "until the panel's flight-by-flight spectrum is recorded"
+    assert any(words in reason for reason in found(METHOD, ROUND).barred)
+    assert not any(words in reason for reason in along(flown((-7.5, 45.0))).barred)
+
+
+def test_a_spectrum_of_ground_and_top_is_the_one_cycle():
+    one, other = found(METHOD, ROUND), along(flown((-7.5, 45.0)))
+    assert line(other, "σ_p") == pytest.approx(AXIAL)
+    assert [life.cycles for life in other.lives] == [
+        pytest.approx(life.cycles, rel=1e-6) for life in one.lives
+    ]
+
+
+FLIGHTS = ((-8.0, 40.0, 15.0, 50.0, 20.0, 35.0), (-5.0, 45.0, 12.0, 30.0))
+
+
+def test_pressure_is_added_in_flight_and_cycles_between_count():
+    # The library counts; without starts of flights no minimum is given pressure.
+    result = along(flown(*FLIGHTS))
+    assert any("does not tell its flights apart" in w for w in result.warnings)
+    points = [point for flight in FLIGHTS for point in flight]
+    top = points.index(max(points))
+    turned = [*points[top:], *points[: top + 1]]
+    rate = 0.0
+    for span, mean, count, _, _ in library.extract_cycles(turned):
+        high, low = mean + span / 2 + AXIAL, mean - span / 2
+        rate += count * LAW.rate(high - low, low / high) / len(FLIGHTS)
+    single = LAW.rate(1.0, 0.0)
+    equivalent = (rate / single) ** (1 / LAW.exponent)
+    for life, mark in zip(result.lives, result.curves[1].marks, strict=True):
+        end = mark.y / 2
+        solved = solve_ivp(
+            lambda a, n: [slowness(a, n)[0] * (TOP / equivalent) ** LAW.exponent],
+            (12.0, end),
+            [0.0],
+            rtol=1e-10,
+            atol=1e-6,
+        )
+        outside(
+            TITLE,
+            source="flight counted by the rainflow library, rate integrated by a "
+            "Runge-Kutta solver",
+            given=f"two flights with gusts and pressure, 2a 24 to {2 * end:.0f} mm",
+            published=float(solved.y[0, -1]),
+            computed=life.cycles,
+            unit="flights",
+            rel=1e-4,
+            route="library",
+        )
+    alone = along(flown(*((flight[0], max(flight)) for flight in FLIGHTS)))
+    assert result.life_cycles < alone.life_cycles
+
+
+def test_where_flights_are_told_apart_only_the_ground_is_without_pressure():
+    given_ = wing(mean=25.0, place="wing_lower_surface")
+    level = ground_level(given_)
+    assert level == pytest.approx(GROUND_RATIO.value * 25)
+    plain, pressed = Flown.of(given_), Flown.of(given_, AXIAL)
+    before, after = plain.net_cycles, pressed.net_cycles
+    gust = before.maximum * before.ratio > level
+    assert 0 < gust.sum() < gust.size
+    spans = [cycles.maximum * (1 - cycles.ratio) for cycles in (before, after)]
+    assert spans[1][gust] == pytest.approx(spans[0][gust])
+    assert spans[1][~gust] == pytest.approx(spans[0][~gust] + AXIAL)
+    assert after.maximum == pytest.approx(before.maximum + AXIAL)
 
 
 @settings(max_examples=10, deadline=None)
