@@ -29,6 +29,7 @@ from fleet.location.typegeometry import (
     FatiguePolicy,
     Pressures,
     RogueFlaw,
+    Spectrum,
     TypeGeometry,
     Zone,
 )
@@ -49,6 +50,7 @@ __all__ = [
     "Pressures",
     "RogueFlaw",
     "Section",
+    "Spectrum",
     "Stringer",
     "TypeGeometry",
     "Variant",

@@ -10,11 +10,12 @@ from dataclasses import replace
 from functools import lru_cache
 from typing import Any
 
-from fleet.location.parts import PanelMaterial, Variant
+from fleet.location.parts import Panel, PanelMaterial, Variant
 from fleet.location.parts_file import panel_from
 from fleet.location.position_file import stations_of
 from fleet.location.section_file import SectionFile
 from fleet.location.sections import Section
+from fleet.location.spectrum_file import WING_SEQUENCE, spectra_of
 from fleet.location.table import Table
 from fleet.location.typegeometry import (
     DetectableSize,
@@ -22,6 +23,7 @@ from fleet.location.typegeometry import (
     FatiguePolicy,
     Pressures,
     RogueFlaw,
+    Spectrum,
     TypeGeometry,
     Zone,
 )
@@ -30,6 +32,11 @@ FORMAT = 1
 FATIGUE_USES = ("stress_life", "growth_threshold", "growth_repeat")
 LEVELS = ("any", "below", "above")
 
+NO_SPECTRUM = "{where}: spectrum “{name}” is not in spectra; listed are: {listed}."
+NOT_THERE = (
+    "{where}: “{name}” is the standard wing sequence, which holds for the lower "
+    "surface of a transport's wing only; name a spectrum of this place."
+)
 NOT_TOML = "the file is not valid TOML: {error}. Mend that line first."
 
 
@@ -88,6 +95,7 @@ def _type(top: Table) -> TypeGeometry:
         fatigue_policies=_fatigue(top),
         detectable_sizes=_detectable(top),
         rogue_flaws=_rogue(top),
+        spectra=_spectra(top, sections),
     )
     top.done()
     return geometry
@@ -314,6 +322,31 @@ def _rogue(top: Table) -> tuple[RogueFlaw, ...]:
             found.append(flaw)
     _unique(top, "rogue flaw", [r.where for r in found])
     return tuple(found)
+
+
+def _spectra(top: Table, sections: list[Section]) -> tuple[Spectrum, ...]:
+    """The file's spectra, each panel's held against them."""
+    found = spectra_of(top)
+    _unique(top, "spectrum", [s.name for s in found])
+    listed = [
+        row.get("name") for row in _dicts(top.data.get("spectra")) if row.get("name")
+    ]
+    wings = {s.name for s in found if s.kind == WING_SEQUENCE}
+    for section in sections:
+        for panel in section.panels:
+            where = f"panel “{panel.label}” of section “{section.code}”"
+            if panel.spectrum and panel.spectrum not in listed:
+                names = ", ".join(map(str, listed)) or "none"
+                top.wrong(NO_SPECTRUM.format(
+                    where=where, name=panel.spectrum, listed=names
+                ))  # fmt: skip
+            elif panel.spectrum in wings and not _wing_lower(section, panel):
+                top.wrong(NOT_THERE.format(where=where, name=panel.spectrum))
+    return found
+
+
+def _wing_lower(section: Section, panel: Panel) -> bool:
+    return panel.surface == "lower" and "wing" in section.words
 
 
 def _unique(top: Table, kind: str, names: list[Any]) -> None:

@@ -117,6 +117,9 @@ class Panel:
     bending_limit_mpa: float | None
     ultimate_running_load_n_per_mm: float | None
     source: str
+    spectrum: str = ""
+    """Name of its load spectrum; '' if none is recorded."""
+    load_kind: str = ""
 
 
 @dataclass(frozen=True)

@@ -10,8 +10,11 @@ from fleet.location.position_file import across_of, box_of, stations_of
 from fleet.location.sections import Section
 from fleet.location.table import Table
 
+EACH_PANEL = ("bending_", "thickness_", "clad_per_side_", "spectrum")
+"""Beginnings of the keys of a row that may list one value for each panel."""
 CRITICALITIES = ("principal", "fatigue_critical", "secondary", "unknown")
 PLANE_KINDS = ("floor", "seat_track", "keel_beam", "bulkhead", "spar")
+LOAD_KINDS = ("tension", "compression", "shear", "bending", "torsion", "pressure")
 CUTOUT_KINDS = ("door", "cargo_door", "window", "hatch", "access")
 
 
@@ -53,7 +56,7 @@ def _grid(file: Lines, grid: Table) -> list[Panel]:
         for number, (a, b) in enumerate(itertools.pairwise(edges)):
             data = {
                 key: value[number]
-                if key.startswith(("bending_", "thickness_", "clad_per_side_"))
+                if key.startswith(EACH_PANEL)
                 and isinstance(value, list)
                 and len(value) == len(edges) - 1
                 else value
@@ -182,6 +185,8 @@ def panel_from(t: Table, file: Lines, box: Box) -> Panel:
             "ultimate_running_load", "running_load", above=0.0
         ),
         source=t.text("source"),
+        spectrum=t.text("spectrum", optional=True),
+        load_kind=t.choice("load_kind", LOAD_KINDS) if "load_kind" in t.data else "",
     )
 
 

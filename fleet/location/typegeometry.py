@@ -84,6 +84,16 @@ class RogueFlaw:
 
 
 @dataclass(frozen=True)
+class Spectrum:
+    """A load spectrum that panels name: its content as canonical text, its source."""
+
+    name: str
+    kind: str
+    content: str
+    source: str
+
+
+@dataclass(frozen=True)
 class TypeGeometry:
     """An aircraft type as its geometry file describes it, in mm and MPa."""
 
@@ -99,6 +109,7 @@ class TypeGeometry:
     fatigue_policies: tuple[FatiguePolicy, ...]
     detectable_sizes: tuple[DetectableSize, ...]
     rogue_flaws: tuple[RogueFlaw, ...]
+    spectra: tuple[Spectrum, ...] = ()
 
     def section(self, code: str) -> Section:
         """The section of this code; KeyError if the type has none."""

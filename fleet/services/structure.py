@@ -31,7 +31,13 @@ from fleet.models import (
 from fleet.models.materials import DETECTION
 from fleet.selectors.structure import NO_GEOMETRY, geometry_in_force
 from fleet.services.history import Writing
-from fleet.services.structure_rows import lines_create, openings_create, panel_row
+from fleet.services.structure_rows import (
+    Named,
+    lines_create,
+    openings_create,
+    panel_row,
+    spectra_create,
+)
 
 Row = TypeVar("Row", bound=models.Model)
 
@@ -79,6 +85,7 @@ def geometry_load(
         sections = _sections(w, aircraft_type, geometry)
         zones = _zones(w, aircraft_type, geometry)
         _policies(w, aircraft_type, geometry)
+        named = Named(materials, zones, spectra_create(w, geometry))
         for section in geometry.sections:
             row = sections[section.code]
             if not section.parent:
@@ -86,7 +93,7 @@ def geometry_load(
             openings_create(w, revision, row, section, sections)
             w.create_many(
                 [
-                    panel_row(revision, row, geometry, section, panel, materials, zones)
+                    panel_row(revision, row, geometry, section, panel, named)
                     for panel in section.panels
                 ]
             )

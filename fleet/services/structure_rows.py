@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 from fleet.canonical import canonical, digest, plain
 from fleet.location.geometry import Panel as FilePanel
 from fleet.location.geometry import Section as FileSection
@@ -15,6 +17,7 @@ from fleet.models import (
     Material,
     Panel,
     Section,
+    Spectrum,
     Stringer,
     Variant,
     Zone,
@@ -25,6 +28,8 @@ _PANEL_COLUMNS = (
     "thickness_mm", "clad_mm", "radius_mm", "limit_stress_mpa", "mean_stress_mpa",
     "ultimate_load_n_per_mm", "material_id", "criticality", "pressurised",
 )  # fmt: skip
+_LATER_COLUMNS = ("spectrum_id", "load_kind")
+"""Digested only where they say something: older panels keep their digests."""
 
 
 def lines_create(
@@ -107,14 +112,45 @@ def openings_create(
     )
 
 
+def spectra_create(w: Writing, geometry: TypeGeometry) -> dict[str, Spectrum]:
+    """The file's spectra by name; one that reads otherwise is revised."""
+    found = {}
+    for given in geometry.spectra:
+        last = Spectrum.objects.filter(name=given.name).last()
+        same = last and (last.content, last.source) == (given.content, given.source)
+        found[given.name] = (
+            last
+            if last and same
+            else w.create(
+                Spectrum(
+                    name=given.name,
+                    revision=last.revision + 1 if last else 1,
+                    content=given.content,
+                    content_digest=digest(given.content),
+                    source=given.source,
+                    replaces=last,
+                )
+            )
+        )
+    return found
+
+
+@dataclass(frozen=True, slots=True)
+class Named:
+    """Rows that panels name: materials by name, temper and form, zones, spectra."""
+
+    materials: dict[tuple[str, str, str], Material]
+    zones: dict[str, Zone]
+    spectra: dict[str, Spectrum]
+
+
 def panel_row(
     revision: GeometryRevision,
     row: Section,
     geometry: TypeGeometry,
     section: FileSection,
     panel: FilePanel,
-    materials: dict[tuple[str, str, str], Material],
-    zones: dict[str, Zone],
+    named: Named,
 ) -> Panel:
     box, material = panel.box, panel.material
     zone = geometry.zone_of_skin(
@@ -124,22 +160,25 @@ def panel_row(
         geometry=revision,
         section=row,
         label=panel.label,
-        material=materials.get((material.name, material.temper, material.form)),
+        material=named.materials.get((material.name, material.temper, material.form)),
         thickness_mm=panel.thickness_mm,
         clad_mm=material.clad_mm_per_side if material.clad else 0.0,
         radius_mm=panel.radius_mm,
+        spectrum=named.spectra.get(panel.spectrum),
+        load_kind=panel.load_kind,
         limit_stress_mpa=panel.bending_limit_mpa,
         mean_stress_mpa=panel.bending_1g_mpa,
         ultimate_load_n_per_mm=panel.ultimate_running_load_n_per_mm,
         load_source=panel.source,
         criticality=panel.criticality,
         criticality_source=panel.criticality_source,
-        zone=zones[zone.code] if zone else None,
+        zone=named.zones[zone.code] if zone else None,
         pressurised=panel.pressurised,
         source=panel.source,
         **vars(box),
     )
+    names = [*_PANEL_COLUMNS, *(c for c in _LATER_COLUMNS if getattr(made, c))]
     made.content_digest = digest(
-        canonical({name: plain(getattr(made, name)) for name in _PANEL_COLUMNS})
+        canonical({name: plain(getattr(made, name)) for name in names})
     )
     return made
