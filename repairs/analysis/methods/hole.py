@@ -10,9 +10,9 @@ from __future__ import annotations
 
 from repairs.analysis.growth.path import with_margins
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods import hole_loads
 from repairs.analysis.methods.hole_geometry import (
     BEARING,
     GEOMETRY,
@@ -40,7 +40,7 @@ UNCRACKED = ("life_base", "accumulated_cycles", *fatigue.INPUTS)
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs; a known crack needs its sizes."""
     more = state_needed(inputs, use, UNCRACKED)
-    names = (*GEOMETRY, strip_name(inputs), *panel_loads.needed(inputs), *more)
+    names = (*GEOMETRY, strip_name(inputs), *hole_loads.needed(inputs), *more)
     return tuple(dict.fromkeys(names))
 
 
@@ -64,7 +64,7 @@ def cracks_of(inputs: Inputs, use: Use) -> int:
 
 def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     """Evaluate the hole, cracked or not; the tests have passed."""
-    found = panel_loads.panel_loads(inputs, note)
+    found = hole_loads.loads_at_hole(inputs, note)
     hole = read_hole(inputs, note, cracks_of(inputs, use))
     path = hole.path(found, inputs)
     if cracked(inputs, use):

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.growth.path import CrackPath, write_law
 from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.intensity import holes as hi
@@ -25,6 +25,11 @@ from repairs.analysis.intensity.loaded_hole import (
 )
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods.hole_loads import (
+    direction_tests,
+    opened_tests,
+    runs_round,
+)
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.types import (
@@ -100,9 +105,9 @@ def slender_test(inputs: Inputs) -> Applicability:
 
 
 def crack_tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
-    """Test what is known of cracks; pressure pulls across a longitudinal one."""
+    """Test what is known of cracks at the hole, and their direction."""
     if use is not Use.FOUND_DAMAGE:
-        return ()
+        return opened_tests(inputs)
     known = apply.word_among(
         inputs, "hole_cracked", SPECS["hole_cracked"].title, ("yes", "no")
     )
@@ -111,12 +116,7 @@ def crack_tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     sides = apply.word_among(
         inputs, "both_sides", SPECS["both_sides"].title, ("yes", "no")
     )
-    if inputs.word("pressurised") != "yes":
-        return known, sides
-    along = apply.word_is(
-        inputs, "crack_direction", "direction of the crack", "longitudinal"
-    )
-    return known, sides, along
+    return known, sides, *direction_tests(inputs)
 
 
 @dataclass(frozen=True)
@@ -128,7 +128,7 @@ class Hole:
     radius: float | None
     yield_strength: float
     toughness: float
-    law: WalkerLaw
+    law: RecordedLaw
     bearing_strength: float | None = None
 
     @property
@@ -181,7 +181,7 @@ class Hole:
                 ((widest - diameter) / cracks, "the range of the bulging factor")
             )
         around = inputs.surroundings()
-        if around is not None:
+        if around is not None and not runs_round(inputs):
             room, what = around.largest_half_length(0.0)
             ends.append((room - diameter / 2, what))
         largest, end = min(ends)
@@ -221,7 +221,8 @@ def flat_hole(inputs: Inputs, note: Note, at: CrackedHole, thickness: float) -> 
 def hole_in_sheet(inputs: Inputs, note: Note, at: CrackedHole) -> Hole:
     """Write the sheet's data down and return the hole in it, bulging if pressurised."""
     flat = flat_hole(inputs, note, at, inputs.number("thickness").value)
-    radius = inputs.maybe("radius") if inputs.word("pressurised") == "yes" else None
+    bulges = inputs.word("pressurised") == "yes" and not runs_round(inputs)
+    radius = inputs.maybe("radius") if bulges else None
     if radius is None:
         return flat
     note.text(BULGING_WITH_HOLE)

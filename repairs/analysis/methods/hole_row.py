@@ -18,9 +18,9 @@ from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.inspection.flaws import FlawLocation, rogue_flaw
 from repairs.analysis.intensity.loaded_hole import CrackedHole
 from repairs.analysis.intensity.rows import HOLE_ROW
-from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods import hole_loads
 from repairs.analysis.methods.crack_case import CrackCase, evaluated
 from repairs.analysis.methods.hole_geometry import hole_in_sheet, write_strength
 from repairs.analysis.methods.loaded_hole import with_bearing, without_bearing
@@ -60,7 +60,7 @@ GEOMETRY = (
     "growth_law",
     "yield_strength",
 )
-LEAD_INPUTS = ("crack_length_uncertainty", "panel_length", "ligament")
+LEAD_INPUTS = ("crack_length_uncertainty", "ligament")
 
 
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
@@ -74,10 +74,16 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     direction = ("crack_direction",) if inputs.word("pressurised") == "yes" else ()
     sizes = COUNTED
     if use is Use.FOUND_DAMAGE:
-        lead = LEAD_INPUTS if is_lead(inputs, use) else ()
+        width = width_name(inputs)
+        lead = (*LEAD_INPUTS, width) if is_lead(inputs, use) else ()
         sizes = ("edge_crack_length", "edge_crack_uncertainty", *lead)
-    loads = panel_loads.needed(inputs)
+    loads = hole_loads.needed(inputs)
     return tuple(dict.fromkeys((*GEOMETRY, *count, *pin, *direction, *loads, *sizes)))
+
+
+def width_name(inputs: Inputs) -> str:
+    """Return the panel's size along the crack: its length, or its width round it."""
+    return "panel_width" if hole_loads.runs_round(inputs) else "panel_length"
 
 
 def is_lead(inputs: Inputs, use: Use) -> bool:
@@ -92,9 +98,6 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     del use
     diameter, pitch = inputs.maybe("hole_diameter"), inputs.maybe("hole_pitch")
     share = diameter.value / pitch.value if diameter and pitch else None
-    direction = apply.word_is(
-        inputs, "crack_direction", "direction of the crack", "longitudinal"
-    )
     return (
         apply.word_is(inputs, "element", "structural item", "skin"),
         _several(inputs),
@@ -102,7 +105,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
             inputs, "hole_load", SPECS["hole_load"].title, ("open", "loaded")
         ),
         apply.at_most("hole diameter over pitch", share, 0.5, ""),
-        *((direction,) if inputs.word("pressurised") == "yes" else ()),
+        *hole_loads.direction_tests(inputs),
     )
 
 
@@ -117,7 +120,7 @@ def _several(inputs: Inputs) -> Applicability:
 
 def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     """Evaluate the row; the tests have passed."""
-    found = panel_loads.panel_loads(inputs, note)
+    found = hole_loads.loads_at_hole(inputs, note)
     row = _read(inputs, note)
     c = 0.0
     if use is Use.FOUND_DAMAGE:
@@ -177,9 +180,8 @@ def _lead(
     """Return a lead crack longer than the pitch, with cracks c ahead of it."""
     length = note.given("2a", "lead crack, tip to tip", inputs.number("crack_length"))
     more = note.given("u", "its uncertainty", inputs.number("crack_length_uncertainty"))
-    width = note.given(
-        "W", "panel length along the crack", inputs.number("panel_length")
-    )
+    along = width_name(inputs)
+    width = note.given("W", SPECS[along].title, inputs.number(along))
     a = (length + more) / 2
     lead = LeadRow(row, width, a, c, inputs.number("ligament").value)
     path = lead.path(found, inputs)

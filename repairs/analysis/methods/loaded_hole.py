@@ -14,9 +14,9 @@ from dataclasses import replace
 
 from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
+from repairs.analysis.methods import hole_loads
 from repairs.analysis.methods.hole import UNCRACKED, cracks_of, static
 from repairs.analysis.methods.hole_geometry import (
     GEOMETRY,
@@ -70,7 +70,7 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs; a load transfer is never assumed."""
     more = state_needed(inputs, use, UNCRACKED)
     known = (*GEOMETRY, strip_name(inputs), "load_transfer")
-    return tuple(dict.fromkeys((*known, *panel_loads.needed(inputs), *more)))
+    return tuple(dict.fromkeys((*known, *hole_loads.needed(inputs), *more)))
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
@@ -85,7 +85,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
 
 def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     """Evaluate the hole, cracked or not; the tests have passed."""
-    found = panel_loads.panel_loads(inputs, note)
+    found = hole_loads.loads_at_hole(inputs, note)
     transfer = note.given(
         "λ", SPECS["load_transfer"].title, inputs.number("load_transfer")
     )

@@ -161,10 +161,36 @@ def test_k_at_the_hole_is_that_of_the_published_worksheet(both, published, toler
     )
 
 
-def test_only_a_longitudinal_crack_is_pulled_by_pressure_alone():
-    result = found(crack_direction=said("circumferential"))
+def test_a_diagonal_crack_at_a_hole_is_not_covered():
+    result = found(crack_direction=said("diagonal"))
     assert result.outcome is Outcome.NOT_COVERED
     assert result.governing == "direction of the crack"
+
+
+ROUND = {
+    "crack_direction": said("circumferential"),
+    "limit_longitudinal_stress": recorded(60.0, "MPa"),
+    "mean_longitudinal_stress": recorded(25.0, "MPa"),
+    "flight_smallest_share": recorded(-0.2, "-"),
+    "flight_largest_share": recorded(1.8, "-"),
+}
+
+
+def test_a_crack_round_the_shell_is_never_from_pressure_alone():
+    result = found(crack_direction=said("circumferential"))
+    assert result.outcome is Outcome.MISSING_INPUT
+    assert "limit_longitudinal_stress" in {m.name for m in result.missing}
+    assert result.life_cycles is None
+
+
+def test_a_crack_round_the_shell_sees_axial_stress_and_does_not_bulge():
+    result = found(**ROUND)
+    assert result.outcome is Outcome.COMPUTED
+    axial = 8.5 * PSI * RADIUS / (2 * THICKNESS)
+    assert result.required_residual_mpa == pytest.approx(axial + 60, rel=1e-6)
+    assert not any("bulging in F" in line.formula for line in result.note)
+    more = found(**ROUND | {"limit_longitudinal_stress": recorded(90.0, "MPa")})
+    assert more.margin_residual < result.margin_residual
 
 
 def test_a_corner_crack_lives_longer_than_a_through_crack_of_its_length():
