@@ -36,6 +36,7 @@ from repairs.analysis.methods.crack_case import (
     mean_tension,
     reach_of,
     spectrum_reach,
+    stiffener_whole,
     tips_clear,
 )
 from repairs.analysis.methods.sheet import Sheet, sheet_of
@@ -49,7 +50,6 @@ REQUIRED: tuple[str, ...] = (
     "panel_width",
     *PRESSURE_INPUTS,
 )
-WHOLE_STIFFENER = "stiffener under the crack"
 NO_BULGING = (
     "A crack round the shell does not bulge as one along it does: no bulging factor."
 )
@@ -60,15 +60,6 @@ def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     loads = (*longitudinal_needed(inputs), *reach_needed(inputs))
     every = (*REQUIRED, *loads, *crack_needed(inputs, use))
     return tuple(dict.fromkeys(every))
-
-
-def stiffener_whole(inputs: Inputs) -> Applicability:
-    """Test that no broken stiffener is recorded at the crack."""
-    word = inputs.word("centre_stiffener")
-    shown = word.replace("_", " ") if word else "none recorded as broken"
-    return Applicability(
-        WHOLE_STIFFENER, shown, "not broken", word != "broken_stiffener"
-    )
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:

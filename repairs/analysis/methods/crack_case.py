@@ -87,6 +87,15 @@ def away_from_edges(inputs: Inputs) -> Applicability:
     return apply.word_outside(inputs, "crack_origin", "where the crack starts", barred)
 
 
+def stiffener_whole(inputs: Inputs) -> Applicability:
+    """Test that no broken stiffener is recorded at the crack."""
+    word = inputs.word("centre_stiffener")
+    shown = word.replace("_", " ") if word else "none recorded as broken"
+    return Applicability(
+        "stiffener under the crack", shown, "not broken", word != "broken_stiffener"
+    )
+
+
 def mean_tension(inputs: Inputs) -> Applicability:
     """Test that a flight's stress along the section opens the crack.
 

@@ -37,6 +37,7 @@ from repairs.analysis.methods.crack_case import (
     mean_tension,
     reach_of,
     spectrum_reach,
+    stiffener_whole,
     tips_clear,
 )
 from repairs.analysis.methods.sheet import Sheet, sheet_of
@@ -101,6 +102,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
         apply.word_is(inputs, "element", "structural item", "skin"),
         apply.word_is(inputs, "pressurised", "panel is pressurised", "no"),
         away_from_edges(inputs),
+        stiffener_whole(inputs),
         kind_is_not(inputs, ("compression",)),
         tips_clear(inputs, use, lambda a: 2 * a, LIGAMENT_RULE),
         opened(inputs),

@@ -71,6 +71,10 @@ class Sheet:
         width = si.centre_crack_secant(HalfLength(a), self.width)
         return self.bulging(a) * width * self.skew
 
+    def raised(self, a: float) -> float:
+        """Return what raises K in a sheet of any width: bulging and skew [-]."""
+        return self.bulging(a) * self.skew
+
     def candidates(self, a: float) -> dict[str, GrossStress | None]:
         """Return every strength that may govern, on gross stress [MPa]."""
         return {
@@ -79,7 +83,10 @@ class Sheet:
                 self.yield_strength, 2 * a, self.width
             ),
             rs.SHORT_CRACK: rs.short_crack_line(
-                self.toughness, self.yield_strength, HalfLength(a), self.width
+                self.toughness / self.raised(a),
+                self.yield_strength,
+                HalfLength(a),
+                self.width,
             ),
         }
 
@@ -208,8 +215,8 @@ def write_strength(sheet: Sheet, path: CrackPath, note: Note, a: float) -> rs.St
     if found[rs.SHORT_CRACK] is not None:
         note.step(
             "S_sc",
-            "F_ty (1 − 2a / 6a₁), 2a₁ = (9/2π)(K_c / F_ty)²",
-            f"2a = {2 * a:.2f}",
+            f"F_ty (1 − 2a / 6a₁), 2a₁ = (9/2π)(K_c / F_b{skew} F_ty)²",
+            f"2a = {2 * a:.2f}, K_c over {sheet.raised(a):.4f}",
             found[rs.SHORT_CRACK],
             "MPa",
             rs.FEDDERSEN,

@@ -18,7 +18,6 @@ from repairs.analysis.loads.longitudinal import REACH_INPUTS
 from repairs.analysis.loads.panel_loads import PRESSURE_INPUTS
 from repairs.analysis.loads.skew import SKEW_INPUTS, skew_loads
 from repairs.analysis.methods import applicability as apply
-from repairs.analysis.methods.circumferential_crack import stiffener_whole
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
     away_from_edges,
@@ -29,6 +28,7 @@ from repairs.analysis.methods.crack_case import (
     mean_tension,
     reach_of,
     spectrum_reach,
+    stiffener_whole,
     tips_clear,
 )
 from repairs.analysis.methods.sheet import Sheet, sheet_of

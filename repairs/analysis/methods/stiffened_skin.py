@@ -82,8 +82,9 @@ class StiffenedSkin:
         panel[rs.NET_SECTION] = rs.net_section_yield(
             skin.yield_strength, 2 * a, skin.width
         )
+        raised = max(1.0, self.alone(a).factor * self.bulging(a))
         panel[rs.SHORT_CRACK] = rs.short_crack_line(
-            skin.toughness, skin.yield_strength, half, skin.width
+            skin.toughness / raised, skin.yield_strength, half, skin.width
         )
         return rs.weakest(panel)
 

@@ -127,6 +127,7 @@ def test_a_direction_that_is_not_known_gets_the_bound_of_any(change, factor):
         ({"pressurised": said("yes")}, "panel is pressurised"),
         ({"crack_origin": said("edge")}, "where the crack starts"),
         ({"load_kind": said("compression")}, "kind of load"),
+        ({"centre_stiffener": said("broken_stiffener")}, "stiffener under the crack"),
         ({"cycle_max_stress": recorded(-5.0, "MPa")}, "largest stress of a flight"),
     ],
 )

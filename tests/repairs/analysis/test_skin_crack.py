@@ -16,6 +16,7 @@ from repairs.analysis.surroundings import Obstacle, ObstacleKind
 from repairs.analysis.types import Grade, Outcome, Sourced, UltimateKept, Use
 from tests.repairs.analysis.cases import (
     CRACK,
+    FTY,
     KC,
     PSI,
     RADIUS,
@@ -43,6 +44,11 @@ def beta(a: float) -> float:
     x = a / math.sqrt(RADIUS * THICKNESS)
     bulging = math.sqrt(1 + 0.52 * x + 1.29 * x * x - 0.074 * x**3)
     return bulging / math.sqrt(math.cos(math.pi * a / 5080))
+
+
+def bulged(a: float) -> float:
+    x = a / math.sqrt(RADIUS * THICKNESS)
+    return math.sqrt(1 + 0.52 * x + 1.29 * x * x - 0.074 * x**3)
 
 
 def critical(stress: float) -> float:
@@ -227,6 +233,17 @@ def test_second_growth_law_is_shown_beside_the_first():
     second = replace(CRACK["growth_law"], coefficient=2e-13)
     lines = [li for li in found(second_growth_law=second).note if li.symbol == "N′"]
     assert len(lines) == 2
+
+
+def test_the_short_crack_line_touches_the_bulged_fracture_curve():
+    # Where the line ends it meets fracture at 2/3 of yield, whatever bulging does.
+    length = brentq(
+        lambda a: (KC / bulged(a)) ** 2 * 9 / (2 * math.pi * FTY**2) - 2 * a, 1, 80
+    )
+    just = found(crack_length=recorded(2 * length * 0.999999, "mm"))
+    assert just.residual_strength_mpa == pytest.approx(2 / 3 * FTY, rel=1e-3)
+    each = {m.mechanism: m.strength for m in just.margins}
+    assert each["fracture"] == pytest.approx(each["short-crack line"], rel=1e-3)
 
 
 def test_the_note_can_be_followed_line_by_line():
