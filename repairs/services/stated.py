@@ -157,7 +157,7 @@ def input_take_back(
     assert subject is not None, "a constraint requires one"
     if not reason.strip():
         raise ValidationError({"reason": NO_REASON})
-    with _writing(subject, "input_take_back", actor, at, reason.strip()) as w:
+    with _writing(subject, "input_withdraw", actor, at, reason.strip()) as w:
         w.locked(type(subject).objects.all(), pk=subject.pk)
         if not stated_inputs(subject).filter(pk=stated.pk).exists():
             raise Refused([GONE])
