@@ -16,9 +16,10 @@ from fleet.models.people import Operator
 from fleet.scoping import ScopedQuerySet
 
 DONE = {
-    "add": "added", "answer": "answered", "assess": "assessed",
+    "add": "added", "adopt": "adopted", "answer": "answered", "assess": "assessed",
     "cancel": "cancelled", "change": "changed", "close": "closed",
-    "compare": "compared", "correct": "corrected", "create": "created",
+    "compare": "compared", "confirm": "confirmed", "correct": "corrected",
+    "create": "created",
     "decide": "decided", "determine": "determined", "do": "done",
     "draft": "drafted", "edit": "edited", "find": "looked for",
     "embody": "embodied", "end": "ended",
@@ -31,7 +32,7 @@ DONE = {
     "rekey": "keyed again", "relocate": "located anew", "remove": "removed",
     "renew": "renewed", "reset": "reset",
     "restore": "restored", "send": "sent", "set": "set", "sign": "signed",
-    "start": "begun",
+    "start": "begun", "state": "stated",
     "review": "reviewed", "revise": "revised", "withdraw": "withdrawn",
     "supplement": "supplemented", "void": "voided",
 }  # fmt: skip

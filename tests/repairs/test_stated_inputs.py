@@ -153,7 +153,7 @@ def test_a_later_statement_replaces_and_a_taking_back_ends_it(world, finding):
         ("0.063 in (1.6002 mm)", False),
     ]
     assert [line.row for line in stated_lines(finding)] == [third]
-    entry = HistoryEntry.objects.get(action="input_take_back")
+    entry = HistoryEntry.objects.get(action="input_withdraw")
     assert entry.reason == "wrong sheet"
 
 
