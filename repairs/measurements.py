@@ -111,6 +111,8 @@ DIMENSIONS: dict[str, tuple[Dimension, ...]] = {
         _length("depth", "depth from the edge", needed=True),
         _length("length", "length along the edge", needed=True),
         _word("at", "lies at", "edge", "hole"),
+        _length("strip_width", "width of the strip with the edge"),
+        _length("blend_depth", "depth of the blend from the edge"),
         _length("remaining_edge_distance", "edge distance left after the blend"),
         _length("hole_diameter", "diameter of the hole beside it"),
         *AFTER_REWORK,

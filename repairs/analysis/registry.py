@@ -10,6 +10,7 @@ from repairs.analysis.inputs import Inputs
 from repairs.analysis.methods import (
     blend_out,
     circumferential_crack,
+    corrosion_found,
     edge_crack,
     flat_crack,
     hole,
@@ -19,10 +20,16 @@ from repairs.analysis.methods import (
     member_failed,
     member_hole,
     member_section,
+    nick_blended,
+    nick_found,
+    scratch_found,
+    screening,
     skew_crack,
     skin_crack,
     stiffened_crack,
     stop_drilled,
+    thinned_crack,
+    wear,
 )
 from repairs.analysis.methods.member_common import MEMBERS
 from repairs.analysis.note import Note
@@ -70,20 +77,26 @@ class Coverage:
 
     Every group must be answered; inside a group the methods stand in order of
     preference. `when` narrows by words of the record: a word that is not recorded does
-    not narrow.
+    not narrow; one that is `stated` must be recorded.
     """
 
     damage: tuple[str, ...]
     groups: tuple[tuple[str, ...], ...]
     when: tuple[tuple[str, tuple[str, ...]], ...] = ()
     repairs: tuple[str, ...] = ()
+    stated: tuple[tuple[str, tuple[str, ...]], ...] = ()
 
     def holds(self, inputs: Inputs) -> bool:
         """Return whether the record asks for these methods."""
         repair, damage = inputs.word("repair_kind"), inputs.word("damage_type")
         asked = repair in self.repairs if repair else damage in self.damage
-        return asked and all(
-            inputs.word(name) in (None, "unknown", *words) for name, words in self.when
+        return (
+            asked
+            and all(inputs.word(name) in words for name, words in self.stated)
+            and all(
+                inputs.word(name) in (None, "unknown", *words)
+                for name, words in self.when
+            )
         )
 
 
@@ -131,7 +144,33 @@ METHODS: dict[str, Method] = {
         ),
         Method("edge-crack", 1, "Crack from an edge", edge_crack),
         Method("stop-drilled-crack", 1, "Stop-drilled crack", stop_drilled),
-        Method("corrosion-blend-out", 1, "Corrosion blended out", blend_out),
+        Method("corrosion-blend-out", 2, "Damage blended out of skin", blend_out),
+        Method(
+            "corrosion-as-found",
+            1,
+            "Corrosion of skin as found, pits as one flaw",
+            corrosion_found,
+            ("One face is corroded; both faces at one spot need an engineer.",),
+        ),
+        Method(
+            "scratch-as-found",
+            1,
+            "Scratch or gouge in skin as found",
+            scratch_found,
+        ),
+        Method("nick-as-found", 1, "Nick in a sheet's edge as found", nick_found),
+        Method("nick-blended", 1, "Nick in a sheet's edge blended out", nick_blended),
+        Method("wear-as-found", 1, "Worn skin as found", wear),
+        Method("crack-in-corroded-skin", 1, "Crack in corroded skin", thinned_crack),
+        Method("dent-screening", 1, "Dent, screened", screening.DENT),
+        Method("crease-screening", 1, "Crease, screened", screening.CREASE),
+        Method(
+            "bird-strike-screening", 1, "Bird strike, screened", screening.BIRD_STRIKE
+        ),
+        Method(
+            "lightning-screening", 1, "Lightning on metal, screened", screening.MELTED
+        ),
+        Method("heat-screening", 1, "Heat on metal, screened", screening.HEATED),
         Method("open-or-trimmed-hole", 2, "Open or trimmed hole", hole),
         Method("loaded-fastener-hole", 1, "Loaded fastener hole", loaded_hole),
         Method("row-of-cracked-holes", 1, "Row of cracked holes", hole_row),
@@ -143,11 +182,14 @@ METHODS: dict[str, Method] = {
 }
 
 COVERAGE_KEY = "coverage"
-COVERAGE_VERSION = 2
+COVERAGE_VERSION = 3
 """Goes up whenever a damage asks for other methods than before."""
 PLAIN_ITEMS = ("skin", "fairing", "other")
 AWAY_FROM_EDGES = ("skin", "scratch", "dent", "corrosion_pit", "weld", "other")
 OF_SKIN = ("element", ("skin",))
+GONE = ("damage_removed", ("yes",))
+STILL_THERE = ("damage_removed", ("no",))
+ROUND_BLENDS = ("corrosion", "scratch", "gouge", "wear", "lightning", "heat")
 COVERAGE: tuple[Coverage, ...] = (
     Coverage(
         ("crack",),
@@ -194,11 +236,38 @@ COVERAGE: tuple[Coverage, ...] = (
         (OF_SKIN,),
     ),
     Coverage(
-        ("corrosion", "scratch", "gouge", "nick", "wear"),
+        ("crack",),
+        (("crack-in-corroded-skin",),),
+        (OF_SKIN, ("crack_origin", ("corrosion_pit",))),
+    ),
+    Coverage(
+        ("corrosion", "scratch", "gouge", "wear"),
         (("corrosion-blend-out",),),
         (OF_SKIN,),
+        stated=(GONE,),
+    ),
+    Coverage(("nick",), (("nick-blended",),), (OF_SKIN,), stated=(GONE,)),
+    Coverage(("corrosion",), (("corrosion-as-found",),), (OF_SKIN, STILL_THERE)),
+    Coverage(("scratch", "gouge"), (("scratch-as-found",),), (OF_SKIN, STILL_THERE)),
+    Coverage(("nick",), (("nick-as-found",),), (OF_SKIN, STILL_THERE)),
+    Coverage(("wear",), (("wear-as-found",),), (OF_SKIN, STILL_THERE)),
+    Coverage(
+        (),
+        (("corrosion-blend-out",),),
+        (OF_SKIN, ("damage_type", ROUND_BLENDS)),
         repairs=("blend",),
     ),
+    Coverage(
+        (),
+        (("nick-blended",),),
+        (OF_SKIN, ("damage_type", ("nick",))),
+        repairs=("blend",),
+    ),
+    Coverage(("dent",), (("dent-screening",),), (OF_SKIN,)),
+    Coverage(("crease",), (("crease-screening",),), (OF_SKIN,)),
+    Coverage(("bird_strike",), (("bird-strike-screening",),), (OF_SKIN,)),
+    Coverage(("lightning",), (("lightning-screening",),), (OF_SKIN,)),
+    Coverage(("heat",), (("heat-screening",),), (OF_SKIN,)),
     Coverage(
         ("crack", "hole", "corrosion", "scratch", "gouge", "nick", "wear"),
         (

@@ -27,7 +27,9 @@ LENGTHS = {
     "fastener_distance": "fastener_distance_mm",
     "damage_edge_distance": "edge_distance_mm",
     "remaining_thickness": "remaining_thickness_mm",
+    "remaining_edge_distance": "remaining_edge_distance_mm",
     "blend_length": "blend_length_mm",
+    "blend_depth": "blend_depth_mm",
 }
 UNCERTAINTIES = {
     "crack_length_uncertainty": "length_mm",
@@ -51,6 +53,8 @@ WORDS = {
     "fasteners_pulled": "fasteners_pulled",
     "material_removed": "material_removed",
     "corrosion_type": "corrosion_type",
+    "cause_removed": "cause_removed",
+    "penetrated": "penetrated",
     "damage_removed": "damage_removed",
     "hole_load": "hole_load",
     "both_sides": "both_sides",

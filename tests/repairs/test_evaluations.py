@@ -216,10 +216,14 @@ def test_a_lap_joint_hole_crack_is_refused_until_its_load_transfer_is_stated(wor
     assert "Bearing" in row.barred_reason
 
 
-def test_a_dent_has_no_method(world):
+def test_a_dent_is_screened_and_has_no_number(world):
     row = evaluated(world, found(world))
-    assert (row.outcome, row.method, row.method_version) == ("not_covered", "", 0)
-    assert "Needs an engineer" in json.loads(row.outputs)["warnings"][0]
+    assert (row.outcome, row.method) == ("not_covered", "dent-screening")
+    outputs = json.loads(row.outputs)
+    assert "Needs an engineer" in outputs["warnings"][0]
+    asked = {test["test"] for test in json.loads(row.applicability)}
+    assert "dent is creased" in asked
+    assert row.life_cycles is None
 
 
 BLEND = (
@@ -264,6 +268,23 @@ def test_corrosion_blended_out_has_threshold_and_repeat_and_is_barred(world):
 def test_corrosion_that_nobody_removed_is_incomplete(world):
     row = evaluated(world, cracked(world, damage_type="corrosion", typed=BLEND))
     assert row.outcome == "missing_input"
+    missing = {one["name"] for one in json.loads(row.outputs)["missing"]}
+    assert {"corrosion_type", "damage_depth_uncertainty"} <= missing
+
+
+def test_corrosion_as_found_has_lives_and_no_interval(world):
+    typed = (
+        Typed("length_mm", "0.1 in"),
+        Typed("width_mm", "0.1 in"),
+        Typed("depth_mm", "0.20 ± 0.05 mm"),
+        Typed("corrosion_type", "pitting"),
+    )
+    row = evaluated(world, cracked(world, damage_type="corrosion", typed=typed))
+    assert row.outcome == "computed", json.loads(row.outputs)
+    assert row.method == "corrosion-as-found"
+    assert row.use == "found_damage"
+    assert row.life_cycles > 0
+    assert row.threshold_cycles is row.repeat_cycles is None
 
 
 def test_without_a_detectable_size_there_is_no_repeat(world):

@@ -77,6 +77,10 @@ class Section:
         """Thickness the flaw lies in: what is left and the flaw's own depth [mm]."""
         return self.left + self.flaw
 
+    def with_flaw(self, flaw: float) -> Section:
+        """Return the same sound thickness with a shallower flaw in it [mm]."""
+        return replace(self, left=self.sound - flaw, flaw=flaw)
+
 
 def needed(inputs: Inputs) -> tuple[str, ...]:
     """Return what a clad panel needs more."""
@@ -92,7 +96,7 @@ def blended_section(inputs: Inputs, note: Note) -> Section:
     gauge = note.given(
         "u", "uncertainty of the gauge", inputs.number("gauge_uncertainty")
     )
-    added = gauge + _earlier(inputs, note)
+    added = gauge + earlier_depth(inputs, note)
     given = inputs.maybe("blend_depth")
     if given is not None:
         added += note.given("d", "depth of this blend", given)
@@ -119,7 +123,7 @@ def found_section(inputs: Inputs, note: Note) -> Section:
     flaw += note.given(
         "u_d", "its uncertainty", inputs.number("damage_depth_uncertainty")
     )
-    earlier = _earlier(inputs, note)
+    earlier = earlier_depth(inputs, note)
     measured, gauge = (
         inputs.maybe(name) for name in ("remaining_thickness", "gauge_uncertainty")
     )
@@ -139,7 +143,8 @@ def found_section(inputs: Inputs, note: Note) -> Section:
     return _left(inputs, note, nominal, flaw + earlier, flaw)
 
 
-def _earlier(inputs: Inputs, note: Note) -> float:
+def earlier_depth(inputs: Inputs, note: Note) -> float:
+    """Write down and return what earlier blends at the location took [mm]."""
     return note.given(
         "d_e", "depth of earlier blends here", inputs.number("earlier_depth")
     )
