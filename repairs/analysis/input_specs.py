@@ -10,7 +10,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 from enum import StrEnum
 
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import GrowthLaw
 from repairs.analysis.inspection.known import Detection
 from repairs.analysis.loads import shell as loads
 from repairs.analysis.scatter.factors import FatiguePolicy
@@ -58,6 +58,7 @@ class Where(StrEnum):
     OPERATOR = "as a policy of the operator"
     EARLIER = "on the earlier repairs here"
     GEOMETRY = "by placing the finding on a published geometry"
+    PERIOD = "on the aircraft, in the period of its operator"
     EVALUATION = "by the evaluation"
     ASKED = "when the evaluation is made"
 
@@ -116,6 +117,7 @@ _WORDS: dict[Where, tuple[tuple[str, str], ...]] = {
         ("cause_removed", "what wears it is removed"),
         ("penetrated", "skin penetrated"),
     ),
+    Where.PERIOD: (("regime", "rules the aircraft is under"),),
     Where.EVALUATION: (("life_base", "what life counts from"),),
     Where.ASKED: (("life_used_reason", "why life already used is not counted"),),
 }
@@ -277,9 +279,9 @@ _DEFAULTS = {
 _OTHERS: tuple[InputSpec, ...] = (
     InputSpec("surroundings", "what lies round the location", Surroundings, "",
               Where.GEOMETRY),
-    InputSpec("spectrum", "load spectrum", RecordedSpectrum, "", Where.PANEL),
-    InputSpec("growth_law", "crack growth law", WalkerLaw, "", Where.MATERIAL),
-    InputSpec("second_growth_law", "second growth law", WalkerLaw, "", Where.MATERIAL),
+    InputSpec("spectrum", "load spectrum, in place of one cycle", RecordedSpectrum, "", Where.PANEL),
+    InputSpec("growth_law", "crack growth law", GrowthLaw, "", Where.MATERIAL),
+    InputSpec("second_growth_law", "second growth law", GrowthLaw, "", Where.MATERIAL),
     InputSpec("stress_life", "stress-life curves", StressLifeFamily, "",
               Where.MATERIAL),
     InputSpec("stress_life_policy", "scatter factor on mean stress-life",

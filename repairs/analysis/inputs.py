@@ -6,7 +6,6 @@ There is no default of a load, a scatter factor or a detectable size.
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import asdict
 
 from repairs.analysis.errors import (
     UNKNOWN_INPUT,
@@ -14,9 +13,10 @@ from repairs.analysis.errors import (
     WRONG_UNIT,
     InputError,
 )
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.input_specs import SPECS, TOUGHNESS_UNIT, InputSpec
 from repairs.analysis.inspection.known import Detection
+from repairs.analysis.plain import as_plain
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.stress_life.curves import StressLifeFamily
@@ -29,7 +29,7 @@ Value = (
     Sourced
     | Stated
     | StressLifeFamily
-    | WalkerLaw
+    | RecordedLaw
     | FatiguePolicy
     | Surroundings
     | Detection
@@ -84,10 +84,10 @@ class Inputs:
         value = self._values.get(name)
         return value.value if isinstance(value, Stated) else None
 
-    def law(self, name: str = "growth_law") -> WalkerLaw | None:
+    def law(self, name: str = "growth_law") -> RecordedLaw | None:
         """Return a growth law, or None."""
         value = self._values.get(name)
-        return value if isinstance(value, WalkerLaw) else None
+        return value if isinstance(value, RecordedLaw) else None
 
     def family(self) -> StressLifeFamily | None:
         """Return the stress-life curves, or None."""
@@ -129,4 +129,7 @@ class Inputs:
 
 def _plain(value: Value) -> dict[str, object]:
     """A value's parts; a spectrum gives its digest and choices, not its cycles."""
-    return value.as_data() if isinstance(value, RecordedSpectrum) else asdict(value)
+    if isinstance(value, RecordedSpectrum):
+        return value.as_data()
+    plain: dict[str, object] = as_plain(value)
+    return plain

@@ -43,6 +43,7 @@ from repairs.services.evaluation_type import (
     policies,
     pressures,
     remaining_flaw,
+    rules,
 )
 
 ADOPTABLE = (
@@ -76,6 +77,7 @@ def gather(
         skin_inputs(found, subject, skin, operator)
         less_blended(found)
     pressures(found, subject)
+    rules(found, subject, as_of)
     for name, row in _adopted(operator).items():
         if name in ADOPTABLE:
             found.put(name, adopted_number(row, SPECS[name].unit), row)
@@ -119,8 +121,8 @@ def _stated(found: Gathered, subject: Subject) -> set[str]:
             found.put(row.name, Stated(row.word, source), row)
         elif row.value is not None:
             found.number(row.name, row.value, source, row)
-        elif row.spectrum is not None:
-            spectrum_inputs(found, row.spectrum, row, stated=source)
+        elif row.spectrum_id is not None:
+            spectrum_inputs(found, row.spectrum_id, row, stated=source)
             names.update(CYCLE)
     if LARGEST in names and SPECTRUM not in names:
         found.values.pop(SPECTRUM, None)

@@ -76,8 +76,7 @@ def material_inputs(
     for name, law in zip(
         ("growth_law", "second_growth_law"), _laws(rows), strict=False
     ):
-        if isinstance(law, WalkerLaw):
-            yield name, law, material
+        yield name, law, material
     holder, curves = _curves_of(material, rows)
     if curves:
         family = StressLifeFamily(

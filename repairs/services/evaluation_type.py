@@ -41,6 +41,15 @@ def pressures(found: Gathered, subject: Subject) -> None:
     found.number("ceiling", made.ceiling_ft, source)
 
 
+def rules(found: Gathered, subject: Subject, as_of: dt.date) -> None:
+    """The rules that the aircraft is under on a day, by the period of its operator."""
+    held = subject.aircraft.periods.select_related("operator")
+    period = held.filter(from_on__lte=as_of).order_by("from_on").last()
+    if period is not None and (period.to_on is None or as_of <= period.to_on):
+        source = f"period of {period.operator} from {period.from_on}"
+        found.word("regime", period.regime, source)
+
+
 def policies(
     found: Gathered, subject: Subject, operator: Operator, as_of: dt.date
 ) -> None:

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import datetime as dt
+
 import pytest
 
 from fleet.models import Material, MaterialProperty
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import FormanLaw, WalkerLaw
 from repairs.analysis.inputs import Value
 from repairs.analysis.types import INCH, KSI, Grade, Sourced, Stated, Use
 from repairs.measured import Hole, Typed
@@ -160,6 +162,26 @@ def test_walker_goes_before_paris_whatever_their_ranks(world):
     assert (second.exponent, second.gamma) == (3.0, 1.0)
 
 
+def test_formans_law_is_the_second_beside_one_of_walker_and_the_first_alone(world):
+    material = Material.objects.create(name="made", temper="T1", form="sheet")
+    for name, value in (
+        ("c_mm_mpa_root_mm", 1e-9), ("m", 2.7), ("kc_mpa_root_mm", 2250.0), ("rank", 1)
+    ):  # fmt: skip
+        row_of(material, f"forman_f_{name}", value, basis="fit")
+    alone = of_material(world, material, 1.0)
+    assert isinstance(alone["growth_law"], FormanLaw)
+    assert "second_growth_law" not in alone
+    for name, value in (
+        ("c_mm_mpa_root_mm", 1e-13), ("m", 3.2), ("gamma", 0.6), ("rank", 5)
+    ):  # fmt: skip
+        row_of(material, f"walker_w_{name}", value, basis="fit")
+    both = of_material(world, material, 1.0)
+    assert isinstance(both["growth_law"], WalkerLaw)
+    second = both["second_growth_law"]
+    assert isinstance(second, FormanLaw)
+    assert (second.toughness, second.exponent) == (2250.0, 2.7)
+
+
 # -- measurements --------------------------------------------------------------------
 
 AT_HOLES = (
@@ -244,3 +266,17 @@ def test_a_crack_in_blended_skin_goes_through_what_is_left():
     assert thickness(damage_type=crack, earlier_depth=blended) == pytest.approx(1.1)
     assert thickness(damage_type=dent, earlier_depth=blended) == 1.4
     assert thickness(damage_type=crack) is None
+
+
+# -- the aircraft's rules ------------------------------------------------------------
+
+
+def test_the_rules_are_those_of_the_period_that_holds_the_day(world):
+    finding = cracked(world)
+    period = finding.aircraft.periods.get()
+    regime = gathered(finding)["regime"]
+    assert isinstance(regime, Stated)
+    assert regime.value == period.regime
+    period.to_on = TODAY - dt.timedelta(days=1)
+    period.save()
+    assert "regime" not in gathered(finding)

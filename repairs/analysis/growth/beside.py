@@ -11,7 +11,7 @@ from dataclasses import dataclass
 
 from repairs.analysis.errors import AnalysisError
 from repairs.analysis.growth.by_cycle import Following, SequenceGrowth, life_by_cycle
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.growth.plastic_zone import StressState
 from repairs.analysis.growth.retardation import Retardation, Wheeler, Willenborg
 from repairs.analysis.growth.separable import Factor
@@ -59,7 +59,7 @@ class Through:
 
     factor: Factor
     flown: Flown
-    law: WalkerLaw
+    law: RecordedLaw
     start: float
     end: float
     flights: float

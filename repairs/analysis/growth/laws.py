@@ -15,7 +15,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from typing import Protocol
+from typing import Protocol, runtime_checkable
 
 import numpy as np
 from numpy.typing import NDArray
@@ -46,6 +46,7 @@ VARIABLE_AMPLITUDE = (
 )
 
 
+@runtime_checkable
 class GrowthLaw(Protocol):
     """Growth rate of a range of K and a stress ratio, with the constants' source."""
 

@@ -15,7 +15,7 @@ from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth import beside
 from repairs.analysis.growth.blocks import EQUIVALENT
 from repairs.analysis.growth.by_cycle import End, SequenceGrowth
-from repairs.analysis.growth.laws import StressCycle, WalkerLaw
+from repairs.analysis.growth.laws import FormanLaw, RecordedLaw, StressCycle
 from repairs.analysis.growth.separable import (
     SEPARABLE,
     GrowthTable,
@@ -44,6 +44,9 @@ BEYOND = "not lost where the method ends, at {what} ({length:.1f} mm)"
 LOST_ALREADY = "lost already at the size evaluated"
 PER_FLIGHT = "per flight"
 RETARDED = "until {name} strength is lost, with retardation"
+WALKER = "da/dN = C [ΔK / (1 − R)^(1 − γ)]^m, ΔK in MPa√m"
+FORMAN = "da/dN = C ΔK^m / [(1 − R) Kc − ΔK], ΔK in MPa√m"
+NO_SECOND = "The other recorded growth law gives no life to compare: {why}"
 OTHER_LAW = "the other recorded growth law, for comparison"
 RESIDUAL, ULTIMATE = "residual", "static ultimate"
 
@@ -62,13 +65,13 @@ class CrackPath:
     factor: Callable[[float], float]
     strength: Callable[[float], Strength]
     loads: PanelLoads
-    law: WalkerLaw
+    law: RecordedLaw
     largest: float
     end_of_method: str
     section: str = "gross"
     smallest: float = 0.0
     kinks: tuple[float, ...] = ()
-    _tables: dict[WalkerLaw, GrowthTable] = field(
+    _tables: dict[RecordedLaw, GrowthTable] = field(
         init=False, default_factory=dict, compare=False, repr=False
     )
 
@@ -81,11 +84,11 @@ class CrackPath:
             max(start, self.largest),
         )
 
-    def growth_cycle(self, law: WalkerLaw | None = None) -> StressCycle:
+    def growth_cycle(self, law: RecordedLaw | None = None) -> StressCycle:
         """Return the cycle of a flight that a crack here grows by [MPa]."""
         return self.loads.flown.growth_cycle(law or self.law)
 
-    def cycles(self, start: float, end: float, law: WalkerLaw | None = None) -> float:
+    def cycles(self, start: float, end: float, law: RecordedLaw | None = None) -> float:
         """Return cycles of growth from one length to another."""
         if start == end:
             return 0.0
@@ -95,7 +98,7 @@ class CrackPath:
         """Return (cycles, length) from one length to another."""
         return history_of(self._table(start, end, self.law), start, end)
 
-    def _table(self, low: float, high: float, law: WalkerLaw) -> GrowthTable:
+    def _table(self, low: float, high: float, law: RecordedLaw) -> GrowthTable:
         """Return a growth table of these lengths, one for all lives where it can be.
 
         A law may end before the method does, as Forman's: then as far as is asked.
@@ -132,17 +135,18 @@ class Grown:
     """The same with retardation, for comparison."""
 
 
-def write_law(note: Note, law: WalkerLaw) -> None:
+def write_law(note: Note, law: RecordedLaw) -> None:
     """Write a growth law's constants down in the unit they are usually read in."""
-    note.step(
-        "C",
-        "da/dN = C [ΔK / (1 − R)^(1 − γ)]^m, ΔK in MPa√m",
-        f"m = {law.exponent:g}, γ = {law.gamma:g}"
-        + (f"; {law.remark}" if law.remark else ""),
-        law.coefficient * ROOT_1000**law.exponent,
-        "mm/cycle",
-        law.reference,
-    )
+    if isinstance(law, FormanLaw):
+        form, power = FORMAN, law.exponent - 1
+        words = f"m = {law.exponent:g}, Kc of the fit = {law.toughness / ROOT_1000:g}"
+    else:
+        form, power = WALKER, law.exponent
+        words = f"m = {law.exponent:g}, γ = {law.gamma:g}"
+    if law.remark:
+        words += f"; {law.remark}"
+    coefficient = law.coefficient * ROOT_1000**power
+    note.step("C", form, words, coefficient, "mm/cycle", law.reference)
 
 
 def grow(
@@ -171,17 +175,7 @@ def grow(
         "mm",
     )
     write_growth(note, path, shown, cycles)
-    second = inputs.law("second_growth_law")
-    if second is not None:
-        other = path.cycles(start.length, end, second)
-        note.beside(
-            "N′",
-            OTHER_LAW,
-            f"{shown}; through crack only",
-            other,
-            "cycles",
-            second.reference,
-        )
+    write_second(inputs, note, path, (start.length, end), shown)
     retarded = None
     if start.length < end and beside.asked(inputs):
         flown, flights = path.loads.flown, cycles - start.cycles_before
@@ -190,6 +184,22 @@ def grow(
         )
         retarded = beside.grown_beside(inputs, note, through)
     return Grown(end, cycles, remark, retarded)
+
+
+def write_second(
+    inputs: Inputs, note: Note, path: CrackPath, ends: tuple[float, float], shown: str
+) -> None:
+    """Write the same growth by the other recorded law, where that law has a rate."""
+    law = inputs.law("second_growth_law")
+    if law is None:
+        return
+    try:
+        cycles = path.cycles(*ends, law)
+    except OutOfRangeError as error:
+        note.text(NO_SECOND.format(why=error))
+        return
+    words = f"{shown}; through crack only"
+    note.beside("N′", OTHER_LAW, words, cycles, "cycles", law.reference)
 
 
 def write_growth(note: Note, path: CrackPath, shown: str, cycles: float) -> None:

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from repairs.analysis.growth.blocks import CycleBlock, CycleTable, equivalent_cycle
-from repairs.analysis.growth.laws import PowerLaw, StressCycle
+from repairs.analysis.growth.laws import GrowthLaw, StressCycle
 from repairs.analysis.note import Note
 from repairs.analysis.spectra.counting import treated
 from repairs.analysis.spectra.cycles import PressureCycle
@@ -61,7 +61,7 @@ class Flown:
         cycle = StressCycle(top, self.cycle.ratio)
         return replace(self, cycle=cycle, factor=self.factor * factor)
 
-    def growth_cycle(self, law: PowerLaw) -> StressCycle:
+    def growth_cycle(self, law: GrowthLaw) -> StressCycle:
         """Return the cycle that grows a crack as much as a mean flight [MPa]."""
         if self.spectrum is None:
             return self.cycle

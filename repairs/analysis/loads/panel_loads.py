@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from repairs.analysis.errors import InputError
 from repairs.analysis.growth.laws import StressCycle
@@ -16,6 +16,9 @@ from repairs.analysis.spectra.cycles import PressureCycle
 from repairs.analysis.types import GrossStress, Sourced
 
 FEET_45000 = 45_000.0
+EUROPEAN = "EASA"
+"""Rules that ask for one factor at any altitude; others for more above 45,000 ft."""
+REGIME_UNKNOWN = "rules of the aircraft not recorded, the larger factor taken"
 RUNNING_LOAD_CASE = "recorded ultimate running load of the panel"
 ONE_DIRECTION = (
     "Hoop direction only: stresses along the section are not part of this method."
@@ -265,8 +268,14 @@ def _proof(inputs: Inputs) -> Sourced:
     adopted = inputs.maybe("proof_factor")
     if adopted:
         return adopted
-    high = inputs.number("ceiling").value > FEET_45000
-    return loads.PROOF_FACTOR_ABOVE_45000_FT if high else loads.PROOF_FACTOR_TO_45000_FT
+    if inputs.number("ceiling").value <= FEET_45000:
+        return loads.PROOF_FACTOR_TO_45000_FT
+    regime = inputs.word("regime") or ""
+    if regime.upper() == EUROPEAN:
+        return loads.PROOF_FACTOR_EUROPEAN
+    unknown = "" if regime else f"; {REGIME_UNKNOWN}"
+    larger = loads.PROOF_FACTOR_ABOVE_45000_FT
+    return replace(larger, source=larger.source + unknown)
 
 
 def _recorded(inputs: Inputs, note: Note) -> PanelLoads:

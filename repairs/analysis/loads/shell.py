@@ -42,6 +42,12 @@ PROOF_FACTOR_ABOVE_45000_FT = Sourced(
     "14 CFR 25.365(d), above 45,000 ft; from memory, unverified",
     Grade.MEMORY,
 )
+PROOF_FACTOR_EUROPEAN = Sourced(
+    1.33,
+    "-",
+    "CS 25.365(d) at amendment 28, at any altitude; read in a public quotation",
+    Grade.QUOTED,
+)
 
 RESIDUAL_WITH_FLIGHT = (
     "normal operating differential + external aerodynamic pressure, with limit flight "

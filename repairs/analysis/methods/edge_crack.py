@@ -14,7 +14,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.growth.path import CrackPath, Start, write_law
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection.flaws import FlawKind, FlawLocation, rogue_flaw
@@ -93,7 +93,7 @@ class Strip:
     yield_strength: float
     tension_strength: float
     toughness: float
-    law: WalkerLaw
+    law: RecordedLaw
 
     def factor(self, a: float) -> float:
         """Return F [-]."""

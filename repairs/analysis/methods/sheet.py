@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from repairs.analysis.errors import OutOfRangeError
-from repairs.analysis.growth.laws import WalkerLaw
+from repairs.analysis.growth.laws import RecordedLaw
 from repairs.analysis.growth.path import CrackPath, Start, write_law
 from repairs.analysis.growth.two_directions import TwoFactors, grow_part_through
 from repairs.analysis.inputs import SPECS, Inputs
@@ -56,7 +56,7 @@ class Sheet:
     width: float
     yield_strength: float
     toughness: float
-    law: WalkerLaw
+    law: RecordedLaw
     skew: float = 1.0
 
     def bulging(self, a: float) -> float:

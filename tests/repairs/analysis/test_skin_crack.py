@@ -8,12 +8,21 @@ from dataclasses import replace
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from scipy.integrate import solve_ivp
+from scipy.integrate import quad, solve_ivp
 from scipy.optimize import brentq
 
+from repairs.analysis.growth.laws import FormanLaw
 from repairs.analysis.registry import evaluate
 from repairs.analysis.surroundings import Obstacle, ObstacleKind
-from repairs.analysis.types import Grade, Outcome, Sourced, UltimateKept, Use
+from repairs.analysis.types import (
+    Grade,
+    Outcome,
+    Reference,
+    Sourced,
+    Stated,
+    UltimateKept,
+    Use,
+)
 from tests.repairs.analysis.cases import (
     CRACK,
     FTY,
@@ -227,6 +236,15 @@ def test_values_from_memory_bar_approval_until_adopted():
 def test_above_45000_ft_the_proof_factor_is_1_67():
     high = found(ceiling=recorded(51_000, "ft"))
     assert high.ultimate_mpa == pytest.approx(found().ultimate_mpa * 1.67 / 1.33)
+    line = next(line for line in high.note if line.symbol == "k_proof")
+    assert "not recorded, the larger factor taken" in line.source
+
+
+def test_the_european_proof_factor_is_the_same_at_any_altitude():
+    for rules, factor in (("EASA", 1.33), ("FAA", 1.67)):
+        regime = Stated(rules, "period of the operator")
+        high = found(ceiling=recorded(51_000, "ft"), regime=regime)
+        assert high.ultimate_mpa == pytest.approx(found().ultimate_mpa * factor / 1.33)
 
 
 def test_second_growth_law_is_shown_beside_the_first():
@@ -244,6 +262,41 @@ def test_the_short_crack_line_touches_the_bulged_fracture_curve():
     assert just.residual_strength_mpa == pytest.approx(2 / 3 * FTY, rel=1e-3)
     each = {m.mechanism: m.strength for m in just.margins}
     assert each["fracture"] == pytest.approx(each["short-crack line"], rel=1e-3)
+
+
+FORMAN = FormanLaw.from_mpa_root_metre(
+    7.13e-6, 2.70, 150.0, Reference("a fit", Grade.QUOTED)
+)
+
+
+def forman_flights(end: float) -> float:
+    """Cycles of Forman's law at R = 0 from 12 mm, integrated again in MPa√m."""
+
+    def slowness(a: float) -> float:
+        k = HOOP * beta(a) * math.sqrt(math.pi * a / 1000)
+        return (150.0 - k) / (7.13e-6 * k**2.70)
+
+    return quad(slowness, 12.0, end, epsabs=0, epsrel=1e-10)[0]
+
+
+def test_formans_law_may_stand_beside_or_alone():
+    end = critical(1.15 * HOOP)
+    beside = found(second_growth_law=FORMAN)
+    last = [line for line in beside.note if line.symbol == "N′"][-1]
+    assert last.value == pytest.approx(forman_flights(end), rel=1e-6)
+    alone = found(growth_law=FORMAN)
+    residual = next(life for life in alone.lives if "residual" in life.title)
+    assert residual.cycles == math.floor(forman_flights(end))
+    written = next(line for line in alone.note if line.symbol == "C")
+    assert written.value == pytest.approx(7.13e-6)
+    assert "Kc" in written.formula
+
+
+def test_a_second_law_that_ends_before_the_crack_does_is_told_and_stops_nothing():
+    short = replace(FORMAN, toughness=HOOP)
+    result = found(second_growth_law=short)
+    assert result.outcome is Outcome.COMPUTED
+    assert any("no life to compare" in line.formula for line in result.note)
 
 
 def test_the_note_can_be_followed_line_by_line():
