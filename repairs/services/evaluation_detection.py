@@ -49,19 +49,18 @@ def detection_of(size: DetectableSize) -> Detection | None:
 
 
 def _curve(size: DetectableSize) -> DetectionCurve:
-    assert size.half_found_mm and size.curve_deviation, "the database keeps them whole"
-    assert size.smallest_tried_mm and size.largest_tried_mm and size.flaws_tried
+    """The database keeps a curve whole: all of its columns, or none."""
     study = Study(
         TECHNIQUES[size.method],
         SizeMeaning.BEYOND_COVER,
-        size.smallest_tried_mm,
-        size.largest_tried_mm,
-        size.flaws_tried,
+        size.smallest_tried_mm or 0.0,
+        size.largest_tried_mm or 0.0,
+        size.flaws_tried or 0,
         size.source,
         grade_of(size.grade),
     )
     make = CURVES[size.curve_link or "normal"]
-    return make(math.log(size.half_found_mm), size.curve_deviation, study)
+    return make(math.log(size.half_found_mm or 0.0), size.curve_deviation or 0.0, study)
 
 
 def _share(size: DetectableSize, share: float | None) -> Sourced:

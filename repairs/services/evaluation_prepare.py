@@ -5,6 +5,7 @@ from __future__ import annotations
 import datetime as dt
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 
 from django.core.exceptions import ValidationError
 
@@ -17,6 +18,7 @@ from repairs.analysis.inputs import SPECS, Inputs, Value
 from repairs.analysis.inspection.known import Detection
 from repairs.analysis.registry import METHODS, groups_for
 from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.stress_life.curves import StressLifeFamily
 from repairs.analysis.surroundings import Surroundings
 from repairs.analysis.types import Result, Sourced, Stated, Use
@@ -27,6 +29,8 @@ from repairs.services.evaluation_gathered import Choice, Gathered
 from repairs.services.evaluation_inputs import gather
 from repairs.services.evaluation_measured import subject_words
 from repairs.services.evaluation_place import Subject
+from repairs.services.evaluation_spectrum import LARGEST, SPECTRUM
+from repairs.services.evaluation_texts import texts_of
 
 OTHER_TYPE = (
     "{size} is a detectable size of another aircraft type; choose one of {type}."
@@ -34,7 +38,7 @@ OTHER_TYPE = (
 KNOWN_BY_REWORK = "damage_removed"
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(frozen=True)
 class Prepared:
     """A calculation made and not yet kept."""
 
@@ -46,6 +50,11 @@ class Prepared:
     def result(self) -> Result:
         """What follows from all methods asked."""
         return self.assessment.result
+
+    @cached_property
+    def texts(self) -> dict[str, str]:
+        """What an evaluation would keep, made once."""
+        return texts_of(self.assessment, self.inputs)
 
 
 def default_use(subject: Subject) -> Use:
@@ -155,6 +164,8 @@ def input_lines(prepared: Prepared) -> list[InputLine]:
     if not names:
         return []
     needed, found = set(names), prepared.inputs.values
+    if LARGEST in needed and LARGEST not in found:
+        names[SPECTRUM] = None
     names |= {
         name: None
         for name, spec in SPECS.items()
@@ -183,7 +194,7 @@ def _input_line(name: str, value: Value | None, *, needed: bool) -> InputLine:
         spec.where,
         form,
         spec.words,
-        spec.may_be_stated and form != OTHER,
+        spec.may_be_stated and (form != OTHER or name == SPECTRUM),
         missing=value is None,
         needed=needed,
     )
@@ -207,5 +218,7 @@ def said(value: Value) -> tuple[str, str, str]:
     if isinstance(value, Detection):
         study = value.curve.study
         return f"half found at {value.curve.a50:.3g} mm", study.source, study.grade
+    if isinstance(value, RecordedSpectrum):
+        return value.name, value.source, value.grade.value
     law = value.reference
     return type(value).__name__.removesuffix("Law"), law.source, law.grade.value

@@ -20,7 +20,7 @@ from repairs.input_text import input_read
 from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluation_prepare import Prepared, evaluation_prepare
-from repairs.services.evaluations import outputs_of
+from repairs.services.evaluation_texts import outputs_of
 from repairs.services.stated import bounds_of
 
 WHAT_IF = "what if, not recorded"

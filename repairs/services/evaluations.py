@@ -8,13 +8,9 @@ from __future__ import annotations
 
 import datetime as dt
 import json
-import platform
 from collections.abc import Sequence
-from dataclasses import asdict
 from typing import Any
 
-import numpy
-import scipy
 from django.core.exceptions import ValidationError
 from django.db import models
 
@@ -34,7 +30,6 @@ from fleet.models import FatiguePolicy as PolicyRow
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import numbers_next
-from repairs.analysis.assessment import Answer, Assessment
 from repairs.analysis.registry import COVERAGE_KEY, COVERAGE_VERSION, METHODS
 from repairs.analysis.types import Outcome, Result, Use
 from repairs.models import (
@@ -133,7 +128,7 @@ def evaluations_keep(
 
 def gives_the_same(evaluation: Evaluation, prepared: Prepared) -> bool:
     """Whether a calculation made again says, to the bit, what the kept one says."""
-    again = _texts(prepared)
+    again = prepared.texts
     same = all(getattr(evaluation, name) == text for name, text in again.items())
     used = [_digest_of(row) for row in used_rows(prepared.gathered)]
     return (
@@ -186,7 +181,7 @@ def _digest_of(row: UsedRow) -> str:
 def _row(
     subject: Subject, number: str, before: Evaluation | None, prepared: Prepared
 ) -> Evaluation:
-    result, texts = prepared.result, _texts(prepared)
+    result, texts = prepared.result, prepared.texts
     held = "finding" if isinstance(subject, Finding) else "repair"
     return Evaluation(
         operator=subject.operator,
@@ -207,18 +202,6 @@ def _row(
         **texts,
         **(_numbers(result) if result.outcome is Outcome.COMPUTED else {}),
     )
-
-
-def _texts(prepared: Prepared) -> dict[str, str]:
-    """The frozen texts of an evaluation."""
-    result = prepared.result
-    return {
-        "inputs": canonical(prepared.inputs.as_data()),
-        "outputs": canonical(outputs_of(prepared.assessment)),
-        "applicability": canonical([asdict(test) for test in result.applicability]),
-        "note": canonical([asdict(line) for line in result.note]),
-        "libraries": canonical(_libraries()),
-    }
 
 
 def _numbers(result: Result) -> dict[str, object]:
@@ -243,49 +226,4 @@ def _numbers(result: Result) -> dict[str, object]:
         "uncapped_threshold_cycles": threshold.uncapped if threshold else None,
         "uncapped_repeat_cycles": repeat.uncapped if repeat else None,
         "cap": ", ".join(dict.fromkeys(capped)),
-    }
-
-
-def outputs_of(assessment: Assessment) -> dict[str, object]:
-    """All the result says but note and tests, which have texts of their own, and what
-    each method asked said for itself."""
-    result = assessment.result
-    said = asdict(result)
-    for name in ("applicability", "note"):
-        del said[name]
-    return said | {
-        "threshold_cycles": result.threshold_cycles,
-        "repeat_cycles": result.repeat_cycles,
-        "asked": [_asked(answer) for answer in assessment.answers],
-    }
-
-
-def _asked(answer: Answer) -> dict[str, object]:
-    """One method's answer, short: the long parts stand in the whole."""
-    result = answer.result
-    return {
-        "method": result.method,
-        "version": result.version,
-        "title": result.title,
-        "part": answer.part.value,
-        "outcome": result.outcome.value,
-        "governing": result.governing,
-        "margin_residual": result.margin_residual,
-        "margin_ultimate": result.margin_ultimate,
-        "life_cycles": result.life_cycles,
-        "life_after_factor_cycles": result.life_after_factor_cycles,
-        "threshold_cycles": result.threshold_cycles,
-        "repeat_cycles": result.repeat_cycles,
-        "missing": [asdict(item) for item in result.missing],
-        "applicability": [asdict(test) for test in result.applicability],
-        "warnings": list(result.warnings),
-        "assumptions": list(result.assumptions),
-    }
-
-
-def _libraries() -> dict[str, str]:
-    return {
-        "python": platform.python_version(),
-        "numpy": numpy.__version__,
-        "scipy": scipy.__version__,
     }
