@@ -7,6 +7,8 @@ from typing import Any
 from django import forms
 
 from repairs.input_text import units_offered
+from repairs.selectors.spectra import spectra_in_force
+from repairs.services.evaluation_spectrum import SPECTRUM
 from repairs.services.stated import Document, spec_of
 
 ENTERED = "With its unit: {offered}. An uncertainty goes behind ±."
@@ -24,7 +26,11 @@ class StateForm(forms.Form):
     def __init__(self, *args: Any, name: str, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
         spec = spec_of(name)
-        if spec.words:
+        if name == SPECTRUM:
+            choices = [("", CHOOSE)]
+            choices += [(str(row.pk), str(row)) for row in spectra_in_force()]
+            self.fields["entered"] = forms.ChoiceField(choices=choices, label=name)
+        elif spec.words:
             choices = [("", CHOOSE)]
             choices += [(word, word.replace("_", " ")) for word in spec.words]
             self.fields["entered"] = forms.ChoiceField(choices=choices, label="answer")

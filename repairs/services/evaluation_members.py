@@ -20,7 +20,6 @@ OF_PANEL = frozenset(
         "load_kind",
         "cycle_max_stress",
         "cycle_ratio",
-        "spectrum",
         "limit_flight_stress",
         "ultimate_running_load",
         "thickness",

@@ -32,8 +32,8 @@ def skin_inputs(
     found.number("mean_longitudinal_stress", panel.mean_stress_mpa, loads, panel)
     if not panel.pressurised and panel.section.wrap_mm is None:
         found.number("limit_flight_stress", panel.limit_stress_mpa, loads, panel)
-    if panel.spectrum is not None:
-        spectrum_inputs(found, panel.spectrum)
+    if panel.spectrum_id is not None:
+        spectrum_inputs(found, panel.spectrum_id)
     material = fitted.material if fitted and fitted.material else panel.material
     _clad(found, panel, fitted, material)
     if material is not None and skin.thickness_mm is not None:

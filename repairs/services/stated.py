@@ -12,7 +12,7 @@ from dataclasses import dataclass
 
 from django.core.exceptions import ValidationError
 
-from fleet.models import Person, User
+from fleet.models import Person, Spectrum, User
 from fleet.refusals import Refused
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
@@ -23,8 +23,10 @@ from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.types import Sourced, Stated
 from repairs.input_text import Bounds, Read, input_read, input_write
 from repairs.models import Finding, StatedInput
+from repairs.selectors.spectra import spectra_in_force
 from repairs.selectors.stated import stated_inputs, stated_rows, stated_source
 from repairs.services.evaluation_place import Subject
+from repairs.services.evaluation_spectrum import SPECTRUM
 
 NO_PERSON = (
     "Your login has no person behind it; an administrator links one before you state "
@@ -32,6 +34,7 @@ NO_PERSON = (
 )
 NOT_STATED = "“{name}” is no input that may be stated; state one of: {names}."
 NOT_OFFERED = "“{word}” is no answer here; state one of: {words}."
+NO_SPECTRUM = "No spectrum in force is chosen; choose one of the list."
 NOTHING = "Nothing was stated; to withdraw what holds, take it back."
 GONE = "This no longer holds: it was replaced or taken back before."
 NO_REASON = "Say why it is taken back."
@@ -74,9 +77,10 @@ class Document:
 
 
 def statable() -> Iterator[InputSpec]:
-    """Inputs that may be stated: numbers, and words with their answers."""
+    """Inputs that may be stated: numbers, a spectrum, and words with their answers."""
     for spec in SPECS.values():
-        if spec.may_be_stated and (spec.kind is Sourced or spec.words):
+        number = spec.kind is Sourced or spec.name == SPECTRUM
+        if spec.may_be_stated and (number or spec.words):
             yield spec
 
 
@@ -120,12 +124,15 @@ def input_state(
     at: dt.datetime,
     on: dt.date,
 ) -> StatedInput:
-    """State a number with its unit, or one of the words; in place of what holds."""
+    """State a number with its unit, one of the words, or a spectrum by its key; in
+    place of what holds."""
     spec, text = spec_of(name), entered.strip()
     if not text:
         raise ValidationError({"entered": NOTHING})
-    value, spread, word = None, None, ""
-    if spec.kind is Stated:
+    value, spread, word, spectrum = None, None, "", None
+    if spec.name == SPECTRUM:
+        spectrum = _spectrum(text)
+    elif spec.kind is Stated:
         word = _word(spec, text)
     else:
         read = stated_read(spec, text)
@@ -138,7 +145,8 @@ def input_state(
                 value=value,
                 uncertainty=spread,
                 word=word,
-                entered="" if word else text,
+                spectrum=spectrum,
+                entered="" if word or spectrum else text,
                 document=document.reference,
                 page=document.page,
                 revision=document.revision,
@@ -208,6 +216,13 @@ def _word(spec: InputSpec, text: str) -> str:
     return word
 
 
+def _spectrum(text: str) -> Spectrum:
+    row = spectra_in_force().filter(pk=int(text) if text.isdigit() else 0).first()
+    if row is None:
+        raise ValidationError({"entered": NO_SPECTRUM})
+    return row
+
+
 def _person(actor: User) -> Person:
     if actor.person is None:
         raise Refused([NO_PERSON])
@@ -238,7 +253,9 @@ def stated_lines(subject: Subject, name: str = "") -> list[StatedLine]:
     )
     found = [
         _line(row)
-        for row in rows.select_related("person", "replaced_by").order_by("-pk")
+        for row in rows.select_related("person", "replaced_by", "spectrum").order_by(
+            "-pk"
+        )
     ]
     return found if name else [line for line in found if line.holds]
 
@@ -258,6 +275,8 @@ def _line(row: StatedInput) -> StatedLine:
 
 def _value(row: StatedInput, spec: InputSpec | None) -> str:
     """As typed, and in the calculation's unit where that is another."""
+    if row.spectrum is not None:
+        return str(row.spectrum)
     if row.value is None or spec is None:
         return row.word.replace("_", " ") or row.entered
     again = input_write(row.value, spec.unit)

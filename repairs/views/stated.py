@@ -125,7 +125,7 @@ def _initial(last: StatedInput | None) -> dict[str, Any]:
     if last is None:
         return {}
     return {
-        "entered": last.entered or last.word,
+        "entered": last.entered or last.word or last.spectrum_id,
         "document": last.document,
         "revision": last.revision,
         "page": last.page,
