@@ -16,8 +16,10 @@ from repairs.services.evaluation_prepare import choice_from, evaluation_prepare
 from repairs.services.evaluation_sensitivity import moves_of
 from repairs.services.evaluation_what_if import what_if_read
 from repairs.services.evaluations import Use, evaluation_make
+from repairs.services.stated import Document, input_state
 from tests.factories import FIXTURES, NOW, TODAY
 from tests.forms import form_on
+from tests.queries import assert_same_queries
 from tests.record_rows import World, found, world_make
 
 pytestmark = pytest.mark.django_db
@@ -196,6 +198,26 @@ def test_the_bars_hold_what_the_calculation_says(finding):
     more = prepared(finding, radius=f"{1.1 * radius!r} mm").margin_residual
     assert row.answers[0] == (f"{less:+.2f}", f"{more:+.2f}")
     assert less > more  # a larger radius is a higher hoop stress
+
+
+def test_what_is_stated_costs_no_query_a_row(client, world, finding):
+    def state(*names: str) -> None:
+        for name in names:
+            input_state(
+                subject=finding,
+                name=name,
+                entered="12 mm",
+                document=Document("STR-1", "2"),
+                actor=world.engineer,
+                at=NOW,
+                on=TODAY,
+            )
+
+    client.force_login(world.engineer)
+    state("hole_pitch")
+    page = reverse("evaluation_new", args=[finding.pk])
+    more = ("fastener_pitch", "fastener_diameter", "member_width", "member_length")
+    assert_same_queries(client, page, lambda: state(*more), ceiling=60)
 
 
 def test_the_note_prints_as_a_document(client, world, finding):
