@@ -29,6 +29,7 @@ from repairs.analysis.methods import (
     stiffened_crack,
     stop_drilled,
     thinned_crack,
+    thinned_panel,
     wear,
 )
 from repairs.analysis.methods.member_common import MEMBERS
@@ -162,6 +163,12 @@ METHODS: dict[str, Method] = {
         Method("nick-blended", 1, "Nick in a sheet's edge blended out", nick_blended),
         Method("wear-as-found", 1, "Worn skin as found", wear),
         Method("crack-in-corroded-skin", 1, "Crack in corroded skin", thinned_crack),
+        Method(
+            "thinned-panel-buckling",
+            1,
+            "Thinned skin in compression or shear",
+            thinned_panel,
+        ),
         Method("dent-screening", 1, "Dent, screened", screening.DENT),
         Method("crease-screening", 1, "Crease, screened", screening.CREASE),
         Method(
@@ -262,6 +269,13 @@ COVERAGE: tuple[Coverage, ...] = (
         (("nick-blended",),),
         (OF_SKIN, ("damage_type", ("nick",))),
         repairs=("blend",),
+    ),
+    Coverage(
+        ("corrosion", "scratch", "gouge", "wear"),
+        (("thinned-panel-buckling",),),
+        (OF_SKIN,),
+        repairs=("blend",),
+        stated=(("load_kind", ("compression", "shear")),),
     ),
     Coverage(("dent",), (("dent-screening",),), (OF_SKIN,)),
     Coverage(("crease",), (("crease-screening",),), (OF_SKIN,)),

@@ -41,9 +41,8 @@ LOSS_DEEPER = (
     "The smallest thickness measured says more is lost than the depth: it is used."
 )
 BUCKLES = (
-    "The panel carries {kind}: what buckles it is not in this calculation. A margin MS "
-    "of the whole thickness becomes (1 + MS) {share:.3f} − 1 if the loss covers the "
-    "panel. Barred from approval until that margin is shown elsewhere."
+    "The panel carries {kind}: its buckling is a method of its own. A margin MS of the "
+    "whole thickness becomes (1 + MS) {share:.3f} − 1 if the loss covers the panel."
 )
 BEARING = (
     "Bearing of a fastener in the thinned skin falls with the thickness; it and the "
@@ -247,7 +246,7 @@ def write_stability(inputs: Inputs, note: Note, share: float) -> None:
             "-",
             LOSS,
         )
-    note.warn(BUCKLES.format(kind=kind, share=share**3), bars=True)
+    note.warn(BUCKLES.format(kind=kind, share=share**3))
 
 
 def lesser(first: Result, second: Result) -> Result:
