@@ -28,6 +28,7 @@ from repairs.analysis.loads.panel_loads import PRESSURE_INPUTS
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
+    alone,
     away_from_edges,
     crack_needed,
     evaluated,
@@ -72,6 +73,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
             inputs, "crack_direction", "direction of the crack", "circumferential"
         ),
         away_from_edges(inputs),
+        alone(inputs, use),
         stiffener_whole(inputs),
         tips_clear(inputs, use, lambda a: keep, clearance_rule(inputs)),
         thin_shell(inputs),

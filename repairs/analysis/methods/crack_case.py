@@ -73,6 +73,26 @@ def crack_needed(inputs: Inputs, use: Use) -> tuple[str, ...]:
     return MEASURED + (DEPTH_INPUTS if depth_counts(inputs) else ())
 
 
+def alone(inputs: Inputs, use: Use) -> Applicability:
+    """Test that no other crack or hole acts on this one: a crack length lies between.
+
+    Several cracks need the distance between them; one needs none.
+    """
+    test, wanted = "distance to the next hole or crack", "one crack length"
+    length, count = half_length_of(inputs, use), inputs.maybe("crack_count")
+    gap = inputs.maybe("ligament")
+    if gap is None:
+        several = count is not None and count.value > 1
+        shown = f"not recorded, {count.value:g} cracks" if count and several else ""
+        return Applicability(
+            test, shown or "none recorded", wanted, None if several else True
+        )
+    if length is None:
+        return Applicability(test, f"{gap.value:.1f} mm", wanted, None)
+    limit = f"at least {2 * length:.1f} mm ({wanted})"
+    return Applicability(test, f"{gap.value:.1f} mm", limit, gap.value >= 2 * length)
+
+
 def spectrum_reach(inputs: Inputs) -> SpectrumReach | None:
     """Return how far a flight's stresses reach; None where only a spectrum says it."""
     if not all(name in inputs for name in REACH_INPUTS):

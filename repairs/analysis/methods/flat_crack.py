@@ -14,6 +14,7 @@ collapse on flow stress for a crack in the middle) and the short-crack line.
 
 from __future__ import annotations
 
+import math
 from dataclasses import replace
 
 from repairs.analysis.growth.path import CrackPath
@@ -30,6 +31,7 @@ from repairs.analysis.loads.panel_loads import PanelLoads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
+    alone,
     away_from_edges,
     crack_needed,
     evaluated,
@@ -102,6 +104,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
         apply.word_is(inputs, "element", "structural item", "skin"),
         apply.word_is(inputs, "pressurised", "panel is pressurised", "no"),
         away_from_edges(inputs),
+        alone(inputs, use),
         stiffener_whole(inputs),
         kind_is_not(inputs, ("compression",)),
         tips_clear(inputs, use, lambda a: 2 * a, LIGAMENT_RULE),
@@ -138,9 +141,9 @@ def prepared(inputs: Inputs, note: Note) -> tuple[Sheet, CrackPath]:
         sheet = replace(sheet, width=room)
     sheet = replace(sheet, skew=skew_of(inputs, note))
     reach = reach_of(inputs, lambda distance: distance / 3)
-    note.step(
-        "", f"followed to {LIGAMENT_RULE} from {reach[1]}", "", None, "", LIGAMENT
-    )
+    if math.isfinite(reach[0]):
+        words = f"followed to {LIGAMENT_RULE} from {reach[1]}"
+        note.step("", words, "", None, "", LIGAMENT)
     return sheet, sheet.path(found, inputs, None, reach=reach)
 
 

@@ -20,6 +20,7 @@ from repairs.analysis.loads.skew import SKEW_INPUTS, skew_loads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
+    alone,
     away_from_edges,
     crack_needed,
     evaluated,
@@ -85,6 +86,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
         apply.word_is(inputs, "pressurised", "panel is pressurised", "yes"),
         direction(inputs),
         away_from_edges(inputs),
+        alone(inputs, use),
         stiffener_whole(inputs),
         tips_clear(inputs, use, lambda a: keep, clearance_rule(inputs)),
         between_frames(inputs, use),

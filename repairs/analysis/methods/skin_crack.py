@@ -19,6 +19,7 @@ from repairs.analysis.loads import panel_loads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
+    alone,
     away_from_edges,
     crack_needed,
     evaluated,
@@ -79,7 +80,6 @@ def shell_tests(inputs: Inputs) -> tuple[Applicability, ...]:
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     """Run the applicability tests on what the record says."""
-    del use
     return (
         apply.word_is(inputs, "element", "structural item", "skin"),
         apply.word_is(inputs, "pressurised", "panel is pressurised", "yes"),
@@ -87,6 +87,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
             inputs, "crack_direction", "direction of the crack", "longitudinal"
         ),
         away_from_edges(inputs),
+        alone(inputs, use),
         *shell_tests(inputs),
     )
 

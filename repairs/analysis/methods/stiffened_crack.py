@@ -38,6 +38,7 @@ from repairs.analysis.methods import flat_crack
 from repairs.analysis.methods.crack_case import (
     SKIN_INPUTS,
     CrackCase,
+    alone,
     away_from_edges,
     crack_needed,
     evaluated,
@@ -53,7 +54,7 @@ from repairs.analysis.methods.skin_crack import clearance, clearance_rule, thin_
 from repairs.analysis.methods.stiffened_skin import StiffenedSkin
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
-from repairs.analysis.strength.stiffened import DIAGRAM, Arrest, StiffenedPanel
+from repairs.analysis.strength import stiffened as sp
 from repairs.analysis.surroundings import ObstacleKind
 from repairs.analysis.types import (
     ROOT_1000,
@@ -76,13 +77,16 @@ REQUIRED: tuple[str, ...] = (
     "fastener_flexibility",
     "fastener_strength",
 )
+OF_PANEL = (sp.SKIN, sp.STIFFENER, sp.FASTENER)
 FULL_BULGING = (
     "Bulging of a plain shell at every length; whole stiffeners hold the edges down, "
     "so a factor stated with its source may be lower."
 )
 NO_ARREST = "No arrest at the next stiffener is shown: {why}."
 NOT_REACHED = "the solution ends before it, or the fracture does not stop there"
-NO_CREDIT = "Arrest is written beside and gives no credit: the least strength governs."
+NO_CREDIT = (
+    "sp.Arrest is written beside and gives no credit: the least strength governs."
+)
 ARREST = "arrest at the next stiffener: {what}"
 TWO_BAY = "two-bay crack with the middle stiffener broken: {what}"
 
@@ -154,6 +158,7 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
             inputs, "crack_direction", "direction of the crack", flat_crack.STRAIGHT
         ),
         away_from_edges(inputs),
+        alone(inputs, use),
         no_break_assumed(inputs, use),
         *place_tests(inputs, use),
     )
@@ -208,7 +213,7 @@ def skin_of(inputs: Inputs, note: Note) -> StiffenedSkin:
         given("d", "fastener diameter", "fastener_diameter"),
         given("f", "flexibility of one fastener", "fastener_flexibility"),
     )
-    panel = StiffenedPanel(
+    panel = sp.StiffenedPanel(
         sheet.toughness,
         stiffened.modulus,
         stiffened.stiffener_modulus,
@@ -272,7 +277,8 @@ def write_strength(
     strength = skin.strength(a)
     for what, stress in strength.each:
         if stress is not None:
-            note.step("S", what, f"a = {a:.2f}", stress, "MPa", DIAGRAM)
+            source = sp.DIAGRAM if what in OF_PANEL else None
+            note.step("S", what, f"a = {a:.2f}", stress, "MPa", source)
     note.step(
         "S",
         f"residual strength, gross: {strength.governing}",
@@ -301,14 +307,14 @@ def write_arrest(
     return margin_table(loads, peak, title)
 
 
-def _write_stop(found: Arrest, note: Note, words: str) -> None:
+def _write_stop(found: sp.Arrest, note: Note, words: str) -> None:
     note.step(
         "S_cr",
         "least strength of the skin before the stiffener",
         f"2a = {2 * found.at:.1f}",
         found.critical,
         "MPa",
-        DIAGRAM,
+        sp.DIAGRAM,
     )
     holds = "arrested" if found.holds else "not arrested"
     note.step(
@@ -317,7 +323,7 @@ def _write_stop(found: Arrest, note: Note, words: str) -> None:
         f"2a = {2 * found.arrested_at:.1f}; {holds}",
         found.peak.stress,
         "MPa",
-        DIAGRAM,
+        sp.DIAGRAM,
     )
     note.text(NO_CREDIT)
 

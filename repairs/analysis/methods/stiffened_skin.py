@@ -32,6 +32,8 @@ from repairs.analysis.strength import stiffened as sp
 from repairs.analysis.strength.stiffened import Arrest, StiffenedPanel
 from repairs.analysis.types import GrossStress, HalfLength
 
+NO_LOAD = 1e-3
+"""Share of a bay's load below which a fastener counts as not loaded."""
 TRIALS = 80
 """Lengths at which the least strength on the way is looked for."""
 
@@ -66,9 +68,11 @@ class StiffenedSkin:
     def effect(self, a: HalfLength) -> StiffenedCrack:
         """Return the effect of the stiffeners with bulging and width on K."""
         found = self.alone(a)
+        unit = self.stiffened.pitch * self.sheet.thickness
+        force = found.fastener_area if found.fastener_area > NO_LOAD * unit else 0.0
         width = si.centre_crack_secant(a, self.sheet.width)
         factor = found.factor * self.bulging(a) * width
-        return StiffenedCrack(factor, found.stiffener, found.fastener_area)
+        return StiffenedCrack(factor, found.stiffener, force)
 
     def factor(self, a: float) -> float:
         """Return F [-]."""

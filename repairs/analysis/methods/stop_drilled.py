@@ -168,7 +168,7 @@ def start_again(
 ) -> fatigue.StressLife:
     """Return the mean life until the notch cracks again; none outside the curves."""
     a, cycle = notch.half_length, path.loads.cycle
-    raised = sheet.bulging(a) * sheet.skew
+    raised = sheet.raised(a)
     note.step(
         "Kt",
         "1 + 2 √(a_n / ρ)",
@@ -180,7 +180,7 @@ def start_again(
     net = cycle.maximum * raised / (1 - 2 * a / sheet.width)
     note.step(
         "σ_net",
-        "σ F_b / (1 − 2 a_n / W)",
+        "σ F_b F_s / (1 − 2 a_n / W)",
         f"{cycle.maximum:.2f} · {raised:.4f} / (1 − {2 * a:.2f} / {sheet.width:.0f})",
         net,
         "MPa",

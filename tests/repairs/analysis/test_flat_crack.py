@@ -163,6 +163,18 @@ def test_round_an_unpressurised_shell_bending_is_what_opens_it():
     assert line(result, "σ") == pytest.approx(1.8 * 25)
 
 
+def test_another_crack_near_by_is_another_method():
+    near = {"ligament": recorded(20.0, "mm"), "crack_count": recorded(2, "-")}
+    result = found(METHOD, FLAT, **near)
+    assert result.outcome is Outcome.NOT_COVERED
+    assert "at least 24.0 mm (one crack length)" in result.warnings[0]
+    far = found(METHOD, FLAT, **{**near, "ligament": recorded(25.0, "mm")})
+    assert far.outcome is Outcome.COMPUTED
+    unknown_gap = found(METHOD, FLAT, crack_count=recorded(2, "-"))
+    assert unknown_gap.outcome is Outcome.MISSING_INPUT
+    assert any("not recorded, 2 cracks" in w for w in unknown_gap.warnings)
+
+
 DEEP = {"crack_depth": recorded(2.0, "mm"), "crack_through": said("no")}
 THICK = {"thickness": recorded(6.0, "mm"), "crack_length": recorded(8.0, "mm")}
 
