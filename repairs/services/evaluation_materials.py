@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Iterator
+from dataclasses import replace
 
 from fleet.models import AdoptedValue, Material, MaterialProperty, Operator
 from fleet.models.materials import Grade as RecordedGrade
@@ -73,6 +74,8 @@ def material_inputs(
             yield name, adopted_number(adopted[quantity], unit), adopted[quantity]
         elif row := _strength(rows, quantity, thickness_mm):
             yield name, _number(row, unit), material
+        elif quantity in TYPICAL:
+            yield from _stiffness_of_bare(material, name, thickness_mm)
     for name, law in zip(
         ("growth_law", "second_growth_law"), _laws(rows), strict=False
     ):
@@ -83,6 +86,17 @@ def material_inputs(
             str(holder), holder.form, "clad" in holder.form, tuple(curves)
         )
         yield "stress_life", family, holder
+
+
+def _stiffness_of_bare(
+    material: Material, name: str, thickness_mm: float
+) -> Iterator[Given]:
+    """Stiffness that only the bare form has on record; its source says so."""
+    (quantity, unit), bare = STRENGTHS[name], _bare(material)
+    rows = bare.properties.order_by("pk") if bare else ()
+    if bare and (row := _strength(rows, quantity, thickness_mm)):
+        number = _number(row, unit)
+        yield name, replace(number, source=f"{bare}: {number.source}"), bare
 
 
 def adopted_values(
@@ -174,6 +188,16 @@ def _law(kind: str, law: dict[str, MaterialProperty]) -> RecordedLaw:
     return WalkerLaw(coefficient, exponent, gamma, reference, remark)
 
 
+def _bare(material: Material) -> Material | None:
+    """The newest bare form of a clad sheet."""
+    bare = material.form.replace("clad", "bare")
+    if bare == material.form:
+        return None
+    return Material.objects.filter(
+        name=material.name, temper=material.temper, form=bare
+    ).last()
+
+
 def _curves_of(
     material: Material, rows: Iterable[MaterialProperty]
 ) -> tuple[Material, list[StressLifeCurve]]:
@@ -181,12 +205,8 @@ def _curves_of(
     own = _curves(rows)
     if own:
         return material, own
-    bare = Material.objects.filter(
-        name=material.name,
-        temper=material.temper,
-        form=material.form.replace("clad", "bare"),
-    ).last()
-    if bare is None or bare.pk == material.pk:
+    bare = _bare(material)
+    if bare is None:
         return material, []
     return bare, _curves(bare.properties.order_by("pk"))
 

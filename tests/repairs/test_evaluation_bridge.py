@@ -130,6 +130,14 @@ def test_stiffness_is_typical_and_strength_is_not(world):
     assert number(values, "shear_strength").value == pytest.approx(39 * KSI)
 
 
+def test_clad_sheet_is_as_stiff_as_the_bare_sheet_in_it(world):
+    clad = of_material(world, sheet("clad sheet"), 1.4)
+    bare = of_material(world, sheet(), 1.4)
+    assert number(clad, "modulus").value == number(bare, "modulus").value
+    assert number(clad, "modulus").source.startswith("2024 T3 bare sheet")
+    assert number(clad, "yield_strength").value < number(bare, "yield_strength").value
+
+
 def test_typical_toughness_is_on_record_and_serves_no_calculation(world):
     material = sheet()
     held = material.properties.filter(quantity__startswith="toughness_")
