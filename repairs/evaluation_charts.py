@@ -14,6 +14,7 @@ GROWTH, STRESS_LIFE = "growth", "stress_life"
 MANY_CYCLES = 10_000
 MOST_INSPECTIONS = 25
 WHAT_IF = "what if:"
+NO_LIFE = "no finite life on this curve"
 THRESHOLD_WORDS = "first inspection"
 
 
@@ -106,8 +107,15 @@ def _levels(
     known = {mark["y"] for mark in besides["marks"]} if besides else set()
     for number, mark in enumerate(lines):
         if mark["y"] not in known:
-            words = f"{mark['label']} {number_text(mark['y'])} {curve['y_unit']}"  # type: ignore[index]
+            words = _level_words(curve, mark)  # type: ignore[arg-type]
             yield Level(mark["y"], f"{prefix} {words}".strip(), soft=number == 0)
+
+
+def _level_words(curve: Curve, mark: Mapping[str, Any]) -> str:
+    """A reference line in words; a stress that no stress-life curve reaches says so."""
+    if curve["key"] == STRESS_LIFE:
+        return f"{mark['label']}: {NO_LIFE}"
+    return f"{mark['label']} {number_text(mark['y'])} {curve['y_unit']}"
 
 
 def _scale(curve: Curve, *, by_powers: bool) -> tuple[float, str]:

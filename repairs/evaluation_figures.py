@@ -189,7 +189,8 @@ def test_row(test: Data) -> TestRow:
 
 
 def _figure(title: str, value: float | None, unit: str, remark: str) -> Figure:
-    return Figure(title, f"{number_text(value)} {unit}".strip(), remark, value)
+    text = UNKNOWN if value is None else f"{number_text(value)} {unit}".strip()
+    return Figure(title, text, remark, value)
 
 
 def _margin(title: str, value: float | None, remark: str) -> Figure:

@@ -22,6 +22,7 @@ from repairs.selectors.evaluations import (
 from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluation_place import Subject
 from repairs.services.evaluation_prepare import (
+    ALSO,
     InputLine,
     Prepared,
     choice_from,
@@ -99,7 +100,7 @@ def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
         "what_if": form,
         "other": _besides(answer, other),
         "refusal": refusal,
-        "lines": [_line(subject, form, line) for line in lines],
+        **_inputs(subject, form, lines),
         "stated": [
             (line, state_address(subject, line.row.name))
             for line in stated_lines(subject)
@@ -133,6 +134,19 @@ def _besides(answer: Answer, other: Prepared | None) -> Answer | None:
         warnings=tuple(text for text in found.warnings if text not in known),
         barred=tuple(text for text in found.barred if text not in known),
     )
+
+
+def _inputs(
+    subject: Subject, form: WhatIfForm, lines: Sequence[InputLine]
+) -> dict[str, Any]:
+    """What the methods need, and what else is on record: open once it is changed."""
+    rows = [_line(subject, form, line) for line in lines]
+    also = [row for row in rows if row.line.group == ALSO]
+    return {
+        "lines": [row for row in rows if row.line.group != ALSO],
+        "also": also,
+        "also_open": any(row.field is not None and row.field.value() for row in also),
+    }
 
 
 def _line(subject: Subject, form: WhatIfForm, line: InputLine) -> Line:
