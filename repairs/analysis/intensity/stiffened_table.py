@@ -36,15 +36,21 @@ class StiffenedTable:
 
     def at(self, half_length: HalfLength) -> StiffenedCrack:
         """Return the effect at a half-length inside the table [mm]."""
+        return StiffenedCrack(*(self._read(half_length, rows) for rows in self.cubics))
+
+    def factor_at(self, half_length: float) -> float:
+        """Return F alone at a half-length inside the table [mm]."""
+        return self._read(half_length, self.cubics[0])
+
+    def _read(
+        self, half_length: float, rows: tuple[tuple[float, float, float, float], ...]
+    ) -> float:
         low, high = self.lengths[0], self.lengths[-1]
         within("Half-length, mm", half_length, low, high, "the stiffened panel's table")
-        where = min(bisect.bisect_right(self.lengths, half_length), len(self.cubics[0]))
-        step = half_length - self.lengths[where - 1]
-        factor, stiffener, fastener = (
-            ((a * step + b) * step + c) * step + d
-            for a, b, c, d in (rows[where - 1] for rows in self.cubics)
-        )
-        return StiffenedCrack(factor, stiffener, fastener)
+        where = min(bisect.bisect_right(self.lengths, half_length), len(rows)) - 1
+        step = half_length - self.lengths[where]
+        a, b, c, d = rows[where]
+        return ((a * step + b) * step + c) * step + d
 
 
 def shares_of(centre: CrackCentre) -> list[float]:

@@ -84,9 +84,7 @@ FULL_BULGING = (
 )
 NO_ARREST = "No arrest at the next stiffener is shown: {why}."
 NOT_REACHED = "the solution ends before it, or the fracture does not stop there"
-NO_CREDIT = (
-    "sp.Arrest is written beside and gives no credit: the least strength governs."
-)
+NO_CREDIT = "Arrest is written beside and gives no credit: the least strength governs."
 ARREST = "arrest at the next stiffener: {what}"
 TWO_BAY = "two-bay crack with the middle stiffener broken: {what}"
 
