@@ -13,7 +13,7 @@ from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy import stats
+from scipy.special import gammaincinv
 
 from reports.lattice import Counts, Flags, Floats, Lattice
 
@@ -141,9 +141,9 @@ def garwood_interval(
     if np.any(n < 0):
         raise ValueError(f"A count cannot be negative; got {n.min():g}.")
     tail = (1.0 - confidence) / 2.0
-    upper = stats.chi2.ppf(1.0 - tail, 2.0 * n + 2.0) / 2.0
+    upper = gammaincinv(n + 1.0, 1.0 - tail)
     degrees = np.where(n > 0, 2.0 * n, 1.0)
-    lower = np.where(n > 0, stats.chi2.ppf(tail, degrees) / 2.0, 0.0)
+    lower = np.where(n > 0, gammaincinv(degrees / 2.0, tail), 0.0)
     return np.asarray(lower), np.asarray(upper)
 
 

@@ -88,8 +88,6 @@ def _planned(inputs: Inputs, result: Result) -> Result:
     policy = inputs.policy("repeat_policy")
     target = inputs.maybe("detection_target")
     judged = with_plan(result, detection, scatter_of(policy), target, note)
-    if judged is result:
-        return result
     return replace(
         judged,
         note=(*result.note, *note.lines),

@@ -25,8 +25,7 @@ from enum import StrEnum
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
-from scipy.special import expit, log_expit, log_ndtr, logit, ndtr, ndtri
-from scipy.stats import beta
+from scipy.special import betaincinv, expit, log_expit, log_ndtr, logit, ndtr, ndtri
 
 from repairs.analysis.errors import WITHOUT_SOURCE, InputError, within
 from repairs.analysis.types import Grade, Reference
@@ -284,7 +283,7 @@ def demonstrated(hits: int, trials: int, confidence: float) -> float:
     within("Confidence", confidence, 0.5, 0.9999, "a lower bound")
     if hits == 0:
         return 0.0
-    return float(beta.ppf(1 - confidence, hits, trials - hits + 1))
+    return float(betaincinv(hits, trials - hits + 1, 1 - confidence))
 
 
 def trials_needed(misses: int, probability: float, confidence: float) -> int:

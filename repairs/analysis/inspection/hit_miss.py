@@ -17,7 +17,6 @@ import math
 from dataclasses import dataclass
 
 import numpy as np
-from scipy.stats import norm
 
 from repairs.analysis.errors import AnalysisError, InputError, within
 from repairs.analysis.inspection.detection import (
@@ -210,7 +209,8 @@ def _scoring(line: Array, y: Array, b: Array, link: Link) -> tuple[Array, Array]
     """Return the step of Fisher scoring and the expected information."""
     z = line @ b
     p = np.clip(link.probability(z), 1e-15, 1 - 1e-15)
-    density = norm.pdf(z) if link is Link.NORMAL else p * (1 - p)
+    normal = np.exp(-(z**2) / 2) / math.sqrt(2 * math.pi)
+    density = normal if link is Link.NORMAL else p * (1 - p)
     weight = density**2 / (p * (1 - p))
     information = line.T @ (line * weight[:, None])
     gradient = line.T @ (density * (y - p) / (p * (1 - p)))

@@ -1,8 +1,8 @@
 """How well the plan that follows from an evaluation finds the crack it is for.
 
-The growth curve of the assumed flaw, the proposed threshold and repeat, and the recorded
-detection curve of the method give the chance that the crack is found before it is
-critical, and the longest repeat that would meet the operator's target.
+The growth curve of the assumed flaw, the proposed threshold and repeat, and the
+recorded detection curve of the method give the chance that the crack is found before it
+is critical, and the longest repeat that would meet the operator's target.
 """
 
 from __future__ import annotations
@@ -21,6 +21,7 @@ from repairs.analysis.note import Note
 from repairs.analysis.types import Plan, Result, Sourced
 
 TITLE = "How surely the plan finds the crack"
+NOT_JUDGED = "How surely the plan finds the crack is not calculated: {why}"
 MOST_LOOKS = 500
 """More looks in a life than this are no plan; the search ends there."""
 GROWTH = "growth"
@@ -29,7 +30,7 @@ GROWTH = "growth"
 
 @dataclass(frozen=True, slots=True)
 class Detection:
-    """A recorded detection curve, what hides part of the crack, how surely it is used."""
+    """A recorded detection curve, what hides part of the crack, how surely used."""
 
     title: str
     curve: DetectionCurve
@@ -60,7 +61,11 @@ def with_plan(
         detection.done,
         detection.never,
     )
-    found = write_plan(note, growth, (look,))
+    try:
+        found = write_plan(note, growth, (look,))
+    except AnalysisError as refusal:
+        note.warn(NOT_JUDGED.format(why=refusal))
+        return result
     longest = None
     if target is not None:
         asked = note.given("P", "chance of detection asked for", target)
@@ -87,7 +92,9 @@ def growth_of(result: Result, scatter: Sourced | None) -> Growth | None:
         return None
     cycles = np.array([point[0] for point in drawn.points])
     size = np.array([point[1] for point in drawn.points])
-    before = max((life.cycles or 0) - cycles[-1] for life in result.lives)
+    # A life on stress-life stands beside that of growth and is another one.
+    longer = [life.cycles - cycles[-1] for life in result.lives if life.cycles]
+    before = min((more for more in longer if more >= 0), default=0)
     if before >= 1:
         cycles = np.concatenate([[0.0], cycles + before])
         size = np.concatenate([size[:1], size])

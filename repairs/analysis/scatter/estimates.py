@@ -19,7 +19,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from scipy.optimize import brentq, minimize, minimize_scalar
-from scipy.stats import chi2
+from scipy.special import chdtri
 
 from repairs.analysis.errors import AnalysisError, within
 from repairs.analysis.scatter.factors import quantile
@@ -185,7 +185,7 @@ def lower_life(estimate: LifeEstimate, survival: float, confidence: float) -> fl
     .. [1] Meeker and Escobar; Lawless.
     """
     within("Confidence", confidence, 0.501, 0.9999, "a lower bound")
-    allowed = float(chi2.ppf(2 * confidence - 1, 1)) / 2
+    allowed = float(chdtri(1, 2 - 2 * confidence)) / 2
     standard = _standard(estimate.model, survival)
     lives, model = estimate.lives, estimate.model
     best = log_likelihood(lives, model, estimate.location, estimate.scale)
@@ -272,7 +272,7 @@ def known_shape_lower(lives: Lives, shape: float, confidence: float) -> float:
     if every.size == 0:
         raise AnalysisError(TOO_FEW.format(failures=0))
     total = float((every**shape).sum())
-    bound = float(chi2.ppf(confidence, 2 * failed + 2))
+    bound = float(chdtri(2 * failed + 2, 1 - confidence))
     return float((2 * total / bound) ** (1 / shape))
 
 

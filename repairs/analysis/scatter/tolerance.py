@@ -17,7 +17,7 @@ import math
 from collections.abc import Sequence
 from statistics import mean, stdev
 
-from scipy.stats import nct
+from scipy.special import nctdtrit
 
 from repairs.analysis.errors import within
 from repairs.analysis.scatter.factors import quantile
@@ -63,7 +63,7 @@ def tolerance_factor(tests: int, survival: float, confidence: float) -> float:
     within("Survival", survival, 0.5, 0.999999, "a lower bound")
     within("Confidence", confidence, 0.5, 0.999, "a lower bound")
     root = math.sqrt(tests)
-    return float(nct.ppf(confidence, tests - 1, quantile(survival) * root) / root)
+    return float(nctdtrit(tests - 1, quantile(survival) * root, confidence) / root)
 
 
 def lower_bound(values: Sequence[float], survival: float, confidence: float) -> float:

@@ -111,3 +111,10 @@ def test_a_curve_from_memory_bars_the_result():
     asked = replace(detection(), curve=curve)
     assert judged(detection=asked).source_from_memory
     assert isinstance(asked.done, Sourced)
+
+
+def test_a_plan_of_absurdly_many_looks_is_not_judged_and_says_so():
+    policy = replace(CRACK["repeat_policy"], factor=recorded(100.0, "-"))
+    result = judged(repeat_policy=policy, class_maximum=recorded(1.0, "cycles"))
+    assert result.plan is None
+    assert any("is not calculated" in warning for warning in result.warnings)
