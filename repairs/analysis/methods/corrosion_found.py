@@ -88,6 +88,12 @@ CLUSTER = Reference(
     "semi-elliptical notch; here the whole patch, a bound",
     Grade.QUOTED,
 )
+PIT_AS_CRACK = Reference(
+    "Materials Science and Engineering A 1996, from pitting to fatigue crack growth in "
+    "2024-T3, abstract: a pit as an equivalent semi-elliptical surface crack",
+    Grade.QUOTED,
+)
+PIT_WORDS = "pit taken as a crack of its size, from the first cycle"
 NOT_DEEPEST = "the whole patch as one flaw, not its deepest pit alone"
 STILL_CORRODING = (
     "Corrosion goes on while it is not removed: sizes are those of the day it was "
@@ -138,6 +144,7 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     length = note.given("L", "length of the corrosion", inputs.number("damage_length"))
     half = max(length / 2, section.flaw / DEEPEST)
     note.step("c", "L / 2", NOT_DEEPEST, half, "mm", CLUSTER)
+    note.step("", PIT_WORDS, "", None, "", PIT_AS_CRACK)
     on_sound = found.on_section(section.sound / section.nominal)
     _write_murakami(note, on_sound, section.flaw, half)
     if section.flaw / half < SLENDEREST:

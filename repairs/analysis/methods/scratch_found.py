@@ -12,16 +12,13 @@ from __future__ import annotations
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.loads import panel_loads
 from repairs.analysis.loads.longitudinal import (
-    LONGITUDINAL_INPUTS,
     longitudinal_loads,
+    longitudinal_needed,
+    reach_needed,
 )
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods import depth_flaw
-from repairs.analysis.methods.crack_case import (
-    REACH_INPUTS,
-    mean_tension,
-    spectrum_reach,
-)
+from repairs.analysis.methods.crack_case import mean_tension, spectrum_reach
 from repairs.analysis.methods.flat_crack import kind_is_not
 from repairs.analysis.methods.section_left import (
     FOUND_INPUTS,
@@ -66,8 +63,10 @@ def round_the_section(inputs: Inputs) -> bool:
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs."""
     del use
-    axial = (*LONGITUDINAL_INPUTS, *REACH_INPUTS) if round_the_section(inputs) else ()
-    return REQUIRED + panel_loads.needed(inputs) + needed(inputs) + axial
+    every = (*REQUIRED, *panel_loads.needed(inputs), *needed(inputs))
+    if round_the_section(inputs):
+        every += (*longitudinal_needed(inputs), *reach_needed(inputs))
+    return tuple(dict.fromkeys(every))
 
 
 def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:

@@ -13,6 +13,7 @@ from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.registry import evaluate
 from repairs.analysis.stress_life.notches import notch_factor
 from repairs.analysis.types import KSI, Grade, Outcome, Sourced, Use
+from tests.outside import outside
 from tests.repairs.analysis.cases import (
     BLEND,
     CURVES,
@@ -47,6 +48,22 @@ def test_kt_of_a_blend_by_its_full_length_over_depth(ratio, kt):
     assert notch_factor(1.0, ratio) == pytest.approx(kt, abs=6e-4)
 
 
+@pytest.mark.parametrize("ratio", [0.1, 0.2, 0.4])
+def test_the_dish_by_petersons_chart_of_edge_grooves(ratio):
+    # d / rho of an arc is 2 d^2 / (w^2 + d^2); w for the ratio wanted.
+    w = math.sqrt(2 / ratio - 1)
+    outside(
+        "Blend as a shallow groove: Kt",
+        source="Peterson, chart 2.4, two U notches in a wide strip, coefficient C1 "
+        "0.955 + 2.169 √y + 0.081 y, in public code",
+        given=f"depth over radius y = {ratio:g}, full length over depth {2 * w:.1f}",
+        published=0.955 + 2.169 * math.sqrt(ratio) + 0.081 * ratio,
+        computed=notch_factor(1.0, 2 * w),
+        rel=0.045,
+        route="quoted",
+    )
+
+
 def test_kt_of_a_semicircle_and_its_limit():
     assert notch_factor(1.0, 2.0) == pytest.approx(3.0)  # Inglis, exactly
     with pytest.raises(OutOfRangeError, match="shallow"):
@@ -63,6 +80,17 @@ def test_one_sided_loss_of_a_tenth():
     stress = 1.5 * 1.33 * 8.6 * PSI * RADIUS / 1.6
     assert result.margin_ultimate == pytest.approx(
         FTU / (1.1111 * stress) - 1, rel=1e-3
+    )
+    # Mean stress and bending of a strip 1 wide: N / t_l + 6 (N d / 2) / t_l^2.
+    force = stress * 1.6
+    outside(
+        "Loss from one side: margin with the bound of eccentricity",
+        source="strip free to bend, force in the middle of the whole section: statics",
+        given="t 1.6 mm, 0.16 mm lost from one side, no gauge uncertainty",
+        published=FTU / (force / 1.44 + 6 * force * 0.08 / 1.44**2) - 1,
+        computed=line(result, "M_ult,e"),
+        absolute=1e-9,
+        route="closed form",
     )
     bound = line(result, "M_ult,e")
     assert bound == pytest.approx(FTU / (1.4815 * stress) - 1, rel=1e-3)

@@ -135,3 +135,9 @@ def test_thinner_skin_lives_less(thickness):
     thin = scratched(thickness=recorded(thickness, "mm"))
     thick = scratched(thickness=recorded(thickness + 0.2, "mm"))
     assert thin.life_cycles <= thick.life_cycles
+
+
+def test_a_skin_flown_by_pressure_alone_says_that_round_it_needs_more():
+    result = scratched(**{**AXIAL, "mean_longitudinal_stress": recorded(-5.0, "MPa")})
+    assert result.outcome is Outcome.NOT_COVERED
+    assert result.governing == "1 g stress along the section"
