@@ -94,7 +94,7 @@ def growth_of(result: Result, scatter: Sourced | None) -> Growth | None:
     size = np.array([point[1] for point in drawn.points])
     # A life on stress-life stands beside that of growth and is another one.
     longer = [life.cycles - cycles[-1] for life in result.lives if life.cycles]
-    before = min((more for more in longer if more >= 0), default=0)
+    before = min((more for more in longer if more > -1), default=0)  # rounded down
     if before >= 1:
         cycles = np.concatenate([[0.0], cycles + before])
         size = np.concatenate([size[:1], size])

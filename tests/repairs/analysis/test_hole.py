@@ -8,6 +8,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from repairs.analysis.inspection.known import growth_of
 from repairs.analysis.registry import evaluate
 from repairs.analysis.stress_life.severity import hole_kt
 from repairs.analysis.surroundings import Obstacle, ObstacleKind
@@ -277,3 +278,13 @@ def test_a_larger_hole_is_never_stronger(diameter, more):
 def test_high_stress_ends_in_no_method():
     result = hole(yield_strength=recorded(5 * KSI, "MPa"))
     assert result.outcome is Outcome.NOT_COVERED
+
+
+def test_a_plan_is_judged_on_growth_and_not_on_stress_life():
+    # The stress-life beside it is longer and has looks in it that growth has not.
+    high = {"radius": recorded(3000.0, "mm"), "thickness": recorded(0.9, "mm")}
+    strip = {"strip_width": recorded(60.0, "mm"), "edge_distance": recorded(30.0, "mm")}
+    result = hole(**high, **strip, detectable_length=recorded(4.0, "mm"))
+    lived, grown = result.lives
+    assert lived.cycles > 2 * grown.cycles
+    assert growth_of(result, None).life == pytest.approx(grown.cycles, abs=1)
