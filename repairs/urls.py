@@ -26,6 +26,7 @@ from repairs.views import (
     repairs,
     reports,
     requirements,
+    spectra,
     stated,
     substantiation_rows,
     substantiations,
@@ -33,6 +34,14 @@ from repairs.views import (
 )
 
 urlpatterns = [
+    path("spectra/", spectra.spectrum_list, name="spectrum_list"),
+    path("spectra/new/<str:kind>/", spectra.spectrum_new, name="spectrum_new"),
+    path("spectra/<int:pk>/", spectra.spectrum, name="spectrum"),
+    path(
+        "spectra/<int:pk>/revise/",
+        spectra.spectrum_revise_page,
+        name="spectrum_revise",
+    ),
     path("adopted/", adopted.adopted_list, name="adopted_list"),
     path("adopted/new/", adopted.adopted_new, name="adopted_new"),
     path("adopted/<int:pk>/confirm/", adopted.adopted_confirm, name="adopted_confirm"),

@@ -21,6 +21,7 @@ from fleet.models import (
     Operator,
     Role,
     SafeLifePart,
+    Spectrum,
     User,
 )
 from fleet.services.adopted import value_adopt
@@ -60,6 +61,7 @@ from repairs.services.recalculations import recalculation_start
 from repairs.services.repair_entry import Data, RepairEntry, Step
 from repairs.services.repairs import repair_plan, repair_record
 from repairs.services.requirement_draft import LimitEntry, RequirementDraft
+from repairs.services.spectra import spectrum_record
 from repairs.services.stated import Document as FromPage
 from repairs.services.stated import input_state
 from repairs.services.survey_entry import SurveyEntry
@@ -119,6 +121,7 @@ class OneOfEach:
     attachment: Attachment
     membership: Membership
     adopted: AdoptedValue
+    spectrum: Spectrum
     folder: Substantiation
     stated: StatedInput
 
@@ -160,6 +163,7 @@ def one_of_each_make() -> OneOfEach:
         attachment=_photograph(world, finding),
         membership=world.users["recorder"].memberships.get(),
         adopted=_adopted(world),
+        spectrum=_spectrum(world),
         folder=_folder(world, finding),
         stated=_stated(world, crack),
     )
@@ -379,6 +383,13 @@ def _stated(world: World, crack: Finding) -> StatedInput:
         actor=world.engineer,
         at=NOW,
         on=TODAY,
+    )
+
+
+def _spectrum(world: World) -> Spectrum:
+    data = {"kind": "cycle", "cycle_max_mpa": 90.0, "cycle_ratio": -0.2}
+    return spectrum_record(
+        name="floor beam", data=data, source="report 12", actor=world.engineer, at=NOW
     )
 
 

@@ -90,6 +90,10 @@ def flown(each: OneOfEach) -> dict[str, Any]:
     return {"pk": row.aircraft_id, "row_pk": row.pk}
 
 
+def of_kind(_: OneOfEach) -> dict[str, Any]:
+    return {"kind": "sequence"}
+
+
 def of_type(**more: str) -> Keys:
     return lambda each: {"code": each.world.variant.aircraft_type.code, **more}
 
@@ -121,6 +125,10 @@ PAGES: dict[str, Page] = {
     "membership_end": Page(FORM, "people_change", key("membership")),
     "authorisation_new": Page(FORM, "people_change"),
     "adopted_list": Page(),
+    "spectrum_list": Page(),
+    "spectrum": Page(keys=key("spectrum"), shared=True),
+    "spectrum_new": Page(FORM, "value_adopt", of_kind, shared=True),
+    "spectrum_revise": Page(FORM, "value_adopt", key("spectrum"), shared=True),
     "adopted_new": Page(FORM, "value_adopt"),
     "adopted_confirm": Page(FORM, "value_confirm", key("adopted")),
     "documents": Page(),

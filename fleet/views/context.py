@@ -29,6 +29,7 @@ NAVIGATION = (
 OFFICE = (
     ("policies", "Policies", "/policies/", ""),
     ("adopted_list", "Adopted", "/adopted/", ""),
+    ("spectrum_list", "Spectra", "/spectra/", ""),
     ("checks", "Checks", "/checks/", "checks_read"),
     ("people", "People", "/people/", "people_change"),
     ("history", "History", "/history/", "history_read"),

@@ -34,6 +34,7 @@ ONLY_ADD = frozenset(
         "password_reset",
         "repair_photographs",
         "second_factor_reset",
+        "spectrum_new",
         "sign_in_unlock",
         "survey_import",
         "survey_lines",
