@@ -194,6 +194,9 @@ COVERAGE_VERSION = 3
 PLAIN_ITEMS = ("skin", "fairing", "other")
 AWAY_FROM_EDGES = ("skin", "scratch", "dent", "corrosion_pit", "weld", "other")
 OF_SKIN = ("element", ("skin",))
+OF_CRACK = ("damage_type", ("crack",))
+RENEWED = ("replacement",)
+"""Repairs whose skin is as the type has it, without the crack."""
 GONE = ("damage_removed", ("yes",))
 STILL_THERE = ("damage_removed", ("no",))
 ROUND_BLENDS = ("corrosion", "scratch", "gouge", "wear", "lightning", "heat")
@@ -213,7 +216,9 @@ COVERAGE: tuple[Coverage, ...] = (
             ("element", PLAIN_ITEMS),
             ("crack_origin", AWAY_FROM_EDGES),
             ("pressurised", ("yes",)),
+            OF_CRACK,
         ),
+        repairs=RENEWED,
     ),
     Coverage(
         ("crack",),
@@ -222,7 +227,12 @@ COVERAGE: tuple[Coverage, ...] = (
             ("element", PLAIN_ITEMS),
             ("crack_origin", AWAY_FROM_EDGES),
             ("pressurised", ("no",)),
+            OF_CRACK,
         ),
+        repairs=RENEWED,
+    ),
+    Coverage(
+        (), (("stop-drilled-crack",),), (OF_SKIN, OF_CRACK), repairs=("stop_drill",)
     ),
     Coverage(
         ("crack",),

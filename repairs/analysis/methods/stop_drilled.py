@@ -63,6 +63,7 @@ NO_START_LIFE = (
     "No life until a crack starts again: {refusal} The notch is taken for a growing "
     "crack at once."
 )
+DRILLED = "crack is stop-drilled"
 FROM_DRILLING = "from stop-drilling"
 STARTS = "until a crack starts again at the stop hole, mean stress-life"
 AFTER = "after a crack has started again, {title}"
@@ -81,7 +82,8 @@ def plain_method(inputs: Inputs) -> ModuleType:
 def required(inputs: Inputs, use: Use) -> tuple[str, ...]:
     """Return the inputs this method needs for a use."""
     plain = plain_method(inputs).required(inputs, use)
-    more = ("stop_drilled", "stop_hole_diameter", *fatigue.INPUTS)
+    said = () if by_repair(inputs) else ("stop_drilled",)
+    more = (*said, "stop_hole_diameter", *fatigue.INPUTS)
     return tuple(dict.fromkeys((*plain, *more)))
 
 
@@ -99,9 +101,16 @@ def tests(inputs: Inputs, use: Use) -> tuple[Applicability, ...]:
     return (element, drilled, known, *others)
 
 
+def by_repair(inputs: Inputs) -> bool:
+    """Return whether the repair itself is the stop hole."""
+    return inputs.word("repair_kind") == "stop_drill"
+
+
 def said_drilled(inputs: Inputs) -> Applicability:
     """Test that the crack is stop-drilled; one measured and not said to be is not."""
-    test = apply.word_is(inputs, "stop_drilled", "crack is stop-drilled", "yes")
+    if by_repair(inputs):
+        return Applicability(DRILLED, "yes, by the repair", "yes", True)
+    test = apply.word_is(inputs, "stop_drilled", DRILLED, "yes")
     if test.met is None and "crack_length" in inputs:
         return replace(test, met=False)
     return test

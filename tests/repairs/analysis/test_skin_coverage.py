@@ -106,3 +106,28 @@ def test_a_corner_of_a_cut_out_says_that_its_stress_is_wanted():
     result = asked(EDGE, crack_origin=said("cut_out_corner")).result
     assert result.outcome is Outcome.NOT_COVERED
     assert result.governing == "local stress at the corner of the cut-out"
+
+
+def test_a_stop_hole_recorded_as_repair_is_a_drilled_crack():
+    drilled = {**FLAT, "stop_hole_diameter": DRILLED["stop_hole_diameter"]}
+    result = asked(drilled, repair_kind=said("stop_drill")).result
+    assert result.method == "stop-drilled-crack"
+    assert result.outcome is Outcome.COMPUTED
+
+
+def test_a_stop_hole_is_never_structure_without_known_crack():
+    drilled = {**FLAT, **DRILLED, "repair_kind": said("stop_drill")}
+    given = inputs({**drilled, "damage_type": said("crack")})
+    result = assess(Use.NO_KNOWN_CRACK, given).result
+    assert result.outcome is Outcome.NOT_COVERED
+    assert "known damage" in result.warnings[0]
+    assert result.threshold is result.repeat is None
+
+
+def test_new_skin_gets_a_threshold_and_a_repeat():
+    renewed = {**CRACK, "damage_type": said("crack")}
+    given = inputs(renewed, repair_kind=said("replacement"))
+    result = assess(Use.NO_KNOWN_CRACK, given).result
+    assert result.method == LONGITUDINAL
+    assert result.threshold is not None
+    assert result.repeat is not None
