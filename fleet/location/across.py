@@ -5,22 +5,27 @@ from __future__ import annotations
 import math
 from dataclasses import replace
 
-from fleet.location.along import Work, did_you_mean, door_cutout
-from fleet.location.parts import TINY_MM, Plane, Stringer
+from fleet.location.along import Work, did_you_mean
+from fleet.location.chordwise import chordwise, fore_or_aft
+from fleet.location.doors import door_cutout
+from fleet.location.parts import Stringer
 from fleet.location.place import LocationRefused
-from fleet.location.reach import Reach, arc_reach, reach_between
+from fleet.location.reach import (
+    NO_LINES,
+    Reach,
+    arc_reach,
+    reach_between,
+    side_missing,
+)
 from fleet.location.reading import Across, Offer
 from fleet.location.words import INTERNAL
 
-SIDE_MISSING = "{what} has no side. Did you mean {offers}?"
 SIDE_CONFLICT = "“{what}” names a line on the {on}, but also says {said}; keep one."
 STR_RANGE = "{what} is not on this {section} ({low} to {high}).{offers}"
 BL_RANGE = "BL {read} is outside this {section} here (0 to {high})."
 WL_RANGE = "WL {read} is outside this {section} here ({low} to {high})."
-NO_LINES = "{what} is not a notation of this {section}; use {words}."
 DISAGREE = "{one} and {other} are {apart} apart; correct one."
 OUTSIDE = "BL {bl} and WL {wl} meet {apart} outside the skin; correct one."
-SPAR_UNKNOWN = "This {section} has no {name} spar; it has {offers}."
 
 OFF_SKIN_IN = 2.0
 CLOCK_AGREES_DEG = 15.0
@@ -39,8 +44,8 @@ def reach_of(work: Work, map_mm: float) -> Reach:
         reach = _clock(work)
     elif reading.butt_lines or reading.water_lines:
         reach = _lines(work, map_mm)
-    elif reading.spar is not None:
-        reach = _spar(work, map_mm)
+    elif reading.spars or reading.chords:
+        reach = chordwise(work, map_mm)
     elif cutout is not None:
         side = "L" if cutout.box.s2_mm <= 0.0 else "R"
         reach = Reach(cutout.box.s1_mm, cutout.box.s2_mm, side)
@@ -90,17 +95,20 @@ def _stringer_s(work: Work, point: Across, map_mm: float) -> float:
     line = _line(work, point)
     if point.offset is None:
         return line.s_mm
+    if not section.is_shell:
+        sign = -1.0 if line.s_mm < 0.0 else 1.0
+        at = abs(line.s_mm)
+        return sign * fore_or_aft(work, at, point.offset, line.label, map_mm)
     direction = point.offset.direction
     length = point.offset.length.mm(work.unit) / section.scale_at(map_mm)
-    if not section.is_shell or direction not in ("above", "below"):
+    if direction not in ("above", "below"):
         what = f"“{direction} of {line.label}”"
-        words = "above or below" if section.is_shell else "aft or fwd of a spar"
-        message = NO_LINES.format(what=what, section=work.name, words=words)
+        message = NO_LINES.format(what=what, section=work.name, words="above or below")
         raise LocationRefused("E_SECTION_MISMATCH", message)
     side = line.side or point.side or work.reading.side
     if not side:
         name = f"{direction} {line.label}"
-        raise _side_missing(f"“{name}”", f"{name} LH", f"{name} RH")
+        raise side_missing(f"“{name}”", f"{name} LH", f"{name} RH")
     down = 1.0 if side == "R" else -1.0
     turn = line.s_mm if line.side or line.s_mm == 0.0 else -down * line.s_mm
     return turn + (down if direction == "below" else -down) * length
@@ -136,13 +144,7 @@ def _line(work: Work, point: Across) -> Stringer:
     for line in numbered:
         if line.side == side:
             return line
-    raise _side_missing(name, f"{name}L", f"{name}R")
-
-
-def _side_missing(what: str, *texts: str) -> LocationRefused:
-    offers = tuple(Offer("side", text) for text in texts)
-    message = SIDE_MISSING.format(what=what, offers=" or ".join(texts))
-    return LocationRefused("E_SIDE_MISSING", message, offers)
+    raise side_missing(name, f"{name}L", f"{name}R")
 
 
 # -- clock --------------------------------------------------------------------
@@ -235,7 +237,7 @@ def _butt_line(work: Work, point: Across, map_mm: float) -> float:
     value = work.mm(point.number)
     if value and not side:
         name = f"BL {point.number:f}"
-        raise _side_missing(name, f"L{name}", f"R{name}")
+        raise side_missing(name, f"L{name}", f"R{name}")
     if point.offset is not None:
         outward = {"outbd": 1.0, "inbd": -1.0}.get(point.offset.direction)
         if outward is None:
@@ -285,7 +287,7 @@ def _from_water_line(work: Work, wls: list[float], map_mm: float, side: str) -> 
     assert section.axis_wl_mm is not None
     if not side:
         name = f"WL {work.show(wls[0])}"
-        raise _side_missing(name, f"{name} LH", f"{name} RH")
+        raise side_missing(name, f"{name} LH", f"{name} RH")
     radius, sign = section.size_at(map_mm), 1.0 if side == "R" else -1.0
     angles = [
         math.acos(max(-1.0, min(1.0, (wl - section.axis_wl_mm) / radius))) for wl in wls
@@ -310,52 +312,3 @@ def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reac
         return Reach(None, None, side, bl, wl, off_skin=True)
     s_mm = math.atan2(bl, up) * section.reference_mm
     return arc_reach(work, s_mm, s_mm)
-
-
-# -- spars --------------------------------------------------------------------
-
-
-def _spar(work: Work, map_mm: float) -> Reach:
-    """A place told from a spar: on it, a length from it, or the box beside it."""
-    point, section = work.reading.spar, work.section
-    assert point is not None
-    spars = [p for p in section.planes if p.kind == "spar" and p.s_mm is not None]
-    plane = next((p for p in spars if p.label == f"{point.name.upper()} SPAR"), None)
-    if plane is None or plane.s_mm is None:
-        listed = " and ".join(p.label.lower() for p in spars) or "none"
-        message = SPAR_UNKNOWN.format(section=work.name, name=point.name, offers=listed)
-        raise LocationRefused("E_SECTION_MISMATCH", message)
-    low, high = _spar_reach(work, point, plane, spars, map_mm)
-    if section.skins == ("left", "right"):
-        if not work.reading.side:
-            raise _side_missing(plane.label.lower(), "LH", "RH")
-        if work.reading.side == "L":
-            low, high = -high, -low
-    return arc_reach(work, low, high)
-
-
-def _spar_reach(
-    work: Work, point: Across, plane: Plane, spars: list[Plane], map_mm: float
-) -> tuple[float, float]:
-    section, at = work.section, plane.s_mm or 0.0
-    if work.reading.spar_side:  # all the skin on that side, to the next spar
-        lines = sorted([0.0, *(p.s_mm or 0.0 for p in spars), section.s2_mm])
-        index = lines.index(at)
-        aft = work.reading.spar_side == "aft"
-        return (at, lines[index + 1]) if aft else (lines[index - 1], at)
-    if point.offset is None:
-        return at, at
-    if point.offset.direction not in ("fwd", "aft"):
-        what = f"“{point.offset.direction} of {plane.label.lower()}”"
-        message = NO_LINES.format(what=what, section=work.name, words="fwd or aft")
-        raise LocationRefused("E_SECTION_MISMATCH", message)
-    aft = point.offset.direction == "aft"
-    length = point.offset.length.mm(work.unit) / section.scale_at(map_mm)
-    s_mm = at + length if aft else at - length
-    if not 0.0 <= s_mm <= section.s2_mm + TINY_MM:
-        raise LocationRefused(
-            "E_STR_RANGE",
-            f"{point.offset.length.number:f} {point.offset.direction} of the "
-            f"{plane.label.lower()} is beyond the chord of this {work.name} here.",
-        )
-    return s_mm, s_mm

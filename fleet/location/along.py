@@ -5,18 +5,22 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from decimal import Decimal
 
-from fleet.location.parts import TINY_MM, Cutout, Frame
+from fleet.location.parts import TINY_MM, Frame
 from fleet.location.place import LocationRefused
 from fleet.location.reading import Along, Offer, Reading
 from fleet.location.sections import Section
+from fleet.location.tokens import number_lettered
 from fleet.units import canonical, in_unit, number_write
 
 STA_RANGE = "{word} {label} is outside this {section} ({low}–{high}).{offers}"
-NEGATIVE = "{word} {label} is negative; this {section} has no such stations."
+NEGATIVE = "{word} {label} is negative; this {section} has no such stations.{offers}"
+HYPHEN = "“{word}-{label}” may be read in more than one way.{offers}"
 PLUG_MISSING = "{word} {label} is a plug that variant {variant} does not have.{offers}"
 PLUG_UNCLEAR = "{word} {label} may lie before or behind the plug.{offers}"
 LABEL_UNKNOWN = "{word} {label} is not on this {section} ({low}–{high}).{offers}"
-FRAME_STATION = "FR {frame} stands at {at}, but {word} {label} was read; correct one."
+FRAME_STATION = (
+    "{prefix} {frame} stands at {at}, but {word} {label} was read; correct one."
+)
 DIRECTION = "“{text}” does not run along this {section}; use {offers}."
 
 _BACK = {"fwd": -1, "inbd": -1, "below": -1}
@@ -82,6 +86,7 @@ def _agree(work: Work, stations: list[float], frames: list[float]) -> None:
     raise LocationRefused(
         "E_MISMATCH",
         FRAME_STATION.format(
+            prefix=work.section.frame_prefix,
             frame=frame.label.upper(),
             at=f"{station_word(work.section)} {station_label(work, frames[0])}",
             word=station_word(work.section),
@@ -99,13 +104,13 @@ def x_of_point(work: Work, point: Along) -> float:
     """True distance of one point with its offset."""
     base = _base(work, point)
     if point.offset is None:
-        return _inside(work, base, point)
+        return inside(work, base, point)
     length = point.offset.length.mm(work.unit)
     sign = point.offset.sign or direction_sign(work, point.offset.direction)
     pitch = work.section.frame_pitch_mm
     if pitch and length >= pitch - TINY_MM:
         work.codes.append("W_OFFSET_GE_PITCH")
-    return _inside(work, base + sign * length, point)
+    return inside(work, base + sign * length, point)
 
 
 def direction_sign(work: Work, direction: str) -> int:
@@ -136,9 +141,9 @@ def _frame(work: Work, point: Along) -> float:
     if frame is None:
         numbers = [f.label for f in section.frames]
         code = "E_RIB_RANGE" if point.kind == "rib" else "E_FRAME_RANGE"
-        if point.letter and section.frame(f"{point.number.normalize():f}"):
-            code = "E_PLUG"
         offers = _digit_offers(word, point.number, _whole_frames(section))
+        if point.letter and section.frame(f"{point.number.normalize():f}"):
+            code, offers = "E_PLUG", offers[-1:]
         message = LABEL_UNKNOWN.format(
             word=word,
             label=label,
@@ -171,13 +176,13 @@ def _having(work: Work, frame: Frame, word: str, label: str) -> float:
 
 def _station(work: Work, point: Along) -> float:
     section, label, word = work.section, point.label.upper(), station_word(work.section)
-    if point.number < 0 and not section.negative_stations:
-        message = NEGATIVE.format(word=word, label=label, section=work.name)
-        offer = Offer("positive", f"{word} {-point.number:f}")
-        raise LocationRefused("E_NEGATIVE", message, (offer,))
+    _signed(work, point)
     for frame in section.frames:
         if frame.station_label == label:
             return _having(work, frame, word, label)
+    if point.letter == "i":  # no plug of the type: a one, read as a letter
+        asked = number_lettered(label, f"{point.number.normalize():f}1")
+        raise LocationRefused(asked.code, asked.message, asked.offers)
     if point.letter:
         plugs = [f.station_label for f in section.frames if f.plug]
         offers = tuple(Offer("station", f"{word} {name}") for name in plugs[:2])
@@ -186,6 +191,30 @@ def _station(work: Work, point: Along) -> float:
         )
         raise LocationRefused("E_PLUG", message, offers)
     return _plain_station(work, work.mm(point.number), point)
+
+
+def _signed(work: Work, point: Along) -> None:
+    """Refuse a minus the type does not have, and ask of a hyphen that may be one."""
+    section, label, word = work.section, point.label.upper(), station_word(work.section)
+    if point.number < 0 and not section.negative_stations:
+        positive = work.mm(-point.number)
+        on_it = section.map1_mm - TINY_MM <= section.map_of(positive, "")
+        nearest = label.removeprefix("-") if on_it else work.show(section.map1_mm)
+        offers = (Offer("positive", f"{word} {nearest}"),)
+        message = NEGATIVE.format(
+            word=word, label=label, section=work.name, offers=did_you_mean(offers)
+        )
+        raise LocationRefused("E_NEGATIVE", message, offers)
+    if point.hyphen and section.negative_stations and point.number:
+        forward = -work.mm(point.number) >= section.map1_mm - TINY_MM
+        if forward:
+            number = float(point.number)
+            both = (
+                Offer("minus", f"{word} -{label}", (-number,)),
+                Offer("plain", f"{word} {label}", (number,)),
+            )
+            message = HYPHEN.format(word=word, label=label, offers=did_you_mean(both))
+            raise LocationRefused("E_AMBIG_MINUS", message, both)
 
 
 def _plain_station(work: Work, label_mm: float, point: Along) -> float:
@@ -224,7 +253,7 @@ def _plug_question(
     return LocationRefused("E_PLUG", message, offers)
 
 
-def _inside(work: Work, x_mm: float, point: Along) -> float:
+def inside(work: Work, x_mm: float, point: Along) -> float:
     """The distance if it is on the section, else E_STA_RANGE with offers."""
     section = work.section
     low = section.x_of(section.map1_mm, work.variant)
@@ -270,48 +299,6 @@ def _digit_offers(
     nearest = min(valid, key=lambda v: abs(v - number))
     offers.append(Offer("nearest", f"{word} {nearest:f}", (float(nearest),)))
     return tuple(offers)
-
-
-# -- doors --------------------------------------------------------------------
-
-
-def door_cutout(work: Work) -> Cutout | None:
-    """The cut-out of the door that the text names, or E_DOOR_UNKNOWN."""
-    door = work.reading.door
-    if door is None:
-        return None
-    names = {
-        c.label: c for c in work.section.cutouts if c.kind in ("door", "cargo_door")
-    }
-    if door.name in names:
-        return names[door.name]
-    offers = tuple(Offer("door", door_text(name)) for name in names)
-    message = f"Door {door.name} is not on this {work.name}.{did_you_mean(offers)}"
-    raise LocationRefused("E_DOOR_UNKNOWN", message, offers)
-
-
-def door_text(name: str) -> str:
-    """ "door 2L", "aft cargo door"."""
-    return f"{name.lower()} door" if " " in name else f"door {name}"
-
-
-def door_x(work: Work, cutout: Cutout) -> tuple[float, float]:
-    """True distances of the place that is given from a door's edge, or of the door."""
-    door = work.reading.door
-    fore = work.section.x_of(cutout.box.map1_mm, work.variant)
-    rear = work.section.x_of(cutout.box.map2_mm, work.variant)
-    assert door is not None
-    assert fore is not None
-    assert rear is not None
-    if door.offset is None:
-        at = {"fwd": (fore, fore), "aft": (rear, rear)}
-        return at.get(door.edge, (fore, rear))
-    direction = door.offset.direction
-    edge = door.edge or direction
-    sign = direction_sign(work, direction)
-    x_mm = (fore if edge == "fwd" else rear) + sign * door.offset.length.mm(work.unit)
-    point = Along("door", "", Decimal(0), cutout.label, door.offset)
-    return (_inside(work, x_mm, point),) * 2
 
 
 # -- labels -------------------------------------------------------------------

@@ -7,6 +7,7 @@ from decimal import Decimal
 
 from fleet.location.reading import Length, Offer, Offset, Problem
 from fleet.location.tokens import (
+    LOOK_AHEAD,
     Token,
     normalised,
     number_of,
@@ -14,6 +15,7 @@ from fleet.location.tokens import (
     number_wrong,
     tokens_of,
 )
+from fleet.location.vocabulary import Vocabulary
 from fleet.location.words import DIRECTIONS, OTHER_UNITS
 from fleet.units import unit_known
 
@@ -24,15 +26,18 @@ _COUNTED = {
     "places", "place", "ea", "each", "locations", "areas", "spots", "holes", "cracks",
     "o'clock", "off", "x",
 }  # fmt: skip
+_SIGNS_IN_WORDS = {"plus": 1, "minus": -1}
 
 
 class Cursor:
     """Moves over the tokens; gathers what is flagged and asked on the way."""
 
-    def __init__(self, text: str) -> None:
+    def __init__(self, text: str, words: Vocabulary) -> None:
         self.text = text
+        self.words = words
         self.low = normalised(text)
         self.tokens = tokens_of(self.low)
+        self.end = len(self.tokens) - LOOK_AHEAD
         self.at = 0
         self.sides: list[str] = []
         self.codes: list[str] = []
@@ -41,31 +46,51 @@ class Cursor:
     def ask(self, code: str, message: str, *offers: Offer) -> None:
         self.problems.append(Problem(code, message, offers))
 
-    def peek(self, ahead: int = 0) -> Token | None:
-        index = self.at + ahead
-        return self.tokens[index] if index < len(self.tokens) else None
+    def peek(self, ahead: int = 0) -> Token:
+        return self.tokens[self.at + ahead]
 
     def is_(self, *texts: str, ahead: int = 0) -> bool:
-        token = self.peek(ahead)
-        return token is not None and token.text in texts and token.kind != "num"
+        return self.tokens[self.at + ahead].text in texts
+
+    def among(self, words: Collection[str], ahead: int = 0) -> bool:
+        return self.tokens[self.at + ahead].text in words
 
     def kind(self, kind: str, ahead: int = 0) -> bool:
-        token = self.peek(ahead)
-        return token is not None and token.kind == kind
+        return self.tokens[self.at + ahead].kind == kind
 
     def skip(self, *texts: str) -> None:
-        while self.is_(*texts):
+        while self.tokens[self.at].text in texts:
             self.at += 1
 
     def touching(self, ahead: int = 0) -> bool:
         """Whether no blank stands between this token and the one before it."""
-        here, before = self.peek(ahead), self.peek(ahead - 1)
-        return bool(here and before and here.start == before.end)
+        return self.peek(ahead).start == self.tokens[self.at + ahead - 1].end
 
-    def length(self) -> Length | None:
-        """A length at the present token: "12", "3/4 in", "1 1/2\"", "38mm"."""
+    # -- lengths --------------------------------------------------------------
+
+    def length(self, *, after_sign: bool = False) -> Length | None:
+        """A length here: "12", "3/4 in", "1 1/2\"", "38mm", "1'6\"".
+
+        A foot mark is one only before inches; else it is a stray quote. After a sign
+        inches with a direction behind them ("4 in below") begin something else.
+        """
+        length = self._plain_length()
+        marked = self.tokens[self.at - 1].text == "'"
+        if length is None or not (marked or length.unit == "ft"):
+            return length
+        back, asked, flagged = self.at, len(self.problems), len(self.codes)
+        self.at += self.is_("-")
+        inches = self._plain_length()
+        other = after_sign and self.among(DIRECTIONS)
+        if inches is not None and inches.unit == "in" and not other:
+            return Length(length.number * 12 + inches.number, "in")
+        self.at = back
+        del self.problems[asked:], self.codes[flagged:]
+        return length
+
+    def _plain_length(self) -> Length | None:
         token = self.peek()
-        if token is None or token.kind != "num":
+        if token.kind != "num":
             return None
         number, code = number_of(token.text)
         if number is None:
@@ -90,7 +115,7 @@ class Cursor:
         if tail:
             return unit_known(tail) or ""
         token = self.peek()
-        if token is None or token.kind == "num":
+        if token.kind not in ("word", "sym"):
             return ""
         if token.text == "'":
             self.at += 1
@@ -99,17 +124,19 @@ class Cursor:
         if unit:
             self.at += 1
             return unit
-        if token.kind == "word" and token.text in OTHER_UNITS:
+        if token.text in OTHER_UNITS:
             self.ask("E_UNIT_UNKNOWN", UNIT_UNKNOWN.format(unit=token.text))
             self.at += 1
         return ""
+
+    # -- numbers of labels ----------------------------------------------------
 
     def value(
         self, kind: str, tails: Collection[str] = ()
     ) -> tuple[Decimal, str] | None:
         """The number at the present token with the letter that may hang on it."""
         token = self.peek()
-        if token is None or token.kind != "num":
+        if token.kind != "num":
             return None
         number, code = number_of(token.text)
         letter = token.tail
@@ -130,38 +157,78 @@ class Cursor:
     def _split(self, token: Token, kind: str) -> Token | None:
         """The second half of a number that a blank has broken."""
         other, after = self.peek(1), self.peek(2)
-        if token.tail or "." in token.text or other is None or other.kind != "num":
+        if other.kind != "num" or token.tail or "." in token.text:
             return None
         joined = token.text + other.text.partition(".")[0]
         if not joined.isdigit() or len(joined) > _SPLIT_DIGITS[kind]:
             return None
-        if after is not None and after.kind != "num":
-            follows = after.text in _COUNTED or after.text in DIRECTIONS
-            if after.kind == "clock" or after.text in ("/", ":", '"') or follows:
-                return None
-            if unit_known(after.text) and after.text != "in":
-                return None
-            if after.text == "in" and self.peek(3) is not None:
-                third = self.tokens[self.at + 3]
-                if third.text in DIRECTIONS:
-                    return None
+        if after.kind == "clock" or after.text in ("/", ":", '"', "%"):
+            return None
+        if after.text in _COUNTED or after.text in DIRECTIONS or self.clock_range(1):
+            return None
+        in_word = after.text == "in" and not self.among(DIRECTIONS, 3)
+        if unit_known(after.text) and not in_word:
+            return None
         if other.tail and unit_known(other.tail):
             return None
         return other
 
-    def plus(self) -> Offset | None:
-        """ "+ 12", "+3/4\"" after a label."""
-        if not self.is_("+") or not self.kind("num", 1):
+    def clock_range(self, ahead: int) -> bool:
+        """ "3 to 5 o'clock": whether an hour here is the start of a range of hours."""
+        joiner = ahead + 1 + 2 * self.is_(":", ahead=ahead + 1)
+        if not self.is_("to", "-", "and", "thru", ahead=joiner):
+            return False
+        last = joiner + 1 + 2 * self.is_(":", ahead=joiner + 2)
+        return self.kind("num", joiner + 1) and self.kind("clock", last + 1)
+
+    # -- signs and words ------------------------------------------------------
+
+    def plus(self, number: Decimal) -> Offset | None:
+        """ "+ 12", "+3/4\"", "minus 3 in" after a label of this number."""
+        token = self.peek()
+        sign = _SIGNS_IN_WORDS.get(token.text, 0) if token.kind == "word" else 0
+        in_words = sign != 0
+        if token.text == "+":
+            sign = 1
+        elif token.text == "-" and self._minus_length(number):
+            sign = -1
+        if not sign or not self.kind("num", 1):
             return None
+        back, asked = self.at, len(self.problems)
+        self.at += 1
+        length = self.length(after_sign=True)
+        if length is None or (in_words and not length.unit):
+            self.at = back
+            del self.problems[asked:]
+            return None
+        return Offset(length, sign)
+
+    def _minus_length(self, number: Decimal) -> bool:
+        """Whether "- 3 in" is a length taken off: it has a unit and no range is meant.
+
+        An inch mark may be a stray quote behind the end of a range, and "in" may be
+        the word: they count only where the second number is the smaller.
+        """
+        back, asked, flagged = self.at, len(self.problems), len(self.codes)
         self.at += 1
         length = self.length()
-        return None if length is None else Offset(length, 1)
+        after, unit_token = self.peek(), self.tokens[self.at - 1]
+        self.at = back
+        del self.problems[asked:], self.codes[flagged:]
+        if length is None or not length.unit:
+            return False
+        if length.unit != "in":
+            return True
+        if length.number >= abs(number):
+            return False
+        prose = unit_token.text == "in" and after.kind == "word"
+        return not prose or after.text in self.words.steps
 
-    def past_key(self, keys: set[str]) -> None:
+    def past_key(self, keys: Collection[str]) -> None:
         token = self.peek()
-        if token is not None and token.kind == "word" and token.text in keys:
+        if token.kind == "word" and token.text in keys:
             self.at += 1
-            self.skip(".", ":", "#", "no")
+            self.skip(".", ":", "#", "no", "nos")
             if self.is_("-") and self.kind("num", 1):
                 self.at += 1
 

@@ -2,25 +2,17 @@
 
 from __future__ import annotations
 
-from dataclasses import replace
-
 from fleet.location.across import reach_of
-from fleet.location.along import (
-    Work,
-    did_you_mean,
-    door_cutout,
-    door_x,
-    station_word,
-    x_range,
-)
-from fleet.location.parts import TINY_MM, Panel, Plane
+from fleet.location.along import Work, did_you_mean, x_range
+from fleet.location.described import described
+from fleet.location.doors import door_cutout, door_x
+from fleet.location.parts import TINY_MM, Plane
 from fleet.location.place import LocationRefused, Place, Position
 from fleet.location.reach import Reach
 from fleet.location.reading import Offer, Problem, Reading
 from fleet.location.sections import Section
-from fleet.location.typegeometry import TypeGeometry, Zone
-from fleet.location.words import INTERNAL
-from fleet.location.writing import write
+from fleet.location.typegeometry import TypeGeometry
+from fleet.location.words import INTERNAL, RIB_WORDS
 
 SECTION_UNKNOWN = "This type has no section “{name}”. It has {offers}."
 SECTION_SIDE = "“{text}” does not say which side. Did you mean {offers}?"
@@ -41,7 +33,7 @@ def place(reading: Reading, geometry: TypeGeometry, variant: str) -> Place:
         raise _refused(work, reading.problems[0])
     _notation(work)
     position = _position(work)
-    return _described(work, geometry, position)
+    return described(work, geometry, position)
 
 
 def _refused(work: Work, problem: Problem) -> LocationRefused:
@@ -63,7 +55,7 @@ def _section(reading: Reading, geometry: TypeGeometry) -> Section:
     """The section that the words of the reading name."""
     name = reading.section or "fuselage"
     own = [s for s in geometry.sections if not s.parent]
-    named = [s for s in own if name in s.words]
+    named = [s for s in own if any(_is_named(name, w) for w in s.words)]
     if not named:
         listed = tuple(Offer("section", s.title) for s in own)
         shown = ", ".join(offer.text for offer in listed)
@@ -83,17 +75,23 @@ def _section(reading: Reading, geometry: TypeGeometry) -> Section:
     raise LocationRefused("E_SIDE_MISSING", message, offers)
 
 
+def _is_named(name: str, word: str) -> bool:
+    """Whether "nacelle" names section word "nacelle 2"."""
+    return word == name or word.rstrip("0123456789 ") == name
+
+
 def _notation(work: Work) -> None:
     """Stations, frames and ribs must be those of the section."""
     reading, section = work.reading, work.section
     words = " or ".join((*section.station_words[:1], section.frame_prefix))
     key = reading.stations[0].key if reading.stations else ""
+    ribbed = any(word.lower() in RIB_WORDS for word in section.frame_words)
     wrong = ""
     if key and not section.words[0].startswith(key):
         wrong = "that station"
-    elif reading.frames and section.frame_prefix != "FR":
+    elif reading.frames and ribbed:
         wrong = f"FR {reading.frames[0].label.upper()}"
-    elif reading.ribs and section.frame_prefix != "RIB":
+    elif reading.ribs and not ribbed:
         wrong = f"RIB {reading.ribs[0].label}"
     elif reading.door and not section.cutouts:
         wrong = f"door {reading.door.name}"
@@ -210,158 +208,3 @@ def _plane_agrees(work: Work, reach: Reach) -> None:
         offers=did_you_mean(offers),
     )
     raise LocationRefused("E_BL_RANGE", message, offers)
-
-
-# -- what is there ------------------------------------------------------------
-
-
-def _described(work: Work, geometry: TypeGeometry, position: Position) -> Place:
-    section = work.section
-    map_mm = section.map_of((position.x1_mm + position.x2_mm) / 2.0, work.variant)
-    s_mm = None
-    if position.s1_mm is not None and position.s2_mm is not None:
-        s_mm = (position.s1_mm + position.s2_mm) / 2.0
-    cutout = None
-    if s_mm is not None and position.surface != "internal":
-        cutout = section.cutout_at(map_mm, s_mm)
-    if cutout is not None and cutout.filled_by:
-        section = geometry.section(cutout.filled_by)
-        position = replace(
-            position,
-            section=section.code,
-            element="door_structure",
-            element_label=section.title,
-        )
-    elif cutout is not None:
-        position = replace(
-            position, element="other", element_label=cutout.label.lower()
-        )
-    elif not position.element:
-        position = replace(position, element="skin")
-    panel = None
-    if s_mm is not None and position.surface != "internal":
-        panel = section.panel_at(map_mm, s_mm, position.surface)
-    in_window = cutout is not None and not cutout.filled_by
-    if in_window:
-        panel = None
-    zone = _zone(geometry, section, position, map_mm, s_mm)
-    return Place(
-        entered=work.reading.text,
-        canonical=write(work, position),
-        codes=tuple(dict.fromkeys(work.codes)),
-        section=section.code,
-        variant=position.variant,
-        x1_mm=position.x1_mm,
-        x2_mm=position.x2_mm,
-        map_mm=map_mm,
-        s1_mm=position.s1_mm,
-        s2_mm=position.s2_mm,
-        surface=position.surface,
-        element=position.element,
-        element_label=position.element_label,
-        side=position.side,
-        bl_mm=_bl(section, position, map_mm, s_mm),
-        wl_mm=_wl(section, position, map_mm, s_mm),
-        along_half=section.half_along(map_mm),
-        around_half=None if s_mm is None else section.half_across(s_mm),
-        bay=_bay(work, map_mm, s_mm),
-        panel=panel.label if panel else None,
-        zone=zone.code if zone else None,
-        thickness_mm=_thickness(section, map_mm, s_mm, position, panel),
-        material=_material(panel),
-        criticality=panel.criticality if panel else "unknown",
-    )
-
-
-def _bl(
-    section: Section, position: Position, map_mm: float, s_mm: float | None
-) -> float | None:
-    """The butt line as read, or that of the skin there."""
-    if s_mm is None or not section.is_shell or section.axis_wl_mm is None:
-        return position.bl_mm
-    return section.bl_of(map_mm, s_mm)
-
-
-def _wl(
-    section: Section, position: Position, map_mm: float, s_mm: float | None
-) -> float | None:
-    """The water line as read, or that of the skin there."""
-    if s_mm is None or not section.is_shell:
-        return position.wl_mm
-    return section.wl_of(map_mm, s_mm)
-
-
-def _thickness(
-    section: Section,
-    map_mm: float,
-    s_mm: float | None,
-    position: Position,
-    panel: Panel | None,
-) -> float | None:
-    if panel is None or s_mm is None:
-        return None
-    return section.thickness_at(map_mm, s_mm, position.surface)
-
-
-def _material(panel: Panel | None) -> str | None:
-    if panel is None:
-        return None
-    material = panel.material
-    return " ".join(x for x in (material.name, material.temper, material.form) if x)
-
-
-def _zone(
-    geometry: TypeGeometry,
-    section: Section,
-    position: Position,
-    map_mm: float,
-    s_mm: float | None,
-) -> Zone | None:
-    if s_mm is not None and position.surface != "internal":
-        return geometry.zone_of_skin(section, map_mm, s_mm)
-    wl_mm = position.wl_mm
-    if wl_mm is None:
-        wl_mm = _plane_wl(section, position.element)
-    if wl_mm is None and s_mm is not None and section.is_shell:
-        wl_mm = section.wl_of(map_mm, s_mm)
-    side = "R" if position.side == "LR" else position.side
-    return geometry.zone_at(section, map_mm, side=side, wl_mm=wl_mm)
-
-
-def _plane_wl(section: Section, element: str) -> float | None:
-    """Water line of the plane that the element runs in."""
-    kind = {"floor_beam": "floor"}.get(element, element)
-    lines = (p.wl_mm for p in section.planes if p.kind == kind)
-    return next(lines, None)
-
-
-def _bay(work: Work, map_mm: float, s_mm: float | None) -> str:
-    """ "FR 28–29, S-7R to S-8R": the frames and stringers about the place."""
-    section = work.section
-    here = [f for f in section.frames if f.x_mm(work.variant) is not None]
-    ahead = [f for f in here if f.map_mm <= map_mm + TINY_MM]
-    behind = [f for f in here if f.map_mm > map_mm + TINY_MM]
-    prefix = section.frame_prefix
-    if ahead and behind:
-        text = f"{prefix} {ahead[-1].label}–{behind[0].label}"
-    elif behind:
-        text = f"ahead of {prefix} {behind[0].label}"
-    else:
-        text = f"beyond {prefix} {ahead[-1].label}" if ahead else ""
-    lines = section.stringers
-    if s_mm is None or not lines:
-        return text
-    if section.is_shell:
-        one = lines[section.bay_across(s_mm)]
-        other = lines[(section.bay_across(s_mm) + 1) % len(lines)]
-        upper, lower = sorted((one, other), key=lambda t: t.number)
-        return f"{text}, {upper.label} to {lower.label}"
-    number = section.bay_across(s_mm)
-    if number == 0:
-        return f"{text}, ahead of {lines[0].label}"
-    if number == len(lines):
-        return f"{text}, behind {lines[-1].label}"
-    return f"{text}, {lines[number - 1].label} to {lines[number].label}"
-
-
-__all__ = ["place", "station_word"]

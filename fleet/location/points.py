@@ -12,92 +12,149 @@ from decimal import Decimal
 
 from fleet.location.cursor import Cursor
 from fleet.location.reading import Across, Along, Offer, Offset, Problem
-from fleet.location.words import (
-    BUTT_WORDS,
-    FRAME_WORDS,
-    RIB_WORDS,
-    SIDE_WORDS,
-    STATION_WORDS,
-    STRINGER_WORDS,
-    WATER_WORDS,
-)
+from fleet.location.tokens import number_lettered, number_of
+from fleet.location.words import BUTT_WORDS, SIDE_WORDS, SPARS, WATER_WORDS
 
 LETTERS = frozenset("abcdefghijklmnpqrstuvwxyz")
 """What may hang on a station or frame label; O is a nought."""
 SIDE_LETTERS = frozenset({"l", "r", "lh", "rh", "lt", "rt"})
 BUTT_PHRASE = frozenset({"left", "right", "butt"})
-REFERENCES = frozenset(
-    STATION_WORDS.keys() | FRAME_WORDS | RIB_WORDS | STRINGER_WORDS
-    | BUTT_WORDS.keys() | WATER_WORDS
-)  # fmt: skip
+BEFORE_REFERENCE = frozenset({"the", "fin", "wing", "lh", "rh", "left", "right"})
+JOINERS = frozenset({"to", "thru", "through", "and", "&", "-", "/"})
+CLOCK = re.compile(r"(\d{1,2}):(\d{1,2})")
+VIEW = re.compile(r"looking\s+(aft|f)")
+DOOR = re.compile(r"\d[lr]")
 Point = Along | Across
 
 WHICH_WAY = "“{text}” does not say which way. Did you mean {offers}?"
 TWO_POINTS = "“{first}” and “{second}” are two locations. Join a range with “to”."
 AMBIGUOUS = "“{text}” may be read in more than one way. Did you mean {offers}?"
+STRAY_SIGN = "“{text}” gives no length to add. Write it once, as STA 640+12."
 NO_CLOCK = "“{text} o'clock” is no hour of the clock. Use 12, 1 … 11, or 7:30."
 
 
 def station_point(c: Cursor, key: str) -> Along | None:
-    token = c.peek()
-    minus = False
-    if token is not None and token.kind == "word":
+    hyphen = minus = False
+    if c.kind("word"):
         if key != "fin":
-            key = STATION_WORDS.get(token.text, key)
+            key = c.words.stations.get(c.peek().text, key)
         c.at += 1
         c.skip(".", ":", "#", "@", "no")
         if c.is_("s", "y", "x") and c.kind("num", 1 + c.is_("=", ahead=1)):
             c.at += 1
             c.skip("=")
-        if c.is_("-") and c.kind("num", 1):
-            minus = not c.touching() and c.touching(1)
-            c.at += 1
+        _letter_first(c)
+        hyphen = c.is_("-") and c.kind("num", 1)
+        minus = hyphen and not c.touching() and c.touching(1)
+    elif c.is_("-") and c.touching(1):  # "-20" at the end of a range
+        hyphen = minus = True
+    c.at += hyphen
     value = c.value("station", LETTERS)
     if value is None:
         return None
     number, letter = value
-    return Along("station", key, -number if minus else number, letter, c.plus())
+    joined = hyphen and not minus
+    offset = c.plus(number)
+    return Along("station", key, -number if minus else number, letter, offset, joined)
+
+
+def _letter_first(c: Cursor) -> None:
+    """ "STA l20", "STA O40": a letter that stands for the first digit."""
+    if c.is_("l", "i", "o", "lo") and c.kind("num", 1) and c.touching(1):
+        letter, token = c.peek(), c.peek(1)
+        digits = letter.text.translate(str.maketrans("lio", "110"))
+        read = (letter.text + token.text + token.tail).upper()
+        c.problems.append(number_lettered(read, digits + token.text))
+        c.at += 1
 
 
 def frame_point(c: Cursor) -> Along | None:
-    c.past_key(FRAME_WORDS)
+    c.past_key(c.words.frames)
     value = c.value("frame", LETTERS)
     if value is None:
         return None
-    return Along("frame", "", value[0], value[1], c.plus())
+    return Along("frame", "", value[0], value[1], c.plus(value[0]))
 
 
 def rib_point(c: Cursor) -> Along | None:
-    c.past_key(RIB_WORDS)
+    c.past_key(c.words.ribs)
     value = c.value("rib")
-    return None if value is None else Along("rib", "", value[0], "", c.plus())
+    return None if value is None else Along("rib", "", value[0], "", c.plus(value[0]))
 
 
 def stringer_follows(c: Cursor) -> bool:
-    token = c.peek()
-    ahead = 1 + (c.is_("-", ".", ahead=1))
-    if not c.kind("num", ahead):
+    """Whether the word here names a stringer: "S-7R", "STR NO. 7", "STR L7"."""
+    plain = len(c.peek().text) == 1
+    ahead = 1
+    while c.is_("-", ".", "#", "no", "nos", ahead=ahead) and ahead < 4:
+        ahead += 1
+    if not plain and c.is_("l", "r", ahead=ahead) and c.touching(ahead + 1):
+        ahead += 1
+    number = c.peek(ahead)
+    if number.kind != "num":
         return False
-    number = c.tokens[c.at + ahead].text
-    plain = token is not None and token.text == "s"
-    return not plain or (number.isdigit() and len(number) <= 2)
+    return not plain or (number.text.isdigit() and len(number.text) <= 2)
 
 
 def stringer_point(c: Cursor) -> Across | None:
-    c.past_key(STRINGER_WORDS)
+    c.past_key(c.words.stringers)
+    before = ""
+    if c.is_("l", "r") and c.kind("num", 1) and c.touching(1):
+        before = c.peek().text.upper()
+        c.at += 1
     value = c.value("stringer", SIDE_LETTERS)
     if value is None:
         return None
-    side = value[1][:1].upper()
-    if not side and c.is_("l", "r") and not c.is_("&", "/", ahead=1):
-        side = c.tokens[c.at].text.upper()
+    side = value[1][:1].upper() or before
+    if side:
+        return Across("stringer", value[0], side)
+    text = c.peek().text
+    if text in ("l", "r") and not c.is_("&", "/", ahead=1):
+        side = text.upper()
         c.at += 1
-    elif not side and c.kind("word") and c.is_(*SIDE_WORDS):
-        side = SIDE_WORDS[c.tokens[c.at].text]
+    elif text in SIDE_WORDS:
+        side = SIDE_WORDS[text]
         if not butt_words(c):
             c.at += 1
             c.sides.append(side)
     return Across("stringer", value[0], side)
+
+
+def spar_here(c: Cursor, ahead: int = 0) -> bool:
+    """ "front spar", or "front" in "front and rear spar"."""
+    if not c.among(SPARS, ahead):
+        return False
+    if c.is_("spar", "spars", ahead=ahead + 1):
+        return True
+    joined = c.among(JOINERS, ahead + 1) and c.among(SPARS, ahead + 2)
+    return joined and c.is_("spar", "spars", ahead=ahead + 3)
+
+
+def spar_point(c: Cursor) -> Across | None:
+    if not spar_here(c):
+        return None
+    name = SPARS[c.peek().text]
+    c.at += 1
+    c.skip("spar", "spars")
+    return Across("spar", Decimal(0), "", None, name)
+
+
+def chord_follows(c: Cursor) -> bool:
+    """ "30 % chord", "30% to 40% of chord": whether a share of the chord is here."""
+    ahead = 1 + c.is_("%", ahead=1)
+    if c.among(JOINERS, ahead) and c.kind("num", ahead + 1):
+        ahead += 2 + c.is_("%", ahead=ahead + 2)
+    of = ahead + c.is_("of", ahead=ahead)
+    return c.is_("%", ahead=ahead - 1) and c.is_("chord", ahead=of)
+
+
+def chord_point(c: Cursor) -> Across | None:
+    number, _ = number_of(c.peek().text)
+    if number is None:
+        return None
+    c.at += 1
+    c.skip("%", "of", "chord")
+    return Across("chord", number)
 
 
 def butt_words(c: Cursor) -> bool:
@@ -111,7 +168,7 @@ def butt_point(c: Cursor) -> Across | None:
     if butt_words(c):
         side = SIDE_WORDS.get(c.tokens[c.at].text, "")
         c.at += 3 if side else 2
-    elif c.is_(*BUTT_WORDS):
+    elif c.among(BUTT_WORDS):
         side = BUTT_WORDS[c.tokens[c.at].text]
         c.at += 1
     c.skip(".", ":", "#", "=")
@@ -130,7 +187,7 @@ def butt_point(c: Cursor) -> Across | None:
 def water_point(c: Cursor) -> Across | None:
     if c.is_("water"):
         c.at += 2
-    elif c.is_(*WATER_WORDS):
+    elif c.among(WATER_WORDS):
         c.at += 1
     c.skip(".", ":", "#", "=", "-")
     value = c.value("wl")
@@ -145,17 +202,18 @@ def clock_point(c: Cursor) -> float | None:
     token = c.tokens[c.at]
     timed = c.is_(":", ahead=1) and c.kind("num", 2)
     ahead = 3 if timed else 1
-    if not c.kind("clock", ahead):
+    ranged = c.clock_range(0)
+    if not (c.kind("clock", ahead) or ranged):
         return None
     shown = c.text[token.start : c.tokens[c.at + ahead - 1].end]
     minutes = c.tokens[c.at + 2].text if timed else "0"
-    c.at += ahead + 1
-    found = re.fullmatch(r"(\d{1,2}):(\d{1,2})", f"{token.text}:{minutes}")
+    c.at += ahead + (not ranged)
+    found = CLOCK.fullmatch(f"{token.text}:{minutes}")
     if found is None or not 1 <= int(found[1]) <= 12 or int(found[2]) > 59:
         c.ask("E_CLOCK", NO_CLOCK.format(text=shown))
         return None
     degrees = int(found[1]) % 12 * 30.0 + int(found[2]) / 2.0
-    view = re.search(r"looking\s+(aft|f)", c.low)
+    view = VIEW.search(c.low)
     if view is None:
         c.codes.append("W_VIEW_ASSUMED")
     return (360.0 - degrees) % 360.0 if view and view[1] == "aft" else degrees
@@ -175,8 +233,8 @@ def door_name(c: Cursor) -> str:
         return f"{which} cargo".upper()
     ahead = 1 if c.is_("door") else 0
     token = c.peek(ahead)
-    named = token is not None and re.fullmatch(r"\d[lr]", token.text + token.tail)
-    if token is None or not named or not (ahead or c.is_("door", ahead=1)):
+    named = token.tail and DOOR.fullmatch(token.text + token.tail)
+    if not named or not (ahead or c.is_("door", ahead=1)):
         return ""
     c.at += 2
     return (token.text + token.tail).upper()
@@ -186,7 +244,8 @@ def point_text(point: Point) -> str:
     """A point as the reader understood it, for messages."""
     if isinstance(point, Along):
         plus = point.offset
-        more = f"+{plus.length.number:f}" if plus and not plus.written else ""
+        sign = "-" if plus and plus.sign < 0 else "+"
+        more = f"{sign}{plus.length.number:f}" if plus and not plus.written else ""
         word = {"frame": "FR", "rib": "RIB"}.get(point.kind, "STA")
         return f"{word} {point.label.upper()}{more}"
     if point.kind == "stringer":
@@ -195,9 +254,10 @@ def point_text(point: Point) -> str:
 
 
 def reference_follows(c: Cursor, ahead: int = 0) -> bool:
-    """Whether a word of a station, frame, rib, stringer or line is ahead."""
-    token = c.peek(ahead)
-    return token is not None and token.text in REFERENCES
+    """Whether a station, frame, rib, stringer, line or spar is named ahead."""
+    while c.among(BEFORE_REFERENCE, ahead) and ahead < 4:
+        ahead += 1
+    return c.among(c.words.references, ahead) or spar_here(c, ahead)
 
 
 def sign_after(c: Cursor, point: Point) -> None:
@@ -221,10 +281,18 @@ def listed(c: Cursor, start: int) -> None:
     if not c.is_(",") or not c.kind("num", 1):
         return
     second = c.tokens[c.at + 1]
-    if second.tail or not (c.peek(2) is None or reference_follows(c, 2)):
+    if second.tail or not (c.kind("end", 2) or reference_follows(c, 2)):
         return
     first = c.text[c.tokens[start].start : c.tokens[c.at - 1].end]
     c.ask("E_TWO_POINTS", TWO_POINTS.format(first=first, second=second.text))
+
+
+def stray_sign(c: Cursor) -> None:
+    """ "STA 420+ S-9L", "STA 420+12+3": a sign that nothing can be made of."""
+    if not c.is_("+"):
+        return
+    text = f"+ {c.peek(1).text}".strip()
+    c.ask("E_NUM", STRAY_SIGN.format(text=text))
 
 
 def hyphen_unclear(first: Point, last: Point) -> Problem:

@@ -7,7 +7,10 @@ from dataclasses import dataclass
 from fleet.location.along import Work
 from fleet.location.parts import TINY_MM
 from fleet.location.place import LocationRefused
+from fleet.location.reading import Offer
 
+NO_LINES = "{what} is not a notation of this {section}; use {words}."
+SIDE_MISSING = "{what} has no side. Did you mean {offers}?"
 HALF_ROUND = "{what} is as far over the crown as over the keel; name a line between."
 
 CENTRELINE_MM = 0.04
@@ -55,3 +58,10 @@ def arc_reach(work: Work, s1_mm: float, s2_mm: float) -> Reach:
         work.codes.append("W_CROSSES_CENTRELINE")
         return Reach(start, end, "LR")
     return Reach(start, end, "L" if start + end < 0.0 else "R")
+
+
+def side_missing(what: str, *texts: str) -> LocationRefused:
+    """The question on which side, with a text for each."""
+    offers = tuple(Offer("side", text) for text in texts)
+    message = SIDE_MISSING.format(what=what, offers=" or ".join(texts))
+    return LocationRefused("E_SIDE_MISSING", message, offers)

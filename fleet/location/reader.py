@@ -6,52 +6,36 @@ question with offers; the value it is about is then not given.
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import replace
-from decimal import Decimal
 from typing import Any
 
-from fleet.location.cursor import Cursor
 from fleet.location.points import (
     BUTT_PHRASE,
-    TWO_POINTS,
-    Point,
     butt_point,
     butt_words,
+    chord_follows,
+    chord_point,
     clock_point,
     door_name,
     door_named,
     frame_point,
-    hyphen_unclear,
-    listed,
-    order_of,
-    point_text,
     reference_follows,
     rib_point,
-    sign_after,
+    spar_here,
+    spar_point,
     station_point,
     stringer_follows,
     stringer_point,
     water_point,
-    with_offset,
 )
-from fleet.location.reading import (
-    Across,
-    Door,
-    Offset,
-    Problem,
-    Reading,
-)
+from fleet.location.ranges import Ranges
+from fleet.location.reading import Door, Offset, Problem, Reading
+from fleet.location.vocabulary import USUAL, Vocabulary
 from fleet.location.words import (
+    BEFORE_SURFACE,
     BUTT_WORDS,
     DIRECTIONS,
-    FRAME_WORDS,
-    RANGE_WORDS,
-    RIB_WORDS,
     SIDE_WORDS,
     SPARS,
-    STATION_WORDS,
-    STRINGER_WORDS,
     SURFACE_NOUNS,
     SURFACES,
     WATER_WORDS,
@@ -62,56 +46,61 @@ from fleet.location.words import (
 EMPTY = "Nothing was given. Write a location such as STA 640+10 S-7R."
 VALUE_MISSING = "“{word}” has no number after it. Write it as {word} 640."
 NO_ALONG = "“{text}” does not say where along the section. Add a station or frame."
-NO_REFERENCE = "“{text}” does not say of what. Add a frame, station, stringer or door."
 HOW_FAR = "“{text} of” does not say how far. Write it as 12 in {text} of ..."
 
+_BUTT_KEYS = BUTT_WORDS.keys() | BUTT_PHRASE
 
-def read(text: str) -> Reading:
-    """The reading of a text; problems are in it."""
+
+def read(text: str, words: Vocabulary = USUAL) -> Reading:
+    """The reading of a text; problems are in it.
+
+    `words` are the usual ones; those of a type's file come by `vocabulary_of`.
+    """
     if not text.strip():
         return Reading(text, problems=(Problem("E_EMPTY", EMPTY),))
-    return _Reader(text).reading()
+    return _Reader(text, words).reading()
 
 
-class _Reader(Cursor):
+class _Reader(Ranges):
     """One pass over the tokens of a text."""
 
-    def __init__(self, text: str) -> None:
-        super().__init__(text)
-        self.found: dict[str, tuple[Any, ...]] = {}
+    def __init__(self, text: str, words: Vocabulary) -> None:
+        super().__init__(text, words)
         self.said: dict[str, Any] = {}
-        self.pending: Offset | None = None
-        self.pending_text = ""
         self.valueless = ""
 
     # -- the whole ------------------------------------------------------------
 
     def reading(self) -> Reading:
-        while self.at < len(self.tokens):
+        while self.at < self.end:
             before = self.at
             self._step()
             if self.at == before:
                 self.at += 1
         self._pending_lost()
-        element, label = element_of(self.low)
+        words = {token.text for token in self.tokens}
+        element, label = element_of(self.low, words)
+        side = self._one_side()
+        self._along_missing(element)
         parts: dict[str, Any] = self.found | self.said
-        reading = Reading(
+        return Reading(
             text=self.text,
-            section=self._section(),
-            side=self._one_side(),
+            section=self._section(words),
+            side=side,
             element=element,
             element_label=label,
             codes=tuple(dict.fromkeys(self.codes)),
+            problems=tuple(self.problems),
             **parts,
         )
-        self._along_missing(reading)
-        return replace(reading, problems=tuple(self.problems))
 
-    def _section(self) -> str:
+    def _section(self, words: set[str]) -> str:
         """The section named, or else the one that the notation belongs to."""
+        named = section_named(self.low, words)
+        if named:
+            return named
         stations = self.found.get("stations")
-        key = str(stations[0].key) if stations else "wing" * ("ribs" in self.found)
-        return section_named(self.low) or key
+        return str(stations[0].key) if stations else "wing" * ("ribs" in self.found)
 
     def _one_side(self) -> str:
         sides = set(self.sides)
@@ -119,9 +108,10 @@ class _Reader(Cursor):
             self.ask("E_SIDE_CONFLICT", "The text says both left and right; keep one.")
         return sides.pop() if len(sides) == 1 else ""
 
-    def _along_missing(self, reading: Reading) -> None:
-        given = reading.stations or reading.frames or reading.ribs or reading.door
-        if given or reading.element == "bulkhead" or self.problems:
+    def _along_missing(self, element: str) -> None:
+        found = self.found
+        given = "stations" in found or "frames" in found or "ribs" in found
+        if given or "door" in self.said or element == "bulkhead" or self.problems:
             return
         if self.valueless:
             word = self.valueless.upper()
@@ -137,50 +127,64 @@ class _Reader(Cursor):
             self._number()
         elif token.kind == "side":
             self._side(token.text)
-        elif token.kind == "word":
+        elif token.kind == "word" and token.text in self.words.steps:
             self._word(token.text)
 
     def _word(self, word: str) -> None:
-        if word in STATION_WORDS or self._fin_station():
+        words = self.words
+        if word in words.stations or (word == "fin" and self._fin_station()):
             self._station(word)
-        elif word in FRAME_WORDS:
-            self._points("frames", "frame", frame_point, FRAME_WORDS)
-        elif word in RIB_WORDS:
-            self._points("ribs", "rib", rib_point, RIB_WORDS)
+        elif word in words.frames:
+            self._points("frames", "frame", frame_point, words.frames)
+        elif word in words.stringers and stringer_follows(self):
+            self._points("stringers", "stringer", stringer_point, words.stringers)
+        elif word in words.ribs:
+            self._points("ribs", "rib", rib_point, words.ribs)
         elif word in BUTT_WORDS or (word in BUTT_PHRASE and butt_words(self)):
-            keys = BUTT_WORDS.keys() | BUTT_PHRASE
-            self._points("butt_lines", "bl", butt_point, keys)
+            self._points("butt_lines", "bl", butt_point, _BUTT_KEYS)
         elif word in WATER_WORDS or (word == "water" and self.is_("line", ahead=1)):
             self._points("water_lines", "wl", water_point, WATER_WORDS)
-        elif word in STRINGER_WORDS and stringer_follows(self):
-            self._points("stringers", "stringer", stringer_point, STRINGER_WORDS)
-        elif word == "door" or door_named(self):
+        else:
+            self._plain_word(word)
+
+    def _plain_word(self, word: str) -> None:
+        """A word that stands before no number."""
+        if word == "door" or door_named(self):
             self._door()
-        elif word in SPARS and self.is_("spar", ahead=1):
-            self._spar()
-        elif word in SURFACES and self._surface_noun():
+        elif word in SPARS and spar_here(self):
+            self._points("spars", "spar", spar_point, SPARS)
+        elif word in SURFACES and self._surface():
             self.said.setdefault("surface", SURFACES[word])
-            self.at += 2
         elif word in SIDE_WORDS:
             self._side(word)
-        elif word in DIRECTIONS and self._direction_of_spar():
+        elif word in DIRECTIONS and spar_here(self, 1 + self.is_("of", ahead=1)):
             self._spar_side(word)
         elif word in DIRECTIONS and self.is_("of", ahead=1):
             self._length_missing()
+        elif word in DIRECTIONS and self.kind("num", 1):
+            self._length_behind(word)
 
     def _side(self, word: str) -> None:
         if not self.is_("hand", ahead=1) or word in ("left", "right"):
             self.sides.append(SIDE_WORDS[word])
         self.at += 1
 
-    def _surface_noun(self) -> bool:
-        token = self.peek(1)
-        return token is not None and token.text in SURFACE_NOUNS
+    def _surface(self) -> bool:
+        """Whether "upper" here means a skin: "upper LH wing skin", "HS 64 upper"."""
+        if self.kind("end", 1) or self.is_(",", ";", ahead=1):
+            return self.is_("upper", "lower")
+        ahead = 1
+        while self.among(BEFORE_SURFACE, ahead) and ahead < 4:
+            ahead += 1
+        if not self.among(SURFACE_NOUNS, ahead):
+            return False
+        self.at += 2 if ahead == 1 else 1
+        return True
 
     # -- lengths and numbers --------------------------------------------------
 
     def _number(self) -> None:
-        """A number on its own: the clock, or a length from a reference."""
+        """A number on its own: the clock, a share, or a length from a reference."""
         before = self.at
         degrees = clock_point(self)
         if degrees is not None:
@@ -188,6 +192,8 @@ class _Reader(Cursor):
             self.found["clock_degrees"] = (*known, degrees)
         elif self.is_("door", ahead=1):
             self._door()
+        elif chord_follows(self):
+            self._points("chords", "chord", chord_point, ())
         if self.at == before:
             self._offset()
 
@@ -195,16 +201,15 @@ class _Reader(Cursor):
         """ "12 in aft of": kept for the reference that must follow."""
         start = self.at
         length = self.length()
-        token = self.peek()
-        if length is None or token is None or token.text not in DIRECTIONS:
+        if length is None or not self.among(DIRECTIONS):
             self.at = start + 1
             return
-        direction = DIRECTIONS[token.text]
+        direction = DIRECTIONS[self.peek().text]
         self.at += 1
         of = self.is_("of", "from")
-        if of:
-            self.at += 1
-        if not (of or reference_follows(self) or self._sentence_ends()):
+        self.at += of
+        follows = of or reference_follows(self)
+        if not follows and not (self.kind("end") or self.is_(",", ";", ".", ")")):
             self.at = start + 1
             return
         if not length.unit:
@@ -213,18 +218,8 @@ class _Reader(Cursor):
         first, last = self.tokens[start], self.tokens[self.at - 1]
         self.pending = Offset(length, 0, direction)
         self.pending_text = self.text[first.start : last.end]
-
-    def _sentence_ends(self) -> bool:
-        return self.peek() is None or self.is_(",", ";", ".", ")")
-
-    def _pending_lost(self) -> None:
-        if self.pending is not None:
-            self.ask("E_REL_NO_REF", NO_REFERENCE.format(text=self.pending_text))
-            self.pending = None
-
-    def _take_pending(self) -> Offset | None:
-        pending, self.pending = self.pending, None
-        return pending
+        if not follows:
+            self._pending_lost()
 
     def _length_missing(self) -> None:
         """ "aft of FR 20" with no length before it."""
@@ -233,115 +228,35 @@ class _Reader(Cursor):
             self.ask("E_REL_NO_REF", HOW_FAR.format(text=direction))
         self.at += 2
 
-    # -- ranges ---------------------------------------------------------------
-
-    def _points(
-        self,
-        name: str,
-        kind: str,
-        one: Callable[[Cursor], Point | None],
-        keys: set[str],
-    ) -> None:
-        """One or two points of a kind and put them on record."""
-        start = self.at
-        offset = self._take_pending()
-        asked = len(self.problems)
-        first = one(self)
-        if first is None:
-            if offset is not None and len(self.problems) == asked:
-                self.pending = offset
-            self.at = max(self.at, start + 1)
-            return
-        first = with_offset(first, offset)
-        last = self._range_end(first, one, keys, kind)
-        if len(self.problems) > asked:
-            return
-        self._record(name, (first,) if last is None else (first, last), start)
-        if kind == "stringer":
-            sign_after(self, last or first)
-        elif kind in ("station", "frame"):
-            listed(self, start)
-
-    def _range_end(
-        self,
-        first: Point,
-        one: Callable[[Cursor], Point | None],
-        keys: set[str],
-        kind: str,
-    ) -> Point | None:
-        joiner = self.peek()
-        if joiner is None or joiner.text not in RANGE_WORDS or joiner.kind == "num":
-            return None
-        back, codes, asked = self.at, len(self.codes), len(self.problems)
+    def _length_behind(self, word: str) -> None:
+        """ "FR 20 aft 12 in": the length behind its direction is asked about."""
         self.at += 1
-        self.skip("between", "of", "the")
-        offset = self._offset_ahead()
-        token = self.peek()
-        keyed = token is not None and token.kind == "word" and token.text in keys
-        if keyed or (token is not None and token.kind == "num"):
-            last = one(self)
-            if last is not None and len(self.problems) == asked:
-                last = with_offset(last, offset)
-                if order_of(last) >= order_of(first) or first.number == last.number:
-                    return last
-                if joiner.text == "-" and not keyed and kind in ("station", "frame"):
-                    self.problems.append(hyphen_unclear(first, last))
-                    return None
-                if keyed or joiner.text in ("to", "thru", "through", "-"):
-                    return last
-            elif joiner.text not in ("and", "&", "/"):
-                return None
-        self.at = back
-        del self.codes[codes:], self.problems[asked:]
-        return None
-
-    def _offset_ahead(self) -> Offset | None:
-        """ "2 in above" before the end of a range."""
-        back = self.at
+        start = self.at
         length = self.length()
-        token = self.peek()
-        if length is not None and token is not None and token.text in DIRECTIONS:
-            self.at += 1
-            self.skip("of")
-            if reference_follows(self):
-                if not length.unit:
-                    self.codes.append("W_UNIT_ASSUMED")
-                return Offset(length, 0, DIRECTIONS[token.text])
-        self.at = back
-        return None
+        known = self.found.keys() & {"stations", "frames", "ribs", "stringers"}
+        if length is None or not length.unit or self.among(DIRECTIONS) or not known:
+            self.at = start
+            return
+        text = self.text[self.tokens[start].start : self.tokens[self.at - 1].end]
+        self.pending = Offset(length, 0, DIRECTIONS[word])
+        self.pending_text = f"{text} {word}"
+        self._pending_lost()
 
-    def _record(self, name: str, points: tuple[Point, ...], start: int) -> None:
-        before = self.found.get(name)
-        if before is None:
-            self.found[name] = points
-        elif before != points:
-            text = self.text[self.tokens[start].start : self.tokens[self.at - 1].end]
-            first = " ".join(str(point_text(p)) for p in before)
-            if not any(p.code == "E_TWO_POINTS" for p in self.problems):
-                message = TWO_POINTS.format(first=first, second=text.strip())
-                self.ask("E_TWO_POINTS", message)
-
-    # -- stations, frames, ribs -----------------------------------------------
+    # -- stations, doors and spars --------------------------------------------
 
     def _fin_station(self) -> bool:
-        return self.is_("fin") and (
-            self.is_("sta", "station", ahead=1) or self.kind("num", 1)
-        )
+        return self.is_("sta", "station", ahead=1) or self.kind("num", 1)
 
     def _station(self, word: str) -> None:
-        key = STATION_WORDS.get(word, "fin")
+        key = self.words.stations.get(word, "fin")
         if word == "fin":
             self.at += not self.kind("num", 1)
-        before = len(self.problems)
-        known = dict(self.found)
-        self._points(
-            "stations", "station", lambda c: station_point(c, key), set(STATION_WORDS)
-        )
-        nothing = len(self.problems) == before and known == self.found
-        if nothing and not self.pending and "stations" not in self.found:
+        before, known = len(self.problems), self.found.get("stations")
+        stations = self.words.stations
+        self._points("stations", "station", lambda c: station_point(c, key), stations)
+        nothing = len(self.problems) == before and not self.found.get("stations")
+        if nothing and not known and not self.pending:
             self.valueless = self.valueless or word
-
-    # -- doors and spars ------------------------------------------------------
 
     def _door(self) -> None:
         """ "door 2L", "2L door", "aft cargo door"; then its edge, if said."""
@@ -349,7 +264,7 @@ class _Reader(Cursor):
         if not name:
             return
         edge = ""
-        if self.is_(*DIRECTIONS) and self.is_("frame", "edge", "jamb", ahead=1):
+        if self.among(DIRECTIONS) and self.is_("frame", "edge", "jamb", ahead=1):
             edge = DIRECTIONS[self.tokens[self.at].text]
             self.at += 2
         offset = self._take_pending()
@@ -357,19 +272,9 @@ class _Reader(Cursor):
             self.codes.append("W_REF_EDGE")
         self.said.setdefault("door", Door(name, edge, offset))
 
-    def _direction_of_spar(self) -> bool:
-        """ "aft of rear spar" without a length."""
-        ahead = 1 + self.is_("of", ahead=1)
-        return self.is_(*SPARS, ahead=ahead) and self.is_("spar", ahead=ahead + 1)
-
     def _spar_side(self, word: str) -> None:
+        """ "aft of rear spar" without a length."""
         self.at += 1 + self.is_("of", ahead=1)
-        if "spar" not in self.said:
+        if "spars" not in self.found:
             self.said["spar_side"] = DIRECTIONS[word]
-        self._spar()
-
-    def _spar(self) -> None:
-        name = SPARS[self.tokens[self.at].text]
-        offset = self._take_pending()
-        self.said.setdefault("spar", Across("spar", Decimal(0), "", offset, name))
-        self.at += 2
+        self._points("spars", "spar", spar_point, SPARS)

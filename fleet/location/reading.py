@@ -7,7 +7,7 @@ from decimal import Decimal
 
 from fleet.units import FACTORS
 
-READER_VERSION = "1"
+READER_VERSION = "2"
 
 
 @dataclass(frozen=True)
@@ -62,6 +62,8 @@ class Along:
     number: Decimal
     letter: str = ""
     offset: Offset | None = None
+    hyphen: bool = field(default=False, compare=False)
+    """Whether a hyphen joined it to its word: "STA-12", which may be a minus."""
 
     @property
     def label(self) -> str:
@@ -71,7 +73,7 @@ class Along:
 
 @dataclass(frozen=True)
 class Across:
-    """A stringer, butt line, water line or spar, with what is to be added to it."""
+    """A stringer, line, spar or share of the chord, with what is to be added to it."""
 
     kind: str
     number: Decimal
@@ -103,7 +105,9 @@ class Reading:
     butt_lines: tuple[Across, ...] = ()
     water_lines: tuple[Across, ...] = ()
     clock_degrees: tuple[float, ...] = ()
-    spar: Across | None = None
+    spars: tuple[Across, ...] = ()
+    chords: tuple[Across, ...] = ()
+    """Shares of the chord in per cent."""
     spar_side: str = ""
     """fwd or aft, where no length from the spar is given."""
     surface: str = ""

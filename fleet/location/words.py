@@ -11,11 +11,11 @@ STATION_WORDS = {
 }  # fmt: skip
 """Section that a station word belongs to; "FIN STA" is read as two words."""
 
-FRAME_WORDS = {"fr", "frame", "frames", "frs"}
-RIB_WORDS = {"rib", "ribs"}
-STRINGER_WORDS = {
-    "s", "str", "strs", "strg", "stgr", "stgrs", "stringer", "stringers",
-}  # fmt: skip
+FRAME_WORDS = frozenset({"fr", "frame", "frames", "frs"})
+RIB_WORDS = frozenset({"rib", "ribs"})
+STRINGER_WORDS = frozenset(
+    {"s", "str", "strs", "strg", "stgr", "stgrs", "stringer", "stringers"}
+)
 BUTT_WORDS = {
     "bl": "", "rbl": "R", "lbl": "L", "blr": "R", "bll": "L", "rhbl": "R", "lhbl": "L",
 }  # fmt: skip
@@ -45,8 +45,9 @@ SURFACES = {
     "inner": "inner", "inside": "inner",
 }  # fmt: skip
 SURFACE_NOUNS = {"skin", "skins", "surface", "surfaces", "panel"}
+BEFORE_SURFACE = {"wing", "lh", "rh", "left", "right", "tail", "horizontal", "hstab"}
 
-RANGE_WORDS = {"to", "thru", "through", "and", "until", "&", "/", "-"}
+RANGE_WORDS = frozenset({"to", "thru", "through", "and", "until", "&", "/", "-"})
 
 OTHER_UNITS = {
     "yard", "yards", "yd", "yds", "mil", "mils", "mile", "miles", "micron", "microns",
@@ -54,7 +55,9 @@ OTHER_UNITS = {
 }  # fmt: skip
 
 SECTION_WORDS = re.compile(
-    r"\b(?:(?P<nacelle>nac(?:elle)?\s*(?:no\.?|nr\.?|\#)?\s*(?P<number>\d)\b)"
+    r"(?:(?:\bno\.?|\bnr\.?|\#)\s*(?P<first>\d)\s+)"
+    r"(?:(?:lh|rh|left|right)\s+)?nac(?:elle)?\b"
+    r"|\b(?:(?P<nacelle>nac(?:elle)?\b\s*(?:(?:no\.?|nr\.?|\#)?\s*(?P<number>\d)\b)?)"
     r"|(?P<tail>h\.?\s?stab(?:ili[sz]er)?\b|tailplane\b"
     r"|horiz(?:ontal)?\.?\s+(?:stab(?:ili[sz]er)?|tail)\b)"
     r"|(?P<fin>fin\b|vert(?:ical)?\.?\s+(?:stab(?:ili[sz]er)?|fin|tail)\b|vstab\b)"
@@ -63,20 +66,32 @@ SECTION_WORDS = re.compile(
 )
 
 ELEMENT_WORDS = re.compile(
-    r"\b(?:(?P<floor_beam>floor\s+beam)"
-    r"|(?P<seat_track>seat\s+track)"
-    r"|(?P<keel_beam>keel\s+beam)"
+    r"\b(?:(?P<floor_beam>floor\s+beams?)"
+    r"|(?P<seat_track>seat\s+tracks?)"
+    r"|(?P<keel_beam>keel\s+beams?)"
     r"|(?P<bulkhead>(?P<which>fwd|forward|aft)?\s*(?:press(?:ure)?\.?\s+)?"
     r"(?:blkhd|bulkhead|bhd)\b)"
-    r"|(?P<shear_clip>shear\s+(?:clip|tie))"
-    r"|(?P<frame>fr(?:ame)?s?\b\.?\s*-?\s*(?:\d+\w?\s+)?(?P<part>web|cap)\b)"
-    r"|(?P<spar_cap>spar\s+(?:cap|chord))"
-    r"|(?P<spar_web>spar\s+web)"
-    r"|(?P<fitting>fitting)"
-    r"|(?P<fairing>fairing)"
+    r"|(?P<shear_clip>shear\s+(?:clip|tie)s?)"
+    r"|(?P<frame>fr(?:ame)?s?\b\.?\s*-?\s*(?:\d+\w?\s+)?(?P<part>web|cap)s?)"
+    r"|(?P<spar_cap>spar\s+(?:cap|chord)s?)"
+    r"|(?P<spar_web>spar\s+webs?)"
+    r"|(?P<fitting>fittings?)"
+    r"|(?P<fairing>fairings?)"
     r"|(?P<door_structure>door\s+(?:structure|skin))"
-    r"|(?P<skin>skin|lap\s+joint|butt\s+joint)\b)"
+    r"|(?P<skin>skin|lap\s+joint|butt\s+joint))\b"
 )
+
+_SECTION_HEADS = frozenset(
+    {"nac", "nacelle", "h", "hstab", "hstabilizer", "hstabiliser", "tailplane",
+     "horiz", "horizontal", "fin", "vert", "vertical", "vstab", "wing", "fuselage",
+     "fus"}
+)  # fmt: skip
+_ELEMENT_HEADS = frozenset(
+    {"beam", "beams", "track", "tracks", "blkhd", "bulkhead", "bhd", "clip", "clips",
+     "tie", "ties", "web", "webs", "cap", "caps", "chord", "chords", "fitting",
+     "fittings", "fairing", "fairings", "structure", "skin", "joint"}
+)  # fmt: skip
+"""Without one of these words a text names no section, or no structural item."""
 
 ELEMENT_PHRASES = {
     "floor_beam": "FLOOR BEAM",
@@ -99,22 +114,26 @@ INTERNAL = {
 KEEL_BEAM = "KEEL BEAM"
 
 
-def section_named(text: str) -> str:
-    """The section a lower-case text names: "wing", "nacelle 2"; '' if none."""
+def section_named(text: str, words: set[str]) -> str:
+    """The section a lower-case text of these words names: "nacelle 2"; '' if none."""
+    if _SECTION_HEADS.isdisjoint(words):
+        return ""
     match = SECTION_WORDS.search(text)
     if match is None:
         return ""
-    if match["nacelle"]:
-        return f"nacelle {match['number']}"
+    if match["first"] or match["nacelle"]:
+        return f"nacelle {match['first'] or match['number'] or ''}".strip()
     kinds = {"tail": "horizontal tail"}
     return kinds.get(match.lastgroup or "", match.lastgroup or "")
 
 
-def element_of(text: str) -> tuple[str, str]:
-    """The structural item named in a lower-case text and its label; ('', '') if none.
+def element_of(text: str, words: set[str]) -> tuple[str, str]:
+    """The structural item a lower-case text names and its label; ('', '') if none.
 
     A plain word for skin gives way to whatever else is named.
     """
+    if _ELEMENT_HEADS.isdisjoint(words):
+        return "", ""
     skin = ("", "")
     for found in ELEMENT_WORDS.finditer(text):
         name = found.lastgroup or ""

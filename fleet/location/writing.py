@@ -7,7 +7,8 @@ from __future__ import annotations
 
 from decimal import Decimal
 
-from fleet.location.along import Work, door_text, station_label, station_word
+from fleet.location.along import Work, station_label, station_word
+from fleet.location.doors import door_text
 from fleet.location.parts import Stringer
 from fleet.location.place import Position
 from fleet.location.sections import Section
