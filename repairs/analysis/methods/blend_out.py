@@ -42,6 +42,7 @@ REQUIRED: tuple[str, ...] = (
     "blend_length",
     "earlier_depth",
     "panel_length",
+    *rework_lives.COUNTED,
     *rework_lives.INPUTS,
 )
 
@@ -78,8 +79,9 @@ def dished(
     found: panel_loads.PanelLoads,
     section: Section,
     length: float,
+    base: str | None = None,
 ) -> Result:
-    """Evaluate skin with a smooth dish of a full length [mm]."""
+    """Evaluate skin with a smooth dish of a full length [mm]; see `with_lives`."""
     draft = static_strength(inputs, note, found, section, draft)
     on_left = found.on_section(section.share)
     kt = notch_factor(section.depth, length)
@@ -97,4 +99,6 @@ def dished(
     path = sheet.path(on_left, inputs, clearance(inputs), ON_LEFT)
     flaw = rework_lives.assumed_flaw(inputs, section.left)
     start = flaw_start(sheet, path, note, flaw)
-    return rework_lives.with_lives(inputs, use, note, path, start, left, draft)
+    return rework_lives.with_lives(
+        inputs, use, note, path, start, left, draft, base=base
+    )

@@ -42,8 +42,7 @@ REQUIRED: tuple[str, ...] = (
     "blend_depth",
     "blend_length",
     "earlier_depth",
-    "life_base",
-    "accumulated_cycles",
+    *rework_lives.COUNTED,
     *rework_lives.INPUTS,
 )
 NOTCH_AND_FLAW = "notch and assumed flaw together, as an edge crack"

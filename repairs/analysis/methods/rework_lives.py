@@ -28,13 +28,9 @@ from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.types import Interval, Reference, Result, Use
 
 REMAINS = "growth of the flaw assumed to remain"
-INPUTS = (
-    "toughness",
-    "growth_law",
-    "life_base",
-    "accumulated_cycles",
-    *fatigue.INPUTS,
-)
+INPUTS = ("toughness", "growth_law", *fatigue.INPUTS)
+COUNTED = ("life_base", "accumulated_cycles")
+"""What a threshold counts from, and what is left to its caps."""
 
 
 def assumed_flaw(inputs: Inputs, thickness: float) -> AssumedFlaw:
@@ -60,10 +56,14 @@ def with_lives(
     left: fatigue.StressLife,
     draft: Result,
     title: str = REMAINS,
+    base: str | None = None,
 ) -> Result:
-    """Fill lives, threshold and repeat from stress-life and from growth."""
+    """Fill lives, threshold and repeat from stress-life and from growth.
+
+    Lives count from `base`, else from what the record says.
+    """
     grown = grow(inputs, note, path, start, path.loads.residual)
-    base = inputs.word("life_base") or ""
+    base = base or inputs.word("life_base") or ""
     growth = intervals.life(title, grown.cycles, base, grown.remark)
     propose = use is Use.NO_KNOWN_CRACK
     chosen = fatigue.governing_life(inputs, note, left, growth, base, propose=propose)

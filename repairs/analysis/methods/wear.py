@@ -6,6 +6,7 @@ While what wears it is still there the loss goes on and no life follows.
 from __future__ import annotations
 
 from repairs.analysis.inputs import Inputs
+from repairs.analysis.inspection.intervals import FROM_FINDING
 from repairs.analysis.loads import panel_loads
 from repairs.analysis.methods import applicability as apply
 from repairs.analysis.methods import rework_lives
@@ -58,4 +59,4 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     section = found_section(inputs, note)
     note.text(SMOOTH)
     length = note.given("L", "length of the wear", inputs.number("damage_length"))
-    return dished(inputs, use, note, draft, found, section, length)
+    return dished(inputs, use, note, draft, found, section, length, FROM_FINDING)

@@ -19,7 +19,6 @@ WORN = {
     "damage_depth": recorded(0.15, "mm"),
     "damage_depth_uncertainty": recorded(0.03, "mm"),
     "earlier_depth": recorded(0.0, "mm"),
-    "life_base": said("since new"),
 }
 
 
@@ -37,6 +36,7 @@ def test_wear_is_a_thinner_section_and_a_smooth_dish():
     assert result.residual_strength_mpa == pytest.approx(FTU * 1.22 / 1.4)
     assert line(result, "Kt") == pytest.approx(notch_factor(0.18, 40.0))
     assert result.threshold is result.repeat is None
+    assert {life.base for life in result.lives} == {"from finding"}
 
 
 def test_while_it_goes_on_there_is_no_life():
