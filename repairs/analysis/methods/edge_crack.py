@@ -28,7 +28,6 @@ from repairs.analysis.methods.crack_case import (
     CrackCase,
     evaluated,
 )
-from repairs.analysis.methods.sheet import TAKEN_AS_THROUGH
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.surroundings import ObstacleKind
@@ -60,6 +59,7 @@ CORNER = "cut_out_corner"
 CORNER_TEST = "local stress at the corner of the cut-out"
 LONGEST = 0.95 * (1 - 1e-9)
 FREE_ENDS = "Free ends: a strip held straight by stiffeners or its joint has a lower K."
+AS_THROUGH = "A crack from an edge is taken as through, whatever its depth."
 CORNER_FLAW = "The corner flaw assumed at the edge is grown as a through crack."
 LOCAL_WHOLE = (
     "The local stress at the corner is taken along the whole crack, though it fades "
@@ -256,7 +256,7 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
 
     def known(length: float) -> Start:
         if inputs.word("crack_through") != "yes":
-            note.text(TAKEN_AS_THROUGH)
+            note.text(AS_THROUGH)
         return Start(length)
 
     def assumed() -> Start:

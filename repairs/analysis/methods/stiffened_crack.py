@@ -51,7 +51,7 @@ from repairs.analysis.methods.crack_case import (
 )
 from repairs.analysis.methods.sheet import flaw_start, found_start, sheet_of
 from repairs.analysis.methods.skin_crack import clearance, clearance_rule, thin_shell
-from repairs.analysis.methods.stiffened_skin import StiffenedSkin
+from repairs.analysis.methods.stiffened_skin import StiffenedSkin, stated_bulging
 from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.strength import stiffened as sp
@@ -220,13 +220,10 @@ def skin_of(inputs: Inputs, note: Note) -> StiffenedSkin:
     )
     centre = CrackCentre(inputs.word("centre_stiffener") or "")
     note.step("μ", "A_st E_st / (A_st E_st + b t E)", "", stiffened.stiffening, "-")
-    stated = inputs.maybe("stiffened_bulging")
-    bulging = (
-        note.given("F_b", "bulging between stiffeners", stated) if stated else None
-    )
+    table = stiffened_table(stiffened, centre)
+    bulging = stated_bulging(inputs, note)
     if bulging is None and sheet.radius is not None:
         note.text(FULL_BULGING)
-    table = stiffened_table(stiffened, centre)
     return StiffenedSkin(sheet, panel, stiffened, centre, table, bulging)
 
 

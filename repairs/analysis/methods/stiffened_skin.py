@@ -9,8 +9,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from repairs.analysis.errors import AnalysisError
+from repairs.analysis.errors import AnalysisError, within
 from repairs.analysis.growth.path import CrackPath
+from repairs.analysis.inputs import Inputs
 from repairs.analysis.intensity import through as si
 from repairs.analysis.intensity.stiffened_sheet import (
     CrackCentre,
@@ -27,6 +28,7 @@ from repairs.analysis.methods.sheet import (
     WIDEST_SECANT,
     Sheet,
 )
+from repairs.analysis.note import Note
 from repairs.analysis.strength import residual as rs
 from repairs.analysis.strength import stiffened as sp
 from repairs.analysis.strength.stiffened import Arrest, StiffenedPanel
@@ -171,3 +173,12 @@ class StiffenedSkin:
 
 def _stress(strength: rs.Strength) -> GrossStress:
     return strength.stress
+
+
+def stated_bulging(inputs: Inputs, note: Note) -> float | None:
+    """Write a stated bulging factor down and return it; below 1 it is refused."""
+    stated = inputs.maybe("stiffened_bulging")
+    if stated is None:
+        return None
+    given = note.given("F_b", "bulging between stiffeners", stated)
+    return within("Bulging factor stated", given, 1, 10, "a factor that raises K")

@@ -204,6 +204,8 @@ def test_arrest_is_shown_where_it_is_reached_and_said_where_not():
     assert any(text.startswith("No arrest at the next stiffener") for text in note)
     held = found(METHOD, SHELL, stiffened_bulging=recorded(1.0, "-"))
     assert line(held, "S_arr") > 0
+    less = found(METHOD, SHELL, stiffened_bulging=recorded(0.9, "-"))
+    assert less.outcome is Outcome.NOT_COVERED
 
 
 def test_the_strength_on_the_way_never_rises_again():
