@@ -35,28 +35,30 @@ class Where(StrEnum):
     A panel's number may be stated for one place too, and then goes before the type's.
     """
 
-    TYPE = "on the aircraft type"
+    TYPE = "on the aircraft type, in its geometry file"
     PANEL = (
-        "on the panel, in the type's geometry or as a panel on this aircraft, "
-        "or as a stated input"
+        "on the panel, in the type's geometry file, or as a stated input of the "
+        "finding or repair, with its document"
     )
     STATED = "as a stated input of the finding or repair, with its document"
     MEASURE = "in a measurement of the finding"
-    MATERIAL = "on the panel's material, or as an adopted value"
+    SPREAD = "in a measurement of the finding, after ± behind the size"
+    MATERIAL = "on the panel's material, in the materials file, or as an adopted value"
     FINDING = "on the finding"
+    REPAIR = "on the repair, as embodied"
     ADOPTED = "as an adopted value"
-    STRESS_LIFE = "as a fatigue policy of the aircraft type named stress_life"
-    THRESHOLD = "as a fatigue policy of the aircraft type named growth_threshold"
-    REPEAT = "as a fatigue policy of the aircraft type named growth_repeat"
+    STRESS_LIFE = "as fatigue policy stress_life in the type's geometry file"
+    THRESHOLD = "as fatigue policy growth_threshold in the type's geometry file"
+    REPEAT = "as fatigue policy growth_repeat in the type's geometry file"
     DETECTABLE = "as a detectable size of the aircraft type, for the method chosen"
     FLAW = "as an adopted value; else the published flaw of the location is used"
     COUNTERS = "in the finding's counters or the aircraft's usage"
     SKIN_COUNTERS = (
         "in the finding's counters, less those at the fit of a replaced panel"
     )
-    VALIDITY = "on the variant or the aircraft"
+    VALIDITY = "on the variant, in the type's geometry file, or on the aircraft"
     OPERATOR = "as a policy of the operator"
-    EARLIER = "on the earlier repairs here"
+    EARLIER = "as the blend depth of each earlier blend-out here"
     GEOMETRY = "by placing the finding on a published geometry"
     PERIOD = "on the aircraft, in the period of its operator"
     EVALUATION = "by the evaluation"
@@ -142,11 +144,8 @@ _STATED_WORDS: tuple[tuple[str, str, tuple[str, ...]], ...] = (
 _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
     Where.MEASURE: (
         ("crack_length", "crack length, tip to tip", "mm"),
-        ("crack_length_uncertainty", "its uncertainty", "mm"),
         ("crack_depth", "crack depth, where it is not through", "mm"),
-        ("crack_depth_uncertainty", "its uncertainty", "mm"),
         ("edge_crack_length", "crack length from the edge of the hole", "mm"),
-        ("edge_crack_uncertainty", "its uncertainty", "mm"),
         ("crack_count", "number of cracks", "-"),
         ("ligament", "distance to the next hole or crack", "mm"),
         ("hole_diameter", "hole diameter after trimming", "mm"),
@@ -156,16 +155,21 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("damage_length", "length of the damage", "mm"),
         ("damage_width", "width of the damage", "mm"),
         ("damage_depth", "greatest depth of the damage", "mm"),
-        ("damage_depth_uncertainty", "its uncertainty", "mm"),
         ("root_radius", "root radius", "mm"),
         ("fastener_distance", "distance to nearest fastener", "mm"),
         ("damage_edge_distance", "distance to nearest edge", "mm"),
         ("remaining_edge_distance", "edge distance left after the blend", "mm"),
         ("remaining_thickness", "smallest thickness left", "mm"),
-        ("gauge_uncertainty", "uncertainty of the gauge", "mm"),
         ("blend_length", "full length of the blend", "mm"),
-        ("blend_depth", "depth of this blend", "mm"),
     ),
+    Where.SPREAD: (
+        ("crack_length_uncertainty", "uncertainty of the crack length", "mm"),
+        ("crack_depth_uncertainty", "uncertainty of the crack depth", "mm"),
+        ("edge_crack_uncertainty", "uncertainty of the length from the hole", "mm"),
+        ("damage_depth_uncertainty", "uncertainty of the damage's depth", "mm"),
+        ("gauge_uncertainty", "uncertainty of the smallest thickness left", "mm"),
+    ),
+    Where.REPAIR: (("blend_depth", "depth of this blend", "mm"),),
     Where.EARLIER: (
         ("earlier_depth", "depth of earlier blends at the location", "mm"),
     ),
@@ -279,7 +283,8 @@ _DEFAULTS = {
 _OTHERS: tuple[InputSpec, ...] = (
     InputSpec("surroundings", "what lies round the location", Surroundings, "",
               Where.GEOMETRY),
-    InputSpec("spectrum", "load spectrum, in place of one cycle", RecordedSpectrum, "", Where.PANEL),
+    InputSpec("spectrum", "load spectrum, in place of one cycle", RecordedSpectrum, "",
+              Where.PANEL),
     InputSpec("growth_law", "crack growth law", GrowthLaw, "", Where.MATERIAL),
     InputSpec("second_growth_law", "second growth law", GrowthLaw, "", Where.MATERIAL),
     InputSpec("stress_life", "stress-life curves", StressLifeFamily, "",

@@ -46,6 +46,7 @@ MAY_BE_NOUGHT = ("uncertainty", "_depth", "_distance")
 BOUNDS: dict[str, Bounds] = {
     "load_transfer": Bounds(0, 1),
     "cycle_ratio": Bounds(-10, 1),
+    "flight_smallest_share": Bounds(-10, 1),
     "clad_thickness": NOT_BELOW_ZERO,
     "member_lost_area": NOT_BELOW_ZERO,
     "wheeler_exponent": NOT_BELOW_ZERO,

@@ -10,6 +10,7 @@ from repairs.services.evaluation_prepare import InputLine, Where
 
 MEASURE, STATE, ADOPT = "Measure it", "State it", "Adopt it"
 LOOK = "Where it is recorded"
+MEASURED = (Where.MEASURE, Where.SPREAD)
 
 
 def entry_link(subject: Subject, line: InputLine) -> tuple[str, str]:
@@ -21,7 +22,7 @@ def entry_link(subject: Subject, line: InputLine) -> tuple[str, str]:
     if line.may_be_stated:
         return state_address(subject, line.name), STATE
     finding = subject.pk if isinstance(subject, Finding) else None
-    if line.where is Where.MEASURE and finding:
+    if line.where in MEASURED and finding:
         return reverse("finding_measure", args=[finding]), MEASURE
     if line.where is Where.GEOMETRY and finding:
         return reverse("finding_place", args=[finding]), "Place it"
@@ -36,9 +37,9 @@ def _kept(subject: Subject, where: Where) -> tuple[str, str]:
         return reverse("usage", args=[aircraft.pk]), LOOK
     if where is Where.OPERATOR:
         return reverse("policies"), LOOK
-    if where in (Where.VALIDITY, Where.EARLIER):
+    if where in (Where.VALIDITY, Where.EARLIER, Where.PERIOD):
         return reverse("aircraft", args=[aircraft.pk]), LOOK
-    if where in (Where.FINDING, Where.MEASURE, Where.GEOMETRY):
+    if where in (Where.FINDING, Where.REPAIR, Where.GEOMETRY, *MEASURED):
         what = "finding" if isinstance(subject, Finding) else "repair"
         return reverse(what, args=[subject.pk]), LOOK
     if where in (Where.ASKED, Where.DETECTABLE):

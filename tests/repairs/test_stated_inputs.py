@@ -105,6 +105,11 @@ def test_what_cannot_be_stated_is_refused_with_what_is_expected(
     assert not StatedInput.objects.exists()
 
 
+def test_a_flight_may_press_on_the_ground_what_it_pulls_in_the_air(world, finding):
+    row = state(world, finding, "flight_smallest_share", "-0.2")
+    assert row.value == -0.2
+
+
 def test_only_what_may_be_stated_is(world, finding):
     with pytest.raises(ValidationError, match="is no input that may be stated"):
         state(world, finding, "toughness", "100 MPa√m")
