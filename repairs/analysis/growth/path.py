@@ -15,7 +15,12 @@ from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth import beside
 from repairs.analysis.growth.blocks import EQUIVALENT
 from repairs.analysis.growth.by_cycle import End, SequenceGrowth
-from repairs.analysis.growth.laws import FormanLaw, RecordedLaw, StressCycle
+from repairs.analysis.growth.laws import (
+    FormanLaw,
+    GrowthLaw,
+    RecordedLaw,
+    StressCycle,
+)
 from repairs.analysis.growth.separable import (
     SEPARABLE,
     GrowthTable,
@@ -84,9 +89,9 @@ class CrackPath:
             max(start, self.largest),
         )
 
-    def growth_cycle(self, law: RecordedLaw | None = None) -> StressCycle:
-        """Return the cycle of a flight that a crack here grows by [MPa]."""
-        return self.loads.flown.growth_cycle(law or self.law)
+    def growth(self, law: RecordedLaw | None = None) -> tuple[GrowthLaw, StressCycle]:
+        """Return the law and the cycle [MPa] of a crack's growth in a flight here."""
+        return self.loads.flown.growth(law or self.law)
 
     def cycles(self, start: float, end: float, law: RecordedLaw | None = None) -> float:
         """Return cycles of growth from one length to another."""
@@ -106,12 +111,12 @@ class CrackPath:
         kept = self._tables.get(law)
         if kept is not None and kept.low <= low and high <= kept.high:
             return kept
-        cycle = self.growth_cycle(law)
+        flown, cycle = self.growth(law)
         wide = max(high, self.largest)
         try:
-            made = GrowthTable(law, self.factor, cycle, low, wide, self.kinks)
+            made = GrowthTable(flown, self.factor, cycle, low, wide, self.kinks)
         except OutOfRangeError:
-            made = GrowthTable(law, self.factor, cycle, low, high, self.kinks)
+            made = GrowthTable(flown, self.factor, cycle, low, high, self.kinks)
         self._tables[law] = made
         return made
 
@@ -207,8 +212,10 @@ def write_growth(note: Note, path: CrackPath, shown: str, cycles: float) -> None
     if path.loads.flown.spectrum is None:
         note.step("N", SEPARABLE, shown, cycles, "cycles")
         return
-    top = path.growth_cycle().maximum
-    words = f"{shown}; S_eq = {top:.2f} MPa, from zero, once a flight"
+    law, cycle = path.growth()
+    words = f"{shown}; the growth of every counted cycle added at each length"
+    if law is path.law:
+        words = f"{shown}; S_eq = {cycle.maximum:.2f} MPa, from zero, once a flight"
     note.step("N", f"{SEPARABLE}, {PER_FLIGHT}", words, cycles, "flights", EQUIVALENT)
 
 

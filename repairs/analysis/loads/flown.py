@@ -9,7 +9,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from repairs.analysis.growth.blocks import CycleBlock, CycleTable, equivalent_cycle
-from repairs.analysis.growth.laws import GrowthLaw, StressCycle
+from repairs.analysis.growth.laws import FormanLaw, GrowthLaw, StressCycle
+from repairs.analysis.growth.per_flight import UNIT_CYCLE, FlightLaw
 from repairs.analysis.note import Note
 from repairs.analysis.spectra.counting import treated
 from repairs.analysis.spectra.cycles import PressureCycle
@@ -67,6 +68,18 @@ class Flown:
             return self.cycle
         maxima, ratios, per_flight = self._counted(self.spectrum)
         return equivalent_cycle(law, CycleTable(maxima, ratios, per_flight, 1))
+
+    def growth(self, law: GrowthLaw) -> tuple[GrowthLaw, StressCycle]:
+        """Return the law and the cycle that give a crack's growth in a mean flight.
+
+        For a power of the range the law itself and one equivalent cycle; for any other
+        the sum over the flight's cycles.
+        """
+        if self.spectrum is None or not isinstance(law, FormanLaw):
+            return law, self.growth_cycle(law)
+        maxima, ratios, per_flight = self._counted(self.spectrum)
+        table = CycleTable(maxima, ratios, per_flight, 1)
+        return FlightLaw(law, table), UNIT_CYCLE
 
     @property
     def net_cycles(self) -> NetCycles | None:

@@ -92,10 +92,10 @@ def corner_start(
     """
     if depth >= hole.thickness:
         return Start(length)
-    cycle = path.growth_cycle()
+    law, cycle = path.growth()
     try:
         grown = grow_part_through(
-            hole.law, corner_factors(hole), cycle, (depth, length), hole.thickness
+            law, corner_factors(hole), cycle, (depth, length), hole.thickness
         )
     except OutOfRangeError:
         note.warn(AS_THROUGH)

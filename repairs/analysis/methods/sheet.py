@@ -291,11 +291,12 @@ def surface_start(
     As through where the solution ends, and where a through crack of the length it
     breaks through with would not bear what is required.
     """
+    law, cycle = path.growth()
     try:
         grown = grow_part_through(
-            sheet.law,
+            law,
             surface_factors(sheet),
-            path.growth_cycle(),
+            cycle,
             (depth, half),
             sheet.thickness,
         )

@@ -12,11 +12,12 @@ import math
 import pytest
 import rainflow as library
 
+from repairs.analysis.growth.laws import FormanLaw
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.note import Note
 from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.spectra.wing_sequence import GROUND_RATIO
-from repairs.analysis.types import Result, Stated
+from repairs.analysis.types import Grade, Reference, Result, Stated
 from tests.outside import outside
 from tests.repairs.analysis.cases import BLEND, CRACK, CURVES, LAW, recorded, said
 from tests.repairs.analysis.crack_cases import EDGE, FLAT, OF_PRESSURE, found, unknown
@@ -30,6 +31,9 @@ CHOICES = {
     "clip_below_mpa": None,
     "omit_below_range_mpa": None,
 }
+FORMAN = FormanLaw.from_mpa_root_metre(
+    4.0e-5, 2.9, 120.0, Reference("made for the test", Grade.RECORDED)
+)
 NO_CYCLE = {"cycle_max_stress": None, "cycle_ratio": None}
 BLENDED = {
     **{name: value for name, value in BLEND.items() if name not in OF_PRESSURE},
@@ -86,15 +90,24 @@ def cycles_of_block() -> list[tuple[float, float]]:
     return [(s, (m - s / 2) / (m + s / 2)) for s, m, _ in (*whole, *rest)]
 
 
-def looped_flights(start: float, end: float, factor) -> float:
+def walker(delta_k: float, ratio: float) -> float:
+    part = 1 - LAW.gamma if ratio >= 0 else 1.0
+    return LAW.coefficient * (delta_k / (1 - ratio) ** part) ** LAW.exponent
+
+
+def forman(delta_k: float, ratio: float) -> float:
+    counted = delta_k if ratio >= 0 else delta_k / (1 - ratio)
+    room = (1 - max(ratio, 0.0)) * FORMAN.toughness - counted
+    return FORMAN.coefficient * counted**FORMAN.exponent / room
+
+
+def looped_flights(start: float, end: float, factor, rate=walker) -> float:
     """Flights from one length to another, every cycle in turn."""
     cycles, length, blocks = cycles_of_block(), start, 0
     while length < end:
         for span, ratio in cycles:
             shape = factor(length) * math.sqrt(math.pi * length)
-            part = 1 - LAW.gamma if ratio >= 0 else 1.0
-            driven = shape * span / (1 - ratio) ** part
-            length += LAW.coefficient * driven**LAW.exponent
+            length += rate(shape * span, ratio)
         blocks += 1
     return blocks * FLIGHTS
 
@@ -120,6 +133,25 @@ def test_a_cracks_life_is_that_of_every_cycle_in_turn():
         source="loop over every cycle, counted by the rainflow library 3.2",
         given="ten turning points in two flights, 2a 24 mm in a sheet of 500 mm",
         published=looped,
+        computed=result.lives[-1].cycles,
+        unit="flights",
+        rel=2e-3,
+        route="another method",
+    )
+
+
+def test_a_law_that_no_one_cycle_stands_for_is_added_up_over_the_flight():
+    result = crack(sequence(), growth_law=FORMAN)
+    end = ends(result, "2a")[-1] / 2
+
+    def secant(a: float) -> float:
+        return math.sqrt(1 / math.cos(math.pi * a / 500.0))
+
+    outside(
+        "Growth per flight by Forman's law",
+        source="loop over every cycle, counted by the rainflow library 3.2",
+        given="ten turning points in two flights, 2a 24 mm in a sheet of 500 mm",
+        published=looped_flights(12.0, end, secant, forman),
         computed=result.lives[-1].cycles,
         unit="flights",
         rel=2e-3,
