@@ -85,6 +85,15 @@ class WhatIfForm(forms.Form):
         return self[key] if key in self.fields else None
 
     @property
+    def set_aside(self) -> list[tuple[str, str, str]]:
+        """What was typed for inputs that are none here: key, name and text, kept."""
+        return [
+            (key, key.removeprefix(PREFIX), text)
+            for key, text in self.data.items()
+            if key.startswith(PREFIX) and key not in self.fields and text.strip()
+        ]
+
+    @property
     def asks(self) -> bool:
         """Whether anything was typed."""
         return any(str(self.data.get(key, "")).strip() for key in self.fields)

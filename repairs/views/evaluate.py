@@ -29,6 +29,7 @@ from repairs.services.evaluation_prepare import (
     default_use,
     evaluation_prepare,
     input_lines,
+    input_titles,
 )
 from repairs.services.evaluation_sensitivity import moves_of
 from repairs.services.evaluation_what_if import prepared_data, what_if
@@ -88,7 +89,7 @@ def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
     current = evaluations_current(subject)
     stored = next((row for row in current if row.use == choice.use), None)
     data = prepared_data(prepared)
-    answer = answer_of(data)
+    answer, titles = answer_of(data), input_titles()
     return {
         "subject": subject,
         "ask": ask,
@@ -98,6 +99,9 @@ def evaluate_context(request: Request, subject: Subject) -> dict[str, Any]:
         "prepared": prepared,
         "answer": answer,
         "what_if": form,
+        "set_aside": [
+            (key, titles.get(name, name), text) for key, name, text in form.set_aside
+        ],
         "other": _besides(answer, other),
         "refusal": refusal,
         **_inputs(subject, form, lines),

@@ -132,6 +132,13 @@ def test_bad_input_is_told_beside_its_field_and_nothing_typed_is_lost(page):
     assert "as the record stands</th>" in text
 
 
+def test_what_is_no_input_of_the_use_is_set_aside_and_kept(page):
+    text = page(if_blend_length="0.5 in", if_crack_length="30 mm")
+    assert "Set aside, for it is no input here: full length of the blend" in text
+    assert 'type="hidden" name="if_blend_length" value="0.5 in"' in text
+    assert SAID in text
+
+
 def test_numbers_no_method_is_for_end_in_words_not_in_a_fault(page):
     text = page(if_crack_length="9000 mm")
     assert SAID in text
