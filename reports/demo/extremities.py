@@ -49,7 +49,8 @@ def _wing(stream: Stream, kind: str) -> tuple[Written, str, str]:
     if kind in LEADING_EDGE_KINDS and style == 2:
         text = f"fwd of front spar {side} wing WS {plain(label)} {surface} skin"
         return Written(text, _truth(code, ws, tolerance)), "skin", surface
-    text = f"{side} wing WS {plain(label)} {surface} skin"
+    stringer = f" S-{1 + int(ws) % 8}" if kind == "scratch" else ""
+    text = f"{side} wing WS {plain(label)}{stringer} {surface} skin"
     return Written(text, _truth(code, ws, tolerance)), "skin", surface
 
 
