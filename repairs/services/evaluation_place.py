@@ -6,7 +6,8 @@ from dataclasses import dataclass
 
 from fleet.location.geometry import Box
 from fleet.location.geometry import Section as SectionGeometry
-from fleet.models import Panel, PanelOnAircraft
+from fleet.models import AircraftType, GeometryRevision, Panel, PanelOnAircraft
+from fleet.selectors.kept import of_the_fleet
 from fleet.selectors.structure import geometry_in_force
 from repairs.analysis.surroundings import Obstacle, ObstacleKind, Surroundings
 from repairs.models import Finding, Repair
@@ -46,12 +47,17 @@ def _panel(subject: Subject) -> Panel | None:
     """The panel read with the place, as the geometry in force has it now."""
     if subject.panel is None:
         return None
-    revision = geometry_in_force(subject.aircraft.variant.aircraft_type)
+    revision = _in_force(subject.aircraft.variant.aircraft_type)
     if revision is None or revision.pk == subject.panel.geometry_id:
         return subject.panel
     return Panel.objects.filter(
         geometry=revision, section=subject.section, label=subject.panel.label
     ).first()
+
+
+@of_the_fleet
+def _in_force(made: AircraftType) -> GeometryRevision | None:
+    return geometry_in_force(made)
 
 
 def _fitted(subject: Subject, panel: Panel) -> PanelOnAircraft | None:

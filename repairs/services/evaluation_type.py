@@ -11,6 +11,7 @@ from fleet.selectors.kept import of_the_fleet
 from fleet.selectors.people import policy
 from fleet.selectors.validity import validity_limits
 from repairs.analysis.inspection.intervals import SINCE_NEW
+from repairs.analysis.loads.panel_loads import FEET_45000
 from repairs.analysis.scatter import factors as scatter
 from repairs.analysis.types import Sourced
 from repairs.models import Repair
@@ -42,7 +43,13 @@ def pressures(found: Gathered, subject: Subject) -> None:
 
 
 def rules(found: Gathered, subject: Subject, as_of: dt.date) -> None:
-    """The rules that the aircraft is under on a day, by the period of its operator."""
+    """The rules that the aircraft is under on a day, by the period of its operator.
+
+    Read only for a type that flies so high that the rules differ.
+    """
+    ceiling = subject.aircraft.variant.aircraft_type.ceiling_ft
+    if ceiling is None or ceiling <= FEET_45000:
+        return
     held = subject.aircraft.periods.select_related("operator")
     period = held.filter(from_on__lte=as_of).order_by("from_on").last()
     if period is not None and (period.to_on is None or as_of <= period.to_on):

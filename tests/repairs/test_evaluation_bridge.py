@@ -281,6 +281,8 @@ def test_a_crack_in_blended_skin_goes_through_what_is_left():
 
 def test_the_rules_are_those_of_the_period_that_holds_the_day(world):
     finding = cracked(world)
+    assert "regime" not in gathered(finding)
+    finding.aircraft.variant.aircraft_type.ceiling_ft = 51_000
     period = finding.aircraft.periods.get()
     regime = gathered(finding)["regime"]
     assert isinstance(regime, Stated)
