@@ -17,6 +17,7 @@ from reports.demo.load_findings import finding_steps
 from reports.demo.load_folders import folders_load
 from reports.demo.load_parts import part_numbers_load, part_steps
 from reports.demo.load_repairs import repair_steps
+from reports.demo.load_stated import stated_load
 from reports.demo.people import PASSWORD
 from reports.demo.records import Scenario
 from reports.demo.standing import marker_set
@@ -38,6 +39,7 @@ def demo_load(scenario: Scenario, *, say: Callable[[str], None]) -> Loaded:
         *repair_steps(loaded, scenario),
     ]
     steps_run(steps, say)
+    stated_load(loaded, scenario)
     evaluations_load(loaded, scenario, say)
     folders_load(loaded, scenario, say)
     marker_set(loaded, scenario.seed)

@@ -7,7 +7,7 @@ from collections import Counter
 
 from fleet.due import Bucket
 from fleet.models import Aircraft, SafeLifePart
-from repairs.models import Evaluation, Finding, Outcome, Repair
+from repairs.models import Evaluation, Finding, Outcome, Repair, StatedInput
 from reports.due_list import DueQuery, due_list
 
 WITHIN_DAYS = 90
@@ -29,6 +29,7 @@ def summary_lines(today: dt.date, seconds: float) -> list[str]:
         ("Evaluated", outcomes[Outcome.COMPUTED]),
         ("No method applies", outcomes[Outcome.NOT_COVERED]),
         ("Incomplete", outcomes[Outcome.MISSING_INPUT]),
+        ("Inputs stated", StatedInput.objects.count()),
         ("Safe-life parts", SafeLifePart.objects.count()),
         ("Overdue", tally[Bucket.OVERDUE]),
         (f"Due within {WITHIN_DAYS} days", soon),

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import datetime as dt
 import io
+import json
 from collections.abc import Iterator
 from dataclasses import dataclass
 
@@ -39,6 +40,7 @@ from reports.demo.loader import demo_load
 from reports.demo.people import LAPSED_ON, PEOPLE
 from reports.demo.records import Scenario
 from reports.demo.scenario import draw
+from reports.demo.stated import STATED, DemoStated
 from reports.due_list import DueList, DueQuery, due_list
 from reports.due_rows import DueRow
 from tests.factories import FIXTURES, operator_make
@@ -116,8 +118,28 @@ class TestWhole:
         assert Evaluation.objects.count() == Finding.objects.count()
         outcomes = set(Evaluation.objects.values_list("outcome", flat=True))
         assert outcomes == set(Outcome.values)
+
+    @pytest.mark.parametrize("case", STATED, ids=lambda case: case.method)
+    def test_each_kind_of_calculation_is_completed_by_what_was_stated(
+        self, demo: Demo, case: DemoStated
+    ) -> None:
+        finding = case.of(demo.scenario.findings)
+        assert finding is not None
+        made = Evaluation.objects.get(finding=demo.loaded.rows[finding.key].pk)
+        assert made.outcome == Outcome.COMPUTED
+        asked = {one["method"]: one for one in json.loads(made.outputs)["asked"]}
+        assert asked[case.method]["part"] == "answers"
+        inputs = json.loads(made.inputs)
+        for name, _ in case.inputs:
+            assert "invented for the demonstration" in inputs[name]["source"]
+
+    def test_methods_that_need_no_statement_compute_too(self, demo: Demo) -> None:
         computed = Evaluation.objects.filter(outcome=Outcome.COMPUTED)
-        assert len(set(computed.values_list("method", flat=True))) == 3
+        assert set(computed.values_list("method", flat=True)) >= {
+            "pressurised-skin-longitudinal-crack",
+            "corrosion-blend-out",
+            "open-or-trimmed-hole",
+        }
 
     def test_every_record_agrees_with_its_history(self, demo: Demo) -> None:
         assert list(problems()) == []
