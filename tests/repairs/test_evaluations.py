@@ -272,21 +272,6 @@ def test_corrosion_that_nobody_removed_is_incomplete(world):
     assert {"corrosion_type", "damage_depth_uncertainty"} <= missing
 
 
-def test_corrosion_as_found_has_lives_and_no_interval(world):
-    typed = (
-        Typed("length_mm", "0.1 in"),
-        Typed("width_mm", "0.1 in"),
-        Typed("depth_mm", "0.20 ± 0.05 mm"),
-        Typed("corrosion_type", "pitting"),
-    )
-    row = evaluated(world, cracked(world, damage_type="corrosion", typed=typed))
-    assert row.outcome == "computed", json.loads(row.outputs)
-    assert row.method == "corrosion-as-found"
-    assert row.use == "found_damage"
-    assert row.life_cycles > 0
-    assert row.threshold_cycles is row.repeat_cycles is None
-
-
 def test_without_a_detectable_size_there_is_no_repeat(world):
     row = evaluated(world, blended(world))
     assert row.repeat_cycles is None
