@@ -45,9 +45,10 @@ BUCKLES = (
     "whole thickness becomes (1 + MS) {share:.3f} − 1 if the loss covers the panel."
 )
 BEARING = (
-    "Bearing of a fastener in the thinned skin falls with the thickness; it and the "
-    "fastener's edge distance are not checked: their loads are not recorded."
+    "Bearing and edge distance of fasteners in the thinned skin are not checked: their "
+    "loads are not recorded. Bearing strength falls with the thickness."
 )
+NO_FASTENER = "No fastener lies in the thinned skin, by the distance recorded."
 FOUND_INPUTS = ("damage_depth", "damage_depth_uncertainty", "earlier_depth")
 KNOWN_ONLY = "damage as found: it has a life, no threshold and no repeat"
 
@@ -228,8 +229,27 @@ def static_strength(
         ECCENTRIC,
     )
     write_stability(inputs, note, section.share)
-    note.text(BEARING)
+    write_bearing(inputs, note, section.share)
     return filled
+
+
+def write_bearing(inputs: Inputs, note: Note, share: float) -> None:
+    """Write what is left of bearing, unless the nearest fastener is out of reach."""
+    given = inputs.maybe("fastener_distance")
+    if given is not None:
+        distance = note.given("s_f", "damage to the nearest fastener", given)
+        blend, damage = (
+            inputs.maybe(name) for name in ("blend_length", "damage_length")
+        )
+        known = damage.value if damage else 0.0
+        beyond = max(0.0, (blend.value - known) / 2) if blend else 0.0
+        if distance > beyond:
+            note.text(NO_FASTENER)
+            return
+    note.step(
+        "P_br′/P_br", "bearing load left, t_left / t", f"{share:.4f}", share, "-", LOSS
+    )
+    note.warn(BEARING)
 
 
 def write_stability(inputs: Inputs, note: Note, share: float) -> None:

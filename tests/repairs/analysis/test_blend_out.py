@@ -179,6 +179,16 @@ def test_the_stress_life_curve_is_drawn_with_the_cycle_on_it():
     assert lives[0] == 1e3
 
 
+def test_bearing_is_said_to_fall_unless_no_fastener_is_in_reach():
+    assert any("Bearing" in w for w in blended().warnings)
+    assert line(blended(), "P_br′/P_br") == pytest.approx(1.23 / 1.4)
+    damage = {"damage_length": recorded(10.0, "mm")}
+    far = blended(**damage, fastener_distance=recorded(7.1, "mm"))
+    near = blended(**damage, fastener_distance=recorded(6.9, "mm"))
+    assert not any("Bearing" in w for w in far.warnings)
+    assert any("Bearing" in w for w in near.warnings)
+
+
 def test_life_used_up_leaves_none():
     result = blended(**{**HIGH, "skin_cycles": recorded(9e9, "cycles")})
     left = next(li for li in result.lives if "stress" in li.title)
