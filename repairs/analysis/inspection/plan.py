@@ -95,14 +95,14 @@ def detect(growth: Growth, looks: tuple[Look, ...]) -> Found:
     Parameters
     ----------
     growth
-        Crack size against cycles, to critical, with the scatter of life.
+        Crack size [mm] against cycles, to critical, with the scatter of life.
     looks
         The inspections of the plan.
 
     Returns
     -------
     Found
-        Mean over phase, worst phase, as scheduled.
+        Mean over phase, worst phase, as scheduled [-].
 
     Notes
     -----

@@ -146,6 +146,10 @@ def reversals(stresses: Sequence[float] | Floats) -> Floats:
     InputError
         A point is not finite, or there are fewer than two.
 
+    Notes
+    -----
+    Range: any finite history.
+
     References
     ----------
     .. [1] ASTM E1049-85, reversals.

@@ -77,7 +77,8 @@ def turbulence_exceedances(
     Parameters
     ----------
     increment
-        y, load or stress less its value in 1 g level flight [load unit].
+        y, load or stress less its value in 1 g level flight, in any one unit, as
+        [MPa].
     segments
         Segments of the mission.
 
