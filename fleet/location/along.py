@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from dataclasses import dataclass, field
 from decimal import Decimal
 
@@ -311,11 +312,9 @@ def station_label(work: Work, x_mm: float) -> str:
     """
     section = work.section
     step_mm = work.mm(Decimal("0.0005"))  # half of what the last digit shows
-    ahead = None
-    for frame in section.frames:
-        at = frame.x_mm(work.variant)
-        if at is not None and at <= x_mm + step_mm:
-            ahead = (frame, at)
+    frames, places = section.frames_on(work.variant)
+    count = bisect_right(places, x_mm + step_mm)
+    ahead = (frames[count - 1], places[count - 1]) if count else None
     plus = work.show(x_mm - ahead[1]) if ahead else ""
     past_last = ahead is not None and ahead[0] is section.frames[-1]
     if not section.is_shell or ahead is None or (past_last and plus != "0"):

@@ -26,7 +26,7 @@ _COUNTED = {
     "places", "place", "ea", "each", "locations", "areas", "spots", "holes", "cracks",
     "o'clock", "off", "x",
 }  # fmt: skip
-_SIGNS_IN_WORDS = {"plus": 1, "minus": -1}
+_SIGNS = {"+": 1, "-": -1, "plus": 1, "minus": -1}
 
 
 class Cursor:
@@ -144,7 +144,8 @@ class Cursor:
             self.problems.append(number_wrong(token))
             self.at += 1
             return None
-        split = self._split(token, kind)
+        following = self.tokens[self.at + 1].kind == "num"
+        split = self._split(token, kind) if following else None
         if split is not None:
             self.problems.append(number_split(token, split))
             self.at += 2
@@ -157,7 +158,7 @@ class Cursor:
     def _split(self, token: Token, kind: str) -> Token | None:
         """The second half of a number that a blank has broken."""
         other, after = self.peek(1), self.peek(2)
-        if other.kind != "num" or token.tail or "." in token.text:
+        if token.tail or "." in token.text:
             return None
         joined = token.text + other.text.partition(".")[0]
         if not joined.isdigit() or len(joined) > _SPLIT_DIGITS[kind]:
@@ -185,14 +186,11 @@ class Cursor:
 
     def plus(self, number: Decimal) -> Offset | None:
         """ "+ 12", "+3/4\"", "minus 3 in" after a label of this number."""
-        token = self.peek()
-        sign = _SIGNS_IN_WORDS.get(token.text, 0) if token.kind == "word" else 0
-        in_words = sign != 0
-        if token.text == "+":
-            sign = 1
-        elif token.text == "-" and self._minus_length(number):
-            sign = -1
-        if not sign or not self.kind("num", 1):
+        text = self.tokens[self.at].text
+        if text not in _SIGNS or self.tokens[self.at + 1].kind != "num":
+            return None
+        sign, in_words = _SIGNS[text], text.isalpha()
+        if text == "-" and not self._minus_length(number):
             return None
         back, asked = self.at, len(self.problems)
         self.at += 1
@@ -228,6 +226,8 @@ class Cursor:
         token = self.peek()
         if token.kind == "word" and token.text in keys:
             self.at += 1
+            if self.tokens[self.at].kind == "num":
+                return
             self.skip(".", ":", "#", "no", "nos")
             if self.is_("-") and self.kind("num", 1):
                 self.at += 1

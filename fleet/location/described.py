@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from bisect import bisect_right
 from dataclasses import replace
 
 from fleet.location.along import Work
@@ -136,16 +137,15 @@ def _plane_wl(section: Section, element: str) -> float | None:
 def _bay(work: Work, map_mm: float, s_mm: float | None) -> str:
     """ "FR 28–29, S-7R to S-8R": the frames and stringers about the place."""
     section = work.section
-    here = [f for f in section.frames if f.x_mm(work.variant) is not None]
-    ahead = [f for f in here if f.map_mm <= map_mm + TINY_MM]
-    behind = [f for f in here if f.map_mm > map_mm + TINY_MM]
+    here, _ = section.frames_on(work.variant)
+    count = bisect_right(here, map_mm + TINY_MM, key=lambda f: f.map_mm)
     prefix = section.frame_prefix
-    if ahead and behind:
-        text = f"{prefix} {ahead[-1].label}–{behind[0].label}"
-    elif behind:
-        text = f"ahead of {prefix} {behind[0].label}"
+    if 0 < count < len(here):
+        text = f"{prefix} {here[count - 1].label}–{here[count].label}"
+    elif count < len(here):
+        text = f"ahead of {prefix} {here[0].label}"
     else:
-        text = f"beyond {prefix} {ahead[-1].label}" if ahead else ""
+        text = f"beyond {prefix} {here[-1].label}" if here else ""
     lines = section.stringers
     if s_mm is None or not lines:
         return text

@@ -45,7 +45,10 @@ class Frame:
 
     def x_mm(self, variant: str) -> float | None:
         """True distance from the datum; None if the variant has no such frame."""
-        return dict(self.x_by_variant).get(variant)
+        for code, x_mm in self.x_by_variant:
+            if code == variant:
+                return x_mm
+        return None
 
 
 @dataclass(frozen=True)
@@ -73,13 +76,12 @@ class Box:
     ) -> bool:
         """Whether the point lies inside or on the edge of the box grown all round."""
         grow_mm += TINY_MM
+        if not self.map1_mm - grow_mm <= map_mm <= self.map2_mm + grow_mm:
+            return False
         across = s_mm - self.s1_mm + grow_mm
         if wrap_mm:
             across %= wrap_mm
-        return (
-            self.map1_mm - grow_mm <= map_mm <= self.map2_mm + grow_mm
-            and 0.0 <= across <= self.s2_mm - self.s1_mm + 2.0 * grow_mm
-        )
+        return 0.0 <= across <= self.s2_mm - self.s1_mm + 2.0 * grow_mm
 
 
 @dataclass(frozen=True)

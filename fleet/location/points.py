@@ -39,13 +39,10 @@ def station_point(c: Cursor, key: str) -> Along | None:
         if key != "fin":
             key = c.words.stations.get(c.peek().text, key)
         c.at += 1
-        c.skip(".", ":", "#", "@", "no")
-        if c.is_("s", "y", "x") and c.kind("num", 1 + c.is_("=", ahead=1)):
-            c.at += 1
-            c.skip("=")
-        _letter_first(c)
-        hyphen = c.is_("-") and c.kind("num", 1)
-        minus = hyphen and not c.touching() and c.touching(1)
+        if not c.kind("num"):
+            _marks(c)
+            hyphen = c.is_("-") and c.kind("num", 1)
+            minus = hyphen and not c.touching() and c.touching(1)
     elif c.is_("-") and c.touching(1):  # "-20" at the end of a range
         hyphen = minus = True
     c.at += hyphen
@@ -58,8 +55,12 @@ def station_point(c: Cursor, key: str) -> Along | None:
     return Along("station", key, -number if minus else number, letter, offset, joined)
 
 
-def _letter_first(c: Cursor) -> None:
-    """ "STA l20", "STA O40": a letter that stands for the first digit."""
+def _marks(c: Cursor) -> None:
+    """Past "STA.", "STA Y=", "STA NO."; asks of "STA l20", where a letter is a digit."""
+    c.skip(".", ":", "#", "@", "no")
+    if c.is_("s", "y", "x") and c.kind("num", 1 + c.is_("=", ahead=1)):
+        c.at += 1
+        c.skip("=")
     if c.is_("l", "i", "o", "lo") and c.kind("num", 1) and c.touching(1):
         letter, token = c.peek(), c.peek(1)
         digits = letter.text.translate(str.maketrans("lio", "110"))

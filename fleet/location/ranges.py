@@ -80,9 +80,10 @@ class Ranges(Cursor):
         if len(self.problems) > asked:
             return
         self._record(name, (first,) if last is None else (first, last), start)
-        if kind == "stringer":
+        following = self.tokens[self.at].text
+        if kind == "stringer" and following == "+":
             sign_after(self, last or first)
-        elif kind in ("station", "frame"):
+        elif kind in ("station", "frame") and following in ("+", ","):
             listed(self, start)
             stray_sign(self)
 

@@ -23,6 +23,8 @@ from fleet.location.parts import (
     Stringer,
 )
 
+FramesOn = tuple[tuple[Frame, ...], tuple[float, ...]]
+
 
 @dataclass(frozen=True)
 class Section:
@@ -63,23 +65,23 @@ class Section:
     stringer_area_mm2: float | None = None
     _frame_maps: tuple[float, ...] = field(init=False, repr=False, compare=False)
     _stringer_turns: tuple[float, ...] = field(init=False, repr=False, compare=False)
+    _on: dict[str, FramesOn] = field(init=False, repr=False, compare=False)
+    is_shell: bool = field(init=False, repr=False, compare=False)
+    wrap_mm: float | None = field(init=False, repr=False, compare=False)
+    """Once round a shell at the reference radius; None on an open surface."""
 
     def __post_init__(self) -> None:
+        shell = self.kind == "shell"
+        object.__setattr__(self, "is_shell", shell)
+        wrap = 2.0 * math.pi * self.reference_mm if shell else None
+        object.__setattr__(self, "wrap_mm", wrap)
+        object.__setattr__(self, "_on", {})
         maps = tuple(f.map_mm - TINY_MM for f in self.frames)
         turns = tuple(self._turn(t.s_mm) - TINY_MM for t in self.stringers)
         object.__setattr__(self, "_frame_maps", maps)
         object.__setattr__(self, "_stringer_turns", turns)
 
     # -- axes -----------------------------------------------------------------
-
-    @property
-    def is_shell(self) -> bool:
-        return self.kind == "shell"
-
-    @property
-    def wrap_mm(self) -> float | None:
-        """Once round a shell at the reference radius; None on an open surface."""
-        return 2.0 * math.pi * self.reference_mm if self.is_shell else None
 
     def map_of(self, x_mm: float, variant: str) -> float:
         """The map position of a true distance on this variant."""
@@ -259,11 +261,20 @@ class Section:
         ]
         return min(found, key=lambda pair: pair[1]) if found else None
 
+    def frames_on(self, variant: str) -> FramesOn:
+        """The frames this variant has, in order, and where they stand on it."""
+        found = self._on.get(variant)
+        if found is None:
+            pairs = [(f, f.x_mm(variant)) for f in self.frames]
+            here = [(f, x) for f, x in pairs if x is not None]
+            found = tuple(f for f, _ in here), tuple(x for _, x in here)
+            self._on[variant] = found
+        return found
+
     def nearest_frame(self, x_mm: float, variant: str) -> tuple[Frame, float] | None:
         """The nearest frame this variant has and the true distance to it."""
-        found = [
-            (f, abs(x - x_mm))
-            for f in self.frames
-            if (x := f.x_mm(variant)) is not None
-        ]
-        return min(found, key=lambda pair: pair[1]) if found else None
+        frames, places = self.frames_on(variant)
+        at = bisect_right(places, x_mm)
+        beside = [(frames[i], abs(places[i] - x_mm)) for i in (at - 1, at)
+                  if 0 <= i < len(frames)]  # fmt: skip
+        return min(beside, key=lambda pair: pair[1]) if beside else None

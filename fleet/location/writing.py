@@ -9,12 +9,56 @@ from decimal import Decimal
 
 from fleet.location.along import Work, station_label, station_word
 from fleet.location.doors import door_text
-from fleet.location.parts import Stringer
 from fleet.location.place import Position
+from fleet.location.reach import Reach, arc_reach
+from fleet.location.reading import Reading
 from fleet.location.sections import Section
+from fleet.location.typegeometry import TypeGeometry
 from fleet.location.words import ELEMENT_PHRASES, KEEL_BEAM
+from fleet.units import number_write
 
+SHARE_DIGITS = 4
+NEAR = Decimal("0.0015")
+"""Nearer to a line than this, in the type's unit, is on it: more is not written."""
 _LATERAL = {"L": "LH", "R": "RH"}
+
+
+def text_at(
+    geometry: TypeGeometry,
+    variant: str,
+    code: str,
+    *,
+    along: tuple[float, float],
+    across: tuple[float, float] | None = None,
+    surface: str = "",
+) -> str:
+    """Canonical text of coordinates in mm on a section, as a map gives them.
+
+    `along` are true distances, `across` s values less than half round a shell apart; a
+    door's are those of the section that it lies in.
+    """
+    section = geometry.section(code)
+    if section.parent:
+        section = geometry.section(section.parent)
+    work = Work(Reading(""), section, variant, geometry.unit)
+    reach = Reach() if across is None else arc_reach(work, *across)
+    lateral = section.is_shell or section.skins == ("left", "right")
+    position = Position(
+        section=section.code,
+        variant=variant,
+        x1_mm=along[0],
+        x2_mm=along[1],
+        s1_mm=reach.s1_mm,
+        s2_mm=reach.s2_mm,
+        surface=surface or "outer" * lateral,
+        element="",
+        element_label="",
+        side=section.side or reach.side,
+        bl_mm=None,
+        wl_mm=None,
+        door="",
+    )
+    return write(work, position)
 
 
 def write(work: Work, position: Position) -> str:
@@ -131,21 +175,16 @@ def _one_stringer(work: Work, s_mm: float, map_mm: float) -> str:
     section = work.section
     lines, scale = section.stringers, section.scale_at(map_mm)
     turn = section.wrapped(s_mm)
-    nearest = min(lines, key=lambda t: abs(section.wrapped(turn - t.s_mm)))
-    apart = section.wrapped(turn - nearest.s_mm) * scale
-    if work.show(abs(apart)) == "0":
-        return nearest.label
-    side = "R" if turn >= 0.0 else "L"
-    one = lines[section.bay_across(turn)]
-    other = lines[(section.bay_across(turn) + 1) % len(lines)]
-    upper, lower = sorted((one, other), key=lambda t: t.number)
-    if upper.side:
-        return _off(work, turn, upper, "below", scale)
-    return _off(work, turn, lower, "above", scale) if lower.side else f"{side}H"
-
-
-def _off(work: Work, turn: float, line: Stringer, direction: str, scale: float) -> str:
-    length = work.show(abs(work.section.wrapped(turn - line.s_mm)) * scale)
+    bay = section.bay_across(turn)
+    beside = (lines[bay], lines[(bay + 1) % len(lines)])
+    upper, lower = sorted(beside, key=lambda t: abs(section.wrapped(t.s_mm)))
+    line, direction = (upper, "below") if upper.side else (lower, "above")
+    length = work.show(abs(section.wrapped(turn - line.s_mm)) * scale)
+    ahead = line is beside[0]
+    at = line.s_mm + (work.mm(Decimal(length)) / scale) * (1.0 if ahead else -1.0)
+    for near in beside:
+        if abs(section.wrapped(at - near.s_mm)) * scale < work.mm(NEAR):
+            return near.label
     return f", {length} {work.unit} {direction} {line.label}"
 
 
@@ -172,24 +211,35 @@ def _chord(work: Work, position: Position) -> str:
                 return f"{side}aft of {name}"
             if high == at and low == edges[index - 1]:
                 return f"{side}fwd of {name}"
-    first, last = (_one_chord(work, s, map_mm, spars) for s in (low, high))
+    ends = [_one_chord(work, s, map_mm, spars) for s in (low, high)]
+    first, last = (line for line, _ in ends)
+    if not (first and last):
+        first, last = (spar for _, spar in ends)
     return f"{side}{first}" if first == last else f"{side}{first} to {last}"
 
 
 def _one_chord(
     work: Work, s_mm: float, map_mm: float, spars: dict[str, float | None]
-) -> str:
-    """A stringer, a spar, or how far aft or ahead of the front spar."""
+) -> tuple[str, str]:
+    """The stringer here or '', and the spar or how far aft or ahead of the first."""
     section = work.section
     scale = section.scale_at(map_mm)
-    for line in section.stringers:
-        if work.show(abs(abs(line.s_mm) - s_mm) * scale) == "0":
-            return f"{section.stringer_prefix}{line.number}"
-    name, at = next((n, s) for n, s in spars.items() if s is not None)
-    length = work.show(abs(s_mm - at) * scale)
-    if length == "0":
-        return name
-    return f"{length} {work.unit} {'aft' if s_mm > at else 'fwd'} of {name}"
+    first = next(((n, s) for n, s in spars.items() if s is not None), None)
+    if first is None:
+        share = number_write(100.0 * s_mm / section.s2_mm, SHARE_DIGITS)
+        return "", f"{share} % chord"
+    name, front = first
+    length = work.show(abs(s_mm - front) * scale)
+    written = work.mm(Decimal(length)) / scale
+    at = front + written if s_mm > front else front - written
+    near = work.mm(NEAR) / scale
+    line = next((t for t in section.stringers if abs(abs(t.s_mm) - at) < near), None)
+    label = f"{section.stringer_prefix}{line.number}" if line else ""
+    for spar, its in spars.items():
+        if its is not None and abs(its - at) < near:
+            return label, spar
+    way = "aft" if s_mm > front else "fwd"
+    return label, f"{length} {work.unit} {way} of {name}"
 
 
 def _door(work: Work, position: Position) -> str:
