@@ -2,13 +2,22 @@
 
 from __future__ import annotations
 
+import json
+
+from fleet.models import Spectrum
 from repairs.analysis.spectra.cycles import ConstantCycle
+from repairs.analysis.spectra.plain import Kind
 from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.selectors.spectra import spectrum_newest
 from repairs.services.evaluation_gathered import Gathered, UsedRow
 
 SPECTRUM = "spectrum"
 LARGEST, RATIO = CYCLE = ("cycle_max_stress", "cycle_ratio")
+
+
+def row_kind(row: Spectrum) -> str:
+    """The kind of a row's content, as its data name it."""
+    return str(json.loads(row.content).get("kind", Kind.CYCLE))
 
 
 def spectrum_inputs(

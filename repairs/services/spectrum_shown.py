@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import json
 from dataclasses import dataclass
 from typing import Any
 
@@ -13,7 +12,6 @@ from fleet.models import Spectrum
 from repairs.analysis.spectra.cycles import PressureCycle
 from repairs.analysis.spectra.in_words import choices, kind_of
 from repairs.analysis.spectra.per_flight import FlightCycles
-from repairs.analysis.spectra.plain import Kind
 from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.spectra.wing_sequence import TABLE
 
@@ -63,11 +61,6 @@ class SpectrumShown:
 def spectrum_of_row(row: Spectrum) -> RecordedSpectrum:
     """A row as calculations take it."""
     return RecordedSpectrum.read(str(row), row.source, row.content_digest, row.content)
-
-
-def spectrum_kind(row: Spectrum) -> str:
-    """The kind of a row's content, as its data name it."""
-    return str(json.loads(row.content).get("kind", Kind.CYCLE))
 
 
 def spectrum_initial(row: Spectrum) -> dict[str, Any]:

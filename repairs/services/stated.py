@@ -20,13 +20,15 @@ from fleet.units import UnitError
 from repairs.analysis.input_specs import InputSpec
 from repairs.analysis.inputs import SPECS
 from repairs.analysis.scatter.factors import FatiguePolicy
+from repairs.analysis.spectra.plain import Kind
 from repairs.analysis.types import Sourced, Stated
 from repairs.input_text import Bounds, Read, input_read, input_write
 from repairs.models import Finding, StatedInput
+from repairs.selectors.neighbours import section_geometry
 from repairs.selectors.spectra import spectra_in_force
 from repairs.selectors.stated import stated_inputs, stated_rows, stated_source
 from repairs.services.evaluation_place import Subject
-from repairs.services.evaluation_spectrum import SPECTRUM
+from repairs.services.evaluation_spectrum import SPECTRUM, row_kind
 
 NO_PERSON = (
     "Your login has no person behind it; an administrator links one before you state "
@@ -35,6 +37,10 @@ NO_PERSON = (
 NOT_STATED = "“{name}” is no input that may be stated; state one of: {names}."
 NOT_OFFERED = "“{word}” is no answer here; state one of: {words}."
 NO_SPECTRUM = "No spectrum in force is chosen; choose one of the list."
+NOT_HERE = (
+    "{row} is the standard wing sequence, which holds for the lower surface of a "
+    "transport's wing only; choose a spectrum of this place."
+)
 NOTHING = "Nothing was stated; to withdraw what holds, take it back."
 GONE = "This no longer holds: it was replaced or taken back before."
 NO_REASON = "Say why it is taken back."
@@ -132,7 +138,7 @@ def input_state(
         raise ValidationError({"entered": NOTHING})
     value, spread, word, spectrum = None, None, "", None
     if spec.name == SPECTRUM:
-        spectrum = _spectrum(text)
+        spectrum = _spectrum(text, subject)
     elif spec.kind is Stated:
         word = _word(spec, text)
     else:
@@ -217,11 +223,19 @@ def _word(spec: InputSpec, text: str) -> str:
     return word
 
 
-def _spectrum(text: str) -> Spectrum:
+def _spectrum(text: str, subject: Subject) -> Spectrum:
     row = spectra_in_force().filter(pk=int(text) if text.isdigit() else 0).first()
     if row is None:
         raise ValidationError({"entered": NO_SPECTRUM})
+    if row_kind(row) == Kind.WING_SEQUENCE and not _wing_lower(subject):
+        raise ValidationError({"entered": NOT_HERE.format(row=row)})
     return row
+
+
+def _wing_lower(subject: Subject) -> bool:
+    section = section_geometry(subject)
+    wing = section is not None and "wing" in section.words
+    return wing and subject.surface == "lower"
 
 
 def _person(actor: User) -> Person:

@@ -22,10 +22,10 @@ from repairs.selectors.spectra import (
     spectrum_revisions,
     spectrum_uses,
 )
+from repairs.services.evaluation_spectrum import row_kind
 from repairs.services.spectra import KIND_WORDS, spectrum_record, spectrum_revise
 from repairs.services.spectrum_shown import (
     spectrum_initial,
-    spectrum_kind,
     spectrum_of_row,
     spectrum_shown,
 )
@@ -39,7 +39,7 @@ REVISED = "Revised: evaluations that were read from it are now stale."
 def spectrum_list(request: Request) -> HttpResponse:
     """The newest revision of every spectrum."""
     context = {
-        "lines": [(row, KIND_WORDS[spectrum_kind(row)]) for row in spectra_listed()],
+        "lines": [(row, KIND_WORDS[row_kind(row)]) for row in spectra_listed()],
         "may_record": may_somewhere(request.user, ACTION),
         "kinds": KIND_WORDS.items(),
     }
@@ -91,7 +91,7 @@ def spectrum_revise_page(request: Request, pk: int) -> HttpResponse:
     form = SpectrumForm(
         request.POST or None,
         request.FILES or None,
-        kind=spectrum_kind(row),
+        kind=row_kind(row),
         named=True,
         initial=spectrum_initial(row),
     )

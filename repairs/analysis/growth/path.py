@@ -15,6 +15,7 @@ from repairs.analysis.errors import OutOfRangeError
 from repairs.analysis.growth import beside
 from repairs.analysis.growth.blocks import EQUIVALENT
 from repairs.analysis.growth.by_cycle import End, SequenceGrowth
+from repairs.analysis.growth.law_end import LAW_ENDS, law_end
 from repairs.analysis.growth.laws import (
     FormanLaw,
     GrowthLaw,
@@ -45,6 +46,8 @@ from repairs.analysis.types import (
 )
 
 CURVE_POINTS = 60
+SHORTEST = 1e-3
+"""Share of the largest length from which a law's end is looked for."""
 BEYOND = "not lost where the method ends, at {what} ({length:.1f} mm)"
 LOST_ALREADY = "lost already at the size evaluated"
 PER_FLIGHT = "per flight"
@@ -62,7 +65,7 @@ class CrackPath:
 
     `scale` turns such a length into the one people measure: 2 for a half-length. Below
     `smallest` the factor is not known and nothing is drawn; at `kinks` its slope or
-    curvature jumps.
+    curvature jumps. `largest` is never beyond the end of its growth law.
     """
 
     symbol: str
@@ -79,6 +82,13 @@ class CrackPath:
     _tables: dict[RecordedLaw, GrowthTable] = field(
         init=False, default_factory=dict, compare=False, repr=False
     )
+
+    def __post_init__(self) -> None:
+        top, low = self.loads.cycle.maximum, max(self.smallest, SHORTEST * self.largest)
+        end = law_end(self.law, self.factor, top, low, self.largest)
+        if end is not None:
+            object.__setattr__(self, "largest", end)
+            object.__setattr__(self, "end_of_method", LAW_ENDS)
 
     def lost_at(self, requirement: Requirement, start: float) -> float | None:
         """Return the length where a requirement is lost, None if not in range."""

@@ -24,6 +24,10 @@ ONE_DIRECTION = (
     "Hoop direction only: stresses along the section are not part of this method."
 )
 
+ABOVE_LIMIT = (
+    "The spectrum's largest stress, {top:.1f} MPa, is above the stress from limit "
+    "flight loads, {limit:.1f} MPa: one of them is of another place or too high."
+)
 NOT_HOOP = (
     "The panel's spectrum states stress along the section; the hoop cycle comes from "
     "the cabin's pressure and does not use it."
@@ -290,6 +294,8 @@ def _recorded(inputs: Inputs, note: Note) -> PanelLoads:
         "k_ult", "factor of static ultimate", inputs.number("ultimate_factor")
     )
     flown = read_flight(inputs, note)
+    if flown.spectrum is not None and flown.cycle.maximum > flight:
+        note.warn(ABOVE_LIMIT.format(top=flown.cycle.maximum, limit=flight))
     thickness = note.given("t", "skin thickness", inputs.number("thickness"))
     residual, ultimate = loads.unpressurised_requirements(flight, factor)
     return PanelLoads(
