@@ -40,6 +40,19 @@ SEVERITY_OUTSIDE = (
     "The {what} does not contain the severity of the spectrum: average usage is "
     "assumed."
 )
+OTHER_LIFE = (
+    "The {what} is made for another life ({made_for}) than the one it divides here."
+)
+AS_A_STEP = (
+    "The detectable size counts as always found, and nothing smaller ever: record the "
+    "method's detection curve, and the chance of the whole plan is given beside."
+)
+MADE_FOR = {
+    "stress_life_policy": Multiplied.ANALYSIS_MEDIAN,
+    "growth_policy": Multiplied.GROWTH,
+    "repeat_policy": Multiplied.GROWTH,
+}
+"""What life each policy divides; a policy in words of its own is taken at its word."""
 NEVER_FROM_A_CRACK = (
     "No interval counts from a crack that was found. Repair it, or show its life as "
     "that of known damage."
@@ -91,6 +104,8 @@ def over_factor(
         note.warn(NO_FACTOR.format(what=what, result=result))
         return Factored(None, None)
     factor = note.given("f", f"{what}, multiplies {policy.multiplies}", policy.factor)
+    if policy.multiplies in {*Multiplied} - {MADE_FOR[policy_name]}:
+        note.warn(OTHER_LIFE.format(what=what, made_for=policy.multiplies), bars=True)
     if policy.severity_inside is False:
         note.warn(SEVERITY_OUTSIDE.format(what=what))
     if cycles is None:
@@ -232,6 +247,8 @@ def repeat_interval(
         cycles_to_critical(begin),
         "cycles",
     )
+    if inputs.detection() is None:
+        note.text(AS_A_STEP)
     factored = over_factor(inputs, note, cycles, "repeat_policy", "repeat interval")
     return interval(inputs, note, factored.cycles, LAST_DONE, "N_rep")
 

@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from repairs.analysis.errors import within
 from repairs.analysis.types import Grade, GrossStress, Reference, Sourced
 
-SHELL = Reference("Thin pressurised shell, elementary statics", Grade.PRINT)
+SHELL = Reference("Thin pressurised shell, elementary statics", Grade.DERIVED)
 
 RESIDUAL_PRESSURE_FACTOR = Sourced(
     1.15,

@@ -28,6 +28,14 @@ from repairs.analysis.stress_life import left as fatigue
 from repairs.analysis.types import Interval, Reference, Result, Use
 
 REMAINS = "growth of the flaw assumed to remain"
+LAYER = (
+    "Cladding, shot peening or another treated layer that was taken off with the "
+    "material is in no curve here; restore it, or count the life as without."
+)
+WORKED_BACK = (
+    "A flaw worked back from lives (equivalent initial flaw) is no size: it holds only "
+    "with the growth law and the spectrum it was worked back with."
+)
 INPUTS = ("toughness", "growth_law", *fatigue.INPUTS)
 COUNTED = ("life_base", "accumulated_cycles")
 """What a threshold counts from, and what is left to its caps."""
@@ -62,6 +70,9 @@ def with_lives(
 
     Lives count from `base`, else from what the record says.
     """
+    note.text(LAYER)
+    if inputs.maybe("assumed_flaw") is not None:
+        note.text(WORKED_BACK)
     grown = grow(inputs, note, path, start, path.loads.residual)
     base = base or inputs.word("life_base") or ""
     growth = intervals.life(title, grown.cycles, base, grown.remark)

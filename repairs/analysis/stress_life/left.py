@@ -43,6 +43,10 @@ RANGE_NOT_RECORDED = (
     "The tested range of stress ratio and life is not recorded with the stress-life "
     "curves."
 )
+MEDIAN = (
+    "Stress-life curves are the median life of small specimens until they part: no "
+    "allowable, and no life to a crack that an inspection finds."
+)
 ERROR_HELD = (
     "The curve's standard error holds lots and laboratories and is no scatter of one "
     "batch; it is not stacked on the scatter factor."
@@ -160,6 +164,7 @@ def write_curves(note: Note, family: StressLifeFamily, kt: float) -> None:
         note.warn(RANGE_NOT_RECORDED)
     for curve in used:
         _write_curve(note, curve)
+    note.text(MEDIAN)
     if any(curve.standard_error is not None for curve in used):
         note.text(ERROR_HELD)
 
