@@ -51,7 +51,6 @@ LOSS_OF_LIFE = (
     "published tests: scratches 0.1 mm deep in sheet 1.016 mm thick cost up to 95 % of "
     "the life"
 )
-THRESHOLD = Reference("growth threshold recorded for long cracks", Grade.RECORDED)
 
 
 def depth_path(
