@@ -78,6 +78,8 @@ def shell_parameter(half_length: HalfLength, radius: float, thickness: float) ->
     ----------
     .. [1] USAF Damage Tolerant Design Handbook, Table 11.3.13.
     """
+    within("Shell radius, mm", radius, 1e-6, 1e6, "a shell")
+    within("Shell thickness, mm", thickness, 1e-6, 1e3, "a shell")
     return half_length / math.sqrt(radius * thickness)
 
 

@@ -269,9 +269,11 @@ def bearing_factor(ratio: float, slender: float) -> float:
     ----------
     .. [1] See `HOLE_BEARING`.
     """
+    plain = handbook_f0(ratio)
+    within("Hole diameter over width", slender, 0, 0.5, "width terms")
     z = 1 / (1 + ratio)
     f1 = 0.078 * z + 0.7588 * z**2 - 0.4293 * z**3 + 0.0644 * z**4 + 0.651 * z**5
-    return handbook_f0(ratio) * slender / 2 + f1
+    return plain * slender / 2 + f1
 
 
 def hole_double_bearing(c_edge: EdgeLength, diameter: float, width: float) -> float:

@@ -47,6 +47,7 @@ def semi_ellipse_area(depth: float, half_length: float) -> float:
     .. [1] See `LONG_DEFECT`.
     """
     within("Depth of the defect, mm", depth, 1e-9, 1e3, "a defect")
+    within("Half-length of the defect, mm", half_length, 1e-9, 1e4, "a defect")
     return min(math.pi / 2 * depth * half_length, LONG_AREA * depth**2)
 
 
@@ -73,4 +74,5 @@ def surface_defect_intensity(stress: float, area: float) -> float:
     ----------
     .. [1] See `MURAKAMI`.
     """
+    within("Area of the defect, mm²", area, 0, 1e6, "a defect")
     return 0.65 * stress * math.sqrt(math.pi * math.sqrt(area))

@@ -61,12 +61,14 @@ def fracture_strength(toughness: float, factor: float, length: float) -> GrossSt
 
     Notes
     -----
-    Range of `factor`. Kc is a property of sheet and width, not of the alloy alone.
+    Range of `factor`, length above 0. Kc is a property of sheet and width, not of the alloy alone.
 
     References
     ----------
     .. [1] A published worked example: Kc 140, a 0.4, F 1.161 gives 107.6 ksi.
     """
+    within("Crack length, mm", length, 1e-12, 1e6, "a crack")
+    within("Factor F", factor, 1e-9, 1e6, "a crack that opens")
     return GrossStress(toughness / (factor * math.sqrt(math.pi * length)))
 
 

@@ -145,6 +145,8 @@ def plane_strain_size(toughness: float, yield_stress: float) -> float:
     ----------
     .. [1] See `PLANE_STRAIN`.
     """
+    within("Toughness, MPa√mm", toughness, 1e-9, 1e6, "a metal")
+    within("Yield strength, MPa", yield_stress, 1e-9, 1e5, "a metal")
     return 2.5 * (toughness / yield_stress) ** 2
 
 
