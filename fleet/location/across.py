@@ -186,7 +186,7 @@ def _lines_agree(work: Work, reach: Reach, map_mm: float) -> None:
     skin_bl = section.bl_of(map_mm, reach.s1_mm)
     apart = {
         "butt line": [
-            _butt_line(work, p, map_mm) - skin_bl for p in reading.butt_lines
+            _butt_line(work, p, map_mm) - skin_bl for p in _sided(reading.butt_lines)
         ],
         "water line": [
             _water_line(work, p, map_mm) - skin_wl for p in reading.water_lines
@@ -219,15 +219,19 @@ def _lines(work: Work, map_mm: float) -> Reach:
         words = "a stringer or the clock"
         message = NO_LINES.format(what="“BL, WL”", section=work.name, words=words)
         raise LocationRefused("E_SECTION_MISMATCH", message)
-    bls = [_butt_line(work, p, map_mm) for p in work.reading.butt_lines]
+    bls = [_butt_line(work, p, map_mm) for p in _sided(work.reading.butt_lines)]
     wls = [_water_line(work, p, map_mm) for p in work.reading.water_lines]
     side = _line_side(work, bls)
     bl = sum(bls) / len(bls) if bls else None
     wl = sum(wls) / len(wls) if wls else None
     if wl is None:
-        return Reach(side=side, bl_mm=bl)
+        return Reach(side=side, bl_mm=bl, bl_ends=tuple(bls))
     if bl is None:
         return _from_water_line(work, wls, map_mm, side)
+    if len(bls) + len(wls) > 2:  # an extent: skin only where one line does for both
+        off = [_off_skin(work, b, w, map_mm) for b in bls for w in wls]
+        if min(off) < -work.mm_in(OFF_SKIN_IN):
+            return Reach(None, None, side, bl, wl, True, tuple(bls), tuple(wls))
     return _on_skin(work, bl, wl, map_mm, side)
 
 
@@ -296,11 +300,17 @@ def _from_water_line(work: Work, wls: list[float], map_mm: float, side: str) -> 
     return arc_reach(work, values[0], values[-1])
 
 
+def _off_skin(work: Work, bl: float, wl: float, map_mm: float) -> float:
+    """How far outside the skin the two lines meet; inside is negative."""
+    up = wl - (work.section.axis_wl_mm or 0.0)
+    return math.hypot(bl, up) - work.section.size_at(map_mm)
+
+
 def _on_skin(work: Work, bl: float, wl: float, map_mm: float, side: str) -> Reach:
     section = work.section
     assert section.axis_wl_mm is not None
     up = wl - section.axis_wl_mm
-    off = math.hypot(bl, up) - section.size_at(map_mm)
+    off = _off_skin(work, bl, wl, map_mm)
     if off > work.mm_in(OFF_SKIN_IN):
         message = OUTSIDE.format(
             bl=work.show(abs(bl)),

@@ -4,10 +4,19 @@ from __future__ import annotations
 
 from decimal import Decimal
 
-from fleet.location.along import Work, did_you_mean, direction_sign, inside
-from fleet.location.parts import Cutout
+from fleet.location.along import (
+    Work,
+    did_you_mean,
+    direction_sign,
+    inside,
+    station_label,
+    station_word,
+)
+from fleet.location.parts import TINY_MM, Cutout
 from fleet.location.place import LocationRefused
 from fleet.location.reading import Along, Offer
+
+DOOR_STATION = "“{door}” gives {at}, but {read} was read too; keep one."
 
 
 def door_cutout(work: Work) -> Cutout | None:
@@ -47,3 +56,23 @@ def door_x(work: Work, cutout: Cutout) -> tuple[float, float]:
     x_mm = (fore if edge == "fwd" else rear) + sign * door.offset.length.mm(work.unit)
     point = Along("door", "", Decimal(0), cutout.label, door.offset)
     return (inside(work, x_mm, point),) * 2
+
+
+def door_agrees(work: Work, cutout: Cutout, ends: tuple[float, float]) -> None:
+    """A station beside a door's name lies at that door; a place has one reference."""
+    door = work.reading.door
+    assert door is not None
+    at, near = door_x(work, cutout), work.section.frame_pitch_mm + TINY_MM
+    beside = ends[0] <= at[1] + near and at[0] - near <= ends[1]
+    if beside and door.offset is None and not door.edge:
+        return
+    first, last = (station_label(work, x) for x in at)
+    word = station_word(work.section)
+    raise LocationRefused(
+        "E_MISMATCH",
+        DOOR_STATION.format(
+            door=door_text(cutout.label),
+            at=f"{word} {first}" if first == last else f"{word} {first} to {last}",
+            read=f"{word} {station_label(work, ends[0])}",
+        ),
+    )

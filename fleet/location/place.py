@@ -41,6 +41,9 @@ class Position:
     bl_mm: float | None
     wl_mm: float | None
     door: str
+    bl_ends: tuple[float, ...] = ()
+    wl_ends: tuple[float, ...] = ()
+    """The lines as read, where the place reaches from one to another."""
 
 
 @dataclass(frozen=True)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from fleet.location.across import reach_of
 from fleet.location.along import Work, did_you_mean, x_range
 from fleet.location.described import described
-from fleet.location.doors import door_cutout, door_x
+from fleet.location.doors import door_agrees, door_cutout, door_x
 from fleet.location.parts import TINY_MM, Plane
 from fleet.location.place import LocationRefused, Place, Position
 from fleet.location.reach import Reach
@@ -108,6 +108,8 @@ def _position(work: Work) -> Position:
     bulkhead = _bulkhead(work)
     ends = x_range(work)
     cutout = door_cutout(work)
+    if ends is not None and cutout is not None:
+        door_agrees(work, cutout, ends)
     if ends is None and cutout is not None:
         ends = door_x(work, cutout)
     if ends is None and bulkhead is not None:
@@ -141,6 +143,8 @@ def _position(work: Work) -> Position:
         bl_mm=reach.bl_mm,
         wl_mm=reach.wl_mm,
         door=cutout.label if cutout else "",
+        bl_ends=reach.bl_ends,
+        wl_ends=reach.wl_ends,
     )
 
 

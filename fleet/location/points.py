@@ -56,7 +56,7 @@ def station_point(c: Cursor, key: str) -> Along | None:
 
 
 def _marks(c: Cursor) -> None:
-    """Past "STA.", "STA Y=", "STA NO."; asks of "STA l20", where a letter is a digit."""
+    """Past "STA.", "STA Y=", "STA NO."; asks of "STA l20", a letter for a digit."""
     c.skip(".", ":", "#", "@", "no")
     if c.is_("s", "y", "x") and c.kind("num", 1 + c.is_("=", ahead=1)):
         c.at += 1
@@ -292,7 +292,7 @@ def stray_sign(c: Cursor) -> None:
     """ "STA 420+ S-9L", "STA 420+12+3": a sign that nothing can be made of."""
     if not c.is_("+"):
         return
-    text = f"+ {c.peek(1).text}".strip()
+    text = f"+ {c.peek(1).text}" if c.kind("num", 1) else "+"
     c.ask("E_NUM", STRAY_SIGN.format(text=text))
 
 

@@ -27,6 +27,8 @@ class Reach:
     bl_mm: float | None = None
     wl_mm: float | None = None
     off_skin: bool = False
+    bl_ends: tuple[float, ...] = ()
+    wl_ends: tuple[float, ...] = ()
 
 
 def reach_between(work: Work, values: list[float]) -> Reach:

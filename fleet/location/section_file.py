@@ -232,12 +232,12 @@ class SectionFile:
         prefix, words = t.text("prefix"), t.texts("words")
         count = t.whole("count", least=1) or 1
         if self.section.is_shell:
-            origin = t.choice("origin", ("crown",))
+            origin = t.choice("origin", ("crown", "keel"))
             if count % 2:
                 t.wrong(
                     "“count” must be even: the lines stand in pairs, left and right."
                 )
-            lines = self._around(prefix, count)
+            lines = self._around(prefix, count, origin == "keel")
         else:
             origin = t.choice("origin", ("front", "rear"))
             lines = self._between(
@@ -251,12 +251,17 @@ class SectionFile:
                 stringers=lines,
             )
 
-    def _around(self, prefix: str, count: int) -> tuple[Stringer, ...]:
-        """Lines once round from the crown: 1, 2R ... nR, keel, nL ... 2L."""
+    def _around(self, prefix: str, count: int, from_keel: bool) -> tuple[Stringer, ...]:
+        """Lines once round from the crown: 1, 2R ... nR, keel, nL ... 2L.
+
+        Numbers rise from the crown, or from the keel where the type counts so.
+        """
         half, lines = count // 2, []
         wrap = self.section.wrap_mm or 0.0
         for turn in range(count):
             number = turn + 1 if turn <= half else count - turn + 1
+            if from_keel:
+                number = half + 2 - number
             side = "" if turn in (0, half) else "R" if turn < half else "L"
             s_mm = wrap * turn / count if turn < half else wrap * (turn - count) / count
             lines.append(Stringer(f"{prefix}{number}{side}", number, side, s_mm, turn))

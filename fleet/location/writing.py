@@ -65,7 +65,7 @@ def write(work: Work, position: Position) -> str:
     """Canonical text of a position on the section of `work`."""
     section = work.section
     parts = [_section_words(section), _element(position)]
-    if position.door and position.s1_mm is not None and _along_unsaid(work):
+    if position.door and _along_unsaid(work) and _across_unsaid(work):
         parts.append(_door(work, position))
     else:
         if not (position.element.startswith("frame_") and position.element_label):
@@ -79,6 +79,12 @@ def write(work: Work, position: Position) -> str:
 def _along_unsaid(work: Work) -> bool:
     reading = work.reading
     return not (reading.stations or reading.frames or reading.ribs)
+
+
+def _across_unsaid(work: Work) -> bool:
+    reading = work.reading
+    lines = reading.stringers or reading.butt_lines or reading.water_lines
+    return not (lines or reading.clock_degrees)
 
 
 def _section_words(section: Section) -> str:
@@ -134,7 +140,7 @@ def _across(work: Work, position: Position) -> str:
     if position.s1_mm is None or position.s2_mm is None:
         return _lines(work, position)
     if section.is_shell:
-        if position.door and abs(position.s2_mm - position.s1_mm) > 1.0:
+        if position.door and _across_unsaid(work):
             return door_text(position.door)
         return _stringers(work, position)
     return _chord(work, position)
@@ -144,13 +150,19 @@ def _lines(work: Work, position: Position) -> str:
     """Butt and water lines of what is not on the skin."""
     parts = []
     if position.bl_mm is not None:
-        side = "L" if position.bl_mm < 0.0 else "R" if position.bl_mm else ""
-        parts.append(f"{side}BL {work.show(abs(position.bl_mm))}")
+        bls = position.bl_ends or (position.bl_mm,)
+        parts.append(" to ".join(dict.fromkeys(_butt_line(work, bl) for bl in bls)))
     elif position.side in _LATERAL and not work.section.side:
         parts.append(_LATERAL[position.side])
     if position.wl_mm is not None:
-        parts.append(f"WL {work.show(position.wl_mm)}")
+        wls = position.wl_ends or (position.wl_mm,)
+        parts.append(" to ".join(dict.fromkeys(f"WL {work.show(wl)}" for wl in wls)))
     return " ".join(parts)
+
+
+def _butt_line(work: Work, bl_mm: float) -> str:
+    side = "L" if bl_mm < 0.0 else "R" if bl_mm else ""
+    return f"{side}BL {work.show(abs(bl_mm))}"
 
 
 # -- shells -------------------------------------------------------------------

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from fleet.location import LocationRefused, Place, place, read
+from fleet.location import LocationRefused, Place, place, read, vocabulary_of
 from fleet.location.geometry import TypeGeometry, geometry_from_toml
 from fleet.models import AircraftType, GeometryRevision
 
@@ -34,4 +34,4 @@ def place_find(*, aircraft_type: AircraftType, variant: str, text: str) -> Place
     if geometry is None:
         message = NO_GEOMETRY.format(code=aircraft_type.code)
         raise LocationRefused("E_NO_GEOMETRY", message)
-    return place(read(text), geometry, variant)
+    return place(read(text, vocabulary_of(geometry)), geometry, variant)
