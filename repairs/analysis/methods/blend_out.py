@@ -99,6 +99,7 @@ def dished(
     path = sheet.path(on_left, inputs, clearance(inputs), ON_LEFT)
     flaw = rework_lives.assumed_flaw(inputs, section.left)
     start = flaw_start(sheet, path, note, flaw)
+    rework_lives.write_cautions(inputs, note)
     return rework_lives.with_lives(
         inputs, use, note, path, start, left, draft, base=base
     )

@@ -87,6 +87,7 @@ def compute(inputs: Inputs, use: Use, note: Note, draft: Result) -> Result:
     left = flown_life_left(inputs, note, kt, net.flown, found.flown)
     write_edge_distance(inputs, note)
     start = _start(inputs, note, path, depth, strip.thickness)
+    rework_lives.write_cautions(inputs, note)
     return rework_lives.with_lives(inputs, use, note, path, start, left, draft)
 
 

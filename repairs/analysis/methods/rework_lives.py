@@ -55,6 +55,13 @@ def assumed_flaw(inputs: Inputs, thickness: float) -> AssumedFlaw:
     return AssumedFlaw(FlawKind.SURFACE, 2 * given.value, given.value, reference)
 
 
+def write_cautions(inputs: Inputs, note: Note) -> None:
+    """Write what the lives of skin or an edge that was worked do not hold."""
+    note.text(LAYER)
+    if inputs.maybe("assumed_flaw") is not None:
+        note.text(WORKED_BACK)
+
+
 def with_lives(
     inputs: Inputs,
     use: Use,
@@ -70,9 +77,6 @@ def with_lives(
 
     Lives count from `base`, else from what the record says.
     """
-    note.text(LAYER)
-    if inputs.maybe("assumed_flaw") is not None:
-        note.text(WORKED_BACK)
     grown = grow(inputs, note, path, start, path.loads.residual)
     base = base or inputs.word("life_base") or ""
     growth = intervals.life(title, grown.cycles, base, grown.remark)

@@ -17,7 +17,7 @@ import math
 from dataclasses import dataclass, replace
 from types import ModuleType
 
-from repairs.analysis.errors import OutOfRangeError
+from repairs.analysis.errors import OutOfRangeError, within
 from repairs.analysis.growth.laws import StressCycle
 from repairs.analysis.growth.path import CrackPath, with_found_lives, with_margins
 from repairs.analysis.inputs import Inputs
@@ -152,7 +152,8 @@ def stop_hole_kt(half_length: float, radius: float) -> float:
     ----------
     .. [1] See `STOP_HOLE`.
     """
-    return 1 + 2 * math.sqrt(half_length / radius)
+    slender = within("Half-length over radius", half_length / radius, 1, 1e6, "a notch")
+    return 1 + 2 * math.sqrt(slender)
 
 
 def notch_of(inputs: Inputs, note: Note) -> Notch:
