@@ -11,6 +11,7 @@ from fleet.location.reading import Across, Offset
 BEYOND_CHORD = (
     "{length} {way} of {line} is off this {section}, whose chord here is {chord}."
 )
+BOTH = "“{text}” gives both a spar and a share of the chord; keep one."
 SHARE_RANGE = "{read} % of the chord is off the section (0 to 100 %)."
 SPAR_UNKNOWN = "This {section} has no {name} spar; it has {offers}."
 
@@ -26,6 +27,9 @@ def chordwise(work: Work, map_mm: float) -> Reach:
         what = "A spar or a share of the chord"
         message = NO_LINES.format(what=what, section=work.name, words=words)
         raise LocationRefused("E_SECTION_MISMATCH", message)
+    if reading.spars and reading.chords:
+        message = BOTH.format(text=reading.text.strip())
+        raise LocationRefused("E_TWO_POINTS", message)
     spars = [p for p in section.planes if p.kind == "spar" and p.s_mm is not None]
     if reading.spars and reading.spar_side:
         low, high = _beside(work, _spar_s(work, reading.spars[0], spars), spars)

@@ -45,10 +45,11 @@ class Ranges(Cursor):
     def _pending_lost(self) -> None:
         if self.pending is not None:
             text = self.pending_text
-            direction, self.pending = self.pending.direction, None
-            names = ACROSS if direction in ("above", "below") else ALONG
+            across = self.pending.direction in ("above", "below")
+            self.pending = None
+            names = ACROSS if across else ALONG
             known = [self.found[name][-1] for name in names if name in self.found]
-            of = text if text.endswith((" of", " from")) else f"{text} of"
+            of = text if across or text.endswith((" of", " from")) else f"{text} of"
             offers = [Offer("reference", f"{of} {point_text(p)}") for p in known]
             mend = NAME_ONE
             if offers:
