@@ -20,6 +20,7 @@ from repairs.analysis.intensity import (
 )
 from repairs.analysis.intensity.part_through import PartThrough
 from repairs.analysis.loads import manoeuvre, shell
+from repairs.analysis.methods.stop_drilled import stop_hole_kt
 from repairs.analysis.scatter import factors, tolerance
 from repairs.analysis.spectra import gust_loads
 from repairs.analysis.strength import (
@@ -150,6 +151,7 @@ CASES: dict[str, tuple[Callable[[float], object], float, float]] = {
         3.0, 2.99),
     "dish, no deeper than half its length": (
         lambda x: notches.notch_factor(x, 2), 1.0, 1.001),
+    "stop hole, a from rho": (lambda x: stop_hole_kt(x, 1), 1.0, 0.999),
     "hole in a strip, D/W to 0.5": (
         lambda x: severity.hole_kt(x, 1), 0.5, 0.501),
     "Goodman, mean below the strength": (
