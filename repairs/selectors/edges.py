@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from django.db.models import QuerySet
+
 from repairs.models import Finding, MeasuredValue, Repair
 from repairs.selectors.neighbours import in_patch, patch_of
 
@@ -24,8 +26,12 @@ def edge_margin_mm(repair: Repair, finding: Finding) -> float | None:
 
 def earlier_blends(finding: Finding) -> list[Repair]:
     """Blend-outs that stand at a finding's location; their depths add up."""
+    return list(_earlier(finding).order_by("released_on"))
+
+
+def _earlier(finding: Finding) -> QuerySet[Repair]:
     if finding.section is None:
-        return []
+        return Repair.objects.none()
     rows = Repair.objects.filter(
         in_patch(patch_of(finding), finding.section.wrap_mm),
         aircraft=finding.aircraft_id,
@@ -33,12 +39,12 @@ def earlier_blends(finding: Finding) -> list[Repair]:
         kind="blend",
         state="embodied",
     )
-    return list(rows.exclude(finding_rows__finding=finding).order_by("released_on"))
+    return rows.exclude(finding_rows__finding=finding)
 
 
 def earlier_depth_mm(finding: Finding) -> float | None:
     """Their summed depth: 0 without any, None when one was not recorded."""
-    depths = [row.blend_depth_mm for row in earlier_blends(finding)]
+    depths = list(_earlier(finding).order_by().values_list("blend_depth_mm", flat=True))
     if None in depths:
         return None
     return sum(depth for depth in depths if depth is not None)

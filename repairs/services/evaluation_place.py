@@ -14,6 +14,8 @@ from repairs.models import Finding, Repair
 from repairs.selectors.neighbours import repairs_shown, section_geometry, true_x
 
 Subject = Finding | Repair
+PLACE = ("number", "x1_mm", "x2_mm", "s1_mm", "s2_mm", "length_mm", "width_mm")
+"""Of a repair, what says where its edges are."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -188,7 +190,7 @@ def _from_repairs(
         rows = rows.exclude(pk=subject.pk)
     elif as_found:
         rows = rows.exclude(finding_rows__finding=subject)
-    return [_repair(subject, section, row) for row in rows]
+    return [_repair(subject, section, row) for row in rows.only(*PLACE)]
 
 
 def _repair(subject: Subject, section: SectionGeometry, row: Repair) -> Obstacle:
