@@ -38,9 +38,9 @@ HOLE_BEARING = Reference(
 )
 
 HOLE_DOUBLE_BEARING = Reference(
-    "Pin load as half of even tension and half of a splitting pair of forces across "
-    "hole and cracks; elementary superposition, the hole taken as part of the crack",
-    Grade.DERIVED,
+    "rule of this program: pin load as half of even tension and half of a splitting "
+    "pair of forces across hole and cracks, the hole taken as part of the crack",
+    Grade.RECORDED,
 )
 
 

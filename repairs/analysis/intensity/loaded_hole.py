@@ -29,9 +29,10 @@ SUPERPOSED = Reference(
     "Bypass and bearing parts of K added: linear superposition", Grade.DERIVED
 )
 CORNER_UNDER_PIN = Reference(
-    "Corner crack in tension times bearing over bypass of a through crack as long as "
-    "the point's distance from the hole edge: compounding by ratios",
-    Grade.DERIVED,
+    "rule of this program: corner crack in tension times bearing over bypass of a "
+    "through crack as long as the point's distance from the hole edge, compounding by "
+    "ratios after Cartwright and Rooke",
+    Grade.RECORDED,
 )
 SHORTEST_SPLIT = 0.1
 """c/r from which the splitting pair holds; below it one crack's solution is scaled."""
