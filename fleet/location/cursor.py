@@ -114,8 +114,8 @@ class Cursor:
     def _unit(self, tail: str) -> str:
         if tail:
             return unit_known(tail) or ""
-        token = self.peek()
-        if token.kind not in ("word", "sym"):
+        token = self.tokens[self.at]
+        if token.kind not in ("word", "sym") or token.text in self.words.steps:
             return ""
         if token.text == "'":
             self.at += 1

@@ -14,14 +14,14 @@ _SAME = str.maketrans(
 )  # fmt: skip
 
 _TOKEN = re.compile(
-    r"(?P<num>\d+(?:[.,]\d+)*|\.\d+(?:[.,]\d+)*)"
+    r"(?=\S)(?:(?P<num>\d+(?:[.,]\d+)*|\.\d+(?:[.,]\d+)*)"
     r"(?P<tail>(?!o\s?'?\s?clock|(?:fr|wl|bs|sta|str|rbl|lbl|s)\d|s-\d)[a-z][a-z0-9]*)?"
     r"|(?=[lor])(?:(?P<rr>\b(?:r|right)\s*(?:&|/|\band\b)\s*(?:r|right)\b)"
     r"|(?P<clock>o\s?'?\s?clock\b)"
     r"|(?P<side>\b[lr]/h\b))"
     r"|(?P<dotted>\b[a-z](?:\.[a-z])+(?![a-z])\.?)"
     r"|(?P<word>[a-z]+)\.?"
-    r"|(?P<sym>''|\S)"
+    r"|(?P<sym>''|\S))"
 )
 _PLAIN = re.compile(r"\d*\.\d+")
 _THOUSANDS = re.compile(r"[1-9]\d{0,2}(,\d{3})+(\.\d+)?")
