@@ -81,6 +81,23 @@ class InputSpec:
     words: tuple[str, ...] = ()
 
     @property
+    def expected(self) -> str:
+        """Which numbers can be true of it, in words; empty where any can."""
+        if self.name in MAY_BE_NEGATIVE:
+            return ""
+        return "zero or more" if self._may_be_zero else "more than zero"
+
+    @property
+    def _may_be_zero(self) -> bool:
+        return self.where is Where.SPREAD or self.name in MAY_BE_ZERO
+
+    def takes(self, value: float) -> bool:
+        """Return whether a number can be true of it."""
+        if not self.expected:
+            return True
+        return value > 0 or (value == 0 and self._may_be_zero)
+
+    @property
     def may_be_stated(self) -> bool:
         """Whether an engineer may state it for one finding or repair."""
         return self.where in (Where.PANEL, Where.STATED)
@@ -275,6 +292,37 @@ _NUMBERS: dict[Where, tuple[tuple[str, str, str], ...]] = {
         ("proof_factor", "relief valve alone", "-"),
     ),
 }  # fmt: skip
+MAY_BE_NEGATIVE = (
+    "external_pressure",
+    "limit_flight_stress",
+    "limit_longitudinal_stress",
+    "mean_longitudinal_stress",
+    "limit_shear_stress",
+    "mean_shear_stress",
+    "flight_smallest_share",
+    "flight_largest_share",
+    "cycle_max_stress",
+    "cycle_ratio",
+    "member_limit_force",
+    "member_limit_moment",
+    "member_limit_shear",
+    "neighbour_limit_force",
+)
+"""Loads and ratios, which have a direction."""
+MAY_BE_ZERO = (
+    "clad_thickness",
+    "earlier_depth",
+    "blend_depth",
+    "load_transfer",
+    "member_lost_area",
+    "fastener_flexibility",
+    "wheeler_exponent",
+    "growth_threshold",
+    "ceiling",
+    "accumulated_cycles",
+    "skin_cycles",
+)
+"""What may be nothing; every uncertainty may too."""
 _DEFAULTS = {
     "clearance_multiple": CLEARANCE_RULE,
     "residual_pressure_factor": loads.RESIDUAL_PRESSURE_FACTOR,

@@ -119,6 +119,15 @@ class Inputs:
         specs = (SPECS[name] for name in names if name not in self)
         return tuple(MissingInput(s.name, s.title, s.where) for s in specs)
 
+    def impossible(self, names: tuple[str, ...]) -> tuple[InputSpec, ...]:
+        """Return those of the names whose number cannot be true of anything."""
+        found = ((SPECS[name], self.maybe(name)) for name in names)
+        return tuple(
+            spec
+            for spec, given in found
+            if given is not None and not spec.takes(given.value)
+        )
+
     def as_data(self) -> dict[str, object]:
         """Return all inputs given as plain data, by name."""
         return {

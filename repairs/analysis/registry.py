@@ -34,13 +34,25 @@ from repairs.analysis.methods import (
 )
 from repairs.analysis.methods.member_common import MEMBERS
 from repairs.analysis.note import Note
-from repairs.analysis.types import Applicability, Outcome, Result, Use
+from repairs.analysis.types import (
+    Applicability,
+    MissingInput,
+    Outcome,
+    Result,
+    Use,
+)
 
 NEEDS_ENGINEER = (
     "No method applies: {test}, {value}; required {limit}. Needs an engineer."
 )
 NO_METHOD = "No method of this program covers this damage. Needs an engineer."
 NEEDS_INPUT = "Incomplete: {title} is not recorded; enter it {where}."
+IMPOSSIBLE = (
+    "{title} reads {value:g} {unit}; a number {expected} is expected. Enter it again, "
+    "{where}."
+)
+JUDGED = ("detectable_length", "assumed_flaw", "validity_cycles", "class_maximum")
+"""Inputs that no method requires and that shape its answer."""
 STIFFENERS_WHOLE = "Stiffeners that cross the crack are whole: look at them."
 UNAPPROVED = "Unapproved calculation."
 
@@ -326,6 +338,8 @@ def evaluate(name: str, use: Use, inputs: Inputs, *, first_line: int = 1) -> Res
     Lines of the note are numbered from `first_line`.
     """
     method = method_named(name)
+    if impossible := _impossible(method, use, inputs):
+        return impossible
     tests = method.module.tests(inputs, use)
     draft = Result(
         method.id,
@@ -360,6 +374,33 @@ def evaluate(name: str, use: Use, inputs: Inputs, *, first_line: int = 1) -> Res
             ),
         )
     return _computed(method, use, inputs, draft, Note(first_line))
+
+
+def _impossible(method: Method, use: Use, inputs: Inputs) -> Result | None:
+    """Answer where a number cannot be true: as incomplete, with what was read."""
+    names = dict.fromkeys((*method.module.required(inputs, use), *JUDGED))
+    found = inputs.impossible(tuple(names))
+    if not found:
+        return None
+    return Result(
+        method.id,
+        method.version,
+        method.title,
+        use,
+        Outcome.MISSING_INPUT,
+        missing=tuple(MissingInput(s.name, s.title, s.where) for s in found),
+        warnings=tuple(
+            IMPOSSIBLE.format(
+                title=spec.title,
+                value=inputs.number(spec.name).value,
+                unit=spec.unit,
+                expected=spec.expected,
+                where=spec.where,
+            )
+            for spec in found
+        ),
+        assumptions=method.assumptions,
+    )
 
 
 def _computed(

@@ -61,7 +61,8 @@ def fracture_strength(toughness: float, factor: float, length: float) -> GrossSt
 
     Notes
     -----
-    Range of `factor`, length above 0. Kc is a property of sheet and width, not of the alloy alone.
+    Range of `factor`, length above 0. Kc is a property of sheet and width, not of the
+    alloy alone.
 
     References
     ----------

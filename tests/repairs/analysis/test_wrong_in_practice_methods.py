@@ -6,7 +6,7 @@ import math
 
 import pytest
 
-from repairs.analysis.inputs import Inputs
+from repairs.analysis.inputs import SPECS, Inputs
 from repairs.analysis.registry import METHODS, evaluate
 from repairs.analysis.types import Outcome, Result, Sourced, Use
 from tests.repairs.analysis.method_cases import CASES, RUNS, SCREENING
@@ -116,3 +116,25 @@ def test_worse_is_never_better(name, use, varied, power):
     worse = numbers(run(name, use, **dict.fromkeys(varied, 1.1**power)))
     for what, value in worse.items():
         assert value <= base.get(what, math.inf) * (1 + 1e-6), what
+
+
+IMPOSSIBLE = [
+    (name, use, given, value)
+    for name, use, given in NEEDED
+    if isinstance(CASES[name][given], Sourced)
+    for value in (0.0, -1.0)
+    if SPECS[given].expected == "more than zero"
+    or (SPECS[given].expected and value < 0)
+]
+
+
+@pytest.mark.parametrize(("name", "use", "given", "value"), IMPOSSIBLE)
+def test_an_impossible_number_is_asked_for_again(name, use, given, value):
+    # A negative uncertainty lengthens a life, a thickness of zero divides by it.
+    old = CASES[name][given]
+    wrong = Sourced(value, old.unit, old.source, old.grade)
+    result = evaluate(name, use, Inputs({**CASES[name], given: wrong}))
+    assert result.outcome is not Outcome.COMPUTED
+    assert numbers(result) == {}
+    assert given in {m.name for m in result.missing}
+    assert any(f"reads {value:g}" in warning for warning in result.warnings)
