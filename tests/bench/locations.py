@@ -20,7 +20,7 @@ from fleet.location import LocationRefused, place, read, text_at, vocabulary_of
 from fleet.location.geometry import geometry_from_toml
 
 FILE = Path(__file__).parents[2] / "fixtures" / "ard52.toml"
-TEXTS, BATCH, ROUNDS = 2000, 100, 40
+TEXTS, BATCH, ROUNDS = 1000, 100, 20
 WANTED = 20_000
 REFERENCE = b"\0" * (1024 * 1024)
 
