@@ -136,6 +136,7 @@ class WalkerLaw:
         Range R < 1. Data of the law end near R = 0.7 and near the toughness.
         """
         within("Stress ratio R", ratio, -10, 0.999, "Walker")
+        within("Range of K, MPa√mm", delta_k, 0, 1e9, "a crack that is pulled")
         power = 1 - self.gamma if ratio >= 0 else 1.0
         return float(
             self.coefficient * (delta_k / (1 - ratio) ** power) ** self.exponent

@@ -302,12 +302,13 @@ def unpressurised_requirements(
 
     Notes
     -----
-    No range.
+    Range: a panel that carries load; its margins are over these stresses.
 
     References
     ----------
     .. [1] 14 CFR 25.571(b), 25.303.
     """
+    within("Stress from limit flight loads, MPa", abs(flight), 1e-6, 1e5, "a load")
     ultimate = ULTIMATE_UNPRESSURISED.format(factor=factor)
     return (
         Requirement("residual", (LoadCase(RESIDUAL_UNPRESSURISED, flight),)),

@@ -138,3 +138,10 @@ def test_an_impossible_number_is_asked_for_again(name, use, given, value):
     assert numbers(result) == {}
     assert given in {m.name for m in result.missing}
     assert any(f"reads {value:g}" in warning for warning in result.warnings)
+
+
+@pytest.mark.parametrize("name", ["unpressurised-skin-crack", "edge-crack"])
+def test_a_panel_without_load_is_refused_and_has_no_infinite_margin(name):
+    result = run(name, Use.FOUND_DAMAGE, limit_flight_stress=0.0)
+    assert result.outcome is Outcome.NOT_COVERED
+    assert numbers(result) == {}
