@@ -20,7 +20,7 @@ from dataclasses import dataclass, field
 import numpy as np
 from scipy.integrate import solve_ivp
 
-from repairs.analysis.errors import AnalysisError
+from repairs.analysis.errors import AnalysisError, within
 from repairs.analysis.growth.laws import (
     Floats,
     GrowthLaw,
@@ -163,12 +163,14 @@ def grow_part_through(
 
     Notes
     -----
-    Range of the factors. Relative error below 1e-7 in N and c for smooth factors.
+    Range of the factors, stress range above 0. Relative error below 1e-7 in N and c for
+    smooth factors.
 
     References
     ----------
     .. [1] USAF Damage Tolerant Design Handbook, 11.3: two-point growth.
     """
+    within("Range of stress, MPa", cycle.span, 1e-9, 1e5, "a crack that is pulled")
     return _grown(law, factors, cycle, start, thickness)
 
 
