@@ -49,7 +49,7 @@ class FatiguePolicy:
 
 @dataclass(frozen=True)
 class Detection:
-    """Chance of finding a visible length, what it was tried on, how surely it is used."""
+    """Chance of finding a visible length, what was tried, how surely it is used."""
 
     link: str
     half_found_mm: float

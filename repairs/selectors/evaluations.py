@@ -46,6 +46,7 @@ REPLACED_ROWS = (
 METHOD_CHANGED = "{name} is now version {now}, this was version {then}"
 PANEL_CHANGED = "panel {panel} is not the same in the geometry in force"
 ROW_REPLACED = "{what} has been replaced by a later one"
+ONE_METHOD = "it was made when only one method was asked"
 MEASURED_SINCE = "the finding was measured again"
 STATED_SINCE = "an input was stated since"
 
@@ -142,8 +143,8 @@ def state_of(row: Evaluation) -> str:
 def evaluations_stale(
     rows: QuerySet[Evaluation], versions: Mapping[str, int]
 ) -> QuerySet[Evaluation]:
-    """Those whose method or whose read rows have since changed."""
-    newer_method = Q()
+    """Those whose methods or whose read rows have since changed."""
+    newer_method = Q(methods="")  # made before every method was asked
     for method, version in versions.items():
         asked = Q(methods__contains=f"|{method}@")
         newer_method |= asked & ~Q(methods__contains=f"|{method}@{version}|")
@@ -190,7 +191,7 @@ def _stated_since() -> QuerySet[StatedInput]:
 
 def stale_reasons(evaluation: Evaluation, versions: Mapping[str, int]) -> list[str]:
     """Why an evaluation is stale, in words; empty when it is not."""
-    reasons = []
+    reasons = [] if evaluation.methods else [ONE_METHOD]
     for method, then in methods_asked(evaluation):
         now = versions.get(method)
         if now is not None and now != then:

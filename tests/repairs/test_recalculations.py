@@ -14,6 +14,11 @@ from fleet.services.history import Writing
 from fleet.services.materials import demo_values_load
 from repairs.analysis.types import Use
 from repairs.models import Evaluation, Recalculation, RecalculationItem
+from repairs.selectors.evaluations import (
+    ONE_METHOD,
+    evaluations_stale,
+    stale_reasons,
+)
 from repairs.selectors.recalculations import (
     SHORTER,
     moved_numbers,
@@ -23,7 +28,7 @@ from repairs.selectors.recalculations import (
 )
 from repairs.services import recalculations
 from repairs.services.evaluation_gathered import Choice
-from repairs.services.evaluations import evaluation_make
+from repairs.services.evaluations import evaluation_make, method_versions
 from repairs.services.recalculations import (
     HOLD,
     recalculation_start,
@@ -148,6 +153,21 @@ def test_a_changed_policy_makes_stale_and_the_report_says_which_interval_shorten
     assert threshold.after <= threshold.before
     rows = list(report_rows(run, SHORTER))
     assert {"threshold", "life after factor"} & {row[3] for row in rows}
+
+
+def test_one_from_before_every_method_was_asked_is_stale(world):
+    made = evaluated(world, 1)[0]
+    columns = {
+        field.attname: getattr(made, field.attname)
+        for field in Evaluation._meta.concrete_fields
+        if not field.primary_key
+    }
+    earlier = columns | {"methods": "", "number": "E-9001", "replaces_id": made.pk}
+    with Writing(actor=None, action="evaluation_make", at=NOW) as w:
+        old = w.create(Evaluation(**earlier))
+    current = Evaluation.objects.filter(replaced_by=None)
+    assert list(evaluations_stale(current, method_versions())) == [old]
+    assert stale_reasons(old, method_versions()) == [ONE_METHOD]
 
 
 def test_one_run_at_a_time(world):
