@@ -64,17 +64,27 @@ def evaluation_rows() -> QuerySet[Evaluation]:
     )
 
 
+SUBJECT = (
+    "operator",
+    "aircraft__operator",
+    "aircraft__variant__aircraft_type",
+    "section",
+    "geometry",
+    "panel__section",
+    "panel__material",
+)
+"""What a calculation reads of a finding or repair in the query that finds it."""
+
+
 def subject_rows(model: type[Row]) -> QuerySet[Row]:
     """Findings or repairs with what a calculation reads of them."""
-    return model._default_manager.select_related(
-        "operator",
-        "aircraft__operator",
-        "aircraft__variant__aircraft_type",
-        "section",
-        "geometry",
-        "panel__section",
-        "panel__material",
-    )
+    return model._default_manager.select_related(*SUBJECT)
+
+
+def evaluations_with_subjects() -> QuerySet[Evaluation]:
+    """Evaluations with what calculating them again reads of their subjects."""
+    held = [f"{of}__{name}" for of in ("finding", "repair") for name in SUBJECT]
+    return Evaluation.objects.select_related("operator", *held)
 
 
 def subjects_numbered(number: str, operator: str = "") -> list[Finding | Repair]:

@@ -25,7 +25,7 @@ from repairs.models import (
     RecalculationItem,
     RecalculationPart,
 )
-from repairs.selectors.evaluations import evaluation_rows
+from repairs.selectors.evaluations import evaluations_with_subjects
 from repairs.selectors.recalculations import evaluations_wanted, run_open
 from repairs.services.evaluation_prepare import Prepared, evaluation_prepare
 from repairs.services.evaluations import (
@@ -196,7 +196,7 @@ def _rows(run: Recalculation, batch: list[int]) -> QuerySet[Evaluation]:
     """Those of a batch that are still current and not settled."""
     settled = RecalculationItem.objects.filter(run=run, before__in=batch)
     return (
-        evaluation_rows()
+        evaluations_with_subjects()
         .filter(pk__in=batch, replaced_by__isnull=True)
         .exclude(pk__in=settled.values("before"))
         .order_by("pk")
