@@ -13,16 +13,11 @@ from collections.abc import Callable, Iterator
 from dataclasses import dataclass, replace
 from enum import StrEnum
 
+from repairs.analysis.coverage import COVERAGE_KEY, COVERAGE_VERSION, groups_for
 from repairs.analysis.inputs import Inputs
 from repairs.analysis.inspection.known import with_plan
 from repairs.analysis.note import Note
-from repairs.analysis.registry import (
-    COVERAGE_KEY,
-    COVERAGE_VERSION,
-    NO_METHOD,
-    evaluate,
-    groups_for,
-)
+from repairs.analysis.registry import NO_METHOD, evaluate
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.types import (
     Interval,

@@ -13,10 +13,11 @@ from fleet.models import DetectableSize
 from fleet.selectors.kept import fleet_rows_kept
 from fleet.services.chain import stream_end
 from repairs.analysis.assessment import Assessment, Part, assess
+from repairs.analysis.coverage import groups_for
 from repairs.analysis.input_specs import Where
 from repairs.analysis.inputs import SPECS, Inputs, Value
 from repairs.analysis.inspection.known import Detection
-from repairs.analysis.registry import METHODS, groups_for
+from repairs.analysis.registry import METHODS
 from repairs.analysis.scatter.factors import FatiguePolicy
 from repairs.analysis.spectra.recorded import RecordedSpectrum
 from repairs.analysis.stress_life.curves import StressLifeFamily

@@ -30,7 +30,8 @@ from fleet.models import FatiguePolicy as PolicyRow
 from fleet.services.aircraft import stream_of
 from fleet.services.history import Writing
 from fleet.services.numbers import numbers_next
-from repairs.analysis.registry import COVERAGE_KEY, COVERAGE_VERSION, METHODS
+from repairs.analysis.coverage import COVERAGE_KEY, COVERAGE_VERSION
+from repairs.analysis.registry import METHODS
 from repairs.analysis.types import Outcome, Result, Use
 from repairs.models import (
     Evaluation,

@@ -10,15 +10,10 @@ import re
 import pytest
 
 import repairs.analysis
+from repairs.analysis.coverage import COVERAGE, groups_for
 from repairs.analysis.errors import InputError
 from repairs.analysis.inputs import SPECS, Inputs
-from repairs.analysis.registry import (
-    COVERAGE,
-    METHODS,
-    evaluate,
-    groups_for,
-    method_named,
-)
+from repairs.analysis.registry import METHODS, evaluate, method_named
 from repairs.analysis.types import Grade, Outcome, Sourced, Stated, Use
 
 

@@ -5,8 +5,9 @@ from __future__ import annotations
 import pytest
 
 from repairs.analysis.assessment import assess
+from repairs.analysis.coverage import groups_for
 from repairs.analysis.inputs import Inputs
-from repairs.analysis.registry import evaluate, groups_for
+from repairs.analysis.registry import evaluate
 from repairs.analysis.types import Outcome, Stated, Use
 from tests.repairs.analysis.cases import SHELL, inputs, recorded, said
 
