@@ -22,6 +22,8 @@ from dataclasses import asdict, dataclass
 from pathlib import Path
 
 ROOT = Path(__file__).parents[2]
+OTHERS = ("counting", "growth", "locations", "recalculation")
+"""Measurements against a reference of their own, each in a process of its own."""
 REFERENCE = b"\0" * (8 * 1024 * 1024)
 
 
@@ -101,6 +103,9 @@ def main() -> None:
             f"{row.what:<44}{row.runs:>5}{row.seconds:>10.4f}"
             f"{row.times_reference:>13.2f}  {row.note}"
         )
+    for name in OTHERS:
+        print(f"\n== {name}", flush=True)
+        subprocess.run([sys.executable, "-m", f"tests.bench.{name}"], cwd=ROOT)
 
 
 if __name__ == "__main__":

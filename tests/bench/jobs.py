@@ -81,6 +81,8 @@ METHODS = (
     "pressurised-skin-longitudinal-crack",
     "corrosion-blend-out",
     "open-or-trimmed-hole",
+    "loaded-fastener-hole",
+    "stiffened-skin-crack",
 )
 JOBS: dict[str, Callable[[], str]] = {
     "usage summed (bare statement)": usage_summed,
