@@ -30,8 +30,8 @@ import dj_database_url
 from csp.constants import NONE, SELF
 from django.core.exceptions import ImproperlyConfigured
 
-# Before numpy is imported: its systems here are small, threads only wait for each other,
-# and sums must not depend on how many cores a machine has.
+# Before numpy is imported: its systems here are small, threads only wait for each
+# other, and sums must not depend on how many cores a machine has.
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 
 BASE_DIR = Path(__file__).resolve().parents[2]
