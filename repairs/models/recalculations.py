@@ -59,6 +59,8 @@ class RecalculationPart(models.Model):
     holder = text()
     held_until = models.DateTimeField(null=True, blank=True)
     done = models.BooleanField(default=False)
+    objects = ScopedQuerySet.as_manager()
+    operator_paths = ("run__operator",)
 
     class Meta:
         ordering = ["run", "pk"]

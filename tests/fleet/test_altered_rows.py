@@ -80,6 +80,7 @@ def test_only_these_tables_stand_outside_the_history():
         "fleet_historyseal",
         "fleet_recordnumber",
         "fleet_sentform",
+        "repairs_recalculationpart",
     } == NOT_RECORDED
 
 
