@@ -34,6 +34,12 @@ from repairs.services.evaluations import (
     gives_the_same,
     method_versions,
 )
+from repairs.services.recalculation_parts import (
+    part_released,
+    part_renewed,
+    part_take,
+    parts_make,
+)
 
 ALREADY = (
     "A recalculation of {operator} of {day} is still open ({done} of {wanted} done); "
@@ -42,8 +48,6 @@ ALREADY = (
 NOTHING = "No evaluation of {operator} is {which}; there is nothing to recalculate."
 STALE, CURRENT = "stale", "current"
 BATCH = 20
-HOLD = dt.timedelta(minutes=2)
-"""How long a worker that says nothing keeps its share."""
 
 Clock = Callable[[], dt.datetime]
 
@@ -85,10 +89,7 @@ def recalculation_start(
         w.create(run)
         aircraft = set(wanted.values_list("finding__aircraft", flat=True))
         aircraft |= set(wanted.values_list("repair__aircraft", flat=True))
-        RecalculationPart.objects.bulk_create(
-            RecalculationPart(run=run, aircraft_id=key)
-            for key in sorted(aircraft - {None})
-        )
+        parts_make(run, sorted(aircraft - {None}))
     return run
 
 
@@ -106,46 +107,21 @@ def recalculation_work(
     `until` ends the work early; the share is then free for another.
     """
     settled = 0
-    while (part := _take(run, holder, clock())) is not None:
+    while (part := part_take(run, holder, clock())) is not None:
         wanted = _wanted(part)
         batches = [wanted[at : at + BATCH] for at in range(0, len(wanted), BATCH)]
         for batch in batches:
-            if not _renewed(part, clock()):
+            if not part_renewed(part, clock()):
                 break
             settled += _settle(part, batch, actor, clock())
             say(len(batch))
             if until is not None and clock() > until:
-                _released(part, done=False)
+                part_released(part, done=False)
                 return settled
         else:
-            _released(part, done=True)
+            part_released(part, done=True)
     _finish(run, actor, clock())
     return settled
-
-
-def _take(run: Recalculation, holder: str, at: dt.datetime) -> RecalculationPart | None:
-    """One share that nobody holds, held by this worker from now."""
-    free = Q(held_until__isnull=True) | Q(held_until__lt=at)
-    for part in RecalculationPart.objects.filter(free, run=run, done=False):
-        mine = RecalculationPart.objects.filter(free, pk=part.pk, done=False).update(
-            holder=holder, held_until=at + HOLD
-        )
-        if mine:
-            part.holder = holder
-            return part
-    return None
-
-
-def _renewed(part: RecalculationPart, at: dt.datetime) -> bool:
-    """Hold a share for longer; false where another worker has it by now."""
-    held = RecalculationPart.objects.filter(pk=part.pk, holder=part.holder, done=False)
-    return bool(held.update(held_until=at + HOLD))
-
-
-def _released(part: RecalculationPart, *, done: bool) -> None:
-    """Give a share back that this worker still holds."""
-    held = RecalculationPart.objects.filter(pk=part.pk, holder=part.holder)
-    held.update(done=done, holder="", held_until=None)
 
 
 def _wanted(part: RecalculationPart) -> list[int]:

@@ -35,6 +35,7 @@ MAY_WRITE = {
     "fleet/services/sending.py": "sent forms point at the entry they made",
     "fleet/services/restoring.py": "puts back rows together with their history",
     "fleet/services/second_factor.py": "keys of devices, no records; the user's is one",
+    "repairs/services/recalculation_parts.py": "a worker's hold on a share",
     "fleet/services/documents.py:save": "saves a picture, not a row",
 }
 

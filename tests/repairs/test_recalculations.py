@@ -29,8 +29,8 @@ from repairs.selectors.recalculations import (
 from repairs.services import recalculations
 from repairs.services.evaluation_gathered import Choice
 from repairs.services.evaluations import evaluation_make, method_versions
+from repairs.services.recalculation_parts import HOLD
 from repairs.services.recalculations import (
-    HOLD,
     recalculation_start,
     recalculation_work,
 )
