@@ -246,9 +246,9 @@ urlpatterns = [
         "recalculations/<int:pk>/", recalculations.recalculation, name="recalculation"
     ),
     path(
-        "recalculations/<int:pk>/work/",
-        recalculations.recalculation_work_here,
-        name="recalculation_work_here",
+        "recalculations/<int:pk>/go-on/",
+        recalculations.recalculation_go_on,
+        name="recalculation_go_on",
     ),
     path(
         "findings/<int:pk>/state/<str:name>/",

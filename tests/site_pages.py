@@ -179,7 +179,7 @@ PAGES: dict[str, Page] = {
     "evaluation_list": Page(),
     "recalculation_list": Page(sends="evaluation_make"),
     "recalculation": Page(keys=key("recalculation")),
-    "recalculation_work_here": Page(SEND, "evaluation_make", key("recalculation")),
+    "recalculation_go_on": Page(SEND, "evaluation_make", key("recalculation")),
     "evaluation": Page(keys=key("evaluation")),
     "evaluation_note": Page(keys=key("evaluation")),
     "input_state": Page(FORM, "evaluation_make", stating("crack")),

@@ -105,7 +105,7 @@ def recalculation(request: Request, pk: int) -> HttpResponse:
 
 
 @require_POST
-def recalculation_work_here(request: Request, pk: int) -> HttpResponse:
+def recalculation_go_on(request: Request, pk: int) -> HttpResponse:
     """Work on a run for a few seconds, for whoever has no worker running."""
     run = visible_or_404(Recalculation.objects.all(), request.user, pk=pk)
     require(request.user, ACTION, run.operator_id)

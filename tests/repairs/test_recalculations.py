@@ -287,7 +287,7 @@ def test_the_page_starts_a_run_works_on_it_and_shows_what_moved(world, client):
     )
     run = Recalculation.objects.get()
     assert answer["Location"] == f"/recalculations/{run.pk}/"
-    client.post(f"/recalculations/{run.pk}/work/")
+    client.post(f"/recalculations/{run.pk}/go-on/")
     page = client.get(f"/recalculations/{run.pk}/?which=shorter").content.decode()
     assert "100 %" in page
     assert "threshold" in page

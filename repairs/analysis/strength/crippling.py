@@ -5,7 +5,7 @@ Both use the section as it is left: a blended leg brings its own thickness.
 References
 ----------
 .. [1] Needham, the ultimate strength of aluminium-alloy formed structural shapes, J.
-   Aero. Sci. 1954, in public lecture notes.
+   Aero. Sci. 1954, in public university notes.
 .. [2] Gerard, NACA TN 3784, in a public copy with garbled typography.
 """
 
@@ -19,7 +19,7 @@ from repairs.analysis.errors import InputError, within
 from repairs.analysis.types import Grade, Reference
 
 NEEDHAM = Reference(
-    "Needham 1954, formula and constants in public lecture notes", Grade.QUOTED
+    "Needham 1954, formula and constants in public university notes", Grade.QUOTED
 )
 GERARD = Reference(
     "Gerard, NACA TN 3784, read in a public copy with garbled typography",
