@@ -108,7 +108,8 @@ WORSENED = [
     for name, use in RUNS
     for what, (varied, power) in WORSE.items()
     if set(varied) & set(CASES[name])
-    if not (name == STIFFENED and varied is THINNER)  # stiffeners then take a larger share
+    # Of thinner skin the stiffeners take a larger share.
+    if not (name == STIFFENED and varied is THINNER)
 ]
 
 
